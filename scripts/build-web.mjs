@@ -1,0 +1,4 @@
+import { ensureInstalled, ensureWebBuilt } from './lib.mjs';
+
+ensureInstalled();
+ensureWebBuilt();

@@ -1,0 +1,29 @@
+import { z } from 'zod';
+import { findingCodes } from '@/signal/model';
+
+export const finding = z
+  .object({
+    code: z.enum(findingCodes),
+    channel: z.string().nullable(),
+    from: z.number(),
+    to: z.number().nullable(),
+    severity: z.enum(['note', 'warn', 'fault']),
+    outcome: z.enum(['found', 'cannot-tell']),
+    at: z.number(),
+    evidence: z.record(z.string(), z.union([z.number(), z.string()])),
+    message: z.string(),
+    remedy: z.string(),
+    causedBy: z.enum(findingCodes).nullable(),
+  })
+  .meta({ id: 'Finding' });
+
+export const margin = z
+  .object({
+    channel: z.string(),
+    volts: z.number(),
+    sigmas: z.number().nullable(),
+    millitesla: z.number().nullable(),
+  })
+  .meta({ id: 'Margin' });
+
+export const direction = z.enum(['forward', 'reverse', 'stopped', 'unknown']);

@@ -1,0 +1,134 @@
+/**
+ * What the signal path takes and gives. Live, replay, rerun, proof and preview all run `createPipeline`; splitting a
+ * stream into blocks anywhere changes none of its output, bit for bit.
+ *
+ * Times are seconds on the raw signal's axis, 0 at sample index 0 of the stream (or of the capture).
+ */
+import type { Direction, Finding, Margin, RigSetup, SampleArray, Settings, WheelFace } from '@/signal/model';
+
+export type PipelineOptions = {
+  rig: RigSetup;
+  settings: Settings;
+  rateHz: number;
+  /** Names of the channels present, in the order of the arrays given to `process`. A subset of the rig's. */
+  channels: readonly string[];
+  /** Sample index on the stream's axis of the first sample to come (0 unless settings changed mid-stream). */
+  startIndex: number;
+};
+
+/** Why a pipeline cannot be built from these settings. Wording for people is in `detail`. */
+export type SetupIssue = {
+  code:
+    | 'cutoff-above-nyquist'
+    | 'cutoff-not-positive'
+    | 'band-inverted'
+    | 'band-channel-unknown'
+    | 'no-pulses'
+    | 'too-many-missing'
+    | 'bad-rate'
+    | 'channel-missing'
+    | 'bad-filter'
+    | 'bad-gear'
+    | 'bad-holdoff'
+    | 'bad-speed';
+  /** JSON pointer into the settings or the rig. */
+  pointer: string;
+  detail: string;
+};
+
+/** Edges of one channel as columns; only the first `count` entries are valid. */
+export type EdgeColumns = {
+  count: number;
+  /** When the band switched, s. */
+  t: Float64Array;
+  /** Last mid-level crossing on the same flank, s; what speed is computed from. */
+  midT: Float64Array;
+  /** Bit 0: rising. Bit 1: late (made at the end of a hold-off). */
+  flags: Uint8Array;
+};
+export const edgeRising = 1;
+export const edgeLate = 2;
+
+/** Crossings of a threshold that were not counted (hold-off, or a peak inside the band): hollow marks of the rail. */
+export type RejectedColumns = { count: number; t: Float64Array };
+
+export type SpeedColumns = {
+  count: number;
+  t: Float64Array;
+  /** NaN opens an unknown stretch. */
+  rpm: Float64Array;
+  /** NaN where not known. */
+  errorRpm: Float64Array;
+};
+
+export type DirectionChange = { t: number; value: Direction };
+export type BandChange = { channel: string; t: number; operateV: number; releaseV: number };
+export type Gap = { fromS: number; toS: number; lostSamples: number; estimated: boolean };
+
+/** Everything since the last `drain`. */
+export type PipelineOutput = {
+  edges: readonly EdgeColumns[];
+  rejected: readonly RejectedColumns[];
+  speed: SpeedColumns;
+  directions: DirectionChange[];
+  bands: BandChange[];
+  gaps: Gap[];
+  /** Findings that were closed since the last drain, with `to` set. Open ones are in `status().findings`. */
+  closedFindings: Finding[];
+};
+
+export type ChannelStatus = {
+  channel: string;
+  lowV: number | null;
+  highV: number | null;
+  operateV: number | null;
+  releaseV: number | null;
+  noiseV: number | null;
+  /** High share of the period, 0..1. */
+  duty: number | null;
+  edges: number;
+};
+
+/** The state at the last sample processed. */
+export type PipelineStatus = {
+  /** Stream time of the newest sample, s (index of the next sample / rate). */
+  nowS: number;
+  /** running: a speed is known; stopped: no edge for `stoppedAfterS`; unknown: samples, but no speed yet. */
+  state: 'running' | 'stopped' | 'unknown';
+  /** Signed by direction; null where not known; 0 once stopped; never above `speedAtMostRpm` in magnitude. */
+  speedRpm: number | null;
+  speedErrorRpm: number | null;
+  /** Falling bound since the last edge; null before any edge. Floor of what can be seen once stopped. */
+  speedAtMostRpm: number | null;
+  direction: Direction;
+  pulses: number;
+  positions: number;
+  turns: number;
+  /** Since when the counters count, s: 0, or the end of the last gap's first edge. */
+  countsSinceS: number;
+  /** In sync with a missing-tooth wheel (always true on a plain wheel). */
+  synced: boolean;
+  toothHz: number | null;
+  lastEdgeS: number | null;
+  /** Delay taken off edge times now, s. */
+  delayS: number;
+  /** A leads B by so many degrees of a period; quadrature only. */
+  phaseDeg: number | null;
+  channels: ChannelStatus[];
+  margin: Margin | null;
+  wheelFace: WheelFace | null;
+  findings: Finding[];
+};
+
+export interface Pipeline {
+  /** `arrays[i]` belongs to `channels[i]`; all hold `count` valid samples, finite, in the array's own type. */
+  process(arrays: readonly SampleArray[], count: number): void;
+  /** Samples that were lost: time runs on, filters are primed anew, the band's state is unknown. */
+  skip(lostSamples: number, estimated: boolean): void;
+  /** The output since the last drain; valid until the next call of `process`, `skip` or `drain`. */
+  readonly output: PipelineOutput;
+  /** Empties the output. */
+  drain(): void;
+  /** Computed at each call; cheap enough for 25 calls a second. */
+  status(): PipelineStatus;
+}
