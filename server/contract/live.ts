@@ -74,6 +74,12 @@ export const ribbon = z.object({
   toS: z.number(),
   /** What stands at the right edge. */
   anchor: z.enum(['edge', 'now']),
+  /**
+   * Column i of every lane stands at `firstS + i * stepS` (the middle of its samples): real sample instants, so that
+   * the first and last may lie just outside `fromS`..`toS`; clip the drawing to the window.
+   */
+  firstS: z.number(),
+  stepS: z.number(),
   lanes: z.array(
     z.object({
       channel: z.string(),
