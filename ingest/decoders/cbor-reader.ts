@@ -70,8 +70,8 @@ export class CborReader {
     return new CborFault('unreadable', detail, at);
   }
 
-  /** Reads the next head. An argument above 2^53 loses its last bits; `argBig` has them. */
-  head(): void {
+  /** Reads the next head and gives its major type. An argument above 2^53 loses its last bits; `argBig` has them. */
+  head(): number {
     const pos = this.pos;
     if (pos >= this.end) throw this.unreadable(truncated);
     const first = this.bytes[pos]!;
@@ -81,9 +81,10 @@ export class CborReader {
     if (info < 24) {
       this.arg = info;
       this.pos = pos + 1;
-      return;
+      return this.major;
     }
     this.longHead(pos, info);
+    return this.major;
   }
 
   private longHead(pos: number, info: number): void {

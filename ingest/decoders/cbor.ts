@@ -229,10 +229,10 @@ function readSamples(reader: CborReader, pointer: string, block: Block): number 
       );
     const where = pointer + '/samples' + pointerPart(name);
     const itemAt = reader.pos;
-    reader.head();
+    const major = reader.head();
     let samples: SampleArray;
-    if (reader.major === 6) samples = readTypedArray(reader, where);
-    else if (reader.major === 4) {
+    if (major === 6) samples = readTypedArray(reader, where);
+    else if (major === 4) {
       samples = readPlainArray(reader, where);
       plain |= 1 << i;
     } else throw new CborFault('invalid', 'Samples must be an array.', itemAt, where);
