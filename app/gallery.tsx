@@ -1,0 +1,1 @@
+export { Gallery as default } from '@/client/screens/watch/gallery';
