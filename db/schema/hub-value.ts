@@ -1,0 +1,4 @@
+export interface HubValueTable {
+  key: string;
+  value: string;
+}

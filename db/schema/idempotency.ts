@@ -1,0 +1,7 @@
+export interface IdempotencyTable {
+  rig_id: string;
+  key: string;
+  /** JSON. */
+  response: string;
+  expires_at_ms: number;
+}
