@@ -6,6 +6,7 @@ import { SpaceMono_700Bold } from '@expo-google-fonts/space-mono/700Bold';
 import { useFonts } from 'expo-font';
 import { Slot } from 'expo-router';
 import { SafeAreaProvider } from 'react-native-safe-area-context';
+import { ToastProvider } from '@/client/components/toast';
 import { ThemeProvider } from '@/client/theme/use-theme';
 
 const faces = {
@@ -23,7 +24,9 @@ export function RootLayout() {
   return (
     <SafeAreaProvider>
       <ThemeProvider>
-        <Slot />
+        <ToastProvider>
+          <Slot />
+        </ToastProvider>
       </ThemeProvider>
     </SafeAreaProvider>
   );

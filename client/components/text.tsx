@@ -31,7 +31,11 @@ export function Text({ children, size = 'body', weight = 'regular', tone = 'scri
   return (
     <NativeText
       {...native}
-      {...(heading ? ({ role: 'heading', 'aria-level': heading } as object) : role ? { role: role as never } : {})}
+      {...(heading
+        ? ({ role: 'heading', 'aria-level': heading } as object)
+        : role
+          ? { role: role as never }
+          : {})}
       {...(label ? { 'aria-label': label } : {})}
       {...(lines ? { numberOfLines: lines } : {})}
       style={[
@@ -51,7 +55,15 @@ export function Text({ children, size = 'body', weight = 'regular', tone = 'scri
   );
 }
 
-const lineHeights: Record<TypeSize, number> = { tiny: 16, small: 20, body: 24, lead: 26, title: 34, large: 44, speed: 76 };
+const lineHeights: Record<TypeSize, number> = {
+  tiny: 16,
+  small: 20,
+  body: 24,
+  lead: 26,
+  title: 34,
+  large: 44,
+  speed: 76,
+};
 
 // Features and wrapping that only the web knows by these names.
 const slashed = { fontVariant: ['tabular-nums', 'slashed-zero'] } as unknown as TextStyle;

@@ -6,7 +6,17 @@ import type { ColourName, Scheme } from '@/client/theme/tokens';
 
 const both = Object.keys(schemes) as Scheme[];
 const grounds: ColourName[] = ['ground', 'plate', 'plateRaised'];
-const texts: ColourName[] = ['scribe', 'scribeSoft', 'dye', 'forward', 'reverse', 'still', 'warn', 'fault', 'good'];
+const texts: ColourName[] = [
+  'scribe',
+  'scribeSoft',
+  'dye',
+  'forward',
+  'reverse',
+  'still',
+  'warn',
+  'fault',
+  'good',
+];
 
 describe('contrast', () => {
   it.each([

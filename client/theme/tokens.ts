@@ -46,7 +46,11 @@ export const space = { xs: 4, s: 8, m: 12, l: 16, xl: 24, xxl: 32, huge: 48 } as
 export const type = { tiny: 12, small: 14, body: 16, lead: 20, title: 28, large: 40, speed: 72 } as const;
 export type TypeSize = keyof typeof type;
 
-export const weights = { regular: 'SpaceGrotesk_400Regular', medium: 'SpaceGrotesk_500Medium', bold: 'SpaceGrotesk_700Bold' } as const;
+export const weights = {
+  regular: 'SpaceGrotesk_400Regular',
+  medium: 'SpaceGrotesk_500Medium',
+  bold: 'SpaceGrotesk_700Bold',
+} as const;
 export const mono = { regular: 'SpaceMono_400Regular', bold: 'SpaceMono_700Bold' } as const;
 export type Weight = keyof typeof weights;
 

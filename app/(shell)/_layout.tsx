@@ -1,0 +1,1 @@
+export { ShellLayout as default } from '@/client/components/shell-layout';
