@@ -5,6 +5,7 @@ import { findDemoRig, listRigs, withFault } from '@/simulator/cli-rigs';
 import { cliHelp } from '@/simulator/cli-help';
 import { writeRecording } from '@/simulator/recording';
 import { createRig } from '@/simulator/rig-model';
+import type { SenderEvent } from '@/simulator/sender';
 import { streamRig } from '@/simulator/stream';
 
 class UsageError extends Error {
@@ -62,20 +63,17 @@ async function main(args: string[]): Promise<void> {
     blockS: positive('block', options.block) / 1000,
     seconds,
     onEvent: (event) => {
-      if (event.kind === 'acked') return;
-      const { kind, ...more } = event;
-      if (!options.quiet || kind === 'ended')
-        process.stderr.write(`${kind} ${Object.values(more).join(' ')}\n`);
+      if (!options.quiet || event.kind === 'ended') note(event);
     },
   });
   const stop = () => void stream.stop();
   process.once('SIGINT', stop);
   process.once('SIGTERM', stop);
   const stats = await stream.done;
-  print(
-    `${demo.name}: ${stats.blocks} blocks, ${stats.samples} samples a channel, ${stats.dropped + stats.skipped} not sent`,
-  );
-  if (stats.endedBecause !== undefined) process.exitCode = 1;
+  const unsent = stats.dropped + stats.skipped;
+  print(`${demo.name}: ${stats.blocks} blocks of ${stats.samples} samples a channel made`);
+  print(`${stats.unacked} without an ack, ${unsent} not sent`);
+  if (stats.endedBecause !== undefined || stats.unacked > 0) process.exitCode = 1;
 }
 
 /** From TURNMARK_RIG_KEY, else a file, `-` for standard input. Never from the command line, where others can read it. */
@@ -104,6 +102,15 @@ function oneOf<T extends string>(name: string, text: string, allowed: readonly T
   const found = allowed.find((value) => value === text);
   if (found === undefined) throw new UsageError(`--${name}: "${text}" is none of ${allowed.join(', ')}`);
   return found;
+}
+
+function note(event: SenderEvent): void {
+  if (event.kind === 'connected') process.stderr.write('connected\n');
+  if (event.kind === 'refused') process.stderr.write(`refused: ${event.detail}\n`);
+  if (event.kind === 'ended') process.stderr.write(`${event.reason}\n`);
+  if (event.kind === 'retry') {
+    process.stderr.write(`${event.reason}; trying again in ${(event.afterMs / 1000).toFixed(1)} s\n`);
+  }
 }
 
 function print(text: string): void {

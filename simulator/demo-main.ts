@@ -1,12 +1,18 @@
 /**
  * The demo rigs as a process of their own. Reads `{"baseUrl": "...", "rigs": [{"name": "...", "key": "..."}]}` as one
  * JSON text from standard input; ends on SIGTERM or SIGINT, or when the process that started it goes away.
+ * With `--describe` it prints `[{name, rig, settings}]`, what the hub is to be told about them, and ends.
  */
-import { startDemoRigs } from '@/simulator/demo-lab';
+import { demoRigs, startDemoRigs } from '@/simulator/demo-lab';
 
 type Order = { baseUrl: string; rigs: { name: string; key: string }[] };
 
 async function main(): Promise<void> {
+  if (process.argv.includes('--describe')) {
+    const described = demoRigs.map(({ name, rig, settings }) => ({ name, rig, settings }));
+    process.stdout.write(`${JSON.stringify(described)}\n`);
+    return;
+  }
   const order = await readOrder();
   const keys = Object.fromEntries(order.rigs.map(({ name, key }) => [name, key]));
   const run = startDemoRigs({

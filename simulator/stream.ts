@@ -37,6 +37,8 @@ export type StreamStats = {
   dropped: number;
   /** Passed unsent because this machine could not keep up. */
   skipped: number;
+  /** Made, but without the hub's ack when the run ended. */
+  unacked: number;
   endedBecause: string | undefined;
 };
 export type RunningStream = {
@@ -58,7 +60,14 @@ export function streamRig(options: StreamOptions): RunningStream {
   const blockSamples = Math.max(1, Math.round(rig.spec.rateHz * (options.blockS ?? 0.04)));
   const board = createBoard(rig, blockSamples, options.newStreamName ?? bootName);
   const stopping = new AbortController();
-  const stats: StreamStats = { blocks: 0, samples: 0, dropped: 0, skipped: 0, endedBecause: undefined };
+  const stats: StreamStats = {
+    blocks: 0,
+    samples: 0,
+    dropped: 0,
+    skipped: 0,
+    unacked: 0,
+    endedBecause: undefined,
+  };
   const senderOptions = {
     baseUrl: options.baseUrl,
     key: options.key,
@@ -98,6 +107,7 @@ export function streamRig(options: StreamOptions): RunningStream {
     await sender.drained(AbortSignal.any([stopping.signal, AbortSignal.timeout(drainMs)]));
     await sender.stop();
     stats.dropped = outbox.dropped;
+    stats.unacked = outbox.waiting;
     stats.endedBecause = sender.endedBecause;
     return stats;
   }

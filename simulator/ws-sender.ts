@@ -14,7 +14,7 @@ export type SocketEvents = {
   onOpen(): void;
   onMessage(data: string | Uint8Array): void;
   /** `status`: the HTTP answer where the upgrade was refused. */
-  onClose(code: number, status: number | undefined): void;
+  onClose(code: number, status: number | undefined, detail: string): void;
 };
 export type Connect = (url: string, key: string, events: SocketEvents) => Socket;
 
@@ -33,9 +33,12 @@ export const connectByWs: Connect = (url, key, events) => {
     response.resume();
     request.destroy();
   });
+  let detail = '';
   // Every error is followed by close, which says what to do.
-  socket.on('error', () => undefined);
-  socket.on('close', (code: number) => events.onClose(code, status));
+  socket.on('error', (error: Error & { code?: string }) => {
+    detail = error.message || (error.code ?? '');
+  });
+  socket.on('close', (code: number) => events.onClose(code, status, detail));
   return {
     send: (data) => socket.send(data),
     close: () => (socket.readyState === WebSocket.CONNECTING ? socket.terminate() : socket.close(1000)),
@@ -120,12 +123,14 @@ export function createWsSender(options: SenderOptions, connect: Connect = connec
           flush();
         },
         onMessage: (data) => (over ? undefined : onMessage(data)),
-        onClose: (code, status) => {
+        onClose: (code, status, detail) => {
           if (status === 401 || status === 403 || code === 4403) {
             endedBecause = `the hub refused the rig key (${status ?? code})`;
             onEvent({ kind: 'ended', reason: endedBecause });
           }
-          finish(status === undefined ? `the connection closed (${code})` : `the hub answered ${status}`);
+          finish(
+            status === undefined ? detail || `the connection closed (${code})` : `the hub answered ${status}`,
+          );
         },
       });
     });
