@@ -1,0 +1,110 @@
+/**
+ * Group commits: what has arrived goes to the spool a few rows at a time, so that neither an ack waits long nor the
+ * event loop stands still (one transaction of every rig's rows plus a checkpoint blocks it for tens of milliseconds).
+ */
+import { clearImmediate, clearTimeout, setImmediate, setTimeout } from 'node:timers';
+import type { EarlyWrite, GapWrite, SegmentWrite, Spool, StreamState } from '@/db/spool-types';
+
+export type CommitBatch = {
+  segments: SegmentWrite[];
+  early: EarlyWrite[];
+  releasedEarly: { streamId: number; seq: number }[];
+  gaps: GapWrite[];
+  streams: StreamState[];
+};
+
+export interface CommitSource {
+  /** Adds what waits to the batch; called once before `committed` or `failed`. */
+  collect(batch: CommitBatch): void;
+  /** What was collected is on disk. */
+  committed(): void;
+  /** Nothing of it is; it will be collected again. */
+  failed(detail: string): void;
+}
+
+const sourcesPerCommit = 8;
+
+export type CommitterOptions = {
+  spool: Spool;
+  /** Longest wait of a block for its commit, ms. */
+  intervalMs: number;
+  /** Wait before a failed commit is tried again, ms. */
+  retryMs: number;
+  onFailure(error: unknown): void;
+};
+
+export class Committer {
+  readonly #dirty = new Set<CommitSource>();
+  #timer: NodeJS.Timeout | undefined;
+  #next: NodeJS.Immediate | undefined;
+  #failing: string | null = null;
+
+  constructor(private readonly options: CommitterOptions) {}
+
+  /** Why the spool cannot store now, else null. New blocks are turned away meanwhile; those taken are kept and retried. */
+  get failing(): string | null {
+    return this.#failing;
+  }
+
+  markDirty(source: CommitSource): void {
+    this.#dirty.add(source);
+    if (this.#failing === null) this.#schedule(this.options.intervalMs);
+  }
+
+  #schedule(delayMs: number): void {
+    this.#timer ??= setTimeout(() => {
+      this.#timer = undefined;
+      this.#round();
+    }, delayMs);
+  }
+
+  #round(): void {
+    if (this.#next !== undefined) {
+      clearImmediate(this.#next);
+      this.#next = undefined;
+    }
+    if (!this.#commitSome()) {
+      this.#schedule(this.options.retryMs);
+      return;
+    }
+    if (this.#dirty.size > 0) this.#next = setImmediate(() => this.#round());
+  }
+
+  /** Commits everything that waits, now. Throws where the spool cannot store. */
+  flush(): void {
+    while (this.#dirty.size > 0) {
+      if (!this.#commitSome()) throw new Error(this.#failing ?? 'the spool cannot store');
+    }
+  }
+
+  #commitSome(): boolean {
+    const batch: CommitBatch = { segments: [], early: [], releasedEarly: [], gaps: [], streams: [] };
+    const taken: CommitSource[] = [];
+    for (const source of this.#dirty) {
+      if (taken.length === sourcesPerCommit) break;
+      taken.push(source);
+      this.#dirty.delete(source);
+      source.collect(batch);
+    }
+    if (taken.length === 0) return true;
+    try {
+      this.options.spool.commit(batch);
+    } catch (error) {
+      this.#failing = error instanceof Error ? error.message : String(error);
+      for (const source of taken) {
+        this.#dirty.add(source);
+        source.failed(this.#failing);
+      }
+      this.options.onFailure(error);
+      return false;
+    }
+    this.#failing = null;
+    for (const source of taken) source.committed();
+    return true;
+  }
+
+  close(): void {
+    clearTimeout(this.#timer);
+    if (this.#next !== undefined) clearImmediate(this.#next);
+  }
+}
