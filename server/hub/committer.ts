@@ -2,7 +2,6 @@
  * Group commits: what has arrived goes to the spool a few rows at a time, so that neither an ack waits long nor the
  * event loop stands still (one transaction of every rig's rows plus a checkpoint blocks it for tens of milliseconds).
  */
-import { clearImmediate, clearTimeout, setImmediate, setTimeout } from 'node:timers';
 import type { EarlyWrite, GapWrite, SegmentWrite, Spool, StreamState } from '@/db/spool-types';
 
 export type CommitBatch = {
@@ -35,8 +34,8 @@ export type CommitterOptions = {
 
 export class Committer {
   readonly #dirty = new Set<CommitSource>();
-  #timer: NodeJS.Timeout | undefined;
-  #next: NodeJS.Immediate | undefined;
+  #timer: ReturnType<typeof setTimeout> | undefined;
+  #next: ReturnType<typeof setImmediate> | undefined;
   #failing: string | null = null;
 
   constructor(private readonly options: CommitterOptions) {}

@@ -2,7 +2,6 @@
  * The hub: where blocks come in (`BlockSink`), where viewers look (`LiveFeed`), and where Keep finds what is stored.
  * Ingest and viewers know these interfaces only.
  */
-import { clearInterval, setInterval } from 'node:timers';
 import type { Spool } from '@/db/spool-types';
 import type { Block } from '@/ingest/block';
 import type { BlockSink, OutcomeCallback, StreamInfo } from '@/ingest/block-sink';

@@ -1,5 +1,4 @@
 /** One rig as it runs: its streams on their way in, and the newest of them as it is seen live. */
-import { setImmediate } from 'node:timers';
 import type { Spool } from '@/db/spool-types';
 import type { Block, IngestIssue } from '@/ingest/block';
 import type { OutcomeCallback } from '@/ingest/block-sink';

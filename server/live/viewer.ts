@@ -25,7 +25,7 @@ type Watched = {
   lastFrameMs: number;
   lastHistoryMs: number;
   dropped: number;
-  due: NodeJS.Timeout | undefined;
+  due: ReturnType<typeof setTimeout> | undefined;
   unwatch: () => void;
 };
 
@@ -34,10 +34,10 @@ export type ViewerOptions = { feed: LiveFeed; verify: VerifyViewer; nowMs: () =>
 export class Viewer {
   identity: ViewerIdentity | null = null;
   readonly #watched = new Map<string, Watched>();
-  readonly #hello: NodeJS.Timeout;
-  readonly #beat: NodeJS.Timeout;
-  readonly #ping: NodeJS.Timeout;
-  #expiry: NodeJS.Timeout | undefined;
+  readonly #hello: ReturnType<typeof setTimeout>;
+  readonly #beat: ReturnType<typeof setInterval>;
+  readonly #ping: ReturnType<typeof setInterval>;
+  #expiry: ReturnType<typeof setTimeout> | undefined;
   #alive = true;
   #closed = false;
 
