@@ -58,7 +58,7 @@ export type Assembler<B extends BlockHead> = {
   /** Takes a block. Its channels are put into the stream's own order where they differ from it. */
   offer(block: B, nowS: number): Verdict;
   /** A block that was refused elsewhere: it will not come, so nothing waits for it. */
-  refuse(seq: number, nowS: number): void;
+  refuse(seq: number): void;
   /** Lets time pass: declares lost what has been waited for long enough. */
   advance(nowS: number): void;
   /** When `advance` has something to do next, s; undefined while nothing is missing. */
@@ -115,7 +115,7 @@ export function createAssembler<B extends BlockHead>(options: {
     return accepted;
   }
 
-  function refuse(seq: number, _nowS: number): void {
+  function refuse(seq: number): void {
     if (state === undefined || seq < state.nextSeq || waiting.has(seq) || refused.size >= maxRefused) return;
     refused.add(seq);
     settle(state);

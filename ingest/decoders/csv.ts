@@ -23,6 +23,7 @@ export type CsvOptions = {
 const timeNames = ['t', 't_s', 'time', 'time_s'];
 const stepBytes = 128 * 1024;
 const maxRowBytes = 16 * 1024;
+const rowsAtOnce = 65_536;
 
 /** Reads a whole body at once. Never throws. */
 export function decodeCsv(bytes: Uint8Array, options: CsvOptions = {}): RecordingResult {
@@ -68,7 +69,7 @@ export function* decodeCsvSteps(bytes: Uint8Array, options: CsvOptions): Steps<R
     yield;
   }
   if (table === undefined) return failed(unreadable('The body is empty.', 'line 1'));
-  return finish(table, options);
+  return yield* finish(table, options);
 }
 
 type Chunk = { text: Uint8Array; lines: number; delimiter: string[] };
@@ -190,12 +191,12 @@ function addRow(table: Table, row: string[], codes: boolean): IngestIssue | unde
   return undefined;
 }
 
-function finish(table: Table, options: CsvOptions): RecordingResult {
+function* finish(table: Table, options: CsvOptions): Steps<RecordingResult> {
   const { times, halfUnits } = table;
   const rows = times.length();
   if (rows === 0) return failed(invalid('The body has no row after its header.'));
   const firstS = times.at(0);
-  const rateHz = options.rateHz ?? rateOf(table, options.streamRateHz);
+  const rateHz = options.rateHz ?? (yield* rateOf(table, options.streamRateHz));
   if (rateHz === undefined)
     return failed(
       invalid(
@@ -207,7 +208,7 @@ function finish(table: Table, options: CsvOptions): RecordingResult {
   const fault = rateFault(rateHz);
   if (fault !== undefined)
     return failed(invalid(`${fault} The times of this body give ${rateHz.toPrecision(6)} Hz.`, '/rate'));
-  const uneven = firstUneven(table, rateHz);
+  const uneven = yield* firstUneven(table, rateHz);
   if (uneven >= 0) {
     const wantedS = firstS + uneven / rateHz;
     const detail =
@@ -220,17 +221,18 @@ function finish(table: Table, options: CsvOptions): RecordingResult {
   return { ok: true, recording: { rateHz, timeS: firstS, channels: table.channels, length: rows, pieces } };
 }
 
-function rateOf(table: Table, streamRateHz: number | undefined): number | undefined {
-  if (streamRateHz !== undefined && firstUneven(table, streamRateHz) < 0) return streamRateHz;
+function* rateOf(table: Table, streamRateHz: number | undefined): Steps<number | undefined> {
+  if (streamRateHz !== undefined && (yield* firstUneven(table, streamRateHz)) < 0) return streamRateHz;
   const rows = table.times.length();
   const spanS = table.times.at(rows - 1) - table.times.at(0);
   return rows >= 2 && spanS > 0 ? (rows - 1) / spanS : undefined;
 }
 
 /** Index of the first row whose time is off by more than 1 % of the step and half a unit of its last decimal, or -1. */
-function firstUneven({ times, halfUnits }: Table, rateHz: number): number {
+function* firstUneven({ times, halfUnits }: Table, rateHz: number): Steps<number> {
   const firstS = times.at(0);
   for (let i = 0, rows = times.length(); i < rows; i++) {
+    if (i % rowsAtOnce === rowsAtOnce - 1) yield;
     const wantedS = firstS + i / rateHz;
     const rounding = 4 * Number.EPSILON * Math.abs(wantedS);
     if (Math.abs(times.at(i) - wantedS) > 0.01 / rateHz + halfUnits.at(i) + rounding) return i;

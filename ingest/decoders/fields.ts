@@ -2,16 +2,10 @@
 import { blockLimits } from '../block';
 import { quoted } from './result';
 
-/** Length in characters (code points), as the limits count. */
-function charCount(text: string): number {
-  let count = 0;
-  for (const _ of text) count++;
-  return count;
-}
-
+/** Whether a text is empty or longer than so many characters (code points). */
 function lengthFault(text: string, maxChars: number): boolean {
   if (text.length === 0 || text.length > 2 * maxChars) return true;
-  return text.length > maxChars && charCount(text) > maxChars;
+  return text.length > maxChars && Array.from(text).length > maxChars;
 }
 
 export function streamFault(stream: string): string | undefined {

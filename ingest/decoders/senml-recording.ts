@@ -23,6 +23,9 @@ export function decodeSenml(bytes: Uint8Array, options: SenmlOptions): Recording
   return runAtOnce(decodeSenmlSteps(bytes, options));
 }
 
+const samplesAtOnce = 65_536;
+const maxSorted = 262_144;
+
 type Series = {
   name: string;
   fullName: string;
@@ -47,7 +50,7 @@ export function* decodeSenmlSteps(bytes: Uint8Array, options: SenmlOptions): Ste
     }
     yield;
   }
-  return finish(pack, options.nowS);
+  return yield* finish(pack, options.nowS);
 }
 
 function addRecord(pack: Pack, record: SenmlRecord, base: SenmlBase, where: string): IngestIssue | undefined {
@@ -90,8 +93,15 @@ function seriesOf(pack: Pack, record: SenmlRecord, base: SenmlBase, where: strin
   return series;
 }
 
-function finish(pack: Pack, nowS: number): RecordingResult {
-  const all = [...pack.series.values()].map(inOrder);
+function* finish(pack: Pack, nowS: number): Steps<RecordingResult> {
+  const all: Series[] = [];
+  for (const series of pack.series.values()) {
+    const ordered = inOrder(series);
+    if (ordered === undefined)
+      return failed(invalid(`The channel ${quoted(series.name)} is long and not in order of time.`));
+    all.push(ordered);
+    yield;
+  }
   const first = all[0];
   if (first === undefined) return failed(invalid('The pack holds no measurement.'));
   const length = first.offsets.length();
@@ -111,7 +121,9 @@ function finish(pack: Pack, nowS: number): RecordingResult {
   if (fault !== undefined)
     return failed(invalid(`${fault} The times of this pack give ${Number(rateHz.toPrecision(6))} Hz.`));
   for (const { name, offsets } of all) {
+    yield;
     for (let i = 0; i < length; i++) {
+      if (i % samplesAtOnce === samplesAtOnce - 1) yield;
       if (Math.abs(offsets.at(i) - (startS + i * stepS)) <= 0.01 * stepS) continue;
       const what = i === 0 ? 'start together' : 'stand at equal steps of time, the same for all channels';
       const detail = `Sample ${i + 1} of ${quoted(name)} does not ${what}, within 1 % of the step.`;
@@ -131,13 +143,14 @@ function finish(pack: Pack, nowS: number): RecordingResult {
   };
 }
 
-/** A series in order of time (section 4.6), which it nearly always is already. */
-function inOrder(series: Series): Series {
+/** A series in order of time (section 4.6), which it nearly always is already; a very long one is not sorted. */
+function inOrder(series: Series): Series | undefined {
   const { values, offsets } = series;
   const length = offsets.length();
   let sorted = true;
   for (let i = 1; sorted && i < length; i++) sorted = offsets.at(i - 1) <= offsets.at(i);
   if (sorted) return series;
+  if (length > maxSorted) return undefined;
   const order = Uint32Array.from({ length }, (_, i) => i).sort((a, b) => offsets.at(a) - offsets.at(b));
   const make = (size: number): Float64Array => new Float64Array(size);
   const result = { ...series, values: createPieces(make), offsets: createPieces(make) };

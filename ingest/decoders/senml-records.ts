@@ -11,6 +11,9 @@ export type RecordBatch = { ok: true; records: SenmlRecord[] } | { ok: false; is
 
 const batchBytes = 64 * 1024;
 const batchRecords = 512;
+/** One record; memory for values grows by more than their bytes, so it is bounded on its own. */
+const maxRecordBytes = 256 * 1024;
+const maxDepth = 8;
 
 /** Reads a pack in JSON. The last batch is the first that is not ok. */
 export function* senmlJsonRecords(bytes: Uint8Array): Generator<RecordBatch, void> {
@@ -66,8 +69,10 @@ function* packParts(bytes: Uint8Array): Generator<Part | string, void> {
     const byte = bytes[i]!;
     if (byte === 34) {
       for (i++; i < bytes.length && bytes[i] !== 34; i++) if (bytes[i] === 92) i++;
-    } else if (byte === 123 || byte === 91) depth++;
-    else if (byte === 125 || byte === 93) depth--;
+    } else if (byte === 123 || byte === 91) {
+      if (++depth > maxDepth) return yield `byte ${i}`;
+    } else if (byte === 125 || byte === 93) depth--;
+    else if (i - start > batchBytes + maxRecordBytes) return yield `byte ${start}`;
     else if (byte === 44 && depth === 1 && i - start >= batchBytes) {
       yield { start, end: i, whole: false };
       whole = false;
@@ -134,6 +139,10 @@ function cborBatch(reader: CborReader, pack: { left: number; number: number }): 
         pack.left = 0;
         break;
       }
+      const start = reader.pos;
+      reader.skip(maxDepth);
+      if (reader.pos - start > maxRecordBytes) throw reader.unreadable('A record is too large.', start);
+      reader.pos = start;
       const read = cborRecord(reader.value(1), `/${pack.number}`);
       if (!read.ok) return read;
       records.push(read.record);
