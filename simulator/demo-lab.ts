@@ -52,6 +52,7 @@ export function startDemoRigs(options: {
         key,
         transport: demo.transport,
         format: demo.format,
+        blockS: 0.05,
         onEvent: (event) => {
           if (event.kind === 'ended') options.onNote?.(`${demo.name}: ${event.reason}`);
           if (event.kind === 'refused') options.onNote?.(`${demo.name}: refused, ${event.detail}`);

@@ -1,26 +1,13 @@
 /** Sends an outbox by POST, one request at a time; what piled up meanwhile goes as one batch. */
 import { backOffMs } from '@/simulator/clock';
+import { createHttpPost, type HttpPost, type HttpReply } from '@/simulator/http-post';
 import { createSignalFlag, type Sender, type SenderOptions } from '@/simulator/sender';
 import { joinBlocks, type WireBlock } from '@/simulator/wire';
-
-export type HttpReply = { status: number; retryAfter: string | null; body: string };
-/** Rejects on a network error. */
-export type HttpPost = (url: string, headers: Record<string, string>, body: Uint8Array) => Promise<HttpReply>;
-
-export const postByFetch: HttpPost = async (url, headers, body) => {
-  const reply = await fetch(url, {
-    method: 'POST',
-    headers,
-    body: body as Uint8Array<ArrayBuffer>,
-    signal: AbortSignal.timeout(15_000),
-  });
-  return { status: reply.status, retryAfter: reply.headers.get('retry-after'), body: await reply.text() };
-};
 
 const maxBatchBlocks = 32;
 const maxBatchBytes = 512 * 1024;
 
-export function createHttpSender(options: SenderOptions, post: HttpPost = postByFetch): Sender {
+export function createHttpSender(options: SenderOptions, post: HttpPost = createHttpPost()): Sender {
   const { outbox, clock, random, onEvent } = options;
   const url = new URL('/ingest/v1/samples', options.baseUrl).href;
   const headers = { 'Content-Type': `application/${options.format}`, Authorization: `Bearer ${options.key}` };
@@ -129,6 +116,5 @@ function parsed(body: string): Record<string, unknown> | undefined {
 }
 
 function reasonOf(error: unknown): string {
-  const cause = error instanceof Error && error.cause instanceof Error ? error.cause : error;
-  return cause instanceof Error ? cause.message : String(cause);
+  return error instanceof Error ? error.message || error.name : String(error);
 }

@@ -125,12 +125,18 @@ function createRun(
   const supplyV = spec.supply?.nominalV ?? 1;
   let warmth = 1;
 
+  let isAffected = false;
+
   function refresh(tS: number): void {
-    Object.assign(rig, noRigEffects());
-    for (const own of perChannel) Object.assign(own, noChannelEffects());
-    wheel.strengths.set(strengths);
     const t = loopTime(spec, tS);
-    for (const fault of spec.faults) applyFault(fault, t, rig, effects, wheel.strengths);
+    const isAnyOn = spec.faults.some((fault) => t >= fault.beginS && t < fault.endS);
+    if (isAffected || isAnyOn) {
+      Object.assign(rig, noRigEffects());
+      for (const own of perChannel) Object.assign(own, noChannelEffects());
+      wheel.strengths.set(strengths);
+      for (const fault of spec.faults) applyFault(fault, t, rig, effects, wheel.strengths);
+    }
+    isAffected = isAnyOn;
     const heat = spec.temperature;
     if (heat)
       warmth = 1 + 0.01 * heat.percentPerK * heat.swingK * Math.sin((2 * Math.PI * tS) / heat.periodS);

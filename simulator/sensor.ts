@@ -52,6 +52,7 @@ export function createSensor(
   const low = spec.kind === 'linear' ? spec.lowRailV : 0;
   const high = spec.kind === 'linear' ? spec.highRailV : spec.pullUpV;
   const wander = (2 * Math.PI) / (electronics.wanderPeriodS ?? 600);
+  const ownRms = electronics.noiseRmsV;
   const humRate = 2 * Math.PI * (electronics.humHz ?? 50);
   return {
     step(fieldMt, index, tS, supplyRatio, effects) {
@@ -60,7 +61,7 @@ export function createSensor(
       volts += effects.offsetV;
       if (electronics.wanderV) volts += electronics.wanderV * Math.sin(wander * tS);
       // The sensor's own noise stops at its rails with the signal; what the cable picks up comes on top.
-      const rms = Math.hypot(electronics.noiseRmsV, effects.noiseV);
+      const rms = effects.noiseV > 0 ? Math.hypot(ownRms, effects.noiseV) : ownRms;
       if (rms > 0) volts += rms * normalAt(seed, index);
       volts = Math.min(Math.max(volts, Math.max(low, effects.lowV)), Math.min(high, effects.highV));
       if (electronics.humV) volts += electronics.humV * Math.sin(humRate * tS);

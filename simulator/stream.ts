@@ -2,7 +2,8 @@
 import { randomBytes } from 'node:crypto';
 import { createBoard } from '@/simulator/board';
 import { machineClock, type Clock } from '@/simulator/clock';
-import { createHttpSender, type HttpPost } from '@/simulator/http-sender';
+import type { HttpPost } from '@/simulator/http-post';
+import { createHttpSender } from '@/simulator/http-sender';
 import { createOutbox } from '@/simulator/outbox';
 import type { Rig } from '@/simulator/rig-model';
 import type { Sender, SenderEvent } from '@/simulator/sender';
