@@ -1,1 +1,1 @@
-export { RootLayout as default } from '@/client/components/root-layout';
+export { RootLayout as default } from '@/client/screens/shell/root-layout';

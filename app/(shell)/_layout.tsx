@@ -1,1 +1,1 @@
-export { ShellLayout as default } from '@/client/components/shell-layout';
+export { ShellLayout as default } from '@/client/screens/shell/shell-layout';

@@ -19,8 +19,8 @@ const places: readonly Place[] = [
   {
     label: 'More',
     icon: 'more',
-    href: '/account' as Href,
-    covers: ['/account', '/team', '/hub', '/gap', '/proofs'],
+    href: '/more' as Href,
+    covers: ['/more', '/account', '/team', '/hub', '/gap', '/proofs'],
   },
 ];
 

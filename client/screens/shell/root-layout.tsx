@@ -1,3 +1,4 @@
+import '@/client/data/zod-without-eval';
 import { SpaceGrotesk_400Regular } from '@expo-google-fonts/space-grotesk/400Regular';
 import { SpaceGrotesk_500Medium } from '@expo-google-fonts/space-grotesk/500Medium';
 import { SpaceGrotesk_700Bold } from '@expo-google-fonts/space-grotesk/700Bold';
@@ -7,6 +8,7 @@ import { useFonts } from 'expo-font';
 import { Slot } from 'expo-router';
 import { SafeAreaProvider } from 'react-native-safe-area-context';
 import { ToastProvider } from '@/client/components/toast';
+import { DataProvider } from '@/client/data/data-provider';
 import { ThemeProvider } from '@/client/theme/use-theme';
 
 const faces = {
@@ -25,7 +27,9 @@ export function RootLayout() {
     <SafeAreaProvider>
       <ThemeProvider>
         <ToastProvider>
-          <Slot />
+          <DataProvider>
+            <Slot />
+          </DataProvider>
         </ToastProvider>
       </ThemeProvider>
     </SafeAreaProvider>
