@@ -1,0 +1,11 @@
+/** Time as a value, so that a test can hold it still. */
+export type Clock = {
+  /** Wall clock, ms since 1970. */
+  nowMs(): number;
+};
+
+export const systemClock: Clock = { nowMs: () => Date.now() };
+
+export function isoFrom(ms: number): string {
+  return new Date(ms).toISOString();
+}
