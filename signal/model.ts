@@ -91,13 +91,7 @@ export const defaultSettings: Settings = {
  * inside the hub, whatever the wire format was.
  */
 export type SampleArray =
-  | Uint8Array
-  | Uint16Array
-  | Int16Array
-  | Uint32Array
-  | Int32Array
-  | Float32Array
-  | Float64Array;
+  Uint8Array | Uint16Array | Int16Array | Uint32Array | Int32Array | Float32Array | Float64Array;
 
 export type Direction = 'forward' | 'reverse' | 'stopped' | 'unknown';
 

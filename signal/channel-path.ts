@@ -1,0 +1,433 @@
+/**
+ * One channel from samples to edges: scale, filter, band, edges with both instants, and what is learnt on the way
+ * (levels, noise, duty, margin). Everything is decided from samples in their order, never from where a block ended.
+ */
+import { createCascade, flushCascade, resetCascade, runCascade } from '@/signal/biquad';
+import type { Cascade } from '@/signal/biquad';
+import {
+  createEdgeColumns,
+  createEdgeQueue,
+  createRejectedColumns,
+  delayGuessed,
+  enqueueEdge,
+  pushEdge,
+  pushRejected,
+} from '@/signal/columns';
+import type { EdgeQueue } from '@/signal/columns';
+import { createDetector, forgetState, runDetector, setThresholds, zones } from '@/signal/detector';
+import type { Detector, DetectorSink } from '@/signal/detector';
+import type { Section } from '@/signal/filter-design';
+import { createHunter, hunt, startHunt } from '@/signal/hunter';
+import type { Hunter } from '@/signal/hunter';
+import { createLevels, fittedThresholds, followPeak, followTrough } from '@/signal/levels';
+import type { Levels } from '@/signal/levels';
+import { createMarginMeter, noteMargin, worstMarginV } from '@/signal/margin-meter';
+import type { MarginMeter } from '@/signal/margin-meter';
+import type { Band, Channel, SampleArray } from '@/signal/model';
+import { addToBurst, breakBurst, burstLength, createNoiseMeter, rawNoiseV } from '@/signal/noise';
+import type { NoiseMeter } from '@/signal/noise';
+import { edgeLate, edgeRising } from '@/signal/pipeline-types';
+import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline-types';
+import { createRailMeter, watchRails } from '@/signal/rail-meter';
+import type { RailMeter } from '@/signal/rail-meter';
+import { createDelayCurve, dcDelayS, delayAt, noiseGain } from '@/signal/response';
+import type { DelayCurve } from '@/signal/response';
+import { holdsCodes, toVolts } from '@/signal/scale';
+
+/** Most samples that one call of `advanceChannel` takes. */
+export const chunkSamples = 1024;
+
+/** While levels are sought for the first time, so much signal is kept, so that its edges are found afterwards. */
+const rememberedS = 5;
+const mostRemembered = 65_536;
+
+export class ChannelPath implements DetectorSink {
+  readonly channel: Channel;
+  readonly edges: EdgeColumns = createEdgeColumns();
+  readonly rejectedMarks: RejectedColumns = createRejectedColumns();
+  readonly queue: EdgeQueue = createEdgeQueue();
+  readonly levels: Levels = createLevels();
+  readonly marginMeter: MarginMeter;
+  readonly noise: NoiseMeter = createNoiseMeter();
+  rails: RailMeter | null = null;
+  /** Rms of the filtered signal's noise, V, as of the last tick; NaN: not known. */
+  noiseV = NaN;
+  edgeCount = 0;
+  rejectedCount = 0;
+  duty = NaN;
+  delayS: number;
+  /** Last accepted edge, samples, delay not taken off. */
+  lastEdgeAt = NaN;
+  /** Least and most raw volts of every eighth sample since `restartSpread`. */
+  spreadLowV = Infinity;
+  spreadHighV = -Infinity;
+
+  private readonly band: Band;
+  private readonly rateHz: number;
+  private readonly missing: number;
+  private readonly bands: BandChange[];
+  private readonly cascade: Cascade;
+  private readonly gainOfNoise: number;
+  private readonly delays: DelayCurve;
+  private readonly detector: Detector;
+  private readonly hunter: Hunter = createHunter();
+  /** `scratch[0]` is the sample before the chunk. */
+  private readonly scratch = new Float64Array(chunkSamples + 1);
+  private readonly burstEvery: number;
+  private codes: boolean | null = null;
+  private fresh = true;
+  private hunting = false;
+  private replaying = false;
+  private remembered: Float64Array | null = null;
+  private rememberedCount = 0;
+  private rememberedBase = 0;
+  private nextAt: number;
+  private delayKnown = false;
+  private periodSamples = NaN;
+  private riseMidAt = NaN;
+  private fallMidAt = NaN;
+  private riseStepV = NaN;
+  private fallStepV = NaN;
+
+  constructor(options: {
+    channel: Channel;
+    band: Band;
+    sections: readonly Section[];
+    rateHz: number;
+    startIndex: number;
+    holdoffS: number;
+    missingPulses: number;
+    teethPerTurn: number;
+    bands: BandChange[];
+  }) {
+    const { channel, band, sections, rateHz, startIndex } = options;
+    this.channel = channel;
+    this.band = band;
+    this.rateHz = rateHz;
+    this.missing = options.missingPulses;
+    this.bands = options.bands;
+    this.cascade = createCascade(sections);
+    this.gainOfNoise = noiseGain(sections, rateHz);
+    this.delays = createDelayCurve(sections, rateHz);
+    this.delayS = dcDelayS(sections, rateHz);
+    this.detector = createDetector(options.holdoffS * rateHz);
+    this.marginMeter = createMarginMeter(options.teethPerTurn);
+    this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(1024, Math.max(32, rateHz / 20))));
+    this.nextAt = startIndex;
+    if (band.mode === 'fixed') {
+      const levels = band.channels?.[channel.name] ?? band;
+      this.applyThresholds(levels.operateV, levels.releaseV, startIndex);
+    } else {
+      this.huntFromNothing();
+    }
+  }
+
+  get operateV(): number {
+    return this.detector.operateV;
+  }
+
+  get releaseV(): number {
+    return this.detector.releaseV;
+  }
+
+  /** Every edge up to this sample has been found, s. */
+  get decidedUpTo(): number {
+    return this.remembered ? this.rememberedBase : this.nextAt - 1;
+  }
+
+  get worstMarginV(): number {
+    return worstMarginV(this.marginMeter);
+  }
+
+  /** Takes `array[from..to)`, at most `chunkSamples` of them; the first is sample `at` of the stream. */
+  advance(array: SampleArray, from: number, to: number, at: number): void {
+    const n = to - from;
+    const v = this.scratch;
+    const base = at - 1;
+    if (this.codes === null) this.learnKind(array);
+    toVolts(array, from, to, this.channel, v, 1);
+    this.feedNoise(v, n, base);
+    this.watchSpread(v, n, base);
+    if (this.rails) watchRails(this.rails, v, 1, n, base);
+    runCascade(this.cascade, v, 1, n + 1);
+    if (this.fresh) {
+      v[0] = v[1]!;
+      this.fresh = false;
+    }
+    let j = 1;
+    while (j <= n) {
+      if (this.hunting) {
+        j = this.huntOn(v, j, n, base);
+      } else {
+        j = runDetector(this.detector, v, j, n, base, this);
+        if (j <= n) this.huntAgain(base + j);
+      }
+    }
+    v[0] = v[n]!;
+    this.nextAt = at + n;
+  }
+
+  /** Samples were lost: `at` is the index of the next one to come. */
+  skipTo(at: number): void {
+    resetCascade(this.cascade);
+    breakBurst(this.noise);
+    forgetState(this.detector);
+    this.fresh = true;
+    this.nextAt = at;
+    this.riseMidAt = this.fallMidAt = NaN;
+    if (this.rails) this.rails.previousV = NaN;
+    if (this.band.mode === 'fixed') return;
+    if (Number.isNaN(this.levels.lowV)) {
+      this.huntFromNothing();
+    } else {
+      this.hunting = false;
+      this.detector.pauseAt = at + 2 * this.rateHz;
+    }
+  }
+
+  /** At fixed places of the stream: what was learnt about noise since the last one takes effect. */
+  tick(): void {
+    flushCascade(this.cascade);
+    this.noiseV = rawNoiseV(this.noise) * this.gainOfNoise;
+  }
+
+  edge(at: number, midAt: number, midStepV: number, rising: boolean, late: boolean, extremeV: number): void {
+    const { detector, levels } = this;
+    this.edgeCount++;
+    this.lastEdgeAt = at;
+    noteMargin(
+      this.marginMeter,
+      rising ? detector.releaseV - extremeV : extremeV - detector.operateV,
+      !rising,
+    );
+    if (rising) followTrough(levels, extremeV);
+    else followPeak(levels, extremeV);
+    this.learnTiming(midAt, rising);
+    const sigmaS = this.learnSlope(midStepV, rising);
+    const t = at / this.rateHz - this.delayS;
+    const midS = midAt / this.rateHz;
+    const flags = (rising ? edgeRising : 0) | (late ? edgeLate : 0);
+    pushEdge(this.edges, t, midS - this.delayS, flags);
+    enqueueEdge(
+      this.queue,
+      at,
+      midS,
+      this.delayS,
+      sigmaS,
+      extremeV,
+      flags | (this.delayKnown ? 0 : delayGuessed),
+    );
+    if (this.band.mode === 'fitted') {
+      this.refit(t);
+      detector.pauseAt = this.replaying ? Infinity : Math.ceil(at + this.quietSamples());
+    }
+  }
+
+  rejected(at: number, reachV: number, rising: boolean): void {
+    this.rejectedCount++;
+    pushRejected(this.rejectedMarks, at / this.rateHz - this.delayS);
+    if (Number.isNaN(reachV)) return;
+    noteMargin(
+      this.marginMeter,
+      rising ? reachV - this.detector.operateV : this.detector.releaseV - reachV,
+      false,
+    );
+  }
+
+  restartSpread(): void {
+    this.spreadLowV = Infinity;
+    this.spreadHighV = -Infinity;
+  }
+
+  private watchSpread(v: Float64Array, n: number, base: number): void {
+    let low = this.spreadLowV;
+    let high = this.spreadHighV;
+    for (let j = 8 - (base % 8); j <= n; j += 8) {
+      const x = v[j]!;
+      if (x < low) low = x;
+      if (x > high) high = x;
+    }
+    this.spreadLowV = low;
+    this.spreadHighV = high;
+  }
+
+  private learnKind(array: SampleArray): void {
+    this.codes = holdsCodes(array);
+    this.rails = createRailMeter(this.channel, this.codes);
+    if (!this.codes) return;
+    this.noise.quantumV = Math.abs(this.channel.voltsPerCode);
+    this.noise.quantumFixed = true;
+  }
+
+  private feedNoise(v: Float64Array, n: number, base: number): void {
+    const { burstEvery } = this;
+    let j = 1;
+    while (j <= n) {
+      const phase = (base + j) % burstEvery;
+      if (phase >= burstLength) {
+        j += burstEvery - phase;
+        continue;
+      }
+      // A burst that began before this path did is left out.
+      if (phase > 0 && this.noise.filled !== phase) {
+        j += burstLength - phase;
+        continue;
+      }
+      addToBurst(this.noise, v[j]!);
+      j++;
+    }
+  }
+
+  private learnTiming(midAt: number, rising: boolean): void {
+    const before = rising ? this.riseMidAt : this.fallMidAt;
+    if (rising) {
+      if (!Number.isNaN(before) && this.fallMidAt > before) {
+        const high = (this.fallMidAt - before) / (midAt - before);
+        this.duty = Number.isNaN(this.duty) ? high : this.duty + (high - this.duty) / 8;
+      }
+      this.riseMidAt = midAt;
+    } else {
+      this.fallMidAt = midAt;
+    }
+    if (Number.isNaN(before) || !(midAt > before)) return;
+    let period = midAt - before;
+    // Across the gap of the wheel the teeth's frequency is what the filter sees before and after it.
+    const ratio = period / this.periodSamples;
+    const whole = this.missing + 1;
+    if (this.missing > 0 && ratio > Math.sqrt(whole) && ratio < whole * Math.sqrt(whole)) period /= whole;
+    this.periodSamples = period;
+    this.delayS = delayAt(this.delays, this.rateHz / period);
+    this.delayKnown = true;
+  }
+
+  /** Standard error of this mid crossing, s: noise over slope, and no better than the sample grid on a steep flank. */
+  private learnSlope(midStepV: number, rising: boolean): number {
+    const before = rising ? this.riseStepV : this.fallStepV;
+    let step = before;
+    if (midStepV > 0) step = Number.isNaN(before) ? midStepV : before + (midStepV - before) / 4;
+    if (rising) this.riseStepV = step;
+    else this.fallStepV = step;
+    const noise = this.noiseV / step;
+    const steep = step > 0.5 * (this.levels.highV - this.levels.lowV);
+    return Math.sqrt(noise * noise + (steep ? 1 / 12 : 0)) / this.rateHz;
+  }
+
+  /** Thresholds move once they are off by 2 % of the swing; a smaller step is neither made nor reported. */
+  private refit(t: number): void {
+    if (this.band.mode !== 'fitted') return;
+    const { operateV, releaseV } = fittedThresholds(this.levels, this.band, this.noiseV);
+    const tolerance = 0.02 * (this.levels.highV - this.levels.lowV);
+    const { detector } = this;
+    if (
+      Math.abs(operateV - detector.operateV) <= tolerance &&
+      Math.abs(releaseV - detector.releaseV) <= tolerance
+    )
+      return;
+    setThresholds(detector, operateV, releaseV);
+    this.bands.push({ channel: this.channel.name, t, operateV, releaseV });
+  }
+
+  private applyThresholds(operateV: number, releaseV: number, at: number): void {
+    setThresholds(this.detector, operateV, releaseV);
+    this.bands.push({ channel: this.channel.name, t: at / this.rateHz, operateV, releaseV });
+  }
+
+  /** So long without an edge, and the levels are looked at again, samples. */
+  private quietSamples(): number {
+    if (Number.isNaN(this.periodSamples)) return 2 * this.rateHz;
+    return Math.max(64, 4 * (this.missing + 1) * this.periodSamples);
+  }
+
+  private huntFromNothing(): void {
+    this.hunting = true;
+    this.remembered = new Float64Array(256);
+    this.rememberedCount = 0;
+    this.rememberedBase = this.nextAt - 1;
+    startHunt(this.hunter, this.nextAt, 0);
+  }
+
+  private huntAgain(at: number): void {
+    this.hunting = true;
+    startHunt(this.hunter, at, (this.levels.highV - this.levels.lowV) / 4);
+  }
+
+  /** Hunting and, where levels are known, the old band side by side; an accepted edge ends the hunt. */
+  private huntOn(v: Float64Array, from: number, to: number, base: number): number {
+    const { hunter, detector } = this;
+    const stop = hunt(
+      hunter,
+      v,
+      from,
+      to,
+      base,
+      this.noiseV,
+      this.noise.quantumV,
+      Math.max(64, 2 * this.rateHz),
+    );
+    const found = hunter.found;
+    if (!Number.isNaN(detector.operateV)) {
+      const edgesBefore = this.edgeCount;
+      detector.pauseAt = Infinity;
+      const next = runDetector(detector, v, from, stop, base, this);
+      if (this.edgeCount > edgesBefore) {
+        this.hunting = false;
+        return next;
+      }
+    }
+    this.remember(v, from, stop);
+    if (found) this.adopt(v, stop, base);
+    return stop + 1;
+  }
+
+  private remember(v: Float64Array, from: number, to: number): void {
+    let kept = this.remembered;
+    if (!kept) return;
+    const most = Math.min(mostRemembered, Math.max(256, Math.ceil(rememberedS * this.rateHz)));
+    const count = this.rememberedCount + (to - from + 1);
+    if (count > most) {
+      this.remembered = null;
+      return;
+    }
+    if (this.rememberedCount === 0) kept[0] = v[from]!;
+    while (count + 1 > kept.length) {
+      const wider: Float64Array = new Float64Array(kept.length * 2);
+      wider.set(kept);
+      kept = wider;
+    }
+    kept.set(v.subarray(from, to + 1), this.rememberedCount + 1);
+    this.remembered = kept;
+    this.rememberedCount = count;
+  }
+
+  private adopt(v: Float64Array, at: number, base: number): void {
+    const { hunter, detector, levels } = this;
+    if (this.band.mode !== 'fitted') return;
+    this.hunting = false;
+    levels.lowV = hunter.foundLowV;
+    levels.highV = hunter.foundHighV;
+    const { operateV, releaseV } = fittedThresholds(levels, this.band, this.noiseV);
+    forgetState(detector);
+    if (this.remembered) {
+      this.applyThresholds(operateV, releaseV, this.rememberedBase + 1);
+      this.replaying = true;
+      detector.pauseAt = Infinity;
+      runDetector(detector, this.remembered, 1, this.rememberedCount, this.rememberedBase, this);
+      this.replaying = false;
+      this.remembered = null;
+    } else {
+      this.applyThresholds(operateV, releaseV, base + at);
+      this.placeState(v[at]!);
+    }
+    detector.pauseAt = Math.ceil(base + at + this.quietSamples());
+  }
+
+  /** The hunter has seen on which side of the new band the signal was last. */
+  private placeState(x: number): void {
+    const { hunter, detector } = this;
+    const low = x < detector.releaseV || (x <= detector.operateV && hunter.heading > 0);
+    if (low) detector.zone = x > detector.midV ? zones.lowUp : zones.low;
+    else detector.zone = x < detector.midV ? zones.highDown : zones.high;
+    detector.extremeV = low ? Math.min(x, this.levels.lowV) : Math.max(x, this.levels.highV);
+    detector.reachV = x;
+  }
+}

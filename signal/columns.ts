@@ -1,0 +1,126 @@
+/** Columns that grow by doubling: output is written by index, never as objects per sample or per edge. */
+import type { EdgeColumns, RejectedColumns, SpeedColumns } from '@/signal/pipeline-types';
+
+const startLength = 64;
+
+function grown(old: Float64Array): Float64Array {
+  const wider = new Float64Array(old.length * 2);
+  wider.set(old);
+  return wider;
+}
+
+export function createEdgeColumns(): EdgeColumns {
+  return {
+    count: 0,
+    t: new Float64Array(startLength),
+    midT: new Float64Array(startLength),
+    flags: new Uint8Array(startLength),
+  };
+}
+
+export function pushEdge(columns: EdgeColumns, t: number, midT: number, flags: number): void {
+  if (columns.count === columns.t.length) {
+    columns.t = grown(columns.t);
+    columns.midT = grown(columns.midT);
+    const flagsWider = new Uint8Array(columns.t.length);
+    flagsWider.set(columns.flags);
+    columns.flags = flagsWider;
+  }
+  columns.t[columns.count] = t;
+  columns.midT[columns.count] = midT;
+  columns.flags[columns.count] = flags;
+  columns.count++;
+}
+
+export function createRejectedColumns(): RejectedColumns {
+  return { count: 0, t: new Float64Array(startLength) };
+}
+
+export function pushRejected(columns: RejectedColumns, t: number): void {
+  if (columns.count === columns.t.length) columns.t = grown(columns.t);
+  columns.t[columns.count] = t;
+  columns.count++;
+}
+
+export function createSpeedColumns(): SpeedColumns {
+  return {
+    count: 0,
+    t: new Float64Array(startLength),
+    rpm: new Float64Array(startLength),
+    errorRpm: new Float64Array(startLength),
+  };
+}
+
+export function pushSpeed(columns: SpeedColumns, t: number, rpm: number, errorRpm: number): void {
+  if (columns.count === columns.t.length) {
+    columns.t = grown(columns.t);
+    columns.rpm = grown(columns.rpm);
+    columns.errorRpm = grown(columns.errorRpm);
+  }
+  columns.t[columns.count] = t;
+  columns.rpm[columns.count] = rpm;
+  columns.errorRpm[columns.count] = errorRpm;
+  columns.count++;
+}
+
+/** What one channel's detector saw, waiting to be merged with the other channels' in order of time. */
+export type EdgeQueue = {
+  head: number;
+  count: number;
+  /** When the band switched, samples on the stream's axis, delay not taken off: the order of merging. */
+  at: Float64Array;
+  /** Mid crossing, s, delay not taken off. */
+  midS: Float64Array;
+  delayS: Float64Array;
+  /** Standard error of the mid crossing, s; NaN where the noise is not known. */
+  sigmaS: Float64Array;
+  /** The peak before a falling, the trough before a rising edge, V. */
+  extremeV: Float64Array;
+  /** As in `EdgeColumns`, and `delayGuessed`. */
+  flags: Uint8Array;
+};
+
+/** Queue flag: no full period had been seen yet, so that the delay taken off is the one at 0 Hz. */
+export const delayGuessed = 4;
+
+export function createEdgeQueue(): EdgeQueue {
+  return {
+    head: 0,
+    count: 0,
+    at: new Float64Array(startLength),
+    midS: new Float64Array(startLength),
+    delayS: new Float64Array(startLength),
+    sigmaS: new Float64Array(startLength),
+    extremeV: new Float64Array(startLength),
+    flags: new Uint8Array(startLength),
+  };
+}
+
+export function enqueueEdge(
+  queue: EdgeQueue,
+  at: number,
+  midS: number,
+  delayS: number,
+  sigmaS: number,
+  extremeV: number,
+  flags: number,
+): void {
+  if (queue.head === queue.count) queue.head = queue.count = 0;
+  if (queue.count === queue.at.length) {
+    queue.at = grown(queue.at);
+    queue.midS = grown(queue.midS);
+    queue.delayS = grown(queue.delayS);
+    queue.sigmaS = grown(queue.sigmaS);
+    queue.extremeV = grown(queue.extremeV);
+    const wider = new Uint8Array(queue.at.length);
+    wider.set(queue.flags);
+    queue.flags = wider;
+  }
+  const i = queue.count++;
+  queue.at[i] = at;
+  queue.midS[i] = midS;
+  queue.delayS[i] = delayS;
+  queue.sigmaS[i] = sigmaS;
+  queue.extremeV[i] = extremeV;
+  queue.flags[i] = flags;
+}

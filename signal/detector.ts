@@ -1,0 +1,324 @@
+/**
+ * The hysteresis band as a state machine over one channel's volts: where it switches, where the mid level was crossed on
+ * the same flank, which peaks did not make it, and what hold-off ate.
+ *
+ * A state is left through the band: low -> above mid -> above operate (edge), or back below release (a rejected peak).
+ * Each zone is its own tight loop. The first sample, and the first arrival beyond a threshold, make no edge.
+ * Instants are linear interpolations between neighbouring samples, as (whole sample) + (fraction), so that they do not
+ * depend on where a block began.
+ */
+export const zones = {
+  unknown: 0,
+  low: 1,
+  lowUp: 2,
+  lowBack: 3,
+  high: 4,
+  highDown: 5,
+  highBack: 6,
+  hold: 7,
+} as const;
+
+export type Detector = {
+  zone: number;
+  operateV: number;
+  releaseV: number;
+  midV: number;
+  /** The trough so far (low) or the peak so far (high), V. */
+  extremeV: number;
+  /** How far an excursion through mid has come, V. */
+  reachV: number;
+  /** Last mid crossing on the flank that leaves the present state, samples; NaN where none was seen. */
+  midAt: number;
+  /** Size of the step across that crossing, V a sample. */
+  midStepV: number;
+  holdSamples: number;
+  holdEndAt: number;
+  /** State during hold-off, and where a band without hold-off would be. */
+  high: boolean;
+  wouldBeHigh: boolean;
+  /** Stream index at which the scan pauses (nothing came for long); Infinity: never. */
+  pauseAt: number;
+};
+
+export type DetectorSink = {
+  /** May set new thresholds and a new `pauseAt` on the detector. */
+  edge(at: number, midAt: number, midStepV: number, rising: boolean, late: boolean, extremeV: number): void;
+  /** @param reachV how far it came, V; NaN for a crossing that hold-off ate. @param rising true: towards operate. */
+  rejected(at: number, reachV: number, rising: boolean): void;
+};
+
+export function createDetector(holdSamples: number): Detector {
+  return {
+    zone: zones.unknown,
+    operateV: NaN,
+    releaseV: NaN,
+    midV: NaN,
+    extremeV: 0,
+    reachV: 0,
+    midAt: NaN,
+    midStepV: NaN,
+    holdSamples,
+    holdEndAt: 0,
+    high: false,
+    wouldBeHigh: false,
+    pauseAt: Infinity,
+  };
+}
+
+export function setThresholds(detector: Detector, operateV: number, releaseV: number): void {
+  detector.operateV = operateV;
+  detector.releaseV = releaseV;
+  detector.midV = (operateV + releaseV) / 2;
+}
+
+/** The band's state is unknown again: after a gap, or when levels were found anew. */
+export function forgetState(detector: Detector): void {
+  detector.zone = zones.unknown;
+  detector.midAt = NaN;
+  detector.midStepV = NaN;
+}
+
+/**
+ * Scans `v[from..to]` (ends included); `v[from - 1]` is the sample before, `v[j]` is sample `base + j` of the stream.
+ * @returns the first index not scanned: `to + 1`, or less where it paused.
+ */
+export function runDetector(
+  d: Detector,
+  v: Float64Array,
+  from: number,
+  to: number,
+  base: number,
+  sink: DetectorSink,
+): number {
+  let j = from;
+  let end = Math.min(to, d.pauseAt - base - 1);
+  let operate = d.operateV;
+  let release = d.releaseV;
+  let mid = d.midV;
+  let extreme = d.extremeV;
+  while (j <= end) {
+    switch (d.zone) {
+      case zones.low: {
+        let x = 0;
+        for (; j <= end; j++) {
+          x = v[j]!;
+          if (x > mid) break;
+          if (x < extreme) extreme = x;
+        }
+        if (j > end) break;
+        crossMid(d, v, j, base, mid);
+        d.reachV = x;
+        d.zone = zones.lowUp;
+        break;
+      }
+      case zones.lowUp: {
+        let x = 0;
+        for (; j <= end; j++) {
+          x = v[j]!;
+          if (x > operate || x <= mid) break;
+          if (x > d.reachV) d.reachV = x;
+        }
+        if (j > end) break;
+        if (x > operate) {
+          d.zone = zones.high;
+          d.extremeV = x;
+          accept(d, v, j, base, operate, true, extreme, sink);
+          operate = d.operateV;
+          release = d.releaseV;
+          mid = d.midV;
+          extreme = x;
+          j++;
+          end = Math.min(to, d.pauseAt - base - 1);
+        } else {
+          d.zone = zones.lowBack;
+        }
+        break;
+      }
+      case zones.lowBack: {
+        let x = 0;
+        for (; j <= end; j++) {
+          x = v[j]!;
+          if (x > mid || x < release) break;
+        }
+        if (j > end) break;
+        if (x > mid) {
+          const reach = d.reachV;
+          crossMid(d, v, j, base, mid);
+          d.reachV = Math.max(reach, x);
+          d.zone = zones.lowUp;
+        } else {
+          sink.rejected(d.midAt, d.reachV, true);
+          d.zone = zones.low;
+        }
+        break;
+      }
+      case zones.high: {
+        let x = 0;
+        for (; j <= end; j++) {
+          x = v[j]!;
+          if (x < mid) break;
+          if (x > extreme) extreme = x;
+        }
+        if (j > end) break;
+        crossMid(d, v, j, base, mid);
+        d.reachV = x;
+        d.zone = zones.highDown;
+        break;
+      }
+      case zones.highDown: {
+        let x = 0;
+        for (; j <= end; j++) {
+          x = v[j]!;
+          if (x < release || x >= mid) break;
+          if (x < d.reachV) d.reachV = x;
+        }
+        if (j > end) break;
+        if (x < release) {
+          d.zone = zones.low;
+          d.extremeV = x;
+          accept(d, v, j, base, release, false, extreme, sink);
+          operate = d.operateV;
+          release = d.releaseV;
+          mid = d.midV;
+          extreme = x;
+          j++;
+          end = Math.min(to, d.pauseAt - base - 1);
+        } else {
+          d.zone = zones.highBack;
+        }
+        break;
+      }
+      case zones.highBack: {
+        let x = 0;
+        for (; j <= end; j++) {
+          x = v[j]!;
+          if (x < mid || x > operate) break;
+        }
+        if (j > end) break;
+        if (x < mid) {
+          const reach = d.reachV;
+          crossMid(d, v, j, base, mid);
+          d.reachV = Math.min(reach, x);
+          d.zone = zones.highDown;
+        } else {
+          sink.rejected(d.midAt, d.reachV, false);
+          d.zone = zones.high;
+        }
+        break;
+      }
+      case zones.hold: {
+        d.extremeV = extreme;
+        j = runHold(d, v, j, end, base, sink);
+        operate = d.operateV;
+        release = d.releaseV;
+        mid = d.midV;
+        extreme = d.extremeV;
+        end = Math.min(to, d.pauseAt - base - 1);
+        break;
+      }
+      default: {
+        for (; j <= end; j++) {
+          const x = v[j]!;
+          if (x > operate || x < release) {
+            d.zone = x > operate ? zones.high : zones.low;
+            d.midAt = NaN;
+            d.midStepV = NaN;
+            extreme = x;
+            j++;
+            break;
+          }
+        }
+      }
+    }
+  }
+  d.extremeV = extreme;
+  return j;
+}
+
+/** Between `v[j - 1]` and `v[j]`, as an instant of the stream in samples. */
+function crossing(v: Float64Array, j: number, base: number, level: number): number {
+  const before = v[j - 1]!;
+  const step = v[j]! - before;
+  const share = step === 0 ? 1 : Math.min(1, Math.max(0, (level - before) / step));
+  return base + (j - 1) + share;
+}
+
+function crossMid(d: Detector, v: Float64Array, j: number, base: number, mid: number): void {
+  d.midAt = crossing(v, j, base, mid);
+  d.midStepV = Math.abs(v[j]! - v[j - 1]!);
+}
+
+function accept(
+  d: Detector,
+  v: Float64Array,
+  j: number,
+  base: number,
+  level: number,
+  rising: boolean,
+  extremeV: number,
+  sink: DetectorSink,
+): void {
+  emit(d, crossing(v, j, base, level), rising, false, extremeV, sink);
+}
+
+function emit(
+  d: Detector,
+  at: number,
+  rising: boolean,
+  late: boolean,
+  extremeV: number,
+  sink: DetectorSink,
+): void {
+  const midAt = d.midAt <= at ? d.midAt : at;
+  const midStepV = d.midStepV;
+  d.midAt = NaN;
+  d.midStepV = NaN;
+  if (d.holdSamples > 0) {
+    d.zone = zones.hold;
+    d.holdEndAt = at + d.holdSamples;
+    d.high = rising;
+    d.wouldBeHigh = rising;
+  }
+  sink.edge(at, midAt, midStepV, rising, late, extremeV);
+}
+
+/** Until the hold-off ends; returns the first index not scanned. Once it has ended without an edge the sample is scanned again. */
+function runHold(
+  d: Detector,
+  v: Float64Array,
+  from: number,
+  end: number,
+  base: number,
+  sink: DetectorSink,
+): number {
+  for (let j = from; j <= end; j++) {
+    const x = v[j]!;
+    const before = v[j - 1]!;
+    if (d.high ? before >= d.midV && x < d.midV : before <= d.midV && x > d.midV)
+      crossMid(d, v, j, base, d.midV);
+    const crosses = d.wouldBeHigh ? x < d.releaseV : x > d.operateV;
+    const at = crosses ? crossing(v, j, base, d.wouldBeHigh ? d.releaseV : d.operateV) : NaN;
+    if (base + j >= d.holdEndAt) {
+      const beyond = d.high ? x < d.releaseV : x > d.operateV;
+      if (beyond) {
+        const late = !(crosses && at >= d.holdEndAt);
+        const extremeV = d.extremeV;
+        const rising = !d.high;
+        d.zone = rising ? zones.high : zones.low;
+        d.extremeV = x;
+        emit(d, late ? d.holdEndAt : at, rising, late, extremeV, sink);
+        return j + 1;
+      }
+      if (d.high) d.zone = x < d.midV ? zones.highDown : zones.high;
+      else d.zone = x > d.midV ? zones.lowUp : zones.low;
+      d.reachV = x;
+      return j;
+    }
+    if (crosses) {
+      d.wouldBeHigh = !d.wouldBeHigh;
+      sink.rejected(at, NaN, d.wouldBeHigh);
+    }
+    if (d.high ? x > d.extremeV : x < d.extremeV) d.extremeV = x;
+  }
+  return end + 1;
+}

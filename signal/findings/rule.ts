@@ -1,0 +1,57 @@
+/**
+ * What a rule of findings is: it looks at what the channels and the motion have learnt, at ticks (fixed places of the
+ * stream, 20 a second) and at gaps, and holds its own findings. Rules know nothing of each other.
+ */
+import type { ChannelPath } from '@/signal/channel-path';
+import type { Motion } from '@/signal/motion';
+import type { Finding, RigSetup, Settings } from '@/signal/model';
+
+export type RuleContext = {
+  rig: RigSetup;
+  settings: Settings;
+  rateHz: number;
+  paths: readonly ChannelPath[];
+  motion: Motion;
+  /** Index into `paths` of the channel that speed comes from. */
+  primary: number;
+};
+
+export type RuleGap = { fromS: number; toS: number; lostSamples: number; estimated: boolean };
+
+export interface FindingRule {
+  /** @param nowS stream time of the tick. */
+  tick(nowS: number): void;
+  gap?(gap: RuleGap): void;
+  readonly latches: readonly FindingLatch[];
+}
+
+/**
+ * One finding that opens, lasts and closes: it stays for `holdS` after its cause was last seen, so that it does not
+ * flicker, and then ends at the instant of that last sight.
+ */
+export class FindingLatch {
+  open: Finding | null = null;
+  closed: Finding[] = [];
+  private lastSeenS = -Infinity;
+  private readonly holdS: number;
+
+  constructor(holdS: number) {
+    this.holdS = holdS;
+  }
+
+  /** The cause is there now. Begin and place to look at stay as they were when it opened. */
+  raise(finding: Omit<Finding, 'to'>, seenS: number): void {
+    this.lastSeenS = seenS;
+    this.open = this.open
+      ? { ...finding, from: this.open.from, at: this.open.at, to: null }
+      : { ...finding, to: null };
+  }
+
+  /** @returns true where it was closed by this call. */
+  rest(nowS: number): boolean {
+    if (!this.open || nowS - this.lastSeenS < this.holdS) return false;
+    this.closed.push({ ...this.open, to: Math.max(this.open.from, this.lastSeenS) });
+    this.open = null;
+    return true;
+  }
+}

@@ -1,0 +1,366 @@
+/**
+ * From the edges of all channels, in order of time, to count, direction and speed.
+ *
+ * Speed comes from whole cycles: mid crossings on rising edges of the first channel (A or U). Where a ring of states is
+ * known, an interval counts only if exactly one cycle was passed in it, so that dither at one edge makes no speed.
+ */
+import { delayGuessed, pushSpeed } from '@/signal/columns';
+import { createDirectionTracker, forgetLevels, forgetSense, stepTo } from '@/signal/direction-tracker';
+import type { DirectionTracker } from '@/signal/direction-tracker';
+import { createGapSync, judgeInterval, judgeWaiting, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
+import type { GapSync } from '@/signal/gap-sync';
+import type { Direction, RigSetup, Settings } from '@/signal/model';
+import { edgeRising } from '@/signal/pipeline-types';
+import type { DirectionChange, SpeedColumns } from '@/signal/pipeline-types';
+import { SpeedMeter } from '@/signal/speed-meter';
+import { illegalStep, stepTable } from '@/signal/step-table';
+import { mostPositions, WheelFaceMeter } from '@/signal/wheel-face-meter';
+
+export type MotionEdge = {
+  /** Order of merging, samples; delay not taken off. */
+  at: number;
+  midS: number;
+  delayS: number;
+  sigmaS: number;
+  extremeV: number;
+  flags: number;
+};
+
+export class Motion {
+  readonly sync: GapSync;
+  readonly face: WheelFaceMeter | null;
+  readonly tracker: DirectionTracker | null;
+  direction: Direction = 'unknown';
+  state: 'running' | 'stopped' | 'unknown' = 'unknown';
+  pulses = 0;
+  extraPositions = 0;
+  countsSinceS: number;
+  /** Signed; NaN where not known. */
+  rpm = NaN;
+  errorRpm = NaN;
+  /** Raw axis, s, delay taken off; NaN before any edge. */
+  lastEdgeS = NaN;
+  lastRiseS = NaN;
+  /** Circular mean of how far A leads B. */
+  private phaseCos = 0;
+  private phaseSin = 0;
+
+  readonly rig: RigSetup;
+  private readonly rateHz: number;
+  private readonly stoppedAfterSamples: number;
+  private readonly stoppedAfterS: number;
+  private readonly meter: SpeedMeter;
+  private readonly speed: SpeedColumns;
+  private readonly directions: DirectionChange[];
+  private quietSince: number;
+  private quietSinceS: number;
+  private countsReset = false;
+  private speedUnknown = false;
+  private netAtRise = NaN;
+  private firstGuessed = false;
+  private firstMidS = NaN;
+  /** Intervals whose number of positions waits for the next tooth. */
+  private waiting: { t: number; sigmaS: number } | null = null;
+  private place = 0;
+  private troughV = NaN;
+  private swingV = NaN;
+  /** The last tooth, until the next tells its swing and confirms how many positions it stands after the one before. */
+  private held: { t: number; spans: number; position: number } | null = null;
+  /** Plain wheel: position of the last tooth placed, counted since the count began. */
+  private relative = -1;
+  private heldIntervalS = NaN;
+  private intervalBeforeS = NaN;
+  private lastARise = NaN;
+  private aPeriodS = NaN;
+  private lastStepS = NaN;
+  /** Largest share of a cycle that one state of the ring took lately. */
+  private widestState = NaN;
+
+  constructor(
+    rig: RigSetup,
+    settings: Settings,
+    rateHz: number,
+    startIndex: number,
+    speed: SpeedColumns,
+    directions: DirectionChange[],
+  ) {
+    const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
+    const table = stepTable(rig.sensing);
+    this.rig = rig;
+    this.rateHz = rateHz;
+    this.stoppedAfterS = settings.speed.stoppedAfterS;
+    this.stoppedAfterSamples = settings.speed.stoppedAfterS * rateHz;
+    this.meter = new SpeedMeter(settings.speed.method, settings.speed.windowS, pulsesPerTurn, gearRatio);
+    this.tracker = table ? createDirectionTracker(table) : null;
+    this.sync = createGapSync(pulsesPerTurn, table ? 0 : missingPulses);
+    this.face = pulsesPerTurn <= mostPositions ? new WheelFaceMeter(pulsesPerTurn, missingPulses) : null;
+    this.speed = speed;
+    this.directions = directions;
+    this.countsSinceS = startIndex / rateHz;
+    this.quietSince = startIndex;
+    this.quietSinceS = startIndex / rateHz;
+    directions.push({ t: this.countsSinceS, value: 'unknown' });
+    this.openUnknown(this.countsSinceS);
+  }
+
+  get positions(): number {
+    return this.pulses + this.extraPositions;
+  }
+
+  /** Synchronous with the wheel's gap; a plain wheel needs none. */
+  get synced(): boolean {
+    return this.sync.missing === 0 || this.sync.state === 'synced';
+  }
+
+  /** Degrees by which A leads B, -180 to 180; NaN where not known. */
+  get phaseDeg(): number {
+    if (this.phaseCos === 0 && this.phaseSin === 0) return NaN;
+    return (Math.atan2(this.phaseSin, this.phaseCos) * 180) / Math.PI;
+  }
+
+  /** Nothing came up to sample `at`: the shaft may have been found stopped on the way. */
+  quietUpTo(at: number): void {
+    if (this.state === 'stopped' || at <= this.quietSince + this.stoppedAfterSamples) return;
+    const t = this.quietSinceS + this.stoppedAfterS;
+    this.state = 'stopped';
+    this.forgetTeeth();
+    this.rpm = 0;
+    this.errorRpm = NaN;
+    this.speedUnknown = false;
+    pushSpeed(this.speed, t, 0, NaN);
+    this.turnTo('stopped', t);
+  }
+
+  /** Samples were lost from `fromS` to `toS`; the next sample is `at`. */
+  gap(fromS: number, toS: number, at: number): void {
+    this.forgetTeeth();
+    if (this.tracker) forgetLevels(this.tracker);
+    this.state = 'unknown';
+    this.turnTo('unknown', fromS);
+    this.openUnknown(fromS);
+    this.quietSince = at;
+    this.quietSinceS = toS;
+    this.lastRiseS = NaN;
+    this.countsReset = true;
+  }
+
+  /** An edge of the channel with the place `role` in the arrangement (0 for A or U). */
+  edge(edge: MotionEdge, role: number): void {
+    this.quietUpTo(edge.at);
+    const t = edge.midS - edge.delayS;
+    const rising = (edge.flags & edgeRising) !== 0;
+    this.quietSince = edge.at;
+    this.quietSinceS = t;
+    this.lastEdgeS = t;
+    if (this.countsReset) {
+      this.countsReset = false;
+      this.countsSinceS = t;
+    }
+    if (this.state === 'stopped') {
+      this.state = 'unknown';
+      if (this.tracker) forgetSense(this.tracker);
+      this.turnTo('unknown', t);
+      this.openUnknown(t);
+    }
+    if (this.tracker) this.step(this.tracker, role, rising, t);
+    if (role === 0) {
+      if (rising) this.rise(edge, t);
+      else this.swingV = edge.extremeV - this.troughV;
+    } else if (role === 1 && rising) {
+      this.learnPhase(t);
+    }
+  }
+
+  /** Largest number of positions that can still be silent after the last edge. */
+  silentPositions(): number {
+    if (this.tracker) {
+      const even = 1 / this.tracker.table.stepsPerCycle;
+      return Number.isNaN(this.widestState) ? 2 * even : Math.min(1, Math.max(even, 1.1 * this.widestState));
+    }
+    return noGapAhead(this.sync) ? 1 : this.sync.missing + 1;
+  }
+
+  /** Falling bound, rpm, at `nowS`; NaN before any edge. */
+  speedAtMostRpm(nowS: number): number {
+    const since = this.tracker ? this.lastEdgeS : this.lastRiseS;
+    if (Number.isNaN(this.lastEdgeS)) return NaN;
+    const elapsed =
+      this.state === 'stopped'
+        ? this.stoppedAfterS
+        : nowS - (Number.isNaN(since) ? this.quietSinceS : Math.max(since, 0));
+    return (
+      (60 * this.silentPositions()) /
+      (this.rig.wheel.pulsesPerTurn * this.rig.wheel.gearRatio * Math.max(elapsed, 0))
+    );
+  }
+
+  /** Angle of the wheel at `nowS`, degrees; NaN where not known. */
+  angleDeg(nowS: number): number {
+    if (Number.isNaN(this.lastRiseS) || !this.synced) return NaN;
+    const { pulsesPerTurn, gearRatio } = this.rig.wheel;
+    const position = this.sync.missing > 0 ? this.sync.position : this.relative + 1;
+    const since = Number.isNaN(this.rpm)
+      ? 0
+      : (this.rpm / 60) * gearRatio * pulsesPerTurn * (nowS - this.lastRiseS);
+    const angle =
+      ((this.reversed ? -1 : 1) * (position + Math.min(1, Math.abs(since))) * 360) / pulsesPerTurn;
+    return ((angle % 360) + 360) % 360;
+  }
+
+  /** Positions are counted in the direction of travel; on the wheel itself they then run backwards. */
+  get reversed(): boolean {
+    return this.direction === 'reverse';
+  }
+
+  private step(tracker: DirectionTracker, role: number, rising: boolean, t: number): void {
+    const step = stepTo(tracker, role, rising);
+    if (step === illegalStep) {
+      this.netAtRise = NaN;
+      return;
+    }
+    this.pulses = tracker.netSteps / tracker.table.stepsPerCycle;
+    if (step !== 0 && this.state === 'running') {
+      const share = (t - this.lastStepS) / this.aPeriodS;
+      if (share > 0 && share < 1)
+        this.widestState = Math.max(share, Number.isNaN(this.widestState) ? 0 : this.widestState * 0.99);
+    }
+    this.lastStepS = t;
+    if (tracker.sense === 0) return;
+    const value: Direction = tracker.sense > 0 ? 'forward' : 'reverse';
+    if (value === this.direction) return;
+    if (this.direction === 'forward' || this.direction === 'reverse') {
+      this.forgetTeeth();
+      this.openUnknown(t);
+    } else if (!Number.isNaN(this.rpm)) {
+      this.rpm = Math.abs(this.rpm) * tracker.sense;
+    }
+    this.turnTo(value, t);
+  }
+
+  private rise(edge: MotionEdge, t: number): void {
+    const guessed = (edge.flags & delayGuessed) !== 0;
+    if (this.tracker && !this.wholeCycle(this.tracker)) {
+      this.meter.reset();
+      this.openUnknown(t);
+    }
+    if (this.meter.count === 1 && this.firstGuessed && !guessed) {
+      this.meter.retimeFirst(this.firstMidS - edge.delayS);
+      this.lastRiseS = this.firstMidS - edge.delayS;
+    }
+    if (!this.tracker) this.pulses++;
+    this.showHeld(this.swingV, t);
+    if (this.meter.count === 0) {
+      this.held = { t, spans: 1, position: 0 };
+      this.firstGuessed = guessed;
+      this.firstMidS = edge.midS;
+      this.meter.add(t, this.place, edge.sigmaS);
+    } else {
+      this.interval(t - this.lastRiseS, t, edge.sigmaS);
+    }
+    if (!Number.isNaN(this.lastARise)) this.aPeriodS = t - this.lastARise;
+    this.lastARise = t;
+    this.lastRiseS = t;
+    this.troughV = edge.extremeV;
+    this.swingV = NaN;
+  }
+
+  private interval(seconds: number, t: number, sigmaS: number): void {
+    if (this.waiting) {
+      const { waiting } = this;
+      this.waiting = null;
+      this.advance(judgeWaiting(this.sync, seconds), waiting.t, waiting.sigmaS);
+      this.showHeld(this.swingV, t);
+    }
+    const spans = judgeInterval(this.sync, seconds);
+    if (spans === 0) this.waiting = { t, sigmaS };
+    else this.advance(spans, t, sigmaS);
+  }
+
+  private advance(spans: number, t: number, sigmaS: number): void {
+    this.place += spans;
+    if (this.sync.missing > 0) this.extraPositions += moveOn(this.sync, spans);
+    this.held = { t, spans, position: this.sync.position };
+    if (!this.meter.add(t, this.place, sigmaS)) return;
+    const sign = this.direction === 'reverse' ? -1 : 1;
+    this.rpm = sign * this.meter.latest.rpm;
+    this.errorRpm = this.meter.latest.errorRpm;
+    this.state = 'running';
+    this.speedUnknown = false;
+    pushSpeed(this.speed, t, this.rpm, this.errorRpm);
+  }
+
+  /** Places the held tooth on the wheel face, now that the next one has come at `nextS`. */
+  private showHeld(swingV: number, nextS: number): void {
+    const { held, face } = this;
+    if (!held) return;
+    this.held = null;
+    if (this.sync.missing > 0) {
+      if (this.sync.state === 'synced') face?.place(held.position, held.spans, held.t, swingV);
+      else face?.lose(false);
+      return;
+    }
+    const nextIntervalS = nextS - held.t;
+    const spans = emptyPlaces(this.intervalBeforeS, this.heldIntervalS, nextIntervalS) + 1;
+    this.intervalBeforeS = this.heldIntervalS / spans;
+    this.heldIntervalS = nextIntervalS;
+    this.relative = (this.relative + spans) % this.sync.positions;
+    face?.place(this.relative, spans, held.t, swingV);
+  }
+
+  private wholeCycle(tracker: DirectionTracker): boolean {
+    const before = this.netAtRise;
+    this.netAtRise = tracker.netSteps;
+    return this.meter.count === 0 || Math.abs(tracker.netSteps - before) === tracker.table.stepsPerCycle;
+  }
+
+  private learnPhase(t: number): void {
+    if (Number.isNaN(this.aPeriodS) || this.state !== 'running') return;
+    const turns = (t - this.lastARise) / this.aPeriodS;
+    if (!(turns >= 0 && turns < 1)) return;
+    const share = this.phaseCos === 0 && this.phaseSin === 0 ? 1 : 1 / 16;
+    this.phaseCos += share * (Math.cos(2 * Math.PI * turns) - this.phaseCos);
+    this.phaseSin += share * (Math.sin(2 * Math.PI * turns) - this.phaseSin);
+  }
+
+  private forgetTeeth(): void {
+    this.meter.reset();
+    resetSync(this.sync);
+    this.waiting = null;
+    this.netAtRise = NaN;
+    this.held = null;
+    this.heldIntervalS = NaN;
+    this.intervalBeforeS = NaN;
+    this.relative = -1;
+    this.lastStepS = NaN;
+    this.lastARise = NaN;
+    this.aPeriodS = NaN;
+    this.phaseCos = this.phaseSin = 0;
+    this.face?.lose(this.sync.missing === 0);
+  }
+
+  private turnTo(value: Direction, t: number): void {
+    if (value === this.direction) return;
+    this.direction = value;
+    this.directions.push({ t, value });
+  }
+
+  private openUnknown(t: number): void {
+    this.rpm = NaN;
+    this.errorRpm = NaN;
+    if (this.state === 'running') this.state = 'unknown';
+    if (this.speedUnknown) return;
+    this.speedUnknown = true;
+    pushSpeed(this.speed, t, NaN, NaN);
+  }
+}
+
+/**
+ * Places of a plain wheel that stayed empty in the interval `here`, told by its neighbours: they agree within 40 %, and it
+ * is at least 1.6 times their mean.
+ */
+function emptyPlaces(before: number, here: number, after: number): number {
+  if (Number.isNaN(before) || Number.isNaN(here)) return 0;
+  if (Math.max(before, after) > 1.4 * Math.min(before, after)) return 0;
+  const ratio = here / ((before + after) / 2);
+  return ratio < 1.6 ? 0 : Math.round(ratio) - 1;
+}

@@ -1,0 +1,190 @@
+/**
+ * The one signal path: live, replay, rerun, proof and preview all run it.
+ *
+ * Samples go through in chunks that end at ticks (20 a second, at fixed places of the stream) or where a block ends. What is
+ * decided depends on samples and ticks only, so that splitting a stream into blocks anywhere changes nothing, bit for bit.
+ */
+import { ChannelPath, chunkSamples } from '@/signal/channel-path';
+import { createSpeedColumns } from '@/signal/columns';
+import { designFilters } from '@/signal/filter-design';
+import type { FindingRule } from '@/signal/findings/rule';
+import { createRules } from '@/signal/findings/rules';
+import type { Channel, Finding, Result, SampleArray } from '@/signal/model';
+import { Motion } from '@/signal/motion';
+import type { MotionEdge } from '@/signal/motion';
+import type {
+  Pipeline,
+  PipelineOptions,
+  PipelineOutput,
+  PipelineStatus,
+  SetupIssue,
+} from '@/signal/pipeline-types';
+import { statusOf } from '@/signal/status';
+import { neededRoles, validateSetup } from '@/signal/validate-setup';
+
+/**
+ * Builds the signal path of a stream.
+ * @returns the first thing that is wrong with rig, settings, rate or channels as an issue; never throws for these.
+ */
+export function createPipeline(options: PipelineOptions): Result<Pipeline, SetupIssue> {
+  const issue = validateSetup(options.rig, options.settings, options.rateHz, options.channels);
+  if (issue) return { ok: false, issue };
+  return { ok: true, value: new SignalPipeline(options) };
+}
+
+class SignalPipeline implements Pipeline {
+  readonly output: PipelineOutput;
+  private readonly rateHz: number;
+  private readonly paths: ChannelPath[];
+  private readonly motion: Motion;
+  /** Place of each path in the sensing arrangement; -1: none. */
+  private readonly roles: number[];
+  private readonly moving: ChannelPath[];
+  private readonly rules: FindingRule[];
+  private readonly tickSamples: number;
+  private readonly edge: MotionEdge = { at: 0, midS: 0, delayS: 0, sigmaS: 0, extremeV: 0, flags: 0 };
+  private nextAt: number;
+
+  constructor({ rig, settings, rateHz, channels, startIndex }: PipelineOptions) {
+    const sections = designFilters(settings.filter, rateHz);
+    const bands: PipelineOutput['bands'] = [];
+    const speed = createSpeedColumns();
+    const directions: PipelineOutput['directions'] = [];
+    const { pulsesPerTurn, missingPulses } = rig.wheel;
+    this.rateHz = rateHz;
+    this.nextAt = startIndex;
+    this.tickSamples = Math.max(1, Math.round(rateHz / 20));
+    this.paths = channels.map(
+      (name) =>
+        new ChannelPath({
+          channel: rig.channels.find((channel) => channel.name === name) as Channel,
+          band: settings.band,
+          sections,
+          rateHz,
+          startIndex,
+          holdoffS: settings.holdoffS,
+          missingPulses: rig.sensing === 'single' ? missingPulses : 0,
+          teethPerTurn: Math.max(1, pulsesPerTurn - missingPulses),
+          bands,
+        }),
+    );
+    const needed: readonly string[] = neededRoles(rig);
+    this.roles = this.paths.map(({ channel }, index) => {
+      const place = needed.indexOf(channel.role);
+      const first = this.paths.findIndex((other) => other.channel.role === channel.role);
+      return first === index ? place : -1;
+    });
+    this.moving = this.paths.filter((_, index) => this.roles[index]! >= 0);
+    this.motion = new Motion(rig, settings, rateHz, startIndex, speed, directions);
+    this.output = {
+      edges: this.paths.map(({ edges }) => edges),
+      rejected: this.paths.map(({ rejectedMarks }) => rejectedMarks),
+      speed,
+      directions,
+      bands,
+      gaps: [],
+      closedFindings: [],
+    };
+    this.rules = createRules({
+      rig,
+      settings,
+      rateHz,
+      paths: this.paths,
+      motion: this.motion,
+      primary: this.roles.indexOf(0),
+    });
+  }
+
+  process(arrays: readonly SampleArray[], count: number): void {
+    if (arrays.length !== this.paths.length) {
+      throw new Error(`process wants ${this.paths.length} arrays, one a channel, and got ${arrays.length}`);
+    }
+    let from = 0;
+    while (from < count) {
+      const toTick = this.tickSamples - (this.nextAt % this.tickSamples);
+      const size = Math.min(count - from, toTick, chunkSamples);
+      for (let c = 0; c < this.paths.length; c++)
+        this.paths[c]!.advance(arrays[c]!, from, from + size, this.nextAt);
+      from += size;
+      this.nextAt += size;
+      this.merge();
+      if (size === toTick) this.tick();
+    }
+  }
+
+  skip(lostSamples: number, estimated: boolean): void {
+    if (!(lostSamples > 0)) return;
+    const fromS = this.nextAt / this.rateHz;
+    this.nextAt += Math.round(lostSamples);
+    const toS = this.nextAt / this.rateHz;
+    for (const path of this.paths) path.skipTo(this.nextAt);
+    this.merge();
+    this.motion.gap(fromS, toS, this.nextAt);
+    const gap = { fromS, toS, lostSamples: Math.round(lostSamples), estimated };
+    this.output.gaps.push(gap);
+    for (const rule of this.rules) rule.gap?.(gap);
+    this.collectClosed();
+  }
+
+  drain(): void {
+    const { output } = this;
+    for (const columns of output.edges) columns.count = 0;
+    for (const columns of output.rejected) columns.count = 0;
+    output.speed.count = 0;
+    output.directions.length = 0;
+    output.bands.length = 0;
+    output.gaps.length = 0;
+    output.closedFindings.length = 0;
+  }
+
+  status(): PipelineStatus {
+    const findings: Finding[] = [];
+    for (const rule of this.rules) for (const { open } of rule.latches) if (open) findings.push(open);
+    return statusOf(this.motion, this.paths, this.roles.indexOf(0), this.nextAt / this.rateHz, findings);
+  }
+
+  /** Hands the channels' edges to the motion in order of time, as far as every channel has decided. */
+  private merge(): void {
+    let decided = Infinity;
+    for (const path of this.moving) decided = Math.min(decided, path.decidedUpTo);
+    const { edge } = this;
+    for (;;) {
+      let earliest = -1;
+      let at = Infinity;
+      for (let c = 0; c < this.paths.length; c++) {
+        const { queue } = this.paths[c]!;
+        if (this.roles[c]! < 0 || queue.head === queue.count || queue.at[queue.head]! >= at) continue;
+        at = queue.at[queue.head]!;
+        earliest = c;
+      }
+      if (earliest < 0 || at > decided) break;
+      const { queue } = this.paths[earliest]!;
+      const i = queue.head++;
+      edge.at = at;
+      edge.midS = queue.midS[i]!;
+      edge.delayS = queue.delayS[i]!;
+      edge.sigmaS = queue.sigmaS[i]!;
+      edge.extremeV = queue.extremeV[i]!;
+      edge.flags = queue.flags[i]!;
+      this.motion.edge(edge, this.roles[earliest]!);
+    }
+    if (decided < Infinity) this.motion.quietUpTo(decided);
+  }
+
+  private tick(): void {
+    for (const path of this.paths) path.tick();
+    const nowS = this.nextAt / this.rateHz;
+    for (const rule of this.rules) rule.tick(nowS);
+    this.collectClosed();
+  }
+
+  private collectClosed(): void {
+    for (const rule of this.rules) {
+      for (const latch of rule.latches) {
+        if (latch.closed.length === 0) continue;
+        this.output.closedFindings.push(...latch.closed);
+        latch.closed.length = 0;
+      }
+    }
+  }
+}

@@ -1,0 +1,100 @@
+/**
+ * What a chain of sections does to a sine: gain, phase, phase delay, and how much white noise it lets through.
+ *
+ * The phase is summed section by section and never wraps: for a stable section the denominator
+ * 1 + a1 e^-jw + a2 e^-2jw is a product of two factors with positive real part, so that its argument lies strictly
+ * within (-pi, pi); the numerators used here are symmetric or antisymmetric, so that theirs is linear in w. The phase is
+ * thus anchored where the filter passes: at 0 Hz for a low pass and a notch, at the centre for a band pass, at half the
+ * rate for a high pass.
+ */
+import type { Section } from '@/signal/filter-design';
+
+export type Response = { magnitude: number; phaseRad: number };
+
+/** Response of the chain at `hz` (0 to half the rate). */
+export function responseAt(sections: readonly Section[], hz: number, rateHz: number): Response {
+  const w = (2 * Math.PI * hz) / rateHz;
+  const cos1 = Math.cos(w);
+  const sin1 = Math.sin(w);
+  const cos2 = Math.cos(2 * w);
+  const sin2 = Math.sin(2 * w);
+  let magnitude = 1;
+  let phaseRad = 0;
+  for (const { b0, b1, b2, a1, a2 } of sections) {
+    const re = 1 + a1 * cos1 + a2 * cos2;
+    const im = -a1 * sin1 - a2 * sin2;
+    magnitude *= Math.hypot(b0 + b1 * cos1 + b2 * cos2, b1 * sin1 + b2 * sin2) / Math.hypot(re, im);
+    phaseRad += numeratorPhase(b0, b1, b2, w, cos1) - Math.atan2(im, re);
+  }
+  return { magnitude, phaseRad };
+}
+
+function numeratorPhase(b0: number, b1: number, b2: number, w: number, cos1: number): number {
+  if (b0 * b2 < 0) return Math.PI / 2 - w;
+  return b1 + 2 * b0 * cos1 < 0 ? Math.PI - w : -w;
+}
+
+/** `-arg H(f) / (2 pi f)`, s; negative where the phase leads. */
+export function phaseDelayS(sections: readonly Section[], hz: number, rateHz: number): number {
+  return sections.length === 0 ? 0 : -responseAt(sections, hz, rateHz).phaseRad / (2 * Math.PI * hz);
+}
+
+/**
+ * Delay at 0 Hz, s, of a chain that passes 0 Hz (its group delay there); 0 for a chain that does not, since its phase
+ * delay has no limit at 0 Hz.
+ */
+export function dcDelayS(sections: readonly Section[], rateHz: number): number {
+  let samples = 0;
+  for (const { b0, b1, b2, a1, a2 } of sections) {
+    const gain = b0 + b1 + b2;
+    if (Math.abs(gain) < 1e-12 * (Math.abs(b0) + Math.abs(b1) + Math.abs(b2))) return 0;
+    samples += (b1 + 2 * b2) / gain - (a1 + 2 * a2) / (1 + a1 + a2);
+  }
+  return samples / rateHz;
+}
+
+/** White noise of 1 V rms over 0 to half the rate comes out with this rms, V: the root of the mean of |H|^2 over that band. */
+export function noiseGain(sections: readonly Section[], rateHz: number): number {
+  if (sections.length === 0) return 1;
+  const nyquist = rateHz / 2;
+  const steps = 4000;
+  const decades = 7;
+  let power = 0;
+  let lastHz = 0;
+  let last = responseAt(sections, nyquist * 10 ** -decades, rateHz).magnitude ** 2;
+  for (let k = 0; k <= steps; k++) {
+    const hz = nyquist * 10 ** (-decades * (1 - k / steps));
+    const here = responseAt(sections, hz, rateHz).magnitude ** 2;
+    power += ((last + here) / 2) * (hz - lastHz);
+    lastHz = hz;
+    last = here;
+  }
+  return Math.sqrt(power / nyquist);
+}
+
+/** Phase delay as a function of frequency that is asked at every edge: exact at a node, straight within 2 % around it. */
+export type DelayCurve = {
+  sections: readonly Section[];
+  rateHz: number;
+  nodeHz: number;
+  nodeS: number;
+  slopeSPerHz: number;
+};
+
+export function createDelayCurve(sections: readonly Section[], rateHz: number): DelayCurve {
+  return { sections, rateHz, nodeHz: 0, nodeS: 0, slopeSPerHz: 0 };
+}
+
+export function delayAt(curve: DelayCurve, hz: number): number {
+  if (curve.sections.length === 0) return 0;
+  const limited = Math.min(hz, curve.rateHz * 0.499);
+  if (Math.abs(limited - curve.nodeHz) > 0.02 * curve.nodeHz) {
+    const step = limited * 1e-3;
+    const below = phaseDelayS(curve.sections, limited - step, curve.rateHz);
+    const above = phaseDelayS(curve.sections, limited + step, curve.rateHz);
+    curve.nodeHz = limited;
+    curve.nodeS = phaseDelayS(curve.sections, limited, curve.rateHz);
+    curve.slopeSPerHz = (above - below) / (2 * step);
+  }
+  return curve.nodeS + (limited - curve.nodeHz) * curve.slopeSPerHz;
+}

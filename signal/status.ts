@@ -1,0 +1,83 @@
+/** The state of a signal path at its last sample, as plain values. */
+import type { ChannelPath } from '@/signal/channel-path';
+import type { Finding, Margin } from '@/signal/model';
+import type { Motion } from '@/signal/motion';
+import type { ChannelStatus, PipelineStatus } from '@/signal/pipeline-types';
+
+/** @param primary index into `paths` of the channel that speed comes from. */
+export function statusOf(
+  motion: Motion,
+  paths: readonly ChannelPath[],
+  primary: number,
+  nowS: number,
+  findings: Finding[],
+): PipelineStatus {
+  const atMost = motion.speedAtMostRpm(nowS);
+  const { pulsesPerTurn, gearRatio } = motion.rig.wheel;
+  const running = motion.state === 'running';
+  const speedRpm = Number.isNaN(motion.rpm)
+    ? NaN
+    : Math.sign(motion.rpm) * Math.min(Math.abs(motion.rpm), Number.isNaN(atMost) ? Infinity : atMost);
+  return {
+    nowS,
+    state: motion.state,
+    speedRpm: known(speedRpm),
+    speedErrorRpm: known(motion.errorRpm),
+    speedAtMostRpm: known(atMost),
+    direction: motion.direction,
+    pulses: motion.pulses,
+    positions: motion.positions,
+    turns: motion.positions / (pulsesPerTurn * gearRatio),
+    countsSinceS: motion.countsSinceS,
+    synced: motion.synced,
+    toothHz: running ? known((Math.abs(motion.rpm) * pulsesPerTurn * gearRatio) / 60) : null,
+    lastEdgeS: known(motion.lastEdgeS),
+    delayS: paths[primary]!.delayS,
+    phaseDeg: motion.rig.sensing === 'quadrature' ? known(motion.phaseDeg) : null,
+    channels: paths.map(channelStatus),
+    margin: worstMargin(paths),
+    wheelFace: motion.face
+      ? motion.face.snapshot(
+          motion.sync.missing > 0 && motion.synced,
+          motion.reversed,
+          known(motion.angleDeg(nowS)),
+        )
+      : null,
+    findings,
+  };
+}
+
+function channelStatus(path: ChannelPath): ChannelStatus {
+  return {
+    channel: path.channel.name,
+    lowV: known(path.levels.lowV),
+    highV: known(path.levels.highV),
+    operateV: known(path.operateV),
+    releaseV: known(path.releaseV),
+    noiseV: known(path.noiseV),
+    duty: known(path.duty),
+    edges: path.edgeCount,
+  };
+}
+
+function worstMargin(paths: readonly ChannelPath[]): Margin | null {
+  let worst: ChannelPath | null = null;
+  for (const path of paths) {
+    if (path.channel.role === 'aux' || Number.isNaN(path.worstMarginV)) continue;
+    if (!worst || path.worstMarginV < worst.worstMarginV) worst = path;
+  }
+  if (!worst) return null;
+  const volts = worst.worstMarginV;
+  const { kind, sensitivityMvPerMt } = worst.channel.sensor;
+  return {
+    channel: worst.channel.name,
+    volts,
+    sigmas: worst.noiseV > 0 ? volts / worst.noiseV : null,
+    millitesla:
+      kind === 'linear' && sensitivityMvPerMt ? (1000 * volts) / Math.abs(sensitivityMvPerMt) : null,
+  };
+}
+
+function known(value: number): number | null {
+  return Number.isFinite(value) ? value : null;
+}
