@@ -1,0 +1,124 @@
+import { G, Line, Path, Rect } from 'react-native-svg';
+import { withoutGaps } from '@/client/drawings/gaps';
+import { spreadLabels, voltsText } from '@/client/drawings/labels';
+import { gutterPx, laneY } from '@/client/drawings/ribbon-layout';
+import type { LaneBox, RibbonGap } from '@/client/drawings/ribbon-types';
+import { SvgText } from '@/client/drawings/svg-text';
+import type { TimeScale } from '@/client/drawings/time-axis';
+import { tracePaths } from '@/client/drawings/trace';
+import type { ColourName } from '@/client/theme/tokens';
+import { useColours } from '@/client/theme/use-theme';
+
+type LaneProps = {
+  box: LaneBox;
+  time: TimeScale;
+  gaps: readonly RibbonGap[];
+  hatchId: string;
+  last: boolean;
+};
+
+/** One channel: name, volts at the left, hatched band, trace. */
+export function RibbonLaneDrawing({ box, time, gaps, hatchId, last }: LaneProps) {
+  const colours = useColours();
+  const { lane, bottom } = box;
+  const y = laneY(box);
+  const breaks = gaps.map((g) => g.to);
+  const { trace, clipped } = tracePaths(
+    lane,
+    time,
+    y,
+    { lowV: lane.clipLowV, highV: lane.clipHighV },
+    breaks,
+  );
+  const right = time.x(time.toS);
+  const left = time.x(time.fromS);
+  return (
+    <G>
+      <Band box={box} time={time} gaps={gaps} hatchId={hatchId} />
+      <Path
+        d={trace}
+        fill="none"
+        stroke={colours.scribe}
+        strokeWidth={box.thin ? 1.2 : 1.6}
+        strokeLinejoin="round"
+        strokeLinecap="round"
+      />
+      {clipped ? (
+        <Path
+          d={clipped}
+          fill="none"
+          stroke={colours.fault}
+          strokeWidth={4}
+          strokeLinejoin="round"
+          strokeLinecap="round"
+        />
+      ) : null}
+      {last ? null : (
+        <Line x1={left} x2={right} y1={bottom} y2={bottom} stroke={colours.hairline} strokeWidth={1} />
+      )}
+      <SvgText x={0} y={box.top + (box.thin ? (box.bottom - box.top) / 2 : 10)} tone="scribe" size={14} code>
+        {lane.channel}
+      </SvgText>
+      {box.thin ? null : <VoltLabels box={box} y={y} />}
+    </G>
+  );
+}
+
+function Band({ box, time, gaps, hatchId }: Omit<LaneProps, 'last'>) {
+  const colours = useColours();
+  const y = laneY(box);
+  const drawn = box.lane.bands.flatMap((band) =>
+    withoutGaps({ from: Math.max(band.from, time.fromS), to: Math.min(band.to, time.toS) }, gaps).map(
+      (s) => ({ ...band, ...s }),
+    ),
+  );
+  return (
+    <>
+      {drawn.map(({ from, to, operateV, releaseV }) => {
+        const x1 = time.x(from);
+        const width = Math.max(0, time.x(to) - x1);
+        const top = y(operateV);
+        const height = Math.max(0, y(releaseV) - top);
+        return (
+          <G key={from}>
+            <Rect x={x1} y={top} width={width} height={height} fill={colours.band} />
+            <Rect x={x1} y={top} width={width} height={height} fill={`url(#${hatchId})`} />
+            <Line x1={x1} x2={x1 + width} y1={top} y2={top} stroke={colours.dye} strokeWidth={1.4} />
+            <Line
+              x1={x1}
+              x2={x1 + width}
+              y1={top + height}
+              y2={top + height}
+              stroke={colours.dye}
+              strokeWidth={1.4}
+            />
+          </G>
+        );
+      })}
+    </>
+  );
+}
+
+function VoltLabels({ box, y }: { box: LaneBox; y: (volts: number) => number }) {
+  const { lane, range } = box;
+  const band = lane.bands.at(-1);
+  const span = range.highV - range.lowV;
+  const levels: { volts: number | null | undefined; tone: ColourName }[] = [
+    { volts: band?.operateV, tone: 'dye' },
+    { volts: band?.releaseV, tone: 'dye' },
+    { volts: lane.highV, tone: 'scribeSoft' },
+    { volts: lane.lowV, tone: 'scribeSoft' },
+  ];
+  const wanted = levels.flatMap(({ volts, tone }) =>
+    volts == null ? [] : [{ y: y(volts), text: voltsText(volts, span), tone }],
+  );
+  return (
+    <>
+      {spreadLabels(wanted, 14, box.traceTop + 4, box.traceBottom - 2).map((label) => (
+        <SvgText key={`${label.text}${label.y}`} x={gutterPx - 8} y={label.y} tone={label.tone} anchor="end">
+          {label.text}
+        </SvgText>
+      ))}
+    </>
+  );
+}
