@@ -1,0 +1,22 @@
+import { useState } from 'react';
+import { Pressable } from 'react-native';
+import { Text } from '@/client/components/text';
+import { exactInstant, shortInstant } from '@/client/screens/shared/when';
+
+/** A time in the reader's zone; a press shows the exact instant. */
+export function Instant({ at }: { at: string }) {
+  const [exact, setExact] = useState(false);
+  const shown = exact ? exactInstant(at) : shortInstant(at, Date.now());
+  return (
+    <Pressable
+      role="button"
+      aria-label={`${shown}. ${exact ? 'Show the short time' : 'Show the exact time'}`}
+      onPress={() => setExact(!exact)}
+      style={{ minHeight: 24, justifyContent: 'center', alignSelf: 'flex-start' }}
+    >
+      <Text size="small" tone="scribeSoft" figures>
+        {shown}
+      </Text>
+    </Pressable>
+  );
+}
