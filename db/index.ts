@@ -1,4 +1,5 @@
 /** What the hub uses of the database room. */
+export * from './captures';
 export * from './errors';
 export * from './open';
 export * from './spool-types';
