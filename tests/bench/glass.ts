@@ -1,0 +1,145 @@
+/** From the POST of a block to the frame that shows it, in a headless browser; beside it the shortest way there is. */
+import { existsSync } from 'node:fs';
+import http from 'node:http';
+import { setTimeout as sleep } from 'node:timers/promises';
+import { chromium, type Browser } from '@playwright/test';
+import { startProbed } from '@/tests/bench/child';
+import { blockTemplate, fill, type LoadShape } from '@/tests/bench/fast-block';
+import { startHub } from '@/tests/bench/hub-under-test';
+import { heading, line, quantile } from '@/tests/bench/rounds';
+
+const browserPath = '/usr/bin/chromium';
+const shape: LoadShape = { channels: ['A', 'B'], rateHz: 20_000, blockSamples: 500 };
+const warmUpS = 3;
+
+type Arrival = { rigId: string; streamS: number; atMs: number };
+type Sent = { rigId: string; endS: number; atMs: number };
+type PageState = { arrivals: Arrival[]; isReady: boolean };
+
+export async function benchGlass(seconds: number): Promise<void> {
+  if (!existsSync(browserPath)) {
+    heading('Ingest to glass: not measured, there is no chromium');
+    return;
+  }
+  const browser = await chromium.launch({
+    executablePath: browserPath,
+    args: ['--no-sandbox', '--disable-gpu', '--disable-background-networking', '--no-first-run'],
+  });
+  const hub = await startHub();
+  const relay = await startProbed(['--import', 'tsx', 'tests/bench/bare-relay.ts'], {}, (said) =>
+    /listening \d/.test(said),
+  );
+  try {
+    const rigs = await hub.makeRigs(3, shape.channels);
+    const relayOrigin = `http://127.0.0.1:${/listening (\d+)/.exec(relay.output())?.[1] ?? ''}`;
+    const rigIds = rigs.map(({ rigId }) => rigId);
+    const control = await measure(browser, relayOrigin, '', rigs, seconds, []);
+    const ours = await measure(browser, hub.origin, '/live/v1', rigs, seconds, [
+      { type: 'hello', accessToken: hub.accessToken },
+      {
+        type: 'watch',
+        rigs: rigIds.map((rigId) => ({ rigId, ribbon: { teeth: 6, columns: 390, anchor: 'edge' } })),
+      },
+    ]);
+    heading(`Ingest to glass: 3 rigs of 2 channels at 20 kS/s, blocks of 25 ms by POST, ${seconds} s`);
+    line('bare relay: p50, p99', figures(control));
+    line('hub: p50, p99', figures(ours), 'p99 under 150 ms');
+    line('blocks measured: relay, hub', `${control.length}, ${ours.length}`);
+  } finally {
+    await browser.close();
+    await relay.stop();
+    await hub.stop();
+  }
+}
+
+function figures(latencies: number[]): string {
+  return `${quantile(latencies, 0.5).toFixed(0)}, ${quantile(latencies, 0.99).toFixed(0)} ms`;
+}
+
+/** Milliseconds from each block's POST to the first frame at or after its end. */
+async function measure(
+  browser: Browser,
+  origin: string,
+  socketPath: string,
+  rigs: { rigId: string; key: string }[],
+  seconds: number,
+  greetings: object[],
+): Promise<number[]> {
+  const page = await browser.newPage();
+  await page.goto(`${origin}/healthz`);
+  await page.evaluate(
+    ({ url, messages }) => {
+      const state: PageState = { arrivals: [], isReady: false };
+      Object.assign(window, { bench: state });
+      const socket = new WebSocket(url);
+      socket.onopen = () => {
+        for (const message of messages) socket.send(JSON.stringify(message));
+        state.isReady = true;
+      };
+      socket.onmessage = (event) => {
+        const atMs = Date.now();
+        const frame = JSON.parse(String(event.data));
+        const streamS = frame.live ? frame.live.streamS : frame.streamS;
+        if (frame.rigId && typeof streamS === 'number')
+          state.arrivals.push({ rigId: frame.rigId, streamS, atMs });
+      };
+    },
+    { url: `${origin.replace('http', 'ws')}${socketPath}`, messages: greetings },
+  );
+  await page.waitForFunction(() => (window as unknown as { bench: PageState }).bench.isReady);
+  const sent = (await Promise.all(rigs.map((rig) => postBlocks(origin, rig, seconds + warmUpS)))).flat();
+  await sleep(1000);
+  const arrivals = await page.evaluate(() => (window as unknown as { bench: PageState }).bench.arrivals);
+  await page.close();
+  return sent.filter(({ endS }) => endS > warmUpS).map((block) => latencyOf(block, arrivals));
+}
+
+/** Infinity where no frame ever showed the block. */
+function latencyOf(block: Sent, arrivals: Arrival[]): number {
+  const half = 0.5 / shape.rateHz;
+  const seen = arrivals.find(
+    (arrival) =>
+      arrival.rigId === block.rigId && arrival.atMs >= block.atMs && arrival.streamS >= block.endS - half,
+  );
+  return seen ? seen.atMs - block.atMs : Infinity;
+}
+
+async function postBlocks(
+  origin: string,
+  rig: { rigId: string; key: string },
+  seconds: number,
+): Promise<Sent[]> {
+  const agent = new http.Agent({ keepAlive: true });
+  const template = blockTemplate(shape, `glass-${Date.now()}-${rig.rigId}`.slice(0, 64), 1);
+  const blockS = shape.blockSamples / shape.rateHz;
+  const beginMs = performance.now();
+  const sent: Sent[] = [];
+  for (let seq = 0; (seq + 1) * blockS <= seconds; seq += 1) {
+    const waitMs = beginMs + seq * blockS * 1000 - performance.now();
+    if (waitMs > 0) await sleep(waitMs);
+    const endS = (seq + 1) * blockS;
+    sent.push({ rigId: rig.rigId, endS, atMs: Date.now() });
+    const headers = {
+      'Content-Type': 'application/cbor',
+      Authorization: `Bearer ${rig.key}`,
+      'X-Rig': rig.rigId,
+      'X-End': String(endS),
+    };
+    post(agent, `${origin}/ingest/v1/samples`, headers, fill(template, seq, seq * blockS));
+  }
+  return sent;
+}
+
+function post(agent: http.Agent, url: string, headers: Record<string, string>, body: Buffer): void {
+  const request = http.request(url, {
+    method: 'POST',
+    agent,
+    headers: { ...headers, 'Content-Length': body.length },
+  });
+  request.on('response', (response) => {
+    response.resume();
+    if (response.statusCode !== 202) process.stderr.write(`POST answered ${response.statusCode}\n`);
+  });
+  request.on('error', (error) => process.stderr.write(`${error.message}\n`));
+  request.end(body);
+}
