@@ -103,7 +103,10 @@ export function createAssembler<B extends BlockHead>(options: {
       return wasLost(state, seq) ? { result: 'refused', issue: tooLate(seq) } : duplicate;
     if (waiting.size > 0 && waiting.has(seq)) return duplicate;
     const changed = changeOf(state, block);
-    if (changed !== undefined) return { result: 'refused', issue: changed };
+    if (changed !== undefined) {
+      refuse(seq);
+      return { result: 'refused', issue: changed };
+    }
     if (seq === state.nextSeq) {
       pass(state, block);
       if (waiting.size > 0) settle(state);

@@ -289,18 +289,21 @@ export class CborReader {
   private map(depth: number): Map<CborValue, CborValue> {
     const map = new Map<CborValue, CborValue>();
     const seen = new Set<string>();
+    // Told only when the map has proved well-formed.
+    let twice: number | undefined;
     const count = this.arg;
     if (count !== indefinite) this.checkCount(count * 2);
     for (let i = 0; count === indefinite ? !this.takeBreak() : i < count; i++) {
       const at = this.pos;
       const key = this.value(depth + 1);
       const id = keyId(key);
-      if (seen.has(id)) throw new CborFault('invalid', 'A key of a map appears twice.', at);
+      if (seen.has(id)) twice ??= at;
       seen.add(id);
       if (this.pos < this.end && this.bytes[this.pos] === 0xff)
         throw this.unreadable('A map ends after a key without its value.');
       map.set(key, this.value(depth + 1));
     }
+    if (twice !== undefined) throw new CborFault('invalid', 'A key of a map appears twice.', twice);
     return map;
   }
 
