@@ -1,3 +1,4 @@
+import { defaultSettings } from '@/signal/model';
 import { Screen } from '@/client/components/screen';
 import { NoPermission } from '@/client/components/states';
 import { useMay } from '@/client/data/app-data-context';
@@ -17,6 +18,7 @@ export function NewRigScreen() {
       {may ? (
         <RigFormView
           initial={emptyDraft}
+          settings={defaultSettings}
           saveLabel="Make the rig"
           onSave={async (draft) => {
             const made = await create.mutateAsync(inputOf(draft));

@@ -1,9 +1,11 @@
 import { useState } from 'react';
+import type { ReactNode } from 'react';
 import { FormProvider } from 'react-hook-form';
 import { View } from 'react-native';
 import { Button } from '@/client/components/button';
 import { Plate } from '@/client/components/plate';
 import { Text } from '@/client/components/text';
+import type { Settings } from '@/signal/model';
 import { asProblem } from '@/client/data/api-problem';
 import { ChannelsPart } from '@/client/screens/rig-setup/channels-part';
 import type { RigDraft } from '@/client/screens/rig-setup/draft';
@@ -18,13 +20,15 @@ import { space } from '@/client/theme/tokens';
 import { useWide } from '@/client/theme/use-theme';
 
 type RigFormViewProps = {
+  /** In force; they decide when a shaft reads stopped. */
+  settings: Settings;
   initial: RigDraft;
   saveLabel: string;
   /** Throws `ApiProblem`. */
   onSave: (draft: RigDraft) => Promise<void>;
 };
 
-const parts: Record<StepId, () => React.ReactNode> = {
+const parts: Record<StepId, () => ReactNode> = {
   rig: RigPart,
   wheel: WheelPart,
   channels: ChannelsPart,
@@ -32,7 +36,7 @@ const parts: Record<StepId, () => React.ReactNode> = {
 };
 
 /** The rig's setup: steps on a phone, form and drawing side by side where there is room. */
-export function RigFormView({ initial, saveLabel, onSave }: RigFormViewProps) {
+export function RigFormView({ initial, settings, saveLabel, onSave }: RigFormViewProps) {
   const form = useRigForm(initial);
   const wide = useWide();
   const [step, setStep] = useState(0);
@@ -75,7 +79,7 @@ export function RigFormView({ initial, saveLabel, onSave }: RigFormViewProps) {
             <View style={{ alignSelf: 'flex-start' }}>{saveButton}</View>
           </View>
           <View style={{ flex: 2, minWidth: 0, position: 'sticky' as never, top: space.l }}>
-            <SidePlate />
+            <SidePlate settings={settings} />
           </View>
         </View>
       </FormProvider>
@@ -86,7 +90,7 @@ export function RigFormView({ initial, saveLabel, onSave }: RigFormViewProps) {
     <FormProvider {...form}>
       <StepBar current={step} onChoose={setStep} />
       <Part id={id} title={title} />
-      {id === 'wheel' || id === 'speed' ? <SidePlate /> : null}
+      {id === 'wheel' || id === 'speed' ? <SidePlate settings={settings} /> : null}
       {failed}
       <View style={{ flexDirection: 'row', gap: space.m }}>
         {step > 0 ? <Button label="Back" onPress={() => setStep(step - 1)} style={{ flex: 1 }} /> : null}

@@ -1,8 +1,10 @@
+import { defaultSettings } from '@/signal/model';
 import { Screen } from '@/client/components/screen';
 import { NoPermission, Skeleton } from '@/client/components/states';
 import { useToast } from '@/client/components/toast';
 import { useMay } from '@/client/data/app-data-context';
 import { useRig, useSaveRig } from '@/client/data/rigs';
+import { useSettings } from '@/client/data/settings';
 import { draftOfRig } from '@/client/screens/rig-setup/draft';
 import { RigFormView } from '@/client/screens/rig-setup/rig-form-view';
 import { inputOf } from '@/client/screens/rig-setup/use-rig-form';
@@ -13,6 +15,7 @@ import { rigPath, useGo } from '@/client/screens/shared/use-go';
 /** The setup of a rig that exists. What is saved counts from the next block on. */
 export function RigSetupScreen({ rigId }: { rigId: string }) {
   const rig = useRig(rigId);
+  const settings = useSettings(rigId);
   const save = useSaveRig(rigId);
   const may = useMay('engineer');
   const toast = useToast();
@@ -31,6 +34,7 @@ export function RigSetupScreen({ rigId }: { rigId: string }) {
         <RigFormView
           key={rigId}
           initial={draftOfRig(rig.data)}
+          settings={settings.data?.items[0] ?? defaultSettings}
           saveLabel="Save the setup"
           onSave={async (draft) => {
             await save.mutateAsync(inputOf(draft));

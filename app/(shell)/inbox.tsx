@@ -1,0 +1,1 @@
+export { InboxScreen as default } from '@/client/screens/inbox/inbox-screen';

@@ -1,0 +1,1 @@
+export { RigsScreen as default } from '@/client/screens/rigs/rigs-screen';

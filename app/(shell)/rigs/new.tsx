@@ -1,0 +1,1 @@
+export { NewRigScreen as default } from '@/client/screens/rig-setup/new-rig-screen';

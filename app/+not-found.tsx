@@ -1,0 +1,1 @@
+export { NotFoundScreen as default } from '@/client/screens/more/not-found-screen';

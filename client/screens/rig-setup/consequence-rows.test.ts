@@ -1,0 +1,41 @@
+import { describe, expect, it } from 'vitest';
+import { consequenceRows, wheelOf } from '@/client/screens/rig-setup/consequence-rows';
+import { emptyDraft } from '@/client/screens/rig-setup/draft';
+
+const draft = (pulsesPerTurn: string, more: object = {}) => ({
+  ...emptyDraft,
+  ratedRpm: '3000',
+  ...more,
+  wheel: { ...emptyDraft.wheel, pulsesPerTurn },
+});
+
+describe('what the form says while one types', () => {
+  it('gives the tooth frequency and the samples a tooth', () => {
+    const { facts, warning } = consequenceRows(wheelOf(draft('60'))!, 60_000);
+    const values = Object.fromEntries(facts.map((f) => [f.name, f.value]));
+    // 60 teeth at 50 turns a second.
+    expect(values['Tooth frequency at rated speed']).toBe('3000 Hz');
+    expect(values['Samples a tooth at rated speed']).toBe('20');
+    expect(values['Reads stopped below (2 s without an edge)']).toBe('0.5 rpm');
+    expect(warning).toBeNull();
+  });
+
+  it('says how many samples the rated speed needs', () => {
+    const { facts, warning } = consequenceRows(wheelOf(draft('60', { sensing: 'quadrature' }))!, 20_000);
+    expect(warning).toContain('24000 a second');
+    expect(facts[1]).toMatchObject({ value: '6.667', tone: 'warn' });
+  });
+
+  it('says what is missing', () => {
+    const { facts } = consequenceRows(wheelOf(draft('60', { ratedRpm: '' }))!, null);
+    expect(facts.slice(0, 3).map((f) => f.value)).toEqual([
+      'needs the rated speed',
+      'needs the samples a second',
+      'needs the samples a second',
+    ]);
+  });
+
+  it.each(['', '0', '12.5', 'many'])('says nothing of a wheel with %j pulses', (pulses) => {
+    expect(wheelOf(draft(pulses))).toBeNull();
+  });
+});
