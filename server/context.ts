@@ -2,7 +2,7 @@
 import { randomUUID } from 'node:crypto';
 import type { IncomingMessage } from 'node:http';
 import type { DestinationStream } from 'pino';
-import { allRigs, firstPage, listKeys, openDatabases, touchKey } from '@/db';
+import { allRigs, createCaptureStore, firstPage, listKeys, openDatabases, touchKey } from '@/db';
 import type { TurnmarkDb } from '@/db';
 import { createHttpIngest } from '@/ingest/transports/http';
 import { createAudit } from './audit';
@@ -14,6 +14,7 @@ import { createRefreshCookie } from './auth/refresh-cookie';
 import { RigKeys } from './auth/rig-keys';
 import type { VerifiedKey } from './auth/rig-keys';
 import { Sessions } from './auth/sessions';
+import { CaptureAnalyses } from './captures/analyses';
 import { systemClock } from './clock';
 import type { Clock } from './clock';
 import type { ServerConfig } from './config/config';
@@ -126,6 +127,7 @@ export async function createContext(config: ServerConfig, overrides: Overrides) 
       pause: () => new Promise((resolve) => setImmediate(resolve)),
     });
 
+    const store = createCaptureStore(db);
     return {
       config,
       secrets,
@@ -135,6 +137,8 @@ export async function createContext(config: ServerConfig, overrides: Overrides) 
       disposers,
       db,
       spool,
+      store,
+      analyses: new CaptureAnalyses({ db, store, log }),
       audit,
       hub,
       keys,

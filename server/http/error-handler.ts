@@ -1,5 +1,6 @@
 /** The one place where an error becomes an answer. Nothing of an unknown error leaves the hub. */
 import type { ErrorRequestHandler, Request, Response } from 'express';
+import { StorageUnavailableError } from '@/db/errors';
 import type { Logger } from '@/server/logger';
 import { ApiProblem } from './problems';
 
@@ -11,6 +12,9 @@ export function sendProblem(res: Response, problem: ApiProblem): void {
 /** What body parsers and the router throw carries a status; its message is for developers only. */
 function knownProblem(error: unknown): ApiProblem | undefined {
   if (error instanceof ApiProblem) return error;
+  if (error instanceof StorageUnavailableError) {
+    return new ApiProblem('unavailable', { detail: error.message, headers: { 'Retry-After': '5' } });
+  }
   const { status, type } = error as { status?: unknown; type?: unknown };
   if (status === 413) return new ApiProblem('too-large');
   if (status === 415)
@@ -25,7 +29,8 @@ export function errorHandler(log: Logger): ErrorRequestHandler {
   // Express knows an error handler by its four parameters.
   return (error: unknown, req: Request, res: Response, _next) => {
     const known = knownProblem(error);
-    if (known === undefined) log.error({ err: error, method: req.method, path: req.path }, 'request failed');
+    if (known === undefined || known.status >= 500)
+      log.error({ err: error, method: req.method, path: req.path }, 'request failed');
     if (res.headersSent) {
       res.destroy();
       return;

@@ -71,19 +71,41 @@ export function pointerOf(path: readonly PropertyKey[]): string {
   return path.map((part) => `/${String(part).replaceAll('~', '~0').replaceAll('/', '~1')}`).join('');
 }
 
-/** The deepest reason of each issue: a union reports what its best matching member found wrong. */
-function flatten(issue: z.core.$ZodIssue, base: readonly PropertyKey[]): FieldError[] {
+/** Members by which a union tells its choices apart: where one is wrong, that choice was not meant. */
+const choiceMembers: ReadonlySet<PropertyKey> = new Set(['kind', 'mode', 'type']);
+
+type Reason = { path: PropertyKey[]; detail: string; code: string };
+
+/** How far from what was meant a choice is: a wrong `kind` is furthest, then a wrong type of the whole. */
+function distance(reasons: readonly Reason[], depth: number): number {
+  return reasons.reduce((sum, { path }) => {
+    if (choiceMembers.has(path.at(-1) ?? '')) return sum + 1000;
+    return sum + (path.length <= depth ? 100 : 1);
+  }, 0);
+}
+
+/** The deepest reason of each issue: of a union, what the choice that was meant found wrong. */
+function reasonsOf(issue: z.core.$ZodIssue, base: readonly PropertyKey[]): Reason[] {
   const path = [...base, ...issue.path];
-  if (issue.code === 'invalid_union' && issue.errors.length > 0) {
-    const depth = (issues: z.core.$ZodIssue[]) => Math.max(0, ...issues.map((i) => i.path.length));
-    const best = [...issue.errors].sort((a, b) => depth(b) - depth(a) || a.length - b.length)[0] ?? [];
-    if (best.length > 0) return best.flatMap((inner) => flatten(inner, path));
+  if (issue.code !== 'invalid_union' || issue.errors.length === 0) {
+    return [{ path, detail: issue.message, code: issue.code }];
   }
-  return [{ pointer: pointerOf(path), detail: issue.message }];
+  const choices = issue.errors.map((issues) => issues.flatMap((inner) => reasonsOf(inner, path)));
+  const values = issue.errors.flatMap(([only]) =>
+    only?.code === 'invalid_value' ? only.values.map(String) : [],
+  );
+  const literals = issue.errors.every((issues) => issues.length === 1 && issues[0]?.path.length === 0);
+  if (literals && values.length === issue.errors.length) {
+    return [{ path, detail: `must be one of ${values.join(', ')}`, code: 'invalid_value' }];
+  }
+  const [nearest] = choices.sort((a, b) => distance(a, path.length) - distance(b, path.length));
+  return nearest ?? [{ path, detail: issue.message, code: issue.code }];
 }
 
 export function fieldErrors(error: z.ZodError, base: readonly PropertyKey[] = []): FieldError[] {
-  return error.issues.flatMap((issue) => flatten(issue, base));
+  return error.issues
+    .flatMap((issue) => reasonsOf(issue, base))
+    .map(({ path, detail }) => ({ pointer: pointerOf(path), detail }));
 }
 
 export function invalid(error: z.ZodError): ApiProblem {

@@ -1,6 +1,8 @@
 /** Every route of the API, in the order of the document. */
 import type { AppContext } from '@/server/context';
 import type { Route } from '@/server/http/route';
+import { captureSignalRoutes } from './capture-signal';
+import { captureRoutes } from './captures';
 import { keyRoutes } from './keys';
 import { rigRoutes } from './rigs';
 import { sessionRoutes } from './session';
@@ -12,5 +14,7 @@ export function apiRoutes(context: AppContext): Route[] {
     ...rigRoutes(context),
     ...keyRoutes(context),
     ...settingsRoutes(context),
+    ...captureRoutes(context),
+    ...captureSignalRoutes(context),
   ];
 }
