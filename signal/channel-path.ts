@@ -65,6 +65,7 @@ export class ChannelPath implements DetectorSink {
   private readonly band: Band;
   private readonly rateHz: number;
   private readonly missing: number;
+  private readonly oneTooth: boolean;
   private readonly bands: BandChange[];
   private readonly cascade: Cascade;
   private readonly gainOfNoise: number;
@@ -84,6 +85,8 @@ export class ChannelPath implements DetectorSink {
   private nextAt: number;
   private delayKnown = false;
   private periodSamples = NaN;
+  private lastExtremeV = NaN;
+  private wobbleV = 0;
   private riseMidAt = NaN;
   private fallMidAt = NaN;
   private riseStepV = NaN;
@@ -105,6 +108,7 @@ export class ChannelPath implements DetectorSink {
     this.band = band;
     this.rateHz = rateHz;
     this.missing = options.missingPulses;
+    this.oneTooth = options.teethPerTurn === 1;
     this.bands = options.bands;
     this.cascade = createCascade(sections);
     this.gainOfNoise = noiseGain(sections, rateHz);
@@ -174,7 +178,7 @@ export class ChannelPath implements DetectorSink {
     forgetState(this.detector);
     this.fresh = true;
     this.nextAt = at;
-    this.riseMidAt = this.fallMidAt = NaN;
+    this.riseMidAt = this.fallMidAt = this.lastExtremeV = NaN;
     if (this.rails) this.rails.previousV = NaN;
     if (this.band.mode === 'fixed') return;
     if (Number.isNaN(this.levels.lowV)) {
@@ -200,8 +204,11 @@ export class ChannelPath implements DetectorSink {
       rising ? detector.releaseV - extremeV : extremeV - detector.operateV,
       !rising,
     );
-    if (rising) followTrough(levels, extremeV);
-    else followPeak(levels, extremeV);
+    const toothV = Math.abs(extremeV - this.lastExtremeV);
+    this.lastExtremeV = extremeV;
+    this.learnWobble(toothV);
+    if (rising) followTrough(levels, extremeV, toothV);
+    else followPeak(levels, extremeV, toothV);
     this.learnTiming(midAt, rising);
     const sigmaS = this.learnSlope(midStepV, rising);
     const t = at / this.rateHz - this.delayS;
@@ -249,6 +256,17 @@ export class ChannelPath implements DetectorSink {
     }
     this.spreadLowV = low;
     this.spreadHighV = high;
+  }
+
+  wobble(backV: number): void {
+    if (backV > this.wobbleV) this.wobbleV = backV;
+  }
+
+  /** Each whole tooth lets the memory of a wobble fade. On a wheel of one tooth, a weak one beside it is no tooth. */
+  private learnWobble(toothV: number): void {
+    const swingV = this.levels.highV - this.levels.lowV;
+    if (!(toothV < swingV / 2)) this.wobbleV *= 0.97;
+    else if (this.oneTooth) this.wobble(toothV);
   }
 
   private learnKind(array: SampleArray): void {
@@ -315,7 +333,7 @@ export class ChannelPath implements DetectorSink {
   /** Thresholds move once they are off by 2 % of the swing; a smaller step is neither made nor reported. */
   private refit(t: number): void {
     if (this.band.mode !== 'fitted') return;
-    const { operateV, releaseV } = fittedThresholds(this.levels, this.band, this.noiseV);
+    const { operateV, releaseV } = fittedThresholds(this.levels, this.band, this.noiseV, this.wobbleV);
     const tolerance = 0.02 * (this.levels.highV - this.levels.lowV);
     const { detector } = this;
     if (
@@ -405,7 +423,9 @@ export class ChannelPath implements DetectorSink {
     this.hunting = false;
     levels.lowV = hunter.foundLowV;
     levels.highV = hunter.foundHighV;
-    const { operateV, releaseV } = fittedThresholds(levels, this.band, this.noiseV);
+    // Nothing is known of the flanks yet: begin wide, and let whole teeth narrow it.
+    this.wobbleV = (levels.highV - levels.lowV) / 4;
+    const { operateV, releaseV } = fittedThresholds(levels, this.band, this.noiseV, this.wobbleV);
     forgetState(detector);
     if (this.remembered) {
       this.applyThresholds(operateV, releaseV, this.rememberedBase + 1);

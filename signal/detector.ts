@@ -27,6 +27,8 @@ export type Detector = {
   extremeV: number;
   /** How far an excursion through mid has come, V. */
   reachV: number;
+  /** How far it then came back, V. */
+  backV: number;
   /** Last mid crossing on the flank that leaves the present state, samples; NaN where none was seen. */
   midAt: number;
   /** Size of the step across that crossing, V a sample. */
@@ -45,6 +47,8 @@ export type DetectorSink = {
   edge(at: number, midAt: number, midStepV: number, rising: boolean, late: boolean, extremeV: number): void;
   /** @param reachV how far it came, V; NaN for a crossing that hold-off ate. @param rising true: towards operate. */
   rejected(at: number, reachV: number, rising: boolean): void;
+  /** On a flank, or short of an edge, the signal came back through mid by `backV`. */
+  wobble(backV: number): void;
 };
 
 export function createDetector(holdSamples: number): Detector {
@@ -55,6 +59,7 @@ export function createDetector(holdSamples: number): Detector {
     midV: NaN,
     extremeV: 0,
     reachV: 0,
+    backV: 0,
     midAt: NaN,
     midStepV: NaN,
     holdSamples,
@@ -131,6 +136,7 @@ export function runDetector(
           end = Math.min(to, d.pauseAt - base - 1);
         } else {
           d.zone = zones.lowBack;
+          d.backV = x;
         }
         break;
       }
@@ -138,9 +144,11 @@ export function runDetector(
         let x = 0;
         for (; j <= end; j++) {
           x = v[j]!;
+          if (x < d.backV) d.backV = x;
           if (x > mid || x < release) break;
         }
         if (j > end) break;
+        sink.wobble(d.reachV - d.backV);
         if (x > mid) {
           const reach = d.reachV;
           crossMid(d, v, j, base, mid);
@@ -185,6 +193,7 @@ export function runDetector(
           end = Math.min(to, d.pauseAt - base - 1);
         } else {
           d.zone = zones.highBack;
+          d.backV = x;
         }
         break;
       }
@@ -192,9 +201,11 @@ export function runDetector(
         let x = 0;
         for (; j <= end; j++) {
           x = v[j]!;
+          if (x > d.backV) d.backV = x;
           if (x < mid || x > operate) break;
         }
         if (j > end) break;
+        sink.wobble(d.backV - d.reachV);
         if (x < mid) {
           const reach = d.reachV;
           crossMid(d, v, j, base, mid);

@@ -3,14 +3,16 @@
  * fitted band that follows from them.
  *
  * Each accepted tooth moves its level by a quarter of what it differs, and by no more than an eighth of the swing: one
- * wild peak cannot lift the band over the teeth. Peaks that are not counted move nothing, so levels stay where they are
- * when the shaft stops.
+ * wild peak cannot lift the band over the teeth. A tooth less than half as strong as the known swing moves it by a
+ * thirty-second only: a bounce just across the band would else pull both levels towards the band, and so invite the
+ * next. Peaks that are not counted move nothing, so levels stay where they are when the shaft stops.
  */
 import type { Band, BandLevels } from '@/signal/model';
 
 export type Levels = { lowV: number; highV: number };
 
 const share = 1 / 4;
+const shareOfWeak = 1 / 32;
 const mostOfSwing = 1 / 2;
 
 /** NaN: not known yet. */
@@ -18,34 +20,42 @@ export function createLevels(): Levels {
   return { lowV: NaN, highV: NaN };
 }
 
-export function followPeak(levels: Levels, peakV: number): void {
-  levels.highV = followed(levels.highV, peakV, levels.highV - levels.lowV);
+/** @param toothV the peak above the trough before it, V; NaN where that was not seen. */
+export function followPeak(levels: Levels, peakV: number, toothV: number): void {
+  levels.highV = followed(levels.highV, peakV, levels.highV - levels.lowV, toothV);
 }
 
-export function followTrough(levels: Levels, troughV: number): void {
-  levels.lowV = followed(levels.lowV, troughV, levels.highV - levels.lowV);
+/** @param toothV the peak before it above the trough, V; NaN where that was not seen. */
+export function followTrough(levels: Levels, troughV: number, toothV: number): void {
+  levels.lowV = followed(levels.lowV, troughV, levels.highV - levels.lowV, toothV);
 }
 
-function followed(level: number, value: number, swingV: number): number {
+function followed(level: number, value: number, swingV: number, toothV: number): number {
   if (Number.isNaN(level)) return value;
   if (Number.isNaN(swingV)) return level + share * (value - level);
   const most = mostOfSwing * swingV;
-  return level + share * Math.min(most, Math.max(-most, value - level));
+  const gain = toothV < swingV / 2 ? shareOfWeak : share;
+  return level + gain * Math.min(most, Math.max(-most, value - level));
 }
 
 /**
- * Thresholds of a fitted band: the fractions of the swing, widened about their centre to six noise sigmas (Rice 1944:
- * 1.5e-8 noise crossings per period of the noise bandwidth), to half the swing at most.
- * @param noiseV rms of the filtered signal's noise; NaN: not known, then not widened.
+ * Thresholds of a fitted band: the fractions of the swing, widened about their centre by noise, to half the swing at most.
+ * Noise is the larger of two: six sigmas of its white part (Rice 1944: 1.5e-8 crossings per period of the noise
+ * bandwidth), and one and a half times what the signal came back by on its flanks lately, which sees hum, bumps and bounce
+ * too, of whatever colour.
+ * @param noiseV rms of the filtered signal's white noise; NaN: not known.
+ * @param wobbleV how far the signal came back through mid on a flank lately.
  */
 export function fittedThresholds(
   levels: Levels,
   fractions: Extract<Band, { mode: 'fitted' }>,
   noiseV: number,
+  wobbleV: number,
 ): BandLevels {
   const swingV = levels.highV - levels.lowV;
   const narrowest = (fractions.operateFraction - fractions.releaseFraction) * swingV;
-  const wanted = Number.isNaN(noiseV) ? narrowest : Math.max(narrowest, Math.min(6 * noiseV, swingV / 2));
+  const noisy = Math.max(Number.isNaN(noiseV) ? 0 : 6 * noiseV, 1.5 * wobbleV);
+  const wanted = Math.max(narrowest, Math.min(noisy, swingV / 2));
   const centreV = levels.lowV + ((fractions.operateFraction + fractions.releaseFraction) / 2) * swingV;
   return {
     operateV: Math.min(
