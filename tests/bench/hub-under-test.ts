@@ -32,7 +32,10 @@ export async function startHub(): Promise<HubUnderTest> {
       TURNMARK_LOG_LEVEL: 'warn',
     },
     (output) => output.includes('is running'),
-  );
+  ).catch((error: unknown) => {
+    rmSync(dataDir, { recursive: true, force: true });
+    throw error;
+  });
   const session = await call<{ accessToken: string }>(origin, undefined, 'POST', '/session', {
     email: 'admin@turnmark.example',
     password,
