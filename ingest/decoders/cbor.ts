@@ -164,10 +164,18 @@ function readKey(reader: CborReader): number {
   return word.bit;
 }
 
-/** Reads again, as a value, a key that is none of ours. A known key in chunks counts as unknown and is refused. */
+/** Passes over a key that is none of ours and tells it apart from others. A known key in chunks is refused. */
 function otherKey(reader: CborReader, at: number): string {
   reader.pos = at;
-  const key = reader.value(1);
+  reader.skip();
+  const end = reader.pos;
+  const major = reader.bytes[at]! >> 5;
+  if (major !== 0 && major !== 1 && major !== 3) {
+    const raw = reader.bytes.subarray(at, end);
+    return 'raw' + Buffer.from(raw.buffer, raw.byteOffset, raw.byteLength).toString('latin1');
+  }
+  reader.pos = at;
+  const key = reader.value();
   if (typeof key === 'string' && Object.values(keyNames).includes(key))
     throw new CborFault('invalid', `The key ${quoted(key)} must be written in one piece.`, at);
   return keyId(key);

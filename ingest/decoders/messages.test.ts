@@ -224,6 +224,14 @@ describe('CBOR only', () => {
     expect(result).toMatchObject({ ok: true, blocks: [{ ok: true }, { ok: false }, { ok: true }] });
   });
 
+  it('a key that is nested beyond reason is one block’s fault', () => {
+    const strange = `a1 ${'81'.repeat(20)} 00 00`;
+    expect(hex(`82 ${strange} a3 ${head} ${samples}`)).toMatchObject({
+      ok: true,
+      blocks: [{ ok: false }, { ok: true }],
+    });
+  });
+
   it('gives views where the message allows and copies where not, and never more than the message holds', () => {
     const big = new Int16Array(512).map((_, i) => i - 256);
     const message = encoder.encode({ stream: 's', seq: 0, samples: { A: big, B: big } });
