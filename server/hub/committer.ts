@@ -21,7 +21,8 @@ export interface CommitSource {
   failed(detail: string): void;
 }
 
-const sourcesPerCommit = 8;
+/** Rows of one transaction: many more make one commit block the event loop, fewer make too many commits. */
+const rowsPerCommit = 8;
 
 export type CommitterOptions = {
   spool: Spool;
@@ -80,7 +81,7 @@ export class Committer {
     const batch: CommitBatch = { segments: [], early: [], releasedEarly: [], gaps: [], streams: [] };
     const taken: CommitSource[] = [];
     for (const source of this.#dirty) {
-      if (taken.length === sourcesPerCommit) break;
+      if (batch.segments.length + batch.early.length >= rowsPerCommit) break;
       taken.push(source);
       this.#dirty.delete(source);
       source.collect(batch);
