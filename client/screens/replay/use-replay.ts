@@ -1,0 +1,122 @@
+import { useEffect, useMemo, useRef, useState } from 'react';
+import type { Analysis } from '@/signal/model';
+import { edgesOf, firstWindow } from '@/client/screens/replay/replay-data';
+import {
+  centreOn,
+  clampWindow,
+  follow,
+  neighbourOf,
+  panBy,
+  reveal,
+  sensibleRate,
+  spanOf,
+  zoomAbout,
+} from '@/client/screens/replay/replay-window';
+import type { Window } from '@/client/screens/replay/replay-window';
+
+type Place = { window: Window; cursorS: number };
+export type Replay = ReturnType<typeof useReplay>;
+
+const leastSamples = 12;
+
+/** Where in the capture one is, and the moves: everything that buttons, keys and fingers can do. */
+export function useReplay(capture: { durationS: number; rateHz: number }, analysis: Analysis | null) {
+  const { durationS, rateHz } = capture;
+  const leastS = Math.min(durationS, leastSamples / rateHz);
+  const [place, setPlace] = useState<Place>({
+    window: { fromS: 0, toS: Math.min(durationS, 0.5) },
+    cursorS: 0,
+  });
+  const [playing, setPlaying] = useState(false);
+  const [rate, setRate] = useState<number | null>(null);
+  const [signal, setSignal] = useState<'raw' | 'filtered'>('raw');
+  const [focus, setFocus] = useState<string | null>(null);
+  const touched = useRef(false);
+  const edges = useMemo(() => (analysis ? edgesOf(analysis) : []), [analysis]);
+  const instants = useMemo(() => edges.map((e) => e.t), [edges]);
+  const playRate = rate ?? sensibleRate(spanOf(place.window));
+
+  useEffect(() => {
+    if (analysis && !touched.current) setPlace(firstWindow(analysis, durationS));
+  }, [analysis, durationS]);
+
+  usePlaying(playing, playRate, (byS) =>
+    setPlace(({ window, cursorS }) => {
+      const next = Math.min(durationS, cursorS + byS);
+      return { cursorS: next, window: follow(window, next, durationS) };
+    }),
+  );
+  const atEnd = place.cursorS >= durationS;
+  useEffect(() => {
+    if (atEnd) setPlaying(false);
+  }, [atEnd]);
+
+  const move = (change: (now: Place) => Place) => {
+    touched.current = true;
+    setPlace(change);
+  };
+  const within = (s: number) => Math.min(durationS, Math.max(0, s));
+  return {
+    ...place,
+    durationS,
+    playing,
+    playRate,
+    signal,
+    focus,
+    edges,
+    setRate,
+    setSignal,
+    setFocus,
+    togglePlay: () => {
+      touched.current = true;
+      if (!playing && atEnd) setPlace(({ window }) => ({ cursorS: 0, window: reveal(window, 0, durationS) }));
+      setPlaying(!playing);
+    },
+    /** Puts the cursor somewhere; the window comes along where it must. */
+    seek: (s: number) =>
+      move(({ window }) => ({ cursorS: within(s), window: reveal(window, within(s), durationS) })),
+    step: (byS: number) =>
+      move(({ window, cursorS }) => ({
+        cursorS: within(cursorS + byS),
+        window: reveal(window, within(cursorS + byS), durationS),
+      })),
+    /** The middle of the window goes there, and the cursor with it. */
+    centre: (s: number) =>
+      move(({ window }) => ({ cursorS: within(s), window: centreOn(window, within(s), durationS) })),
+    zoom: (factor: number, aboutS?: number) =>
+      move(({ window, cursorS }) => {
+        const seen = cursorS >= window.fromS && cursorS <= window.toS;
+        const about = aboutS ?? (seen ? cursorS : (window.fromS + window.toS) / 2);
+        return { cursorS, window: zoomAbout(window, factor, about, durationS, leastS) };
+      }),
+    pan: (byS: number) => move(({ window, cursorS }) => ({ cursorS, window: panBy(window, byS, durationS) })),
+    show: (window: Window) =>
+      move(({ cursorS }) => ({ cursorS, window: clampWindow(window, durationS, leastS) })),
+    jump: (way: 1 | -1) => {
+      const to = neighbourOf(instants, place.cursorS, way);
+      if (to !== null) move(({ window }) => ({ cursorS: to, window: reveal(window, to, durationS) }));
+    },
+    hasEdge: (way: 1 | -1) => neighbourOf(instants, place.cursorS, way) !== null,
+    canCloser: spanOf(place.window) > leastS * 1.001,
+    canWider: spanOf(place.window) < durationS * 0.999,
+  };
+}
+
+/** Calls `advance` once a drawn frame with the seconds of signal that went by. */
+function usePlaying(playing: boolean, rate: number, advance: (byS: number) => void): void {
+  const latest = useRef(advance);
+  useEffect(() => {
+    latest.current = advance;
+  });
+  useEffect(() => {
+    if (!playing) return undefined;
+    let before: number | null = null;
+    let request = requestAnimationFrame(function tick(nowMs) {
+      // A page that was hidden must not leap ahead when it comes back.
+      if (before !== null) latest.current((Math.min(100, nowMs - before) / 1000) * rate);
+      before = nowMs;
+      request = requestAnimationFrame(tick);
+    });
+    return () => cancelAnimationFrame(request);
+  }, [playing, rate]);
+}

@@ -1,0 +1,52 @@
+import { View } from 'react-native';
+import { FindingCard } from '@/client/components/finding-card';
+import { foldFindings } from '@/client/components/finding-words';
+import { Plate } from '@/client/components/plate';
+import { StatusWord } from '@/client/components/status-word';
+import { Text } from '@/client/components/text';
+import { sinceText } from '@/client/drawings/speed-words';
+import { space } from '@/client/theme/tokens';
+import type { Finding } from '@/signal/model';
+
+type FindingsListProps = {
+  findings: readonly Finding[];
+  isLive: boolean;
+  /** Stream time now, s. */
+  streamS: number | null;
+  onShow: (finding: Finding) => void;
+};
+
+export function FindingsList({ findings, isLive, streamS, onShow }: FindingsListProps) {
+  const folded = foldFindings(findings);
+  return (
+    <View role="region" aria-label="Findings" style={{ gap: space.m }}>
+      <View style={{ flexDirection: 'row', justifyContent: 'space-between', alignItems: 'baseline' }}>
+        <Text heading={2} weight="medium">
+          Findings
+        </Text>
+        <Text size="small" tone="scribeSoft" figures>
+          {findings.length === 0 ? '' : `${findings.length} ${isLive ? 'now' : 'when last seen'}`}
+        </Text>
+      </View>
+      {folded.length === 0 ? (
+        <Plate style={{ paddingVertical: space.m }}>
+          {isLive ? (
+            <StatusWord status="good" word="Nothing found wrong in the signal now." />
+          ) : (
+            <StatusWord status="unknown" word="Not known: the signal is not live." />
+          )}
+        </Plate>
+      ) : (
+        folded.map(({ finding, follows }) => (
+          <FindingCard
+            key={`${finding.code}${finding.channel}${finding.from}`}
+            finding={finding}
+            follows={follows}
+            {...(streamS === null ? {} : { when: sinceText(Math.max(0, streamS - finding.from)) })}
+            onShow={() => onShow(finding)}
+          />
+        ))
+      )}
+    </View>
+  );
+}

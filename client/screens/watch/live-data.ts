@@ -1,0 +1,49 @@
+import type { LiveFrame } from '@/server/contract';
+import type { RibbonData } from '@/client/drawings/ribbon-types';
+import type { SpeedPoint } from '@/client/drawings/speed-line';
+
+type FrameRibbon = NonNullable<LiveFrame['ribbon']>;
+
+/** What a frame says of the signal, as the ribbon draws it: the band stands still for the length of a window. */
+export function ribbonDataOf(ribbon: FrameRibbon): RibbonData {
+  const { fromS, toS, firstS, stepS, edges, rejected, gaps } = ribbon;
+  return {
+    fromS,
+    toS,
+    edges,
+    rejected,
+    gaps,
+    lanes: ribbon.lanes.map(({ operateV, releaseV, ...lane }) => ({
+      ...lane,
+      firstS,
+      stepS,
+      bands: operateV === null || releaseV === null ? [] : [{ from: fromS, to: toS, operateV, releaseV }],
+    })),
+  };
+}
+
+/** The last minute, `t` counting up to now at 0. */
+export function sparkPoints(
+  history: { agoS: number[]; rpm: (number | null)[] } | null | undefined,
+): SpeedPoint[] {
+  if (!history) return [];
+  return history.agoS
+    .map((agoS, i) => ({ t: -agoS, rpm: history.rpm[i] ?? null }))
+    .filter((point) => point.t >= -60);
+}
+
+/** "teeth" for a toothed wheel, "pole pairs" where positions are those. */
+export function teethWords(count: number, sensing: string): string {
+  const pair = sensing === 'three-hall';
+  return count === 1
+    ? pair
+      ? '1 pole pair a turn'
+      : '1 tooth a turn'
+    : `${count} ${pair ? 'pole pairs' : 'teeth'} a turn`;
+}
+
+/** 20000 reads "20 kS/s". */
+export function rateText(hz: number): string {
+  if (hz >= 1e6) return `${Number((hz / 1e6).toPrecision(3))} MS/s`;
+  return hz >= 1000 ? `${Number((hz / 1000).toPrecision(3))} kS/s` : `${Number(hz.toPrecision(3))} S/s`;
+}

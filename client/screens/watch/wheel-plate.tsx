@@ -1,0 +1,112 @@
+import { View } from 'react-native';
+import { Facts } from '@/client/components/facts';
+import type { Fact } from '@/client/components/facts';
+import { Plate } from '@/client/components/plate';
+import { Table } from '@/client/components/table';
+import { Text } from '@/client/components/text';
+import { shortNumber } from '@/client/components/finding-words';
+import { TableButton } from '@/client/drawings/figure';
+import { WheelFace } from '@/client/drawings/wheel-face';
+import { wheelDrawing } from '@/client/drawings/wheel-geometry';
+import type { LiveFrame } from '@/server/contract';
+import { clockText } from '@/client/screens/watch/watch-model';
+import { space } from '@/client/theme/tokens';
+
+type Face = NonNullable<LiveFrame['wheelFace']>;
+type WheelPlateProps = { face: Face; live: LiveFrame['live']; gearRatio: number; size: number };
+
+export function WheelPlate({ face, live, gearRatio, size }: WheelPlateProps) {
+  const { scale } = wheelDrawing(face, size / 2 - 4);
+  const turns = live.turns === null ? '' : `turn ${Math.floor(live.turns)}`;
+  const since = live.turnsSince ? ` since ${clockText(live.turnsSince).slice(0, 5)}` : '';
+  return (
+    <Plate role="region" label="Wheel face" style={{ gap: space.s }}>
+      <WheelFace
+        face={face}
+        rpm={live.speedRpm === null ? null : live.speedRpm * gearRatio}
+        direction={live.direction}
+        size={size}
+      />
+      <View
+        style={{ flexDirection: 'row', justifyContent: 'space-between', alignItems: 'center', gap: space.s }}
+      >
+        <View style={{ flex: 1 }}>
+          <Text size="tiny" tone="scribeSoft" figures>
+            spacing error × {scale}
+          </Text>
+          <Text size="tiny" tone="scribeSoft" figures>
+            {turns}
+            {since}
+          </Text>
+        </View>
+        <TableButton title="Wheel as a table">{() => <WheelTable face={face} />}</TableButton>
+      </View>
+      {face.numbered ? null : (
+        <Text size="tiny" tone="scribeSoft">
+          Tooth numbers are not fixed to the wheel: no index, gap or set zero gives them one.
+        </Text>
+      )}
+    </Plate>
+  );
+}
+
+function WheelTable({ face }: { face: Face }) {
+  const rows = face.positions.map((p, i) => ({ ...p, number: i + 1 }));
+  return (
+    <Table
+      label="Positions of the wheel"
+      dense
+      rows={rows}
+      keyOf={(p) => String(p.number)}
+      columns={[
+        { title: face.numbered ? 'position' : 'position (not fixed)', numeric: true, cell: (p) => p.number },
+        {
+          title: 'spacing error',
+          numeric: true,
+          cell: (p) => (p.spacingErrorDeg === null ? 'unknown' : `${shortNumber(p.spacingErrorDeg)}°`),
+        },
+        {
+          title: 'swing',
+          numeric: true,
+          cell: (p) =>
+            p.missing ? 'missing tooth' : p.swingV === null ? 'not seen' : `${shortNumber(p.swingV)} V`,
+        },
+      ]}
+    />
+  );
+}
+
+/** The numbers behind the picture; only those that are known. */
+export function NumbersPlate({ live }: { live: LiveFrame['live'] }) {
+  const { margin, rates, phaseDeg, channels, delayS } = live;
+  const facts: Fact[] = [];
+  if (margin) {
+    const sigmas = margin.sigmas === null ? '' : `, ${shortNumber(Number(margin.sigmas.toPrecision(2)))} σ`;
+    facts.push({
+      name: `smallest margin, ${margin.channel}`,
+      value: `${shortNumber(Number(margin.volts.toFixed(3)))} V${sigmas}`,
+      ...(margin.volts < 0 ? { tone: 'warn' as const } : {}),
+    });
+    if (margin.millitesla !== null)
+      facts.push({ name: 'in field', value: `${margin.millitesla.toFixed(2)} mT` });
+  }
+  if (rates.toothHz !== null)
+    facts.push({ name: 'tooth frequency', value: `${rates.toothHz.toFixed(1)} Hz` });
+  if (rates.toothHz && rates.declaredHz)
+    facts.push({ name: 'samples a tooth', value: (rates.declaredHz / rates.toothHz).toFixed(1) });
+  if (phaseDeg !== null) facts.push({ name: 'phase A to B', value: `${phaseDeg.toFixed(1)}°` });
+  const duties = channels.filter((c) => c.duty !== null);
+  if (duties.length > 0)
+    facts.push({
+      name: `duty ${duties.map((c) => c.channel).join(', ')}`,
+      value: duties.map((c) => c.duty!.toFixed(2)).join(', '),
+    });
+  if (delayS !== null && delayS !== 0)
+    facts.push({ name: 'filter delay taken off', value: `${(delayS * 1000).toFixed(2)} ms` });
+  if (facts.length === 0) return null;
+  return (
+    <Plate role="region" label="Numbers">
+      <Facts facts={facts} />
+    </Plate>
+  );
+}
