@@ -7,7 +7,6 @@ import { startFailure } from './start-failure';
 
 try {
   const server = await createServer(configFrom(readEnv()));
-  console.log(greeting(server));
   const stop = () => {
     // What hangs must not keep the process: the spool holds everything that was acked.
     setTimeout(() => process.exit(1), 10_000).unref();
@@ -15,6 +14,7 @@ try {
   };
   process.once('SIGINT', stop);
   process.once('SIGTERM', stop);
+  console.log(greeting(server));
 } catch (error) {
   console.error(startFailure(error) ?? error);
   process.exit(1);

@@ -28,6 +28,10 @@ function knownProblem(error: unknown): ApiProblem | undefined {
 export function errorHandler(log: Logger): ErrorRequestHandler {
   // Express knows an error handler by its four parameters.
   return (error: unknown, req: Request, res: Response, _next) => {
+    if (req.destroyed && (error as { code?: unknown }).code === 'ERR_STREAM_PREMATURE_CLOSE') {
+      log.debug({ path: req.path }, 'the reader went away');
+      return;
+    }
     const known = knownProblem(error);
     if (known === undefined || known.status >= 500)
       log.error({ err: error, method: req.method, path: req.path }, 'request failed');

@@ -76,11 +76,11 @@ const choiceMembers: ReadonlySet<PropertyKey> = new Set(['kind', 'mode', 'type']
 
 type Reason = { path: PropertyKey[]; detail: string; code: string };
 
-/** How far from what was meant a choice is: a wrong `kind` is furthest, then a wrong type of the whole. */
+/** How far from what was meant a choice is: a wrong type of the whole is furthest, then a wrong `kind`. */
 function distance(reasons: readonly Reason[], depth: number): number {
   return reasons.reduce((sum, { path }) => {
     if (choiceMembers.has(path.at(-1) ?? '')) return sum + 1000;
-    return sum + (path.length <= depth ? 100 : 1);
+    return sum + (path.length <= depth ? 10_000 : 1);
   }, 0);
 }
 

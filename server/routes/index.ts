@@ -1,6 +1,7 @@
 /** Every route of the API, in the order of the document. */
 import type { AppContext } from '@/server/context';
 import type { Route } from '@/server/http/route';
+import { captureFileRoutes } from './capture-files';
 import { captureSignalRoutes } from './capture-signal';
 import { captureRoutes } from './captures';
 import { keyRoutes } from './keys';
@@ -16,5 +17,6 @@ export function apiRoutes(context: AppContext): Route[] {
     ...settingsRoutes(context),
     ...captureRoutes(context),
     ...captureSignalRoutes(context),
+    ...captureFileRoutes(context),
   ];
 }

@@ -66,7 +66,7 @@ describe('rigs', () => {
       path = `/api/v1/rigs?limit=2&cursor=${encodeURIComponent(body.nextCursor)}`;
     }
     expect(names.length).toBe(new Set(names).size);
-    expect(new Set(['one', 'two', 'three']).isSubsetOf?.(new Set(names)) ?? true).toBe(true);
+    expect(names.slice(0, 3)).toEqual(['three', 'two', 'one']);
     expect((await engineer('GET', '/api/v1/rigs?limit=101')).status).toBe(422);
     expect((await engineer('GET', '/api/v1/rigs?cursor=bogus')).status).toBe(422);
   });
