@@ -58,6 +58,11 @@ export async function startProbed(
       reject(new Error(`ended with ${code} before it was ready: ${text.slice(-2000)}`)),
     );
   });
+  let isStopping = false;
+  child.once('close', (code, signal) => {
+    if (!isStopping)
+      process.stderr.write(`${args.at(-1)} ended by itself (${code ?? signal}): ${text.slice(-2000)}\n`);
+  });
   return {
     child,
     output: () => text,
@@ -67,6 +72,7 @@ export async function startProbed(
       return answer;
     },
     async stop() {
+      isStopping = true;
       child.kill('SIGTERM');
       const force = setTimeout(() => child.kill('SIGKILL'), 8000);
       await closed;
