@@ -2,7 +2,14 @@
  * One channel from samples to edges: scale, filter, band, edges with both instants, and what is learnt on the way
  * (levels, noise, duty, margin). Everything is decided from samples in their order, never from where a block ended.
  */
-import { createCascade, flushCascade, resetCascade, runCascade } from '@/signal/biquad';
+import {
+  createCascade,
+  flushCascade,
+  resetCascade,
+  runCascade,
+  runCascadeFromInt16,
+  takesCodes,
+} from '@/signal/biquad';
 import type { Cascade } from '@/signal/biquad';
 import {
   createEdgeColumns,
@@ -28,14 +35,16 @@ import { addToBurst, breakBurst, burstLength, createNoiseMeter, rawNoiseV } from
 import type { NoiseMeter } from '@/signal/noise';
 import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline-types';
-import { createRailMeter, watchRails } from '@/signal/rail-meter';
+import { createRailMeter, railStride, watchRails } from '@/signal/rail-meter';
 import type { RailMeter } from '@/signal/rail-meter';
 import { createDelayCurve, dcDelayS, delayAt, noiseGain } from '@/signal/response';
 import type { DelayCurve } from '@/signal/response';
-import { holdsCodes, toVolts } from '@/signal/scale';
+import { holdsCodes, scaleOf, toVolts } from '@/signal/scale';
 
 /** Most samples that one call of `advanceChannel` takes. */
 export const chunkSamples = 1024;
+
+const fewestForNoise = 8;
 
 /** While levels are sought for the first time, so much signal is kept, so that its edges are found afterwards. */
 const rememberedS = 5;
@@ -58,7 +67,7 @@ export class ChannelPath implements DetectorSink {
   delayS: number;
   /** Last accepted edge, samples, delay not taken off. */
   lastEdgeAt = NaN;
-  /** Least and most raw volts of every eighth sample since `restartSpread`. */
+  /** Least and most raw volts of every sixteenth sample since `restartSpread`. */
   spreadLowV = Infinity;
   spreadHighV = -Infinity;
 
@@ -69,6 +78,7 @@ export class ChannelPath implements DetectorSink {
   private readonly bands: BandChange[];
   private readonly cascade: Cascade;
   private readonly gainOfNoise: number;
+  private readonly fromCodes: boolean;
   private readonly delays: DelayCurve;
   private readonly detector: Detector;
   private readonly hunter: Hunter = createHunter();
@@ -111,6 +121,7 @@ export class ChannelPath implements DetectorSink {
     this.oneTooth = options.teethPerTurn === 1;
     this.bands = options.bands;
     this.cascade = createCascade(sections);
+    this.fromCodes = takesCodes(this.cascade);
     this.gainOfNoise = noiseGain(sections, rateHz);
     this.delays = createDelayCurve(sections, rateHz);
     this.delayS = dcDelayS(sections, rateHz);
@@ -149,11 +160,14 @@ export class ChannelPath implements DetectorSink {
     const v = this.scratch;
     const base = at - 1;
     if (this.codes === null) this.learnKind(array);
-    toVolts(array, from, to, this.channel, v, 1);
-    this.feedNoise(v, n, base);
-    this.watchSpread(v, n, base);
-    if (this.rails) watchRails(this.rails, v, 1, n, base);
-    runCascade(this.cascade, v, 1, n + 1);
+    this.watchRaw(array, from, to, at);
+    if (array instanceof Int16Array && this.fromCodes) {
+      const { codeOffset, voltsPerCode } = this.channel;
+      runCascadeFromInt16(this.cascade, array, from, to, codeOffset, voltsPerCode, v, 1);
+    } else {
+      toVolts(array, from, to, this.channel, v, 1);
+      runCascade(this.cascade, v, 1, n + 1);
+    }
     if (this.fresh) {
       v[0] = v[1]!;
       this.fresh = false;
@@ -192,7 +206,8 @@ export class ChannelPath implements DetectorSink {
   /** At fixed places of the stream: what was learnt about noise since the last one takes effect. */
   tick(): void {
     flushCascade(this.cascade);
-    this.noiseV = rawNoiseV(this.noise) * this.gainOfNoise;
+    // With fewer samples a period the differences hold more signal than noise.
+    this.noiseV = this.periodSamples < fewestForNoise ? NaN : rawNoiseV(this.noise) * this.gainOfNoise;
   }
 
   edge(at: number, midAt: number, midStepV: number, rising: boolean, late: boolean, extremeV: number): void {
@@ -246,16 +261,16 @@ export class ChannelPath implements DetectorSink {
     this.spreadHighV = -Infinity;
   }
 
-  private watchSpread(v: Float64Array, n: number, base: number): void {
-    let low = this.spreadLowV;
-    let high = this.spreadHighV;
-    for (let j = 8 - (base % 8); j <= n; j += 8) {
-      const x = v[j]!;
-      if (x < low) low = x;
-      if (x > high) high = x;
+  /** A few raw samples: bursts for the noise, every sixteenth for rails and spread. Takes `array[from..to)`, stream index `at`. */
+  private watchRaw(array: SampleArray, from: number, to: number, at: number): void {
+    const { offset, factor } = scaleOf(array, this.channel);
+    this.feedNoise(array, from, to, at, offset, factor);
+    for (let i = from + ((railStride - (at % railStride)) % railStride); i < to; i += railStride) {
+      const x = (array[i]! - offset) * factor;
+      if (x < this.spreadLowV) this.spreadLowV = x;
+      if (x > this.spreadHighV) this.spreadHighV = x;
+      if (this.rails) watchRails(this.rails, x, at + (i - from));
     }
-    this.spreadLowV = low;
-    this.spreadHighV = high;
   }
 
   wobble(backV: number): void {
@@ -277,22 +292,27 @@ export class ChannelPath implements DetectorSink {
     this.noise.quantumFixed = true;
   }
 
-  private feedNoise(v: Float64Array, n: number, base: number): void {
-    const { burstEvery } = this;
-    let j = 1;
-    while (j <= n) {
-      const phase = (base + j) % burstEvery;
-      if (phase >= burstLength) {
-        j += burstEvery - phase;
-        continue;
+  private feedNoise(
+    array: SampleArray,
+    from: number,
+    to: number,
+    at: number,
+    offset: number,
+    factor: number,
+  ): void {
+    const { burstEvery, noise } = this;
+    let phase = at % burstEvery;
+    let i = from;
+    while (i < to) {
+      // A burst whose begin was not seen is left out.
+      if (phase < burstLength && (phase === 0 || noise.filled === phase)) {
+        const end = Math.min(to, i + burstLength - phase);
+        phase += end - i;
+        for (; i < end; i++) addToBurst(noise, (array[i]! - offset) * factor);
+      } else {
+        i += burstEvery - phase;
+        phase = 0;
       }
-      // A burst that began before this path did is left out.
-      if (phase > 0 && this.noise.filled !== phase) {
-        j += burstLength - phase;
-        continue;
-      }
-      addToBurst(this.noise, v[j]!);
-      j++;
     }
   }
 

@@ -3,7 +3,8 @@
  * the same flank, which peaks did not make it, and what hold-off ate.
  *
  * A state is left through the band: low -> above mid -> above operate (edge), or back below release (a rejected peak).
- * Each zone is its own tight loop. The first sample, and the first arrival beyond a threshold, make no edge.
+ * Each zone is its own tight loop, the two where most samples are spent functions of their own: kept in one, the loops crowd
+ * each other out of the registers and take twice as long. The first sample, and the first arrival beyond a threshold, make no edge.
  * Instants are linear interpolations between neighbouring samples, as (whole sample) + (fraction), so that they do not
  * depend on where a block began.
  */
@@ -104,15 +105,12 @@ export function runDetector(
   while (j <= end) {
     switch (d.zone) {
       case zones.low: {
-        let x = 0;
-        for (; j <= end; j++) {
-          x = v[j]!;
-          if (x > mid) break;
-          if (x < extreme) extreme = x;
-        }
+        d.extremeV = extreme;
+        j = scanLow(d, v, j, end, mid);
+        extreme = d.extremeV;
         if (j > end) break;
         crossMid(d, v, j, base, mid);
-        d.reachV = x;
+        d.reachV = v[j]!;
         d.zone = zones.lowUp;
         break;
       }
@@ -161,15 +159,12 @@ export function runDetector(
         break;
       }
       case zones.high: {
-        let x = 0;
-        for (; j <= end; j++) {
-          x = v[j]!;
-          if (x < mid) break;
-          if (x > extreme) extreme = x;
-        }
+        d.extremeV = extreme;
+        j = scanHigh(d, v, j, end, mid);
+        extreme = d.extremeV;
         if (j > end) break;
         crossMid(d, v, j, base, mid);
-        d.reachV = x;
+        d.reachV = v[j]!;
         d.zone = zones.highDown;
         break;
       }
@@ -243,6 +238,32 @@ export function runDetector(
     }
   }
   d.extremeV = extreme;
+  return j;
+}
+
+/** First index at which `v` is above `mid`, following the trough on the way. */
+function scanLow(d: Detector, v: Float64Array, from: number, end: number, mid: number): number {
+  let lowest = d.extremeV;
+  let j = from;
+  for (; j <= end; j++) {
+    const x = v[j]!;
+    if (x > mid) break;
+    if (x < lowest) lowest = x;
+  }
+  d.extremeV = lowest;
+  return j;
+}
+
+/** First index at which `v` is below `mid`, following the peak on the way. */
+function scanHigh(d: Detector, v: Float64Array, from: number, end: number, mid: number): number {
+  let highest = d.extremeV;
+  let j = from;
+  for (; j <= end; j++) {
+    const x = v[j]!;
+    if (x < mid) break;
+    if (x > highest) highest = x;
+  }
+  d.extremeV = highest;
   return j;
 }
 

@@ -1,11 +1,11 @@
 /**
- * How much of a linear sensor's raw signal stands at a rail, from every eighth sample. For codes the rails are the
+ * How much of a linear sensor's raw signal stands at a rail, from every sixteenth sample. For codes the rails are the
  * converter's ends. For volts they are the ends of the sensor's supply, where an output that saturates stands 0.05 to
  * 8 % of the supply before the rail and does not move at all.
  */
 import type { Channel } from '@/signal/model';
 
-export const railStride = 8;
+export const railStride = 16;
 
 export type RailMeter = {
   lowV: number;
@@ -44,27 +44,17 @@ function supplyEnds({ sensor }: Channel): Pick<RailMeter, 'lowV' | 'highV' | 'fl
   return { lowV: 0.08 * sensor.supplyV, highV: 0.92 * sensor.supplyV, flatOnly: true };
 }
 
-/** @param volts raw volts; `volts[j]` is sample `base + j` of the stream, for j in [from, to]. */
-export function watchRails(
-  meter: RailMeter,
-  volts: Float64Array,
-  from: number,
-  to: number,
-  base: number,
-): void {
-  const first = from + ((railStride - ((base + from) % railStride)) % railStride);
-  for (let j = first; j <= to; j += railStride) {
-    const x = volts[j]!;
-    meter.checked++;
-    if (x >= meter.highV || x <= meter.lowV) {
-      if (!meter.flatOnly || x === meter.previousV) {
-        if (x >= meter.highV) meter.atHigh++;
-        else meter.atLow++;
-        meter.lastAt = base + j;
-      }
+/** One raw sample, V, at stream index `at`. */
+export function watchRails(meter: RailMeter, volts: number, at: number): void {
+  meter.checked++;
+  if (volts >= meter.highV || volts <= meter.lowV) {
+    if (!meter.flatOnly || volts === meter.previousV) {
+      if (volts >= meter.highV) meter.atHigh++;
+      else meter.atLow++;
+      meter.lastAt = at;
     }
-    meter.previousV = x;
   }
+  meter.previousV = volts;
 }
 
 export function restartRails(meter: RailMeter): void {

@@ -9,6 +9,16 @@ export function holdsCodes(array: SampleArray): boolean {
   return !(array instanceof Float32Array || array instanceof Float64Array);
 }
 
+/** What turns a sample of this array into volts: `(sample - offset) * factor`. */
+export function scaleOf(
+  array: SampleArray,
+  channel: Pick<Channel, 'codeOffset' | 'voltsPerCode'>,
+): { offset: number; factor: number } {
+  return holdsCodes(array)
+    ? { offset: channel.codeOffset, factor: channel.voltsPerCode }
+    : { offset: 0, factor: 1 };
+}
+
 /** Writes `source[from..to)` as volts to `out`, beginning at `out[at]`. */
 export function toVolts(
   source: SampleArray,

@@ -15,14 +15,13 @@ export function statusOf(
   const atMost = motion.speedAtMostRpm(nowS);
   const { pulsesPerTurn, gearRatio } = motion.rig.wheel;
   const running = motion.state === 'running';
-  const speedRpm = Number.isNaN(motion.rpm)
-    ? NaN
-    : Math.sign(motion.rpm) * Math.min(Math.abs(motion.rpm), Number.isNaN(atMost) ? Infinity : atMost);
+  const bounded = Math.abs(motion.rpm) > atMost;
   return {
     nowS,
     state: motion.state,
-    speedRpm: known(speedRpm),
-    speedErrorRpm: known(motion.errorRpm),
+    speedRpm: known(bounded ? Math.sign(motion.rpm) * atMost : motion.rpm),
+    // Only the bound is known then: the shaft turns at anything from 0 up to it.
+    speedErrorRpm: known(bounded ? atMost : motion.errorRpm),
     speedAtMostRpm: known(atMost),
     direction: motion.direction,
     pulses: motion.pulses,
@@ -72,7 +71,8 @@ function worstMargin(paths: readonly ChannelPath[]): Margin | null {
   return {
     channel: worst.channel.name,
     volts,
-    sigmas: worst.noiseV > 0 ? volts / worst.noiseV : null,
+    // A signal without any noise (computed, or far above its quantum) has no margin in sigmas.
+    sigmas: worst.noiseV > 1e-9 * Math.abs(volts) ? volts / worst.noiseV : null,
     millitesla:
       kind === 'linear' && sensitivityMvPerMt ? (1000 * volts) / Math.abs(sensitivityMvPerMt) : null,
   };
