@@ -1,1 +1,1 @@
-export { Gallery as default } from '@/client/screens/watch/gallery';
+export { Gallery as default } from '@/client/screens/gallery/gallery';

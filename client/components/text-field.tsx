@@ -52,7 +52,7 @@ export function TextField({ label, help, error, optional, ...rest }: TextFieldPr
             {...({
               'aria-describedby': describedBy,
               'aria-invalid': invalid,
-              'aria-required': !optional,
+              'aria-required': !optional && kind !== 'search',
             } as object)}
             value={value}
             onChangeText={onChange}

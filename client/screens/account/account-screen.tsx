@@ -30,7 +30,7 @@ export function AccountScreen() {
         </Text>
         <Facts
           facts={[
-            { name: 'E-mail', value: user.email },
+            { name: 'Email', value: user.email },
             { name: 'Role', value: user.role },
           ]}
         />

@@ -10,6 +10,7 @@ import { Text } from '@/client/components/text';
 import { useToast } from '@/client/components/toast';
 import { asProblem } from '@/client/data/api-problem';
 import { useRevokeKey, type useKeys } from '@/client/data/keys';
+import { useNow } from '@/client/data/use-now';
 import { MakeKey } from '@/client/screens/connect/make-key';
 import { ProblemState } from '@/client/screens/shared/problem-state';
 import { shortInstant } from '@/client/screens/shared/when';
@@ -56,7 +57,7 @@ export function KeysPlate({ rigId, keys, onKey }: KeysPlateProps) {
       ) : (
         <Loading label="Reading the keys" />
       )}
-      <MakeKey rigId={rigId} onKey={onKey} />
+      <MakeKey rigId={rigId} first={keys.data?.items.length === 0} onKey={onKey} />
       <Confirm
         open={asked !== null}
         title={`Revoke the key ${asked?.name ?? ''}`}
@@ -72,7 +73,7 @@ export function KeysPlate({ rigId, keys, onKey }: KeysPlateProps) {
 
 function KeyRow({ rigKey, onRevoke }: { rigKey: RigKey; onRevoke: () => void }) {
   const colours = useColours();
-  const now = Date.now();
+  const now = useNow(60_000);
   const used = rigKey.lastUsedAt ? `last used ${shortInstant(rigKey.lastUsedAt, now)}` : 'never used';
   return (
     <View

@@ -4,7 +4,7 @@ import { ScrollView, View } from 'react-native';
 import type { Rig } from '@/server/contract';
 import { Plate } from '@/client/components/plate';
 import { Segmented } from '@/client/components/segmented';
-import { FaultShape, WarnShape } from '@/client/components/shapes';
+import { WarnShape } from '@/client/components/shapes';
 import { Text } from '@/client/components/text';
 import { TextField } from '@/client/components/text-field';
 import { CopyButton } from '@/client/screens/connect/copy-button';
@@ -121,7 +121,7 @@ function VoltageLimits({ rig }: { rig: Rig }) {
   return (
     <View role="note" style={{ flexDirection: 'row', gap: space.s }}>
       <View style={{ paddingTop: 1 }}>
-        <FaultShape />
+        <WarnShape />
       </View>
       <View style={{ flex: 1, gap: space.xs }}>
         <Text size="small" weight="medium">

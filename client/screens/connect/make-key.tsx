@@ -11,8 +11,15 @@ import { useMakeKey } from '@/client/data/keys';
 import { CopyButton } from '@/client/screens/connect/copy-button';
 import { space } from '@/client/theme/tokens';
 
+type MakeKeyProps = {
+  rigId: string;
+  /** The rig has no key yet: making one is the thing to do. */
+  first: boolean;
+  onKey: (key: string | null) => void;
+};
+
 /** Makes a key and shows it this once. */
-export function MakeKey({ rigId, onKey }: { rigId: string; onKey: (key: string | null) => void }) {
+export function MakeKey({ rigId, first, onKey }: MakeKeyProps) {
   const [name, setName] = useState('');
   const [error, setError] = useState<string | null>(null);
   const [made, setMade] = useState<RigKeyCreated | null>(null);
@@ -51,7 +58,7 @@ export function MakeKey({ rigId, onKey }: { rigId: string; onKey: (key: string |
       />
       <Button
         label="Make a key"
-        kind="filled"
+        kind={first ? 'filled' : 'outlined'}
         icon="key"
         busy={make.isPending}
         onPress={() => void makeNow()}

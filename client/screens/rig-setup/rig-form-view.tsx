@@ -88,7 +88,7 @@ export function RigFormView({ initial, settings, saveLabel, onSave }: RigFormVie
   const { id, title } = steps[step] ?? steps[0]!;
   return (
     <FormProvider {...form}>
-      <StepBar current={step} onChoose={setStep} />
+      <StepBar current={step} free={initial.name !== ''} onChoose={setStep} />
       <Part id={id} title={title} />
       {id === 'wheel' || id === 'speed' ? <SidePlate settings={settings} /> : null}
       {failed}

@@ -4,8 +4,15 @@ import { steps } from '@/client/screens/rig-setup/steps';
 import { size, space } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
 
+type StepBarProps = {
+  current: number;
+  /** Any step may be chosen: all of them have been filled in before. */
+  free: boolean;
+  onChoose: (step: number) => void;
+};
+
 /** Where one is among the steps; those before can be gone back to. */
-export function StepBar({ current, onChoose }: { current: number; onChoose: (step: number) => void }) {
+export function StepBar({ current, free, onChoose }: StepBarProps) {
   const colours = useColours();
   return (
     <View role="list" aria-label="Steps" style={{ flexDirection: 'row', gap: space.xs }}>
@@ -15,8 +22,8 @@ export function StepBar({ current, onChoose }: { current: number; onChoose: (ste
           <View key={id} role="listitem" style={{ flex: 1 }}>
             <Pressable
               role="button"
-              disabled={i > current}
-              aria-disabled={i > current}
+              disabled={!free && i > current}
+              aria-disabled={!free && i > current}
               {...(i === current ? ({ 'aria-current': 'step' } as object) : {})}
               aria-label={`Step ${i + 1}: ${title}`}
               onPress={() => onChoose(i)}

@@ -7,8 +7,10 @@ import { ribbonDataOf } from '@/client/screens/watch/live-data';
 import type { LiveRigView } from '@/client/data/use-live';
 import { useColours } from '@/client/theme/use-theme';
 
-/** As many columns as a card is wide on a phone; finer would only cost. */
-export const miniWish = { columns: 160, teeth: 5 };
+/** Enough for a card on a phone; finer would only cost. */
+export const miniWish = { columns: 240, teeth: 5 };
+
+const noClip = { lowV: null, highV: null };
 
 type MiniRibbonProps = { rig: Rig; view: LiveRigView; height: number; live: boolean };
 
@@ -48,10 +50,10 @@ export function MiniRibbon({ rig, view, height, live }: MiniRibbonProps) {
               const top = i * laneHeight + 3;
               const y = (v: number) =>
                 top + ((range.highV - v) / (range.highV - range.lowV)) * (laneHeight - 6);
-              const { trace, clipped } = tracePaths(lane, time, y, {
-                lowV: lane.clipLowV,
-                highV: lane.clipHighV,
-              });
+              // A switching sensor stands at the rails by its nature.
+              const kind = rig.channels.find((c) => c.name === lane.channel)?.sensor.kind;
+              const clip = kind === 'linear' ? { lowV: lane.clipLowV, highV: lane.clipHighV } : noClip;
+              const { trace, clipped } = tracePaths(lane, time, y, clip);
               return [
                 band ? (
                   <Rect

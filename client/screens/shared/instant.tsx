@@ -1,12 +1,14 @@
 import { useState } from 'react';
 import { Pressable } from 'react-native';
 import { Text } from '@/client/components/text';
+import { useNow } from '@/client/data/use-now';
 import { exactInstant, shortInstant } from '@/client/screens/shared/when';
 
 /** A time in the reader's zone; a press shows the exact instant. */
 export function Instant({ at }: { at: string }) {
   const [exact, setExact] = useState(false);
-  const shown = exact ? exactInstant(at) : shortInstant(at, Date.now());
+  const nowMs = useNow(60_000);
+  const shown = exact ? exactInstant(at) : shortInstant(at, nowMs);
   return (
     <Pressable
       role="button"

@@ -6,6 +6,7 @@ import { Plate } from '@/client/components/plate';
 import { StatusWord } from '@/client/components/status-word';
 import { TagChips } from '@/client/components/tag-chips';
 import { Text } from '@/client/components/text';
+import { useNow } from '@/client/data/use-now';
 import { captureHealth, lengthWords, titleOf } from '@/client/screens/shelf/capture-words';
 import { capturePath } from '@/client/screens/shared/use-go';
 import { shortInstant } from '@/client/screens/shared/when';
@@ -14,6 +15,7 @@ import { space } from '@/client/theme/tokens';
 /** One capture of the Shelf on a phone; the whole card opens the replay. */
 export function CaptureCard({ capture }: { capture: Capture }) {
   const health = captureHealth(capture.findings);
+  const nowMs = useNow(60_000);
   return (
     <View role="listitem">
       <Link
@@ -31,7 +33,7 @@ export function CaptureCard({ capture }: { capture: Capture }) {
           {capture.tags.length > 0 ? <TagChips tags={capture.tags} /> : null}
           <View style={{ flexDirection: 'row', justifyContent: 'space-between', gap: space.m }}>
             <Text size="small" tone="scribeSoft" figures>
-              {shortInstant(capture.startedAt, Date.now())}
+              {shortInstant(capture.startedAt, nowMs)}
             </Text>
             <Text size="small" tone="scribeSoft" figures>
               {lengthWords(capture.durationS)}

@@ -22,8 +22,8 @@ import { useColours } from '@/client/theme/use-theme';
 
 const form = z.object({
   email: signIn.shape.email
-    .min(1, 'Enter your e-mail address.')
-    .includes('@', { error: 'An e-mail address has an @ in it.' }),
+    .min(1, 'Enter your email address.')
+    .includes('@', { error: 'An email address has an @ in it.' }),
   password: signIn.shape.password.min(1, 'Enter your password.'),
 });
 type Form = z.infer<typeof form>;
@@ -95,7 +95,7 @@ function SignInForm() {
             name={name}
             render={({ field, fieldState }) => (
               <TextField
-                label={name === 'email' ? 'E-mail' : 'Password'}
+                label={name === 'email' ? 'Email' : 'Password'}
                 kind={name}
                 value={field.value}
                 onChange={field.onChange}

@@ -3,7 +3,7 @@ import type { ApiProblem } from '@/client/data/api-problem';
 /** Why a sign-in failed and what to do next, in words. */
 export function signInWords(problem: ApiProblem): string {
   if (problem.kind === 'offline') return `${problem.title}. ${problem.detail}`;
-  if (problem.status === 401) return 'That e-mail and password do not go together. Check both and try again.';
+  if (problem.status === 401) return 'That email and password do not go together. Check both and try again.';
   if (problem.slug === 'too-many-requests') return `Too many tries. ${waitWords(problem.retryAfterS)}`;
   if (problem.slug === 'foreign-origin') {
     return 'The hub does not know this address as its own. Open the page at the address that the hub printed when it started.';
