@@ -220,7 +220,7 @@ export function createAssembler<B extends BlockHead>(options: {
       return fresh;
     },
     rateHz: () => state?.rateHz,
-    snapshot: () => state && structuredClone(state),
+    snapshot: () => state && { ...state, channels: [...state.channels], lost: [...state.lost] },
   };
 }
 

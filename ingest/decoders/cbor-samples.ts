@@ -4,8 +4,9 @@
  */
 import type { SampleArray } from '@/signal/model';
 import { blockLimits } from '../block';
-import { CborFault, indefinite } from './cbor-reader';
+import { indefinite } from './cbor-reader';
 import type { CborReader } from './cbor-reader';
+import { CborFault } from './cbor-values';
 import { firstNonFinite32, firstNonFinite64 } from './fields';
 
 const littleEndianHost = new Uint8Array(new Uint16Array([1]).buffer)[0] === 1;
@@ -32,9 +33,6 @@ takes(81, 'float32', 4, false);
 takes(82, 'float64', 8, false);
 takes(85, 'float32', 4, true);
 takes(86, 'float64', 8, true);
-
-/** Where a plain array stands: its items become codes or volts once the whole block has been read. */
-export type CborSamples = { samples: SampleArray; plain: boolean };
 
 /** Reads the array whose tag was just read; `pointer` names it. Throws a `CborFault`. */
 export function readTypedArray(reader: CborReader, pointer: string): SampleArray {

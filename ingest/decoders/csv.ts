@@ -21,7 +21,8 @@ export type CsvOptions = {
 };
 
 const timeNames = ['t', 't_s', 'time', 'time_s'];
-const stepBytes = 128 * 1024;
+/** Some 3 ms of work. */
+const stepBytes = 32 * 1024;
 const maxRowBytes = 16 * 1024;
 const rowsAtOnce = 65_536;
 
@@ -33,8 +34,8 @@ export function decodeCsv(bytes: Uint8Array, options: CsvOptions = {}): Recordin
 type Table = {
   channels: string[];
   times: Pieces<Float64Array>;
-  /** Half a unit of the last decimal written of each time, s. */
-  halfUnits: Pieces<Float64Array>;
+  /** How many decimals each time was written with; negative for whole tens. */
+  decimals: Pieces<Int8Array>;
   columns: Pieces<Float64Array | Int32Array>[];
 };
 
@@ -155,7 +156,7 @@ function readHeader(
     table: {
       channels,
       times: createPieces(makeFloats),
-      halfUnits: createPieces(makeFloats),
+      decimals: createPieces((length) => new Int8Array(length)),
       columns: channels.map(() =>
         createPieces<Float64Array | Int32Array>(codes ? (length) => new Int32Array(length) : makeFloats),
       ),
@@ -175,7 +176,7 @@ function addRow(table: Table, row: string[], codes: boolean): IngestIssue | unde
     return rowIssue(number, `has the time ${quoted(row[0]!)}, which is no number`);
   const decimals = (written[1] ?? written[2] ?? '').length - Number(written[3] ?? 0);
   table.times.push(timeS);
-  table.halfUnits.push(0.5 * 10 ** -decimals);
+  table.decimals.push(Math.max(-128, Math.min(127, decimals)));
   for (let c = 1; c < width; c++) {
     const field = row[c]!;
     const value = Number(field);
@@ -192,7 +193,7 @@ function addRow(table: Table, row: string[], codes: boolean): IngestIssue | unde
 }
 
 function* finish(table: Table, options: CsvOptions): Steps<RecordingResult> {
-  const { times, halfUnits } = table;
+  const { times } = table;
   const rows = times.length();
   if (rows === 0) return failed(invalid('The body has no row after its header.'));
   const firstS = times.at(0);
@@ -213,7 +214,7 @@ function* finish(table: Table, options: CsvOptions): Steps<RecordingResult> {
     const wantedS = firstS + uneven / rateHz;
     const detail =
       `is uneven: its time is ${times.at(uneven)} s, at ${Number(rateHz.toPrecision(9))} Hz it should be ` +
-      `${Number(wantedS.toPrecision(12))} s, give or take ${Number((0.01 / rateHz + halfUnits.at(uneven)).toPrecision(3))} s`;
+      `${Number(wantedS.toPrecision(12))} s, give or take ${Number((0.01 / rateHz + halfUnitS(table, uneven)).toPrecision(3))} s`;
     return failed(rowIssue(uneven + 1, detail));
   }
   const columns = table.columns.map((column) => column.finish());
@@ -229,15 +230,21 @@ function* rateOf(table: Table, streamRateHz: number | undefined): Steps<number |
 }
 
 /** Index of the first row whose time is off by more than 1 % of the step and half a unit of its last decimal, or -1. */
-function* firstUneven({ times, halfUnits }: Table, rateHz: number): Steps<number> {
+function* firstUneven(table: Table, rateHz: number): Steps<number> {
+  const { times } = table;
   const firstS = times.at(0);
   for (let i = 0, rows = times.length(); i < rows; i++) {
     if (i % rowsAtOnce === rowsAtOnce - 1) yield;
     const wantedS = firstS + i / rateHz;
     const rounding = 4 * Number.EPSILON * Math.abs(wantedS);
-    if (Math.abs(times.at(i) - wantedS) > 0.01 / rateHz + halfUnits.at(i) + rounding) return i;
+    if (Math.abs(times.at(i) - wantedS) > 0.01 / rateHz + halfUnitS(table, i) + rounding) return i;
   }
   return -1;
+}
+
+/** Half a unit of the last decimal with which a time was written, s. */
+function halfUnitS({ decimals }: Table, row: number): number {
+  return 0.5 * 10 ** -decimals.at(row);
 }
 
 function rowIssue(number: number, what: string): IngestIssue {

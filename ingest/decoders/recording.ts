@@ -65,8 +65,10 @@ export function cutRecording(
   return { ok: true, blocks };
 }
 
-/** Numbers collected one by one into pieces of a block's length, without ever copying them. */
-export type Pieces<A extends Float64Array | Int32Array> = {
+type Growing = Float64Array | Int32Array | Int8Array;
+
+/** Numbers collected one by one into pieces of a block's length; a full piece is never copied. */
+export type Pieces<A extends Growing> = {
   push(value: number): void;
   at(index: number): number;
   length(): number;
@@ -74,7 +76,7 @@ export type Pieces<A extends Float64Array | Int32Array> = {
   finish(): A[];
 };
 
-export function createPieces<A extends Float64Array | Int32Array>(make: (length: number) => A): Pieces<A> {
+export function createPieces<A extends Growing>(make: (length: number) => A): Pieces<A> {
   const size = blockLimits.maxSamplesPerChannel;
   const full: A[] = [];
   let current = make(64);

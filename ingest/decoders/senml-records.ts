@@ -1,7 +1,8 @@
 /** The records of a SenML pack, in JSON (RFC 8428 section 5) or CBOR (section 6), a few hundred at a time. */
 import type { IngestIssue } from '../block';
-import { CborFault, CborReader, CborTag, indefinite } from './cbor-reader';
-import type { CborValue } from './cbor-reader';
+import { CborReader, indefinite } from './cbor-reader';
+import { CborFault, CborTag } from './cbor-values';
+import type { CborValue } from './cbor-values';
 import { countKeysInText, countKeysInValue, elementsOfArray, textOf, whereJsonBreaks } from './json-text';
 import { invalid, quoted, unreadable } from './result';
 import { senmlCborLabels, senmlFields } from './senml';

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import { CborFault, CborReader, CborSimple, CborTag } from '@/ingest/decoders/cbor-reader';
-import type { CborValue } from '@/ingest/decoders/cbor-reader';
+import { CborReader } from '@/ingest/decoders/cbor-reader';
+import { CborFault, CborSimple, CborTag } from '@/ingest/decoders/cbor-values';
+import type { CborValue } from '@/ingest/decoders/cbor-values';
 import table from '../fixtures/formats/rfc8949-appendix-a.json';
 
 type Vector = { hex: string; json?: unknown; diagnostic?: string; refused?: string };
