@@ -30,7 +30,8 @@ function files(folder) {
   });
 }
 
-const importLine = /(?:^|\n)\s*(import|export)\s+(type\s+)?(?:[^'";]*?\sfrom\s+)?['"]([^'"]+)['"]|import\(\s*['"]([^'"]+)['"]\s*\)/g;
+const importLine =
+  /(?:^|\n)\s*(import|export)\s+(type\s+)?(?:[^'";]*?\sfrom\s+)?['"]([^'"]+)['"]|import\(\s*['"]([^'"]+)['"]\s*\)/g;
 let breaches = 0;
 for (const top of new Set(Object.keys(rooms).map((r) => r.split('/')[0]))) {
   for (const path of files(join(root, top))) {
@@ -39,7 +40,11 @@ for (const top of new Set(Object.keys(rooms).map((r) => r.split('/')[0]))) {
     const room = roomOf(from);
     for (const match of readFileSync(path, 'utf8').matchAll(importLine)) {
       const name = match[3] ?? match[4];
-      const ours = name.startsWith('@/') ? name.slice(2) : name.startsWith('.') ? relative(root, resolve(dirname(path), name)) : null;
+      const ours = name.startsWith('@/')
+        ? name.slice(2)
+        : name.startsWith('.')
+          ? relative(root, resolve(dirname(path), name))
+          : null;
       const say = (why) => {
         breaches += 1;
         console.error(`${from}: may not import ${name} (${why})`);
@@ -47,7 +52,8 @@ for (const top of new Set(Object.keys(rooms).map((r) => r.split('/')[0]))) {
       if (ours === null) {
         const allowed = packages[room];
         const bare = name.startsWith('@') ? name.split('/').slice(0, 2).join('/') : name.split('/')[0];
-        if (allowed && !allowed.includes(bare) && !(room === 'db' && name.startsWith('node:'))) say(`${room} uses only ${allowed.join(', ')}`);
+        if (allowed && !allowed.includes(bare) && !(room === 'db' && name.startsWith('node:')))
+          say(`${room} uses only ${allowed.join(', ')}`);
         continue;
       }
       const target = roomOf(ours);

@@ -11,7 +11,8 @@ export const root = dirname(dirname(fileURLToPath(import.meta.url)));
 export function run(command, args, options = {}) {
   const done = spawnSync(command, args, { cwd: root, stdio: 'inherit', ...options });
   if (done.error) throw done.error;
-  if (done.status !== 0) throw new Error(`${command} ${args.join(' ')} ended with ${done.status ?? done.signal}`);
+  if (done.status !== 0)
+    throw new Error(`${command} ${args.join(' ')} ended with ${done.status ?? done.signal}`);
 }
 
 export function hashOf(paths) {
@@ -32,7 +33,8 @@ export function hashOf(paths) {
 export function onceFor(name, inputs, output, make) {
   const stampFile = join(root, 'node_modules', '.cache', `turnmark-${name}.sha256`);
   const stamp = hashOf(inputs);
-  if (existsSync(join(root, output)) && existsSync(stampFile) && readFileSync(stampFile, 'utf8') === stamp) return;
+  if (existsSync(join(root, output)) && existsSync(stampFile) && readFileSync(stampFile, 'utf8') === stamp)
+    return;
   make();
   mkdirSync(dirname(stampFile), { recursive: true });
   writeFileSync(stampFile, stamp);
@@ -51,7 +53,16 @@ export function ensureInstalled() {
 export const quietExpo = { CI: '1', EXPO_NO_TELEMETRY: '1', EXPO_OFFLINE: '1', EXPO_NO_DOTENV: '1' };
 
 export function ensureWebBuilt() {
-  const inputs = ['app', 'client', 'signal', 'server/contract', 'assets', 'public', 'app.json', 'package-lock.json'];
+  const inputs = [
+    'app',
+    'client',
+    'signal',
+    'server/contract',
+    'assets',
+    'public',
+    'app.json',
+    'package-lock.json',
+  ];
   onceFor('web', inputs, 'dist/web/index.html', () => {
     console.log('Building the web app …');
     run('npx', ['expo', 'export', '-p', 'web', '--output-dir', 'dist/web'], {
@@ -62,6 +73,16 @@ export function ensureWebBuilt() {
 }
 
 export function ensureServerBuilt() {
-  const inputs = ['server', 'ingest', 'signal', 'db', 'simulator', 'scripts/build-server.mjs', 'package-lock.json'];
-  onceFor('server', inputs, 'dist/server/main.mjs', () => run(process.execPath, ['scripts/build-server.mjs']));
+  const inputs = [
+    'server',
+    'ingest',
+    'signal',
+    'db',
+    'simulator',
+    'scripts/build-server.mjs',
+    'package-lock.json',
+  ];
+  onceFor('server', inputs, 'dist/server/main.mjs', () =>
+    run(process.execPath, ['scripts/build-server.mjs']),
+  );
 }

@@ -10,6 +10,9 @@ try {
   console.error(`Turnmark could not be built: ${error.message}`);
   process.exit(1);
 }
-const hub = spawn(process.execPath, ['--enable-source-maps', 'dist/server/main.mjs'], { cwd: root, stdio: 'inherit' });
+const hub = spawn(process.execPath, ['--enable-source-maps', 'dist/server/main.mjs'], {
+  cwd: root,
+  stdio: 'inherit',
+});
 for (const signal of ['SIGINT', 'SIGTERM']) process.on(signal, () => hub.kill(signal));
 hub.on('exit', (code) => process.exit(code ?? 1));

@@ -24,7 +24,9 @@ function step(name, action) {
   }
   passed += outcome.passed;
   failed += outcome.failed;
-  console.log(`== ${name}: ${outcome.failed === 0 ? 'passed' : 'FAILED'} (${((Date.now() - startedMs) / 1000).toFixed(0)} s)`);
+  console.log(
+    `== ${name}: ${outcome.failed === 0 ? 'passed' : 'FAILED'} (${((Date.now() - startedMs) / 1000).toFixed(0)} s)`,
+  );
 }
 
 function command(name, program, args) {
@@ -38,7 +40,11 @@ function command(name, program, args) {
 function suite(name, args, report, count) {
   step(name, () => {
     const file = join(scratch, report);
-    const done = spawnSync('npx', args(file), { cwd: root, env: { ...env, PLAYWRIGHT_JSON_OUTPUT_NAME: file }, stdio: 'inherit' });
+    const done = spawnSync('npx', args(file), {
+      cwd: root,
+      env: { ...env, PLAYWRIGHT_JSON_OUTPUT_NAME: file },
+      stdio: 'inherit',
+    });
     if (!existsSync(file)) return { passed: 0, failed: 1 };
     const outcome = count(JSON.parse(readFileSync(file, 'utf8')));
     if (done.status !== 0 && outcome.failed === 0) outcome.failed = 1;
@@ -50,10 +56,15 @@ function suite(name, args, report, count) {
 function ensureChromium() {
   if (existsSync('/usr/bin/chromium')) return;
   console.log('Installing Chromium for the browser tests …');
-  const apt = (...args) => spawnSync('apt-get', args, { stdio: ['ignore', 'ignore', 'inherit'], env: { ...env, DEBIAN_FRONTEND: 'noninteractive' } });
+  const apt = (...args) =>
+    spawnSync('apt-get', args, {
+      stdio: ['ignore', 'ignore', 'inherit'],
+      env: { ...env, DEBIAN_FRONTEND: 'noninteractive' },
+    });
   apt('update', '-qq');
   apt('install', '-y', '-qq', 'chromium');
-  if (!existsSync('/usr/bin/chromium')) throw new Error('Chromium is needed at /usr/bin/chromium: apt-get install chromium');
+  if (!existsSync('/usr/bin/chromium'))
+    throw new Error('Chromium is needed at /usr/bin/chromium: apt-get install chromium');
 }
 
 ensureInstalled();
@@ -65,7 +76,8 @@ step('build', () => {
   ensureWebBuilt();
   return { passed: 1, failed: 0 };
 });
-command('types', 'npx', ['tsc', '--noEmit', '-p', '.']);
+command('types of the hub', 'npx', ['tsc', '-p', 'tsconfig.node.json']);
+command('types of the app', 'npx', ['tsc', '-p', 'tsconfig.json']);
 suite(
   'unit, reference and integration tests',
   (file) => ['vitest', 'run', '--reporter=dot', '--reporter=json', `--outputFile.json=${file}`],

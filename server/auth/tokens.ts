@@ -1,4 +1,6 @@
 /** Signed tokens: who they are for is pinned on the way in (RFC 8725), so that one kind never passes for another. */
+import { createSecretKey } from 'node:crypto';
+import type { KeyObject } from 'node:crypto';
 import jwt from 'jsonwebtoken';
 import type { Clock } from '@/server/clock';
 
@@ -13,9 +15,20 @@ type Pinned = { audience: string; typ: string };
 const accessPin: Pinned = { audience: 'api', typ: 'at+jwt' };
 const rigKeyPin: Pinned = { audience: 'ingest', typ: 'rigkey+jwt' };
 
+const keys = new Map<string, KeyObject>();
+
+/** Given a text, the library first tries to read it as a public key at each call, which costs more than all the rest. */
+function keyOf(secret: string): KeyObject {
+  const known = keys.get(secret);
+  if (known !== undefined) return known;
+  const made = createSecretKey(secret, 'utf8');
+  keys.set(secret, made);
+  return made;
+}
+
 function verified(token: string, secret: string, pin: Pinned, clock: Clock): jwt.Jwt | undefined {
   try {
-    const decoded = jwt.verify(token, secret, {
+    const decoded = jwt.verify(token, keyOf(secret), {
       algorithms: ['HS256'],
       audience: pin.audience,
       issuer,
@@ -33,7 +46,7 @@ function verified(token: string, secret: string, pin: Pinned, clock: Clock): jwt
 export function signAccessToken(secret: string, personId: string, familyId: string, clock: Clock): string {
   const iat = Math.floor(clock.nowMs() / 1000);
   const payload = { sid: familyId, iat, exp: iat + accessTokenLifeS };
-  return jwt.sign(payload, secret, {
+  return jwt.sign(payload, keyOf(secret), {
     header: { alg: 'HS256', typ: accessPin.typ },
     algorithm: 'HS256',
     audience: accessPin.audience,
@@ -53,7 +66,7 @@ export function readAccessToken(token: string, secret: string, clock: Clock): Ac
 }
 
 export function signRigKey(secret: string, keyId: string, rigId: string, clock: Clock): string {
-  return jwt.sign({ iat: Math.floor(clock.nowMs() / 1000) }, secret, {
+  return jwt.sign({ iat: Math.floor(clock.nowMs() / 1000) }, keyOf(secret), {
     header: { alg: 'HS256', typ: rigKeyPin.typ, kid: keyId },
     algorithm: 'HS256',
     audience: rigKeyPin.audience,

@@ -23,10 +23,12 @@ export interface CommitSource {
 
 /** Rows of one transaction: many more make one commit block the event loop, fewer make too many commits. */
 const rowsPerCommit = 8;
+/** Blocks of one arrival share a commit even when it need not wait, ms. */
+const soonMs = 3;
 
 export type CommitterOptions = {
   spool: Spool;
-  /** Longest wait of a block for its commit, ms. */
+  /** Commits follow each other no closer than this, ms: the longest wait of a block. */
   intervalMs: number;
   /** Wait before a failed commit is tried again, ms. */
   retryMs: number;
@@ -38,6 +40,7 @@ export class Committer {
   #timer: ReturnType<typeof setTimeout> | undefined;
   #next: ReturnType<typeof setImmediate> | undefined;
   #failing: string | null = null;
+  #lastMs = 0;
 
   constructor(private readonly options: CommitterOptions) {}
 
@@ -48,7 +51,10 @@ export class Committer {
 
   markDirty(source: CommitSource): void {
     this.#dirty.add(source);
-    if (this.#failing === null) this.#schedule(this.options.intervalMs);
+    if (this.#failing !== null) return;
+    // The first block after a pause is not made to wait for others that may not come.
+    const sinceLastMs = performance.now() - this.#lastMs;
+    this.#schedule(Math.max(soonMs, this.options.intervalMs - sinceLastMs));
   }
 
   #schedule(delayMs: number): void {
@@ -99,6 +105,7 @@ export class Committer {
       return false;
     }
     this.#failing = null;
+    this.#lastMs = performance.now();
     for (const source of taken) source.committed();
     return true;
   }

@@ -113,7 +113,7 @@ export function createHub(options: HubOptions): RunningHub {
       }
     },
     refuse(rigId, stream, seq) {
-      session(rigId)?.stream(stream)?.refuse(seq, nowMs());
+      session(rigId)?.stream(stream)?.refuse(seq);
     },
     ackPosition: (rigId, stream) => session(rigId)?.stream(stream)?.ackedSeq,
     watchAcks: (rigId, moved) => session(rigId)?.watchAcks(moved) ?? (() => undefined),

@@ -99,7 +99,7 @@ export class StreamIntake implements CommitSource {
   offer(block: Block, token: number, done: OutcomeCallback, nowMs: number): void {
     const verdict = this.#assembler.offer(block, nowMs / 1000);
     if (verdict.result === 'refused') {
-      this.#assembler.refuse(block.seq, nowMs / 1000);
+      this.#assembler.refuse(block.seq);
       return done(
         { result: 'refused', issue: verdict.issue satisfies IngestIssue },
         this.name,
@@ -116,8 +116,8 @@ export class StreamIntake implements CommitSource {
     this.events.dirty(this);
   }
 
-  refuse(seq: number, nowMs: number): void {
-    this.#assembler.refuse(seq, nowMs / 1000);
+  refuse(seq: number): void {
+    this.#assembler.refuse(seq);
     this.#changed = true;
     this.events.dirty(this);
   }

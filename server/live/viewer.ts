@@ -38,6 +38,7 @@ export class Viewer {
   readonly #beat: ReturnType<typeof setInterval>;
   readonly #ping: ReturnType<typeof setInterval>;
   #expiry: ReturnType<typeof setTimeout> | undefined;
+  #inTurn: Promise<void> = Promise.resolve();
   #alive = true;
   #closed = false;
 
@@ -49,7 +50,10 @@ export class Viewer {
     this.#hello = setTimeout(() => this.close(liveClose.notSignedIn, 'no token came'), helloWithinMs);
     this.#beat = setInterval(() => this.#heartbeat(), heartbeatMs);
     this.#ping = setInterval(() => this.#checkAlive(), pingEveryMs);
-    socket.on('message', (data, isBinary) => void this.#receive(data as Buffer, isBinary));
+    socket.on('message', (data, isBinary) => {
+      // In order, also while the token is still being checked: a viewer need not wait for its welcome.
+      this.#inTurn = this.#inTurn.then(() => this.#receive(data as Buffer, isBinary));
+    });
     socket.on('pong', () => (this.#alive = true));
     socket.on('close', () => this.#dispose());
     socket.on('error', () => socket.terminate());
@@ -62,6 +66,7 @@ export class Viewer {
   }
 
   async #receive(data: Buffer, isBinary: boolean): Promise<void> {
+    if (this.#closed) return;
     if (isBinary || data.length > maxMessageBytes) return this.close(1003, 'JSON text only');
     let json: unknown;
     try {
