@@ -10,7 +10,7 @@ export type Fact = { name: string; value: string; tone?: ColourName };
 export function Facts({ facts }: { facts: readonly Fact[] }) {
   return createElement(
     'dl',
-    { style: { margin: 0, display: 'flex', flexDirection: 'column', gap: space.xs } },
+    { style: { margin: 0, display: 'flex', flexDirection: 'column', gap: 2 } },
     facts.map((fact) => (
       <View key={fact.name} style={{ flexDirection: 'row', justifyContent: 'space-between', gap: space.m }}>
         {createElement(

@@ -59,7 +59,7 @@ export function FindingCard({ finding, when, onShow, follows = [] }: FindingCard
           label="Show me"
           longLabel={`Show me: ${message}`}
           onPress={onShow}
-          style={{ alignSelf: 'flex-start', paddingHorizontal: 0 }}
+          style={{ alignSelf: 'flex-start', paddingHorizontal: 0, marginBottom: -space.s }}
         />
       ) : null}
     </Plate>

@@ -25,9 +25,9 @@ const make = (change: Partial<Finding>): Finding => ({ ...base, ...change });
 
 describe('evidenceText', () => {
   it('takes the unit from the name', () => {
-    expect(evidenceText({ peakV: 1.7, lostSamples: 48, lagDeg: 88.71, source: 'seq' })).toBe(
-      'peak 1.7 V, lost samples 48, lag 88.71°, source seq',
-    );
+    expect(
+      evidenceText({ peakV: 1.7, turnsInARow: 312, lostSamples: 48, lagDeg: 88.71, source: 'seq' }),
+    ).toBe('peak 1.7 V, turns in a row 312, lost samples 48, lag 88.71°, source seq');
   });
   it('keeps a name that is only a unit', () => {
     expect(evidenceText({ V: 2 })).toBe('v 2');

@@ -27,7 +27,10 @@ const units: Record<string, string> = {
 export function evidenceText(evidence: Finding['evidence']): string {
   return Object.entries(evidence)
     .map(([name, value]) => {
-      const words = name.replace(/([a-z0-9])([A-Z])/g, '$1 $2').split(' ');
+      const words = name
+        .replace(/([a-z0-9])([A-Z])/g, '$1 $2')
+        .replace(/([A-Z])([A-Z][a-z])/g, '$1 $2')
+        .split(' ');
       const unit = words.length > 1 ? units[words.at(-1)!] : undefined;
       if (unit) words.pop();
       const shown = typeof value === 'number' ? shortNumber(value) : value;

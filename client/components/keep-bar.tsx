@@ -11,7 +11,7 @@ type KeepBarProps = {
   lookbackS: number;
   seconds: number;
   onSeconds: (seconds: number) => void;
-  onKeep: () => void;
+  onKeep: (seconds: number) => void;
   busy: boolean;
   /** Why nothing can be kept now, else null. */
   blocked: string | null;
@@ -38,13 +38,13 @@ export function KeepBar({ lookbackS, seconds, onSeconds, onKeep, busy, blocked }
         backgroundColor: colours.ground,
       }}
     >
-      <View style={{ width: 104 }}>
+      <View style={{ width: wide ? 92 : 104 }}>
         <BareSelect
           label={`Seconds to keep, of ${lookbackWords(lookbackS)} lookback`}
           value={String(picked)}
           options={choices.map((c) => ({ value: String(c.seconds), label: c.label }))}
           onChange={(value) => onSeconds(Number(value))}
-          height={wide ? size.button : 40}
+          height={wide ? size.button : size.target}
         />
         {wide ? null : (
           <Text size="tiny" tone="scribeSoft" figures style={{ textAlign: 'center', marginTop: 4 }}>
@@ -54,12 +54,12 @@ export function KeepBar({ lookbackS, seconds, onSeconds, onKeep, busy, blocked }
       </View>
       <Button
         kind="filled"
-        tall
+        tall={!wide}
         label={blocked ?? keepWords(picked, lookbackS)}
         disabled={blocked !== null}
         busy={busy}
-        onPress={onKeep}
-        style={{ flex: 1, minWidth: wide ? 240 : 0 }}
+        onPress={() => onKeep(picked)}
+        style={{ flex: 1, minWidth: wide ? 196 : 0 }}
       />
     </View>
   );

@@ -24,8 +24,8 @@ export function SchemeChoice() {
       onChange={setScheme}
       options={[
         { value: 'system', label: 'As the system' },
-        { value: 'steel', label: 'Steel (light)' },
-        { value: 'dye', label: 'Dye (dark)' },
+        { value: 'steel', label: 'Light' },
+        { value: 'dye', label: 'Dark' },
       ]}
     />
   );

@@ -47,7 +47,13 @@ export function Screen({
       <ScrollView
         style={{ flex: 1 }}
         contentContainerStyle={[
-          { padding: space.l, paddingTop: space.m, gap: space.l, flexGrow: 1, width: '100%' },
+          {
+            padding: space.l,
+            paddingTop: wide ? space.m : space.xs,
+            gap: wide ? space.l : space.m,
+            flexGrow: 1,
+            width: '100%',
+          },
           limit,
         ]}
       >
@@ -75,12 +81,17 @@ export function ScreenHeader({ title, subtitle, back, actions }: HeaderProps) {
       }}
     >
       {back ? <IconButton icon="back" label={back.label} onPress={() => router.navigate(back.href)} /> : null}
-      <View style={{ flex: 1, minWidth: 0, paddingTop: wide ? 4 : 9 }}>
-        <Text heading={1} size={wide ? 'title' : 'lead'} weight="medium" lines={2}>
+      <View style={{ flex: 1, minWidth: 0, paddingTop: wide ? 4 : 8 }}>
+        <Text
+          heading={1}
+          size={title.length > 44 ? (wide ? 'lead' : 'body') : wide ? 'title' : 'lead'}
+          weight="medium"
+          lines={3}
+        >
           {title}
         </Text>
         {subtitle ? (
-          <Text size="small" tone="scribeSoft" figures>
+          <Text size={wide ? 'small' : 'tiny'} tone="scribeSoft" figures>
             {subtitle}
           </Text>
         ) : null}

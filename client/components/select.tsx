@@ -64,7 +64,7 @@ export function BareSelect<V extends string>({
         appearance: 'none',
         width: '100%',
         minHeight: height,
-        padding: `0 ${space.huge - 12}px 0 ${space.m}px`,
+        padding: `0 ${space.xxl}px 0 ${space.m}px`,
         border: `${invalid ? 2 : 1}px solid ${invalid ? colours.fault : colours.scribeSoft}`,
         borderRadius: 0,
         background: colours.plateRaised,

@@ -30,8 +30,6 @@ export function RibbonLaneDrawing({ box, time, gaps, hatchId, last }: LaneProps)
     { lowV: lane.clipLowV, highV: lane.clipHighV },
     breaks,
   );
-  const right = time.x(time.toS);
-  const left = time.x(time.fromS);
   return (
     <G>
       <Band box={box} time={time} gaps={gaps} hatchId={hatchId} />
@@ -53,15 +51,28 @@ export function RibbonLaneDrawing({ box, time, gaps, hatchId, last }: LaneProps)
           strokeLinecap="round"
         />
       ) : null}
-      {last ? null : (
-        <Line x1={left} x2={right} y1={bottom} y2={bottom} stroke={colours.hairline} strokeWidth={1} />
-      )}
+      {last ? null : <Separator time={time} gaps={gaps} y={bottom} />}
       <SvgText x={0} y={box.top + (box.thin ? (box.bottom - box.top) / 2 : 10)} tone="scribe" size={14} code>
         {lane.channel}
       </SvgText>
       {box.thin ? null : <VoltLabels box={box} y={y} />}
     </G>
   );
+}
+
+function Separator({ time, gaps, y }: { time: TimeScale; gaps: readonly RibbonGap[]; y: number }) {
+  const colours = useColours();
+  return withoutGaps({ from: time.fromS, to: time.toS }, gaps).map((s) => (
+    <Line
+      key={s.from}
+      x1={time.x(s.from)}
+      x2={time.x(s.to)}
+      y1={y}
+      y2={y}
+      stroke={colours.hairline}
+      strokeWidth={1}
+    />
+  ));
 }
 
 function Band({ box, time, gaps, hatchId }: Omit<LaneProps, 'last'>) {

@@ -57,20 +57,21 @@ export function speedPath(
     }
     const column = Math.floor(x(t) / columnPx);
     const stop = breaks[at] ?? Infinity;
-    let low = rpm;
-    let high = rpm;
-    let last = rpm;
+    let low = i;
+    let high = i;
     let j = i + 1;
     for (; j < points.length; j++) {
       const next = points[j]!;
       if (next.rpm === null || next.t >= stop || Math.floor(x(next.t) / columnPx) !== column) break;
-      low = Math.min(low, next.rpm);
-      high = Math.max(high, next.rpm);
-      last = next.rpm;
+      if (next.rpm < points[low]!.rpm!) low = j;
+      if (next.rpm > points[high]!.rpm!) high = j;
     }
-    const px = x(t).toFixed(1);
-    d += `${pen ? 'L' : 'M'}${px} ${y(rpm).toFixed(1)}${pen || j > i + 1 ? '' : 'h.01'}`;
-    if (j > i + 1) d += `L${px} ${y(high).toFixed(1)}L${px} ${y(low).toFixed(1)}L${px} ${y(last).toFixed(1)}`;
+    const kept = [...new Set([i, low, high, j - 1])].sort((a, b) => a - b);
+    kept.forEach((k, nth) => {
+      const point = points[k]!;
+      d += `${pen || nth > 0 ? 'L' : 'M'}${x(point.t).toFixed(1)} ${y(point.rpm!).toFixed(1)}`;
+    });
+    if (!pen && kept.length === 1) d += 'h.01';
     pen = true;
     i = j;
   }

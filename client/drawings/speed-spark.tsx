@@ -15,7 +15,7 @@ export function SpeedSpark({ points, height = 48 }: { points: readonly SpeedPoin
   const colours = useColours();
   const extremes = speedExtremes(points);
   const words = extremes
-    ? [`${sparkSeconds} s · low ${rpmText(extremes.low)}`, `high ${rpmText(extremes.high)}`]
+    ? [`${sparkSeconds} s · low ${sparkNumber(extremes.low)}`, `high ${sparkNumber(extremes.high)}`]
     : [`${sparkSeconds} s · no speed known`, ''];
   return (
     <View style={{ gap: space.xs }}>
@@ -67,4 +67,9 @@ export function SpeedSpark({ points, height = 48 }: { points: readonly SpeedPoin
       </View>
     </View>
   );
+}
+
+/** Decimals only where they say something. */
+function sparkNumber(rpm: number): string {
+  return Math.abs(rpm) >= 100 ? rpmText(Math.round(rpm)).replace('.0', '') : rpmText(rpm);
 }

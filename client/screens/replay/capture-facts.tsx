@@ -8,7 +8,6 @@ import { Text } from '@/client/components/text';
 import { shortNumber } from '@/client/components/finding-words';
 import { durationText } from '@/client/drawings/time-axis';
 import { bandWords, filterWords, methodWords, wheelWords } from '@/client/screens/replay/settings-words';
-import { exactInstant } from '@/client/screens/shared/when';
 import { rateText } from '@/client/screens/watch/live-data';
 import { space } from '@/client/theme/tokens';
 import type { Capture } from '@/server/contract';
@@ -60,7 +59,7 @@ export function CaptureFacts({ capture, analysis }: { capture: Capture; analysis
   const { settings, rig } = capture;
   const kept: Fact[] = [
     { name: 'rig', value: rig.name },
-    { name: 'first sample', value: exactInstant(capture.startedAt) },
+    { name: 'first sample', value: momentText(capture.startedAt) },
     { name: 'length', value: durationText(capture.durationS) },
     { name: 'sample rate', value: rateText(capture.rateHz) },
     { name: 'channels', value: capture.channels.join(', ') },
@@ -112,4 +111,9 @@ function countedFacts(analysis: Analysis): Fact[] {
   if (analysis.delayS !== 0)
     facts.push({ name: 'filter delay taken off', value: durationText(Math.abs(analysis.delayS)) });
   return facts;
+}
+
+/** The instant to the second, in the reader's zone. */
+function momentText(instant: string): string {
+  return new Date(instant).toLocaleString(undefined, { dateStyle: 'medium', timeStyle: 'medium' });
 }

@@ -4,7 +4,7 @@ import { IconButton } from '@/client/components/icon-button';
 import { BareSelect } from '@/client/components/select';
 import { playRates, spanOf } from '@/client/screens/replay/replay-window';
 import type { Replay } from '@/client/screens/replay/use-replay';
-import { space } from '@/client/theme/tokens';
+import { size, space } from '@/client/theme/tokens';
 
 /** Every move without dragging: edge to edge, play, how fast, raw or filtered, closer, wider, earlier, later. */
 export function ReplayControls({ replay }: { replay: Replay }) {
@@ -13,20 +13,21 @@ export function ReplayControls({ replay }: { replay: Replay }) {
   return (
     <View style={{ gap: space.s }}>
       <View style={row}>
-        <View style={{ flexDirection: 'row', gap: space.s }}>
+        <View style={{ flexDirection: 'row', gap: tightPx }}>
           <IconButton
             kind="outlined"
             icon="edgeBack"
             label="To the edge before"
             disabled={!replay.hasEdge(-1)}
             onPress={() => replay.jump(-1)}
+            style={narrow}
           />
           <IconButton
             kind="filled"
             icon={replay.playing ? 'pause' : 'play'}
             label={replay.playing ? 'Pause' : 'Play'}
             onPress={replay.togglePlay}
-            style={{ width: 64 }}
+            style={{ width: 50 }}
           />
           <IconButton
             kind="outlined"
@@ -34,10 +35,11 @@ export function ReplayControls({ replay }: { replay: Replay }) {
             label="To the next edge"
             disabled={!replay.hasEdge(1)}
             onPress={() => replay.jump(1)}
+            style={narrow}
           />
         </View>
-        <View style={{ flexDirection: 'row', gap: space.s, marginLeft: 'auto' }}>
-          <View style={{ width: 112 }}>
+        <View style={{ flexDirection: 'row', gap: tightPx, marginLeft: 'auto' }}>
+          <View style={{ width: 104 }}>
             <BareSelect
               label="Replay speed"
               value={String(replay.playRate)}
@@ -49,7 +51,7 @@ export function ReplayControls({ replay }: { replay: Replay }) {
             label={replay.signal}
             longLabel={`${replay.signal} signal: change to ${other}`}
             onPress={() => replay.setSignal(other)}
-            style={{ minWidth: 92, paddingHorizontal: space.m }}
+            style={{ minWidth: 82, paddingHorizontal: space.s }}
           />
         </View>
       </View>
@@ -83,7 +85,8 @@ export function ReplayControls({ replay }: { replay: Replay }) {
           onPress={() => replay.pan(span / 2)}
         />
         <Button
-          label="Whole capture"
+          label="Whole"
+          longLabel="Whole capture"
           disabled={!replay.canWider}
           onPress={() => replay.show({ fromS: 0, toS: replay.durationS })}
           style={{ marginLeft: 'auto', paddingHorizontal: space.m }}
@@ -93,4 +96,7 @@ export function ReplayControls({ replay }: { replay: Replay }) {
   );
 }
 
-const row = { flexDirection: 'row', flexWrap: 'wrap', gap: space.s } as const;
+// All of a row must stand side by side on a phone of 390 px.
+const tightPx = 6;
+const row = { flexDirection: 'row', flexWrap: 'wrap', gap: tightPx } as const;
+const narrow = { minWidth: size.target };

@@ -83,10 +83,14 @@ export function firstWindow(analysis: Analysis, durationS: number): { window: Wi
   const worst = [...analysis.findings].sort((a, b) => rank[a.severity] - rank[b.severity] || a.at - b.at)[0];
   const at = Math.min(durationS, Math.max(0, worst?.at ?? 0));
   const counted = Object.values(analysis.channels)[0]?.edges.filter((e) => e.rising) ?? [];
-  const i = Math.min(firstAfter(counted, at), Math.max(0, counted.length - 5));
-  const a = counted[Math.max(0, i - 4)];
-  const b = counted[Math.min(counted.length - 1, i + 4)];
-  const span = Math.min(durationS, a && b && b.t > a.t ? Math.min(b.t - a.t, 2) : 0.5);
+  const i = firstAfter(counted, at);
+  const near = counted.slice(Math.max(0, i - 8), i + 8);
+  const periods = near
+    .slice(1)
+    .map((e, k) => e.t - near[k]!.t)
+    .sort((a, b) => a - b);
+  const usual = periods[periods.length >> 1];
+  const span = Math.min(durationS, usual === undefined ? 0.5 : Math.min(8 * usual, 4));
   const fromS = Math.min(Math.max(0, at - span / 2), durationS - span);
   return { window: { fromS, toS: fromS + span }, cursorS: at };
 }

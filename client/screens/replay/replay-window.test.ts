@@ -57,6 +57,7 @@ describe('fetchFor', () => {
 describe('playing', () => {
   it('chooses a rate at which the window takes seconds', () => {
     expect(sensibleRate(0.4)).toBe(0.05);
+    expect(sensibleRate(0.033)).toBe(0.01);
     expect(sensibleRate(20)).toBe(1);
     expect(sensibleRate(1e-6)).toBe(0.001);
   });

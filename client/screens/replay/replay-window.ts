@@ -66,7 +66,7 @@ export const playRates = [0.001, 0.01, 0.05, 0.25, 1] as const;
 
 /** Slow enough that the window takes some seconds to pass. */
 export function sensibleRate(spanS: number): number {
-  return [...playRates].reverse().find((rate) => spanS / rate >= 4) ?? playRates[0];
+  return [...playRates].reverse().find((rate) => spanS / rate >= 2) ?? playRates[0];
 }
 
 /** The neighbour of `s` in sorted instants; null at the end. */

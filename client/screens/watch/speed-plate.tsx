@@ -47,33 +47,24 @@ export function SpeedPlate({ now, method, points, onFar }: SpeedPlateProps) {
       </View>
       <Pressable role="button" aria-label={`${spoken(now)}. Far view`} onPress={onFar}>
         <BigSpeed saying={saying} most={wide ? 60 : 72} />
-      </Pressable>
-      <Text size="small" tone={saying.loud ? 'fault' : 'scribeSoft'} figures style={{ minHeight: 20 }}>
-        {words}
-      </Text>
-      <View style={{ marginTop: space.s }}>
-        <SpeedSpark points={points} height={wide ? 40 : 48} />
-      </View>
-      <View
-        style={{
-          flexDirection: 'row',
-          justifyContent: 'flex-end',
-          marginBottom: -space.m,
-          marginRight: -space.s,
-        }}
-      >
-        <Pressable
-          role="button"
-          aria-label="Far view"
-          onPress={onFar}
-          style={{ minWidth: 44, minHeight: 44, alignItems: 'center', justifyContent: 'center' }}
-        >
+        <View style={{ position: 'absolute', right: 0, top: 0 }}>
           <Icon name="expand" size={20} tone="scribeSoft" />
-        </Pressable>
+        </View>
+      </Pressable>
+      <View style={{ flexDirection: 'row', alignItems: 'center', marginRight: -space.m, minHeight: 44 }}>
+        <Text
+          size={wide ? 'tiny' : 'small'}
+          tone={saying.loud ? 'fault' : 'scribeSoft'}
+          figures
+          style={{ flex: 1 }}
+        >
+          {words}
+        </Text>
         <TableButton title="Speed of the last 60 s as a table">
           {() => <SpeedTable points={points} />}
         </TableButton>
       </View>
+      <SpeedSpark points={points} height={wide ? 40 : 48} />
       <Hidden
         polite
       >{`${saying.big.kind === 'word' ? saying.big.text : (saying.directionWord ?? '')}, ${health.word}`}</Hidden>

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { Finding } from '@/signal/model';
 import type { LiveRigView } from '@/client/data/use-live';
-import { demoFrame } from '@/client/screens/watch/demo-frame';
+import { demoFrame } from '@/client/screens/gallery/demo-frame';
 import { watchNow } from '@/client/screens/watch/watch-model';
 
 const rig = { sensing: 'quadrature' as const };

@@ -7,7 +7,8 @@ import { useToast } from '@/client/components/toast';
 import type { LiveRigView } from '@/client/data/use-live';
 import type { FindingsList } from '@/client/screens/watch/findings-list';
 import { rateText, ribbonDataOf, sparkPoints, teethWords } from '@/client/screens/watch/live-data';
-import type { RibbonControls, RibbonPlate } from '@/client/screens/watch/ribbon-plate';
+import type { RibbonControlsProps } from '@/client/screens/watch/ribbon-controls';
+import type { RibbonPlate } from '@/client/screens/watch/ribbon-plate';
 import { spanText } from '@/client/screens/watch/span';
 import type { SpeedPlate } from '@/client/screens/watch/speed-plate';
 import type { WatchControls } from '@/client/screens/watch/use-watch-controls';
@@ -79,7 +80,7 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
         ? 'The signal stands here once the board sends its first block.'
         : 'No signal to draw yet.',
   };
-  const buttons: ComponentProps<typeof RibbonControls> = {
+  const buttons: RibbonControlsProps = {
     held: controls.held !== null,
     onHold: () => controls.hold(frame),
     spanLabel: spanText(controls.span),
@@ -110,7 +111,7 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
     lookbackS: live?.lookbackS ?? 0,
     seconds: keepSeconds,
     onSeconds: (keepSeconds) => changePreferences({ keepSeconds }),
-    onKeep: () => keeping.keep(keepSeconds),
+    onKeep: keeping.keep,
     busy: keeping.busy,
     blocked: !live ? 'Waiting for the hub' : live.lookbackS <= 0 ? 'Nothing to keep yet' : null,
   };

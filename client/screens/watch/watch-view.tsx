@@ -6,7 +6,8 @@ import { Text } from '@/client/components/text';
 import { lookbackWords } from '@/client/components/keep-words';
 import { CautionLine } from '@/client/screens/watch/caution';
 import { FindingsList } from '@/client/screens/watch/findings-list';
-import { RibbonControls, RibbonPlate } from '@/client/screens/watch/ribbon-plate';
+import { RibbonChoices, RibbonControls } from '@/client/screens/watch/ribbon-controls';
+import { RibbonPlate } from '@/client/screens/watch/ribbon-plate';
 import { SpeedPlate } from '@/client/screens/watch/speed-plate';
 import { useWatchParts } from '@/client/screens/watch/watch-parts';
 import type { WatchViewProps } from '@/client/screens/watch/watch-parts';
@@ -37,6 +38,7 @@ function PhoneWatch(props: WatchViewProps) {
       <View style={{ gap: space.s }}>
         <RibbonPlate {...parts.ribbon} />
         <RibbonControls {...parts.controls} />
+        <RibbonChoices {...parts.controls} />
       </View>
       <FindingsList {...parts.findings} />
       {parts.wheel ? <WheelPlate {...parts.wheel} size={280} /> : null}
@@ -61,7 +63,7 @@ function WideWatch(props: WatchViewProps) {
         >
           <ScreenHeader title={rig.name} subtitle={parts.subtitle} />
           <SpeedPlate {...parts.speed} />
-          {parts.wheel ? <WheelPlate {...parts.wheel} size={224} /> : null}
+          {parts.wheel ? <WheelPlate {...parts.wheel} size={236} /> : null}
           {parts.live ? <NumbersPlate live={parts.live} /> : null}
         </ScrollView>
         <ScrollView
@@ -70,7 +72,10 @@ function WideWatch(props: WatchViewProps) {
         >
           <View style={{ flexDirection: 'row', justifyContent: 'space-between' }}>
             {tabs ?? <View />}
-            <SchemeSwitch />
+            <View style={{ flexDirection: 'row', gap: space.s, alignItems: 'center' }}>
+              <RibbonChoices {...parts.controls} />
+              <SchemeSwitch />
+            </View>
           </View>
           {parts.problem}
           <RibbonPlate {...parts.ribbon} />

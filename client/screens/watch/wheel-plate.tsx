@@ -20,7 +20,7 @@ export function WheelPlate({ face, live, gearRatio, size }: WheelPlateProps) {
   const turns = live.turns === null ? '' : `turn ${Math.floor(live.turns)}`;
   const since = live.turnsSince ? ` since ${clockText(live.turnsSince).slice(0, 5)}` : '';
   return (
-    <Plate role="region" label="Wheel face" style={{ gap: space.s }}>
+    <Plate role="region" label="Wheel face" style={{ gap: 0, paddingTop: space.m, paddingBottom: space.xs }}>
       <WheelFace
         face={face}
         rpm={live.speedRpm === null ? null : live.speedRpm * gearRatio}
@@ -81,12 +81,11 @@ export function NumbersPlate({ live }: { live: LiveFrame['live'] }) {
   const { margin, rates, phaseDeg, channels, delayS } = live;
   const facts: Fact[] = [];
   if (margin) {
-    const sigmas = margin.sigmas === null ? '' : `, ${shortNumber(Number(margin.sigmas.toPrecision(2)))} σ`;
-    facts.push({
-      name: `smallest margin, ${margin.channel}`,
-      value: `${shortNumber(Number(margin.volts.toFixed(3)))} V${sigmas}`,
-      ...(margin.volts < 0 ? { tone: 'warn' as const } : {}),
-    });
+    const volts = shortNumber(Number(margin.volts.toFixed(3)));
+    const tone = margin.volts < 0 ? { tone: 'warn' as const } : {};
+    facts.push({ name: `smallest margin, ${margin.channel}`, value: `${volts} V`, ...tone });
+    if (margin.sigmas !== null)
+      facts.push({ name: 'in sigmas of noise', value: margin.sigmas.toFixed(1).replace('-', '\u2212') });
     if (margin.millitesla !== null)
       facts.push({ name: 'in field', value: `${margin.millitesla.toFixed(2)} mT` });
   }
