@@ -1,4 +1,4 @@
-import fc from 'fast-check';
+import * as fc from 'fast-check';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { planColumns } from './capture-store/columns';
 import { createCaptureStore } from './captures';
@@ -221,10 +221,6 @@ describe('a keep that fails', () => {
 
 describe('columns', () => {
   const length = 700_000;
-  const holes: [number, number][] = [
-    [100_003, 100_040],
-    [300_000, 420_000],
-  ];
   const scaling = { voltsPerCode: -0.002, codeOffset: 100 };
   let values: Float64Array;
   let id: string;

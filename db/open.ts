@@ -126,7 +126,9 @@ function unwritable(dataDir: string, cause: unknown): DbOpenError {
 
 function openError(error: unknown, name: string, dataDir: string): unknown {
   if (error instanceof DbOpenError) return error;
-  const code = sqliteCode(error) ?? '';
+  const code = sqliteCode(error);
+  // Not the file's fault: its stack is what helps.
+  if (code === null) return error;
   if (code.startsWith('SQLITE_BUSY') || code.startsWith('SQLITE_LOCKED')) {
     return new DbOpenError('locked', `Another hub is running on the data folder ${dataDir}.`, {
       cause: error,
@@ -142,11 +144,8 @@ function openError(error: unknown, name: string, dataDir: string): unknown {
       cause: error,
     });
   }
-  // better-sqlite3 reports a missing folder as a TypeError of its own.
-  if (/^SQLITE_(CANTOPEN|READONLY|IOERR|PERM|AUTH)/.test(code) || error instanceof TypeError) {
-    return unwritable(dataDir, error);
-  }
-  return new DbOpenError('unknown', `${name} in the data folder ${dataDir} could not be opened.`, {
+  if (/^SQLITE_(CANTOPEN|READONLY|IOERR|PERM|AUTH)/.test(code)) return unwritable(dataDir, error);
+  return new DbOpenError('unknown', `${name} in the data folder ${dataDir} could not be opened (${code}).`, {
     cause: error,
   });
 }

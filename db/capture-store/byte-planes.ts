@@ -4,30 +4,20 @@
  * samples), zigzag coded so that small differences of either sign have zero high bytes. Works on the bit patterns, so
  * it is exact for every type: integers modulo 2^bits, floats bit for bit.
  */
-import { bytesPerSample, newSampleArray, sampleTypeOf } from '../sample-types';
+import { bytesOf, bytesPerSample, newSampleArray, sampleTypeOf } from '../sample-types';
 import type { SampleType } from '../sample-types';
 import type { SampleArray } from '@/signal/model';
 
 type Words = Uint8Array | Uint16Array | Uint32Array;
 
 export function toBytePlanes(samples: SampleArray, delta: boolean): Uint8Array {
-  const { words, lanes, bytes } = wordsOf(samples);
+  const bytes = bytesOf(delta ? differences(samples) : samples);
   const count = samples.length;
-  const planes = new Uint8Array(samples.byteLength);
-  const shift = 32 - 8 * bytes;
-  for (let lane = 0; lane < lanes; lane++) {
-    const base = lane * bytes * count;
-    let before = 0;
-    for (let i = 0; i < count; i++) {
-      const word = words[i * lanes + lane]!;
-      let coded = word;
-      if (delta) {
-        const difference = ((word - before) << shift) >> shift;
-        coded = (difference << 1) ^ (difference >> 31);
-        before = word;
-      }
-      for (let b = 0; b < bytes; b++) planes[base + b * count + i] = coded >>> (8 * b);
-    }
+  const size = bytes.length / count;
+  const planes = new Uint8Array(bytes.length);
+  for (let b = 0; b < size; b++) {
+    const base = b * count;
+    for (let i = 0, from = b; i < count; i++, from += size) planes[base + i] = bytes[from]!;
   }
   return planes;
 }
@@ -39,38 +29,62 @@ export function fromBytePlanes(
   count: number,
   delta: boolean,
 ): SampleArray {
-  if (planes.length !== count * bytesPerSample(type)) {
+  const size = bytesPerSample(type);
+  if (planes.length !== count * size) {
     throw new RangeError(`fromBytePlanes: ${planes.length} bytes are not ${count} samples of ${type}`);
   }
   const samples = newSampleArray(type, count);
-  const { words, lanes, bytes } = wordsOf(samples);
-  for (let lane = 0; lane < lanes; lane++) {
-    const base = lane * bytes * count;
-    let before = 0;
-    for (let i = 0; i < count; i++) {
-      let coded = 0;
-      for (let b = 0; b < bytes; b++) coded |= planes[base + b * count + i]! << (8 * b);
-      if (delta) {
-        // The word array cuts the sum to its bits; the carried value must stay exact, hence the int32 sum.
-        before = (before + ((coded >>> 1) ^ -(coded & 1))) | 0;
-        coded = before;
-      }
-      words[i * lanes + lane] = coded;
-    }
+  const bytes = bytesOf(samples);
+  for (let b = 0; b < size; b++) {
+    const base = b * count;
+    for (let i = 0, to = b; i < count; i++, to += size) bytes[to] = planes[base + i]!;
   }
+  if (delta) sumUp(samples);
   return samples;
 }
 
-function wordsOf(samples: SampleArray): { words: Words; lanes: number; bytes: number } {
+function differences(samples: SampleArray): SampleArray {
+  const coded = newSampleArray(sampleTypeOf(samples), samples.length);
+  const { words, lanes, bits } = wordsOf(samples);
+  const out = wordsOf(coded).words;
+  const shift = 32 - bits;
+  for (let lane = 0; lane < lanes; lane++) {
+    let before = 0;
+    for (let i = lane; i < words.length; i += lanes) {
+      const word = words[i]!;
+      const difference = ((word - before) << shift) >> shift;
+      out[i] = (difference << 1) ^ (difference >> 31);
+      before = word;
+    }
+  }
+  return coded;
+}
+
+/** The inverse of `differences`, in place. */
+function sumUp(samples: SampleArray): void {
+  const { words, lanes } = wordsOf(samples);
+  for (let lane = 0; lane < lanes; lane++) {
+    let sum = 0;
+    for (let i = lane; i < words.length; i += lanes) {
+      const coded = words[i]!;
+      // Modulo 2^32 here; the array cuts it to the word's own bits.
+      sum = (sum + ((coded >>> 1) ^ -(coded & 1))) | 0;
+      words[i] = sum;
+    }
+  }
+}
+
+/** The bit patterns; 8-byte samples as two interleaved lanes. */
+function wordsOf(samples: SampleArray): { words: Words; lanes: 1 | 2; bits: 8 | 16 | 32 } {
   const { buffer, byteOffset, length } = samples;
   switch (bytesPerSample(sampleTypeOf(samples))) {
     case 1:
-      return { words: new Uint8Array(buffer, byteOffset, length), lanes: 1, bytes: 1 };
+      return { words: new Uint8Array(buffer, byteOffset, length), lanes: 1, bits: 8 };
     case 2:
-      return { words: new Uint16Array(buffer, byteOffset, length), lanes: 1, bytes: 2 };
+      return { words: new Uint16Array(buffer, byteOffset, length), lanes: 1, bits: 16 };
     case 4:
-      return { words: new Uint32Array(buffer, byteOffset, length), lanes: 1, bytes: 4 };
+      return { words: new Uint32Array(buffer, byteOffset, length), lanes: 1, bits: 32 };
     default:
-      return { words: new Uint32Array(buffer, byteOffset, 2 * length), lanes: 2, bytes: 4 };
+      return { words: new Uint32Array(buffer, byteOffset, 2 * length), lanes: 2, bits: 32 };
   }
 }

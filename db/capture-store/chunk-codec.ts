@@ -1,10 +1,11 @@
 /**
  * Lossless compression of chunks: byte planes and brotli at quality 1, in the thread pool. Measured on such signals:
- * several times faster than gzip 1 and smaller.
+ * several times faster than gzip 1 and smaller. The stored bytes begin with the CRC-32 of the samples (little-endian),
+ * since neither brotli nor SQLite would notice a flipped bit.
  */
 import { promisify } from 'node:util';
-import { brotliCompress, brotliDecompress, constants } from 'node:zlib';
-import { bytesOf, samplesAt } from '../sample-types';
+import { brotliCompress, brotliDecompress, constants, crc32 } from 'node:zlib';
+import { bytesOf, bytesPerSample, samplesAt } from '../sample-types';
 import type { SampleType } from '../sample-types';
 import { fromBytePlanes, toBytePlanes } from './byte-planes';
 import type { SampleArray } from '@/signal/model';
@@ -34,7 +35,9 @@ export class ChunkEncoder {
     } else {
       best = await pack(samples, this.#way);
     }
-    return best.data.length < samples.byteLength ? best : { codec: codecs.bytes, data: bytesOf(samples) };
+    const raw = bytesOf(samples);
+    const smaller = best.data.length < raw.length ? best : { codec: codecs.bytes, data: raw };
+    return { codec: smaller.codec, data: withCrc(smaller.data, crc32(raw)) };
   }
 }
 
@@ -44,17 +47,47 @@ export async function decodeChunk(
   type: SampleType,
   count: number,
 ): Promise<SampleArray> {
-  switch (chunk.codec) {
+  const { crc, payload } = splitCrc(chunk.data);
+  const samples = await unpack(chunk.codec, payload, type, count);
+  if (crc32(bytesOf(samples)) !== crc) throw new Error('decodeChunk: the stored samples are damaged');
+  return samples;
+}
+
+async function unpack(
+  codec: number,
+  payload: Uint8Array,
+  type: SampleType,
+  count: number,
+): Promise<SampleArray> {
+  switch (codec) {
     case codecs.bytes:
-      return samplesAt(chunk.data, 0, type, count);
+      return samplesAt(payload, 0, type, count);
     case codecs.planes:
-    case codecs.deltaPlanes: {
-      const planes = await decompress(chunk.data);
-      return fromBytePlanes(planes, type, count, chunk.codec === codecs.deltaPlanes);
-    }
+    case codecs.deltaPlanes:
+      return fromBytePlanes(
+        await decompress(payload, { maxOutputLength: count * bytesPerSample(type) }),
+        type,
+        count,
+        codec === codecs.deltaPlanes,
+      );
     default:
-      throw new Error(`decodeChunk: codec ${chunk.codec} is unknown`);
+      throw new Error(`decodeChunk: codec ${codec} is unknown`);
   }
+}
+
+const crcBytes = 4;
+
+function withCrc(payload: Uint8Array, crc: number): Uint8Array {
+  const data = new Uint8Array(crcBytes + payload.length);
+  new DataView(data.buffer).setUint32(0, crc, true);
+  data.set(payload, crcBytes);
+  return data;
+}
+
+function splitCrc(data: Uint8Array): { crc: number; payload: Uint8Array } {
+  if (data.length < crcBytes) throw new Error('decodeChunk: the stored samples are damaged');
+  const crc = new DataView(data.buffer, data.byteOffset, crcBytes).getUint32(0, true);
+  return { crc, payload: data.subarray(crcBytes) };
 }
 
 async function pack(
@@ -65,6 +98,8 @@ async function pack(
   const data = await compress(planes, {
     params: {
       [constants.BROTLI_PARAM_QUALITY]: 1,
+      // Larger windows cost their set-up and find nothing more in a chunk.
+      [constants.BROTLI_PARAM_LGWIN]: 18,
       [constants.BROTLI_PARAM_SIZE_HINT]: planes.length,
     },
   });
