@@ -28,6 +28,7 @@ export function createApp(context: AppContext, routes: readonly Route[], webDir 
   const { config, db, clock, log, metrics, authenticate, verifyRigKey, httpIngest } = context;
   const app = express();
   app.disable('x-powered-by');
+  app.set('etag', false);
   app.set('trust proxy', config.trustProxy);
   app.set('query parser', 'simple');
 

@@ -1,6 +1,5 @@
 /** Keep: the stretch of the spool that was asked for becomes a capture, under the rig and settings of now. */
-import type { CaptureRecord, CaptureStore, RigRecord, Spool, TurnmarkDb } from '@/db';
-import type { Actor } from '@/db';
+import type { Actor, CaptureRecord, CaptureStore, RigRecord, Spool, TurnmarkDb } from '@/db';
 import type { Clock } from '@/server/clock';
 import type { captureInput } from '@/server/contract';
 import type { Hub, KeepPlan } from '@/server/hub/hub-types';

@@ -8,7 +8,9 @@ import type { Request } from 'express';
 /** Metro writes a hash of 32 hex digits into the names of scripts, and of fonts and pictures. */
 const hashedName = /[.-][0-9a-f]{20,64}\.[a-z0-9]+$/;
 
+/** A script asks for a page like a person does; an address that names a file means that file. */
 function wantsPage(req: Request): boolean {
+  if (/\.[a-z0-9]+$/i.test(req.path)) return false;
   return (req.method === 'GET' || req.method === 'HEAD') && req.accepts(['html', 'json']) === 'html';
 }
 

@@ -61,13 +61,11 @@ function shape(schema: Schema | undefined, depth = 0): string {
 
 function members(schema: Schema, depth: number): string {
   const rows = Object.entries(schema.properties ?? {}).map(([name, member]) => {
-    const optional = schema.required?.includes(name) ? '' : ' <small>may be left out</small>';
     const fallback =
-      member.default === undefined
-        ? ''
-        : ` <small>else ${escapeHtml(JSON.stringify(member.default))}</small>`;
+      member.default === undefined ? '' : `, else ${escapeHtml(JSON.stringify(member.default))}`;
+    const optional = schema.required?.includes(name) ? '' : ` <small>may be left out${fallback}</small>`;
     const why = member.description ? `<br>${prose(member.description)}` : '';
-    return `<li><code>${escapeHtml(name)}</code> ${shape(member, depth + 1)}${optional}${fallback}${why}</li>`;
+    return `<li><code>${escapeHtml(name)}</code> ${shape(member, depth + 1)}${optional}${why}</li>`;
   });
   return `<ul class="members">${rows.join('')}</ul>`;
 }

@@ -5,7 +5,7 @@ import multer, { MulterError } from 'multer';
 import type { Request, Response } from 'express';
 import { z } from 'zod';
 import { getCapture, getRig } from '@/db';
-import type { CaptureRecord, CaptureStore, RigRecord, TurnmarkDb } from '@/db';
+import type { Actor, CaptureRecord, CaptureStore, RigRecord, TurnmarkDb } from '@/db';
 import { actorOf } from '@/server/audit';
 import type { Audit } from '@/server/audit';
 import type { CaptureAnalyses } from '@/server/captures/analyses';
@@ -19,7 +19,6 @@ import { ApiProblem, invalid, invalidField } from '@/server/http/problems';
 import type { Route } from '@/server/http/route';
 import { route } from '@/server/http/route';
 import { settingsInForce } from '@/server/rigs';
-import type { Actor } from '@/db';
 import { captureParams, found } from './shared';
 
 export type CaptureFileDeps = {

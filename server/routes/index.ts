@@ -4,6 +4,7 @@ import type { Route } from '@/server/http/route';
 import { captureFileRoutes } from './capture-files';
 import { captureSignalRoutes } from './capture-signal';
 import { captureRoutes } from './captures';
+import { hubRoutes } from './hub';
 import { keyRoutes } from './keys';
 import { rigRoutes } from './rigs';
 import { sessionRoutes } from './session';
@@ -18,5 +19,6 @@ export function apiRoutes(context: AppContext): Route[] {
     ...captureRoutes(context),
     ...captureSignalRoutes(context),
     ...captureFileRoutes(context),
+    ...hubRoutes(context),
   ];
 }

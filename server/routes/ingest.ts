@@ -1,7 +1,6 @@
 /** Where boards send: one request, or a WebSocket. The rig key is checked before a byte of the body is read. */
-import express from 'express';
-import type { Request, Response, Router as RouterType } from 'express';
-import { Router } from 'express';
+import express, { Router } from 'express';
+import type { Request, Response } from 'express';
 import type { WebSocket } from 'ws';
 import { bodyLimit } from '@/ingest/transports/http';
 import type { HttpIngest } from '@/ingest/transports/http';
@@ -44,7 +43,7 @@ function sendEarly(res: Response, answer: IngestResponse): void {
   send(res, answer);
 }
 
-export function ingestRouter({ http, verifyRigKey }: IngestRouterDeps): RouterType {
+export function ingestRouter({ http, verifyRigKey }: IngestRouterDeps): Router {
   let readingBytes = 0;
 
   function read(req: Request, res: Response, limit: number): Promise<Uint8Array> {

@@ -1,5 +1,5 @@
 import { Encoder, decodeMultiple } from 'cbor-x';
-import wavefile from 'wavefile';
+import { WaveFile } from 'wavefile';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { decodeCbor } from '@/ingest/decoders/cbor';
 import { decodeJson } from '@/ingest/decoders/json';
@@ -142,7 +142,7 @@ describe('export', () => {
   it('as WAV is read by another program’s reader', async () => {
     const { bytes, headers } = await download(whole.id, 'wav');
     expect(headers.get('content-type')).toBe('audio/wav');
-    const wav = new wavefile.WaveFile(bytes);
+    const wav = new WaveFile(bytes);
     expect(wav.fmt).toMatchObject({ audioFormat: 1, numChannels: 2, sampleRate: rateHz, bitsPerSample: 16 });
     const [a, b] = wav.getSamples(false, Int16Array) as unknown as Int16Array[];
     expect(Array.from(a!)).toEqual(codesA(0, 6001));

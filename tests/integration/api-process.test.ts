@@ -7,11 +7,30 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import BetterSqlite from 'better-sqlite3';
-import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { build } from 'esbuild';
+import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
 let folder: string;
 const running: ChildProcess[] = [];
+/** Within the repository, so that the packages are found. */
+const built = join(root, 'dist', 'test', `process-${process.pid}`);
+
+beforeAll(async () => {
+  await build({
+    absWorkingDir: root,
+    entryPoints: { main: 'server/main.ts' },
+    outdir: built,
+    outExtension: { '.js': '.mjs' },
+    bundle: true,
+    packages: 'external',
+    platform: 'node',
+    target: 'node20',
+    format: 'esm',
+    logLevel: 'warning',
+  });
+});
+afterAll(() => rmSync(built, { recursive: true, force: true }));
 
 beforeEach(() => {
   folder = mkdtempSync(join(tmpdir(), 'turnmark-'));
@@ -22,7 +41,7 @@ afterEach(() => {
 });
 
 function start(env: Record<string, string> = {}) {
-  const child = spawn(process.execPath, ['--import', 'tsx', 'server/main.ts'], {
+  const child = spawn(process.execPath, [join(built, 'main.mjs')], {
     cwd: root,
     env: { ...process.env, PORT: '0', TURNMARK_DATA_DIR: folder, TURNMARK_DEMO_RIGS: '0', ...env },
   });
@@ -72,7 +91,7 @@ describe('the process', () => {
     expect((await signIn(urlIn(chosen), passwordIn(greeting))).status).toBe(401);
     third.child.kill('SIGTERM');
     await third.ended;
-  });
+  }, 120_000);
 
   it('says in one sentence that the port is taken', async () => {
     const other = createServer();

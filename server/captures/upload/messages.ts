@@ -1,6 +1,7 @@
 /** Blocks in a file: CBOR, one batch or a sequence of them (RFC 8742), or JSON, one batch or a line each. */
 import type { CaptureGap, Piece } from '@/db';
-import { CborFault, CborReader } from '@/ingest/decoders/cbor-reader';
+import { CborReader } from '@/ingest/decoders/cbor-reader';
+import { CborFault } from '@/ingest/decoders/cbor-values';
 import { decodeCbor } from '@/ingest/decoders/cbor';
 import { decodeJson } from '@/ingest/decoders/json';
 import type { MessageResult } from '@/ingest/decoders/result';
