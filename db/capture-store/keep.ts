@@ -48,7 +48,7 @@ export type KeepInput = {
 };
 
 /** Rows are written once they are so large, several channels and chunks together: each write waits for the disk. */
-const writeBytes = 512 * 1024;
+const writeBytes = 256 * 1024;
 /** So much is read before others get their turn of the event loop. */
 const turnBytes = 256 * 1024;
 

@@ -1,7 +1,9 @@
 import { spawn } from 'node:child_process';
+import { rmSync } from 'node:fs';
 import { createInterface } from 'node:readline';
 import { fileURLToPath } from 'node:url';
 import { build } from 'esbuild';
+import { onTestFinished } from 'vitest';
 
 export type ChildEnd = { lines: string[]; code: number | null; signal: string | null; errors: string };
 export type Child = (
@@ -11,12 +13,13 @@ export type Child = (
 ) => Promise<ChildEnd>;
 
 /**
- * Bundles a TypeScript file of this folder, so that it starts fast, and gives back what runs it and reports what it
+ * Bundles a TypeScript file of this folder for the test that calls, so that it starts fast, and gives back what runs it and reports what it
  * said. `until` is asked after each line; true kills the process (SIGKILL) that instant, in the midst of what it does
  * next. `limitKib` caps the size of any file it writes, which fails its writes as a broken disk does.
  */
 export async function prepareChild(file: string): Promise<Child> {
   const script = fileURLToPath(new URL(`../../dist/test/${process.pid}-${file}.mjs`, import.meta.url));
+  onTestFinished(() => rmSync(script, { force: true }));
   await build({
     entryPoints: [fileURLToPath(new URL(`${file}.ts`, import.meta.url))],
     outfile: script,
