@@ -68,6 +68,7 @@ describe('the checklist', () => {
     const rates = { declaredHz: 20000, arrivingHz: 15000, toothHz: 600 };
     expect(of('rate', { rates })).toMatchObject({ state: 'wrong', says: '20 kS/s declared, 15 kS/s arrive' });
     expect(of('rate', { rates, state: 'silent' })?.state).toBe('done');
+    expect(of('rate', { rates, lastBlockAt: '2026-03-01T09:59:59.300Z' })?.state).toBe('done');
   });
 
   it('is loud about volts above what the input takes', () => {

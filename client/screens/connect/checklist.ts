@@ -17,6 +17,8 @@ export type Check = {
 
 /** Share by which the rate that arrives may differ from the declared one: blocks come in bursts. */
 const rateTolerance = 0.15;
+/** Blocks come more often than this while a board streams, s. */
+const longestWaitS = 0.4;
 /** Past this much of the rated speed, a count is more likely wrong than the shaft. */
 const mostOfRated = 1.5;
 const leastOfRated = 0.01;
@@ -72,11 +74,19 @@ function rateCheck(seen: LiveRig): Check {
   const says = `${rateWords(declaredHz)} declared`;
   if (seen.frame?.live.state === 'silent' || arrivingHz === null)
     return check('rate', 'Rate', 'done', says, []);
+  // At the end of a stream the arriving rate fades; that says nothing of the board.
+  if (blockAgeS(seen) > longestWaitS) return check('rate', 'Rate', 'done', says, []);
   const share = arrivingHz / declaredHz;
   if (Math.abs(share - 1) <= rateTolerance) return check('rate', 'Rate', 'done', says, []);
   return check('rate', 'Rate', 'wrong', `${says}, ${rateWords(arrivingHz)} arrive`, [
     share < 1 ? todo[1]! : todo[2]!,
   ]);
+}
+
+/** Age of the newest block when the frame was made, s. */
+function blockAgeS(seen: LiveRig): number {
+  const at = seen.frame?.live.lastBlockAt;
+  return at ? (Date.parse(seen.frame!.at) - Date.parse(at)) / 1000 : Infinity;
 }
 
 function voltsCheck(rig: Rig, seen: LiveRig): Check {

@@ -1,6 +1,7 @@
 import { useState } from 'react';
 import type { ReactNode } from 'react';
-import { ScrollView, View } from 'react-native';
+import { View } from 'react-native';
+import type { TextStyle } from 'react-native';
 import type { Rig } from '@/server/contract';
 import { Plate } from '@/client/components/plate';
 import { Segmented } from '@/client/components/segmented';
@@ -79,26 +80,28 @@ export function LinesPlate({ rig, rigKey }: { rig: Rig; rigKey: string | null })
 function Lines({ text }: { text: string }) {
   const colours = useColours();
   return (
-    <ScrollView
-      horizontal
+    <View
       role="region"
       aria-label="Lines to paste"
       tabIndex={0}
       style={{
         maxHeight: 320,
+        overflow: 'scroll',
+        padding: space.m,
         backgroundColor: colours.ground,
         borderWidth: 1,
         borderColor: colours.hairline,
       }}
     >
-      <ScrollView nestedScrollEnabled contentContainerStyle={{ padding: space.m }}>
-        <Text code size="tiny" style={{ wordBreak: 'normal', whiteSpace: 'pre' } as never}>
-          {text}
-        </Text>
-      </ScrollView>
-    </ScrollView>
+      <Text code size="tiny" style={asTyped}>
+        {text}
+      </Text>
+    </View>
   );
 }
+
+// Lines must not be broken anew: what is marked by hand must work as well.
+const asTyped = { wordBreak: 'normal', overflowWrap: 'normal', whiteSpace: 'pre' } as unknown as TextStyle;
 
 function Note({ children }: { children: ReactNode }) {
   return (

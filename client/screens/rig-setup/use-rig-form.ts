@@ -15,7 +15,8 @@ const resolver: Resolver<RigDraft, unknown, RigDraft> = (draft) => {
 
 /** The setup form, checked by the contract that the hub checks with. */
 export function useRigForm(initial: RigDraft) {
-  return useForm<RigDraft, unknown, RigDraft>({ resolver, defaultValues: initial, mode: 'onTouched' });
+  // Not on blur: a message that comes or goes while one presses a button moves the button away.
+  return useForm<RigDraft, unknown, RigDraft>({ resolver, defaultValues: initial, mode: 'onChange' });
 }
 
 export type RigForm = ReturnType<typeof useRigForm>;

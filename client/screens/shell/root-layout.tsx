@@ -9,6 +9,7 @@ import { Slot } from 'expo-router';
 import { SafeAreaProvider } from 'react-native-safe-area-context';
 import { ToastProvider } from '@/client/components/toast';
 import { DataProvider } from '@/client/data/data-provider';
+import { SessionReady } from '@/client/screens/sign-in/session-ready';
 import { ThemeProvider } from '@/client/theme/use-theme';
 
 const faces = {
@@ -28,7 +29,9 @@ export function RootLayout() {
       <ThemeProvider>
         <ToastProvider>
           <DataProvider>
-            <Slot />
+            <SessionReady>
+              <Slot />
+            </SessionReady>
           </DataProvider>
         </ToastProvider>
       </ThemeProvider>

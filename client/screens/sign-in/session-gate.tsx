@@ -1,44 +1,22 @@
+import { useState } from 'react';
 import type { ReactNode } from 'react';
 import { Redirect, useGlobalSearchParams, usePathname } from 'expo-router';
 import type { Href } from 'expo-router';
-import { View } from 'react-native';
-import { ErrorState, Loading } from '@/client/components/states';
-import { useAppData, useSession } from '@/client/data/app-data-context';
+import { useSession } from '@/client/data/app-data-context';
 import { safeReturn } from '@/client/screens/sign-in/safe-return';
-import { useColours } from '@/client/theme/use-theme';
 
 /** Lets signed-in people in, and sends the others to sign in and back. What may be seen the hub decides. */
 export function SessionGate({ children }: { children: ReactNode }) {
   const session = useSession();
-  const { session: store } = useAppData();
-  const to = useHere();
+  const here = useHere();
   if (session.status === 'signed-in') return children;
-  if (session.status === 'signed-out') {
-    const query = session.why === 'asked' ? '' : `?to=${encodeURIComponent(to)}`;
-    return <Redirect href={`/sign-in${query}` as Href} />;
-  }
-  return (
-    <Page>
-      {session.status === 'restoring' ? (
-        <Loading label="Opening the hub" />
-      ) : (
-        <ErrorState
-          title={session.problem.title}
-          message={session.problem.detail}
-          onRetry={() => void store.restore()}
-        />
-      )}
-    </Page>
-  );
+  return <ToSignIn to={session.status === 'signed-out' && session.why === 'asked' ? null : here} />;
 }
 
-function Page({ children }: { children: ReactNode }) {
-  const colours = useColours();
-  return (
-    <View role="main" style={{ flex: 1, justifyContent: 'center', backgroundColor: colours.ground }}>
-      {children}
-    </View>
-  );
+/** Keeps the place as it was at first: on the way to the sign-in the address is already another. */
+function ToSignIn({ to }: { to: string | null }) {
+  const [href] = useState(() => `/sign-in${to === null ? '' : `?to=${encodeURIComponent(to)}`}`);
+  return <Redirect href={href as Href} />;
 }
 
 function useHere(): string {

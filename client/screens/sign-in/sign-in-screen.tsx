@@ -20,11 +20,15 @@ import { isUnencrypted, signInWords } from '@/client/screens/sign-in/sign-in-wor
 import { space } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
 
+// The contract's limits, with words for people.
 const form = z.object({
-  email: signIn.shape.email
+  email: z
+    .string()
+    .trim()
     .min(1, 'Enter your email address.')
-    .includes('@', { error: 'An email address has an @ in it.' }),
-  password: signIn.shape.password.min(1, 'Enter your password.'),
+    .includes('@', { error: 'An email address has an @ in it.', abort: true })
+    .pipe(signIn.shape.email),
+  password: z.string().min(1, 'Enter your password.').pipe(signIn.shape.password),
 });
 type Form = z.infer<typeof form>;
 
