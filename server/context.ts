@@ -22,6 +22,7 @@ import { secretsFor } from './config/secrets';
 import { Disposers } from './disposers';
 import { createOriginCheck } from './http/origin';
 import { createHub } from './hub/hub';
+import { startHousekeeping } from './housekeeping';
 import { createIdempotencyStore } from './idempotency-store';
 import { Viewers } from './live/viewers';
 import { createLogger } from './logger';
@@ -67,6 +68,7 @@ export async function createContext(config: ServerConfig, overrides: Overrides) 
   disposers.add('databases', close);
   try {
     const secrets = secretsFor(config);
+    disposers.add('housekeeping', startHousekeeping({ db, clock, log }));
     const audit = createAudit({ db, clock, log });
     const hub = createHub({ spool, rigs: await allHubRigs(db), lookbackS: config.lookbackS, nowMs, log });
     disposers.add('hub', () => hub.close());

@@ -22,6 +22,8 @@ export function attemptLimiters(limits: AttemptLimits): RequestHandler[] {
     skipSuccessfulRequests: true,
     standardHeaders: false,
     legacyHeaders: false,
+    // The package would write its own advice about proxies to the console.
+    validate: false,
     handler: (req: Request) => {
       const resetMs = (req as Request & { rateLimit?: { resetTime?: Date } }).rateLimit?.resetTime?.getTime();
       const waitS = Math.max(1, Math.ceil(((resetMs ?? Date.now() + limits.windowMs) - Date.now()) / 1000));

@@ -8,11 +8,9 @@ import { route } from '@/server/http/route';
 export const hubInfo = z
   .object({
     mode: z.enum(['demo', 'production']),
-    addresses: z
-      .array(z.string())
-      .meta({
-        description: 'Base URLs that a board on the network can reach, the best first; never localhost',
-      }),
+    addresses: z.array(z.string()).meta({
+      description: 'Base URLs that a board on the network can reach, the best first; never localhost',
+    }),
   })
   .meta({ id: 'Hub' });
 

@@ -86,7 +86,8 @@ export function rigRoutes({ db, hub, keys, audit, clock }: RigRoutesDeps): Route
         const settings = await settingsInForce(db, stored);
         refuseUnrunnable(setup, signalSettingsOf(settings));
         const saved = found(await updateRig(db, params.rigId, { name, setup }), 'rig');
-        hub.rigSaved(hubRigOf(saved, settings));
+        // A new name alone must not start the counts anew.
+        if (Object.keys(body).some((member) => member !== 'name')) hub.rigSaved(hubRigOf(saved, settings));
         await audit.rigChanged(actorOf(user), saved.id, Object.keys(body));
         return { status: 200, body: saved };
       },
