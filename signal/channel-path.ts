@@ -24,7 +24,7 @@ import type { EdgeQueue } from '@/signal/columns';
 import { createDetector, forgetState, runDetector, setThresholds, zones } from '@/signal/detector';
 import type { Detector, DetectorSink } from '@/signal/detector';
 import type { Section } from '@/signal/filter-design';
-import { createHunter, hunt, startHunt } from '@/signal/hunter';
+import { createHunter, hunt, startHunt, swingFloorV } from '@/signal/hunter';
 import type { Hunter } from '@/signal/hunter';
 import { createLevels, fittedThresholds, followPeak, followTrough } from '@/signal/levels';
 import type { Levels } from '@/signal/levels';
@@ -49,6 +49,7 @@ const fewestForNoise = 8;
 /** While levels are sought for the first time, so much signal is kept, so that its edges are found afterwards. */
 const rememberedS = 5;
 const mostRemembered = 65_536;
+const quietS = 1;
 
 export class ChannelPath implements DetectorSink {
   readonly channel: Channel;
@@ -99,8 +100,8 @@ export class ChannelPath implements DetectorSink {
   private wobbleV = 0;
   private riseMidAt = NaN;
   private fallMidAt = NaN;
-  private riseStepV = NaN;
-  private fallStepV = NaN;
+  private riseSpent = NaN;
+  private fallSpent = NaN;
 
   constructor(options: {
     channel: Channel;
@@ -206,6 +207,7 @@ export class ChannelPath implements DetectorSink {
   /** At fixed places of the stream: what was learnt about noise since the last one takes effect. */
   tick(): void {
     flushCascade(this.cascade);
+    this.forgetQuiet();
     // With fewer samples a period the differences hold more signal than noise.
     this.noiseV = this.periodSamples < fewestForNoise ? NaN : rawNoiseV(this.noise) * this.gainOfNoise;
   }
@@ -225,7 +227,7 @@ export class ChannelPath implements DetectorSink {
     if (rising) followTrough(levels, extremeV, toothV);
     else followPeak(levels, extremeV, toothV);
     this.learnTiming(midAt, rising);
-    const sigmaS = this.learnSlope(midStepV, rising);
+    const sigmaS = this.learnSlope(midStepV, at - midAt, rising);
     const t = at / this.rateHz - this.delayS;
     const midS = midAt / this.rateHz;
     const flags = (rising ? edgeRising : 0) | (late ? edgeLate : 0);
@@ -271,6 +273,11 @@ export class ChannelPath implements DetectorSink {
       if (x > this.spreadHighV) this.spreadHighV = x;
       if (this.rails) watchRails(this.rails, x, at + (i - from));
     }
+  }
+
+  /** A tooth passed without reaching mid, so that its peak stood at least so far below the operate point. */
+  toothMissed(): void {
+    noteMargin(this.marginMeter, this.detector.midV - this.detector.operateV, false);
   }
 
   wobble(backV: number): void {
@@ -338,15 +345,19 @@ export class ChannelPath implements DetectorSink {
     this.delayKnown = true;
   }
 
-  /** Standard error of this mid crossing, s: noise over slope, and no better than the sample grid on a steep flank. */
-  private learnSlope(midStepV: number, rising: boolean): number {
-    const before = rising ? this.riseStepV : this.fallStepV;
-    let step = before;
-    if (midStepV > 0) step = Number.isNaN(before) ? midStepV : before + (midStepV - before) / 4;
-    if (rising) this.riseStepV = step;
-    else this.fallStepV = step;
-    const noise = this.noiseV / step;
-    const steep = step > 0.5 * (this.levels.highV - this.levels.lowV);
+  /**
+   * Standard error of this mid crossing, s: noise over the flank's slope, which is half the band over the time from mid to
+   * the switching point (a step between two samples would hold more noise than slope on a gentle flank); and no better
+   * than the sample grid on a steep one.
+   */
+  private learnSlope(midStepV: number, spentSamples: number, rising: boolean): number {
+    const before = rising ? this.riseSpent : this.fallSpent;
+    let spent = before;
+    if (spentSamples > 0) spent = Number.isNaN(before) ? spentSamples : before + (spentSamples - before) / 8;
+    if (rising) this.riseSpent = spent;
+    else this.fallSpent = spent;
+    const noise = (this.noiseV * spent) / (this.detector.operateV - this.detector.midV);
+    const steep = midStepV > 0.5 * (this.levels.highV - this.levels.lowV);
     return Math.sqrt(noise * noise + (steep ? 1 / 12 : 0)) / this.rateHz;
   }
 
@@ -426,7 +437,7 @@ export class ChannelPath implements DetectorSink {
       this.remembered = null;
       return;
     }
-    if (this.rememberedCount === 0) kept[0] = v[from]!;
+    if (this.rememberedCount === 0) kept[0] = v[from - 1]!;
     while (count + 1 > kept.length) {
       const wider: Float64Array = new Float64Array(kept.length * 2);
       wider.set(kept);
@@ -435,6 +446,15 @@ export class ChannelPath implements DetectorSink {
     kept.set(v.subarray(from, to + 1), this.rememberedCount + 1);
     this.remembered = kept;
     this.rememberedCount = count;
+  }
+
+  /** Where nothing has swung yet for a second, no edge can be found there later: what was remembered of it may go. */
+  private forgetQuiet(): void {
+    const { hunter, remembered } = this;
+    if (!remembered || this.rememberedCount < quietS * this.rateHz || hunter.turnCount > 0) return;
+    if (!(hunter.highV - hunter.lowV <= swingFloorV(hunter, this.noiseV, this.noise.quantumV))) return;
+    this.rememberedCount = 0;
+    this.rememberedBase = this.nextAt - 1;
   }
 
   private adopt(v: Float64Array, at: number, base: number): void {

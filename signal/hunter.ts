@@ -54,6 +54,11 @@ export function startHunt(hunter: Hunter, at: number, leastV: number): void {
   hunter.found = false;
 }
 
+/** Swings below this may be noise, V; infinite while the noise is not known (NaN). */
+export function swingFloorV(hunter: Hunter, noiseV: number, quantumV: number): number {
+  return Number.isNaN(noiseV) ? Infinity : Math.max(minSigmas * noiseV, minQuanta * quantumV, hunter.leastV);
+}
+
 /**
  * Takes `v[from..to]` (ends included; `v[j]` is sample `base + j` of the stream) until levels are found.
  * @param noiseV rms; NaN: not known, then nothing is decided.

@@ -40,9 +40,10 @@ function followed(level: number, value: number, swingV: number, toothV: number):
 
 /**
  * Thresholds of a fitted band: the fractions of the swing, widened about their centre by noise, to half the swing at most.
- * Noise is the larger of two: six sigmas of its white part (Rice 1944: 1.5e-8 crossings per period of the noise
- * bandwidth), and one and a half times what the signal came back by on its flanks lately, which sees hum, bumps and bounce
- * too, of whatever colour.
+ * Noise is the larger of two: ten sigmas of its white part, and one and a half times what the signal came back by on its
+ * flanks lately, which sees hum, bumps and bounce too, of whatever colour. Ten sigmas keep a shaft that stops in the very
+ * middle of the band five sigmas away from either point (Rice 1944: noise of the bandwidth f0 crosses there 3.7e-6 f0
+ * times a second).
  * @param noiseV rms of the filtered signal's white noise; NaN: not known.
  * @param wobbleV how far the signal came back through mid on a flank lately.
  */
@@ -54,7 +55,7 @@ export function fittedThresholds(
 ): BandLevels {
   const swingV = levels.highV - levels.lowV;
   const narrowest = (fractions.operateFraction - fractions.releaseFraction) * swingV;
-  const noisy = Math.max(Number.isNaN(noiseV) ? 0 : 6 * noiseV, 1.5 * wobbleV);
+  const noisy = Math.max(Number.isNaN(noiseV) ? 0 : 10 * noiseV, 1.5 * wobbleV);
   const wanted = Math.max(narrowest, Math.min(noisy, swingV / 2));
   const centreV = levels.lowV + ((fractions.operateFraction + fractions.releaseFraction) / 2) * swingV;
   return {

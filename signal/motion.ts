@@ -46,7 +46,7 @@ export class Motion {
   private phaseSin = 0;
 
   readonly rig: RigSetup;
-  private readonly rateHz: number;
+  private readonly toothMissed: () => void;
   private readonly stoppedAfterSamples: number;
   private readonly stoppedAfterS: number;
   private readonly meter: SpeedMeter;
@@ -83,11 +83,12 @@ export class Motion {
     startIndex: number,
     speed: SpeedColumns,
     directions: DirectionChange[],
+    toothMissed: () => void,
   ) {
+    this.toothMissed = toothMissed;
     const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
     const table = stepTable(rig.sensing);
     this.rig = rig;
-    this.rateHz = rateHz;
     this.stoppedAfterS = settings.speed.stoppedAfterS;
     this.stoppedAfterSamples = settings.speed.stoppedAfterS * rateHz;
     this.meter = new SpeedMeter(settings.speed.method, settings.speed.windowS, pulsesPerTurn, gearRatio);
@@ -297,12 +298,14 @@ export class Motion {
     if (this.sync.missing > 0) {
       if (this.sync.state === 'synced') face?.place(held.position, held.spans, held.t, swingV);
       else face?.lose(false);
+      if (this.sync.state === 'synced' && held.spans > 1 && held.position > 0) this.toothMissed();
       return;
     }
     const nextIntervalS = nextS - held.t;
     const spans = emptyPlaces(this.intervalBeforeS, this.heldIntervalS, nextIntervalS) + 1;
     this.intervalBeforeS = this.heldIntervalS / spans;
     this.heldIntervalS = nextIntervalS;
+    if (spans > 1) this.toothMissed();
     this.relative = (this.relative + spans) % this.sync.positions;
     face?.place(this.relative, spans, held.t, swingV);
   }
@@ -356,11 +359,12 @@ export class Motion {
 
 /**
  * Places of a plain wheel that stayed empty in the interval `here`, told by its neighbours: they agree within 40 %, and it
- * is at least 1.6 times their mean.
+ * is a whole multiple of their mean, within a quarter.
  */
 function emptyPlaces(before: number, here: number, after: number): number {
   if (Number.isNaN(before) || Number.isNaN(here)) return 0;
   if (Math.max(before, after) > 1.4 * Math.min(before, after)) return 0;
   const ratio = here / ((before + after) / 2);
-  return ratio < 1.6 ? 0 : Math.round(ratio) - 1;
+  const whole = Math.round(ratio);
+  return whole >= 2 && Math.abs(ratio - whole) < 0.25 ? whole - 1 : 0;
 }

@@ -10,7 +10,7 @@
  */
 export const burstLength = 24;
 const differences = burstLength - 4;
-const kept = 15;
+const kept = 25;
 /** An 8-bit converter of 5 V. */
 const coarsestQuantumV = 0.02;
 /** Median of |N(0,1)|, and the small-sample bias of the median of 20 overlapping differences (by simulation). */

@@ -75,7 +75,9 @@ class SignalPipeline implements Pipeline {
       return first === index ? place : -1;
     });
     this.moving = this.paths.filter((_, index) => this.roles[index]! >= 0);
-    this.motion = new Motion(rig, settings, rateHz, startIndex, speed, directions);
+    this.motion = new Motion(rig, settings, rateHz, startIndex, speed, directions, () =>
+      this.paths[this.roles.indexOf(0)]!.toothMissed(),
+    );
     this.output = {
       edges: this.paths.map(({ edges }) => edges),
       rejected: this.paths.map(({ rejectedMarks }) => rejectedMarks),

@@ -5,7 +5,9 @@ import { wordsFor } from '@/signal/finding-text';
 /** A tooth is accused only after so many turns in a row. */
 const turnsNeeded = 3;
 /** Below this many positions an empty place cannot be told from a change of speed. */
-const fewestPositions = 4;
+const fewestPositions = 6;
+/** Where more places than this share seem empty, it is not the teeth: bounce or a wrong count looks like that. */
+const mostEmptyShare = 0.25;
 const mostAtOnce = 4;
 
 /** One and the same tooth does not show, turn after turn. Starts, stops and the wheel's own gap are none of it. */
@@ -22,7 +24,12 @@ export class MissingToothRule implements FindingRule {
     const { motion, paths, primary, rig } = this.context;
     const { face } = motion;
     if (!face || rig.wheel.pulsesPerTurn < fewestPositions) return;
+    let empty = 0;
     for (let position = 0; position < face.missedInRow.length; position++) {
+      if (face.missedInRow[position]! > 0) empty++;
+    }
+    const credible = empty <= Math.max(1, mostEmptyShare * rig.wheel.pulsesPerTurn);
+    for (let position = 0; credible && position < face.missedInRow.length; position++) {
       const turns = face.missedInRow[position]!;
       if (turns < turnsNeeded) continue;
       const latch = this.latchFor(position);
