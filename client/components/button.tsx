@@ -66,7 +66,7 @@ export function Button({
       ]}
     >
       {busy ? (
-        <ActivityIndicator size="small" color={colours[tone]} />
+        <ActivityIndicator size="small" aria-label="Working" color={colours[tone]} />
       ) : icon ? (
         <Icon name={icon} tone={tone} size={20} />
       ) : null}

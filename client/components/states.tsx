@@ -100,7 +100,7 @@ export function Loading({ label = 'Loading' }: { label?: string }) {
       role="status"
       style={{ alignItems: 'center', justifyContent: 'center', gap: space.m, padding: space.huge }}
     >
-      <ActivityIndicator color={colours.dye} />
+      <ActivityIndicator color={colours.dye} aria-label={label} />
       <Text size="small" tone="scribeSoft">
         {label}
       </Text>

@@ -1,6 +1,7 @@
-import { G, Line, Path, Rect } from 'react-native-svg';
+import { G, Line, Path } from 'react-native-svg';
 import { withoutGaps } from '@/client/drawings/gaps';
 import { spreadLabels, voltsText } from '@/client/drawings/labels';
+import { bandPaths } from '@/client/drawings/band-paths';
 import { gutterPx, laneY } from '@/client/drawings/ribbon-layout';
 import type { LaneBox, RibbonGap } from '@/client/drawings/ribbon-types';
 import { SvgText } from '@/client/drawings/svg-text';
@@ -77,35 +78,12 @@ function Separator({ time, gaps, y }: { time: TimeScale; gaps: readonly RibbonGa
 
 function Band({ box, time, gaps, hatchId }: Omit<LaneProps, 'last'>) {
   const colours = useColours();
-  const y = laneY(box);
-  const drawn = box.lane.bands.flatMap((band) =>
-    withoutGaps({ from: Math.max(band.from, time.fromS), to: Math.min(band.to, time.toS) }, gaps).map(
-      (s) => ({ ...band, ...s }),
-    ),
-  );
+  const { strip, borders } = bandPaths(box.lane.bands, gaps, time, laneY(box));
   return (
     <>
-      {drawn.map(({ from, to, operateV, releaseV }) => {
-        const x1 = time.x(from);
-        const width = Math.max(0, time.x(to) - x1);
-        const top = y(operateV);
-        const height = Math.max(0, y(releaseV) - top);
-        return (
-          <G key={from}>
-            <Rect x={x1} y={top} width={width} height={height} fill={colours.band} />
-            <Rect x={x1} y={top} width={width} height={height} fill={`url(#${hatchId})`} />
-            <Line x1={x1} x2={x1 + width} y1={top} y2={top} stroke={colours.dye} strokeWidth={1.4} />
-            <Line
-              x1={x1}
-              x2={x1 + width}
-              y1={top + height}
-              y2={top + height}
-              stroke={colours.dye}
-              strokeWidth={1.4}
-            />
-          </G>
-        );
-      })}
+      <Path d={strip} fill={colours.band} />
+      <Path d={strip} fill={`url(#${hatchId})`} />
+      <Path d={borders} fill="none" stroke={colours.dye} strokeWidth={1.4} />
     </>
   );
 }

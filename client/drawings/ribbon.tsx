@@ -20,6 +20,7 @@ import { TimeAxis } from '@/client/drawings/time-axis-drawing';
 import { ToothRail } from '@/client/drawings/tooth-rail';
 import { TornGaps } from '@/client/drawings/torn-gaps';
 import type { Range } from '@/client/drawings/trace';
+import type { ColourName } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
 
 export type RibbonProps = {
@@ -30,6 +31,7 @@ export type RibbonProps = {
   rightWord?: string;
   /** In the middle of the axis: how the picture stands, or the cursor. */
   centreWord?: string;
+  centreTone?: ColourName;
   /** The lane that gets the room; the others are thin. */
   focus?: string | null;
   /** An instant to point at. */
@@ -56,6 +58,7 @@ function RibbonDrawing({
   anchorS,
   rightWord,
   centreWord,
+  centreTone,
   focus = null,
   markS,
   extraPx = 0,
@@ -100,6 +103,7 @@ function RibbonDrawing({
         {...(anchorS === undefined ? {} : { anchorS })}
         rightWord={rightWord}
         centreWord={centreWord}
+        centreTone={centreTone}
       />
       {markX !== null && markX >= gutterPx - 1 && markX <= size.width - rightPx + 1 ? (
         <G>

@@ -2,6 +2,7 @@ import { G, Line } from 'react-native-svg';
 import { SvgText } from '@/client/drawings/svg-text';
 import { timeTicks } from '@/client/drawings/time-axis';
 import type { TimeScale } from '@/client/drawings/time-axis';
+import type { ColourName } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
 
 type TimeAxisProps = {
@@ -10,12 +11,13 @@ type TimeAxisProps = {
   anchorS?: number;
   rightWord?: string | undefined;
   centreWord?: string | undefined;
+  centreTone?: ColourName | undefined;
 };
 
 const charPx = 6.9;
 
 /** Round moments; where a word stands in the middle or at the right edge, the ticks under it keep their line only. */
-export function TimeAxis({ time, y, anchorS, rightWord, centreWord }: TimeAxisProps) {
+export function TimeAxis({ time, y, anchorS, rightWord, centreWord, centreTone = 'dye' }: TimeAxisProps) {
   const colours = useColours();
   const left = time.x(time.fromS);
   const right = time.x(time.toS);
@@ -53,7 +55,7 @@ export function TimeAxis({ time, y, anchorS, rightWord, centreWord }: TimeAxisPr
         );
       })}
       {centreWord ? (
-        <SvgText x={middle} y={y} anchor="middle" tone="dye">
+        <SvgText x={middle} y={y} anchor="middle" tone={centreTone}>
           {centreWord}
         </SvgText>
       ) : null}

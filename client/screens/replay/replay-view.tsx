@@ -1,3 +1,4 @@
+import { useState } from 'react';
 import type { ReactNode } from 'react';
 import { ScrollView, View } from 'react-native';
 import { FindingCard } from '@/client/components/finding-card';
@@ -39,10 +40,11 @@ const back = { href: '/shelf' as never, label: 'Back to the Shelf' };
 export function ReplayView(props: ReplayViewProps) {
   const wide = useWide();
   const { capture } = props;
+  const [openedAtMs] = useState(() => Date.now());
   const subtitle = [
     capture.rig.name,
     durationText(capture.durationS),
-    `kept ${shortInstant(capture.createdAt, Date.now())} by ${capture.createdBy}`,
+    `kept ${shortInstant(capture.createdAt, openedAtMs)} by ${capture.createdBy}`,
     capture.settings.version === 0 ? 'first settings' : `settings ${capture.settings.version}`,
   ].join(' · ');
   return wide ? (

@@ -23,38 +23,29 @@ const leastSamples = 12;
 export function useReplay(capture: { durationS: number; rateHz: number }, analysis: Analysis | null) {
   const { durationS, rateHz } = capture;
   const leastS = Math.min(durationS, leastSamples / rateHz);
-  const [place, setPlace] = useState<Place>({
-    window: { fromS: 0, toS: Math.min(durationS, 0.5) },
-    cursorS: 0,
-  });
+  const [moved, setMoved] = useState<Place | null>(null);
   const [playing, setPlaying] = useState(false);
   const [rate, setRate] = useState<number | null>(null);
   const [signal, setSignal] = useState<'raw' | 'filtered'>('raw');
   const [focus, setFocus] = useState<string | null>(null);
-  const touched = useRef(false);
   const edges = useMemo(() => (analysis ? edgesOf(analysis) : []), [analysis]);
   const instants = useMemo(() => edges.map((e) => e.t), [edges]);
-  const playRate = rate ?? sensibleRate(spanOf(place.window));
-
-  useEffect(() => {
-    if (analysis && !touched.current) setPlace(firstWindow(analysis, durationS));
+  const start = useMemo((): Place => {
+    if (analysis) return firstWindow(analysis, durationS);
+    return { window: { fromS: 0, toS: Math.min(durationS, 0.5) }, cursorS: 0 };
   }, [analysis, durationS]);
+  const place = moved ?? start;
+  const playRate = rate ?? sensibleRate(spanOf(place.window));
+  const atEnd = place.cursorS >= durationS;
+  const move = (change: (now: Place) => Place) => setMoved((now) => change(now ?? start));
 
-  usePlaying(playing, playRate, (byS) =>
-    setPlace(({ window, cursorS }) => {
+  usePlaying(playing, playRate, (byS) => {
+    move(({ window, cursorS }) => {
       const next = Math.min(durationS, cursorS + byS);
       return { cursorS: next, window: follow(window, next, durationS) };
-    }),
-  );
-  const atEnd = place.cursorS >= durationS;
-  useEffect(() => {
+    });
     if (atEnd) setPlaying(false);
-  }, [atEnd]);
-
-  const move = (change: (now: Place) => Place) => {
-    touched.current = true;
-    setPlace(change);
-  };
+  });
   const within = (s: number) => Math.min(durationS, Math.max(0, s));
   return {
     ...place,
@@ -68,8 +59,7 @@ export function useReplay(capture: { durationS: number; rateHz: number }, analys
     setSignal,
     setFocus,
     togglePlay: () => {
-      touched.current = true;
-      if (!playing && atEnd) setPlace(({ window }) => ({ cursorS: 0, window: reveal(window, 0, durationS) }));
+      if (!playing && atEnd) move(({ window }) => ({ cursorS: 0, window: reveal(window, 0, durationS) }));
       setPlaying(!playing);
     },
     /** Puts the cursor somewhere; the window comes along where it must. */

@@ -11,12 +11,14 @@ import type { Finding } from '@/signal/model';
 type FindingsListProps = {
   findings: readonly Finding[];
   isLive: boolean;
+  /** The settings in force cannot be run: nothing is judged. */
+  unjudged: boolean;
   /** Stream time now, s. */
   streamS: number | null;
   onShow: (finding: Finding) => void;
 };
 
-export function FindingsList({ findings, isLive, streamS, onShow }: FindingsListProps) {
+export function FindingsList({ findings, isLive, unjudged, streamS, onShow }: FindingsListProps) {
   const folded = foldFindings(findings);
   return (
     <View role="region" aria-label="Findings" style={{ gap: space.m }}>
@@ -30,10 +32,17 @@ export function FindingsList({ findings, isLive, streamS, onShow }: FindingsList
       </View>
       {folded.length === 0 ? (
         <Plate style={{ paddingVertical: space.m }}>
-          {isLive ? (
+          {isLive && !unjudged ? (
             <StatusWord status="good" word="Nothing found wrong in the signal now." />
           ) : (
-            <StatusWord status="unknown" word="Not known: the signal is not live." />
+            <StatusWord
+              status="unknown"
+              word={
+                isLive
+                  ? 'Not known: no speed can be made of the signal.'
+                  : 'Not known: the signal is not live.'
+              }
+            />
           )}
         </Plate>
       ) : (

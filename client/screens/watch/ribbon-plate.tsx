@@ -12,6 +12,8 @@ type RibbonPlateProps = {
   anchor: 'edge' | 'now';
   /** "held at 13:52:07", or null while live. */
   heldText: string | null;
+  held: boolean;
+  isLive: boolean;
   focus: string | null;
   onFocus: (channel: string) => void;
   markS: number | null;
@@ -20,7 +22,17 @@ type RibbonPlateProps = {
 };
 
 /** The live signal. On a phone with more than two channels one lane is in focus and the others are thin. */
-export function RibbonPlate({ data, anchor, heldText, focus, onFocus, markS, emptyText }: RibbonPlateProps) {
+export function RibbonPlate({
+  data,
+  anchor,
+  heldText,
+  held,
+  isLive,
+  focus,
+  onFocus,
+  markS,
+  emptyText,
+}: RibbonPlateProps) {
   const wide = useWide();
   const count = data?.lanes.length ?? 1;
   const crowded = count > (wide ? 4 : 2);
@@ -40,6 +52,7 @@ export function RibbonPlate({ data, anchor, heldText, focus, onFocus, markS, emp
           anchorS={data.toS}
           rightWord={anchor === 'edge' ? 'last edge' : 'now'}
           centreWord={how}
+          centreTone={isLive || held ? 'dye' : 'fault'}
           focus={focused}
           markS={markS}
         />

@@ -28,9 +28,7 @@ type SpeedPlateProps = {
 export function SpeedPlate({ now, method, points, onFar }: SpeedPlateProps) {
   const wide = useWide();
   const { saying, health } = now;
-  const words = [saying.small, saying.big.kind === 'number' ? method : '']
-    .filter(Boolean)
-    .join(saying.small.startsWith('±') ? ' ' : ' · ');
+  const words = saying.small.startsWith('±') ? `${saying.small} ${method}` : saying.small;
   return (
     <Plate role="region" label="Speed" style={{ gap: space.xs }}>
       <View style={{ flexDirection: 'row', alignItems: 'center', gap: space.s, minHeight: 32 }}>
@@ -45,8 +43,9 @@ export function SpeedPlate({ now, method, points, onFar }: SpeedPlateProps) {
         </Text>
         <StatusWord {...health} />
       </View>
-      <Pressable role="button" aria-label={`${spoken(now)}. Far view`} onPress={onFar}>
+      <Pressable role="button" onPress={onFar}>
         <BigSpeed saying={saying} most={wide ? 60 : 72} />
+        <Hidden>Far view</Hidden>
         <View style={{ position: 'absolute', right: 0, top: 0 }}>
           <Icon name="expand" size={20} tone="scribeSoft" />
         </View>
@@ -86,12 +85,6 @@ function SpeedTable({ points }: { points: readonly SpeedPoint[] }) {
       ]}
     />
   );
-}
-
-/** The panel in one sentence. */
-export function spoken({ saying }: WatchNow): string {
-  const speed = saying.big.kind === 'number' ? `${saying.big.text} rpm` : saying.big.text;
-  return [speed, saying.directionWord, saying.small].filter(Boolean).join(', ');
 }
 
 export function toneOf({ saying }: WatchNow): ColourName {

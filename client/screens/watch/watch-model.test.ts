@@ -51,6 +51,13 @@ describe('watchNow', () => {
     const bad = { ...view, stale: true, frame: { ...frame, live: { ...frame.live, findings: [weak] } } };
     expect(watchNow(rig, bad, atMs).health).toEqual({ status: 'fault', word: '1 finding before' });
   });
+  it('does not call a rig healthy whose speed is not known', () => {
+    const unknown = {
+      ...view,
+      frame: { ...frame, live: { ...frame.live, state: 'unknown' as const, speedRpm: null } },
+    };
+    expect(watchNow(rig, unknown, atMs).health.status).toBe('unknown');
+  });
   it('says when the settings cannot be run', () => {
     const broken = {
       ...view,

@@ -38,7 +38,8 @@ export function watchNow(rig: Pick<Rig, 'sensing'>, view: LiveRigView, nowMs: nu
   if (live?.setupProblem)
     return { saying, isLive, lastBlockText, health: { status: 'fault', word: 'settings do not run' } };
   const known = found && found.status !== 'good';
-  if (isLive && found) return { saying, isLive, lastBlockText, health: found };
+  const speaks = live?.state === 'running' || live?.state === 'stopped';
+  if (isLive && found && (known || speaks)) return { saying, isLive, lastBlockText, health: found };
   return {
     saying,
     isLive,

@@ -72,6 +72,8 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
         : data
           ? 'not live'
           : null,
+    held: controls.held !== null,
+    isLive: now.isLive,
     focus: controls.focus,
     onFocus: controls.setFocus,
     markS: controls.markS,
@@ -95,6 +97,7 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
   const findings: ComponentProps<typeof FindingsList> = {
     findings: live?.findings ?? [],
     isLive: now.isLive,
+    unjudged: now.health.status === 'unknown' || Boolean(live?.setupProblem),
     streamS: live?.streamS ?? null,
     onShow: (finding) => {
       const seen = controls.show(finding, frame, rig.wheel.pulsesPerTurn);
