@@ -142,7 +142,8 @@ export function configFrom(env: Env): ServerConfig {
       env,
       'TURNMARK_LOG_LEVEL',
       ['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent'] as const,
-      'info',
+      // The demo's terminal shows its sign-ins; a line for each request would push them away.
+      mode === 'demo' ? 'warn' : 'info',
     ),
   };
 }

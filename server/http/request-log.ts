@@ -9,7 +9,9 @@ export function requestLog(log: Logger): RequestHandler {
     autoLogging: { ignore: (req) => /^\/(healthz|readyz|metrics)$/.test(req.url ?? '') },
     customLogLevel: (req, res, error) => {
       if (error || res.statusCode >= 500) return 'error';
-      return (req.url ?? '').startsWith('/ingest/') ? 'debug' : 'info';
+      // Within a mounted router `url` is cut; the whole one says which door it was.
+      const { originalUrl = '' } = req as { originalUrl?: string };
+      return originalUrl.startsWith('/ingest/') ? 'debug' : 'info';
     },
     serializers: {
       req: (req: { method: string; url: string; remoteAddress?: string }) => ({
