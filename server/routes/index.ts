@@ -1,8 +1,9 @@
 /** Every route of the API, in the order of the document. */
 import type { AppContext } from '@/server/context';
 import type { Route } from '@/server/http/route';
-import { captureFileRoutes } from './capture-files';
+import { captureExportRoutes } from './capture-export';
 import { captureSignalRoutes } from './capture-signal';
+import { captureUploadRoutes } from './capture-upload';
 import { captureRoutes } from './captures';
 import { hubRoutes } from './hub';
 import { keyRoutes } from './keys';
@@ -18,7 +19,8 @@ export function apiRoutes(context: AppContext): Route[] {
     ...settingsRoutes(context),
     ...captureRoutes(context),
     ...captureSignalRoutes(context),
-    ...captureFileRoutes(context),
+    ...captureUploadRoutes(context),
+    ...captureExportRoutes(context),
     ...hubRoutes(context),
   ];
 }

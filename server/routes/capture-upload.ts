@@ -1,27 +1,23 @@
-/** Captures as files: out in four formats, in from those and SenML. */
-import { Readable } from 'node:stream';
-import { pipeline } from 'node:stream/promises';
+/** A recording comes in as a file and becomes a capture. */
 import multer, { MulterError } from 'multer';
 import type { Request, Response } from 'express';
 import { z } from 'zod';
-import { getCapture, getRig } from '@/db';
+import { getRig } from '@/db';
 import type { Actor, CaptureRecord, CaptureStore, RigRecord, TurnmarkDb } from '@/db';
 import { actorOf } from '@/server/audit';
 import type { Audit } from '@/server/audit';
 import type { CaptureAnalyses } from '@/server/captures/analyses';
 import { captureOf } from '@/server/captures/capture-shape';
-import { exportFile, exportTypes } from '@/server/captures/export';
 import { readFile } from '@/server/captures/upload/read-file';
 import type { Upload } from '@/server/captures/upload/upload';
 import type { Clock } from '@/server/clock';
-import { capture, exportQuery, id } from '@/server/contract';
+import { capture, id } from '@/server/contract';
 import { ApiProblem, invalid, invalidField } from '@/server/http/problems';
 import type { Route } from '@/server/http/route';
 import { route } from '@/server/http/route';
 import { settingsInForce } from '@/server/rigs';
-import { captureParams, found } from './shared';
 
-export type CaptureFileDeps = {
+export type CaptureUploadDeps = {
   db: TurnmarkDb;
   store: CaptureStore;
   analyses: CaptureAnalyses;
@@ -81,7 +77,7 @@ function channelsFor(rig: RigRecord, upload: Upload): string[] {
   return known.filter((name) => upload.channels.includes(name));
 }
 
-export function captureFileRoutes({ db, store, analyses, audit, clock }: CaptureFileDeps): Route[] {
+export function captureUploadRoutes({ db, store, analyses, audit, clock }: CaptureUploadDeps): Route[] {
   let receiving = false;
 
   async function keepUpload(
@@ -173,39 +169,6 @@ export function captureFileRoutes({ db, store, analyses, audit, clock }: Capture
         } finally {
           receiving = false;
         }
-      },
-    }),
-    route({
-      method: 'get',
-      path: '/captures/:captureId/export',
-      access: 'reviewer',
-      tag,
-      summary: 'The whole capture as a file',
-      description:
-        'CBOR and JSON (a batch a line) can be streamed to a rig again; WAV is refused where it cannot hold it.',
-      params: captureParams,
-      query: exportQuery,
-      answers: [
-        {
-          status: 200,
-          description: 'The file',
-          schema: z.string(),
-          contentTypes: Object.values(exportTypes),
-        },
-      ],
-      problems: ['not-found', 'cannot-export'],
-      async handle({ params: { captureId }, query: { format }, user, res }) {
-        const stored = found(await getCapture(db, captureId), 'capture');
-        const file = await exportFile(store, stored, format);
-        if (!file.ok) throw new ApiProblem('cannot-export', { detail: file.issue });
-        const { contentType, extension, parts } = file.value;
-        await audit.captureExported(actorOf(user), captureId, format);
-        res.status(200).set({
-          'Content-Type': contentType,
-          'Content-Disposition': `attachment; filename="turnmark-${captureId}.${extension}"`,
-        });
-        await pipeline(Readable.from(parts), res);
-        return undefined;
       },
     }),
   ];
