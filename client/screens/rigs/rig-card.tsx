@@ -22,15 +22,15 @@ export function RigCard({ rig }: { rig: Rig }) {
         style={{ display: 'flex', textDecorationLine: 'none' } as object}
       >
         <Plate style={{ flex: 1, minWidth: 0, gap: space.s }}>
-          <View style={{ flexDirection: 'row', gap: space.m, alignItems: 'flex-start' }}>
-            <Text heading={2} weight="medium" lines={2} style={{ flex: 1 }}>
-              {rig.name}
-            </Text>
-            <View style={{ paddingTop: 2, maxWidth: '45%' }}>
-              <StatusWord status={health.status} word={health.word} />
+          <Text heading={2} weight="medium" lines={3}>
+            {rig.name}
+          </Text>
+          <View style={{ flexDirection: 'row', gap: space.m, alignItems: 'center' }}>
+            <View style={{ flex: 1, minWidth: 0 }}>
+              <SpeedWord saying={saying} size="title" />
             </View>
+            <StatusWord status={health.status} word={health.word} />
           </View>
-          <SpeedWord saying={saying} size="title" />
           <MiniRibbon
             rig={rig}
             view={now.view}

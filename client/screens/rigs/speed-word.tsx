@@ -25,8 +25,8 @@ export function SpeedWord({ saying, size }: { saying: SpeedSaying; size: TypeSiz
   );
 }
 
-/** "running, forward", "silent": the state in words. */
+/** "running, forward", "below 0.6 rpm for 12 s": the state in words, beside what stands big. */
 export function stateWords(saying: SpeedSaying): string {
-  if (saying.big.kind === 'word') return saying.big.text;
+  if (saying.big.kind === 'word') return saying.small || saying.big.text;
   return saying.directionWord ? `running, ${saying.directionWord}` : 'running';
 }

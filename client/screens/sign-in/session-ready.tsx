@@ -3,6 +3,7 @@ import type { ReactNode } from 'react';
 import { View } from 'react-native';
 import { ErrorState, Loading } from '@/client/components/states';
 import { useAppData, useSession } from '@/client/data/app-data-context';
+import { space } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
 
 /** Pages that need no session, and so need not wait for one. */
@@ -35,7 +36,15 @@ export function SessionReady({ children }: { children: ReactNode }) {
 function Page({ children }: { children: ReactNode }) {
   const colours = useColours();
   return (
-    <View role="main" style={{ flex: 1, justifyContent: 'center', backgroundColor: colours.ground }}>
+    <View
+      role="main"
+      style={{
+        flex: 1,
+        justifyContent: 'center',
+        paddingHorizontal: space.l,
+        backgroundColor: colours.ground,
+      }}
+    >
       {children}
     </View>
   );
