@@ -16,9 +16,9 @@ import {
   createEdgeQueue,
   createRejectedColumns,
   delayGuessed,
-  enqueueEdge,
-  pushEdge,
   pushRejected,
+  roomForEdge,
+  roomInQueue,
 } from '@/signal/columns';
 import type { EdgeQueue } from '@/signal/columns';
 import { createDetector, forgetState, runDetector, setThresholds, zones } from '@/signal/detector';
@@ -28,12 +28,12 @@ import { createHunter, hunt, startHunt, swingFloorV } from '@/signal/hunter';
 import type { Hunter } from '@/signal/hunter';
 import { createLevels, fittedThresholds, followPeak, followTrough } from '@/signal/levels';
 import type { Levels } from '@/signal/levels';
-import { createMarginMeter, noteMargin, worstMarginV } from '@/signal/margin-meter';
+import { createMarginMeter, endTooth, noteMargin, worstMarginV } from '@/signal/margin-meter';
 import type { MarginMeter } from '@/signal/margin-meter';
 import type { Band, Channel, SampleArray } from '@/signal/model';
 import { addToBurst, breakBurst, burstLength, createNoiseMeter, rawNoiseV } from '@/signal/noise';
 import type { NoiseMeter } from '@/signal/noise';
-import { edgeLate, edgeRising } from '@/signal/pipeline-types';
+import { edgeRising } from '@/signal/pipeline-types';
 import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline-types';
 import { createRailMeter, railStride, watchRails } from '@/signal/rail-meter';
 import type { RailMeter } from '@/signal/rail-meter';
@@ -126,7 +126,7 @@ export class ChannelPath implements DetectorSink {
     this.gainOfNoise = noiseGain(sections, rateHz);
     this.delays = createDelayCurve(sections, rateHz);
     this.delayS = dcDelayS(sections, rateHz);
-    this.detector = createDetector(options.holdoffS * rateHz);
+    this.detector = createDetector(options.holdoffS * rateHz, band.mode === 'fitted');
     this.marginMeter = createMarginMeter(options.teethPerTurn);
     this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(1024, Math.max(32, rateHz / 20))));
     this.nextAt = startIndex;
@@ -179,7 +179,8 @@ export class ChannelPath implements DetectorSink {
         j = this.huntOn(v, j, n, base);
       } else {
         j = runDetector(this.detector, v, j, n, base, this);
-        if (j <= n) this.huntAgain(base + j);
+        if (this.detector.edges.count > 0) this.takeEdges();
+        if (j <= n && base + j >= this.detector.pauseAt) this.huntAgain(base + j);
       }
     }
     v[0] = v[n]!;
@@ -212,50 +213,89 @@ export class ChannelPath implements DetectorSink {
     this.noiseV = this.periodSamples < fewestForNoise ? NaN : rawNoiseV(this.noise) * this.gainOfNoise;
   }
 
-  edge(at: number, midAt: number, midStepV: number, rising: boolean, late: boolean, extremeV: number): void {
-    const { detector, levels } = this;
-    this.edgeCount++;
-    this.lastEdgeAt = at;
-    noteMargin(
-      this.marginMeter,
-      rising ? detector.releaseV - extremeV : extremeV - detector.operateV,
-      !rising,
-    );
-    const toothV = Math.abs(extremeV - this.lastExtremeV);
-    this.lastExtremeV = extremeV;
-    this.learnWobble(toothV);
-    if (rising) followTrough(levels, extremeV, toothV);
-    else followPeak(levels, extremeV, toothV);
-    this.learnTiming(midAt, rising);
-    const sigmaS = this.learnSlope(midStepV, at - midAt, rising);
-    const t = at / this.rateHz - this.delayS;
-    const midS = midAt / this.rateHz;
-    const flags = (rising ? edgeRising : 0) | (late ? edgeLate : 0);
-    pushEdge(this.edges, t, midS - this.delayS, flags);
-    enqueueEdge(
-      this.queue,
-      at,
-      midS,
-      this.delayS,
-      sigmaS,
-      extremeV,
-      flags | (this.delayKnown ? 0 : delayGuessed),
-    );
-    if (this.band.mode === 'fitted') {
-      this.refit(t);
-      detector.pauseAt = this.replaying ? Infinity : Math.ceil(at + this.quietSamples());
+  /**
+   * Takes over what the detector recorded: levels, timing, error and output of each edge. One function on purpose, see
+   * `detector.ts` on boxed numbers.
+   */
+  private takeEdges(): void {
+    const { detector, levels, edges, queue, rateHz } = this;
+    const raw = detector.edges;
+    for (let k = 0; k < raw.count; k++) {
+      const at = raw.at[k]!;
+      const midAt = raw.midAt[k]!;
+      const extremeV = raw.extremeV[k]!;
+      const rising = (raw.flags[k]! & edgeRising) !== 0;
+      this.edgeCount++;
+      this.lastEdgeAt = at;
+      const beyondV = rising ? detector.releaseV - extremeV : extremeV - detector.operateV;
+      if (beyondV < this.marginMeter.thisTurnV) this.marginMeter.thisTurnV = beyondV;
+      if (!rising) endTooth(this.marginMeter);
+      const toothV = Math.abs(extremeV - this.lastExtremeV);
+      this.lastExtremeV = extremeV;
+      const swingV = levels.highV - levels.lowV;
+      if (!(toothV < swingV / 2)) this.wobbleV *= 0.97;
+      else if (this.oneTooth && toothV > this.wobbleV) this.wobbleV = toothV;
+      if (rising) followTrough(levels, extremeV, toothV);
+      else followPeak(levels, extremeV, toothV);
+
+      const before = rising ? this.riseMidAt : this.fallMidAt;
+      if (rising) {
+        if (this.fallMidAt > before) {
+          const high = (this.fallMidAt - before) / (midAt - before);
+          this.duty = Number.isNaN(this.duty) ? high : this.duty + (high - this.duty) / 8;
+        }
+        this.riseMidAt = midAt;
+      } else {
+        this.fallMidAt = midAt;
+      }
+      if (midAt > before) {
+        this.learnPeriod(before, midAt);
+        const hz = rateHz / this.periodSamples;
+        const { delays } = this;
+        this.delayS =
+          Math.abs(hz - delays.nodeHz) <= 0.02 * delays.nodeHz
+            ? delays.nodeS + (hz - delays.nodeHz) * delays.slopeSPerHz
+            : delayAt(delays, hz);
+        this.delayKnown = true;
+      }
+
+      // Noise over the flank's slope, which is half the band over the time from mid to the switching point (a step between
+      // two samples would hold more noise than slope on a gentle flank); no better than the sample grid on a steep one.
+      const spentBefore = rising ? this.riseSpent : this.fallSpent;
+      let spent = spentBefore;
+      if (at > midAt)
+        spent = Number.isNaN(spentBefore) ? at - midAt : spentBefore + (at - midAt - spentBefore) / 8;
+      if (rising) this.riseSpent = spent;
+      else this.fallSpent = spent;
+      const noise = (this.noiseV * spent) / (detector.operateV - detector.midV);
+      const steep = raw.midStepV[k]! > swingV / 2;
+
+      const flags = raw.flags[k]!;
+      const i = roomForEdge(edges);
+      edges.t[i] = at / rateHz - this.delayS;
+      edges.midT[i] = midAt / rateHz - this.delayS;
+      edges.flags[i] = flags;
+      const q = roomInQueue(queue);
+      queue.at[q] = at;
+      queue.midS[q] = midAt / rateHz;
+      queue.delayS[q] = this.delayS;
+      queue.sigmaS[q] = Math.sqrt(noise * noise + (steep ? 1 / 12 : 0)) / rateHz;
+      queue.extremeV[q] = extremeV;
+      queue.flags[q] = flags | (this.delayKnown ? 0 : delayGuessed);
     }
+    raw.count = 0;
+    if (this.band.mode === 'fixed') return;
+    this.refit(this.lastEdgeAt / rateHz - this.delayS);
+    detector.pauseAt = this.replaying ? Infinity : Math.ceil(this.lastEdgeAt + this.quietSamples());
   }
 
   rejected(at: number, reachV: number, rising: boolean): void {
+    // Edges before it come first: their delay is the one to take off here.
+    if (this.detector.edges.count > 0) this.takeEdges();
     this.rejectedCount++;
     pushRejected(this.rejectedMarks, at / this.rateHz - this.delayS);
     if (Number.isNaN(reachV)) return;
-    noteMargin(
-      this.marginMeter,
-      rising ? reachV - this.detector.operateV : this.detector.releaseV - reachV,
-      false,
-    );
+    noteMargin(this.marginMeter, rising ? reachV - this.detector.operateV : this.detector.releaseV - reachV);
   }
 
   restartSpread(): void {
@@ -277,18 +317,11 @@ export class ChannelPath implements DetectorSink {
 
   /** A tooth passed without reaching mid, so that its peak stood at least so far below the operate point. */
   toothMissed(): void {
-    noteMargin(this.marginMeter, this.detector.midV - this.detector.operateV, false);
+    noteMargin(this.marginMeter, this.detector.midV - this.detector.operateV);
   }
 
   wobble(backV: number): void {
     if (backV > this.wobbleV) this.wobbleV = backV;
-  }
-
-  /** Each whole tooth lets the memory of a wobble fade. On a wheel of one tooth, a weak one beside it is no tooth. */
-  private learnWobble(toothV: number): void {
-    const swingV = this.levels.highV - this.levels.lowV;
-    if (!(toothV < swingV / 2)) this.wobbleV *= 0.97;
-    else if (this.oneTooth) this.wobble(toothV);
   }
 
   private learnKind(array: SampleArray): void {
@@ -323,42 +356,13 @@ export class ChannelPath implements DetectorSink {
     }
   }
 
-  private learnTiming(midAt: number, rising: boolean): void {
-    const before = rising ? this.riseMidAt : this.fallMidAt;
-    if (rising) {
-      if (!Number.isNaN(before) && this.fallMidAt > before) {
-        const high = (this.fallMidAt - before) / (midAt - before);
-        this.duty = Number.isNaN(this.duty) ? high : this.duty + (high - this.duty) / 8;
-      }
-      this.riseMidAt = midAt;
-    } else {
-      this.fallMidAt = midAt;
-    }
-    if (Number.isNaN(before) || !(midAt > before)) return;
-    let period = midAt - before;
-    // Across the gap of the wheel the teeth's frequency is what the filter sees before and after it.
-    const ratio = period / this.periodSamples;
+  /** Across the gap of the wheel the teeth's frequency is what the filter sees before and after it. */
+  private learnPeriod(before: number, midAt: number): void {
+    const period = midAt - before;
     const whole = this.missing + 1;
-    if (this.missing > 0 && ratio > Math.sqrt(whole) && ratio < whole * Math.sqrt(whole)) period /= whole;
-    this.periodSamples = period;
-    this.delayS = delayAt(this.delays, this.rateHz / period);
-    this.delayKnown = true;
-  }
-
-  /**
-   * Standard error of this mid crossing, s: noise over the flank's slope, which is half the band over the time from mid to
-   * the switching point (a step between two samples would hold more noise than slope on a gentle flank); and no better
-   * than the sample grid on a steep one.
-   */
-  private learnSlope(midStepV: number, spentSamples: number, rising: boolean): number {
-    const before = rising ? this.riseSpent : this.fallSpent;
-    let spent = before;
-    if (spentSamples > 0) spent = Number.isNaN(before) ? spentSamples : before + (spentSamples - before) / 8;
-    if (rising) this.riseSpent = spent;
-    else this.fallSpent = spent;
-    const noise = (this.noiseV * spent) / (this.detector.operateV - this.detector.midV);
-    const steep = midStepV > 0.5 * (this.levels.highV - this.levels.lowV);
-    return Math.sqrt(noise * noise + (steep ? 1 / 12 : 0)) / this.rateHz;
+    const ratio = period / this.periodSamples;
+    const gap = this.missing > 0 && ratio > Math.sqrt(whole) && ratio < whole * Math.sqrt(whole);
+    this.periodSamples = gap ? period / whole : period;
   }
 
   /** Thresholds move once they are off by 2 % of the swing; a smaller step is neither made nor reported. */
@@ -415,10 +419,10 @@ export class ChannelPath implements DetectorSink {
     );
     const found = hunter.found;
     if (!Number.isNaN(detector.operateV)) {
-      const edgesBefore = this.edgeCount;
       detector.pauseAt = Infinity;
       const next = runDetector(detector, v, from, stop, base, this);
-      if (this.edgeCount > edgesBefore) {
+      if (detector.edges.count > 0) {
+        this.takeEdges();
         this.hunting = false;
         return next;
       }
@@ -471,7 +475,10 @@ export class ChannelPath implements DetectorSink {
       this.applyThresholds(operateV, releaseV, this.rememberedBase + 1);
       this.replaying = true;
       detector.pauseAt = Infinity;
-      runDetector(detector, this.remembered, 1, this.rememberedCount, this.rememberedBase, this);
+      for (let j = 1; j <= this.rememberedCount;) {
+        j = runDetector(detector, this.remembered, j, this.rememberedCount, this.rememberedBase, this);
+        if (detector.edges.count > 0) this.takeEdges();
+      }
       this.replaying = false;
       this.remembered = null;
     } else {

@@ -18,18 +18,16 @@ export function createEdgeColumns(): EdgeColumns {
   };
 }
 
-export function pushEdge(columns: EdgeColumns, t: number, midT: number, flags: number): void {
+/** Index of a new edge, whose columns are for the caller to write. */
+export function roomForEdge(columns: EdgeColumns): number {
   if (columns.count === columns.t.length) {
     columns.t = grown(columns.t);
     columns.midT = grown(columns.midT);
-    const flagsWider = new Uint8Array(columns.t.length);
-    flagsWider.set(columns.flags);
-    columns.flags = flagsWider;
+    const wider = new Uint8Array(columns.t.length);
+    wider.set(columns.flags);
+    columns.flags = wider;
   }
-  columns.t[columns.count] = t;
-  columns.midT[columns.count] = midT;
-  columns.flags[columns.count] = flags;
-  columns.count++;
+  return columns.count++;
 }
 
 export function createRejectedColumns(): RejectedColumns {
@@ -51,16 +49,21 @@ export function createSpeedColumns(): SpeedColumns {
   };
 }
 
-export function pushSpeed(columns: SpeedColumns, t: number, rpm: number, errorRpm: number): void {
+/** Index of a new entry, whose columns are for the caller to write. */
+export function roomForSpeed(columns: SpeedColumns): number {
   if (columns.count === columns.t.length) {
     columns.t = grown(columns.t);
     columns.rpm = grown(columns.rpm);
     columns.errorRpm = grown(columns.errorRpm);
   }
-  columns.t[columns.count] = t;
-  columns.rpm[columns.count] = rpm;
-  columns.errorRpm[columns.count] = errorRpm;
-  columns.count++;
+  return columns.count++;
+}
+
+export function pushSpeed(columns: SpeedColumns, t: number, rpm: number, errorRpm: number): void {
+  const i = roomForSpeed(columns);
+  columns.t[i] = t;
+  columns.rpm[i] = rpm;
+  columns.errorRpm[i] = errorRpm;
 }
 
 /** What one channel's detector saw, waiting to be merged with the other channels' in order of time. */
@@ -96,15 +99,8 @@ export function createEdgeQueue(): EdgeQueue {
   };
 }
 
-export function enqueueEdge(
-  queue: EdgeQueue,
-  at: number,
-  midS: number,
-  delayS: number,
-  sigmaS: number,
-  extremeV: number,
-  flags: number,
-): void {
+/** Index of a new entry, whose columns are for the caller to write. */
+export function roomInQueue(queue: EdgeQueue): number {
   if (queue.head === queue.count) queue.head = queue.count = 0;
   if (queue.count === queue.at.length) {
     queue.at = grown(queue.at);
@@ -116,11 +112,5 @@ export function enqueueEdge(
     wider.set(queue.flags);
     queue.flags = wider;
   }
-  const i = queue.count++;
-  queue.at[i] = at;
-  queue.midS[i] = midS;
-  queue.delayS[i] = delayS;
-  queue.sigmaS[i] = sigmaS;
-  queue.extremeV[i] = extremeV;
-  queue.flags[i] = flags;
+  return queue.count++;
 }

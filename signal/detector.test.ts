@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import { createDetector, runDetector, setThresholds } from '@/signal/detector';
 
 type Seen = { edges: [number, number, string][]; rejected: number[] };
@@ -6,15 +7,18 @@ type Seen = { edges: [number, number, string][]; rejected: number[] };
 /** Runs a short signal through a band of 1 V to 2 V; `v[0]` is its own neighbour, as at the start of a stream. */
 function run(samples: number[], holdSamples = 0, operateV = 2, releaseV = 1): Seen {
   const seen: Seen = { edges: [], rejected: [] };
-  const detector = createDetector(holdSamples);
+  const detector = createDetector(holdSamples, false);
   setThresholds(detector, operateV, releaseV);
   const v = Float64Array.of(samples[0]!, ...samples);
   runDetector(detector, v, 1, samples.length, -1, {
-    edge: (at, midAt, _step, rising, late) =>
-      seen.edges.push([at, midAt, `${rising ? 'rising' : 'falling'}${late ? ' late' : ''}`]),
     rejected: (at) => seen.rejected.push(at),
     wobble: () => undefined,
   });
+  const { count, at, midAt, flags } = detector.edges;
+  for (let k = 0; k < count; k++) {
+    const kind = flags[k]! & edgeRising ? 'rising' : 'falling';
+    seen.edges.push([at[k]!, midAt[k]!, flags[k]! & edgeLate ? `${kind} late` : kind]);
+  }
   return seen;
 }
 

@@ -8,6 +8,8 @@
  * Instants are linear interpolations between neighbouring samples, as (whole sample) + (fraction), so that they do not
  * depend on where a block began.
  */
+import { edgeLate, edgeRising } from '@/signal/pipeline-types';
+
 export const zones = {
   unknown: 0,
   low: 1,
@@ -41,18 +43,31 @@ export type Detector = {
   wouldBeHigh: boolean;
   /** Stream index at which the scan pauses (nothing came for long); Infinity: never. */
   pauseAt: number;
+  /** The scan returns after each edge, because new thresholds follow from it. */
+  pauseAtEdges: boolean;
+  /** Where edges are put; whoever runs the detector empties it. */
+  edges: RawEdges;
+};
+
+/** Edges as columns, in order; the first `count` are valid. Instants in samples on the stream's axis. */
+export type RawEdges = {
+  count: number;
+  at: Float64Array;
+  midAt: Float64Array;
+  midStepV: Float64Array;
+  extremeV: Float64Array;
+  /** As in `EdgeColumns`. */
+  flags: Uint8Array;
 };
 
 export type DetectorSink = {
-  /** May set new thresholds and a new `pauseAt` on the detector. */
-  edge(at: number, midAt: number, midStepV: number, rising: boolean, late: boolean, extremeV: number): void;
   /** @param reachV how far it came, V; NaN for a crossing that hold-off ate. @param rising true: towards operate. */
   rejected(at: number, reachV: number, rising: boolean): void;
   /** On a flank, or short of an edge, the signal came back through mid by `backV`. */
   wobble(backV: number): void;
 };
 
-export function createDetector(holdSamples: number): Detector {
+export function createDetector(holdSamples: number, pauseAtEdges: boolean): Detector {
   return {
     zone: zones.unknown,
     operateV: NaN,
@@ -68,6 +83,19 @@ export function createDetector(holdSamples: number): Detector {
     high: false,
     wouldBeHigh: false,
     pauseAt: Infinity,
+    pauseAtEdges,
+    edges: createRawEdges(64),
+  };
+}
+
+function createRawEdges(length: number): RawEdges {
+  return {
+    count: 0,
+    at: new Float64Array(length),
+    midAt: new Float64Array(length),
+    midStepV: new Float64Array(length),
+    extremeV: new Float64Array(length),
+    flags: new Uint8Array(length),
   };
 }
 
@@ -86,7 +114,7 @@ export function forgetState(detector: Detector): void {
 
 /**
  * Scans `v[from..to]` (ends included); `v[from - 1]` is the sample before, `v[j]` is sample `base + j` of the stream.
- * @returns the first index not scanned: `to + 1`, or less where it paused.
+ * @returns the first index not scanned: `to + 1`, or less where it paused. Edges are in `d.edges`.
  */
 export function runDetector(
   d: Detector,
@@ -96,20 +124,19 @@ export function runDetector(
   base: number,
   sink: DetectorSink,
 ): number {
+  const end = Math.min(to, d.pauseAt - base - 1);
+  const operate = d.operateV;
+  const release = d.releaseV;
+  const mid = d.midV;
+  const recorded = d.edges.count;
   let j = from;
-  let end = Math.min(to, d.pauseAt - base - 1);
-  let operate = d.operateV;
-  let release = d.releaseV;
-  let mid = d.midV;
-  let extreme = d.extremeV;
   while (j <= end) {
+    if (d.pauseAtEdges && d.edges.count > recorded) break;
     switch (d.zone) {
       case zones.low: {
-        d.extremeV = extreme;
-        j = scanLow(d, v, j, end, mid);
-        extreme = d.extremeV;
+        j = scanLow(d, v, j, end);
         if (j > end) break;
-        crossMid(d, v, j, base, mid);
+        crossMid(d, v, j, base);
         d.reachV = v[j]!;
         d.zone = zones.lowUp;
         break;
@@ -123,15 +150,8 @@ export function runDetector(
         }
         if (j > end) break;
         if (x > operate) {
-          d.zone = zones.high;
-          d.extremeV = x;
-          accept(d, v, j, base, operate, true, extreme, sink);
-          operate = d.operateV;
-          release = d.releaseV;
-          mid = d.midV;
-          extreme = x;
+          accept(d, v, j, base, true);
           j++;
-          end = Math.min(to, d.pauseAt - base - 1);
         } else {
           d.zone = zones.lowBack;
           d.backV = x;
@@ -148,9 +168,8 @@ export function runDetector(
         if (j > end) break;
         sink.wobble(d.reachV - d.backV);
         if (x > mid) {
-          const reach = d.reachV;
-          crossMid(d, v, j, base, mid);
-          d.reachV = Math.max(reach, x);
+          crossMid(d, v, j, base);
+          d.reachV = Math.max(d.reachV, x);
           d.zone = zones.lowUp;
         } else {
           sink.rejected(d.midAt, d.reachV, true);
@@ -159,11 +178,9 @@ export function runDetector(
         break;
       }
       case zones.high: {
-        d.extremeV = extreme;
-        j = scanHigh(d, v, j, end, mid);
-        extreme = d.extremeV;
+        j = scanHigh(d, v, j, end);
         if (j > end) break;
-        crossMid(d, v, j, base, mid);
+        crossMid(d, v, j, base);
         d.reachV = v[j]!;
         d.zone = zones.highDown;
         break;
@@ -177,15 +194,8 @@ export function runDetector(
         }
         if (j > end) break;
         if (x < release) {
-          d.zone = zones.low;
-          d.extremeV = x;
-          accept(d, v, j, base, release, false, extreme, sink);
-          operate = d.operateV;
-          release = d.releaseV;
-          mid = d.midV;
-          extreme = x;
+          accept(d, v, j, base, false);
           j++;
-          end = Math.min(to, d.pauseAt - base - 1);
         } else {
           d.zone = zones.highBack;
           d.backV = x;
@@ -202,9 +212,8 @@ export function runDetector(
         if (j > end) break;
         sink.wobble(d.backV - d.reachV);
         if (x < mid) {
-          const reach = d.reachV;
-          crossMid(d, v, j, base, mid);
-          d.reachV = Math.min(reach, x);
+          crossMid(d, v, j, base);
+          d.reachV = Math.min(d.reachV, x);
           d.zone = zones.highDown;
         } else {
           sink.rejected(d.midAt, d.reachV, false);
@@ -213,13 +222,7 @@ export function runDetector(
         break;
       }
       case zones.hold: {
-        d.extremeV = extreme;
         j = runHold(d, v, j, end, base, sink);
-        operate = d.operateV;
-        release = d.releaseV;
-        mid = d.midV;
-        extreme = d.extremeV;
-        end = Math.min(to, d.pauseAt - base - 1);
         break;
       }
       default: {
@@ -229,7 +232,7 @@ export function runDetector(
             d.zone = x > operate ? zones.high : zones.low;
             d.midAt = NaN;
             d.midStepV = NaN;
-            extreme = x;
+            d.extremeV = x;
             j++;
             break;
           }
@@ -237,12 +240,12 @@ export function runDetector(
       }
     }
   }
-  d.extremeV = extreme;
   return j;
 }
 
 /** First index at which `v` is above `mid`, following the trough on the way. */
-function scanLow(d: Detector, v: Float64Array, from: number, end: number, mid: number): number {
+function scanLow(d: Detector, v: Float64Array, from: number, end: number): number {
+  const mid = d.midV;
   let lowest = d.extremeV;
   let j = from;
   for (; j <= end; j++) {
@@ -255,7 +258,8 @@ function scanLow(d: Detector, v: Float64Array, from: number, end: number, mid: n
 }
 
 /** First index at which `v` is below `mid`, following the peak on the way. */
-function scanHigh(d: Detector, v: Float64Array, from: number, end: number, mid: number): number {
+function scanHigh(d: Detector, v: Float64Array, from: number, end: number): number {
+  const mid = d.midV;
   let highest = d.extremeV;
   let j = from;
   for (; j <= end; j++) {
@@ -275,43 +279,62 @@ function crossing(v: Float64Array, j: number, base: number, level: number): numb
   return base + (j - 1) + share;
 }
 
-function crossMid(d: Detector, v: Float64Array, j: number, base: number, mid: number): void {
-  d.midAt = crossing(v, j, base, mid);
-  d.midStepV = Math.abs(v[j]! - v[j - 1]!);
+// Numbers passed to a function that is not inlined are boxed: what an edge needs is read from the detector instead.
+function crossMid(d: Detector, v: Float64Array, j: number, base: number): void {
+  const before = v[j - 1]!;
+  const step = v[j]! - before;
+  const share = step === 0 ? 1 : Math.min(1, Math.max(0, (d.midV - before) / step));
+  d.midAt = base + (j - 1) + share;
+  d.midStepV = Math.abs(step);
 }
 
-function accept(
-  d: Detector,
-  v: Float64Array,
-  j: number,
-  base: number,
-  level: number,
-  rising: boolean,
-  extremeV: number,
-  sink: DetectorSink,
-): void {
-  emit(d, crossing(v, j, base, level), rising, false, extremeV, sink);
+/** An edge between `v[j - 1]` and `v[j]`; the state's extreme goes with it. */
+function accept(d: Detector, v: Float64Array, j: number, base: number, rising: boolean): void {
+  const before = v[j - 1]!;
+  const x = v[j]!;
+  const step = x - before;
+  const level = rising ? d.operateV : d.releaseV;
+  const share = step === 0 ? 1 : Math.min(1, Math.max(0, (level - before) / step));
+  record(d, rising ? edgeRising : 0);
+  d.edges.at[d.edges.count - 1] = base + (j - 1) + share;
+  settle(d, rising);
+  d.extremeV = x;
 }
 
-function emit(
-  d: Detector,
-  at: number,
-  rising: boolean,
-  late: boolean,
-  extremeV: number,
-  sink: DetectorSink,
-): void {
-  const midAt = d.midAt <= at ? d.midAt : at;
-  const midStepV = d.midStepV;
+/** Opens a record; its instant is for the caller to write. */
+function record(d: Detector, flags: number): void {
+  if (d.edges.count === d.edges.at.length) {
+    const old = d.edges;
+    const wider = createRawEdges(2 * old.at.length);
+    wider.at.set(old.at);
+    wider.midAt.set(old.midAt);
+    wider.midStepV.set(old.midStepV);
+    wider.extremeV.set(old.extremeV);
+    wider.flags.set(old.flags);
+    wider.count = old.count;
+    d.edges = wider;
+  }
+  const { edges } = d;
+  const k = edges.count++;
+  edges.midAt[k] = d.midAt;
+  edges.midStepV[k] = d.midStepV;
+  edges.extremeV[k] = d.extremeV;
+  edges.flags[k] = flags;
+}
+
+/** The instant is written: the state changes, and a hold-off begins with it. */
+function settle(d: Detector, rising: boolean): void {
+  const { edges } = d;
+  const k = edges.count - 1;
+  if (!(edges.midAt[k]! <= edges.at[k]!)) edges.midAt[k] = edges.at[k]!;
   d.midAt = NaN;
   d.midStepV = NaN;
-  if (d.holdSamples > 0) {
-    d.zone = zones.hold;
-    d.holdEndAt = at + d.holdSamples;
-    d.high = rising;
-    d.wouldBeHigh = rising;
-  }
-  sink.edge(at, midAt, midStepV, rising, late, extremeV);
+  d.zone = rising ? zones.high : zones.low;
+  if (d.holdSamples === 0) return;
+  d.zone = zones.hold;
+  d.holdEndAt = edges.at[k]! + d.holdSamples;
+  d.high = rising;
+  d.wouldBeHigh = rising;
 }
 
 /** Until the hold-off ends; returns the first index not scanned. Once it has ended without an edge the sample is scanned again. */
@@ -326,19 +349,18 @@ function runHold(
   for (let j = from; j <= end; j++) {
     const x = v[j]!;
     const before = v[j - 1]!;
-    if (d.high ? before >= d.midV && x < d.midV : before <= d.midV && x > d.midV)
-      crossMid(d, v, j, base, d.midV);
+    if (d.high ? before >= d.midV && x < d.midV : before <= d.midV && x > d.midV) crossMid(d, v, j, base);
     const crosses = d.wouldBeHigh ? x < d.releaseV : x > d.operateV;
     const at = crosses ? crossing(v, j, base, d.wouldBeHigh ? d.releaseV : d.operateV) : NaN;
     if (base + j >= d.holdEndAt) {
       const beyond = d.high ? x < d.releaseV : x > d.operateV;
       if (beyond) {
         const late = !(crosses && at >= d.holdEndAt);
-        const extremeV = d.extremeV;
         const rising = !d.high;
-        d.zone = rising ? zones.high : zones.low;
+        record(d, (rising ? edgeRising : 0) | (late ? edgeLate : 0));
+        d.edges.at[d.edges.count - 1] = late ? d.holdEndAt : at;
+        settle(d, rising);
         d.extremeV = x;
-        emit(d, late ? d.holdEndAt : at, rising, late, extremeV, sink);
         return j + 1;
       }
       if (d.high) d.zone = x < d.midV ? zones.highDown : zones.high;

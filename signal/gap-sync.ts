@@ -16,12 +16,22 @@ export type GapSync = {
   position: number;
   /** Time for one position, s; NaN: not known. */
   perPositionS: number;
+  /** The interval that is to be judged, s. */
+  intervalS: number;
   /** A long interval that waits for the next to be judged, s; NaN: none. */
   waitingS: number;
 };
 
 export function createGapSync(positions: number, missing: number): GapSync {
-  return { positions, missing, state: 'unsynced', position: 0, perPositionS: NaN, waitingS: NaN };
+  return {
+    positions,
+    missing,
+    state: 'unsynced',
+    position: 0,
+    perPositionS: NaN,
+    intervalS: NaN,
+    waitingS: NaN,
+  };
 }
 
 export function resetSync(sync: GapSync): void {
@@ -46,10 +56,11 @@ export function noGapAhead(sync: GapSync): boolean {
 }
 
 /**
- * Judges the interval that a tooth closes.
+ * Judges the interval that a tooth closes, `sync.intervalS`.
  * @returns positions that it spans, or 0 where that must wait for the next tooth.
  */
-export function judgeInterval(sync: GapSync, intervalS: number): number {
+export function judgeInterval(sync: GapSync): number {
+  const { intervalS } = sync;
   if (sync.missing === 0 || Number.isNaN(sync.perPositionS)) {
     sync.perPositionS = intervalS;
     return 1;
@@ -68,8 +79,9 @@ export function judgeInterval(sync: GapSync, intervalS: number): number {
   return 0;
 }
 
-/** Judges the interval that waited, now that the next one is known. */
-export function judgeWaiting(sync: GapSync, nextS: number): number {
+/** Judges the interval that waited, now that the next one, `sync.intervalS`, is known. */
+export function judgeWaiting(sync: GapSync): number {
+  const nextS = sync.intervalS;
   const waited = sync.waitingS;
   sync.waitingS = NaN;
   const believed = nextS < waited / threshold(sync);

@@ -12,9 +12,13 @@ export function createMarginMeter(turnLength: number): MarginMeter {
 }
 
 /** @param beyondV peak above operate or release above trough, V; negative where the tooth was not counted. */
-export function noteMargin(meter: MarginMeter, beyondV: number, wholeTooth: boolean): void {
+export function noteMargin(meter: MarginMeter, beyondV: number): void {
   if (beyondV < meter.thisTurnV) meter.thisTurnV = beyondV;
-  if (!wholeTooth || ++meter.toothCount < meter.turnLength) return;
+}
+
+/** A whole tooth is over; after a turn of them a new turn begins. */
+export function endTooth(meter: MarginMeter): void {
+  if (++meter.toothCount < meter.turnLength) return;
   meter.toothCount = 0;
   meter.lastTurnV = meter.thisTurnV;
   meter.thisTurnV = Infinity;

@@ -4,7 +4,7 @@
  * Speed comes from whole cycles: mid crossings on rising edges of the first channel (A or U). Where a ring of states is
  * known, an interval counts only if exactly one cycle was passed in it, so that dither at one edge makes no speed.
  */
-import { delayGuessed, pushSpeed } from '@/signal/columns';
+import { delayGuessed, pushSpeed, roomForSpeed } from '@/signal/columns';
 import { createDirectionTracker, forgetLevels, forgetSense, stepTo } from '@/signal/direction-tracker';
 import type { DirectionTracker } from '@/signal/direction-tracker';
 import { createGapSync, judgeInterval, judgeWaiting, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
@@ -52,20 +52,24 @@ export class Motion {
   private readonly meter: SpeedMeter;
   private readonly speed: SpeedColumns;
   private readonly directions: DirectionChange[];
-  private quietSince: number;
+  private stopAt: number;
   private quietSinceS: number;
   private countsReset = false;
   private speedUnknown = false;
   private netAtRise = NaN;
   private firstGuessed = false;
   private firstMidS = NaN;
-  /** Intervals whose number of positions waits for the next tooth. */
-  private waiting: { t: number; sigmaS: number } | null = null;
+  /** A tooth whose interval waits for the next one to be judged, s; NaN: none. */
+  private waitingT = NaN;
+  private waitingSigmaS = NaN;
   private place = 0;
   private troughV = NaN;
   private swingV = NaN;
   /** The last tooth, until the next tells its swing and confirms how many positions it stands after the one before. */
-  private held: { t: number; spans: number; position: number } | null = null;
+  private held = false;
+  private heldT = NaN;
+  private heldSpans = 1;
+  private heldPosition = 0;
   /** Plain wheel: position of the last tooth placed, counted since the count began. */
   private relative = -1;
   private heldIntervalS = NaN;
@@ -98,7 +102,7 @@ export class Motion {
     this.speed = speed;
     this.directions = directions;
     this.countsSinceS = startIndex / rateHz;
-    this.quietSince = startIndex;
+    this.stopAt = startIndex + this.stoppedAfterSamples;
     this.quietSinceS = startIndex / rateHz;
     directions.push({ t: this.countsSinceS, value: 'unknown' });
     this.openUnknown(this.countsSinceS);
@@ -121,7 +125,7 @@ export class Motion {
 
   /** Nothing came up to sample `at`: the shaft may have been found stopped on the way. */
   quietUpTo(at: number): void {
-    if (this.state === 'stopped' || at <= this.quietSince + this.stoppedAfterSamples) return;
+    if (this.state === 'stopped' || at <= this.stopAt) return;
     const t = this.quietSinceS + this.stoppedAfterS;
     this.state = 'stopped';
     this.forgetTeeth();
@@ -139,7 +143,7 @@ export class Motion {
     this.state = 'unknown';
     this.turnTo('unknown', fromS);
     this.openUnknown(fromS);
-    this.quietSince = at;
+    this.stopAt = at + this.stoppedAfterSamples;
     this.quietSinceS = toS;
     this.lastRiseS = NaN;
     this.countsReset = true;
@@ -147,10 +151,10 @@ export class Motion {
 
   /** An edge of the channel with the place `role` in the arrangement (0 for A or U). */
   edge(edge: MotionEdge, role: number): void {
-    this.quietUpTo(edge.at);
+    if (edge.at > this.stopAt) this.quietUpTo(edge.at);
     const t = edge.midS - edge.delayS;
     const rising = (edge.flags & edgeRising) !== 0;
-    this.quietSince = edge.at;
+    this.stopAt = edge.at + this.stoppedAfterSamples;
     this.quietSinceS = t;
     this.lastEdgeS = t;
     if (this.countsReset) {
@@ -165,7 +169,7 @@ export class Motion {
     }
     if (this.tracker) this.step(this.tracker, role, rising, t);
     if (role === 0) {
-      if (rising) this.rise(edge, t);
+      if (rising) this.rise(edge);
       else this.swingV = edge.extremeV - this.troughV;
     } else if (role === 1 && rising) {
       this.learnPhase(t);
@@ -238,25 +242,37 @@ export class Motion {
     this.turnTo(value, t);
   }
 
-  private rise(edge: MotionEdge, t: number): void {
+  private rise(edge: MotionEdge): void {
+    const { meter } = this;
+    const t = edge.midS - edge.delayS;
     const guessed = (edge.flags & delayGuessed) !== 0;
     if (this.tracker && !this.wholeCycle(this.tracker)) {
-      this.meter.reset();
+      meter.reset();
       this.openUnknown(t);
     }
-    if (this.meter.count === 1 && this.firstGuessed && !guessed) {
-      this.meter.retimeFirst(this.firstMidS - edge.delayS);
+    if (meter.count === 1 && this.firstGuessed && !guessed) {
       this.lastRiseS = this.firstMidS - edge.delayS;
+      meter.retimeFirst(this.lastRiseS);
     }
     if (!this.tracker) this.pulses++;
-    this.showHeld(this.swingV, t);
-    if (this.meter.count === 0) {
-      this.held = { t, spans: 1, position: 0 };
+    if (this.held) this.showHeld(edge);
+    meter.t = t;
+    meter.sigmaS = edge.sigmaS;
+    if (meter.count === 0) {
+      this.hold(1);
       this.firstGuessed = guessed;
       this.firstMidS = edge.midS;
-      this.meter.add(t, this.place, edge.sigmaS);
+      meter.add(this.place);
     } else {
-      this.interval(t - this.lastRiseS, t, edge.sigmaS);
+      this.sync.intervalS = t - this.lastRiseS;
+      if (!Number.isNaN(this.waitingT)) this.resumeWaiting(edge);
+      const spans = judgeInterval(this.sync);
+      if (spans > 0) {
+        this.advance(spans);
+      } else {
+        this.waitingT = t;
+        this.waitingSigmaS = edge.sigmaS;
+      }
     }
     if (!Number.isNaN(this.lastARise)) this.aPeriodS = t - this.lastARise;
     this.lastARise = t;
@@ -265,49 +281,69 @@ export class Motion {
     this.swingV = NaN;
   }
 
-  private interval(seconds: number, t: number, sigmaS: number): void {
-    if (this.waiting) {
-      const { waiting } = this;
-      this.waiting = null;
-      this.advance(judgeWaiting(this.sync, seconds), waiting.t, waiting.sigmaS);
-      this.showHeld(this.swingV, t);
-    }
-    const spans = judgeInterval(this.sync, seconds);
-    if (spans === 0) this.waiting = { t, sigmaS };
-    else this.advance(spans, t, sigmaS);
+  /** The tooth whose interval waited is placed, now that `edge` closes the next one. */
+  private resumeWaiting(edge: MotionEdge): void {
+    const { meter } = this;
+    const spans = judgeWaiting(this.sync);
+    meter.t = this.waitingT;
+    meter.sigmaS = this.waitingSigmaS;
+    this.waitingT = NaN;
+    this.advance(spans);
+    this.showHeld(edge);
+    meter.t = edge.midS - edge.delayS;
+    meter.sigmaS = edge.sigmaS;
   }
 
-  private advance(spans: number, t: number, sigmaS: number): void {
+  /** The tooth that the meter is set to stands `spans` positions after the one before. */
+  private advance(spans: number): void {
+    const { meter, speed } = this;
     this.place += spans;
     if (this.sync.missing > 0) this.extraPositions += moveOn(this.sync, spans);
-    this.held = { t, spans, position: this.sync.position };
-    if (!this.meter.add(t, this.place, sigmaS)) return;
-    const sign = this.direction === 'reverse' ? -1 : 1;
-    this.rpm = sign * this.meter.latest.rpm;
-    this.errorRpm = this.meter.latest.errorRpm;
+    this.hold(spans);
+    if (!meter.add(this.place)) return;
+    const rpm = this.direction === 'reverse' ? -meter.latest.rpm : meter.latest.rpm;
+    this.rpm = rpm;
+    this.errorRpm = meter.latest.errorRpm;
     this.state = 'running';
     this.speedUnknown = false;
-    pushSpeed(this.speed, t, this.rpm, this.errorRpm);
+    const i = roomForSpeed(speed);
+    speed.t[i] = meter.t;
+    speed.rpm[i] = rpm;
+    speed.errorRpm[i] = meter.latest.errorRpm;
   }
 
-  /** Places the held tooth on the wheel face, now that the next one has come at `nextS`. */
-  private showHeld(swingV: number, nextS: number): void {
-    const { held, face } = this;
-    if (!held) return;
-    this.held = null;
-    if (this.sync.missing > 0) {
-      if (this.sync.state === 'synced') face?.place(held.position, held.spans, held.t, swingV);
-      else face?.lose(false);
-      if (this.sync.state === 'synced' && held.spans > 1 && held.position > 0) this.toothMissed();
+  private hold(spans: number): void {
+    this.held = true;
+    this.heldT = this.meter.t;
+    this.heldSpans = spans;
+    this.heldPosition = this.sync.position;
+  }
+
+  /** Places the held tooth on the wheel face, now that the next one has come. */
+  private showHeld(next: MotionEdge): void {
+    const { face, sync } = this;
+    this.held = false;
+    if (face) {
+      face.t = this.heldT;
+      face.toothSwingV = this.swingV;
+    }
+    if (sync.missing > 0) {
+      if (sync.state !== 'synced') {
+        face?.lose(false);
+        return;
+      }
+      face?.place(this.heldPosition, this.heldSpans);
+      if (this.heldSpans > 1 && this.heldPosition > 0) this.toothMissed();
       return;
     }
-    const nextIntervalS = nextS - held.t;
-    const spans = emptyPlaces(this.intervalBeforeS, this.heldIntervalS, nextIntervalS) + 1;
+    const nextIntervalS = next.midS - next.delayS - this.heldT;
+    const long = this.heldIntervalS > 1.5 * nextIntervalS;
+    const spans = long ? emptyPlaces(this.intervalBeforeS, this.heldIntervalS, nextIntervalS) + 1 : 1;
     this.intervalBeforeS = this.heldIntervalS / spans;
     this.heldIntervalS = nextIntervalS;
     if (spans > 1) this.toothMissed();
-    this.relative = (this.relative + spans) % this.sync.positions;
-    face?.place(this.relative, spans, held.t, swingV);
+    this.relative = (this.relative + spans) % sync.positions;
+    face?.place(this.relative, spans);
   }
 
   private wholeCycle(tracker: DirectionTracker): boolean {
@@ -328,9 +364,9 @@ export class Motion {
   private forgetTeeth(): void {
     this.meter.reset();
     resetSync(this.sync);
-    this.waiting = null;
+    this.waitingT = NaN;
     this.netAtRise = NaN;
-    this.held = null;
+    this.held = false;
     this.heldIntervalS = NaN;
     this.intervalBeforeS = NaN;
     this.relative = -1;

@@ -12,6 +12,9 @@ export type Speed = { rpm: number; errorRpm: number };
 
 export class SpeedMeter {
   readonly latest: Speed = { rpm: NaN, errorRpm: NaN };
+  /** Instant of the tooth that `add` is to take, s, and its standard error, s. */
+  t = NaN;
+  sigmaS = NaN;
   private readonly method: SpeedMethod;
   private readonly windowS: number;
   private readonly turnPositions: number;
@@ -63,30 +66,31 @@ export class SpeedMeter {
   }
 
   /**
-   * @param t instant, s. @param place positions counted so far. @param sigmaS standard error of an instant, s.
+   * Takes a tooth at the instant `t` with the error `sigmaS`.
+   * @param place positions counted so far.
    * @returns true where `latest` holds a speed.
    */
-  add(t: number, place: number, sigmaS: number): boolean {
-    this.push(t, place);
+  add(place: number): boolean {
+    this.push(place);
     if (this.method === 'turn') this.dropTo(place - this.turnPositions);
     else if (this.method === 'tooth') this.keepLast(2);
-    else this.dropBefore(t - this.windowS);
+    else this.dropBeforeWindow();
     const intervals = this.count - 1;
     if (intervals < 1) return false;
-    if (this.method === 'window' && intervals > 1) this.fromLine(sigmaS);
-    else this.fromEnds(sigmaS);
+    if (this.method === 'window' && intervals > 1) this.fromLine();
+    else this.fromEnds();
     return true;
   }
 
-  private push(t: number, place: number): void {
+  private push(place: number): void {
     if (this.count === this.times.length) this.widen();
     const i = this.next & this.mask;
-    this.times[i] = t;
+    this.times[i] = this.t;
     this.places[i] = place;
     this.next++;
     if (this.method !== 'window') return;
     if (this.count === 1) this.refit();
-    else this.account(t, place, 1);
+    else this.account(this.t, place, 1);
   }
 
   private widen(): void {
@@ -110,7 +114,8 @@ export class SpeedMeter {
     while (this.count > count) this.first++;
   }
 
-  private dropBefore(t: number): void {
+  private dropBeforeWindow(): void {
+    const t = this.t - this.windowS;
     while (this.count > 2 && this.times[this.first & this.mask]! < t) {
       const i = this.first & this.mask;
       this.account(this.times[i]!, this.places[i]!, -1);
@@ -142,24 +147,22 @@ export class SpeedMeter {
       this.account(this.times[k & this.mask]!, this.places[k & this.mask]!, 1);
   }
 
-  private fromEnds(sigmaS: number): void {
+  private fromEnds(): void {
     const a = this.first & this.mask;
     const b = (this.next - 1) & this.mask;
-    this.conclude(
-      (this.times[b]! - this.times[a]!) / (this.places[b]! - this.places[a]!),
-      (Math.SQRT2 * sigmaS) / (this.places[b]! - this.places[a]!),
-    );
+    const spans = this.places[b]! - this.places[a]!;
+    const perPositionS = (this.times[b]! - this.times[a]!) / spans;
+    const rpm = this.factor / perPositionS;
+    this.latest.rpm = rpm;
+    this.latest.errorRpm = (rpm * Math.SQRT2 * this.sigmaS) / (spans * perPositionS);
   }
 
-  private fromLine(sigmaS: number): void {
+  private fromLine(): void {
     const n = this.count;
     const spread = this.sumPP - (this.sumP * this.sumP) / n;
     const perPositionS = (this.sumTP - (this.sumT * this.sumP) / n) / spread;
-    this.conclude(perPositionS, sigmaS / Math.sqrt(spread));
-  }
-
-  private conclude(perPositionS: number, sigmaS: number): void {
-    this.latest.rpm = this.factor / perPositionS;
-    this.latest.errorRpm = (this.latest.rpm * sigmaS) / perPositionS;
+    const rpm = this.factor / perPositionS;
+    this.latest.rpm = rpm;
+    this.latest.errorRpm = (rpm * this.sigmaS) / (Math.sqrt(spread) * perPositionS);
   }
 }

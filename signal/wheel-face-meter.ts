@@ -14,6 +14,9 @@ export class WheelFaceMeter {
   /** Turns in a row in which nothing came where the tooth should be. */
   readonly missedInRow: Uint16Array;
   readonly lastSeenS: Float64Array;
+  /** Instant of the tooth that `place` is to take, s, and its peak to peak, V (NaN: not known). */
+  t = NaN;
+  toothSwingV = NaN;
   private readonly positions: number;
   private readonly missing: number;
   private readonly spacingDeg: Float64Array;
@@ -47,23 +50,23 @@ export class WheelFaceMeter {
     this.counts.fill(0);
   }
 
-  /** A tooth at `position`, `spans` positions after the one before, at `t` s. */
-  place(position: number, spans: number, t: number, swingV: number): void {
-    const { positions } = this;
+  /** Takes a tooth at `position`, `spans` positions after the one before. */
+  place(position: number, spans: number): void {
+    const { positions, t, toothSwingV: swingV } = this;
     this.counts[position] = this.counts[position]! + 1;
     if (!Number.isNaN(swingV)) {
       const old = this.swingV[position]!;
       this.swingV[position] = Number.isNaN(old) ? swingV : old + (swingV - old) / 4;
     }
     if (!this.started) {
-      this.begin(position, t);
+      this.begin(position);
       return;
     }
-    for (let k = 1; k < spans; k++) this.miss((this.lastPosition + k) % positions, t);
+    for (let k = 1; k < spans; k++) this.miss((this.lastPosition + k) % positions);
     const passedStart = (this.lastPosition - this.startPosition + positions) % positions;
     if (passedStart + spans >= positions) {
-      if (position === this.startPosition) this.finishTurn(t);
-      this.begin(position, t);
+      if (position === this.startPosition) this.finishTurn();
+      this.begin(position);
     } else {
       this.turnTimes[position] = t;
       this.lastPosition = position;
@@ -90,22 +93,22 @@ export class WheelFaceMeter {
     return { numbered, positions: list, angleDeg };
   }
 
-  private begin(position: number, t: number): void {
+  private begin(position: number): void {
     this.turnTimes.fill(NaN);
     this.started = true;
     this.startPosition = position;
     this.lastPosition = position;
-    this.turnTimes[position] = t;
+    this.turnTimes[position] = this.t;
   }
 
-  private miss(position: number, t: number): void {
+  private miss(position: number): void {
     if (this.missing > 0 && position >= this.positions - this.missing) return;
     this.missedInRow[position] = Math.min(65_535, this.missedInRow[position]! + 1);
-    this.lastSeenS[position] = t;
+    this.lastSeenS[position] = this.t;
   }
 
-  private finishTurn(t: number): void {
-    const { positions, startPosition, turnTimes } = this;
+  private finishTurn(): void {
+    const { positions, startPosition, turnTimes, t } = this;
     const t0 = turnTimes[startPosition]!;
     const turnS = t - t0;
     const before = this.lastTurnS;
