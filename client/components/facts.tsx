@@ -15,14 +15,14 @@ export function Facts({ facts }: { facts: readonly Fact[] }) {
       <View key={fact.name} style={{ flexDirection: 'row', justifyContent: 'space-between', gap: space.m }}>
         {createElement(
           'dt',
-          null,
+          { style: { flexShrink: 0, maxWidth: '50%' } },
           <Text size="small" tone="scribeSoft">
             {fact.name}
           </Text>,
         )}
         {createElement(
           'dd',
-          { style: { margin: 0, textAlign: 'right', minWidth: 0 } },
+          { style: { margin: 0, textAlign: 'right', minWidth: 0, flexShrink: 1 } },
           <Text size="small" figures weight={fact.tone ? 'bold' : 'medium'} tone={fact.tone ?? 'scribe'}>
             {fact.value}
           </Text>,

@@ -1,4 +1,4 @@
-import { useId, useRef } from 'react';
+import { useId, useState } from 'react';
 import type { ReactNode } from 'react';
 import { Defs, G, Line, Pattern, Svg } from 'react-native-svg';
 import { Drawing } from '@/client/drawings/figure';
@@ -66,10 +66,10 @@ function RibbonDrawing({
 }: RibbonProps & { size: Size }) {
   const colours = useColours();
   const hatchId = `hatch${useId().replace(/\W/g, '')}`;
-  const ranges = useRef(new Map<string, Range>());
+  const [ranges] = useState(() => new Map<string, Range>());
   const time = timeScale(data.fromS, data.toS, gutterPx, size.width - rightPx);
   const lanesHeight = Math.max(60, size.height - railPx - axisPx - extraPx);
-  const boxes = stackLanes(data.lanes, lanesHeight, focus, (lane) => keepRanges(ranges.current, lane));
+  const boxes = stackLanes(data.lanes, lanesHeight, focus, (lane) => keepRanges(ranges, lane));
   const markX = markS == null ? null : time.x(markS);
   return (
     <Svg width={size.width} height={size.height}>

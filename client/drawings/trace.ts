@@ -54,9 +54,11 @@ export function tracePaths(
     const point = a === b ? `${x} ${y1.toFixed(1)}` : `${x} ${y1.toFixed(1)}L${x} ${y2.toFixed(1)}`;
     trace += `${pen ? 'L' : 'M'}${point}${pen || a !== b ? '' : 'h.01'}`;
     const reaches = b >= high || a <= low;
-    if (reaches) clipped += `${pen && clippedPen ? 'L' : 'M'}${point}${clippedPen ? '' : 'h.01'}`;
+    // Only the level that is cut off, not the flank that leads to it.
+    if (reaches)
+      clipped += `${clippedPen ? 'L' : 'M'}${x} ${(b >= high ? yMax : yMin).toFixed(1)}${clippedPen ? '' : 'h.01'}`;
     pen = true;
-    clippedPen = reaches;
+    clippedPen = reaches && !(b >= high && a <= low);
     lastY = y2;
   }
   return { trace, clipped };

@@ -9,6 +9,7 @@ import { asProblem } from '@/client/data/api-problem';
 import { useMay, useUser } from '@/client/data/app-data-context';
 import { useCapture, useDeleteCapture } from '@/client/data/captures';
 import { useLaneSamples } from '@/client/data/lane-samples';
+import { clipLevels } from '@/client/drawings/clip-levels';
 import { EditSheet } from '@/client/screens/replay/edit-sheet';
 import { laneOf } from '@/client/screens/replay/replay-data';
 import { ReplayView } from '@/client/screens/replay/replay-view';
@@ -46,7 +47,13 @@ function LoadedReplay({ capture }: { capture: Capture }) {
   const mayEdit = useMay('engineer');
 
   const lanes = capture.channels.map((name, i) =>
-    laneOf(name, samples[i]?.samples, analysis.data?.channels[name], limitsOf(capture, name), replay.window),
+    laneOf(
+      name,
+      samples[i]?.samples,
+      analysis.data?.channels[name],
+      clipLevels(capture.rig.channels.find((c) => c.name === name)),
+      replay.window,
+    ),
   );
   const failed = samples.find((s) => s.error)?.error;
   const empty = samples.some((s) => !s.samples);
@@ -105,16 +112,4 @@ function useDeletion(capture: Capture) {
         toast({ text: `Not deleted. ${asProblem(failure).detail || asProblem(failure).title}` }),
     });
   return { allowed: admin || (engineer && own), busy: remove.isPending, run };
-}
-
-/** Where the board's input clips, V. */
-function limitsOf(capture: Capture, name: string) {
-  const channel = capture.rig.channels.find((c) => c.name === name);
-  const volts = (code: number | null | undefined) =>
-    channel && code != null ? (code - channel.codeOffset) * channel.voltsPerCode : null;
-  const rails = [volts(channel?.minCode), volts(channel?.maxCode)].filter((v): v is number => v !== null);
-  return {
-    clipLowV: rails.length === 2 ? Math.min(...rails) : null,
-    clipHighV: rails.length === 2 ? Math.max(...rails) : null,
-  };
 }

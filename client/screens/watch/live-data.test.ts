@@ -26,8 +26,8 @@ const ribbon = {
 
 describe('ribbonDataOf', () => {
   it('draws a band only where both its points are known', () => {
-    expect(ribbonDataOf(ribbon).lanes[0]!.bands).toEqual([]);
-    const known = ribbonDataOf({ ...ribbon, lanes: [{ ...lane, releaseV: 0.8 }] });
+    expect(ribbonDataOf(ribbon, []).lanes[0]!.bands).toEqual([]);
+    const known = ribbonDataOf({ ...ribbon, lanes: [{ ...lane, releaseV: 0.8 }] }, []);
     expect(known.lanes[0]!.bands).toEqual([{ from: 1, to: 2, operateV: 1.2, releaseV: 0.8 }]);
   });
 });

@@ -1,11 +1,13 @@
 import type { LiveFrame } from '@/server/contract';
+import { clipLevels } from '@/client/drawings/clip-levels';
 import type { RibbonData } from '@/client/drawings/ribbon-types';
 import type { SpeedPoint } from '@/client/drawings/speed-line';
+import type { Channel } from '@/signal/model';
 
 type FrameRibbon = NonNullable<LiveFrame['ribbon']>;
 
 /** What a frame says of the signal, as the ribbon draws it: the band stands still for the length of a window. */
-export function ribbonDataOf(ribbon: FrameRibbon): RibbonData {
+export function ribbonDataOf(ribbon: FrameRibbon, channels: readonly Channel[] = []): RibbonData {
   const { fromS, toS, firstS, stepS, edges, rejected, gaps } = ribbon;
   return {
     fromS,
@@ -15,6 +17,7 @@ export function ribbonDataOf(ribbon: FrameRibbon): RibbonData {
     gaps,
     lanes: ribbon.lanes.map(({ operateV, releaseV, ...lane }) => ({
       ...lane,
+      ...clipLevels(channels.find((c) => c.name === lane.channel)),
       firstS,
       stepS,
       bands: operateV === null || releaseV === null ? [] : [{ from: fromS, to: toS, operateV, releaseV }],

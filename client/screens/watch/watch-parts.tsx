@@ -46,7 +46,8 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
   const frame = view.frame;
   const live: LiveFrame['live'] | null = frame?.live ?? null;
   const drawn = controls.held ?? frame;
-  const data = drawn?.ribbon && drawn.ribbon.lanes.length > 0 ? ribbonDataOf(drawn.ribbon) : null;
+  const data =
+    drawn?.ribbon && drawn.ribbon.lanes.length > 0 ? ribbonDataOf(drawn.ribbon, rig.channels) : null;
   const rate = live?.rates.declaredHz ?? null;
   const state = !now.isLive ? (live?.state === 'waiting' ? 'no stream yet' : 'not streaming') : 'streaming';
   const subtitle = [
