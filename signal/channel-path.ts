@@ -31,7 +31,7 @@ import type { Levels } from '@/signal/levels';
 import { createMarginMeter, endTooth, noteMargin, worstMarginV } from '@/signal/margin-meter';
 import type { MarginMeter } from '@/signal/margin-meter';
 import type { Band, Channel, SampleArray } from '@/signal/model';
-import { addToBurst, breakBurst, burstLength, createNoiseMeter, rawNoiseV } from '@/signal/noise';
+import { breakBurst, burstLength, createNoiseMeter, endBurst, rawNoiseV } from '@/signal/noise';
 import type { NoiseMeter } from '@/signal/noise';
 import { edgeRising } from '@/signal/pipeline-types';
 import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline-types';
@@ -68,7 +68,7 @@ export class ChannelPath implements DetectorSink {
   delayS: number;
   /** Last accepted edge, samples, delay not taken off. */
   lastEdgeAt = NaN;
-  /** Least and most raw volts of every sixteenth sample since `restartSpread`. */
+  /** Least and most raw volts of every thirty-second sample since `restartSpread`. */
   spreadLowV = Infinity;
   spreadHighV = -Infinity;
 
@@ -86,7 +86,9 @@ export class ChannelPath implements DetectorSink {
   /** `scratch[0]` is the sample before the chunk. */
   private readonly scratch = new Float64Array(chunkSamples + 1);
   private readonly burstEvery: number;
-  private codes: boolean | null = null;
+  /** Constructor of the arrays that come, and what turns their samples into volts. */
+  private kind: unknown = null;
+  private scale = { offset: 0, factor: 1 };
   private fresh = true;
   private hunting = false;
   private replaying = false;
@@ -128,7 +130,7 @@ export class ChannelPath implements DetectorSink {
     this.delayS = dcDelayS(sections, rateHz);
     this.detector = createDetector(options.holdoffS * rateHz, band.mode === 'fitted');
     this.marginMeter = createMarginMeter(options.teethPerTurn);
-    this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(1024, Math.max(32, rateHz / 20))));
+    this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(4096, Math.max(32, rateHz / 8))));
     this.nextAt = startIndex;
     if (band.mode === 'fixed') {
       const levels = band.channels?.[channel.name] ?? band;
@@ -160,7 +162,7 @@ export class ChannelPath implements DetectorSink {
     const n = to - from;
     const v = this.scratch;
     const base = at - 1;
-    if (this.codes === null) this.learnKind(array);
+    if (array.constructor !== this.kind) this.learnKind(array);
     this.watchRaw(array, from, to, at);
     if (array instanceof Int16Array && this.fromCodes) {
       const { codeOffset, voltsPerCode } = this.channel;
@@ -250,12 +252,7 @@ export class ChannelPath implements DetectorSink {
       }
       if (midAt > before) {
         this.learnPeriod(before, midAt);
-        const hz = rateHz / this.periodSamples;
-        const { delays } = this;
-        this.delayS =
-          Math.abs(hz - delays.nodeHz) <= 0.02 * delays.nodeHz
-            ? delays.nodeS + (hz - delays.nodeHz) * delays.slopeSPerHz
-            : delayAt(delays, hz);
+        this.delayS = delayAt(this.delays, rateHz / this.periodSamples);
         this.delayKnown = true;
       }
 
@@ -303,15 +300,15 @@ export class ChannelPath implements DetectorSink {
     this.spreadHighV = -Infinity;
   }
 
-  /** A few raw samples: bursts for the noise, every sixteenth for rails and spread. Takes `array[from..to)`, stream index `at`. */
+  /** A few raw samples: bursts for the noise, every thirty-second for rails and spread. Takes `array[from..to)`, stream index `at`. */
   private watchRaw(array: SampleArray, from: number, to: number, at: number): void {
-    const { offset, factor } = scaleOf(array, this.channel);
-    this.feedNoise(array, from, to, at, offset, factor);
+    this.feedNoise(array, from, to, at);
+    const { rails, scale } = this;
     for (let i = from + ((railStride - (at % railStride)) % railStride); i < to; i += railStride) {
-      const x = (array[i]! - offset) * factor;
+      const x = (array[i]! - scale.offset) * scale.factor;
       if (x < this.spreadLowV) this.spreadLowV = x;
       if (x > this.spreadHighV) this.spreadHighV = x;
-      if (this.rails) watchRails(this.rails, x, at + (i - from));
+      if (rails) watchRails(rails, x, at + (i - from));
     }
   }
 
@@ -325,30 +322,27 @@ export class ChannelPath implements DetectorSink {
   }
 
   private learnKind(array: SampleArray): void {
-    this.codes = holdsCodes(array);
-    this.rails = createRailMeter(this.channel, this.codes);
-    if (!this.codes) return;
+    this.kind = array.constructor;
+    this.scale = scaleOf(array, this.channel);
+    const codes = holdsCodes(array);
+    this.rails = createRailMeter(this.channel, codes);
+    if (!codes) return;
     this.noise.quantumV = Math.abs(this.channel.voltsPerCode);
     this.noise.quantumFixed = true;
   }
 
-  private feedNoise(
-    array: SampleArray,
-    from: number,
-    to: number,
-    at: number,
-    offset: number,
-    factor: number,
-  ): void {
-    const { burstEvery, noise } = this;
+  private feedNoise(array: SampleArray, from: number, to: number, at: number): void {
+    const { burstEvery, noise, scale } = this;
     let phase = at % burstEvery;
     let i = from;
     while (i < to) {
       // A burst whose begin was not seen is left out.
       if (phase < burstLength && (phase === 0 || noise.filled === phase)) {
         const end = Math.min(to, i + burstLength - phase);
+        if (phase === 0) noise.filled = 0;
         phase += end - i;
-        for (; i < end; i++) addToBurst(noise, (array[i]! - offset) * factor);
+        for (; i < end; i++) noise.burst[noise.filled++] = (array[i]! - scale.offset) * scale.factor;
+        if (noise.filled === burstLength) endBurst(noise);
       } else {
         i += burstEvery - phase;
         phase = 0;

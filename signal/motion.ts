@@ -5,6 +5,7 @@
  * known, an interval counts only if exactly one cycle was passed in it, so that dither at one edge makes no speed.
  */
 import { delayGuessed, pushSpeed, roomForSpeed } from '@/signal/columns';
+import type { EdgeQueue } from '@/signal/columns';
 import { createDirectionTracker, forgetLevels, forgetSense, stepTo } from '@/signal/direction-tracker';
 import type { DirectionTracker } from '@/signal/direction-tracker';
 import { createGapSync, judgeInterval, judgeWaiting, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
@@ -16,7 +17,7 @@ import { SpeedMeter } from '@/signal/speed-meter';
 import { illegalStep, stepTable } from '@/signal/step-table';
 import { mostPositions, WheelFaceMeter } from '@/signal/wheel-face-meter';
 
-export type MotionEdge = {
+type MotionEdge = {
   /** Order of merging, samples; delay not taken off. */
   at: number;
   midS: number;
@@ -46,6 +47,14 @@ export class Motion {
   private phaseSin = 0;
 
   readonly rig: RigSetup;
+  private readonly edge: MotionEdge = {
+    at: NaN,
+    midS: NaN,
+    delayS: NaN,
+    sigmaS: NaN,
+    extremeV: NaN,
+    flags: 0,
+  };
   private readonly toothMissed: () => void;
   private readonly stoppedAfterSamples: number;
   private readonly stoppedAfterS: number;
@@ -149,8 +158,19 @@ export class Motion {
     this.countsReset = true;
   }
 
-  /** An edge of the channel with the place `role` in the arrangement (0 for A or U). */
-  edge(edge: MotionEdge, role: number): void {
+  /** Entry `i` of the queue of the channel with the place `role` in the arrangement (0 for A or U), in order of time. */
+  take(queue: EdgeQueue, i: number, role: number): void {
+    const { edge } = this;
+    edge.at = queue.at[i]!;
+    edge.midS = queue.midS[i]!;
+    edge.delayS = queue.delayS[i]!;
+    edge.sigmaS = queue.sigmaS[i]!;
+    edge.extremeV = queue.extremeV[i]!;
+    edge.flags = queue.flags[i]!;
+    this.takeEdge(edge, role);
+  }
+
+  private takeEdge(edge: MotionEdge, role: number): void {
     if (edge.at > this.stopAt) this.quietUpTo(edge.at);
     const t = edge.midS - edge.delayS;
     const rising = (edge.flags & edgeRising) !== 0;

@@ -47,9 +47,8 @@ export function breakBurst(meter: NoiseMeter): void {
   meter.filled = 0;
 }
 
-export function addToBurst(meter: NoiseMeter, volts: number): void {
-  meter.burst[meter.filled++] = volts;
-  if (meter.filled < burstLength) return;
+/** `burst` holds a whole burst: it is judged, and the next may begin. */
+export function endBurst(meter: NoiseMeter): void {
   meter.filled = 0;
   const { burst, sizes } = meter;
   for (let i = 0; i < differences; i++) {

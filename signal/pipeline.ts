@@ -1,7 +1,7 @@
 /**
  * The one signal path: live, replay, rerun, proof and preview all run it.
  *
- * Samples go through in chunks that end at ticks (20 a second, at fixed places of the stream) or where a block ends. What is
+ * Samples go through in chunks that end at ticks (10 a second or more, at fixed places of the stream) or where a block ends. What is
  * decided depends on samples and ticks only, so that splitting a stream into blocks anywhere changes nothing, bit for bit.
  */
 import { ChannelPath, chunkSamples } from '@/signal/channel-path';
@@ -11,7 +11,6 @@ import type { FindingRule } from '@/signal/findings/rule';
 import { createRules } from '@/signal/findings/rules';
 import type { Channel, Finding, Result, SampleArray } from '@/signal/model';
 import { Motion } from '@/signal/motion';
-import type { MotionEdge } from '@/signal/motion';
 import type {
   Pipeline,
   PipelineOptions,
@@ -42,7 +41,6 @@ class SignalPipeline implements Pipeline {
   private readonly moving: ChannelPath[];
   private readonly rules: FindingRule[];
   private readonly tickSamples: number;
-  private readonly edge: MotionEdge = { at: 0, midS: 0, delayS: 0, sigmaS: 0, extremeV: 0, flags: 0 };
   private nextAt: number;
 
   constructor({ rig, settings, rateHz, channels, startIndex }: PipelineOptions) {
@@ -53,7 +51,7 @@ class SignalPipeline implements Pipeline {
     const { pulsesPerTurn, missingPulses } = rig.wheel;
     this.rateHz = rateHz;
     this.nextAt = startIndex;
-    this.tickSamples = Math.max(1, Math.round(rateHz / 20));
+    this.tickSamples = Math.min(8192, Math.max(1, Math.round(rateHz / 10)));
     this.paths = channels.map(
       (name) =>
         new ChannelPath({
@@ -148,8 +146,7 @@ class SignalPipeline implements Pipeline {
   /** Hands the channels' edges to the motion in order of time, as far as every channel has decided. */
   private merge(): void {
     let decided = Infinity;
-    for (const path of this.moving) decided = Math.min(decided, path.decidedUpTo);
-    const { edge } = this;
+    for (let m = 0; m < this.moving.length; m++) decided = Math.min(decided, this.moving[m]!.decidedUpTo);
     for (;;) {
       let earliest = -1;
       let at = Infinity;
@@ -161,14 +158,7 @@ class SignalPipeline implements Pipeline {
       }
       if (earliest < 0 || at > decided) break;
       const { queue } = this.paths[earliest]!;
-      const i = queue.head++;
-      edge.at = at;
-      edge.midS = queue.midS[i]!;
-      edge.delayS = queue.delayS[i]!;
-      edge.sigmaS = queue.sigmaS[i]!;
-      edge.extremeV = queue.extremeV[i]!;
-      edge.flags = queue.flags[i]!;
-      this.motion.edge(edge, this.roles[earliest]!);
+      this.motion.take(queue, queue.head++, this.roles[earliest]!);
     }
     if (decided < Infinity) this.motion.quietUpTo(decided);
   }

@@ -1,11 +1,11 @@
 /**
- * How much of a linear sensor's raw signal stands at a rail, from every sixteenth sample. For codes the rails are the
+ * How much of a linear sensor's raw signal stands at a rail, from every thirty-second sample. For codes the rails are the
  * converter's ends. For volts they are the ends of the sensor's supply, where an output that saturates stands 0.05 to
  * 8 % of the supply before the rail and does not move at all.
  */
 import type { Channel } from '@/signal/model';
 
-export const railStride = 16;
+export const railStride = 32;
 
 export type RailMeter = {
   lowV: number;

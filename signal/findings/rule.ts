@@ -1,6 +1,6 @@
 /**
  * What a rule of findings is: it looks at what the channels and the motion have learnt, at ticks (fixed places of the
- * stream, 20 a second) and at gaps, and holds its own findings. Rules know nothing of each other.
+ * stream, 10 a second or more) and at gaps, and holds its own findings. Rules know nothing of each other.
  */
 import type { ChannelPath } from '@/signal/channel-path';
 import type { Motion } from '@/signal/motion';
