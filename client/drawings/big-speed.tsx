@@ -27,7 +27,7 @@ export function BigSpeed({ saying, most = 72 }: BigSpeedProps) {
       style={{
         flexDirection: 'row',
         alignItems: 'baseline',
-        gap: space.s,
+        gap: Math.max(space.s, most * 0.07),
         minHeight: most * 1.06,
         width: '100%',
       }}

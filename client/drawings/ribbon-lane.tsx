@@ -1,4 +1,5 @@
 import { G, Line, Path } from 'react-native-svg';
+import { envelopePaths, isDense } from '@/client/drawings/envelope';
 import { withoutGaps } from '@/client/drawings/gaps';
 import { spreadLabels, voltsText } from '@/client/drawings/labels';
 import { bandPaths } from '@/client/drawings/band-paths';
@@ -34,14 +35,18 @@ export function RibbonLaneDrawing({ box, time, gaps, hatchId, last }: LaneProps)
   return (
     <G>
       <Band box={box} time={time} gaps={gaps} hatchId={hatchId} />
-      <Path
-        d={trace}
-        fill="none"
-        stroke={colours.scribe}
-        strokeWidth={box.thin ? 1.2 : 1.6}
-        strokeLinejoin="round"
-        strokeLinecap="round"
-      />
+      {isDense(lane, time, box.range) ? (
+        <Envelope box={box} time={time} />
+      ) : (
+        <Path
+          d={trace}
+          fill="none"
+          stroke={colours.scribe}
+          strokeWidth={box.thin ? 1.2 : 1.6}
+          strokeLinejoin="round"
+          strokeLinecap="round"
+        />
+      )}
       {clipped ? (
         <Path
           d={clipped}
@@ -58,6 +63,18 @@ export function RibbonLaneDrawing({ box, time, gaps, hatchId, last }: LaneProps)
       </SvgText>
       {box.thin ? null : <VoltLabels box={box} y={y} />}
     </G>
+  );
+}
+
+/** Teeth too close to tell apart: a surface through which the band can be seen. */
+function Envelope({ box, time }: { box: LaneBox; time: TimeScale }) {
+  const colours = useColours();
+  const { fill, outline } = envelopePaths(box.lane, time, laneY(box));
+  return (
+    <>
+      <Path d={fill} fill={colours.scribe} fillOpacity={0.22} />
+      <Path d={outline} fill="none" stroke={colours.scribe} strokeWidth={1.2} strokeLinejoin="round" />
+    </>
   );
 }
 

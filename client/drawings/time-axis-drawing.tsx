@@ -1,6 +1,6 @@
 import { G, Line } from 'react-native-svg';
 import { SvgText } from '@/client/drawings/svg-text';
-import { timeTicks } from '@/client/drawings/time-axis';
+import { secondsText, timeTicks } from '@/client/drawings/time-axis';
 import type { TimeScale } from '@/client/drawings/time-axis';
 import type { ColourName } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
@@ -15,6 +15,8 @@ type TimeAxisProps = {
 };
 
 const charPx = 6.9;
+/** Below this the ends are labelled instead of round moments: those would not stand beside the word in the middle. */
+const narrowPx = 420;
 
 /** Round moments; where a word stands in the middle or at the right edge, the ticks under it keep their line only. */
 export function TimeAxis({ time, y, anchorS, rightWord, centreWord, centreTone = 'dye' }: TimeAxisProps) {
@@ -29,6 +31,8 @@ export function TimeAxis({ time, y, anchorS, rightWord, centreWord, centreTone =
       middle - (centreWord.length * charPx) / 2 - 8,
       middle + (centreWord.length * charPx) / 2 + 8,
     ]);
+  const narrow = right - left < narrowPx && centreWord !== undefined;
+  if (narrow) taken.push([left - 40, right + 40]);
   const ticks = timeTicks(time.fromS, time.toS, Math.max(2, Math.floor((right - left) / 90)), anchorS);
   return (
     <G>
@@ -54,6 +58,7 @@ export function TimeAxis({ time, y, anchorS, rightWord, centreWord, centreTone =
           </G>
         );
       })}
+      {narrow ? <EdgeLabels time={time} y={y} anchorS={anchorS} bothEnds={!rightWord} /> : null}
       {centreWord ? (
         <SvgText x={middle} y={y} anchor="middle" tone={centreTone}>
           {centreWord}
@@ -62,6 +67,29 @@ export function TimeAxis({ time, y, anchorS, rightWord, centreWord, centreTone =
       {rightWord ? (
         <SvgText x={right} y={y} anchor="end">
           {rightWord}
+        </SvgText>
+      ) : null}
+    </G>
+  );
+}
+
+type EdgeLabelsProps = { time: TimeScale; y: number; anchorS: number | undefined; bothEnds: boolean };
+
+function EdgeLabels({ time, y, anchorS, bothEnds }: EdgeLabelsProps) {
+  const { fromS, toS } = time;
+  const span = toS - fromS;
+  const text = (s: number) =>
+    anchorS === undefined
+      ? secondsText(s, span / 40, Math.max(1, toS))
+      : secondsText(s - anchorS, span / 100, span);
+  return (
+    <G>
+      <SvgText x={time.x(fromS) - 6} y={y}>
+        {text(fromS)}
+      </SvgText>
+      {bothEnds ? (
+        <SvgText x={time.x(toS) + 6} y={y} anchor="end">
+          {text(toS)}
         </SvgText>
       ) : null}
     </G>

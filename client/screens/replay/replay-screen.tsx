@@ -20,6 +20,9 @@ import { useGo } from '@/client/screens/shared/use-go';
 import { useWide } from '@/client/theme/use-theme';
 import type { Capture } from '@/server/contract';
 
+/** More columns than px, so that samples come as they are where there are about as many. */
+const columnsPerPx = 1.8;
+
 /** One kept capture, replayed. */
 export function ReplayScreen({ captureId }: { captureId: string }) {
   const capture = useCapture(captureId);
@@ -40,7 +43,7 @@ function LoadedReplay({ capture }: { capture: Capture }) {
   const { width } = useWindowDimensions();
   const analysis = useAnalysis(capture.id);
   const replay = useReplay(capture, analysis.data ?? null);
-  const fetch = fetchFor(replay.window, wide ? width - 560 : width - 120, capture.durationS);
+  const fetch = fetchFor(replay.window, (wide ? width - 560 : width - 120) * columnsPerPx, capture.durationS);
   const samples = useLaneSamples(capture.id, capture.channels, { ...fetch, signal: replay.signal });
   const [sheet, setSheet] = useState<'edit' | 'delete' | null>(null);
   const deletion = useDeletion(capture);

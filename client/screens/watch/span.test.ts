@@ -1,5 +1,13 @@
 import { describe, expect, it } from 'vitest';
-import { canStep, firstSpan, spanText, stepSpan, switchUnit, wishOf } from '@/client/screens/watch/span';
+import {
+  canStep,
+  firstSpan,
+  spanHolding,
+  spanText,
+  stepSpan,
+  switchUnit,
+  wishOf,
+} from '@/client/screens/watch/span';
 
 describe('span', () => {
   it('starts with 4 to 8 teeth, still on the tooth', () => {
@@ -17,6 +25,10 @@ describe('span', () => {
     expect(time).toMatchObject({ unit: 'time', spanS: 0.01 });
     expect(spanText(time)).toBe('10 ms');
     expect(wishOf(stepSpan(time, 1), 900)).toEqual({ spanS: 0.02, columns: 900, anchor: 'edge' });
+  });
+  it('reaches back to an instant, up to a minute', () => {
+    expect(spanHolding(firstSpan, 3)).toMatchObject({ unit: 'time', spanS: 5, anchor: 'now' });
+    expect(spanHolding(firstSpan, 300).spanS).toBe(60);
   });
   it('keeps the wish within what the hub takes', () => {
     expect(wishOf(firstSpan, 9000).columns).toBe(2000);

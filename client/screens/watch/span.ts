@@ -1,3 +1,4 @@
+import { durationText } from '@/client/drawings/time-axis';
 import type { RibbonWish } from '@/server/contract';
 
 /** How much of the signal the ribbon shows, and what stands at its right edge. */
@@ -30,6 +31,11 @@ export function canStep(span: Span, way: 1 | -1): boolean {
   return next.teeth !== span.teeth || next.spanS !== span.spanS;
 }
 
+/** The shortest step that holds so many seconds. */
+export function spanHolding(span: Span, atLeastS: number): Span {
+  return { ...span, unit: 'time', spanS: timeSteps.find((s) => s >= atLeastS) ?? 60, anchor: 'now' };
+}
+
 /** To the other unit, at about the span that is shown now. */
 export function switchUnit(span: Span, shownS: number | null): Span {
   if (span.unit === 'time') return { ...span, unit: 'teeth' };
@@ -45,6 +51,5 @@ export function wishOf(span: Span, widthPx: number): RibbonWish {
 }
 
 export function spanText(span: Span): string {
-  if (span.unit === 'teeth') return `${span.teeth} teeth`;
-  return span.spanS < 1 ? `${Math.round(span.spanS * 1000)} ms` : `${span.spanS} s`;
+  return span.unit === 'teeth' ? `${span.teeth} teeth` : durationText(span.spanS);
 }

@@ -34,7 +34,7 @@ export function SpeedPlate({ now, method, points, onFar }: SpeedPlateProps) {
       <View style={{ flexDirection: 'row', alignItems: 'center', gap: space.s, minHeight: 32 }}>
         {saying.direction ? <DirectionGlyph direction={saying.direction} size={wide ? 28 : 32} /> : null}
         <Text
-          size={wide || (saying.directionWord?.length ?? 0) > 9 ? 'body' : 'lead'}
+          size={(saying.directionWord?.length ?? 0) > 9 ? (wide ? 'small' : 'body') : wide ? 'body' : 'lead'}
           weight="medium"
           tone={toneOf(now)}
           style={{ flex: 1 }}

@@ -1,7 +1,7 @@
 import { useState } from 'react';
 import type { LiveFrame } from '@/server/contract';
 import type { Finding } from '@/signal/model';
-import { canStep, firstSpan, stepSpan, switchUnit } from '@/client/screens/watch/span';
+import { canStep, firstSpan, spanHolding, stepSpan, switchUnit } from '@/client/screens/watch/span';
 import type { Span } from '@/client/screens/watch/span';
 
 /** Faults of the wheel come once a turn: a whole turn must be in sight to see them. */
@@ -54,18 +54,20 @@ export function useWatchControls() {
         setHeld(frame);
         return true;
       }
+      if (finding.to === null && !oncePerTurn.has(finding.code)) {
+        // It goes on: what is on the screen now shows it.
+        setMarkS(null);
+        setHeld(frame);
+        return true;
+      }
       setHeld(null);
-      if (finding.to === null && oncePerTurn.has(finding.code)) {
+      if (finding.to === null) {
+        setMarkS(null);
         setSpan({ ...span, unit: 'teeth', teeth: Math.min(200, pulsesPerTurn + 2), anchor: 'edge' });
         return true;
       }
       if (streamS === null || streamS - finding.at > oldestS) return false;
-      setSpan({
-        ...span,
-        unit: 'time',
-        spanS: Math.min(60, Math.max(0.01, (streamS - finding.at) * 1.3 + 1)),
-        anchor: 'now',
-      });
+      setSpan(spanHolding(span, (streamS - finding.at) * 1.2 + 0.5));
       return true;
     },
   };

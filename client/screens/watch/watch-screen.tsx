@@ -19,6 +19,9 @@ import { useWide } from '@/client/theme/use-theme';
 import type { Rig } from '@/server/contract';
 import { defaultSettings } from '@/signal/model';
 
+/** More columns than px, so that samples come as they are where there are about as many. */
+const columnsPerPx = 1.8;
+
 /** A rig's live page. */
 export function WatchScreen({ rigId }: { rigId: string }) {
   const rig = useRig(rigId);
@@ -40,7 +43,7 @@ function LiveWatch({ rig }: { rig: Rig }) {
   const { width } = useWindowDimensions();
   const controls = useWatchControls();
   const view = useLiveRig(rig.id, {
-    ribbon: wishOf(controls.span, wide ? width - 880 : width - 120),
+    ribbon: wishOf(controls.span, (wide ? width - 880 : width - 120) * columnsPerPx),
     detail: true,
   });
   const nowMs = useNow(250);
