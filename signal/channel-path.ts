@@ -26,7 +26,7 @@ import type { Detector, DetectorSink } from '@/signal/detector';
 import type { Section } from '@/signal/filter-design';
 import { createHunter, hunt, startHunt, swingFloorV } from '@/signal/hunter';
 import type { Hunter } from '@/signal/hunter';
-import { createLevels, fittedThresholds, followPeak, followTrough } from '@/signal/levels';
+import { createLevels, fittedThresholds, followed } from '@/signal/levels';
 import type { Levels } from '@/signal/levels';
 import { createMarginMeter, endTooth, noteMargin, worstMarginV } from '@/signal/margin-meter';
 import type { MarginMeter } from '@/signal/margin-meter';
@@ -65,7 +65,7 @@ export class ChannelPath implements DetectorSink {
   edgeCount = 0;
   rejectedCount = 0;
   duty = NaN;
-  delayS: number;
+  delayS = NaN;
   /** Last accepted edge, samples, delay not taken off. */
   lastEdgeAt = NaN;
   /** Least and most raw volts of every thirty-second sample since `restartSpread`. */
@@ -99,7 +99,7 @@ export class ChannelPath implements DetectorSink {
   private delayKnown = false;
   private periodSamples = NaN;
   private lastExtremeV = NaN;
-  private wobbleV = 0;
+  private wobbleV = NaN;
   private riseMidAt = NaN;
   private fallMidAt = NaN;
   private riseSpent = NaN;
@@ -128,6 +128,7 @@ export class ChannelPath implements DetectorSink {
     this.gainOfNoise = noiseGain(sections, rateHz);
     this.delays = createDelayCurve(sections, rateHz);
     this.delayS = dcDelayS(sections, rateHz);
+    this.wobbleV = 0;
     this.detector = createDetector(options.holdoffS * rateHz, band.mode === 'fitted');
     this.marginMeter = createMarginMeter(options.teethPerTurn);
     this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(4096, Math.max(32, rateHz / 8))));
@@ -216,73 +217,90 @@ export class ChannelPath implements DetectorSink {
   }
 
   /**
-   * Takes over what the detector recorded: levels, timing, error and output of each edge. One function on purpose, see
-   * `detector.ts` on boxed numbers.
+   * Takes over what the detector recorded: levels, timing, error and output of each edge. One function over locals on
+   * purpose, see `detector.ts` on boxed numbers.
    */
   private takeEdges(): void {
-    const { detector, levels, edges, queue, rateHz } = this;
+    const { detector, levels, edges, queue, rateHz, noiseV, delays, marginMeter } = this;
     const raw = detector.edges;
+    const { operateV, releaseV } = detector;
+    const halfBandV = operateV - detector.midV;
+    let { lowV, highV } = levels;
+    let { duty, wobbleV, lastExtremeV, riseMidAt, fallMidAt, riseSpent, fallSpent, periodSamples, delayS } =
+      this;
     for (let k = 0; k < raw.count; k++) {
       const at = raw.at[k]!;
       const midAt = raw.midAt[k]!;
       const extremeV = raw.extremeV[k]!;
-      const rising = (raw.flags[k]! & edgeRising) !== 0;
-      this.edgeCount++;
-      this.lastEdgeAt = at;
-      const beyondV = rising ? detector.releaseV - extremeV : extremeV - detector.operateV;
-      if (beyondV < this.marginMeter.thisTurnV) this.marginMeter.thisTurnV = beyondV;
-      if (!rising) endTooth(this.marginMeter);
-      const toothV = Math.abs(extremeV - this.lastExtremeV);
-      this.lastExtremeV = extremeV;
-      const swingV = levels.highV - levels.lowV;
-      if (!(toothV < swingV / 2)) this.wobbleV *= 0.97;
-      else if (this.oneTooth && toothV > this.wobbleV) this.wobbleV = toothV;
-      if (rising) followTrough(levels, extremeV, toothV);
-      else followPeak(levels, extremeV, toothV);
+      const flags = raw.flags[k]!;
+      const rising = (flags & edgeRising) !== 0;
+      const beyondV = rising ? releaseV - extremeV : extremeV - operateV;
+      if (beyondV < marginMeter.thisTurnV) marginMeter.thisTurnV = beyondV;
+      if (!rising) endTooth(marginMeter);
 
-      const before = rising ? this.riseMidAt : this.fallMidAt;
+      const toothV = Math.abs(extremeV - lastExtremeV);
+      const swingV = highV - lowV;
+      lastExtremeV = extremeV;
+      if (!(toothV < swingV / 2)) wobbleV *= 0.97;
+      else if (this.oneTooth && toothV > wobbleV) wobbleV = toothV;
+      if (rising) lowV = followed(lowV, extremeV, swingV, toothV);
+      else highV = followed(highV, extremeV, swingV, toothV);
+
+      const before = rising ? riseMidAt : fallMidAt;
       if (rising) {
-        if (this.fallMidAt > before) {
-          const high = (this.fallMidAt - before) / (midAt - before);
-          this.duty = Number.isNaN(this.duty) ? high : this.duty + (high - this.duty) / 8;
+        if (fallMidAt > before) {
+          const high = (fallMidAt - before) / (midAt - before);
+          duty = Number.isNaN(duty) ? high : duty + (high - duty) / 8;
         }
-        this.riseMidAt = midAt;
+        riseMidAt = midAt;
       } else {
-        this.fallMidAt = midAt;
+        fallMidAt = midAt;
       }
       if (midAt > before) {
-        this.learnPeriod(before, midAt);
-        this.delayS = delayAt(this.delays, rateHz / this.periodSamples);
+        const period = midAt - before;
+        const gap = this.missing > 0 && spansGap(period / periodSamples, this.missing + 1);
+        periodSamples = gap ? period / (this.missing + 1) : period;
+        delayS = delayAt(delays, rateHz / periodSamples);
         this.delayKnown = true;
       }
 
       // Noise over the flank's slope, which is half the band over the time from mid to the switching point (a step between
       // two samples would hold more noise than slope on a gentle flank); no better than the sample grid on a steep one.
-      const spentBefore = rising ? this.riseSpent : this.fallSpent;
-      let spent = spentBefore;
-      if (at > midAt)
-        spent = Number.isNaN(spentBefore) ? at - midAt : spentBefore + (at - midAt - spentBefore) / 8;
-      if (rising) this.riseSpent = spent;
-      else this.fallSpent = spent;
-      const noise = (this.noiseV * spent) / (detector.operateV - detector.midV);
-      const steep = raw.midStepV[k]! > swingV / 2;
+      let spent = rising ? riseSpent : fallSpent;
+      if (at > midAt) spent = Number.isNaN(spent) ? at - midAt : spent + (at - midAt - spent) / 8;
+      if (rising) riseSpent = spent;
+      else fallSpent = spent;
+      const noise = (noiseV * spent) / halfBandV;
+      const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : 0;
 
-      const flags = raw.flags[k]!;
       const i = roomForEdge(edges);
-      edges.t[i] = at / rateHz - this.delayS;
-      edges.midT[i] = midAt / rateHz - this.delayS;
+      edges.t[i] = at / rateHz - delayS;
+      edges.midT[i] = midAt / rateHz - delayS;
       edges.flags[i] = flags;
       const q = roomInQueue(queue);
       queue.at[q] = at;
       queue.midS[q] = midAt / rateHz;
-      queue.delayS[q] = this.delayS;
-      queue.sigmaS[q] = Math.sqrt(noise * noise + (steep ? 1 / 12 : 0)) / rateHz;
+      queue.delayS[q] = delayS;
+      queue.sigmaS[q] = Math.sqrt(noise * noise + grid) / rateHz;
       queue.extremeV[q] = extremeV;
       queue.flags[q] = flags | (this.delayKnown ? 0 : delayGuessed);
     }
+    this.edgeCount += raw.count;
+    this.lastEdgeAt = raw.at[raw.count - 1]!;
     raw.count = 0;
+    levels.lowV = lowV;
+    levels.highV = highV;
+    this.duty = duty;
+    this.wobbleV = wobbleV;
+    this.lastExtremeV = lastExtremeV;
+    this.riseMidAt = riseMidAt;
+    this.fallMidAt = fallMidAt;
+    this.riseSpent = riseSpent;
+    this.fallSpent = fallSpent;
+    this.periodSamples = periodSamples;
+    this.delayS = delayS;
     if (this.band.mode === 'fixed') return;
-    this.refit(this.lastEdgeAt / rateHz - this.delayS);
+    this.refit(this.lastEdgeAt / rateHz - delayS);
     detector.pauseAt = this.replaying ? Infinity : Math.ceil(this.lastEdgeAt + this.quietSamples());
   }
 
@@ -348,15 +366,6 @@ export class ChannelPath implements DetectorSink {
         phase = 0;
       }
     }
-  }
-
-  /** Across the gap of the wheel the teeth's frequency is what the filter sees before and after it. */
-  private learnPeriod(before: number, midAt: number): void {
-    const period = midAt - before;
-    const whole = this.missing + 1;
-    const ratio = period / this.periodSamples;
-    const gap = this.missing > 0 && ratio > Math.sqrt(whole) && ratio < whole * Math.sqrt(whole);
-    this.periodSamples = gap ? period / whole : period;
   }
 
   /** Thresholds move once they are off by 2 % of the swing; a smaller step is neither made nor reported. */
@@ -491,4 +500,9 @@ export class ChannelPath implements DetectorSink {
     detector.extremeV = low ? Math.min(x, this.levels.lowV) : Math.max(x, this.levels.highV);
     detector.reachV = x;
   }
+}
+
+/** Across the gap of the wheel the teeth's frequency is what the filter sees before and after it. */
+function spansGap(ratio: number, whole: number): boolean {
+  return ratio > Math.sqrt(whole) && ratio < whole * Math.sqrt(whole);
 }

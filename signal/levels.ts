@@ -20,17 +20,11 @@ export function createLevels(): Levels {
   return { lowV: NaN, highV: NaN };
 }
 
-/** @param toothV the peak above the trough before it, V; NaN where that was not seen. */
-export function followPeak(levels: Levels, peakV: number, toothV: number): void {
-  levels.highV = followed(levels.highV, peakV, levels.highV - levels.lowV, toothV);
-}
-
-/** @param toothV the peak before it above the trough, V; NaN where that was not seen. */
-export function followTrough(levels: Levels, troughV: number, toothV: number): void {
-  levels.lowV = followed(levels.lowV, troughV, levels.highV - levels.lowV, toothV);
-}
-
-function followed(level: number, value: number, swingV: number, toothV: number): number {
+/**
+ * A level after one more tooth.
+ * @param value the tooth's peak or trough, V. @param toothV its peak to peak, V; NaN where that was not seen.
+ */
+export function followed(level: number, value: number, swingV: number, toothV: number): number {
   if (Number.isNaN(level)) return value;
   if (Number.isNaN(swingV)) return level + share * (value - level);
   const most = mostOfSwing * swingV;

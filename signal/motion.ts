@@ -4,7 +4,7 @@
  * Speed comes from whole cycles: mid crossings on rising edges of the first channel (A or U). Where a ring of states is
  * known, an interval counts only if exactly one cycle was passed in it, so that dither at one edge makes no speed.
  */
-import { delayGuessed, pushSpeed, roomForSpeed } from '@/signal/columns';
+import { createEdgeQueue, delayGuessed, pushSpeed, roomForSpeed } from '@/signal/columns';
 import type { EdgeQueue } from '@/signal/columns';
 import { createDirectionTracker, forgetLevels, forgetSense, stepTo } from '@/signal/direction-tracker';
 import type { DirectionTracker } from '@/signal/direction-tracker';
@@ -17,16 +17,6 @@ import { SpeedMeter } from '@/signal/speed-meter';
 import { illegalStep, stepTable } from '@/signal/step-table';
 import { mostPositions, WheelFaceMeter } from '@/signal/wheel-face-meter';
 
-type MotionEdge = {
-  /** Order of merging, samples; delay not taken off. */
-  at: number;
-  midS: number;
-  delayS: number;
-  sigmaS: number;
-  extremeV: number;
-  flags: number;
-};
-
 export class Motion {
   readonly sync: GapSync;
   readonly face: WheelFaceMeter | null;
@@ -35,7 +25,8 @@ export class Motion {
   state: 'running' | 'stopped' | 'unknown' = 'unknown';
   pulses = 0;
   extraPositions = 0;
-  countsSinceS: number;
+  // Numbers begin as numbers: a field that was ever undefined holds boxed ones for good.
+  countsSinceS = NaN;
   /** Signed; NaN where not known. */
   rpm = NaN;
   errorRpm = NaN;
@@ -47,22 +38,17 @@ export class Motion {
   private phaseSin = 0;
 
   readonly rig: RigSetup;
-  private readonly edge: MotionEdge = {
-    at: NaN,
-    midS: NaN,
-    delayS: NaN,
-    sigmaS: NaN,
-    extremeV: NaN,
-    flags: 0,
-  };
+  /** The entry that is being taken. */
+  private queue: EdgeQueue = createEdgeQueue();
+  private entry = 0;
   private readonly toothMissed: () => void;
   private readonly stoppedAfterSamples: number;
   private readonly stoppedAfterS: number;
   private readonly meter: SpeedMeter;
   private readonly speed: SpeedColumns;
   private readonly directions: DirectionChange[];
-  private stopAt: number;
-  private quietSinceS: number;
+  private stopAt = NaN;
+  private quietSinceS = NaN;
   private countsReset = false;
   private speedUnknown = false;
   private netAtRise = NaN;
@@ -160,21 +146,13 @@ export class Motion {
 
   /** Entry `i` of the queue of the channel with the place `role` in the arrangement (0 for A or U), in order of time. */
   take(queue: EdgeQueue, i: number, role: number): void {
-    const { edge } = this;
-    edge.at = queue.at[i]!;
-    edge.midS = queue.midS[i]!;
-    edge.delayS = queue.delayS[i]!;
-    edge.sigmaS = queue.sigmaS[i]!;
-    edge.extremeV = queue.extremeV[i]!;
-    edge.flags = queue.flags[i]!;
-    this.takeEdge(edge, role);
-  }
-
-  private takeEdge(edge: MotionEdge, role: number): void {
-    if (edge.at > this.stopAt) this.quietUpTo(edge.at);
-    const t = edge.midS - edge.delayS;
-    const rising = (edge.flags & edgeRising) !== 0;
-    this.stopAt = edge.at + this.stoppedAfterSamples;
+    this.queue = queue;
+    this.entry = i;
+    const at = queue.at[i]!;
+    if (at > this.stopAt) this.quietUpTo(at);
+    const t = queue.midS[i]! - queue.delayS[i]!;
+    const rising = (queue.flags[i]! & edgeRising) !== 0;
+    this.stopAt = at + this.stoppedAfterSamples;
     this.quietSinceS = t;
     this.lastEdgeS = t;
     if (this.countsReset) {
@@ -189,8 +167,8 @@ export class Motion {
     }
     if (this.tracker) this.step(this.tracker, role, rising, t);
     if (role === 0) {
-      if (rising) this.rise(edge);
-      else this.swingV = edge.extremeV - this.troughV;
+      if (rising) this.rise();
+      else this.swingV = queue.extremeV[i]! - this.troughV;
     } else if (role === 1 && rising) {
       this.learnPhase(t);
     }
@@ -262,56 +240,57 @@ export class Motion {
     this.turnTo(value, t);
   }
 
-  private rise(edge: MotionEdge): void {
-    const { meter } = this;
-    const t = edge.midS - edge.delayS;
-    const guessed = (edge.flags & delayGuessed) !== 0;
+  /** The entry at hand is a rising edge of the first channel: a tooth. */
+  private rise(): void {
+    const { meter, queue, entry } = this;
+    const t = queue.midS[entry]! - queue.delayS[entry]!;
+    const guessed = (queue.flags[entry]! & delayGuessed) !== 0;
     if (this.tracker && !this.wholeCycle(this.tracker)) {
       meter.reset();
       this.openUnknown(t);
     }
     if (meter.count === 1 && this.firstGuessed && !guessed) {
-      this.lastRiseS = this.firstMidS - edge.delayS;
+      this.lastRiseS = this.firstMidS - queue.delayS[entry]!;
       meter.retimeFirst(this.lastRiseS);
     }
     if (!this.tracker) this.pulses++;
-    if (this.held) this.showHeld(edge);
+    if (this.held) this.showHeld();
     meter.t = t;
-    meter.sigmaS = edge.sigmaS;
+    meter.sigmaS = queue.sigmaS[entry]!;
     if (meter.count === 0) {
       this.hold(1);
       this.firstGuessed = guessed;
-      this.firstMidS = edge.midS;
+      this.firstMidS = queue.midS[entry]!;
       meter.add(this.place);
     } else {
       this.sync.intervalS = t - this.lastRiseS;
-      if (!Number.isNaN(this.waitingT)) this.resumeWaiting(edge);
+      if (!Number.isNaN(this.waitingT)) this.resumeWaiting();
       const spans = judgeInterval(this.sync);
       if (spans > 0) {
         this.advance(spans);
       } else {
         this.waitingT = t;
-        this.waitingSigmaS = edge.sigmaS;
+        this.waitingSigmaS = queue.sigmaS[entry]!;
       }
     }
     if (!Number.isNaN(this.lastARise)) this.aPeriodS = t - this.lastARise;
     this.lastARise = t;
     this.lastRiseS = t;
-    this.troughV = edge.extremeV;
+    this.troughV = queue.extremeV[entry]!;
     this.swingV = NaN;
   }
 
-  /** The tooth whose interval waited is placed, now that `edge` closes the next one. */
-  private resumeWaiting(edge: MotionEdge): void {
-    const { meter } = this;
+  /** The tooth whose interval waited is placed, now that the entry at hand closes the next one. */
+  private resumeWaiting(): void {
+    const { meter, queue, entry } = this;
     const spans = judgeWaiting(this.sync);
     meter.t = this.waitingT;
     meter.sigmaS = this.waitingSigmaS;
     this.waitingT = NaN;
     this.advance(spans);
-    this.showHeld(edge);
-    meter.t = edge.midS - edge.delayS;
-    meter.sigmaS = edge.sigmaS;
+    this.showHeld();
+    meter.t = queue.midS[entry]! - queue.delayS[entry]!;
+    meter.sigmaS = queue.sigmaS[entry]!;
   }
 
   /** The tooth that the meter is set to stands `spans` positions after the one before. */
@@ -340,8 +319,8 @@ export class Motion {
   }
 
   /** Places the held tooth on the wheel face, now that the next one has come. */
-  private showHeld(next: MotionEdge): void {
-    const { face, sync } = this;
+  private showHeld(): void {
+    const { face, sync, queue, entry } = this;
     this.held = false;
     if (face) {
       face.t = this.heldT;
@@ -356,7 +335,7 @@ export class Motion {
       if (this.heldSpans > 1 && this.heldPosition > 0) this.toothMissed();
       return;
     }
-    const nextIntervalS = next.midS - next.delayS - this.heldT;
+    const nextIntervalS = queue.midS[entry]! - queue.delayS[entry]! - this.heldT;
     const long = this.heldIntervalS > 1.5 * nextIntervalS;
     const spans = long ? emptyPlaces(this.intervalBeforeS, this.heldIntervalS, nextIntervalS) + 1 : 1;
     this.intervalBeforeS = this.heldIntervalS / spans;

@@ -57,7 +57,7 @@ export function dcDelayS(sections: readonly Section[], rateHz: number): number {
 export function noiseGain(sections: readonly Section[], rateHz: number): number {
   if (sections.length === 0) return 1;
   const nyquist = rateHz / 2;
-  const steps = 4000;
+  const steps = 1500;
   const decades = 7;
   let power = 0;
   let lastHz = 0;
