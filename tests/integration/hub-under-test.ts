@@ -13,13 +13,13 @@ export type HubUnderTest = {
 };
 export type Who = 'admin' | 'engineer' | 'reviewer';
 
-const password = 'a-long-demo-password';
+export const demoPassword = 'a-long-demo-password';
 
 export async function startHub(env: Record<string, string> = {}): Promise<HubUnderTest> {
   const config = configFrom({
     PORT: '0',
     TURNMARK_DEMO_RIGS: '0',
-    TURNMARK_DEMO_PASSWORD: password,
+    TURNMARK_DEMO_PASSWORD: demoPassword,
     TURNMARK_LOG_LEVEL: 'fatal',
     ...env,
   } as never);
@@ -33,7 +33,7 @@ export async function startHub(env: Record<string, string> = {}): Promise<HubUnd
     const answer = await fetch(`${url}/api/v1/session`, {
       method: 'POST',
       headers: { 'content-type': 'application/json' },
-      body: JSON.stringify({ email: `${who}@turnmark.example`, password }),
+      body: JSON.stringify({ email: `${who}@turnmark.example`, password: demoPassword }),
     });
     const { accessToken } = (await answer.json()) as { accessToken: string };
     tokens.set(who, accessToken);

@@ -24,7 +24,7 @@ const cases: Record<string, Case> = {
   noisy: {
     name: 'ecg_noisestress_118e24',
     channels: ['ecg'],
-    settings: { filter: { kind: 'bandpass', family: 'butterworth', order: 4, lowHz: 5, highHz: 25 } },
+    settings: { filter: { kind: 'bandpass', family: 'butterworth', order: 2, lowHz: 8, highHz: 20 } },
   },
   pulse: { name: 'ppg_pulse_94rpm_small_ac', channels: ['ppg'], settings: null },
 };
@@ -103,8 +103,12 @@ describe('recordings of real voltages, through the public door', () => {
     const truth = JSON.parse(read('ecg_noisestress_118e24', 'truth.json')) as {
       annotated_beat_times_s: number[];
     };
-    const edges = risingOf(await analysed(cases.noisy as Case), 'ecg');
-    const result = matched(edges, truth.annotated_beat_times_s);
+    const analysis = await analysed(cases.noisy as Case);
+    const edges = risingOf(analysis, 'ecg');
+    // The API takes off the filter's phase delay at the tooth frequency. Here that is the beat's, far below the pass
+    // band, where a band pass leads; the spikes themselves lie inside it and do not. Put back for this comparison.
+    const asFiltered = edges.map((t) => t + analysis.delayS);
+    const result = matched(asFiltered, truth.annotated_beat_times_s);
     expect(result.missed).toBe(0);
     expect(result.extra).toBeLessThanOrEqual(2);
     expect(Math.abs(meanRpm(edges) / 83.608 - 1)).toBeLessThan(0.015);
