@@ -1,1 +1,11 @@
-export { Gallery as default } from '@/client/screens/gallery/gallery';
+import { lazy, Suspense } from 'react';
+
+const Gallery = lazy(async () => ({ default: (await import('@/client/screens/gallery/gallery')).Gallery }));
+
+export default function GalleryRoute() {
+  return (
+    <Suspense fallback={null}>
+      <Gallery />
+    </Suspense>
+  );
+}

@@ -78,6 +78,9 @@ describe('speedSaying', () => {
       loud: true,
     });
   });
+  it('does not write an error as large as the speed', () => {
+    expect(say({ speedErrorRpm: 1498.62 })).toMatchObject({ big: { text: '1498.6' }, small: '' });
+  });
   it('does not call a tooth late before anyone can read it', () => {
     expect(say({ speedRpm: 1490, speedAtMostRpm: 1490, sinceLastEdgeS: 0.002 }).big.text).toBe('1490.0');
   });

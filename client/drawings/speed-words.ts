@@ -96,10 +96,13 @@ export function speedSaying({
       loud: false,
     };
   }
+  // While an edge is overdue the hub's error grows to the speed itself: that says no more than the number does.
+  const known = live.speedErrorRpm !== null && live.speedErrorRpm < Math.abs(live.speedRpm) / 2;
+  const errorRpm = known ? live.speedErrorRpm : null;
   return {
-    big: { kind: 'number', text: rpmText(live.speedRpm, live.speedErrorRpm) },
+    big: { kind: 'number', text: rpmText(live.speedRpm, errorRpm) },
     ...directionOf(live, sensing),
-    small: live.speedErrorRpm === null ? '' : `± ${errorText(live.speedErrorRpm)}`,
+    small: errorRpm === null ? '' : `± ${errorText(errorRpm)}`,
     loud: false,
   };
 }

@@ -28,7 +28,7 @@ type SpeedPlateProps = {
 export function SpeedPlate({ now, method, points, onFar }: SpeedPlateProps) {
   const wide = useWide();
   const { saying, health } = now;
-  const words = saying.small.startsWith('±') ? `${saying.small} ${method}` : saying.small;
+  const words = wordsUnder(now, method);
   return (
     <Plate role="region" label="Speed" style={{ gap: space.xs }}>
       <View style={{ flexDirection: 'row', alignItems: 'center', gap: space.s, minHeight: 32 }}>
@@ -85,6 +85,13 @@ function SpeedTable({ points }: { points: readonly SpeedPoint[] }) {
       ]}
     />
   );
+}
+
+/** Error and method under a number; what else there is to say stands alone. */
+function wordsUnder({ saying }: WatchNow, method: string): string {
+  if (saying.big.kind === 'word') return saying.small;
+  if (saying.small === '') return method;
+  return saying.small.startsWith('±') ? `${saying.small} ${method}` : saying.small;
 }
 
 export function toneOf({ saying }: WatchNow): ColourName {
