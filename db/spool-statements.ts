@@ -30,8 +30,13 @@ const place = 'start_index, count, received_at_ms, time_s';
 export function prepareSpool(sqlite: Sqlite) {
   const one = <P extends unknown[], R>(sql: string) => sqlite.prepare<P, R>(sql);
   return {
-    insertStream: one<[string, string, number, string, number], never>(
-      'INSERT INTO stream (rig_id, name, rate_hz, channels, opened_at_ms) VALUES (?, ?, ?, ?, ?)',
+    // One of which nothing was ever committed begins anew; any other of that name is a mistake of the caller's.
+    insertStream: one<[string, string, number, string, number], { id: number }>(
+      `INSERT INTO stream (rig_id, name, rate_hz, channels, opened_at_ms) VALUES (?, ?, ?, ?, ?)
+       ON CONFLICT DO UPDATE SET rate_hz = excluded.rate_hz, channels = excluded.channels,
+                                 opened_at_ms = excluded.opened_at_ms
+       WHERE state = ''
+       RETURNING id`,
     ),
     updateStream: one<[number, number, string, number, number], never>(
       'UPDATE stream SET next_seq = ?, next_index = ?, state = ?, last_block_at_ms = ? WHERE id = ?',

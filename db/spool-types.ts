@@ -79,7 +79,7 @@ export type Stretch = { streamId: number; fromIndex: number; toIndex: number };
 
 /** Every write throws `StorageUnavailableError` where the disk is full or failing, and then has changed nothing. */
 export interface Spool {
-  /** A new stream of a rig; its id. Throws where the rig has a stream of that name. */
+  /** A new stream of a rig; its id. Throws where the rig has a stream of that name of which something was committed. */
   openStream(stream: {
     rigId: string;
     name: string;

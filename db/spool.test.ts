@@ -230,7 +230,6 @@ describe('gaps', () => {
 describe('streams', () => {
   it('are unique within a rig and remember their state', () => {
     const again = { rigId: 'rig', name: 'boot-1', rateHz: 1, channels: ['A'], nowMs: 2 };
-    expect(() => spool.openStream(again)).toThrow('UNIQUE');
     expect(spool.openStream({ ...again, rigId: 'other' })).not.toBe(streamId);
     spool.commit({
       ...nothing,
@@ -249,6 +248,13 @@ describe('streams', () => {
       lastBlockAtMs: 9,
     });
     expect(spool.findStream('rig', 'boot-2')).toBeNull();
+    expect(() => spool.openStream(again)).toThrow('already');
+  });
+
+  it('begin anew where the process ended before anything of them was committed', () => {
+    const again = { rigId: 'rig', name: 'boot-1', rateHz: 250, channels: ['A', 'B'], nowMs: 2 };
+    expect(spool.openStream(again)).toBe(streamId);
+    expect(spool.findStream('rig', 'boot-1')).toMatchObject({ rateHz: 250, channels: ['A', 'B'] });
   });
 
   it('are listed by their newest block', () => {

@@ -66,7 +66,9 @@ export function createSpool(sqlite: Sqlite): Spool {
   return {
     openStream: writing((s) => {
       const channels = JSON.stringify(s.channels);
-      return Number(q.insertStream.run(s.rigId, s.name, s.rateHz, channels, s.nowMs).lastInsertRowid);
+      const row = q.insertStream.get(s.rigId, s.name, s.rateHz, channels, s.nowMs);
+      if (row === undefined) throw new Error(`openStream: the rig has a stream "${s.name}" already`);
+      return row.id;
     }),
     findStream: (rigId, name) => streamOf(q.streamByName.get(rigId, name)),
     streamById: (streamId) => streamOf(q.streamById.get(streamId)),

@@ -146,6 +146,30 @@ describe('assembler', () => {
     expect(assembler.offer(block(8), 3)).toEqual({ result: 'duplicate' });
   });
 
+  it('lets the ack pass over however many blocks are refused, in whatever order', () => {
+    const { assembler, events } = setUp();
+    assembler.offer(block(0), 0);
+    for (const seq of [3, 2, 1]) assembler.offer(block(seq, { rateHz: 1 }), 0);
+    expect(assembler.ackSeq()).toBe(3);
+    for (let seq = 4; seq <= 500; seq++) assembler.offer(block(seq, { rateHz: 1 }), 0);
+    expect(assembler.ackSeq()).toBe(500);
+    expect(assembler.deadlineS()).toBeUndefined();
+    assembler.offer(block(501), 0);
+    expect(seqs(events)).toEqual([0, 'gap 1+500', 501]);
+  });
+
+  it('keeps every index exact, whatever a board’s clock says', () => {
+    const { assembler, events } = setUp();
+    assembler.offer(block(0, { timeS: 0 }), 0);
+    for (let i = 1; i <= 100; i++) {
+      assembler.offer(block(2 * i, { timeS: i * 2e11 }), 0);
+      assembler.advance(2);
+    }
+    const starts = events.flatMap((event) => ('startIndex' in event ? [event.startIndex] : []));
+    expect(new Set(starts).size).toBe(101);
+    expect(Math.max(...starts)).toBeLessThan(2 ** 51);
+  });
+
   it('measures a gap by the board’s clock where both neighbours carry it', () => {
     const { assembler, events } = setUp();
     assembler.offer(block(0, { timeS: 5 }), 0);

@@ -78,8 +78,11 @@ const accepted: Verdict = Object.freeze({ result: 'accepted' });
 const duplicate: Verdict = Object.freeze({ result: 'duplicate' });
 const maxLostRanges = 256;
 const maxRefused = 64;
-/** A board clock cannot move a stream further than the highest sequence number could. */
-const maxGapSamples = 2 ** 48;
+/**
+ * A board clock cannot move a stream beyond this sample. What sequence numbers alone can add (2^32 blocks of 65,536) stays
+ * far below 2^53 on top of it, so that every index is exact.
+ */
+const maxTimedIndex = 2 ** 50;
 
 export function createAssembler<B extends BlockHead>(options: {
   events: AssemblerEvents<B>;
@@ -89,7 +92,10 @@ export function createAssembler<B extends BlockHead>(options: {
   const { events, keep = (block: B) => block } = options;
   let state = options.restored && structuredClone(options.restored);
   const waiting = new Map<number, { block: B; arrivedS: number }>();
+  /** Refused ones that do not follow on `refusedTo`. */
   const refused = new Set<number>();
+  /** What is below this and not below `nextSeq` has been refused. */
+  let refusedTo = 0;
 
   function offer(block: B, nowS: number): Verdict {
     if (state === undefined) {
@@ -119,8 +125,13 @@ export function createAssembler<B extends BlockHead>(options: {
   }
 
   function refuse(seq: number): void {
-    if (state === undefined || seq < state.nextSeq || waiting.has(seq) || refused.size >= maxRefused) return;
-    refused.add(seq);
+    if (state === undefined || waiting.has(seq)) return;
+    const followsAt = Math.max(state.nextSeq, refusedTo);
+    if (seq < followsAt) return;
+    if (seq === followsAt) {
+      refusedTo = seq + 1;
+      while (refused.delete(refusedTo)) refusedTo++;
+    } else if (refused.size < maxRefused) refused.add(seq);
     settle(state);
   }
 
@@ -137,7 +148,7 @@ export function createAssembler<B extends BlockHead>(options: {
 
   function ackSeq(): number | undefined {
     if (state === undefined) return undefined;
-    let seq = state.nextSeq;
+    let seq = Math.max(state.nextSeq, refusedTo);
     while (waiting.has(seq) || refused.has(seq)) seq++;
     return seq - 1;
   }
@@ -181,7 +192,7 @@ export function createAssembler<B extends BlockHead>(options: {
         ? NaN
         : Math.round((next.timeS - now.endTimeS) * now.rateHz) + 0;
     // A clock that went backwards, or far beyond all reason, tells nothing.
-    const usable = timed >= 0 && timed <= maxGapSamples;
+    const usable = timed >= 0 && now.nextIndex + timed <= maxTimedIndex;
     const gap: Gap = {
       lostSamples: usable ? timed : missingBlocks * now.lastLength,
       estimated: !usable,
@@ -203,7 +214,7 @@ export function createAssembler<B extends BlockHead>(options: {
   }
 
   function refusedBefore(end: number): number {
-    let count = 0;
+    let count = state === undefined ? 0 : Math.max(0, Math.min(end, refusedTo) - state.nextSeq);
     for (const seq of refused) if (seq < end) count++;
     return count;
   }

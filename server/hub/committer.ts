@@ -2,6 +2,7 @@
  * Group commits: what has arrived goes to the spool a few rows at a time, so that neither an ack waits long nor the
  * event loop stands still (one transaction of every rig's rows plus a checkpoint blocks it for tens of milliseconds).
  */
+import { StorageUnavailableError } from '@/db/errors';
 import type { EarlyWrite, GapWrite, SegmentWrite, Spool, StreamState } from '@/db/spool-types';
 
 export type CommitBatch = {
@@ -17,14 +18,20 @@ export interface CommitSource {
   collect(batch: CommitBatch): void;
   /** What was collected is on disk. */
   committed(): void;
-  /** Nothing of it is; it will be collected again. */
-  failed(detail: string): void;
+  /** Nothing of it is; it will be collected again, unless the spool will never take it. */
+  failed(detail: string, never?: boolean): void;
 }
 
 /** Rows of one transaction: many more make one commit block the event loop, fewer make too many commits. */
 const rowsPerCommit = 8;
 /** Blocks of one arrival share a commit even when it need not wait, ms. */
 const soonMs = 3;
+
+const unknownFailure = 'The spool cannot store.';
+
+function emptyBatch(): CommitBatch {
+  return { segments: [], early: [], releasedEarly: [], gaps: [], streams: [] };
+}
 
 export type CommitterOptions = {
   spool: Spool;
@@ -57,6 +64,11 @@ export class Committer {
     this.#schedule(Math.max(soonMs, this.options.intervalMs - sinceLastMs));
   }
 
+  /** What waits of this source is of no use any more. */
+  forget(source: CommitSource): void {
+    this.#dirty.delete(source);
+  }
+
   #schedule(delayMs: number): void {
     this.#timer ??= setTimeout(() => {
       this.#timer = undefined;
@@ -76,15 +88,15 @@ export class Committer {
     if (this.#dirty.size > 0) this.#next = setImmediate(() => this.#round());
   }
 
-  /** Commits everything that waits, now. Throws where the spool cannot store. */
+  /** Commits everything that waits, now. Throws `StorageUnavailableError` where the spool cannot store. */
   flush(): void {
     while (this.#dirty.size > 0) {
-      if (!this.#commitSome()) throw new Error(this.#failing ?? 'the spool cannot store');
+      if (!this.#commitSome()) throw new StorageUnavailableError('io', this.#failing ?? unknownFailure);
     }
   }
 
   #commitSome(): boolean {
-    const batch: CommitBatch = { segments: [], early: [], releasedEarly: [], gaps: [], streams: [] };
+    const batch = emptyBatch();
     const taken: CommitSource[] = [];
     for (const source of this.#dirty) {
       if (batch.segments.length + batch.early.length >= rowsPerCommit) break;
@@ -96,6 +108,12 @@ export class Committer {
     try {
       this.options.spool.commit(batch);
     } catch (error) {
+      // Not the disk: something in these rows. It must not keep the other streams from being stored.
+      if (!(error instanceof StorageUnavailableError)) {
+        this.options.onFailure(error);
+        for (const source of taken) this.#commitAlone(source);
+        return true;
+      }
       this.#failing = error instanceof Error ? error.message : String(error);
       for (const source of taken) {
         this.#dirty.add(source);
@@ -108,6 +126,23 @@ export class Committer {
     this.#lastMs = performance.now();
     for (const source of taken) source.committed();
     return true;
+  }
+
+  /** A source whose rows the spool refuses is set aside: who waits is told, and its next block begins from what is stored. */
+  #commitAlone(source: CommitSource): void {
+    const batch = emptyBatch();
+    source.collect(batch);
+    try {
+      this.options.spool.commit(batch);
+    } catch (error) {
+      this.options.onFailure(error);
+      const passing = error instanceof StorageUnavailableError;
+      source.failed(unknownFailure, !passing);
+      if (passing) this.markDirty(source);
+      else this.#dirty.delete(source);
+      return;
+    }
+    source.committed();
   }
 
   close(): void {

@@ -18,6 +18,8 @@ const retryCommitMs = 1_000;
 const advanceEveryMs = 200;
 const purgeEveryMs = 1_000;
 const purgeRows = 64;
+/** Between two purges while more is due: many rigs write far more rows a second than one purge drops. */
+const purgeAgainMs = 20;
 
 export type HubOptions = {
   spool: Spool;
@@ -42,7 +44,8 @@ export function createHub(options: HubOptions): RunningHub {
   const rigs = new Map(options.rigs.map((rig) => [rig.id, rig]));
   const held = new Set<KeepPlan>();
   const keyWatchers = new Map<string, Set<() => void>>();
-  const oldest = new Map<number, { index: number | null; readMs: number }>();
+  /** For each rig: where what is held of its newest stream begins. */
+  const oldest = new Map<string, { streamId: number; index: number | null; readMs: number }>();
 
   const committer = new Committer({
     spool,
@@ -67,13 +70,14 @@ export function createHub(options: HubOptions): RunningHub {
     return made;
   }
 
-  function lookbackOf(rig: RigSession): number {
+  function lookbackOf(rigId: string, rig: RigSession): number {
     const { newest } = rig;
     if (newest === null) return 0;
-    let known = oldest.get(newest.streamId);
-    if (known === undefined || nowMs() - known.readMs > 2_000) {
-      known = { index: spool.oldestIndex(newest.streamId), readMs: nowMs() };
-      oldest.set(newest.streamId, known);
+    const { streamId } = newest;
+    let known = oldest.get(rigId);
+    if (known?.streamId !== streamId || nowMs() - known.readMs > 2_000) {
+      known = { streamId, index: spool.oldestIndex(streamId), readMs: nowMs() };
+      oldest.set(rigId, known);
     }
     if (known.index === null) return 0;
     const heldS = (newest.nextIndex - known.index) / newest.rateHz;
@@ -83,18 +87,21 @@ export function createHub(options: HubOptions): RunningHub {
   const advancing = setInterval(() => {
     for (const rig of sessions.values()) rig.advance(nowMs());
   }, advanceEveryMs);
-  const purging = setInterval(() => {
+  let purging = setTimeout(purge, purgeEveryMs);
+  function purge(): void {
+    let dropped = 0;
     try {
       const stretches = [...held].map(({ streamId, fromIndex, toIndex }) => ({
         streamId,
         fromIndex,
         toIndex,
       }));
-      spool.purge(nowMs() - options.lookbackS * 1000, purgeRows, stretches);
+      dropped = spool.purge(nowMs() - options.lookbackS * 1000, purgeRows, stretches);
     } catch (error) {
       log.warn({ err: error }, 'old blocks could not be dropped');
     }
-  }, purgeEveryMs);
+    purging = setTimeout(purge, dropped < purgeRows ? purgeEveryMs : purgeAgainMs);
+  }
 
   return {
     offer(rigId: string, block: Block, token: number, done: OutcomeCallback): void {
@@ -121,7 +128,7 @@ export function createHub(options: HubOptions): RunningHub {
       const intake = session(rigId)?.stream(stream);
       return intake === undefined ? undefined : { rateHz: intake.rateHz };
     },
-    reserveSeqs: (rigId, stream, count) => session(rigId)?.stream(stream)?.reserveSeqs(count) ?? 0,
+    reserveSeqs: (rigId, stream, count) => session(rigId)?.reserveSeqs(stream, count) ?? 0,
 
     live(rigId): Live | null {
       const rig = session(rigId);
@@ -132,7 +139,9 @@ export function createHub(options: HubOptions): RunningHub {
           stream: rig.newest?.name ?? null,
           lastBlockAtMs: rig.newest?.lastBlockAtMs ?? null,
           arrivingHz: rig.arriving.read(nowMs()),
-          lookbackS: lookbackOf(rig),
+          lookbackS: lookbackOf(rigId, rig),
+          streamS: rig.newest === null ? null : rig.newest.nextIndex / rig.newest.rateHz,
+          rateHz: rig.newest?.rateHz ?? null,
           settingsVersion: rig.settingsVersion,
         },
         nowMs(),
@@ -166,7 +175,9 @@ export function createHub(options: HubOptions): RunningHub {
     },
     rigDeleted(rigId) {
       rigs.delete(rigId);
+      for (const intake of sessions.get(rigId)?.end('This rig is gone.') ?? []) committer.forget(intake);
       sessions.delete(rigId);
+      oldest.delete(rigId);
       spool.deleteRig(rigId);
     },
     keyRevoked(keyId) {
@@ -183,7 +194,7 @@ export function createHub(options: HubOptions): RunningHub {
     },
     close() {
       clearInterval(advancing);
-      clearInterval(purging);
+      clearTimeout(purging);
       try {
         committer.flush();
       } finally {

@@ -26,7 +26,7 @@ export class LiveSignal {
   setupProblem: string | null = null;
   settingsVersion = 0;
   /** Lane whose edges the picture stands still on. */
-  readonly primary: number;
+  primary = 0;
   readonly signals: RecentSignal[];
   readonly edges: RecentMarks[];
   readonly rejected: RecentMarks[];
@@ -44,18 +44,7 @@ export class LiveSignal {
   ) {
     this.nextIndex = startIndex;
     const capacity = Math.min(ringMaxSamples, Math.max(4096, Math.ceil(rateHz * ringSeconds)));
-    const roleOf = (name: string) => rig.setup.channels.find((c) => c.name === name)?.role;
-    this.primary = Math.max(
-      0,
-      channels.findIndex((name) => roleOf(name) === 'A' || roleOf(name) === 'U'),
-    );
-    this.signals = channels.map((name) => {
-      const setup = rig.setup.channels.find((c) => c.name === name);
-      return new RecentSignal(capacity, {
-        voltsPerCode: setup?.voltsPerCode ?? 1,
-        codeOffset: setup?.codeOffset ?? 0,
-      });
-    });
+    this.signals = channels.map(() => new RecentSignal(capacity, { voltsPerCode: 1, codeOffset: 0 }));
     this.edges = channels.map(() => new RecentMarks(marksHeld));
     this.rejected = channels.map(() => new RecentMarks(marksHeld));
     this.configure(rig);
@@ -69,6 +58,14 @@ export class LiveSignal {
       rateHz: this.rateHz,
       channels: this.channels,
       startIndex: this.nextIndex,
+    });
+    const setups = this.channels.map((name) => rig.setup.channels.find((c) => c.name === name));
+    this.primary = Math.max(
+      0,
+      setups.findIndex((setup) => setup?.role === 'A' || setup?.role === 'U'),
+    );
+    setups.forEach((setup, i) => {
+      if (setup !== undefined) this.signals[i]?.rescale(setup);
     });
     this.settingsVersion = rig.settingsVersion;
     this.pipeline = made.ok ? made.value : null;

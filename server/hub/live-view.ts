@@ -11,6 +11,9 @@ export const silentAfterMs = 2000;
 export type RigNow = {
   signal: LiveSignal | null;
   stream: string | null;
+  /** Where the stream stands, s, and its rate: known before the signal path has seen a block of it. */
+  streamS: number | null;
+  rateHz: number | null;
   /** Wall clock of the newest block, ms; null before any. */
   lastBlockAtMs: number | null;
   arrivingHz: number | null;
@@ -26,7 +29,7 @@ export function liveOf(now: RigNow, nowMs: number): Live {
   const silent = lastBlockAtMs !== null && nowMs - lastBlockAtMs >= silentAfterMs;
   const state = lastBlockAtMs === null ? 'waiting' : silent ? 'silent' : (status?.state ?? 'unknown');
   const speaks = !silent && status !== null;
-  const streamS = signal === null ? null : signal.nextIndex / signal.rateHz;
+  const streamS = signal === null ? now.streamS : signal.nextIndex / signal.rateHz;
   return {
     state,
     stream: now.stream,
@@ -41,7 +44,7 @@ export function liveOf(now: RigNow, nowMs: number): Live {
         ? iso(lastBlockAtMs - (streamS - status.countsSinceS) * 1000)
         : null,
     rates: {
-      declaredHz: signal?.rateHz ?? null,
+      declaredHz: signal?.rateHz ?? now.rateHz,
       arrivingHz: silent ? 0 : now.arrivingHz,
       toothHz: speaks ? status.toothHz : null,
     },
@@ -78,7 +81,7 @@ function windowOf(
   const steady = status?.state === 'running' && toothHz !== null && toothHz > 0;
   const spanS = wish.spanS ?? (steady ? (wish.teeth ?? defaultTeeth) / toothHz : freeRunningS);
   if (wish.anchor === 'now' || !steady) return { toS: nowS, spanS, anchor: 'now' };
-  const lastRising = signal.edges[0]
+  const lastRising = signal.edges[signal.primary]
     ?.between(nowS - 4 / toothHz, nowS)
     .filter((e) => (e.flags & markRising) !== 0);
   const last = lastRising?.[lastRising.length - 1];

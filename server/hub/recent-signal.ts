@@ -6,6 +6,8 @@ import type { SampleArray } from '@/signal/model';
 
 export type Scaling = { voltsPerCode: number; codeOffset: number };
 
+const firstRing = 4096;
+
 type Stretch = { fromIndex: number; toIndex: number; ringAt: number };
 
 function like(samples: SampleArray, length: number): SampleArray {
@@ -21,16 +23,16 @@ export class RecentSignal {
 
   constructor(
     private readonly capacity: number,
-    private readonly scaling: Scaling,
+    private scaling: Scaling,
   ) {}
 
+  /** The channel's setup has changed: it holds for what is drawn from now on, older samples included. */
+  rescale({ voltsPerCode, codeOffset }: Scaling): void {
+    this.scaling = { voltsPerCode, codeOffset };
+  }
+
   append(startIndex: number, samples: SampleArray): void {
-    if (this.#ring === undefined || this.#ring.constructor !== samples.constructor) {
-      this.#ring = like(samples, this.capacity);
-      this.#stretches = [];
-      this.#written = 0;
-    }
-    const ring = this.#ring;
+    const ring = this.#roomFor(samples);
     const last = this.#stretches[this.#stretches.length - 1];
     if (last !== undefined && last.toIndex === startIndex) last.toIndex += samples.length;
     else {
@@ -50,6 +52,21 @@ export class RecentSignal {
       this.#written += count;
     }
     this.#forget();
+  }
+
+  /** The ring grows until it has its size: streams that come and go quickly must not cost a whole one each. */
+  #roomFor(samples: SampleArray): SampleArray {
+    const ring = this.#ring;
+    if (ring === undefined || ring.constructor !== samples.constructor) {
+      this.#stretches = [];
+      this.#written = 0;
+      return (this.#ring = like(samples, Math.min(this.capacity, Math.max(firstRing, 2 * samples.length))));
+    }
+    const wanted = this.#written + samples.length;
+    if (ring.length === this.capacity || wanted <= ring.length) return ring;
+    const grown = like(samples, Math.min(this.capacity, Math.max(wanted, 2 * ring.length)));
+    grown.set(ring.subarray(0, this.#written) as never);
+    return (this.#ring = grown);
   }
 
   #forget(): void {

@@ -11,6 +11,12 @@ import { StreamIntake } from '@/server/hub/stream-intake';
 
 /** A stream that had no block for so long is let go of; the spool remembers where it stood. */
 const forgetStreamAfterMs = 60_000;
+/** Streams that are held at once; a board has one, a few after reboots. */
+const maxStreams = 32;
+/** Of blocks that wait for their turn, all streams of the rig together. */
+const maxEarlyBytes = 64 * 1024 * 1024;
+/** Names for which sequence numbers were set aside before a block came. */
+const maxReserved = 256;
 
 export type SessionDeps = {
   spool: Spool;
@@ -24,6 +30,8 @@ export class RigSession implements StreamEvents {
   readonly #ackWatchers = new Set<(stream: string) => void>();
   readonly #newsWatchers = new Set<() => void>();
   readonly arriving = new RateMeter();
+  readonly #reserved = new Map<string, number>();
+  #channelNames: ReadonlySet<string>;
   #newest: StreamIntake | null = null;
   #signal: { intake: StreamIntake; live: LiveSignal } | null = null;
   #newsDue = false;
@@ -32,8 +40,9 @@ export class RigSession implements StreamEvents {
     private rig: HubRig,
     private readonly deps: SessionDeps,
   ) {
+    this.#channelNames = new Set(rig.setup.channels.map((channel) => channel.name));
     const stored = deps.spool.newestStream(rig.id);
-    if (stored !== null && stored.state !== '') this.#newest = this.#restore(stored.name);
+    if (stored !== null) this.#newest = this.#restore(stored.name);
   }
 
   get setup(): HubRig['setup'] {
@@ -55,18 +64,46 @@ export class RigSession implements StreamEvents {
   /** New settings or a changed rig: in force from the next block on. */
   configure(rig: HubRig): void {
     this.rig = rig;
+    this.#channelNames = new Set(rig.setup.channels.map((channel) => channel.name));
     this.#signal?.live.configure(rig);
     this.#news();
   }
 
   offer(block: Block, token: number, done: OutcomeCallback): void {
     const nowMs = this.deps.nowMs();
-    const intake = this.#streams.get(block.stream) ?? this.#open(block, nowMs);
-    if (intake instanceof StreamIntake) {
-      intake.offer(block, token, done, nowMs);
-      return;
+    const known = this.stream(block.stream);
+    const stranger = this.#strangerIn(block);
+    // What is held already is answered as such, whatever has become of the rig.
+    if (stranger !== undefined && !(block.seq <= (known?.ackedSeq ?? -1))) {
+      known?.refuse(block.seq);
+      return done({ result: 'refused', issue: stranger }, block.stream, block.seq, token);
     }
-    done({ result: 'refused', issue: intake }, block.stream, block.seq, token);
+    if (known === undefined && block.rateHz === undefined)
+      return done({ result: 'refused', issue: rateMissing }, block.stream, block.seq, token);
+    if (this.#earlyBytes() > maxEarlyBytes && known?.awaits(block.seq) !== true) {
+      const detail = 'Too many blocks of this rig wait for ones before them.';
+      return done({ result: 'unavailable', detail }, block.stream, block.seq, token);
+    }
+    const intake = known ?? this.#open(block, block.rateHz ?? 0, nowMs);
+    intake.offer(block, token, done, nowMs);
+  }
+
+  /** Sets aside sequence numbers, also of a stream that has no block yet; the first of them. */
+  reserveSeqs(name: string, count: number): number {
+    const known = this.stream(name);
+    if (known !== undefined) return known.reserveSeqs(count);
+    const first = this.#reserved.get(name) ?? 0;
+    if (this.#reserved.size >= maxReserved) this.#reserved.delete(this.#reserved.keys().next().value ?? '');
+    this.#reserved.set(name, first + count);
+    return first;
+  }
+
+  /** The rig is deleted: who waits is told, and nothing more of it is committed. */
+  end(detail: string): StreamIntake[] {
+    const ended = [...this.#streams.values()];
+    for (const intake of ended) intake.failed(detail);
+    this.#streams.clear();
+    return ended;
   }
 
   /** The intake of a stream that is known, else undefined. */
@@ -84,6 +121,37 @@ export class RigSession implements StreamEvents {
     }
   }
 
+  #earlyBytes(): number {
+    let bytes = 0;
+    for (const intake of this.#streams.values()) bytes += intake.earlyBytes;
+    return bytes;
+  }
+
+  /** Puts a stream among those held, and lets go of the one that was quiet longest where they are too many. */
+  #hold(name: string, intake: StreamIntake): void {
+    this.#streams.set(name, intake);
+    if (this.#streams.size <= maxStreams) return;
+    let quietest: StreamIntake | undefined;
+    for (const other of this.#streams.values()) {
+      if (other === intake || other === this.#newest || other.hasPending) continue;
+      if (quietest === undefined || other.lastBlockAtMs < quietest.lastBlockAtMs) quietest = other;
+    }
+    if (quietest !== undefined) this.#streams.delete(quietest.name);
+  }
+
+  #strangerIn(block: Block): IngestIssue | undefined {
+    const unknown = block.channels.find((c) => !this.#channelNames.has(c.name));
+    if (unknown === undefined) return undefined;
+    const names = [...this.#channelNames].join(', ');
+    return {
+      slug: 'invalid',
+      status: 422,
+      detail: `This rig has no channel "${unknown.name}"; its channels are ${names}.`,
+      pointer: `/samples/${unknown.name.replaceAll('~', '~0').replaceAll('/', '~1')}`,
+      at: undefined,
+    };
+  }
+
   watchAcks(moved: (stream: string) => void): () => void {
     this.#ackWatchers.add(moved);
     return () => this.#ackWatchers.delete(moved);
@@ -94,32 +162,10 @@ export class RigSession implements StreamEvents {
     return () => this.#newsWatchers.delete(news);
   }
 
-  #open(block: Block, nowMs: number): StreamIntake | IngestIssue {
-    const restored = this.#restore(block.stream);
-    if (restored !== null) return restored;
-    const names = this.rig.setup.channels.map((c) => c.name);
-    const unknown = block.channels.find((c) => !names.includes(c.name));
-    if (unknown !== undefined) {
-      return {
-        slug: 'invalid',
-        status: 422,
-        detail: `This rig has no channel "${unknown.name}"; its channels are ${names.join(', ')}.`,
-        pointer: `/samples/${unknown.name.replaceAll('~', '~0').replaceAll('/', '~1')}`,
-        at: undefined,
-      };
-    }
-    if (block.rateHz === undefined) {
-      return {
-        slug: 'invalid',
-        status: 422,
-        detail: 'The first block of a stream must carry its `rate`.',
-        pointer: '/rate',
-        at: undefined,
-      };
-    }
+  #open(block: Block, rateHz: number, nowMs: number): StreamIntake {
+    const names = [...this.#channelNames];
     block.channels.sort((a, b) => names.indexOf(a.name) - names.indexOf(b.name));
     const channels = block.channels.map((c) => c.name);
-    const { rateHz } = block;
     const streamId = this.deps.spool.openStream({
       rigId: this.rig.id,
       name: block.stream,
@@ -134,15 +180,19 @@ export class RigSession implements StreamEvents {
       { rateHz, channels, lastBlockAtMs: nowMs },
       this,
     );
-    this.#streams.set(block.stream, intake);
+    const reserved = this.#reserved.get(block.stream);
+    if (reserved !== undefined) intake.reserveSeqs(reserved);
+    this.#reserved.delete(block.stream);
+    this.#hold(block.stream, intake);
     return intake;
   }
 
   #restore(name: string): StreamIntake | null {
     const stored = this.deps.spool.findStream(this.rig.id, name);
-    if (stored === null) return null;
+    // One that was opened and then lost all it had with the process begins anew with its next block.
+    if (stored === null || stored.state === '') return null;
     const intake = StreamIntake.restore(stored, this.deps.spool, this, this.deps.nowMs());
-    this.#streams.set(name, intake);
+    this.#hold(name, intake);
     if (intake.hasPending) this.deps.dirty(intake);
     return intake;
   }
@@ -151,23 +201,32 @@ export class RigSession implements StreamEvents {
     const nowMs = this.deps.nowMs();
     this.arriving.add(nowMs, count);
     this.#newest = intake;
-    const live = this.#liveOf(intake, startIndex);
     try {
-      live.append(startIndex, arrays, count);
+      this.#liveOf(intake, startIndex).append(startIndex, arrays, count);
     } catch (error) {
       // A fault in the signal path must cost neither the samples nor the other rigs.
-      live.fail();
+      this.live?.fail();
       this.deps.onSignalFailure(this.rig.id, error);
     }
     this.#news();
   }
 
   gap(intake: StreamIntake, lostSamples: number, estimated: boolean): void {
-    if (this.#signal?.intake === intake) this.#signal.live.skip(lostSamples, estimated);
+    if (this.#signal?.intake !== intake) return;
+    try {
+      this.#signal.live.skip(lostSamples, estimated);
+    } catch (error) {
+      this.#signal.live.fail();
+      this.deps.onSignalFailure(this.rig.id, error);
+    }
   }
 
   dirty(intake: StreamIntake): void {
     this.deps.dirty(intake);
+  }
+
+  spoiled(intake: StreamIntake): void {
+    this.#streams.delete(intake.name);
   }
 
   acked(intake: StreamIntake): void {
@@ -191,3 +250,11 @@ export class RigSession implements StreamEvents {
     });
   }
 }
+
+const rateMissing: IngestIssue = {
+  slug: 'invalid',
+  status: 422,
+  detail: 'The first block of a stream must carry its `rate`.',
+  pointer: '/rate',
+  at: undefined,
+};

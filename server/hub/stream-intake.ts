@@ -15,12 +15,18 @@ export type StreamEvents = {
   gap(intake: StreamIntake, lostSamples: number, estimated: boolean): void;
   dirty(intake: StreamIntake): void;
   acked(intake: StreamIntake): void;
+  /** What it holds can never be stored: it must be let go of, and taken up again from the spool. */
+  spoiled?(intake: StreamIntake): void;
 };
 
 type Waiting = { done: OutcomeCallback; outcome: BlockOutcome; seq: number; token: number };
 
 function copied(block: Block): Block {
   return { ...block, channels: block.channels.map((c) => ({ name: c.name, samples: c.samples.slice() })) };
+}
+
+function bytesOf(block: Block): number {
+  return block.channels.reduce((sum, { samples }) => sum + samples.byteLength, 0);
 }
 
 export class StreamIntake implements CommitSource {
@@ -38,6 +44,8 @@ export class StreamIntake implements CommitSource {
   readonly #earlyPending = new Map<number, Block>();
   readonly #earlyStored = new Set<number>();
   #released: number[] = [];
+  /** Held by the assembler until their turn. */
+  #earlyBytes = 0;
   #waiting: Waiting[] = [];
   #collected = {
     waiting: 0,
@@ -99,7 +107,7 @@ export class StreamIntake implements CommitSource {
   offer(block: Block, token: number, done: OutcomeCallback, nowMs: number): void {
     const verdict = this.#assembler.offer(block, nowMs / 1000);
     if (verdict.result === 'refused') {
-      this.#assembler.refuse(block.seq);
+      this.refuse(block.seq);
       return done(
         { result: 'refused', issue: verdict.issue satisfies IngestIssue },
         this.name,
@@ -116,8 +124,10 @@ export class StreamIntake implements CommitSource {
     this.events.dirty(this);
   }
 
+  /** This block will not come. The ack position may move with it, which the next commit makes known. */
   refuse(seq: number): void {
     this.#assembler.refuse(seq);
+    if (this.#assembler.ackSeq() === this.ackedSeq) return;
     this.#changed = true;
     this.events.dirty(this);
   }
@@ -137,12 +147,23 @@ export class StreamIntake implements CommitSource {
     return first;
   }
 
+  /** Whether this block would let blocks that wait go on: it must be let in however many wait. */
+  awaits(seq: number): boolean {
+    return this.#earlyBytes > 0 && seq === (this.#assembler.snapshot()?.nextSeq ?? -1);
+  }
+
+  /** Of blocks that wait for ones before them. */
+  get earlyBytes(): number {
+    return this.#earlyBytes;
+  }
+
   get hasPending(): boolean {
     return this.#changed || this.#waiting.length > 0 || this.#assembler.deadlineS() !== undefined;
   }
 
   #keepEarly(block: Block): Block {
     const held = this.#earlyStored.has(block.seq) ? block : copied(block);
+    this.#earlyBytes += bytesOf(held);
     if (!this.#earlyStored.has(block.seq)) this.#earlyPending.set(block.seq, held);
     return held;
   }
@@ -153,7 +174,10 @@ export class StreamIntake implements CommitSource {
   }
 
   #pass(block: Block, startIndex: number): void {
-    if (this.#earlyStored.size > 0 || this.#earlyPending.size > 0) this.#release(block.seq);
+    if (this.#earlyStored.has(block.seq) || this.#earlyPending.has(block.seq)) {
+      this.#earlyBytes -= bytesOf(block);
+      this.#release(block.seq);
+    }
     if (this.#buffer !== undefined && !this.#buffer.takes(block, startIndex)) this.#seal();
     this.#buffer ??= this.#freshBuffer(block);
     const arrays = this.#buffer.append(block, startIndex, this.lastBlockAtMs);
@@ -236,8 +260,9 @@ export class StreamIntake implements CommitSource {
   }
 
   /** What was collected stays and is collected again; those who wait are told to try again. */
-  failed(detail: string): void {
+  failed(detail: string, never = false): void {
     this.#changed = true;
+    if (never) this.events.spoiled?.(this);
     const told = this.#waiting.splice(0);
     for (const w of told) w.done({ result: 'unavailable', detail }, this.name, w.seq, w.token);
   }
