@@ -128,7 +128,8 @@ function settled(hunter: Hunter): boolean {
   const third = Math.abs(c - d);
   if (Math.min(first, second, third) < alike * Math.max(first, second, third)) return false;
   hunter.found = true;
-  hunter.foundLowV = Math.min((a + c) / 2, (b + d) / 2);
-  hunter.foundHighV = Math.max((a + c) / 2, (b + d) / 2);
+  // The outermost of each kind: the first turning point may be no more than where the hunt began.
+  hunter.foundLowV = Math.min(a, b, c, d);
+  hunter.foundHighV = Math.max(a, b, c, d);
   return true;
 }

@@ -1,5 +1,5 @@
 /** Splitting a stream into blocks anywhere changes no output, bit for bit. */
-import fc from 'fast-check';
+import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Filter, RigSetup, SampleArray, Settings } from '@/signal/model';
 import { testChannel, testPipeline, testRig, normal, seeded } from '@/signal/test-signals';

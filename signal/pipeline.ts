@@ -171,11 +171,13 @@ class SignalPipeline implements Pipeline {
   }
 
   private collectClosed(): void {
-    for (const rule of this.rules) {
-      for (const latch of rule.latches) {
-        if (latch.closed.length === 0) continue;
-        this.output.closedFindings.push(...latch.closed);
-        latch.closed.length = 0;
+    for (let r = 0; r < this.rules.length; r++) {
+      const { latches } = this.rules[r]!;
+      for (let k = 0; k < latches.length; k++) {
+        const { closed } = latches[k]!;
+        if (closed.length === 0) continue;
+        this.output.closedFindings.push(...closed);
+        closed.length = 0;
       }
     }
   }
