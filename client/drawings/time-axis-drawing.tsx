@@ -58,7 +58,15 @@ export function TimeAxis({ time, y, anchorS, rightWord, centreWord, centreTone =
           </G>
         );
       })}
-      {narrow ? <EdgeLabels time={time} y={y} anchorS={anchorS} bothEnds={!rightWord} /> : null}
+      {narrow ? (
+        <EdgeLabels
+          time={time}
+          y={y}
+          anchorS={anchorS}
+          bothEnds={!rightWord}
+          centrePx={centreWord.length * charPx}
+        />
+      ) : null}
       {centreWord ? (
         <SvgText x={middle} y={y} anchor="middle" tone={centreTone}>
           {centreWord}
@@ -73,15 +81,23 @@ export function TimeAxis({ time, y, anchorS, rightWord, centreWord, centreTone =
   );
 }
 
-type EdgeLabelsProps = { time: TimeScale; y: number; anchorS: number | undefined; bothEnds: boolean };
+type EdgeLabelsProps = {
+  time: TimeScale;
+  y: number;
+  anchorS: number | undefined;
+  bothEnds: boolean;
+  centrePx: number;
+};
 
-function EdgeLabels({ time, y, anchorS, bothEnds }: EdgeLabelsProps) {
+function EdgeLabels({ time, y, anchorS, bothEnds, centrePx }: EdgeLabelsProps) {
   const { fromS, toS } = time;
   const span = toS - fromS;
   const text = (s: number) =>
     anchorS === undefined
       ? secondsText(s, span / 40, Math.max(1, toS))
       : secondsText(s - anchorS, span / 100, span);
+  const room = (time.x(toS) - time.x(fromS) - centrePx) / 2;
+  if (text(fromS).length * charPx > room) return null;
   return (
     <G>
       <SvgText x={time.x(fromS) - 6} y={y}>

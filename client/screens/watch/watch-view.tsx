@@ -1,4 +1,4 @@
-import { ScrollView, View } from 'react-native';
+import { ScrollView, View, useWindowDimensions } from 'react-native';
 import { KeepBar } from '@/client/components/keep-bar';
 import { Screen, ScreenHeader, useDocumentTitle } from '@/client/components/screen';
 import { SchemeSwitch } from '@/client/components/scheme-switch';
@@ -48,10 +48,14 @@ function PhoneWatch(props: WatchViewProps) {
   );
 }
 
+/** Below this the findings stand in the left column, so that the signal keeps its room. */
+const threeColumnsFrom = 1240;
+
 function WideWatch(props: WatchViewProps) {
   const parts = useWatchParts(props);
   const { rig, banner, tabs } = props;
   useDocumentTitle(rig.name);
+  const roomy = useWindowDimensions().width >= threeColumnsFrom;
   const column = { gap: space.l, padding: space.l } as const;
   return (
     <View role="main" style={{ flex: 1, minWidth: 0 }}>
@@ -63,14 +67,18 @@ function WideWatch(props: WatchViewProps) {
         >
           <ScreenHeader title={rig.name} subtitle={parts.subtitle} />
           <SpeedPlate {...parts.speed} />
+          {roomy ? null : <FindingsList {...parts.findings} />}
           {parts.wheel ? <WheelPlate {...parts.wheel} size={236} /> : null}
           {parts.live ? <NumbersPlate live={parts.live} /> : null}
+          {roomy ? null : <CautionLine />}
         </ScrollView>
         <ScrollView
           style={{ flex: 1, minWidth: 0 }}
           contentContainerStyle={[column, { flexGrow: 1, minHeight: '100%' }]}
         >
-          <View style={{ flexDirection: 'row', justifyContent: 'space-between' }}>
+          <View
+            style={{ flexDirection: 'row', flexWrap: 'wrap', justifyContent: 'space-between', gap: space.s }}
+          >
             {tabs ?? <View />}
             <View style={{ flexDirection: 'row', gap: space.s, alignItems: 'center' }}>
               <RibbonChoices {...parts.controls} />
@@ -104,13 +112,15 @@ function WideWatch(props: WatchViewProps) {
             ) : null}
           </View>
         </ScrollView>
-        <ScrollView
-          style={{ width: 300, flexGrow: 0, flexShrink: 0 }}
-          contentContainerStyle={[column, { paddingLeft: 0, flexGrow: 1, justifyContent: 'space-between' }]}
-        >
-          <FindingsList {...parts.findings} />
-          <CautionLine />
-        </ScrollView>
+        {roomy ? (
+          <ScrollView
+            style={{ width: 300, flexGrow: 0, flexShrink: 0 }}
+            contentContainerStyle={[column, { paddingLeft: 0, flexGrow: 1, justifyContent: 'space-between' }]}
+          >
+            <FindingsList {...parts.findings} />
+            <CautionLine />
+          </ScrollView>
+        ) : null}
       </View>
     </View>
   );
