@@ -50,11 +50,11 @@ describe('contrast', () => {
 });
 
 describe('page shell', () => {
-  const page = readFileSync(new URL('../../public/index.html', import.meta.url), 'utf8');
+  const page = readFileSync(new URL('../../public/index.html', import.meta.url), 'utf8').toLowerCase();
 
   it.each(both)('paints the ground of %s before the app starts', (scheme) => {
     for (const name of ['ground', 'scribe', 'dye'] as const) {
-      expect(page).toContain(`--${name}: ${schemes[scheme][name]}`);
+      expect(page).toContain(`--${name}: ${schemes[scheme][name].toLowerCase()}`);
     }
   });
 
