@@ -12,10 +12,13 @@ import { useColours } from '@/client/theme/use-theme';
 export function EmptyState({
   title,
   message,
+  level = 2,
   children,
 }: {
   title: string;
   message: string;
+  /** 1 where it is the whole page, without a header of its own. */
+  level?: 1 | 2;
   children?: ReactNode;
 }) {
   return (
@@ -23,7 +26,7 @@ export function EmptyState({
       style={{ alignItems: 'center', gap: space.m, padding: space.xxl, maxWidth: 480, alignSelf: 'center' }}
     >
       <Mark size={56} tone="scribeSoft" />
-      <Text heading={2} size="lead" weight="medium" style={{ textAlign: 'center' }}>
+      <Text heading={level} size="lead" weight="medium" style={{ textAlign: 'center' }}>
         {title}
       </Text>
       <Text tone="scribeSoft" style={{ textAlign: 'center' }}>

@@ -26,7 +26,8 @@ export default defineConfig({
   use: {
     browserName: 'chromium',
     launchOptions: chromium,
-    trace: 'retain-on-failure',
+    actionTimeout: 20_000,
+    trace: { mode: 'retain-on-failure', screenshots: false },
     permissions: ['clipboard-read', 'clipboard-write'],
   },
   projects: [

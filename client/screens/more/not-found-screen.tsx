@@ -13,6 +13,7 @@ export function NotFoundScreen() {
   return (
     <View role="main" style={{ flex: 1, justifyContent: 'center', backgroundColor: colours.ground }}>
       <EmptyState
+        level={1}
         title="There is no such page"
         message="The address may be mistyped, or from another version of the hub."
       >
