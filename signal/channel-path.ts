@@ -149,6 +149,12 @@ export class ChannelPath implements DetectorSink {
     return this.detector.releaseV;
   }
 
+  /** How long after its mid crossing an edge is known: the filter's delay and the way to the switching point, s. */
+  get latencyS(): number {
+    const spent = Math.max(this.riseSpent || 0, this.fallSpent || 0);
+    return Math.max(0, this.delayS || 0) + (spent + 1) / this.rateHz;
+  }
+
   /** Every edge up to this sample has been found, s. */
   get decidedUpTo(): number {
     return this.remembered ? this.rememberedBase : this.nextAt - 1;

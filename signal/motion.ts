@@ -74,6 +74,8 @@ export class Motion {
   private lastStepS = NaN;
   /** Largest share of a cycle that one state of the ring took lately. */
   private widestState = NaN;
+  private widestPitch = 1;
+  private placedT = NaN;
 
   constructor(
     rig: RigSetup,
@@ -180,17 +182,29 @@ export class Motion {
       const even = 1 / this.tracker.table.stepsPerCycle;
       return Number.isNaN(this.widestState) ? 2 * even : Math.min(1, Math.max(even, 1.1 * this.widestState));
     }
-    return noGapAhead(this.sync) ? 1 : this.sync.missing + 1;
+    const places = noGapAhead(this.sync) ? 1 : this.sync.missing + 1;
+    return (places + (this.nextIsOftenMissed() ? 1 : 0)) * Math.max(1, this.widestPitch);
   }
 
-  /** Falling bound, rpm, at `nowS`; NaN before any edge. */
-  speedAtMostRpm(nowS: number): number {
+  /** The place that comes next stayed empty in the turn before: a weak tooth proves nothing by its silence. */
+  private nextIsOftenMissed(): boolean {
+    const { face, sync } = this;
+    if (!face || !this.synced) return false;
+    const here = sync.missing > 0 ? sync.position : this.relative + 1;
+    return face.missedInRow[(here + 1) % sync.positions]! > 0;
+  }
+
+  /**
+   * Falling bound, rpm, at `nowS`; NaN before any edge.
+   * @param latencyS how long after its instant an edge is known: silence is proven only up to `nowS` less that.
+   */
+  speedAtMostRpm(nowS: number, latencyS: number): number {
     const since = this.tracker ? this.lastEdgeS : this.lastRiseS;
     if (Number.isNaN(this.lastEdgeS)) return NaN;
     const elapsed =
       this.state === 'stopped'
         ? this.stoppedAfterS
-        : nowS - (Number.isNaN(since) ? this.quietSinceS : Math.max(since, 0));
+        : nowS - latencyS - (Number.isNaN(since) ? this.quietSinceS : Math.max(since, 0));
     return (
       (60 * this.silentPositions()) /
       (this.rig.wheel.pulsesPerTurn * this.rig.wheel.gearRatio * Math.max(elapsed, 0))
@@ -299,6 +313,8 @@ export class Motion {
     this.place += spans;
     if (this.sync.missing > 0) this.extraPositions += moveOn(this.sync, spans);
     this.hold(spans);
+    if (this.state === 'running') this.learnPitch(meter.t, spans);
+    this.placedT = meter.t;
     if (!meter.add(this.place)) return;
     const rpm = this.direction === 'reverse' ? -meter.latest.rpm : meter.latest.rpm;
     this.rpm = rpm;
@@ -309,6 +325,14 @@ export class Motion {
     speed.t[i] = meter.t;
     speed.rpm[i] = rpm;
     speed.errorRpm[i] = meter.latest.errorRpm;
+  }
+
+  /** How much longer than the mean the longest pitch of the last turns took: uneven teeth and a swaying shaft. */
+  private learnPitch(t: number, spans: number): void {
+    const { pulsesPerTurn, gearRatio } = this.rig.wheel;
+    const ratio = ((t - this.placedT) * Math.abs(this.rpm) * pulsesPerTurn * gearRatio) / (60 * spans);
+    const fading = 1 + (this.widestPitch - 1) * (1 - 1 / (2 * pulsesPerTurn));
+    if (ratio < 1.5) this.widestPitch = Math.max(ratio, fading);
   }
 
   private hold(spans: number): void {
@@ -370,6 +394,8 @@ export class Motion {
     this.intervalBeforeS = NaN;
     this.relative = -1;
     this.lastStepS = NaN;
+    this.widestPitch = 1;
+    this.placedT = NaN;
     this.lastARise = NaN;
     this.aPeriodS = NaN;
     this.phaseCos = this.phaseSin = 0;

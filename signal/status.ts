@@ -12,7 +12,7 @@ export function statusOf(
   nowS: number,
   findings: Finding[],
 ): PipelineStatus {
-  const atMost = motion.speedAtMostRpm(nowS);
+  const atMost = motion.speedAtMostRpm(nowS, latencyOf(paths));
   const { pulsesPerTurn, gearRatio } = motion.rig.wheel;
   const running = motion.state === 'running';
   const bounded = Math.abs(motion.rpm) > atMost;
@@ -44,6 +44,13 @@ export function statusOf(
       : null,
     findings,
   };
+}
+
+/** The longest time from an edge's instant to the sample that proves it. */
+function latencyOf(paths: readonly ChannelPath[]): number {
+  let latencyS = 0;
+  for (const path of paths) if (path.channel.role !== 'aux') latencyS = Math.max(latencyS, path.latencyS);
+  return latencyS;
 }
 
 function channelStatus(path: ChannelPath): ChannelStatus {
