@@ -1,7 +1,6 @@
 /** The idempotency keys of SenML packs, kept in the database so that they outlive a restart. */
-import { recallResponse } from '@/db';
+import { forgetResponse, recallResponse, replaceResponse } from '@/db';
 import type { TurnmarkDb } from '@/db';
-import { forgetResponse, replaceResponse } from '@/db/queries/idempotency-records';
 import { idempotencyMs } from '@/ingest/transports/idempotency';
 import type { IdempotencyRecord, IdempotencyStore } from '@/ingest/transports/idempotency';
 import type { Clock } from './clock';

@@ -1,7 +1,7 @@
 /** A rig with its settings, as the hub runs it. */
-import { allRigs, newestSettings } from '@/db';
+import { allRigs, getRig, newestSettings } from '@/db';
 import type { RigRecord, SettingsRecord, TurnmarkDb } from '@/db';
-import type { HubRig } from '@/server/hub/hub-types';
+import type { Hub, HubRig } from '@/server/hub/hub-types';
 import type { RigSetup, Settings } from '@/signal/model';
 import { defaultSettings } from '@/signal/model';
 
@@ -35,6 +35,19 @@ export function hubRigOf(rig: RigRecord, settings: SettingsRecord): HubRig {
     settings: signalSettingsOf(settings),
     settingsVersion: settings.version,
   };
+}
+
+/**
+ * Tells the hub of a rig as it is stored now, not as one request saw it: changes that meet must not undo each other. The
+ * rig is read last, so that one deleted meanwhile stays away.
+ */
+export async function tellHub(
+  { db, hub }: { db: TurnmarkDb; hub: Pick<Hub, 'rigSaved'> },
+  rig: RigRecord,
+): Promise<void> {
+  const settings = await settingsInForce(db, rig);
+  const stored = await getRig(db, rig.id);
+  if (stored !== null) hub.rigSaved(hubRigOf(stored, settings));
 }
 
 export async function allHubRigs(db: TurnmarkDb): Promise<HubRig[]> {

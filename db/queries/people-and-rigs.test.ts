@@ -3,7 +3,7 @@ import type { Databases } from '../open';
 import { inMemory, nobody, settings, setup } from '../test-support/rig';
 import { listAudit, writeAudit } from './audit';
 import { getHubValue, setHubValue } from './hub-values';
-import { pruneResponses, recallResponse, rememberResponse } from './idempotency';
+import { forgetResponse, pruneResponses, recallResponse, replaceResponse } from './idempotency';
 import { createKey, findKey, listKeys, revokeKey, touchKey } from './keys';
 import { decodeCursor, firstPage } from './page';
 import {
@@ -213,19 +213,22 @@ describe('small things', () => {
     expect(await getHubValue(databases.db, 'k')).toBe('2');
   });
 
-  it('the first response to a key stands until it expires', async () => {
+  it('a response stands for its key until it is replaced, forgotten or expired', async () => {
     const { id: rigId } = await newRig();
-    const remember = (response: unknown, nowMs: number) =>
-      rememberResponse(databases.db, { rigId, key: 'k', response, nowMs, ttlMs: 100 });
+    const remember = (response: unknown, expiresAtMs: number) =>
+      replaceResponse(databases.db, { rigId, key: 'k', response, expiresAtMs });
     const recall = (nowMs: number) => recallResponse(databases.db, { rigId, key: 'k', nowMs });
     expect(await recall(0)).toBeNull();
-    await remember({ n: 1 }, 0);
-    await remember({ n: 2 }, 99);
-    expect(await recall(99)).toEqual({ n: 1 });
+    await remember({ n: 1 }, 50);
+    await remember({ n: 2 }, 100);
+    expect(await recall(99)).toEqual({ n: 2 });
     expect(await recall(100)).toBeNull();
-    await remember({ n: 3 }, 100);
+    expect(await pruneResponses(databases.db, 99)).toBe(0);
+    expect(await pruneResponses(databases.db, 100)).toBe(1);
+    await remember({ n: 3 }, 200);
+    await forgetResponse(databases.db, rigId, 'other');
     expect(await recall(199)).toEqual({ n: 3 });
-    expect(await pruneResponses(databases.db, 199)).toBe(0);
-    expect(await pruneResponses(databases.db, 200)).toBe(1);
+    await forgetResponse(databases.db, rigId, 'k');
+    expect(await recall(199)).toBeNull();
   });
 });

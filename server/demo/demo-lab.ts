@@ -12,7 +12,7 @@ import {
 } from '@/db';
 import { hubItself } from '@/server/audit';
 import type { AppContext } from '@/server/context';
-import { hubRigOf, settingsInForce } from '@/server/rigs';
+import { tellHub } from '@/server/rigs';
 import { demoCommand, describeDemoRigs, runDemoRigs } from './demo-process';
 import type { DemoRig } from './demo-process';
 
@@ -29,7 +29,7 @@ async function rigFor({ db, clock, hub, audit }: AppContext, demo: DemoRig): Pro
   const rig = await createRig(db, { name, setup, nowMs });
   await setHubValue(db, remembered, rig.id);
   await addSettings(db, { rigId: rig.id, settings, reason, by: hubItself, nowMs });
-  hub.rigSaved(hubRigOf(rig, await settingsInForce(db, rig)));
+  await tellHub({ db, hub }, rig);
   await audit.rigAdded(hubItself, rig.id, rig.name);
   return rig.id;
 }

@@ -1,18 +1,9 @@
 /** The hub itself, as boards and people reach it. */
-import { z } from 'zod';
 import { lanUrls } from '@/server/addresses';
 import type { ServerConfig } from '@/server/config/config';
+import { hubInfo } from '@/server/contract';
 import type { Route } from '@/server/http/route';
 import { route } from '@/server/http/route';
-
-export const hubInfo = z
-  .object({
-    mode: z.enum(['demo', 'production']),
-    addresses: z.array(z.string()).meta({
-      description: 'Base URLs that a board on the network can reach, the best first; never localhost',
-    }),
-  })
-  .meta({ id: 'Hub' });
 
 export function hubRoutes({ config }: { config: Pick<ServerConfig, 'mode' | 'publicUrl'> }): Route[] {
   return [

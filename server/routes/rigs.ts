@@ -10,7 +10,7 @@ import type { Hub } from '@/server/hub/hub-types';
 import { invalid, invalidField } from '@/server/http/problems';
 import type { Route } from '@/server/http/route';
 import { route } from '@/server/http/route';
-import { firstSettings, hubRigOf, settingsInForce, setupOf, signalSettingsOf } from '@/server/rigs';
+import { firstSettings, settingsInForce, setupOf, signalSettingsOf, tellHub } from '@/server/rigs';
 import type { RigSetup, Settings } from '@/signal/model';
 import { validateSetup } from '@/signal/validate-setup';
 import { found, pageOf, pageQuery, rigParams } from './shared';
@@ -51,7 +51,7 @@ export function rigRoutes({ db, hub, keys, audit, clock }: RigRoutesDeps): Route
         const nowMs = clock.nowMs();
         refuseUnrunnable(setup, firstSettings({ createdAt: '' }));
         const made = await createRig(db, { name, setup, nowMs });
-        hub.rigSaved(hubRigOf(made, firstSettings(made)));
+        await tellHub({ db, hub }, made);
         await audit.rigAdded(actorOf(user), made.id, made.name);
         return { status: 201, body: made, headers: { Location: `/api/v1/rigs/${made.id}` } };
       },
@@ -87,7 +87,7 @@ export function rigRoutes({ db, hub, keys, audit, clock }: RigRoutesDeps): Route
         refuseUnrunnable(setup, signalSettingsOf(settings));
         const saved = found(await updateRig(db, params.rigId, { name, setup }), 'rig');
         // A new name alone must not start the counts anew.
-        if (Object.keys(body).some((member) => member !== 'name')) hub.rigSaved(hubRigOf(saved, settings));
+        if (Object.keys(body).some((member) => member !== 'name')) await tellHub({ db, hub }, saved);
         await audit.rigChanged(actorOf(user), saved.id, Object.keys(body));
         return { status: 200, body: saved };
       },

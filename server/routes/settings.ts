@@ -9,7 +9,7 @@ import type { Hub } from '@/server/hub/hub-types';
 import { invalidField } from '@/server/http/problems';
 import type { Route } from '@/server/http/route';
 import { route } from '@/server/http/route';
-import { hubRigOf, setupOf } from '@/server/rigs';
+import { setupOf, tellHub } from '@/server/rigs';
 import { validateSetup } from '@/signal/validate-setup';
 import { found, pageOf, pageQuery, rigParams } from './shared';
 
@@ -53,7 +53,7 @@ export function settingsRoutes({ db, hub, audit, clock }: SettingsRoutesDeps): R
         if (issue !== null) throw invalidField(issue.pointer, issue.detail);
         const by = actorOf(user);
         const saved = await addSettings(db, { rigId, settings: wanted, reason, by, nowMs: clock.nowMs() });
-        hub.rigSaved(hubRigOf(rig, saved));
+        await tellHub({ db, hub }, rig);
         await audit.settingsSaved(by, rigId, saved.version);
         return { status: 201, body: saved };
       },
