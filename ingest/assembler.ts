@@ -11,6 +11,7 @@
 import { blockLimits } from './block';
 import type { IngestIssue } from './block';
 import { invalid } from './decoders/result';
+import { gapLength } from './gap-length';
 
 /** What the assembler must know of a block; `Block` is one. */
 export type BlockHead = {
@@ -78,11 +79,6 @@ const accepted: Verdict = Object.freeze({ result: 'accepted' });
 const duplicate: Verdict = Object.freeze({ result: 'duplicate' });
 const maxLostRanges = 256;
 const maxRefused = 64;
-/**
- * A board clock cannot move a stream beyond this sample. What sequence numbers alone can add (2^32 blocks of 65,536) stays
- * far below 2^53 on top of it, so that every index is exact.
- */
-const maxTimedIndex = 2 ** 50;
 
 export function createAssembler<B extends BlockHead>(options: {
   events: AssemblerEvents<B>;
@@ -187,15 +183,15 @@ export function createAssembler<B extends BlockHead>(options: {
 
   function declareLost(now: AssemblerState, next: B): void {
     const missingBlocks = next.seq - now.nextSeq;
-    const timed =
-      now.endTimeS === null || next.timeS === undefined
-        ? NaN
-        : Math.round((next.timeS - now.endTimeS) * now.rateHz) + 0;
-    // A clock that went backwards, or far beyond all reason, tells nothing.
-    const usable = timed >= 0 && now.nextIndex + timed <= maxTimedIndex;
     const gap: Gap = {
-      lostSamples: usable ? timed : missingBlocks * now.lastLength,
-      estimated: !usable,
+      ...gapLength({
+        endTimeS: now.endTimeS ?? undefined,
+        nextTimeS: next.timeS,
+        rateHz: now.rateHz,
+        fromIndex: now.nextIndex,
+        missingBlocks,
+        lastLength: now.lastLength,
+      }),
       fromIndex: now.nextIndex,
       fromSeq: now.nextSeq,
       missingBlocks,

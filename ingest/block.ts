@@ -30,6 +30,8 @@ export const blockLimits = {
   maxChannels: 8,
   /** CBOR or JSON message. */
   maxMessageBytes: 1024 * 1024,
+  /** Items of a batch that do not even name a block; with more, the message is not taken for a batch. */
+  maxNameless: 256,
   /** CSV or SenML body. */
   maxBodyBytes: 64 * 1024 * 1024,
 } as const;

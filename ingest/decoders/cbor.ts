@@ -10,17 +10,13 @@ import { readBlock, readSeq, readStream } from './cbor-block';
 import { hasSeq, hasStream, readKey } from './cbor-keys';
 import { CborReader, indefinite } from './cbor-reader';
 import { CborFault } from './cbor-values';
-import { invalid, tooLarge, unreadable } from './result';
+import { invalid, isNameless, noBatch, tooLarge, unreadable } from './result';
 import type { BlockResult, MessageResult } from './result';
 
 /** Reads one message: a block or an array of blocks. Never throws. */
-export function decodeCbor(bytes: Uint8Array): MessageResult {
-  if (bytes.byteLength > blockLimits.maxMessageBytes) {
-    return {
-      ok: false,
-      issue: tooLarge(`A CBOR message has at most ${blockLimits.maxMessageBytes} bytes.`),
-    };
-  }
+export function decodeCbor(bytes: Uint8Array, maxBytes: number = blockLimits.maxMessageBytes): MessageResult {
+  if (bytes.byteLength > maxBytes)
+    return { ok: false, issue: tooLarge(`A CBOR message has at most ${maxBytes} bytes.`) };
   try {
     return readMessage(new CborReader(bytes));
   } catch (fault) {
@@ -35,12 +31,16 @@ function readMessage(reader: CborReader): MessageResult {
   const batch = major === 4;
   const blocks: BlockResult[] = [];
   let whole: IngestIssue | undefined;
+  let nameless = 0;
   if (batch) {
     reader.head();
     const count = reader.arg;
     if (count !== indefinite) reader.checkCount(count);
     for (let i = 0; count === indefinite ? !reader.takeBreak() : i < count; i++) {
-      blocks.push(readOne(reader, `/${i}`));
+      const result = readOne(reader, `/${i}`);
+      if (isNameless(result) && ++nameless > blockLimits.maxNameless)
+        return { ok: false, issue: noBatch(`/${i}`) };
+      blocks.push(result);
     }
     if (blocks.length === 0) whole = invalid('The batch holds no block.');
   } else if (major === 5) {

@@ -18,6 +18,8 @@ export type CsvOptions = {
   rateHz?: number;
   /** Rate of the stream that this continues: taken where no rate is given and the times agree with it. */
   streamRateHz?: number;
+  /** What a body may have; that of a request to the hub where undefined. */
+  maxBytes?: number;
 };
 
 const timeNames = ['t', 't_s', 'time', 'time_s'];
@@ -41,9 +43,8 @@ type Table = {
 
 /** As `decodeCsv`, in steps. */
 export function* decodeCsvSteps(bytes: Uint8Array, options: CsvOptions): Steps<RecordingResult> {
-  const { codes = false } = options;
-  if (bytes.byteLength > blockLimits.maxBodyBytes)
-    return failed(tooLarge(`A CSV body has at most ${blockLimits.maxBodyBytes} bytes.`));
+  const { codes = false, maxBytes = blockLimits.maxBodyBytes } = options;
+  if (bytes.byteLength > maxBytes) return failed(tooLarge(`A CSV body has at most ${maxBytes} bytes.`));
   if (options.rateHz !== undefined) {
     const fault = rateFault(options.rateHz);
     if (fault !== undefined) return failed(invalid(fault, '/rate'));

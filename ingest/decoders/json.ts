@@ -11,17 +11,13 @@ import {
   textOf,
   whereJsonBreaks,
 } from './json-text';
-import { invalid, pointerPart, tooLarge, unreadable } from './result';
+import { invalid, isNameless, noBatch, pointerPart, tooLarge, unreadable } from './result';
 import type { BlockResult, MessageResult } from './result';
 
 /** Reads one message: a block or an array of blocks, as UTF-8. Never throws. */
-export function decodeJson(bytes: Uint8Array): MessageResult {
-  if (bytes.byteLength > blockLimits.maxMessageBytes) {
-    return {
-      ok: false,
-      issue: tooLarge(`A JSON message has at most ${blockLimits.maxMessageBytes} bytes.`),
-    };
-  }
+export function decodeJson(bytes: Uint8Array, maxBytes: number = blockLimits.maxMessageBytes): MessageResult {
+  if (bytes.byteLength > maxBytes)
+    return { ok: false, issue: tooLarge(`A JSON message has at most ${maxBytes} bytes.`) };
   const read = textOf(bytes);
   if (!read.ok) return read;
   const { text } = read;
@@ -41,7 +37,14 @@ export function decodeJson(bytes: Uint8Array): MessageResult {
   const batch = Array.isArray(value);
   const items: unknown[] = Array.isArray(value) ? value : [value];
   if (items.length === 0) return { ok: false, issue: invalid('The batch holds no block.') };
-  const blocks = items.map((item, i) => readBlock(item, batch ? `/${i}` : ''));
+  const blocks: BlockResult[] = [];
+  let nameless = 0;
+  for (const [i, item] of items.entries()) {
+    const result = readBlock(item, batch ? `/${i}` : '');
+    if (isNameless(result) && ++nameless > blockLimits.maxNameless)
+      return { ok: false, issue: noBatch(`/${i}`) };
+    blocks.push(result);
+  }
   if (countKeysInText(text) !== countKeysInValue(value)) {
     const texts = batch ? elementsOfArray(text) : [text];
     texts.forEach((part, i) => {

@@ -151,6 +151,15 @@ describe.each(formats)('%s', (_, decode) => {
     expect(result.blocks[5]).toMatchObject({ stream: undefined, seq: 3 });
   });
 
+  it('does not answer one by one for a heap of things that are no blocks', () => {
+    const few = decode([...Array<number>(200).fill(7), good]);
+    expect(few.ok && few.blocks.filter((block) => block.ok)).toHaveLength(1);
+    const heap = decode([good, ...Array<number>(100_000).fill(7)]);
+    expect(heap).toMatchObject({ ok: false, issue: { slug: 'invalid', pointer: '/257' } });
+    const named = decode(Array.from({ length: 1000 }, (_, seq) => ({ ...good, seq, samples: {} })));
+    expect(named.ok && named.blocks).toHaveLength(1000);
+  });
+
   it('refuses what is neither a block nor a batch, and an empty batch', () => {
     for (const value of [5, 'text', true, []]) {
       expect(decode(typeof value === 'string' ? JSON.stringify(value) : value)).toMatchObject({

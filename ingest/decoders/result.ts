@@ -1,3 +1,4 @@
+import { blockLimits } from '../block';
 import type { Block, IngestIssue } from '../block';
 
 /** One block of a message, or why it cannot be taken; `stream` and `seq` where they could be read. */
@@ -11,6 +12,17 @@ export type BlockResult =
  */
 export type MessageResult =
   { ok: true; batch: boolean; blocks: BlockResult[] } | { ok: false; issue: IngestIssue };
+
+/** A bad block of which not even stream or number could be read. */
+export function isNameless(result: BlockResult): boolean {
+  return !result.ok && (result.stream === undefined || result.seq === undefined);
+}
+
+/** Of a batch that is mostly something else: each item would be answered with far more than it took to send. */
+export function noBatch(pointer: string): IngestIssue {
+  const detail = `More than ${blockLimits.maxNameless} items of the batch do not name a block; none of it was taken.`;
+  return invalid(detail, pointer);
+}
 
 /** Not text or bytes of the format at all. `at` says where: byte, line or row. */
 export function unreadable(detail: string, at?: string): IngestIssue {

@@ -16,6 +16,8 @@ export type SenmlOptions = {
   format: 'json' | 'cbor';
   /** What times relative to now refer to: Unix time, s. */
   nowS: number;
+  /** What a body may have; that of a request to the hub where undefined. */
+  maxBytes?: number;
 };
 
 /** Reads a whole pack at once. Never throws. */
@@ -37,8 +39,8 @@ type Pack = { firstBaseS: number | undefined; series: Map<string, Series> };
 
 /** As `decodeSenml`, in steps of some hundred records. */
 export function* decodeSenmlSteps(bytes: Uint8Array, options: SenmlOptions): Steps<RecordingResult> {
-  if (bytes.byteLength > blockLimits.maxBodyBytes)
-    return failed(tooLarge(`A SenML body has at most ${blockLimits.maxBodyBytes} bytes.`));
+  const { maxBytes = blockLimits.maxBodyBytes } = options;
+  if (bytes.byteLength > maxBytes) return failed(tooLarge(`A SenML body has at most ${maxBytes} bytes.`));
   const base = createSenmlBase();
   const pack: Pack = { firstBaseS: undefined, series: new Map() };
   let number = 0;

@@ -9,6 +9,7 @@ import type { Audit } from '@/server/audit';
 import type { CaptureAnalyses } from '@/server/captures/analyses';
 import { captureOf } from '@/server/captures/capture-shape';
 import { readFile } from '@/server/captures/upload/read-file';
+import { maxUploadBytes } from '@/server/captures/upload/upload';
 import type { Upload } from '@/server/captures/upload/upload';
 import type { Clock } from '@/server/clock';
 import { capture, id } from '@/server/contract';
@@ -26,7 +27,6 @@ export type CaptureUploadDeps = {
 };
 
 const tag = 'Captures';
-const maxUploadBytes = 256 * 1024 * 1024;
 
 const uploadFields = z.object({
   rigId: id,

@@ -182,6 +182,27 @@ describe('upload', () => {
     expect(back.body.findings.map(({ code }) => code)).toContain('lost-samples');
   });
 
+  it('of blocks takes a gap as on the wire, also where the clock is beyond reason', async () => {
+    const at = (seq: number, time: number) => ({
+      stream: 's',
+      seq,
+      rate: 100,
+      time,
+      samples: { A: [1, 2], B: [3, 4] },
+    });
+    for (const late of [0, 1e300]) {
+      const { status, body } = await upload('odd.json', JSON.stringify([at(0, 5), at(2, late)]));
+      expect([status, body.durationS]).toEqual([201, 0.06]);
+      const analysis = await engineer<{ gaps: unknown[] }>('GET', `/api/v1/captures/${body.id}/analysis`);
+      expect(analysis.body.gaps).toEqual([{ from: 0.02, to: 0.04, lostSamples: 2, estimated: true }]);
+    }
+  });
+
+  it('of a time that is no instant is kept under the time of its arrival', async () => {
+    const { status, body } = await upload('odd.csv', 't,A\n1e15,1\n1000000000000001,2\n');
+    expect([status, body.startedAt]).toEqual([201, body.createdAt]);
+  });
+
   it('of CSV takes volts, or codes where told so', async () => {
     const rows = (values: number[]) => `t,A,B\n${values.map((v, i) => `${i / 100},${v},${v}`).join('\n')}\n`;
     const inVolts = await upload('Bench 7.csv', rows([0.5, 1.5, 2.5]));

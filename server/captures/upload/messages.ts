@@ -1,88 +1,52 @@
-/** Blocks in a file: CBOR, one batch or a sequence of them (RFC 8742), or JSON, one batch or a line each. */
+/** Blocks in a file, put in their places on the capture's axis. */
 import type { CaptureGap, Piece } from '@/db';
-import { CborReader } from '@/ingest/decoders/cbor-reader';
-import { CborFault } from '@/ingest/decoders/cbor-values';
-import { decodeCbor } from '@/ingest/decoders/cbor';
-import { decodeJson } from '@/ingest/decoders/json';
-import type { MessageResult } from '@/ingest/decoders/result';
 import type { Block, IngestIssue } from '@/ingest/block';
-import { refused, unixTimeOf, unreadable } from './upload';
+import { gapLength } from '@/ingest/gap-length';
+import { createTurns } from '../turns';
+import { cborFileBlocks, jsonFileBlocks } from './file-blocks';
+import type { FileBlock } from './file-blocks';
+import { refused, unixTimeOf } from './upload';
 import type { UploadResult } from './upload';
 
-/** Each message of the file, with its number from 1. */
-type Messages = () => Generator<MessageResult>;
-
-/** Where the next item of a CBOR sequence begins; throws `CborFault`. */
-function* cborMessages(bytes: Uint8Array): Generator<MessageResult> {
-  for (let at = 0; at < bytes.byteLength;) {
-    const rest = bytes.subarray(at);
-    const reader = new CborReader(rest);
-    try {
-      reader.skip();
-    } catch (fault) {
-      if (!(fault instanceof CborFault)) throw fault;
-      return yield unreadable(fault.detail, `byte ${at + fault.at}`);
-    }
-    yield decodeCbor(rest.subarray(0, reader.pos));
-    at += reader.pos;
-  }
-}
-
-function* jsonMessages(bytes: Uint8Array): Generator<MessageResult> {
-  // One text over several lines is one message; else each line is.
-  const whole = decodeJson(bytes);
-  if (whole.ok) return yield whole;
-  for (let at = 0; at < bytes.byteLength;) {
-    const newline = bytes.indexOf(10, at);
-    const end = newline < 0 ? bytes.byteLength : newline;
-    const line = bytes.subarray(at, end);
-    if (line.some((byte) => byte > 32)) yield decodeJson(line);
-    at = end + 1;
-  }
-}
+type FileBlocks = () => Generator<FileBlock>;
 
 function withPlace(issue: IngestIssue, message: number): { ok: false; issue: IngestIssue } {
   const at = issue.at === undefined ? `message ${message}` : `message ${message}, ${issue.at}`;
   return { ok: false, issue: { ...issue, at } };
 }
 
+type Loss = Omit<CaptureGap, 'fromIndex'>;
+
 /** Lost samples between two blocks of a stream, as on the wire; undefined where one follows the other. */
-function lossBetween(before: Block, after: Block, rateHz: number): Omit<CaptureGap, 'fromIndex'> | undefined {
-  const missing = after.seq - before.seq - 1;
-  if (missing === 0) return undefined;
-  if (before.timeS === undefined || after.timeS === undefined) {
-    return { lostSamples: missing * before.length, estimated: true };
-  }
-  const lost = Math.round((after.timeS - before.timeS) * rateHz) - before.length;
-  return { lostSamples: Math.max(0, lost), estimated: false };
+function lossBetween(before: Block, after: Block, rateHz: number, fromIndex: number): Loss | undefined {
+  const missingBlocks = after.seq - before.seq - 1;
+  if (missingBlocks === 0) return undefined;
+  const endTimeS = before.timeS === undefined ? undefined : before.timeS + before.length / rateHz;
+  const lastLength = before.length;
+  return gapLength({ endTimeS, nextTimeS: after.timeS, rateHz, fromIndex, missingBlocks, lastLength });
 }
 
 const namesOf = (block: Block) => block.channels.map(({ name }) => name);
 
-type Placed = { block: Block; startIndex: number; loss: Omit<CaptureGap, 'fromIndex'> | undefined };
+type Placed = { block: Block; startIndex: number; loss: Loss | undefined };
 
 /** Each block with its place on the capture's axis, or the first thing that is wrong. */
-function* placed(messages: Messages): Generator<Placed, IngestIssue | undefined> {
+function* placed(blocks: FileBlocks): Generator<Placed, IngestIssue | undefined> {
   let first: Block | undefined;
   let last: Block | undefined;
   let next = 0;
-  let number = 0;
-  for (const message of messages()) {
-    number += 1;
-    if (!message.ok) return withPlace(message.issue, number).issue;
-    for (const result of message.blocks) {
-      if (!result.ok) return withPlace(result.issue, number).issue;
-      const { block } = result;
-      first ??= block;
-      const fault = faultOf(first, last, block);
-      if (fault !== undefined) return withPlace(refused(fault).issue, number).issue;
-      if (last !== undefined && block.seq === last.seq) continue;
-      const loss = last === undefined ? undefined : lossBetween(last, block, first.rateHz ?? 1);
-      next += loss?.lostSamples ?? 0;
-      yield { block, startIndex: next, loss };
-      next += block.length;
-      last = block;
-    }
+  for (const { result, message } of blocks()) {
+    if (!result.ok) return withPlace(result.issue, message).issue;
+    const { block } = result;
+    first ??= block;
+    const fault = faultOf(first, last, block);
+    if (fault !== undefined) return withPlace(refused(fault).issue, message).issue;
+    if (last !== undefined && block.seq === last.seq) continue;
+    const loss = last === undefined ? undefined : lossBetween(last, block, first.rateHz ?? 1, next);
+    next += loss?.lostSamples ?? 0;
+    yield { block, startIndex: next, loss };
+    next += block.length;
+    last = block;
   }
   return first === undefined ? refused('The file holds no block.').issue : undefined;
 }
@@ -101,17 +65,19 @@ function faultOf(first: Block, last: Block | undefined, block: Block): string | 
   return undefined;
 }
 
-function readMessages(messages: Messages): UploadResult {
+async function readBlocks(blocks: FileBlocks): Promise<UploadResult> {
   const gaps: CaptureGap[] = [];
   let first: Block | undefined;
   let lengthSamples = 0;
   // Read through once before anything is stored: a fault in the last block must leave nothing behind.
-  const walk = placed(messages);
+  const walk = placed(blocks);
+  const turn = createTurns();
   for (let step = walk.next(); ; step = walk.next()) {
     if (step.done) {
       if (step.value !== undefined) return { ok: false, issue: step.value };
       break;
     }
+    await turn();
     const { block, startIndex, loss } = step.value;
     first ??= block;
     if (loss !== undefined) gaps.push({ fromIndex: startIndex - loss.lostSamples, ...loss });
@@ -120,7 +86,7 @@ function readMessages(messages: Messages): UploadResult {
   if (first === undefined) return refused('The file holds no block.');
 
   function* pieces(): Generator<Piece> {
-    for (const { block, startIndex } of placed(messages)) {
+    for (const { block, startIndex } of placed(blocks)) {
       yield { startIndex, count: block.length, channels: block.channels };
     }
   }
@@ -138,5 +104,5 @@ function readMessages(messages: Messages): UploadResult {
   };
 }
 
-export const readCborFile = (bytes: Uint8Array): UploadResult => readMessages(() => cborMessages(bytes));
-export const readJsonFile = (bytes: Uint8Array): UploadResult => readMessages(() => jsonMessages(bytes));
+export const readCborFile = (bytes: Uint8Array) => readBlocks(() => cborFileBlocks(bytes));
+export const readJsonFile = (bytes: Uint8Array) => readBlocks(() => jsonFileBlocks(bytes));

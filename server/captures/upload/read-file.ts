@@ -4,7 +4,7 @@ import { runInSteps } from '@/ingest/decoders/recording';
 import type { RecordingResult } from '@/ingest/decoders/recording';
 import { decodeSenmlSteps } from '@/ingest/decoders/senml-recording';
 import { readCborFile, readJsonFile } from './messages';
-import { refused, unixTimeOf } from './upload';
+import { maxUploadBytes, refused, unixTimeOf } from './upload';
 import type { UploadResult } from './upload';
 import { readWav } from './wav';
 
@@ -95,14 +95,15 @@ export async function readFile(
   const kind = fileKindOf(name, bytes);
   if (kind === undefined) return refused('The file is not what its name says, or of no known kind.');
   const pause = () => new Promise<void>((resolve) => setImmediate(resolve));
-  const nowS = options.nowMs / 1000;
+  const senml = { nowS: options.nowMs / 1000, maxBytes: maxUploadBytes };
+  const csv = { codes: options.codes, maxBytes: maxUploadBytes };
   switch (kind) {
     case 'csv':
-      return ofRecording(await runInSteps(decodeCsvSteps(bytes, { codes: options.codes }), pause));
+      return ofRecording(await runInSteps(decodeCsvSteps(bytes, csv), pause));
     case 'senml-json':
-      return ofRecording(await runInSteps(decodeSenmlSteps(bytes, { format: 'json', nowS }), pause));
+      return ofRecording(await runInSteps(decodeSenmlSteps(bytes, { ...senml, format: 'json' }), pause));
     case 'senml-cbor':
-      return ofRecording(await runInSteps(decodeSenmlSteps(bytes, { format: 'cbor', nowS }), pause));
+      return ofRecording(await runInSteps(decodeSenmlSteps(bytes, { ...senml, format: 'cbor' }), pause));
     case 'cbor':
       return readCborFile(bytes);
     case 'json':

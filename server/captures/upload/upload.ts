@@ -17,11 +17,15 @@ export type Upload = {
 
 export type UploadResult = { ok: true; upload: Upload } | { ok: false; issue: IngestIssue };
 
-/** Earlier instants are clocks that count from a start, not the time of day: 2001-09-09. */
+/** What a file has at most. */
+export const maxUploadBytes = 256 * 1024 * 1024;
+
+/** Earlier instants are clocks that count from a start, not the time of day: 2001-09-09. Later ones are no instants. */
 const oldestUnixS = 1e9;
+const latestUnixS = Date.UTC(9999, 0) / 1000;
 
 export function unixTimeOf(timeS: number | undefined): number | undefined {
-  return timeS !== undefined && timeS >= oldestUnixS ? timeS : undefined;
+  return timeS !== undefined && timeS >= oldestUnixS && timeS < latestUnixS ? timeS : undefined;
 }
 
 export function unreadable(detail: string, at?: string): { ok: false; issue: IngestIssue } {

@@ -1,6 +1,7 @@
 /** WAV as a recording: integers are codes, floats are volts; its channels are the rig's, in the rig's order. */
 import type { SampleArray } from '@/signal/model';
 import { blockLimits } from '@/ingest/block';
+import { createTurns } from '../turns';
 import { refused, unreadable } from './upload';
 import type { UploadResult } from './upload';
 
@@ -56,7 +57,7 @@ function findChunks(
   return { format, dataAt: -1, dataBytes: 0 };
 }
 
-export function readWav(bytes: Uint8Array, rigChannels: readonly string[]): UploadResult {
+export async function readWav(bytes: Uint8Array, rigChannels: readonly string[]): Promise<UploadResult> {
   const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
   const { format, dataAt, dataBytes } = findChunks(bytes, view);
   if (format === undefined || dataAt < 0) return unreadable('The WAV file lacks its format or its data.');
@@ -99,7 +100,9 @@ export function readWav(bytes: Uint8Array, rigChannels: readonly string[]): Uplo
   }
 
   if (tag === 3) {
+    const turn = createTurns();
     for (const piece of pieces()) {
+      await turn();
       for (const { name, samples } of piece.channels) {
         const bad = samples.findIndex((v) => !Number.isFinite(v));
         if (bad >= 0)
