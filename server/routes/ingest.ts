@@ -11,9 +11,7 @@ import type { SessionTimers, StreamSession } from '@/ingest/transports/websocket
 import type { BlockSink } from '@/ingest/block-sink';
 import type { VerifiedKey } from '@/server/auth/rig-keys';
 import { bearerOf } from '@/server/auth/tokens';
-
-/** Bytes of bodies that are being read, all rigs together. */
-const maxReadingBytes = 192 * 1024 * 1024;
+import { createReadingRoom } from '@/server/reading-room';
 
 export type IngestRouterDeps = {
   http: HttpIngest;
@@ -44,7 +42,7 @@ function sendEarly(res: Response, answer: IngestResponse): void {
 }
 
 export function ingestRouter({ http, verifyRigKey }: IngestRouterDeps): Router {
-  let readingBytes = 0;
+  const room = createReadingRoom();
 
   function read(req: Request, res: Response, limit: number): Promise<Uint8Array> {
     const readBody = express.raw({ type: () => true, limit, inflate: false });
@@ -65,17 +63,17 @@ export function ingestRouter({ http, verifyRigKey }: IngestRouterDeps): Router {
     const declared = Number(req.headers['content-length'] ?? limit);
     const early = http.refuseEarly(key.rigId, contentType, declared);
     if (early !== undefined) return sendEarly(res, early);
-    if (readingBytes > 0 && readingBytes + declared > maxReadingBytes) {
-      const detail = 'The hub is reading other recordings. Send this again a little later.';
+    const leave = room.enter(key.rigId, declared);
+    if (leave === undefined) {
+      const detail = 'The hub is still reading what was sent before. Send this again a little later.';
       const headers = { 'content-type': 'application/problem+json', 'retry-after': '1' };
       return sendEarly(res, { status: 429, headers, body: problem('too-fast', 429, detail) });
     }
-    readingBytes += declared;
     let body: Uint8Array;
     try {
       body = await read(req, res, limit);
     } finally {
-      readingBytes -= declared;
+      leave();
     }
     send(
       res,
