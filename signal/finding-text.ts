@@ -5,7 +5,10 @@ export type FindingWords = { message: string; remedy: string };
 type Evidence = Record<string, number | string>;
 
 /** Findings whose rule exists. */
-export type WordedCode = Extract<FindingCode, 'lost-samples' | 'clipping' | 'dead-channel' | 'missing-tooth'>;
+export type WordedCode = Extract<
+  FindingCode,
+  'lost-samples' | 'clipping' | 'dead-channel' | 'missing-tooth' | 'edge-bounce'
+>;
 
 const words: Record<WordedCode, (channel: string | null, evidence: Evidence) => FindingWords> = {
   'lost-samples': (_channel, evidence) => ({
@@ -16,6 +19,11 @@ const words: Record<WordedCode, (channel: string | null, evidence: Evidence) => 
   clipping: (channel, evidence) => ({
     message: `Channel ${channel} stands at the ${evidence.rail} end of its range for ${short(evidence.railPercent)} % of the time, so its peaks are cut off.`,
     remedy: 'Widen the air gap, take a less sensitive sensor, or put an attenuator before the input.',
+  }),
+  'edge-bounce': (channel, evidence) => ({
+    message: `Channel ${channel} counts some teeth more than once: ${short(evidence.shortPercent)} % of its edges follow the one before within a quarter of a tooth, the closest after ${time(evidence.shortestS)}, so the speed reads too high.`,
+    remedy:
+      'Widen the band or set a hold-off a little longer than the bounce, and look for a loose connector, a weak pull-up or a long unshielded cable.',
   }),
   'dead-channel': (channel, evidence) =>
     evidence.otherEdges === undefined
@@ -37,6 +45,11 @@ const words: Record<WordedCode, (channel: string | null, evidence: Evidence) => 
 
 export function wordsFor(code: WordedCode, channel: string | null, evidence: Evidence): FindingWords {
   return words[code](channel, evidence);
+}
+
+function time(seconds: number | string | undefined): string {
+  if (typeof seconds !== 'number') return String(seconds);
+  return seconds < 1 ? `${short(1000 * seconds)} ms` : `${short(seconds)} s`;
 }
 
 function whole(value: number | string | undefined): string {

@@ -7,6 +7,7 @@
 import { createEdgeQueue, delayGuessed, pushSpeed, roomForSpeed } from '@/signal/columns';
 import type { EdgeQueue } from '@/signal/columns';
 import { createDirectionTracker, forgetLevels, forgetSense, stepTo } from '@/signal/direction-tracker';
+import { createIntervalMeter, noteInterval } from '@/signal/interval-meter';
 import type { DirectionTracker } from '@/signal/direction-tracker';
 import { createGapSync, judgeInterval, judgeWaiting, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
 import type { GapSync } from '@/signal/gap-sync';
@@ -74,6 +75,7 @@ export class Motion {
   private lastStepS = NaN;
   /** Largest share of a cycle that one state of the ring took lately. */
   private widestState = NaN;
+  readonly intervals = createIntervalMeter();
   private widestPitch = 1;
   private placedT = NaN;
 
@@ -287,7 +289,10 @@ export class Motion {
         this.waitingSigmaS = queue.sigmaS[entry]!;
       }
     }
-    if (!Number.isNaN(this.lastARise)) this.aPeriodS = t - this.lastARise;
+    if (!Number.isNaN(this.lastARise)) {
+      this.aPeriodS = t - this.lastARise;
+      noteInterval(this.intervals, this.aPeriodS, t, this.sync.missing);
+    }
     this.lastARise = t;
     this.lastRiseS = t;
     this.troughV = queue.extremeV[entry]!;
