@@ -25,6 +25,7 @@ const minSigmas = 14;
 /** A swing below so many quanta may be one code toggling. */
 const minQuanta = 4;
 const alike = 0.6;
+const leastShare = 1e-9;
 
 export function createHunter(): Hunter {
   return {
@@ -83,6 +84,12 @@ export function hunt(
     const x = v[j]!;
     if (x > hunter.highV) hunter.highV = x;
     if (x < hunter.lowV) hunter.lowV = x;
+    // A computed or digital signal has no noise at all: equal samples, and the rounding of a filter, are no swing.
+    if (
+      deltaV === 0 &&
+      hunter.highV - hunter.lowV <= leastShare * Math.max(Math.abs(hunter.highV), Math.abs(hunter.lowV))
+    )
+      continue;
     if (hunter.heading >= 0 && hunter.highV - x >= deltaV) {
       turn(hunter, hunter.highV, base + j);
       hunter.heading = -1;
