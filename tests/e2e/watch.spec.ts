@@ -174,7 +174,10 @@ test('what is wrong stands beside the speed, with its evidence and its place', a
     await expect(finding).toContainText(/channel A · .*rail/);
     await expectSound(page);
     await finding.getByRole('button', { name: /^Show me/ }).click();
-    await expect(pictureOf(page).getByRole('img', { name: /^Signal over .* s, / })).toBeVisible();
+    // In sight already: the picture is held. Farther back: the picture is made long enough.
+    const held = page.getByRole('button', { name: 'Release the picture' });
+    await expect(held.or(page.getByRole('button', { name: / m?s: change to teeth$/ }))).toBeVisible();
+    await expect(pictureOf(page).getByRole('img', { name: /^Signal over/ })).toBeVisible();
   } finally {
     await board.stop();
   }
