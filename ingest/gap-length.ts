@@ -6,7 +6,7 @@
  */
 const maxTimedIndex = 2 ** 50;
 
-export type Neighbours = {
+type Neighbours = {
   /** The board's clock just after the block before, and at the block after, s; where they carry one. */
   endTimeS: number | undefined;
   nextTimeS: number | undefined;

@@ -120,7 +120,7 @@ export function createMemorySink(
 }
 
 /** A block whose samples are its own memory. */
-export function copyBlock(block: Block): Block {
+function copyBlock(block: Block): Block {
   return {
     ...block,
     channels: block.channels.map(({ name, samples }) => ({ name, samples: samples.slice() })),

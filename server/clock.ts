@@ -5,7 +5,3 @@ export type Clock = {
 };
 
 export const systemClock: Clock = { nowMs: () => Date.now() };
-
-export function isoFrom(ms: number): string {
-  return new Date(ms).toISOString();
-}

@@ -28,7 +28,7 @@ export async function settingsInForce(db: TurnmarkDb, rig: RigRecord): Promise<S
   return (await newestSettings(db, rig.id)) ?? firstSettings(rig);
 }
 
-export function hubRigOf(rig: RigRecord, settings: SettingsRecord): HubRig {
+function hubRigOf(rig: RigRecord, settings: SettingsRecord): HubRig {
   return {
     id: rig.id,
     setup: setupOf(rig),

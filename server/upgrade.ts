@@ -12,9 +12,9 @@ import type { OriginCheck } from '@/server/http/origin';
 import type { ProblemSlug } from '@/server/http/problems';
 import { problemBody, problemKinds } from '@/server/http/problems';
 
-export const ingestPath = '/ingest/v1/stream';
-export const livePath = '/live/v1';
-export const ingestProtocol = 'turnmark.v1';
+const ingestPath = '/ingest/v1/stream';
+const livePath = '/live/v1';
+const ingestProtocol = 'turnmark.v1';
 const bearerPrefix = 'bearer.';
 
 const maxIngestMessageBytes = 1024 * 1024;
@@ -44,7 +44,7 @@ function refuse(socket: Duplex, slug: ProblemSlug): void {
 }
 
 /** The rig key: the header, or a subprotocol where the client cannot set headers. Never the URL. */
-export function rigKeyOf(req: IncomingMessage): string | undefined {
+function rigKeyOf(req: IncomingMessage): string | undefined {
   const fromHeader = bearerOf(req.headers.authorization);
   if (fromHeader !== undefined) return fromHeader;
   const offered = (req.headers['sec-websocket-protocol'] ?? '').split(',').map((part) => part.trim());

@@ -19,7 +19,7 @@ export function buildPyramid(samples: SampleArray, startIndex: number): Pyramid 
 }
 
 /** How many entries of a level a chunk has. */
-export function entriesOf(startIndex: number, count: number, level: number): number {
+function entriesOf(startIndex: number, count: number, level: number): number {
   return Math.floor((startIndex + count - 1) / level) - Math.floor(startIndex / level) + 1;
 }
 

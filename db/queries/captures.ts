@@ -88,19 +88,6 @@ export async function listCaptures(
   return { items: await withParts(db, page.items), nextCursor: page.nextCursor };
 }
 
-/** Tags in use with how many captures carry them, the most used first. */
-export async function listTags(db: TurnmarkDb): Promise<{ tag: string; count: number }[]> {
-  return await db
-    .selectFrom('capture_tag')
-    .innerJoin('capture', 'capture.row', 'capture_tag.capture_row')
-    .where('capture.kept', '=', 1)
-    .select((eb) => ['capture_tag.tag', eb.fn.countAll<number>().as('count')])
-    .groupBy('capture_tag.tag')
-    .orderBy('count', 'desc')
-    .orderBy('capture_tag.tag')
-    .execute();
-}
-
 /** Changes what is given. null: no such capture. */
 export async function updateCapture(
   db: TurnmarkDb,

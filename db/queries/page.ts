@@ -9,12 +9,12 @@ export type Page<T> = { items: T[]; nextCursor: string | null };
 export type BadCursor = { code: 'bad-cursor' };
 
 /** Lists are cut to so many items, whatever is asked. */
-export const maxPageItems = 100;
+const maxPageItems = 100;
 
 /** The first page of the longest kind, for callers that want it plain. */
 export const firstPage: PageQuery = { cursor: null, limit: maxPageItems };
 
-export function encodeCursor(cursor: Cursor): string {
+function encodeCursor(cursor: Cursor): string {
   return Buffer.from(JSON.stringify([cursor.key, cursor.id])).toString('base64url');
 }
 

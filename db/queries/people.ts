@@ -21,7 +21,7 @@ export type PersonWithSecret = Person & { passwordHash: string | null };
 export type EmailTaken = { code: 'email-taken' };
 
 /** Addresses that differ in case only are one person's. */
-export function emailKey(email: string): string {
+function emailKey(email: string): string {
   return email.trim().normalize('NFKC').toLowerCase();
 }
 

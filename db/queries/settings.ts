@@ -51,20 +51,6 @@ export async function newestSettings(db: TurnmarkDb, rigId: string): Promise<Set
   return row === undefined ? null : toSettings(row);
 }
 
-export async function getSettings(
-  db: TurnmarkDb,
-  rigId: string,
-  version: number,
-): Promise<SettingsRecord | null> {
-  const row = await db
-    .selectFrom('settings_version')
-    .selectAll()
-    .where('rig_id', '=', rigId)
-    .where('version', '=', version)
-    .executeTakeFirst();
-  return row === undefined ? null : toSettings(row);
-}
-
 export async function listSettings(
   db: TurnmarkDb,
   rigId: string,

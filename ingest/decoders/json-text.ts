@@ -86,7 +86,7 @@ export function elementsOfArray(text: string): string[] {
 }
 
 /** Index just after the closing quote of the string that opens at `open`; the text's length where it never closes. */
-export function endOfString(text: string, open: number): number {
+function endOfString(text: string, open: number): number {
   let i = open + 1;
   for (;;) {
     const quote = text.indexOf('"', i);

@@ -39,7 +39,7 @@ export type StreamSession = {
   hubStopping(): void;
 };
 
-export const closeCodes = { keyRevoked: 4403, silent: 4408, tooLarge: 1009, tryLater: 1013 } as const;
+const closeCodes = { keyRevoked: 4403, silent: 4408, tooLarge: 1009, tryLater: 1013 } as const;
 
 /** Acks are merged for this long after a commit, so that they come well within 250 ms of the block. */
 const ackDelayMs = 100;

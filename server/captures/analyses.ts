@@ -23,7 +23,7 @@ const awaitedSamples = 8_000_000;
 const rank = { fault: 0, warn: 1, note: 2 } as const;
 
 /** One row for each code, with its worst severity, the worst first. */
-export function summaryOf(findings: readonly Finding[]): CaptureFinding[] {
+function summaryOf(findings: readonly Finding[]): CaptureFinding[] {
   const byCode = new Map<string, CaptureFinding>();
   for (const { code, severity } of findings) {
     const known = byCode.get(code);

@@ -17,8 +17,8 @@ export async function filteredSamples(
   const { rateHz, lengthSamples, settings, rig } = capture;
   const setup = rig.channels.find(({ name }) => name === channel);
   if (setup === undefined) throw new Error(`capture ${capture.id} has no setup of channel ${channel}`);
-  const from = Math.min(lengthSamples, Math.max(0, Math.floor(fromS * rateHz)));
-  const to = Math.min(lengthSamples, Math.max(from, Math.ceil(toS * rateHz)));
+  const from = Math.min(lengthSamples, Math.max(0, Math.round(fromS * rateHz)));
+  const to = Math.min(lengthSamples, Math.max(from, Math.round(toS * rateHz)));
   const whole = to - from <= points;
   const plan = whole
     ? { fromIndex: from, stepSamples: 1, columns: to - from }

@@ -1,6 +1,6 @@
 /** The only file that reads the environment. Raw values as they stand; `config.ts` gives them a meaning. */
 
-export const envNames = [
+const envNames = [
   'PORT',
   'TURNMARK_MODE',
   'TURNMARK_DATA_DIR',

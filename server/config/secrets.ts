@@ -19,12 +19,12 @@ const stored = z.object({
 });
 
 /** 256 bits, as text that survives any shell. */
-export function freshSecret(): string {
+function freshSecret(): string {
   return randomBytes(32).toString('base64url');
 }
 
 /** Three groups of four letters and digits that are hard to mistake for each other: 59 bits. */
-export function freshPassword(): string {
+function freshPassword(): string {
   const letters = 'abcdefghjkmnpqrstuvwxyz23456789';
   const pick = () => {
     for (;;) {
@@ -35,7 +35,7 @@ export function freshPassword(): string {
   return [0, 1, 2].map(() => [0, 1, 2, 3].map(pick).join('')).join('-');
 }
 
-export function freshSecrets(): z.infer<typeof stored> {
+function freshSecrets(): z.infer<typeof stored> {
   return { session: freshSecret(), ingest: freshSecret(), demoPassword: freshPassword() };
 }
 

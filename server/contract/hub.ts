@@ -9,4 +9,3 @@ export const hubInfo = z
     }),
   })
   .meta({ id: 'Hub' });
-export type HubInfo = z.infer<typeof hubInfo>;

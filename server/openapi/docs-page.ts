@@ -27,7 +27,7 @@ type Operation = {
   responses: Record<string, { description?: string; content?: Content }>;
 };
 
-export function escapeHtml(text: string): string {
+function escapeHtml(text: string): string {
   return text
     .replaceAll('&', '&amp;')
     .replaceAll('<', '&lt;')

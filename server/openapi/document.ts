@@ -10,7 +10,7 @@ import { ingestPaths } from './ingest-paths';
 export type OpenApiDocument = ReturnType<OpenApiGeneratorV31['generateDocument']>;
 
 /** `/rigs/:rigId` as `/rigs/{rigId}`. */
-export function openApiPath(path: string): string {
+function openApiPath(path: string): string {
   return path.replaceAll(/:(\w+)/g, '{$1}');
 }
 

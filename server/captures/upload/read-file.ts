@@ -49,7 +49,7 @@ const wantedStart: Record<FileKind, ReturnType<typeof startOf>> = {
 };
 
 /** undefined: the name and the contents contradict each other, or neither tells. */
-export function fileKindOf(name: string, bytes: Uint8Array): FileKind | undefined {
+function fileKindOf(name: string, bytes: Uint8Array): FileKind | undefined {
   const extension = /\.([a-z0-9]+)$/i.exec(name)?.[1]?.toLowerCase() ?? '';
   const start = startOf(bytes);
   const named = Object.hasOwn(kindsByExtension, extension) ? kindsByExtension[extension] : undefined;
