@@ -135,20 +135,22 @@ function foldedPairFromInt16(
   const p2 = first.a2;
   const q1 = second.a1;
   const q2 = second.a2;
-  const n = to - from;
+  const p = 2 - p1;
+  const q = 2 - q1;
+  const shift = at - from;
   let s1 = state[0]!;
   let s2 = state[1]!;
   let t1 = state[2]!;
   let t2 = state[3]!;
-  for (let i = 0; i < n; i++) {
-    const x = (codes[from + i]! - offset) * gain;
+  for (let i = from; i < to; i++) {
+    const x = (codes[i]! - offset) * gain;
     const y = x + s1;
-    s1 = x + x + s2 - p1 * y;
-    s2 = x - p2 * y;
     const z = y + t1;
-    t1 = y + y + t2 - q1 * z;
+    out[i + shift] = z;
+    s1 = p * x + s2 - p1 * s1;
+    s2 = x - p2 * y;
+    t1 = q * y + t2 - q1 * t1;
     t2 = y - q2 * z;
-    out[at + i] = z;
   }
   state[0] = s1;
   state[1] = s2;
@@ -170,6 +172,8 @@ function foldedPair(
   const p2 = first.a2;
   const q1 = second.a1;
   const q2 = second.a2;
+  const p = 2 - p1;
+  const q = 2 - q1;
   let s1 = state[at]!;
   let s2 = state[at + 1]!;
   let t1 = state[at + 2]!;
@@ -177,12 +181,12 @@ function foldedPair(
   for (let i = from; i < to; i++) {
     const x = buffer[i]! * gain;
     const y = x + s1;
-    s1 = x + x + s2 - p1 * y;
-    s2 = x - p2 * y;
     const z = y + t1;
-    t1 = y + y + t2 - q1 * z;
-    t2 = y - q2 * z;
     buffer[i] = z;
+    s1 = p * x + s2 - p1 * s1;
+    s2 = x - p2 * y;
+    t1 = q * y + t2 - q1 * t1;
+    t2 = y - q2 * z;
   }
   state[at] = s1;
   state[at + 1] = s2;
@@ -200,14 +204,15 @@ function foldedSingle(
   to: number,
 ): void {
   const { a1, a2 } = section;
+  const b = 2 - a1;
   let s1 = state[at]!;
   let s2 = state[at + 1]!;
   for (let i = from; i < to; i++) {
     const x = buffer[i]! * gain;
     const y = x + s1;
-    s1 = x + x + s2 - a1 * y;
-    s2 = x - a2 * y;
     buffer[i] = y;
+    s1 = b * x + s2 - a1 * s1;
+    s2 = x - a2 * y;
   }
   state[at] = s1;
   state[at + 1] = s2;

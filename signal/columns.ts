@@ -9,6 +9,12 @@ function grown(old: Float64Array): Float64Array {
   return wider;
 }
 
+function grownFlags(old: Uint8Array): Uint8Array {
+  const wider = new Uint8Array(old.length * 2);
+  wider.set(old);
+  return wider;
+}
+
 export function createEdgeColumns(): EdgeColumns {
   return {
     count: 0,
@@ -18,16 +24,18 @@ export function createEdgeColumns(): EdgeColumns {
   };
 }
 
+// What seldom happens is apart from what happens at every edge, so that the latter is small enough to be inlined.
+
 /** Index of a new edge, whose columns are for the caller to write. */
 export function roomForEdge(columns: EdgeColumns): number {
-  if (columns.count === columns.t.length) {
-    columns.t = grown(columns.t);
-    columns.midT = grown(columns.midT);
-    const wider = new Uint8Array(columns.t.length);
-    wider.set(columns.flags);
-    columns.flags = wider;
-  }
+  if (columns.count === columns.t.length) widenEdges(columns);
   return columns.count++;
+}
+
+function widenEdges(columns: EdgeColumns): void {
+  columns.t = grown(columns.t);
+  columns.midT = grown(columns.midT);
+  columns.flags = grownFlags(columns.flags);
 }
 
 export function createRejectedColumns(): RejectedColumns {
@@ -51,12 +59,14 @@ export function createSpeedColumns(): SpeedColumns {
 
 /** Index of a new entry, whose columns are for the caller to write. */
 export function roomForSpeed(columns: SpeedColumns): number {
-  if (columns.count === columns.t.length) {
-    columns.t = grown(columns.t);
-    columns.rpm = grown(columns.rpm);
-    columns.errorRpm = grown(columns.errorRpm);
-  }
+  if (columns.count === columns.t.length) widenSpeed(columns);
   return columns.count++;
+}
+
+function widenSpeed(columns: SpeedColumns): void {
+  columns.t = grown(columns.t);
+  columns.rpm = grown(columns.rpm);
+  columns.errorRpm = grown(columns.errorRpm);
 }
 
 export function pushSpeed(columns: SpeedColumns, t: number, rpm: number, errorRpm: number): void {
@@ -102,15 +112,15 @@ export function createEdgeQueue(): EdgeQueue {
 /** Index of a new entry, whose columns are for the caller to write. */
 export function roomInQueue(queue: EdgeQueue): number {
   if (queue.head === queue.count) queue.head = queue.count = 0;
-  if (queue.count === queue.at.length) {
-    queue.at = grown(queue.at);
-    queue.midS = grown(queue.midS);
-    queue.delayS = grown(queue.delayS);
-    queue.sigmaS = grown(queue.sigmaS);
-    queue.extremeV = grown(queue.extremeV);
-    const wider = new Uint8Array(queue.at.length);
-    wider.set(queue.flags);
-    queue.flags = wider;
-  }
+  if (queue.count === queue.at.length) widenQueue(queue);
   return queue.count++;
+}
+
+function widenQueue(queue: EdgeQueue): void {
+  queue.at = grown(queue.at);
+  queue.midS = grown(queue.midS);
+  queue.delayS = grown(queue.delayS);
+  queue.sigmaS = grown(queue.sigmaS);
+  queue.extremeV = grown(queue.extremeV);
+  queue.flags = grownFlags(queue.flags);
 }

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { edgeLate, edgeRising } from '@/signal/pipeline-types';
-import { createDetector, runDetector, setThresholds } from '@/signal/detector';
+import { runDetector } from '@/signal/detector';
+import { createDetector, setThresholds } from '@/signal/detector-state';
 
 type Seen = { edges: [number, number, string][]; rejected: number[] };
 

@@ -9,15 +9,23 @@
  */
 import type { Band, BandLevels } from '@/signal/model';
 
-export type Levels = { lowV: number; highV: number };
+export type Levels = {
+  /** NaN: not known yet. */
+  lowV: number;
+  highV: number;
+  /** How far the signal came back through mid on a flank lately, V. */
+  wobbleV: number;
+};
 
 const share = 1 / 4;
 const shareOfWeak = 1 / 32;
 const mostOfSwing = 1 / 2;
 
-/** NaN: not known yet. */
 export function createLevels(): Levels {
-  return { lowV: NaN, highV: NaN };
+  // Numbers begin as fractions: a field that was ever a whole number changes its layout later.
+  const levels = { lowV: NaN, highV: NaN, wobbleV: NaN };
+  levels.wobbleV = 0;
+  return levels;
 }
 
 /**
@@ -39,17 +47,15 @@ export function followed(level: number, value: number, swingV: number, toothV: n
  * middle of the band five sigmas away from either point (Rice 1944: noise of the bandwidth f0 crosses there 3.7e-6 f0
  * times a second).
  * @param noiseV rms of the filtered signal's white noise; NaN: not known.
- * @param wobbleV how far the signal came back through mid on a flank lately.
  */
 export function fittedThresholds(
   levels: Levels,
   fractions: Extract<Band, { mode: 'fitted' }>,
   noiseV: number,
-  wobbleV: number,
 ): BandLevels {
   const swingV = levels.highV - levels.lowV;
   const narrowest = (fractions.operateFraction - fractions.releaseFraction) * swingV;
-  const noisy = Math.max(Number.isNaN(noiseV) ? 0 : 10 * noiseV, 1.5 * wobbleV);
+  const noisy = Math.max(Number.isNaN(noiseV) ? 0 : 10 * noiseV, 1.5 * levels.wobbleV);
   const wanted = Math.max(narrowest, Math.min(noisy, swingV / 2));
   const centreV = levels.lowV + ((fractions.operateFraction + fractions.releaseFraction) / 2) * swingV;
   return {

@@ -131,10 +131,11 @@ class SignalPipeline implements Pipeline {
     for (const columns of output.edges) columns.count = 0;
     for (const columns of output.rejected) columns.count = 0;
     output.speed.count = 0;
-    output.directions.length = 0;
-    output.bands.length = 0;
-    output.gaps.length = 0;
-    output.closedFindings.length = 0;
+    // Cutting a list costs as much as many samples, even where it is empty.
+    if (output.directions.length > 0) output.directions.length = 0;
+    if (output.bands.length > 0) output.bands.length = 0;
+    if (output.gaps.length > 0) output.gaps.length = 0;
+    if (output.closedFindings.length > 0) output.closedFindings.length = 0;
   }
 
   status(): PipelineStatus {

@@ -44,6 +44,11 @@ function supplyEnds({ sensor }: Channel): Pick<RailMeter, 'lowV' | 'highV' | 'fl
   return { lowV: 0.08 * sensor.supplyV, highV: 0.92 * sensor.supplyV, flatOnly: true };
 }
 
+/** True where one of some samples between `lowV` and `highV` stands at a rail. */
+export function touchesRails(meter: RailMeter, lowV: number, highV: number): boolean {
+  return highV >= meter.highV || lowV <= meter.lowV;
+}
+
 /** One raw sample, V, at stream index `at`. */
 export function watchRails(meter: RailMeter, volts: number, at: number): void {
   meter.checked++;

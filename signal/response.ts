@@ -71,36 +71,3 @@ export function noiseGain(sections: readonly Section[], rateHz: number): number 
   }
   return Math.sqrt(power / nyquist);
 }
-
-/**
- * Phase delay as a function of frequency, asked at every edge: a table on a grid of 1 % steps, filled where it is first
- * asked for, straight between its points.
- */
-export type DelayCurve = { sections: readonly Section[]; rateHz: number; tableS: Float64Array };
-
-const gridStep = Math.log(1.01);
-/** Lowest frequency of the grid, as a share of the rate. */
-const gridFrom = 1e-8;
-
-export function createDelayCurve(sections: readonly Section[], rateHz: number): DelayCurve {
-  const points = Math.ceil(Math.log(0.5 / gridFrom) / gridStep) + 1;
-  return { sections, rateHz, tableS: new Float64Array(sections.length === 0 ? 0 : points).fill(NaN) };
-}
-
-/** Phase delay at `hz`, s. */
-export function delayAt(curve: DelayCurve, hz: number): number {
-  const { tableS } = curve;
-  if (tableS.length === 0) return 0;
-  const place = Math.log(hz / (curve.rateHz * gridFrom)) / gridStep;
-  const limited = Math.min(Math.max(place, 0), tableS.length - 2.000001);
-  const below = Math.floor(limited);
-  if (Number.isNaN(tableS[below]!)) fillDelay(curve, below);
-  if (Number.isNaN(tableS[below + 1]!)) fillDelay(curve, below + 1);
-  const low = tableS[below]!;
-  return low + (tableS[below + 1]! - low) * (limited - below);
-}
-
-function fillDelay(curve: DelayCurve, index: number): void {
-  const hz = Math.min(0.4999, gridFrom * Math.exp(index * gridStep)) * curve.rateHz;
-  curve.tableS[index] = phaseDelayS(curve.sections, hz, curve.rateHz);
-}

@@ -1,0 +1,105 @@
+/**
+ * What a band remembers between samples, and the columns that its edges are written to.
+ */
+
+export const zones = {
+  unknown: 0,
+  low: 1,
+  lowUp: 2,
+  lowBack: 3,
+  high: 4,
+  highDown: 5,
+  highBack: 6,
+  hold: 7,
+} as const;
+
+export type Detector = {
+  zone: number;
+  operateV: number;
+  releaseV: number;
+  midV: number;
+  /** The trough so far (low) or the peak so far (high), V. */
+  extremeV: number;
+  /** How far an excursion through mid has come, V. */
+  reachV: number;
+  /** How far it then came back, V. */
+  backV: number;
+  /** Last mid crossing on the flank that leaves the present state, samples; NaN where none was seen. */
+  midAt: number;
+  /** Size of the step across that crossing, V a sample. */
+  midStepV: number;
+  holdSamples: number;
+  holdEndAt: number;
+  /** State during hold-off, and where a band without hold-off would be. */
+  high: boolean;
+  wouldBeHigh: boolean;
+  /** Stream index at which the scan pauses (nothing came for long); Infinity: never. */
+  pauseAt: number;
+  /** The scan returns after each edge, because new thresholds follow from it. */
+  pauseAtEdges: boolean;
+  /** Where edges are put; whoever runs the detector empties it. */
+  edges: RawEdges;
+};
+
+/** Edges as columns, in order; the first `count` are valid. Instants in samples on the stream's axis. */
+export type RawEdges = {
+  count: number;
+  at: Float64Array;
+  midAt: Float64Array;
+  midStepV: Float64Array;
+  extremeV: Float64Array;
+  /** As in `EdgeColumns`. */
+  flags: Uint8Array;
+};
+
+export type DetectorSink = {
+  /** @param reachV how far it came, V; NaN for a crossing that hold-off ate. @param rising true: towards operate. */
+  rejected(at: number, reachV: number, rising: boolean): void;
+  /** On a flank, or short of an edge, the signal came back through mid by `backV`. */
+  wobble(backV: number): void;
+};
+
+export function createDetector(holdSamples: number, pauseAtEdges: boolean): Detector {
+  return {
+    zone: zones.unknown,
+    operateV: NaN,
+    releaseV: NaN,
+    midV: NaN,
+    extremeV: NaN,
+    reachV: NaN,
+    backV: NaN,
+    midAt: NaN,
+    midStepV: NaN,
+    holdSamples,
+    holdEndAt: NaN,
+    high: false,
+    wouldBeHigh: false,
+    pauseAt: Infinity,
+    pauseAtEdges,
+    edges: createRawEdges(64),
+  };
+}
+
+export function createRawEdges(length: number): RawEdges {
+  return {
+    count: 0,
+    at: new Float64Array(length),
+    midAt: new Float64Array(length),
+    midStepV: new Float64Array(length),
+    extremeV: new Float64Array(length),
+    flags: new Uint8Array(length),
+  };
+}
+
+export function setThresholds(detector: Detector, operateV: number, releaseV: number): void {
+  detector.operateV = operateV;
+  detector.releaseV = releaseV;
+  detector.midV = (operateV + releaseV) / 2;
+}
+
+/** The band's state is unknown again: after a gap, or when levels were found anew. */
+export function forgetState(detector: Detector): void {
+  detector.zone = zones.unknown;
+  detector.midAt = NaN;
+  detector.midStepV = NaN;
+}

@@ -1,0 +1,122 @@
+/**
+ * What is learnt from a few raw samples only, so that it costs next to nothing: the noise from short bursts, rails and
+ * spread from every thirty-second sample. Which samples these are follows from their place in the stream.
+ */
+import type { Channel, SampleArray } from '@/signal/model';
+import { breakBurst, burstLength, createNoiseMeter, endBurst } from '@/signal/noise';
+import type { NoiseMeter } from '@/signal/noise';
+import { createRailMeter, railStride, touchesRails, watchRails } from '@/signal/rail-meter';
+import type { RailMeter } from '@/signal/rail-meter';
+import { holdsCodes, scaleOf } from '@/signal/scale';
+
+export class RawWatch {
+  readonly noise: NoiseMeter = createNoiseMeter();
+  rails: RailMeter | null = null;
+  /** Least and most volts of the samples looked at since `restartSpread`. */
+  spreadLowV = Infinity;
+  spreadHighV = -Infinity;
+  private readonly channel: Channel;
+  private readonly burstEvery: number;
+  /** Constructor of the arrays that come, and what turns their samples into volts. */
+  private kind: unknown = null;
+  private scale = { offset: 0, factor: 1 };
+  /** Least and most sample of a chunk, as they came. */
+  private readonly ends = new Float64Array(2);
+
+  constructor(channel: Channel, rateHz: number) {
+    this.channel = channel;
+    this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(4096, Math.max(32, rateHz / 8))));
+  }
+
+  restartSpread(): void {
+    this.spreadLowV = Infinity;
+    this.spreadHighV = -Infinity;
+  }
+
+  /** Samples were lost. */
+  gap(): void {
+    breakBurst(this.noise);
+    if (this.rails) this.rails.previousV = NaN;
+  }
+
+  /** Takes `array[from..to)`; the first is sample `at` of the stream. */
+  take(array: SampleArray, from: number, to: number, at: number): void {
+    if (array.constructor !== this.kind) this.learnKind(array);
+    this.feedNoise(array, from, to, at);
+    const first = from + ((railStride - (at % railStride)) % railStride);
+    if (first >= to) return;
+    const { ends, rails } = this;
+    const { offset, factor } = this.scale;
+    if (array instanceof Int16Array) endsOfCodes(array, first, to, ends);
+    else endsOf(array, first, to, ends);
+    const a = (ends[0]! - offset) * factor;
+    const b = (ends[1]! - offset) * factor;
+    const lowV = a < b ? a : b;
+    const highV = a < b ? b : a;
+    if (lowV < this.spreadLowV) this.spreadLowV = lowV;
+    if (highV > this.spreadHighV) this.spreadHighV = highV;
+    if (!rails) return;
+    if (touchesRails(rails, lowV, highV)) {
+      for (let i = first; i < to; i += railStride)
+        watchRails(rails, (array[i]! - offset) * factor, at + (i - from));
+    } else {
+      const count = Math.ceil((to - first) / railStride);
+      rails.checked += count;
+      rails.previousV = (array[first + (count - 1) * railStride]! - offset) * factor;
+    }
+  }
+
+  private learnKind(array: SampleArray): void {
+    this.kind = array.constructor;
+    this.scale = scaleOf(array, this.channel);
+    const codes = holdsCodes(array);
+    this.rails = createRailMeter(this.channel, codes);
+    if (!codes) return;
+    this.noise.quantumV = Math.abs(this.channel.voltsPerCode);
+    this.noise.quantumFixed = true;
+  }
+
+  private feedNoise(array: SampleArray, from: number, to: number, at: number): void {
+    const { burstEvery, noise, scale } = this;
+    let phase = at % burstEvery;
+    let i = from;
+    while (i < to) {
+      // A burst whose begin was not seen is left out.
+      if (phase < burstLength && (phase === 0 || noise.filled === phase)) {
+        const end = Math.min(to, i + burstLength - phase);
+        if (phase === 0) noise.filled = 0;
+        phase += end - i;
+        for (; i < end; i++) noise.burst[noise.filled++] = (array[i]! - scale.offset) * scale.factor;
+        if (noise.filled === burstLength) endBurst(noise);
+      } else {
+        i += burstEvery - phase;
+        phase = 0;
+      }
+    }
+  }
+}
+
+/** Of the commonest kind, apart from the others: a loop that sees several kinds of array is slow, and whole numbers are quick. */
+function endsOfCodes(array: Int16Array, first: number, to: number, ends: Float64Array): void {
+  let least = array[first]!;
+  let most = least;
+  for (let i = first + railStride; i < to; i += railStride) {
+    const x = array[i]!;
+    if (x < least) least = x;
+    else if (x > most) most = x;
+  }
+  ends[0] = least;
+  ends[1] = most;
+}
+
+function endsOf(array: SampleArray, first: number, to: number, ends: Float64Array): void {
+  let least = array[first]!;
+  let most = least;
+  for (let i = first + railStride; i < to; i += railStride) {
+    const x = array[i]!;
+    if (x < least) least = x;
+    else if (x > most) most = x;
+  }
+  ends[0] = least;
+  ends[1] = most;
+}
