@@ -18,7 +18,7 @@ test('keep, tag, and find it again on the Shelf', async ({ page }, { project }) 
   const sheet = page.getByRole('dialog', { name: /^Kept: / });
   await sheet.getByLabel('Title').fill(title);
   await sheet.getByLabel(/^Tags/).fill(tag);
-  await sheet.getByRole('button', { name: 'Add tag' }).click();
+  await sheet.getByRole('button', { name: 'Add tag', exact: true }).click();
   await expect(sheet.getByRole('button', { name: `Take off tag ${tag}` })).toBeVisible();
   await sheet.getByLabel(/^Note/).fill('Gap 1.25 mm by feeler gauge, pump running, zephyrwort line.');
   await expectSound(page);
