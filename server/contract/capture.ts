@@ -60,7 +60,11 @@ export const capture = z
     channels: z.array(z.string()),
     /** Worst findings of the kept settings, for lists; newest analysis. */
     findings: z.array(
-      z.object({ code: z.enum(findingCodes), severity: z.enum(['note', 'warn', 'fault']), count: z.number().int() }),
+      z.object({
+        code: z.enum(findingCodes),
+        severity: z.enum(['note', 'warn', 'fault']),
+        count: z.number().int(),
+      }),
     ),
   })
   .meta({ id: 'Capture' });

@@ -74,6 +74,8 @@ export const ribbon = z.object({
   toS: z.number(),
   /** What stands at the right edge. */
   anchor: z.enum(['edge', 'now']),
+  /** What the lanes show: volts as they came, or what the band sees behind a filter that takes the level away. */
+  signal: z.enum(['raw', 'filtered']),
   /**
    * Column i of every lane stands at `firstS + i * stepS` (the middle of its samples): real sample instants, so that
    * the first and last may lie just outside `fromS`..`toS`; clip the drawing to the window.
@@ -104,7 +106,9 @@ export const ribbon = z.object({
     }),
   ),
   rejected: z.array(z.object({ channel: z.string(), t: z.number() })),
-  gaps: z.array(z.object({ from: z.number(), to: z.number(), lostSamples: z.number(), estimated: z.boolean() })),
+  gaps: z.array(
+    z.object({ from: z.number(), to: z.number(), lostSamples: z.number(), estimated: z.boolean() }),
+  ),
 });
 export type Ribbon = z.infer<typeof ribbon>;
 
@@ -116,6 +120,8 @@ export const ribbonWish = z.object({
   teeth: z.number().min(1).max(200).optional(),
   spanS: z.number().min(0.0005).max(60).optional(),
   columns: z.number().int().min(16).max(2000),
+  /** Stream time to stand around, instead of following the newest edge; the hub holds some twenty seconds. */
+  atS: z.number().optional(),
   anchor: z.enum(['edge', 'now']).default('edge'),
 });
 export type RibbonWish = z.input<typeof ribbonWish>;

@@ -80,7 +80,11 @@ function checkRig(rig: z.infer<typeof rigFields>, report: z.RefinementCtx) {
     });
   }
   if (rig.sensing === 'width-coded' && rig.wheel.widthClasses === null) {
-    report.addIssue({ code: 'custom', path: ['wheel', 'widthClasses'], message: 'width-coded sensing needs widths' });
+    report.addIssue({
+      code: 'custom',
+      path: ['wheel', 'widthClasses'],
+      message: 'width-coded sensing needs widths',
+    });
   }
   rig.channels.forEach((c, i) => {
     if (c.minCode !== null && c.maxCode !== null && c.minCode >= c.maxCode) {

@@ -149,7 +149,7 @@ export function createHub(options: HubOptions): RunningHub {
     },
     ribbon(rigId: string, wish: RibbonWish): Ribbon | null {
       const rig = session(rigId);
-      return rig === null || rig.live === null ? null : ribbonOf(rig.live, rig.setup, wish);
+      return rig === null || rig.live === null ? null : ribbonOf(rig.live, rig.setup, rig.filter, wish);
     },
     wheelFace: (rigId): NonNullable<LiveFrame['wheelFace']> | null =>
       session(rigId)?.live?.status()?.wheelFace ?? null,

@@ -1,7 +1,8 @@
 /** Turns the state of a rig into what viewers get: pure, called at most some tens of times a second. */
 import type { Live, Ribbon, RibbonWish } from '@/server/contract';
-import type { RigSetup } from '@/signal/model';
+import type { Channel, Filter, RigSetup } from '@/signal/model';
 import type { PipelineStatus } from '@/signal/pipeline-types';
+import { filteredColumns, takesLevelAway } from '@/server/hub/filtered-columns';
 import type { LiveSignal } from '@/server/hub/live-signal';
 import { markForward, markReverse, markRising } from '@/server/hub/live-signal';
 
@@ -80,6 +81,7 @@ function windowOf(
   const toothHz = status?.toothHz ?? null;
   const steady = status?.state === 'running' && toothHz !== null && toothHz > 0;
   const spanS = wish.spanS ?? (steady ? (wish.teeth ?? defaultTeeth) / toothHz : freeRunningS);
+  if (wish.atS !== undefined) return { toS: wish.atS + spanS / 2, spanS, anchor: 'now' };
   if (wish.anchor === 'now' || !steady) return { toS: nowS, spanS, anchor: 'now' };
   const lastRising = signal.edges[signal.primary]
     ?.between(nowS - 4 / toothHz, nowS)
@@ -88,11 +90,17 @@ function windowOf(
   return last === undefined ? { toS: nowS, spanS, anchor: 'now' } : { toS: last.t, spanS, anchor: 'edge' };
 }
 
-export function ribbonOf(signal: LiveSignal, setup: RigSetup, wish: RibbonWish): Ribbon {
+export function ribbonOf(
+  signal: LiveSignal,
+  setup: RigSetup,
+  filter: Filter | Filter[],
+  wish: RibbonWish,
+): Ribbon {
   const status = signal.status();
   const { toS, spanS, anchor } = windowOf(signal, status, wish);
   const fromS = toS - spanS;
   const { rateHz } = signal;
+  const filtered = signal.pipeline !== null && takesLevelAway(filter);
   // A window that free-runs keeps its columns on fixed sample groups, else the trace shimmers.
   const group = Math.max(1, Math.ceil((spanS * rateHz) / wish.columns));
   const firstIndex = Math.floor((fromS * rateHz) / group) * group;
@@ -101,10 +109,17 @@ export function ribbonOf(signal: LiveSignal, setup: RigSetup, wish: RibbonWish):
     of.flatMap((marksOfChannel, i) =>
       marksOfChannel.between(fromS, toS).map((mark) => ({ channel: signal.channels[i] as string, ...mark })),
     );
+  const columnsOf = (recent: LiveSignal['signals'][number] | undefined, channel: Channel | undefined) => {
+    if (recent === undefined || channel === undefined) return { min: [], max: [] };
+    return filtered
+      ? filteredColumns(recent, channel, filter, rateHz, firstIndex, group, count)
+      : recent.columns(firstIndex, group, count);
+  };
   return {
     fromS,
     toS,
     anchor,
+    signal: filtered ? 'filtered' : 'raw',
     firstS: (firstIndex + (group - 1) / 2) / rateHz,
     stepS: group / rateHz,
     lanes: signal.channels.map((name, i) => {
@@ -116,13 +131,13 @@ export function ribbonOf(signal: LiveSignal, setup: RigSetup, wish: RibbonWish):
       const known = rails.filter((v) => v !== null);
       return {
         channel: name,
-        ...(signal.signals[i]?.columns(firstIndex, group, count) ?? { min: [], max: [] }),
+        ...columnsOf(signal.signals[i], channel),
         lowV: state?.lowV ?? null,
         highV: state?.highV ?? null,
         operateV: state?.operateV ?? null,
         releaseV: state?.releaseV ?? null,
-        clipLowV: known.length === 2 ? Math.min(...known) : null,
-        clipHighV: known.length === 2 ? Math.max(...known) : null,
+        clipLowV: known.length === 2 && !filtered ? Math.min(...known) : null,
+        clipHighV: known.length === 2 && !filtered ? Math.max(...known) : null,
       };
     }),
     edges: marks(signal.edges).map(({ channel, t, flags }) => ({

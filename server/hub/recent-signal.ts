@@ -4,6 +4,7 @@
  */
 import type { SampleArray } from '@/signal/model';
 
+export type Columns = { min: (number | null)[]; max: (number | null)[] };
 export type Scaling = { voltsPerCode: number; codeOffset: number };
 
 const firstRing = 4096;
@@ -89,6 +90,27 @@ export class RecentSignal {
     return this.#stretches[0]?.fromIndex;
   }
 
+  /** Copies of the runs without a gap that lie in `fromIndex` to `toIndex` (exclusive), oldest first. */
+  read(fromIndex: number, toIndex: number): { startIndex: number; samples: SampleArray }[] {
+    const ring = this.#ring;
+    if (ring === undefined) return [];
+    const runs: { startIndex: number; samples: SampleArray }[] = [];
+    for (const stretch of this.#stretches) {
+      const from = Math.max(stretch.fromIndex, fromIndex);
+      const to = Math.min(stretch.toIndex, toIndex);
+      if (to <= from) continue;
+      const samples = like(ring, to - from);
+      for (let done = 0; done < to - from;) {
+        const at = (stretch.ringAt + (from - stretch.fromIndex) + done) % this.capacity;
+        const count = Math.min(to - from - done, this.capacity - at);
+        samples.set(ring.subarray(at, at + count) as never, done);
+        done += count;
+      }
+      runs.push({ startIndex: from, samples });
+    }
+    return runs;
+  }
+
   /**
    * Lowest and highest volts of groups of `group` samples, group i from index `firstIndex + i * group` on; null where
    * a group holds no sample.
@@ -129,8 +151,8 @@ export class RecentSignal {
         const soFarLow = min[column];
         const soFarHigh = max[column];
         // Two stretches may meet in one column.
-        min[column] = soFarLow == null ? round(lowV) : Math.min(soFarLow, round(lowV));
-        max[column] = soFarHigh == null ? round(highV) : Math.max(soFarHigh, round(highV));
+        min[column] = soFarLow == null ? roundVolts(lowV) : Math.min(soFarLow, roundVolts(lowV));
+        max[column] = soFarHigh == null ? roundVolts(highV) : Math.max(soFarHigh, roundVolts(highV));
       }
     }
     return { min, max };
@@ -138,6 +160,6 @@ export class RecentSignal {
 }
 
 /** 10 microvolts are far below a pixel, and halve the frame. */
-function round(volts: number): number {
+export function roundVolts(volts: number): number {
   return Math.abs(volts) < 0.1 ? Math.round(volts * 1e7) / 1e7 : Math.round(volts * 1e5) / 1e5;
 }

@@ -49,6 +49,10 @@ export class RigSession implements StreamEvents {
     return this.rig.setup;
   }
 
+  get filter(): HubRig['settings']['filter'] {
+    return this.rig.settings.filter;
+  }
+
   get settingsVersion(): number {
     return this.rig.settingsVersion;
   }

@@ -1,4 +1,4 @@
-import fc from 'fast-check';
+import * as fc from 'fast-check';
 import { afterEach, describe, expect, it } from 'vitest';
 import { openDatabases } from '@/db/open';
 import type { Databases } from '@/db/open';

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { hubAddress, isLocalOnly } from '@/client/screens/connect/hub-address';
+import { firstAddress, hubAddress, isLocalOnly } from '@/client/screens/connect/hub-address';
 
 describe('hubAddress', () => {
   it.each([
@@ -29,5 +29,13 @@ describe('isLocalOnly', () => {
     const local = ['http://localhost:4680', 'http://127.0.0.1', 'http://127.1.2.3:80', 'http://[::1]:4680'];
     expect(local.every(isLocalOnly)).toBe(true);
     expect(['http://192.168.0.12', 'https://localhost.example'].some(isLocalOnly)).toBe(false);
+  });
+});
+
+describe('firstAddress', () => {
+  it('is never localhost where the hub knows better', () => {
+    expect(firstAddress('http://localhost:4680', ['http://10.0.0.5:4680'])).toBe('http://10.0.0.5:4680');
+    expect(firstAddress('http://localhost:4680', [])).toBe('http://localhost:4680');
+    expect(firstAddress('https://lab.example', ['http://10.0.0.5:4680'])).toBe('https://lab.example');
   });
 });

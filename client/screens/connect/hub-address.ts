@@ -20,3 +20,8 @@ export function isLocalOnly(origin: string): boolean {
     /^127\./.test(hostname)
   );
 }
+
+/** What stands in the field at first: an address that a board can reach, where one is known. */
+export function firstAddress(pageOrigin: string, hubAddresses: readonly string[]): string {
+  return isLocalOnly(pageOrigin) ? (hubAddresses[0] ?? pageOrigin) : pageOrigin;
+}

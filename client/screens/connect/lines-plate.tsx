@@ -8,8 +8,9 @@ import { Segmented } from '@/client/components/segmented';
 import { WarnShape } from '@/client/components/shapes';
 import { Text } from '@/client/components/text';
 import { TextField } from '@/client/components/text-field';
+import { useHubInfo } from '@/client/data/hub-info';
 import { CopyButton } from '@/client/screens/connect/copy-button';
-import { hubAddress, isLocalOnly } from '@/client/screens/connect/hub-address';
+import { firstAddress, hubAddress, isLocalOnly } from '@/client/screens/connect/hub-address';
 import { rateWords } from '@/client/screens/connect/checklist';
 import { curlSnippet, nodeSnippet } from '@/client/screens/connect/snippets';
 import { testSignal } from '@/client/screens/connect/test-signal';
@@ -28,7 +29,9 @@ const tools = [
 /** Lines to paste into a shell, for this rig, this hub and this key. */
 export function LinesPlate({ rig, rigKey }: { rig: Rig; rigKey: string | null }) {
   const [tool, setTool] = useState<'node' | 'curl'>('node');
-  const [typed, setTyped] = useState(() => window.location.origin);
+  const info = useHubInfo();
+  const [edited, setTyped] = useState<string | null>(null);
+  const typed = edited ?? firstAddress(window.location.origin, info.data?.addresses ?? []);
   const hub = hubAddress(typed);
   const signal = testSignal(rig);
   const shared = { hub: hub ?? '', key: rigKey ?? noKey, signal };

@@ -121,6 +121,7 @@ export function demoFrame(options: DemoOptions): LiveFrame {
       fromS,
       toS,
       anchor: 'edge',
+      signal: 'raw',
       firstS: fromS,
       stepS,
       lanes,

@@ -16,6 +16,7 @@ const ribbon = {
   fromS: 1,
   toS: 2,
   anchor: 'edge' as const,
+  signal: 'raw' as const,
   firstS: 1,
   stepS: 0.1,
   lanes: [lane],

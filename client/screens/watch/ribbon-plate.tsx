@@ -13,6 +13,8 @@ type RibbonPlateProps = {
   /** "held at 13:52:07", or null while live. */
   heldText: string | null;
   held: boolean;
+  /** The lanes show what the band sees: the filter takes the level away. */
+  filtered: boolean;
   isLive: boolean;
   focus: string | null;
   onFocus: (channel: string) => void;
@@ -27,6 +29,7 @@ export function RibbonPlate({
   anchor,
   heldText,
   held,
+  filtered,
   isLive,
   focus,
   onFocus,
@@ -38,7 +41,8 @@ export function RibbonPlate({
   const crowded = count > (wide ? 4 : 2);
   const focused = crowded ? (focus ?? data?.lanes[0]?.channel ?? null) : focus;
   const height = crowded ? 200 + 44 * (count - 1) + 68 : Math.max(2, count) * 128 + 68;
-  const how = heldText ?? (anchor === 'edge' ? 'still on the tooth' : 'free-running');
+  const stance = heldText ?? (anchor === 'edge' ? 'still on the tooth' : 'free-running');
+  const how = filtered ? `filtered · ${stance}` : stance;
   return (
     <Plate
       role="region"

@@ -1,13 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import {
-  canStep,
-  firstSpan,
-  spanHolding,
-  spanText,
-  stepSpan,
-  switchUnit,
-  wishOf,
-} from '@/client/screens/watch/span';
+import { canStep, firstSpan, spanText, stepSpan, switchUnit, wishOf } from '@/client/screens/watch/span';
 
 describe('span', () => {
   it('starts with 4 to 8 teeth, still on the tooth', () => {
@@ -26,9 +18,9 @@ describe('span', () => {
     expect(spanText(time)).toBe('10 ms');
     expect(wishOf(stepSpan(time, 1), 900)).toEqual({ spanS: 0.02, columns: 900, anchor: 'edge' });
   });
-  it('reaches back to an instant, up to a minute', () => {
-    expect(spanHolding(firstSpan, 3)).toMatchObject({ unit: 'time', spanS: 5, anchor: 'now' });
-    expect(spanHolding(firstSpan, 300).spanS).toBe(60);
+  it('asks for a stretch around an instant only where one is wanted', () => {
+    expect(wishOf(firstSpan, 300, 12.5)).toMatchObject({ teeth: 7, atS: 12.5 });
+    expect(wishOf(firstSpan, 300)).not.toHaveProperty('atS');
   });
   it('keeps the wish within what the hub takes', () => {
     expect(wishOf(firstSpan, 9000).columns).toBe(2000);

@@ -31,11 +31,6 @@ export function canStep(span: Span, way: 1 | -1): boolean {
   return next.teeth !== span.teeth || next.spanS !== span.spanS;
 }
 
-/** The shortest step that holds so many seconds. */
-export function spanHolding(span: Span, atLeastS: number): Span {
-  return { ...span, unit: 'time', spanS: timeSteps.find((s) => s >= atLeastS) ?? 60, anchor: 'now' };
-}
-
 /** To the other unit, at about the span that is shown now. */
 export function switchUnit(span: Span, shownS: number | null): Span {
   if (span.unit === 'time') return { ...span, unit: 'teeth' };
@@ -44,10 +39,10 @@ export function switchUnit(span: Span, shownS: number | null): Span {
 }
 
 /** What the hub is asked for: as many columns as the drawing has px, in steps, so that a resize is no flood. */
-export function wishOf(span: Span, widthPx: number): RibbonWish {
+export function wishOf(span: Span, widthPx: number, aroundS: number | null = null): RibbonWish {
   const columns = Math.min(2000, Math.max(100, Math.ceil(widthPx / 100) * 100));
   const stretch = span.unit === 'teeth' ? { teeth: span.teeth } : { spanS: span.spanS };
-  return { ...stretch, columns, anchor: span.anchor };
+  return { ...stretch, columns, anchor: span.anchor, ...(aroundS === null ? {} : { atS: aroundS }) };
 }
 
 export function spanText(span: Span): string {

@@ -1,7 +1,7 @@
 import { useState } from 'react';
 import type { LiveFrame } from '@/server/contract';
 import type { Finding } from '@/signal/model';
-import { canStep, firstSpan, spanHolding, stepSpan, switchUnit } from '@/client/screens/watch/span';
+import { canStep, firstSpan, stepSpan, switchUnit } from '@/client/screens/watch/span';
 import type { Span } from '@/client/screens/watch/span';
 
 /** Faults of the wheel come once a turn: a whole turn must be in sight to see them. */
@@ -13,7 +13,8 @@ const oncePerTurn = new Set([
   'extra-pulse',
   'duty-shift',
 ]);
-const oldestS = 55;
+/** How far back the hub still holds the signal tooth by tooth, s; a little less, since the answer takes a while. */
+const oldestS = 18;
 
 export type WatchControls = ReturnType<typeof useWatchControls>;
 
@@ -24,6 +25,8 @@ export function useWatchControls() {
   const [focus, setFocus] = useState<string | null>(null);
   const [markS, setMarkS] = useState<number | null>(null);
   const [far, setFar] = useState(false);
+  /** Stream time that was asked for and has not come yet. */
+  const [aroundS, setAroundS] = useState<number | null>(null);
 
   const shown = (frame: LiveFrame | null) => {
     const ribbon = frame?.ribbon;
@@ -35,9 +38,18 @@ export function useWatchControls() {
     focus,
     markS,
     far,
+    aroundS,
     setFar,
     setFocus,
+    /** Call while rendering: the picture that was asked for is held as soon as it comes. */
+    arrived: (frame: LiveFrame | null) => {
+      const ribbon = frame?.ribbon;
+      if (aroundS === null || !ribbon || aroundS < ribbon.fromS || aroundS > ribbon.toS) return;
+      setHeld(frame);
+      setAroundS(null);
+    },
     hold: (frame: LiveFrame | null) => {
+      setAroundS(null);
       setHeld(held ? null : frame);
       if (held) setMarkS(null);
     },
@@ -67,7 +79,7 @@ export function useWatchControls() {
         return true;
       }
       if (streamS === null || streamS - finding.at > oldestS) return false;
-      setSpan(spanHolding(span, (streamS - finding.at) * 1.2 + 0.5));
+      setAroundS(finding.at);
       return true;
     },
   };

@@ -67,13 +67,14 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
     data,
     anchor: drawn?.ribbon?.anchor ?? 'now',
     heldText: controls.held
-      ? `held at ${clockText(controls.held.at)}`
+      ? `held at ${clockText(instantOf(controls.held))}`
       : now.isLive
         ? null
         : data
           ? 'not live'
           : null,
     held: controls.held !== null,
+    filtered: drawn?.ribbon?.signal === 'filtered',
     isLive: now.isLive,
     focus: controls.focus,
     onFocus: controls.setFocus,
@@ -142,4 +143,10 @@ function SetupProblem({ text }: { text: string }) {
       </Text>
     </Plate>
   );
+}
+
+/** When the right edge of a frame's picture was, on the wall clock. */
+function instantOf({ at, live, ribbon }: LiveFrame): string {
+  const agoS = live.streamS === null || ribbon === null ? 0 : Math.max(0, live.streamS - ribbon.toS);
+  return new Date(Date.parse(at) - 1000 * agoS).toISOString();
 }

@@ -43,9 +43,10 @@ function LiveWatch({ rig }: { rig: Rig }) {
   const { width } = useWindowDimensions();
   const controls = useWatchControls();
   const view = useLiveRig(rig.id, {
-    ribbon: wishOf(controls.span, (wide ? width - 880 : width - 120) * columnsPerPx),
+    ribbon: wishOf(controls.span, (wide ? width - 880 : width - 120) * columnsPerPx, controls.aroundS),
     detail: true,
   });
+  controls.arrived(view.frame);
   const nowMs = useNow(250);
   const settings = useSettings(rig.id);
   const keeping = useKeeping(rig.id);
