@@ -9,7 +9,7 @@ export const signalCase = {
   operateV: 0.2,
   releaseV: -0.2,
   teeth: 60,
-  samples: 4_000_000,
+  samples: 2_000_000,
   block: 512,
 } as const;
 

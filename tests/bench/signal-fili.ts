@@ -1,7 +1,8 @@
 /** The same work with fili's own `singleStep` and a plain edge loop. Prints JSON. */
 import * as filiModule from 'fili';
 import { signalCase } from '@/tests/bench/signal-data';
-import { timePasses } from '@/tests/bench/time-passes';
+import { readCodes, timePasses } from '@/tests/bench/signal-passes';
+import type { PassResult } from '@/tests/bench/signal-passes';
 
 type SingleStep = { singleStep(volts: number): number };
 type Fili = {
@@ -11,7 +12,9 @@ type Fili = {
 const module = filiModule as unknown as { default?: Fili } & Fili;
 const Fili = module.default ?? module;
 
-function pass(codes: Int16Array): { edges: number; speedSum: number } {
+const codes = readCodes();
+
+function pass(): PassResult {
   const { rateHz, cutoffHz, voltsPerCode, operateV, releaseV, teeth } = signalCase;
   const params = { order: 2, characteristic: 'butterworth', Fs: rateHz, Fc: cutoffHz };
   const filter = new Fili.IirFilter(new Fili.CalcCascades().lowpass(params));
@@ -36,4 +39,4 @@ function pass(codes: Int16Array): { edges: number; speedSum: number } {
   return { edges, speedSum };
 }
 
-timePasses(pass);
+timePasses(codes.length, pass);

@@ -1,53 +1,36 @@
-/** Timed passes of our signal path over the codes in a file. Prints JSON. */
+/**
+ * Timed passes of the whole signal path (findings, wheel face and all) over the codes in a file; of two channels where
+ * `2` follows. Prints JSON.
+ */
 import { createPipeline } from '@/signal/pipeline';
 import { edgeRising } from '@/signal/pipeline-types';
-import type { RigSetup, Settings } from '@/signal/model';
 import { signalCase } from '@/tests/bench/signal-data';
-import { timePasses } from '@/tests/bench/time-passes';
+import { inBlocks, quarterLater, readCodes, timePasses } from '@/tests/bench/signal-passes';
+import type { PassResult } from '@/tests/bench/signal-passes';
+import { benchRig, benchSettings } from '@/tests/bench/signal-setup';
 
-const { rateHz, cutoffHz, voltsPerCode, operateV, releaseV, teeth, block } = signalCase;
-const rig: RigSetup = {
-  sensing: 'single',
-  wheel: { pulsesPerTurn: teeth, missingPulses: 0, gearRatio: 1, widthClasses: null },
-  channels: [
-    {
-      name: 'A',
-      role: 'A',
-      voltsPerCode,
-      codeOffset: 0,
-      minCode: -32768,
-      maxCode: 32767,
-      maxInputV: null,
-      sensor: {
-        kind: 'linear',
-        supplyV: null,
-        quiescentV: null,
-        sensitivityMvPerMt: null,
-        activeLow: false,
-        operateMt: null,
-        releaseMt: null,
-      },
-    },
-  ],
-  expectedDirection: null,
-  ratedRpm: null,
-};
-const settings: Settings = {
-  filter: { kind: 'lowpass', family: 'butterworth', order: 4, cutoffHz },
-  band: { mode: 'fixed', operateV, releaseV },
-  holdoffS: 0,
-  speed: { method: 'tooth', windowS: 0.1, stoppedAfterS: 2 },
-};
+const codes = readCodes();
+const isPair = process.argv[3] === '2';
+const rig = benchRig(isPair ? 2 : 1);
+const channels = rig.channels.map(({ name }) => name);
+const a = inBlocks(codes);
+const b = inBlocks(quarterLater(codes));
+const arrays = a.map((block, i) => (isPair ? [block, b[i] ?? block] : [block]));
 
-function pass(codes: Int16Array): { edges: number; speedSum: number } {
-  const built = createPipeline({ rig, settings, rateHz, channels: ['A'], startIndex: 0 });
+function pass(): PassResult {
+  const built = createPipeline({
+    rig,
+    settings: benchSettings,
+    rateHz: signalCase.rateHz,
+    channels,
+    startIndex: 0,
+  });
   if (!built.ok) throw new Error(built.issue.detail);
   const pipeline = built.value;
   let edges = 0;
   let speedSum = 0;
-  for (let at = 0; at < codes.length; at += block) {
-    const part = codes.subarray(at, at + block);
-    pipeline.process([part], part.length);
+  for (const blocks of arrays) {
+    pipeline.process(blocks, blocks[0]?.length ?? 0);
     const found = pipeline.output.edges[0];
     if (found) for (let i = 0; i < found.count; i += 1) if ((found.flags[i] ?? 0) & edgeRising) edges += 1;
     const { count, rpm } = pipeline.output.speed;
@@ -57,4 +40,4 @@ function pass(codes: Int16Array): { edges: number; speedSum: number } {
   return { edges, speedSum };
 }
 
-timePasses(pass);
+timePasses(codes.length, pass);

@@ -1,13 +1,14 @@
-/** The signal path against a C program of the same work and against fili's own filter. */
+/** The signal path against a C program of the same work, against fili's own filter, and against its own bare loop. */
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { loadavg, tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { runForJson, runTypeScript } from '@/tests/bench/child';
-import { heading, interleave, line, median, ratios } from '@/tests/bench/rounds';
-import { timedPasses } from '@/tests/bench/time-passes';
+import { heading, line, median, ratios } from '@/tests/bench/rounds';
 import { makeCodes, signalCase } from '@/tests/bench/signal-data';
+import { timedPasses } from '@/tests/bench/signal-passes';
 
 type Pass = { nsPerSample: number; edges: number; speedSum: number };
+type Variant = 'c' | 'parts' | 'path' | 'fili' | 'bareTwo' | 'pathTwo';
 
 export async function benchSignal(rounds: number): Promise<void> {
   const folder = mkdtempSync(join(tmpdir(), 'turnmark-bench-'));
@@ -19,29 +20,55 @@ export async function benchSignal(rounds: number): Promise<void> {
     await runForJson('sh', ['-c', `gcc -O2 -o "$0" tests/bench/c/signal-path.c -lm && echo {}`, program]);
     const { rateHz, cutoffHz, voltsPerCode, operateV, releaseV, teeth } = signalCase;
     const numbers = [rateHz, cutoffHz, voltsPerCode, operateV, releaseV, teeth, timedPasses].map(String);
-    const found = await interleave<Pass>(rounds, {
+    const variants: Record<Variant, () => Promise<Pass>> = {
       c: () => runForJson(program, [data, ...numbers]),
-      ours: () => runTypeScript('tests/bench/signal-ours.ts', [data]),
+      parts: () => runTypeScript('tests/bench/signal-parts.ts', [data]),
+      path: () => runTypeScript('tests/bench/signal-ours.ts', [data]),
       fili: () => runTypeScript('tests/bench/signal-fili.ts', [data]),
-    });
-    print(rounds, found.c ?? [], found.ours ?? [], found.fili ?? []);
+      bareTwo: () => runTypeScript('tests/bench/signal-parts.ts', [data, '2']),
+      pathTwo: () => runTypeScript('tests/bench/signal-ours.ts', [data, '2']),
+    };
+    print(rounds, await thereAndBack(rounds, variants));
   } finally {
     rmSync(folder, { recursive: true, force: true });
   }
 }
 
-function print(rounds: number, c: Pass[], ours: Pass[], fili: Pass[]): void {
-  const ns = (passes: Pass[]) => passes.map((pass) => pass.nsPerSample);
+/** Every variant once a round, each in a process of its own; every other round backwards. */
+async function thereAndBack(
+  rounds: number,
+  variants: Record<Variant, () => Promise<Pass>>,
+): Promise<Record<Variant, Pass[]>> {
+  const found: Record<Variant, Pass[]> = { c: [], parts: [], path: [], fili: [], bareTwo: [], pathTwo: [] };
+  const order = Object.keys(variants) as Variant[];
+  for (let round = 0; round < rounds; round += 1) {
+    for (const name of round % 2 === 0 ? order : order.toReversed()) found[name].push(await variants[name]());
+  }
+  return found;
+}
+
+function print(rounds: number, found: Record<Variant, Pass[]>): void {
+  const ns = (name: Variant) => found[name].map((pass) => pass.nsPerSample);
+  const ratio = (upper: Variant, lower: Variant) => ratios(ns(upper), ns(lower));
+  const show = (label: string, name: Variant) => line(label, `${median(ns(name)).toFixed(2)} ns/sample`);
   heading(
-    `Signal path: 4th order, band, edges, speed; one channel, int16 (${rounds} interleaved rounds, CPU time)`,
+    `Signal path: 4th order, band, edges, speed; int16 (${rounds} interleaved rounds, CPU time of the fastest of ` +
+      `${timedPasses} passes, load ${loadavg()[0]?.toFixed(1)})`,
   );
-  line('C, gcc -O2', `${median(ns(c)).toFixed(2)} ns/sample`);
-  line('ours', `${median(ns(ours)).toFixed(2)} ns/sample`);
-  line('fili singleStep and a plain edge loop', `${median(ns(fili)).toFixed(2)} ns/sample`);
-  line('ours / C', ratios(ns(ours), ns(c)), 'at most 1.8, aim 1.5');
-  line('fili / ours', ratios(ns(fili), ns(ours)), 'at least 3');
-  line('edges: C, ours, fili', [c, ours, fili].map((passes) => passes[0]?.edges).join(', '));
-  line('mean speed: C, ours, fili, rpm', [c, ours, fili].map((p) => meanRpm(p[0])).join(', '));
+  show('C, gcc -O2', 'c');
+  show('the same work by our parts', 'parts');
+  show('the whole path, one channel', 'path');
+  show('fili singleStep and a plain edge loop', 'fili');
+  show('filter and band, two channels', 'bareTwo');
+  show('the whole path, two channels', 'pathTwo');
+  line('the same work: ours / C', ratio('parts', 'c'), 'at most 1.8, aim 1.5');
+  line('the same work: fili / ours', ratio('fili', 'parts'), 'at least 3');
+  line('the whole path / C', ratio('path', 'c'));
+  line('fili / the whole path', ratio('fili', 'path'));
+  line('two channels: the whole path / filter and band', ratio('pathTwo', 'bareTwo'), 'at most 2.5');
+  const same: Variant[] = ['c', 'parts', 'path', 'fili'];
+  line('edges: C, parts, path, fili', same.map((name) => found[name][0]?.edges).join(', '));
+  line('mean speed of these, rpm', same.map((name) => meanRpm(found[name][0])).join(', '));
 }
 
 function meanRpm(pass: Pass | undefined): string {
