@@ -162,8 +162,10 @@ export function createHub(options: HubOptions): RunningHub {
     watch: (rigId, news) => session(rigId)?.watchNews(news) ?? (() => undefined),
 
     async planKeep(rigId, what) {
+      const intake = 'lastSeconds' in what ? session(rigId)?.newest : null;
+      const newest = intake ? { stream: intake.name, endIndex: await intake.whenOrdered() } : undefined;
       committer.flush();
-      return planKeep(spool, rigId, what);
+      return planKeep(spool, rigId, what, newest);
     },
     hold(plan) {
       held.add(plan);

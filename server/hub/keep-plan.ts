@@ -7,16 +7,23 @@ type Wish = { lastSeconds: number } | { stream: string; fromS: number; toS: numb
 /**
  * `lastSeconds` counts back from the newest stored sample of the stream that had the newest block, and never reaches
  * into an older stream. null: nothing of it is held.
+ * @param newest where that sample was when Keep was pressed, if samples of that stream came in the meantime.
  */
-export function planKeep(spool: Spool, rigId: string, wish: Wish): KeepPlan | null {
+export function planKeep(
+  spool: Spool,
+  rigId: string,
+  wish: Wish,
+  newest?: { stream: string; endIndex: number },
+): KeepPlan | null {
   const stream = 'stream' in wish ? spool.findStream(rigId, wish.stream) : spool.newestStream(rigId);
   if (stream === null) return null;
   const oldest = spool.oldestIndex(stream.streamId);
   if (oldest === null) return null;
+  const end = newest?.stream === stream.name ? newest.endIndex : stream.nextIndex;
   const wanted =
     'stream' in wish
       ? { from: Math.round(wish.fromS * stream.rateHz), to: Math.round(wish.toS * stream.rateHz) }
-      : { from: Math.round(stream.nextIndex - wish.lastSeconds * stream.rateHz), to: stream.nextIndex };
+      : { from: Math.round(end - wish.lastSeconds * stream.rateHz), to: end };
   const fromIndex = Math.max(oldest, wanted.from);
   const toIndex = Math.min(stream.nextIndex, wanted.to);
   if (toIndex <= fromIndex) return null;

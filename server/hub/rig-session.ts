@@ -105,7 +105,10 @@ export class RigSession implements StreamEvents {
   /** The rig is deleted: who waits is told, and nothing more of it is committed. */
   end(detail: string): StreamIntake[] {
     const ended = [...this.#streams.values()];
-    for (const intake of ended) intake.failed(detail);
+    for (const intake of ended) {
+      intake.failed(detail);
+      intake.endOrder();
+    }
     this.#streams.clear();
     return ended;
   }

@@ -187,4 +187,34 @@ describe('a stream on its way in', () => {
     expect(seen[seen.length - 1]).toMatchObject({ result: 'refused', issue: { slug: 'too-late' } });
     expect(intake.ackedSeq).toBe(2);
   });
+
+  it('knows where everything that is held ends once the missing block is declared lost', async () => {
+    const databases = openDatabases({ dataDir: ':memory:', durability: 'normal' });
+    opened.push(databases);
+    const b = bench(databases.spool);
+    const streamId = databases.spool.openStream({
+      rigId: 'r',
+      name: 'boot',
+      rateHz,
+      channels: ['A'],
+      nowMs: 0,
+    });
+    const intake = new StreamIntake(
+      streamId,
+      'r',
+      'boot',
+      { rateHz, channels: ['A'], lastBlockAtMs: 0 },
+      b.events,
+    );
+    const quiet = () => undefined;
+    intake.offer(blockOf(0, 4), 0, quiet, 0);
+    expect(await intake.whenOrdered()).toBe(4);
+    intake.offer(blockOf(2, 4), 0, quiet, 100);
+    intake.offer(blockOf(3, 4), 0, quiet, 110);
+    const end = intake.whenOrdered();
+    intake.offer(blockOf(4, 4), 0, quiet, 120);
+    intake.advance(2_100);
+    expect(await end).toBe(16);
+    expect(intake.nextIndex).toBe(20);
+  });
 });

@@ -47,6 +47,7 @@ export class StreamIntake implements CommitSource {
   /** Held by the assembler until their turn. */
   #earlyBytes = 0;
   #waiting: Waiting[] = [];
+  #orderWatchers: { seq: number; known(endIndex: number): void }[] = [];
   #collected = {
     waiting: 0,
     sealed: 0,
@@ -173,6 +174,16 @@ export class StreamIntake implements CommitSource {
     if (this.#earlyStored.delete(seq)) this.#released.push(seq);
   }
 
+  /**
+   * The index just after everything that is held now, once its place is known: a block that came before its turn has
+   * none until the missing one comes or is declared lost.
+   */
+  whenOrdered(): Promise<number> {
+    if (this.#assembler.deadlineS() === undefined) return Promise.resolve(this.nextIndex);
+    const seq = this.#assembler.freshSeq() - 1;
+    return new Promise((known) => this.#orderWatchers.push({ seq, known }));
+  }
+
   #pass(block: Block, startIndex: number): void {
     if (this.#earlyStored.has(block.seq) || this.#earlyPending.has(block.seq)) {
       this.#earlyBytes -= bytesOf(block);
@@ -182,6 +193,18 @@ export class StreamIntake implements CommitSource {
     this.#buffer ??= this.#freshBuffer(block);
     const arrays = this.#buffer.append(block, startIndex, this.lastBlockAtMs);
     this.events.samples(this, startIndex, arrays, block.length);
+    if (this.#orderWatchers.length > 0) this.#tellOrder(block.seq, startIndex + block.length);
+  }
+
+  /** Nothing more will come into order. */
+  endOrder(): void {
+    this.#tellOrder(Infinity, this.nextIndex);
+  }
+
+  #tellOrder(seq: number, endIndex: number): void {
+    const due = this.#orderWatchers.filter((watcher) => watcher.seq <= seq);
+    this.#orderWatchers = this.#orderWatchers.filter((watcher) => watcher.seq > seq);
+    for (const { known } of due) known(endIndex);
   }
 
   #freshBuffer(block: Block): SegmentBuffer {
