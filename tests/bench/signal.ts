@@ -2,12 +2,15 @@
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { loadavg, tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { runForJson, runTypeScript } from '@/tests/bench/child';
+import { build } from 'esbuild';
+import { root, runForJson } from '@/tests/bench/child';
 import { heading, line, median, ratios } from '@/tests/bench/rounds';
 import { makeCodes, signalCase } from '@/tests/bench/signal-data';
 import { timedPasses } from '@/tests/bench/signal-passes';
 
 type Pass = { nsPerSample: number; edges: number; speedSum: number };
+/** Within the repository, so that its packages are found. */
+const bundles = join(root, 'dist/bench');
 type Variant = 'c' | 'parts' | 'path' | 'fili' | 'bareTwo' | 'pathTwo';
 
 export async function benchSignal(rounds: number): Promise<void> {
@@ -20,18 +23,36 @@ export async function benchSignal(rounds: number): Promise<void> {
     await runForJson('sh', ['-c', `gcc -O2 -o "$0" tests/bench/c/signal-path.c -lm && echo {}`, program]);
     const { rateHz, cutoffHz, voltsPerCode, operateV, releaseV, teeth } = signalCase;
     const numbers = [rateHz, cutoffHz, voltsPerCode, operateV, releaseV, teeth, timedPasses].map(String);
+    await bundle(['signal-parts', 'signal-ours', 'signal-fili']);
+    const run = (name: string, ...args: string[]) =>
+      runForJson<Pass>(process.execPath, [join(bundles, `${name}.mjs`), data, ...args]);
     const variants: Record<Variant, () => Promise<Pass>> = {
       c: () => runForJson(program, [data, ...numbers]),
-      parts: () => runTypeScript('tests/bench/signal-parts.ts', [data]),
-      path: () => runTypeScript('tests/bench/signal-ours.ts', [data]),
-      fili: () => runTypeScript('tests/bench/signal-fili.ts', [data]),
-      bareTwo: () => runTypeScript('tests/bench/signal-parts.ts', [data, '2']),
-      pathTwo: () => runTypeScript('tests/bench/signal-ours.ts', [data, '2']),
+      parts: () => run('signal-parts'),
+      path: () => run('signal-ours'),
+      fili: () => run('signal-fili'),
+      bareTwo: () => run('signal-parts', '2'),
+      pathTwo: () => run('signal-ours', '2'),
     };
     print(rounds, await thereAndBack(rounds, variants));
   } finally {
     rmSync(folder, { recursive: true, force: true });
   }
+}
+
+/** One file each, as the hub itself is built: across modules the same code is a quarter slower. */
+async function bundle(names: string[]): Promise<void> {
+  await build({
+    entryPoints: names.map((name) => join(root, 'tests/bench', `${name}.ts`)),
+    outdir: bundles,
+    outExtension: { '.js': '.mjs' },
+    bundle: true,
+    packages: 'external',
+    platform: 'node',
+    target: 'node20',
+    format: 'esm',
+    logLevel: 'warning',
+  });
 }
 
 /** Every variant once a round, each in a process of its own; every other round backwards. */
