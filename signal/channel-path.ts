@@ -158,7 +158,6 @@ export class ChannelPath implements FinderHost {
     const n = to - from;
     const v = this.scratch;
     const base = at - 1;
-    watch.take(array, from, to, at);
     if (this.fromCodes && array instanceof Int16Array) {
       const { codeOffset, voltsPerCode } = this.channel;
       runCascadeFromInt16(this.cascade, array, from, to, codeOffset, voltsPerCode, v, 1);
@@ -166,6 +165,8 @@ export class ChannelPath implements FinderHost {
       toVolts(array, from, to, this.channel, v, 1);
       runCascade(this.cascade, v, 1, n + 1);
     }
+    // After the filter, which reads in order: skipping through samples that are in no cache yet is slow.
+    watch.take(array, from, to, at);
     if (this.fresh) {
       v[0] = v[1]!;
       this.fresh = false;

@@ -78,7 +78,8 @@ export class EdgeIntake {
     const { detector, levels, edges, queue, rateHz, missing, oneTooth, delays, marginMeter } = this;
     const raw = detector.edges;
     const { operateV, releaseV } = detector;
-    const halfBandV = operateV - detector.midV;
+    const noisePerBand = noiseV / (operateV - detector.midV);
+    const periodS = 1 / rateHz;
     let { lowV, highV, wobbleV } = levels;
     let { duty, lastExtremeV, riseMidAt, fallMidAt, riseSpent, fallSpent, periodSamples, delayS } = this;
     for (let k = 0; k < raw.count; k++) {
@@ -123,18 +124,19 @@ export class EdgeIntake {
       if (at > midAt) spent = Number.isNaN(spent) ? at - midAt : spent + (at - midAt - spent) / 8;
       if (rising) riseSpent = spent;
       else fallSpent = spent;
-      const noise = (noiseV * spent) / halfBandV;
+      const noise = noisePerBand * spent;
       const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : 0;
 
       const i = roomForEdge(edges);
+      const midS = midAt / rateHz;
       edges.t[i] = at / rateHz - delayS;
-      edges.midT[i] = midAt / rateHz - delayS;
+      edges.midT[i] = midS - delayS;
       edges.flags[i] = flags;
       const q = roomInQueue(queue);
       queue.at[q] = at;
-      queue.midS[q] = midAt / rateHz;
+      queue.midS[q] = midS;
       queue.delayS[q] = delayS;
-      queue.sigmaS[q] = Math.sqrt(noise * noise + grid) / rateHz;
+      queue.sigmaS[q] = Math.sqrt(noise * noise + grid) * periodS;
       queue.extremeV[q] = extremeV;
       queue.flags[q] = flags | (this.delayKnown ? 0 : delayGuessed);
     }
