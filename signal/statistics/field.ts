@@ -4,7 +4,7 @@
  * there, whatever the supply. 1 T = 10 000 G, so 1 mV/G = 10 mV/mT.
  * Source: notes of Hall sensor makers (brands withheld).
  */
-import { got, notPositive, refused, type Outcome } from '@/signal/statistics/issue';
+import { got, notFinite, notPositive, refused, type Outcome } from '@/signal/statistics/issue';
 
 export type LinearSensor = {
   /** At the nominal supply, mV/mT; negative where the output falls towards a south pole. */
@@ -30,7 +30,7 @@ export function fieldScale({
   supplyV,
   quiescentV,
 }: LinearSensor): Outcome<FieldScale> {
-  if (!Number.isFinite(sensitivityMvPerMt) || sensitivityMvPerMt === 0)
+  if (notPositive(Math.abs(sensitivityMvPerMt), 'sensitivity'))
     return refused('bad-setting', `sensitivity ${sensitivityMvPerMt} mV/mT`);
   if (quiescentV !== null && !Number.isFinite(quiescentV))
     return refused('bad-setting', `rest voltage ${quiescentV} V`);
@@ -58,13 +58,15 @@ export function milliteslaOfSwing(volts: number, scale: FieldScale): number {
 
 /**
  * Fields between which the output is not at a rail, mT, least first: outside them the voltage tells nothing.
- * Issues: bad-setting (the rails do not hold the rest voltage).
+ * Issues: not-finite, bad-setting (the rails do not hold the rest voltage).
  */
 export function linearSpanMt(
   scale: FieldScale,
   lowRailV: number,
   highRailV: number,
 ): Outcome<{ leastMt: number; mostMt: number }> {
+  const bad = notFinite([lowRailV, highRailV], 'rail');
+  if (bad) return bad;
   if (!(lowRailV < scale.quiescentV && scale.quiescentV < highRailV))
     return refused('bad-setting', `rest at ${scale.quiescentV} V, rails at ${lowRailV} and ${highRailV} V`);
   const ends = [milliteslaOf(lowRailV, scale), milliteslaOf(highRailV, scale)];

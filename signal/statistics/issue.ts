@@ -7,7 +7,7 @@ import type { Failed, Ok, Result } from '@/signal/model';
 export type StatisticsIssueCode =
   /** A setting of the call itself is outside its range. */
   | 'bad-setting'
-  /** A NaN or an infinity among the data. */
+  /** A NaN, an infinity or a number beyond 1e15 among the data. */
   | 'not-finite'
   /** Fewer samples, edges or turns than the number needs. */
   | 'too-few'
@@ -38,15 +38,20 @@ export function refused(code: StatisticsIssueCode, detail: string): Failed<Stati
   return { ok: false, issue: { code, detail } };
 }
 
-/** The first number that is not finite, as an issue; null where all are. */
+/** Beyond it no voltage, count or instant can be; squares and sums of smaller ones stay within the range of a double. */
+const mostNumber = 1e15;
+/** Instants nearer than this, s, are one and the same: a quotient by their distance would leave that range. */
+const leastApartS = 1e-12;
+
+/** The first number that is not finite, or larger than 1e15, as an issue; null where all are well. */
 export function notFinite(values: ArrayLike<number>, what: string): Failed<StatisticsIssue> | null {
   for (let i = 0; i < values.length; i++) {
-    if (!Number.isFinite(values[i]!)) return refused('not-finite', `${what} ${i} is ${values[i]}`);
+    if (!(Math.abs(values[i]!) <= mostNumber)) return refused('not-finite', `${what} ${i} is ${values[i]}`);
   }
   return null;
 }
 
-/** Fewer than `least` numbers, one that is not finite, or one that does not rise above the one before. */
+/** Fewer than `least` numbers, one that is not finite, or one that is not 1e-12 s after the one before. */
 export function notInstants(
   instantsS: ArrayLike<number>,
   least: number,
@@ -57,7 +62,7 @@ export function notInstants(
   const bad = notFinite(instantsS, what);
   if (bad) return bad;
   for (let i = 1; i < instantsS.length; i++) {
-    if (!(instantsS[i]! > instantsS[i - 1]!)) {
+    if (!(instantsS[i]! - instantsS[i - 1]! >= leastApartS)) {
       return refused(
         'not-ascending',
         `${what} ${i} at ${instantsS[i]} s is not after the one before, at ${instantsS[i - 1]} s`,
@@ -67,11 +72,14 @@ export function notInstants(
   return null;
 }
 
-/** Not a finite number above zero. */
+/**
+ * Not a number above zero that a rig can have: rates, times, angles and ratios all lie between 1e-12 and 1e15. Beyond, sums
+ * and quotients of them would leave the range of a double.
+ */
 export function notPositive(value: number, what: string): Failed<StatisticsIssue> | null {
-  return Number.isFinite(value) && value > 0
+  return value >= 1e-12 && value <= 1e15
     ? null
-    : refused('bad-setting', `${what} must be a finite number above 0, not ${value}`);
+    : refused('bad-setting', `${what} must be a number above 0, of 1e-12 to 1e15, not ${value}`);
 }
 
 /** Not a whole number of at least `least`. */

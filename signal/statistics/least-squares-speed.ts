@@ -85,7 +85,7 @@ export function lineSpeed(
   positions: number,
   edgeErrorS = NaN,
 ): Outcome<LineSpeed> {
-  const known = Number.isFinite(edgeErrorS);
+  const known = !Number.isNaN(edgeErrorS);
   const bad =
     notPositive(positions, 'positions a turn') ??
     notInstants(edgesS, known ? 2 : 3, 'edge') ??
@@ -93,7 +93,8 @@ export function lineSpeed(
   if (bad) return bad;
   const n = edgesS.length;
   if (places && places.length !== n) return refused('bad-setting', `${places.length} places for ${n} edges`);
-  if (known && edgeErrorS < 0) return refused('bad-setting', `standard error ${edgeErrorS} s`);
+  if (known && !(edgeErrorS >= 0 && edgeErrorS <= 1e15))
+    return refused('bad-setting', `standard error ${edgeErrorS} s`);
   const place = (k: number) => (places ? places[k]! : k);
   const originS = edgesS[0]!;
   let meanP = 0;
@@ -116,7 +117,9 @@ export function lineSpeed(
   if (!(tp * tp > 0.5 * pp * tt))
     return refused('undetermined', 'instants and places lie on no line: a stop or a reversal is among them');
   const periodS = tp / pp;
-  const residualRmsS = n > 2 ? Math.sqrt(Math.max(0, tt - (tp * tp) / pp) / (n - 2)) : 0;
+  let squares = 0;
+  for (let k = 0; k < n; k++) squares += (edgesS[k]! - originS - meanT - periodS * (place(k) - meanP)) ** 2;
+  const residualRmsS = n > 2 ? Math.sqrt(squares / (n - 2)) : 0;
   const rpm = 60 / (positions * periodS);
   const periodErrorS = (known ? edgeErrorS : residualRmsS) / Math.sqrt(pp);
   return got({

@@ -19,11 +19,13 @@ const leastOwnShare = 1e-9;
 
 /**
  * @param columns each of `y.length` rows, finite; neither they nor `y` are changed.
- * Issues: too-few (fewer rows than columns), not-finite, undetermined (a column is a mix of the others).
+ * Issues: bad-setting (a column of another length), too-few (fewer rows than columns), not-finite, undetermined (a column is a mix of the others).
  */
 export function leastSquares(columns: readonly Float64Array[], y: ArrayLike<number>): Outcome<LeastSquares> {
   const rows = y.length;
   const n = columns.length;
+  if (columns.some((column) => column.length !== rows))
+    return refused('bad-setting', `columns must have ${rows} rows each`);
   if (rows < n || n === 0) return refused('too-few', `${rows} rows for ${n} unknowns`);
   const bad = notFinite(y, 'value') ?? columns.map((column) => notFinite(column, 'row')).find(Boolean);
   if (bad) return bad;

@@ -34,8 +34,8 @@ export function matchPattern(
   if (bad) return bad;
   const x = withoutMean(latest);
   const y = withoutMean(stored);
-  const energy = Math.sqrt(dot(x, x, 0) * dot(y, y, 0));
-  const flat = 1e-9 * Math.max(...Array.from(stored, Math.abs));
+  const energy = Math.sqrt(dot(x, x, 0)) * Math.sqrt(dot(y, y, 0));
+  const flat = Math.max(1e-100, 1e-9 * Math.max(...Array.from(stored, Math.abs)));
   if (!(Math.sqrt(dot(y, y, 0) / n) > flat && Math.sqrt(dot(x, x, 0) / n) > flat))
     return refused('no-match', 'the teeth are even: there is no pattern to tell them by');
   let shift = 0;

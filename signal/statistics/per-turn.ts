@@ -2,7 +2,15 @@
  * One line a turn: mean, least and most of what was measured tooth by tooth, and the speed of the whole turn, which the
  * unevenness of the teeth does not touch. Turns begin at the first tooth given.
  */
-import { got, notCount, notFinite, notInstants, refused, type Outcome } from '@/signal/statistics/issue';
+import {
+  got,
+  notCount,
+  notFinite,
+  notInstants,
+  notPositive,
+  refused,
+  type Outcome,
+} from '@/signal/statistics/issue';
 
 export type TurnColumns = { turns: number; mean: Float64Array; least: Float64Array; most: Float64Array };
 
@@ -47,10 +55,11 @@ export function speedPerTurn(
   teethPerTurn: number,
   gearRatio = 1,
 ): Outcome<TurnSpeeds> {
-  const bad = notCount(teethPerTurn, 1, 'number of teeth') ?? notInstants(teethS, teethPerTurn + 1, 'tooth');
+  const bad =
+    notCount(teethPerTurn, 1, 'number of teeth') ??
+    notPositive(gearRatio, 'gear ratio') ??
+    notInstants(teethS, teethPerTurn + 1, 'tooth');
   if (bad) return bad;
-  if (!(Number.isFinite(gearRatio) && gearRatio > 0))
-    return refused('bad-setting', `gear ratio ${gearRatio}`);
   const turns = Math.floor((teethS.length - 1) / teethPerTurn);
   const endS = Float64Array.from({ length: turns }, (_, turn) => teethS[(turn + 1) * teethPerTurn]!);
   const rpm = endS.map((end, turn) => 60 / (gearRatio * (end - teethS[turn * teethPerTurn]!)));

@@ -175,12 +175,15 @@ export function withoutPitch(
   const bad =
     notInstants(teethS, 2, 'tooth') ??
     notCount(n, 1, 'number of shares') ??
-    notFinite(shares, 'share') ??
     notFinite(nominal, 'ideal share') ??
     notCount(first, 0, 'first interval');
   if (bad) return bad;
   if (nominal.length !== n || first >= n)
     return refused('bad-setting', `${n} shares, ${nominal.length} ideal ones, first interval ${first}`);
+  for (let k = 0; k < n; k++) {
+    const share = notPositive(shares[k]!, `share ${k}`);
+    if (share) return share;
+  }
   let ahead = 0;
   const out = Float64Array.from({ length: teethS.length }, (_, k) => {
     const after = Math.min(k, teethS.length - 2);

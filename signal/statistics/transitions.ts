@@ -36,7 +36,7 @@ const aberrationDurations = 3;
 /**
  * @param volts `rateHz` a second, the first at `startS`.
  * @param toleranceShare half width of a state's boundary over the amplitude.
- * Issues: bad-setting, not-finite, no-two-states (levels not in order). No transition is no issue: the list is empty.
+ * Issues: bad-setting, not-finite, no-two-states (levels equal or not in order). No transition is no issue: the list is empty.
  */
 export function findTransitions(
   volts: ArrayLike<number>,
@@ -53,9 +53,11 @@ export function findTransitions(
   if (bad) return bad;
   if (toleranceShare > 0.1)
     return refused('bad-setting', 'a state boundary wider than a tenth of the amplitude');
-  if (!(highV > lowV)) return refused('no-two-states', `high level ${highV} V, low level ${lowV} V`);
+  if (!(highV - lowV > 1e-12 * Math.max(1, Math.abs(lowV), Math.abs(highV))))
+    return refused('no-two-states', `high level ${highV} V, low level ${lowV} V`);
   // Shares of the amplitude: 0 is the low state, 1 the high one.
   const y = Float64Array.from(volts, (v) => (v - lowV) / (highV - lowV));
+  const upsideDown = y.map((v) => 1 - v);
   const spans: { rising: boolean; from: number; to: number }[] = [];
   let runts = 0;
   let state = -1;
@@ -75,7 +77,7 @@ export function findTransitions(
   }
   const at = (place: number) => startS + place / rateHz;
   const transitions = spans.map(({ rising, from, to }, index) => {
-    const places = crossings(rising ? y : y.map((v) => 1 - v), from, to);
+    const places = crossings(rising ? y : upsideDown, from, to);
     const durationS = (places.t90 - places.t10) / rateHz;
     const end = Math.min(
       spans[index + 1]?.from ?? y.length - 1,
@@ -121,5 +123,5 @@ function aberrations(y: Float64Array, rising: boolean, from: number, to: number)
   for (let i = from; i <= to; i++) if (past(i) > past(peak)) peak = i;
   let least = 0;
   for (let i = peak; i <= to; i++) least = Math.min(least, past(i));
-  return { overshootPct: 100 * Math.max(0, past(peak)), undershootPct: -100 * least };
+  return { overshootPct: 100 * Math.max(0, past(peak)), undershootPct: 100 * Math.max(0, -least) };
 }
