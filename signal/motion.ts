@@ -14,14 +14,18 @@ import type { GapSync } from '@/signal/gap-sync';
 import type { Direction, RigSetup, Settings } from '@/signal/model';
 import { edgeRising } from '@/signal/pipeline-types';
 import type { DirectionChange, SpeedColumns } from '@/signal/pipeline-types';
+import { PhaseLead } from '@/signal/phase-lead';
 import { SpeedMeter } from '@/signal/speed-meter';
 import { illegalStep, stepTable } from '@/signal/step-table';
+import { ToothPlacer } from '@/signal/tooth-placer';
+import { Unevenness } from '@/signal/unevenness';
 import { mostPositions, WheelFaceMeter } from '@/signal/wheel-face-meter';
 
 export class Motion {
   readonly sync: GapSync;
   readonly face: WheelFaceMeter | null;
   readonly tracker: DirectionTracker | null;
+  readonly intervals = createIntervalMeter();
   direction: Direction = 'unknown';
   state: 'running' | 'stopped' | 'unknown' = 'unknown';
   pulses = 0;
@@ -34,15 +38,11 @@ export class Motion {
   /** Raw axis, s, delay taken off; NaN before any edge. */
   lastEdgeS = NaN;
   lastRiseS = NaN;
-  /** Circular mean of how far A leads B. */
-  private phaseCos = 0;
-  private phaseSin = 0;
 
   readonly rig: RigSetup;
   /** The entry that is being taken. */
   private queue: EdgeQueue = createEdgeQueue();
   private entry = 0;
-  private readonly toothMissed: () => void;
   private readonly stoppedAfterSamples: number;
   private readonly stoppedAfterS: number;
   private readonly meter: SpeedMeter;
@@ -60,24 +60,13 @@ export class Motion {
   private waitingSigmaS = NaN;
   private place = 0;
   private troughV = NaN;
-  private swingV = NaN;
-  /** The last tooth, until the next tells its swing and confirms how many positions it stands after the one before. */
-  private held = false;
-  private heldT = NaN;
-  private heldSpans = 1;
-  private heldPosition = 0;
-  /** Plain wheel: position of the last tooth placed, counted since the count began. */
-  private relative = -1;
-  private heldIntervalS = NaN;
-  private intervalBeforeS = NaN;
   private lastARise = NaN;
   private aPeriodS = NaN;
   private lastStepS = NaN;
-  /** Largest share of a cycle that one state of the ring took lately. */
-  private widestState = NaN;
-  readonly intervals = createIntervalMeter();
-  private widestPitch = 1;
   private placedT = NaN;
+  private readonly placer: ToothPlacer;
+  private readonly uneven: Unevenness;
+  private readonly phase = new PhaseLead();
 
   constructor(
     rig: RigSetup,
@@ -88,7 +77,6 @@ export class Motion {
     directions: DirectionChange[],
     toothMissed: () => void,
   ) {
-    this.toothMissed = toothMissed;
     const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
     const table = stepTable(rig.sensing);
     this.rig = rig;
@@ -98,6 +86,8 @@ export class Motion {
     this.tracker = table ? createDirectionTracker(table) : null;
     this.sync = createGapSync(pulsesPerTurn, table ? 0 : missingPulses);
     this.face = pulsesPerTurn <= mostPositions ? new WheelFaceMeter(pulsesPerTurn, missingPulses) : null;
+    this.placer = new ToothPlacer(this.sync, this.face, toothMissed);
+    this.uneven = new Unevenness(pulsesPerTurn);
     this.speed = speed;
     this.directions = directions;
     this.countsSinceS = startIndex / rateHz;
@@ -118,8 +108,7 @@ export class Motion {
 
   /** Degrees by which A leads B, -180 to 180; NaN where not known. */
   get phaseDeg(): number {
-    if (this.phaseCos === 0 && this.phaseSin === 0) return NaN;
-    return (Math.atan2(this.phaseSin, this.phaseCos) * 180) / Math.PI;
+    return this.phase.deg;
   }
 
   /** Nothing came up to sample `at`: the shaft may have been found stopped on the way. */
@@ -172,28 +161,22 @@ export class Motion {
     if (this.tracker) this.step(this.tracker, role, rising, t);
     if (role === 0) {
       if (rising) this.rise();
-      else this.swingV = queue.extremeV[i]! - this.troughV;
-    } else if (role === 1 && rising) {
-      this.learnPhase(t);
+      else this.placer.swingV = queue.extremeV[i]! - this.troughV;
+    } else if (role === 1 && rising && this.state === 'running') {
+      this.phase.learn((t - this.lastARise) / this.aPeriodS);
     }
   }
 
   /** Largest number of positions that can still be silent after the last edge. */
   silentPositions(): number {
+    const { widestState, widestPitch } = this.uneven;
     if (this.tracker) {
       const even = 1 / this.tracker.table.stepsPerCycle;
-      return Number.isNaN(this.widestState) ? 2 * even : Math.min(1, Math.max(even, 1.1 * this.widestState));
+      return Number.isNaN(widestState) ? 2 * even : Math.min(1, Math.max(even, 1.1 * widestState));
     }
     const places = noGapAhead(this.sync) ? 1 : this.sync.missing + 1;
-    return (places + (this.nextIsOftenMissed() ? 1 : 0)) * Math.max(1, this.widestPitch);
-  }
-
-  /** The place that comes next stayed empty in the turn before: a weak tooth proves nothing by its silence. */
-  private nextIsOftenMissed(): boolean {
-    const { face, sync } = this;
-    if (!face || !this.synced) return false;
-    const here = sync.missing > 0 ? sync.position : this.relative + 1;
-    return face.missedInRow[(here + 1) % sync.positions]! > 0;
+    const nextIsWeak = this.synced && this.placer.nextIsOftenMissed();
+    return (places + (nextIsWeak ? 1 : 0)) * Math.max(1, widestPitch);
   }
 
   /**
@@ -217,7 +200,7 @@ export class Motion {
   angleDeg(nowS: number): number {
     if (Number.isNaN(this.lastRiseS) || !this.synced) return NaN;
     const { pulsesPerTurn, gearRatio } = this.rig.wheel;
-    const position = this.sync.missing > 0 ? this.sync.position : this.relative + 1;
+    const position = this.placer.lastPosition();
     const since = Number.isNaN(this.rpm)
       ? 0
       : (this.rpm / 60) * gearRatio * pulsesPerTurn * (nowS - this.lastRiseS);
@@ -238,11 +221,7 @@ export class Motion {
       return;
     }
     this.pulses = tracker.netSteps / tracker.table.stepsPerCycle;
-    if (step !== 0 && this.state === 'running') {
-      const share = (t - this.lastStepS) / this.aPeriodS;
-      if (share > 0 && share < 1)
-        this.widestState = Math.max(share, Number.isNaN(this.widestState) ? 0 : this.widestState * 0.99);
-    }
+    if (step !== 0 && this.state === 'running') this.uneven.noteState((t - this.lastStepS) / this.aPeriodS);
     this.lastStepS = t;
     if (tracker.sense === 0) return;
     const value: Direction = tracker.sense > 0 ? 'forward' : 'reverse';
@@ -258,7 +237,7 @@ export class Motion {
 
   /** The entry at hand is a rising edge of the first channel: a tooth. */
   private rise(): void {
-    const { meter, queue, entry } = this;
+    const { meter, placer, queue, entry } = this;
     const t = queue.midS[entry]! - queue.delayS[entry]!;
     const guessed = (queue.flags[entry]! & delayGuessed) !== 0;
     if (this.tracker && !this.wholeCycle(this.tracker)) {
@@ -270,11 +249,12 @@ export class Motion {
       meter.retimeFirst(this.lastRiseS);
     }
     if (!this.tracker) this.pulses++;
-    if (this.held) this.showHeld();
+    placer.t = t;
+    if (placer.isHolding) placer.show();
     meter.t = t;
     meter.sigmaS = queue.sigmaS[entry]!;
     if (meter.count === 0) {
-      this.hold(1);
+      placer.hold(1);
       this.firstGuessed = guessed;
       this.firstMidS = queue.midS[entry]!;
       meter.add(this.place);
@@ -296,19 +276,19 @@ export class Motion {
     this.lastARise = t;
     this.lastRiseS = t;
     this.troughV = queue.extremeV[entry]!;
-    this.swingV = NaN;
+    placer.swingV = NaN;
   }
 
   /** The tooth whose interval waited is placed, now that the entry at hand closes the next one. */
   private resumeWaiting(): void {
-    const { meter, queue, entry } = this;
+    const { meter, placer, queue, entry } = this;
     const spans = judgeWaiting(this.sync);
-    meter.t = this.waitingT;
+    placer.t = meter.t = this.waitingT;
     meter.sigmaS = this.waitingSigmaS;
     this.waitingT = NaN;
     this.advance(spans);
-    this.showHeld();
-    meter.t = queue.midS[entry]! - queue.delayS[entry]!;
+    placer.t = meter.t = queue.midS[entry]! - queue.delayS[entry]!;
+    placer.show();
     meter.sigmaS = queue.sigmaS[entry]!;
   }
 
@@ -317,8 +297,12 @@ export class Motion {
     const { meter, speed } = this;
     this.place += spans;
     if (this.sync.missing > 0) this.extraPositions += moveOn(this.sync, spans);
-    this.hold(spans);
-    if (this.state === 'running') this.learnPitch(meter.t, spans);
+    this.placer.hold(spans);
+    if (this.state === 'running') {
+      const { pulsesPerTurn, gearRatio } = this.rig.wheel;
+      const pitches = (meter.t - this.placedT) * Math.abs(this.rpm) * pulsesPerTurn * gearRatio;
+      this.uneven.notePitch(pitches / (60 * spans));
+    }
     this.placedT = meter.t;
     if (!meter.add(this.place)) return;
     const rpm = this.direction === 'reverse' ? -meter.latest.rpm : meter.latest.rpm;
@@ -332,61 +316,10 @@ export class Motion {
     speed.errorRpm[i] = meter.latest.errorRpm;
   }
 
-  /** How much longer than the mean the longest pitch of the last turns took: uneven teeth and a swaying shaft. */
-  private learnPitch(t: number, spans: number): void {
-    const { pulsesPerTurn, gearRatio } = this.rig.wheel;
-    const ratio = ((t - this.placedT) * Math.abs(this.rpm) * pulsesPerTurn * gearRatio) / (60 * spans);
-    const fading = 1 + (this.widestPitch - 1) * (1 - 1 / (2 * pulsesPerTurn));
-    if (ratio < 1.5) this.widestPitch = Math.max(ratio, fading);
-  }
-
-  private hold(spans: number): void {
-    this.held = true;
-    this.heldT = this.meter.t;
-    this.heldSpans = spans;
-    this.heldPosition = this.sync.position;
-  }
-
-  /** Places the held tooth on the wheel face, now that the next one has come. */
-  private showHeld(): void {
-    const { face, sync, queue, entry } = this;
-    this.held = false;
-    if (face) {
-      face.t = this.heldT;
-      face.toothSwingV = this.swingV;
-    }
-    if (sync.missing > 0) {
-      if (sync.state !== 'synced') {
-        face?.lose(false);
-        return;
-      }
-      face?.place(this.heldPosition, this.heldSpans);
-      if (this.heldSpans > 1 && this.heldPosition > 0) this.toothMissed();
-      return;
-    }
-    const nextIntervalS = queue.midS[entry]! - queue.delayS[entry]! - this.heldT;
-    const long = this.heldIntervalS > 1.5 * nextIntervalS;
-    const spans = long ? emptyPlaces(this.intervalBeforeS, this.heldIntervalS, nextIntervalS) + 1 : 1;
-    this.intervalBeforeS = this.heldIntervalS / spans;
-    this.heldIntervalS = nextIntervalS;
-    if (spans > 1) this.toothMissed();
-    this.relative = (this.relative + spans) % sync.positions;
-    face?.place(this.relative, spans);
-  }
-
   private wholeCycle(tracker: DirectionTracker): boolean {
     const before = this.netAtRise;
     this.netAtRise = tracker.netSteps;
     return this.meter.count === 0 || Math.abs(tracker.netSteps - before) === tracker.table.stepsPerCycle;
-  }
-
-  private learnPhase(t: number): void {
-    if (Number.isNaN(this.aPeriodS) || this.state !== 'running') return;
-    const turns = (t - this.lastARise) / this.aPeriodS;
-    if (!(turns >= 0 && turns < 1)) return;
-    const share = this.phaseCos === 0 && this.phaseSin === 0 ? 1 : 1 / 16;
-    this.phaseCos += share * (Math.cos(2 * Math.PI * turns) - this.phaseCos);
-    this.phaseSin += share * (Math.sin(2 * Math.PI * turns) - this.phaseSin);
   }
 
   private forgetTeeth(): void {
@@ -394,17 +327,13 @@ export class Motion {
     resetSync(this.sync);
     this.waitingT = NaN;
     this.netAtRise = NaN;
-    this.held = false;
-    this.heldIntervalS = NaN;
-    this.intervalBeforeS = NaN;
-    this.relative = -1;
     this.lastStepS = NaN;
-    this.widestPitch = 1;
     this.placedT = NaN;
     this.lastARise = NaN;
     this.aPeriodS = NaN;
-    this.phaseCos = this.phaseSin = 0;
-    this.face?.lose(this.sync.missing === 0);
+    this.phase.reset();
+    this.uneven.reset();
+    this.placer.reset();
   }
 
   private turnTo(value: Direction, t: number): void {
@@ -421,16 +350,4 @@ export class Motion {
     this.speedUnknown = true;
     pushSpeed(this.speed, t, NaN, NaN);
   }
-}
-
-/**
- * Places of a plain wheel that stayed empty in the interval `here`, told by its neighbours: they agree within 40 %, and it
- * is a whole multiple of their mean, within a quarter.
- */
-function emptyPlaces(before: number, here: number, after: number): number {
-  if (Number.isNaN(before) || Number.isNaN(here)) return 0;
-  if (Math.max(before, after) > 1.4 * Math.min(before, after)) return 0;
-  const ratio = here / ((before + after) / 2);
-  const whole = Math.round(ratio);
-  return whole >= 2 && Math.abs(ratio - whole) < 0.25 ? whole - 1 : 0;
 }
