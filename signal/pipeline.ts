@@ -6,6 +6,8 @@
  */
 import { ChannelPath, chunkSamples } from '@/signal/channel-path';
 import { createSpeedColumns } from '@/signal/columns';
+import { mergeEdges } from '@/signal/edge-merge';
+import type { Lane } from '@/signal/edge-merge';
 import { designFilters } from '@/signal/filter-design';
 import type { FindingRule } from '@/signal/findings/rule';
 import { createRules } from '@/signal/findings/rules';
@@ -38,7 +40,7 @@ class SignalPipeline implements Pipeline {
   private readonly motion: Motion;
   /** Place of each path in the sensing arrangement; -1: none. */
   private readonly roles: number[];
-  private readonly moving: ChannelPath[];
+  private readonly lanes: Lane[] = [];
   private readonly rules: FindingRule[];
   private readonly tickSamples: number;
   private nextAt: number;
@@ -72,7 +74,10 @@ class SignalPipeline implements Pipeline {
       const first = this.paths.findIndex((other) => other.channel.role === channel.role);
       return first === index ? place : -1;
     });
-    this.moving = this.paths.filter((_, index) => this.roles[index]! >= 0);
+    this.paths.forEach((path, index) => {
+      const role = this.roles[index]!;
+      if (role >= 0) this.lanes.push({ path, queue: path.queue, role });
+    });
     this.motion = new Motion(rig, settings, rateHz, startIndex, speed, directions, () =>
       this.paths[this.roles.indexOf(0)]!.toothMissed(),
     );
@@ -107,7 +112,7 @@ class SignalPipeline implements Pipeline {
         this.paths[c]!.advance(arrays[c]!, from, from + size, this.nextAt);
       from += size;
       this.nextAt += size;
-      this.merge();
+      mergeEdges(this.lanes, this.motion);
       if (size === toTick) this.tick();
     }
   }
@@ -118,7 +123,7 @@ class SignalPipeline implements Pipeline {
     this.nextAt += Math.round(lostSamples);
     const toS = this.nextAt / this.rateHz;
     for (const path of this.paths) path.skipTo(this.nextAt);
-    this.merge();
+    mergeEdges(this.lanes, this.motion);
     this.motion.gap(fromS, toS, this.nextAt);
     const gap = { fromS, toS, lostSamples: Math.round(lostSamples), estimated };
     this.output.gaps.push(gap);
@@ -142,26 +147,6 @@ class SignalPipeline implements Pipeline {
     const findings: Finding[] = [];
     for (const rule of this.rules) for (const { open } of rule.latches) if (open) findings.push(open);
     return statusOf(this.motion, this.paths, this.roles.indexOf(0), this.nextAt / this.rateHz, findings);
-  }
-
-  /** Hands the channels' edges to the motion in order of time, as far as every channel has decided. */
-  private merge(): void {
-    let decided = Infinity;
-    for (let m = 0; m < this.moving.length; m++) decided = Math.min(decided, this.moving[m]!.decidedUpTo);
-    for (;;) {
-      let earliest = -1;
-      let at = Infinity;
-      for (let c = 0; c < this.paths.length; c++) {
-        const { queue } = this.paths[c]!;
-        if (this.roles[c]! < 0 || queue.head === queue.count || queue.at[queue.head]! >= at) continue;
-        at = queue.at[queue.head]!;
-        earliest = c;
-      }
-      if (earliest < 0 || at > decided) break;
-      const { queue } = this.paths[earliest]!;
-      this.motion.take(queue, queue.head++, this.roles[earliest]!);
-    }
-    if (decided < Infinity) this.motion.quietUpTo(decided);
   }
 
   private tick(): void {
