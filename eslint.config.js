@@ -3,11 +3,10 @@ import { defineConfig } from 'eslint/config';
 
 export default defineConfig([
   expo,
-  { ignores: ['dist/**', 'data/**', '.expo/**', 'node_modules/**'] },
+  { ignores: ['dist/**', 'data/**', '.expo/**', 'node_modules/**', 'test-results/**'] },
+  { rules: { 'import/no-duplicates': 'error' } },
   {
-    rules: {
-      '@typescript-eslint/no-unused-vars': ['error', { argsIgnorePattern: '^_' }],
-      'import/no-duplicates': 'error',
-    },
+    files: ['**/*.ts', '**/*.tsx'],
+    rules: { '@typescript-eslint/no-unused-vars': ['error', { argsIgnorePattern: '^_' }] },
   },
 ]);
