@@ -10,14 +10,14 @@ type Fili = {
   IirFilter: new (sections: object[]) => SingleStep;
 };
 const module = filiModule as unknown as { default?: Fili } & Fili;
-const Fili = module.default ?? module;
+const fili = module.default ?? module;
 
 const codes = readCodes();
 
 function pass(): PassResult {
   const { rateHz, cutoffHz, voltsPerCode, operateV, releaseV, teeth } = signalCase;
   const params = { order: 2, characteristic: 'butterworth', Fs: rateHz, Fc: cutoffHz };
-  const filter = new Fili.IirFilter(new Fili.CalcCascades().lowpass(params));
+  const filter = new fili.IirFilter(new fili.CalcCascades().lowpass(params));
   const mid = (operateV + releaseV) / 2;
   let edges = 0;
   let speedSum = 0;
