@@ -1,3 +1,4 @@
+import { countText } from '@/client/drawings/count-text';
 import type { Finding } from '@/signal/model';
 import type { ColourName } from '@/client/theme/tokens';
 
@@ -96,6 +97,6 @@ export function healthOf(findings: readonly Finding[]): {
   if (!worst) return { status: 'good', word: 'no findings' };
   return {
     status: worst.severity,
-    word: findings.length === 1 ? '1 finding' : `${findings.length} findings`,
+    word: countText(findings.length, 'finding'),
   };
 }

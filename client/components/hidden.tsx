@@ -1,10 +1,17 @@
 import { Text } from 'react-native';
 import type { TextStyle } from 'react-native';
 
-/** For screen readers only; `polite` reads changes out when nothing else is said. */
-export function Hidden({ children, polite }: { children: string; polite?: boolean }) {
+type HiddenProps = {
+  children: string;
+  /** Reads changes out when nothing else is said. */
+  polite?: boolean;
+  id?: string;
+};
+
+/** For screen readers only. */
+export function Hidden({ children, polite, id }: HiddenProps) {
   return (
-    <Text {...(polite ? { role: 'status' as never } : {})} style={unseen}>
+    <Text id={id} {...(polite ? { role: 'status' as never } : {})} style={unseen}>
       {children}
     </Text>
   );

@@ -2,6 +2,7 @@ import { G, Line, Path, Polygon, Rect, Svg } from 'react-native-svg';
 import { Drawing } from '@/client/drawings/figure';
 import { speedExtremes, speedPath, zeroRange } from '@/client/drawings/speed-line';
 import type { SpeedPoint } from '@/client/drawings/speed-line';
+import { countText } from '@/client/drawings/count-text';
 import { rpmText } from '@/client/drawings/speed-words';
 import { durationText } from '@/client/drawings/time-axis';
 import { useColours } from '@/client/theme/use-theme';
@@ -23,12 +24,8 @@ export function Overview({ durationS, speed, gaps, findings, window, cursorS, he
   const colours = useColours();
   const extremes = speedExtremes(speed);
   const range = zeroRange(extremes ?? { low: 0, high: 1 });
-  const sentence = extremes
-    ? `Speed over ${durationText(durationS)}, from ${rpmText(extremes.low)} to ${rpmText(extremes.high)} rpm`
-    : `${durationText(durationS)} without a known speed`;
-  const counts = `${gaps.length === 0 ? 'no gap' : `${gaps.length} gaps`}, ${findings.length} findings`;
   return (
-    <Drawing label={`${sentence}; ${counts}.`} height={height}>
+    <Drawing label={overviewSentence({ durationS, speed, gaps, findings })} height={height}>
       {({ width }) => {
         const x = (t: number) => (t / Math.max(durationS, 1e-9)) * width;
         const y = (rpm: number) => 4 + ((range.high - rpm) / (range.high - range.low)) * (height - 8);
@@ -111,6 +108,20 @@ export function Overview({ durationS, speed, gaps, findings, window, cursorS, he
       }}
     </Drawing>
   );
+}
+
+/** The text alternative of an overview. */
+export function overviewSentence({
+  durationS,
+  speed,
+  gaps,
+  findings,
+}: Pick<OverviewProps, 'durationS' | 'speed' | 'gaps' | 'findings'>): string {
+  const extremes = speedExtremes(speed);
+  const sentence = extremes
+    ? `Speed over ${durationText(durationS)}, from ${rpmText(extremes.low)} to ${rpmText(extremes.high)} rpm`
+    : `${durationText(durationS)} without a known speed`;
+  return `${sentence}; ${countText(gaps.length, 'gap')}, ${countText(findings.length, 'finding')}.`;
 }
 
 function Flag({ severity, x, y }: { severity: Finding['severity']; x: number; y: number }) {

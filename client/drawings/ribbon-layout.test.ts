@@ -52,7 +52,7 @@ describe('ribbonSentence', () => {
     const gaps = [{ from: 1, to: 2, lostSamples: 5, estimated: false }];
     const data = { fromS: 0, toS: 2, lanes: [lane('A')], edges, rejected: [], gaps };
     expect(ribbonSentence(data, '2 s')).toBe(
-      'Signal over 2 s, channel A from 0.40 to 2.90 volts. 1 tooth counted. One gap with lost samples.',
+      'Signal over 2 s, channel A from 0.40 to 2.90 volts. 1 tooth counted. 1 gap with lost samples.',
     );
   });
 });

@@ -1,3 +1,4 @@
+import { countText } from '@/client/drawings/count-text';
 import { steadyRange, wantedRange } from '@/client/drawings/trace';
 import type { Range } from '@/client/drawings/trace';
 import type { LaneBox, RibbonData, RibbonLane } from '@/client/drawings/ribbon-types';
@@ -67,10 +68,9 @@ export function ribbonSentence(data: RibbonData, spanText: string): string {
         `${l.channel}${l.lowV === null || l.highV === null ? '' : ` from ${l.lowV.toFixed(2)} to ${l.highV.toFixed(2)} volts`}`,
     )
     .join(', ');
-  const lost =
-    data.gaps.length === 0
-      ? ''
-      : ` ${data.gaps.length === 1 ? 'One gap' : `${data.gaps.length} gaps`} with lost samples.`;
-  const rejected = data.rejected.length === 0 ? '' : ` ${data.rejected.length} crossings not counted.`;
-  return `Signal over ${spanText}, ${data.lanes.length === 1 ? 'channel' : 'channels'} ${lanes || 'none'}. ${counted === 1 ? '1 tooth' : `${counted} teeth`} counted.${rejected}${lost}`;
+  const gaps = data.gaps.filter((g) => g.to > data.fromS && g.from < data.toS).length;
+  const lost = gaps === 0 ? '' : ` ${countText(gaps, 'gap')} with lost samples.`;
+  const crossings = data.rejected.length;
+  const rejected = crossings === 0 ? '' : ` ${countText(crossings, 'crossing')} not counted.`;
+  return `Signal over ${spanText}, ${data.lanes.length === 1 ? 'channel' : 'channels'} ${lanes || 'none'}. ${countText(counted, 'tooth', 'teeth')} counted.${rejected}${lost}`;
 }

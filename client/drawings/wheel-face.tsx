@@ -1,4 +1,5 @@
 import { Circle, G, Line, Path, Svg } from 'react-native-svg';
+import { countText } from '@/client/drawings/count-text';
 import { Drawing } from '@/client/drawings/figure';
 import {
   arcPath,
@@ -27,8 +28,8 @@ export function WheelFace({ face, rpm, direction, size }: WheelFaceProps) {
   const drawing = wheelDrawing(face, size / 2 - 4);
   const missing = face.positions.filter((p) => p.missing).length;
   const words = turnWords(rpm, face.angleDeg);
-  const teeth = face.positions.length - missing;
-  const label = `Wheel with ${teeth} teeth${missing ? ` and ${missing} missing` : ''}, ${words}. Spacing errors drawn ${drawing.scale} times as large.`;
+  const teeth = countText(face.positions.length - missing, 'tooth', 'teeth');
+  const label = `Wheel with ${teeth}${missing ? ` and ${missing} missing` : ''}, ${words}. Spacing errors drawn ${drawing.scale} times as large.`;
   return (
     <Drawing label={label} height={size} style={{ width: size, alignSelf: 'center' }}>
       {() => (
@@ -42,7 +43,7 @@ export function WheelFace({ face, rpm, direction, size }: WheelFaceProps) {
             ring={drawing.ring}
           />
           <SvgText x={size / 2} y={size / 2 - 10} anchor="middle" size={14} tone="scribe">
-            {`${teeth} teeth`}
+            {teeth}
           </SvgText>
           <SvgText x={size / 2} y={size / 2 + 10} anchor="middle">
             {words}

@@ -4,6 +4,7 @@ import {
   aroundWindow,
   bandsIn,
   edgesOf,
+  findingWindow,
   firstWindow,
   inWindow,
   laneOf,
@@ -85,6 +86,29 @@ describe('edges', () => {
   it('are cut to the window, with neighbours where a line needs them', () => {
     expect(inWindow(at(0, 1, 1.5, 2, 3), window)).toEqual(at(1, 1.5, 2));
     expect(aroundWindow(at(0, 0.5, 1.5, 2.5, 3), window)).toEqual(at(0.5, 1.5, 2.5));
+  });
+});
+
+describe('findingWindow', () => {
+  const whole = { fromS: 0, toS: 10 };
+  const show = (from: number, to: number | null, at: number, now = whole, change = {}) => {
+    const { fromS, toS } = findingWindow(analysisOf(change), { channel: 'A', from, to, at }, now, 10);
+    return [fromS, toS].map((s) => Number(s.toFixed(6)));
+  };
+  it('is about eight teeth around the instant where the stretch is long or still open', () => {
+    expect(show(0, 9, 6)).toEqual([5.2, 6.8]);
+    expect(show(1, null, 6)).toEqual([5.2, 6.8]);
+  });
+  it('is the whole stretch where that is short', () => {
+    expect(show(4, 6, 4.1)).toEqual([3.75, 6.25]);
+    expect(show(4, 4.1, 4)).toEqual([3.25, 4.85]);
+  });
+  it('stays as close as it was', () => {
+    expect(show(4, 6, 4, { fromS: 1, toS: 1.4 })).toEqual([3.8, 4.2]);
+  });
+  it('shows a gap whole, however close it was', () => {
+    const gaps = [{ from: 3, to: 7, samples: 40 }];
+    expect(show(3, 7, 3, { fromS: 1, toS: 1.4 }, { gaps })).toEqual([2, 8]);
   });
 });
 

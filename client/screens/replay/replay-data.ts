@@ -1,8 +1,9 @@
 import type { Samples } from '@/server/contract';
-import type { Analysis } from '@/signal/model';
+import type { Analysis, Finding } from '@/signal/model';
 import { directionAt } from '@/client/drawings/rail-marks';
 import type { RailEdge } from '@/client/drawings/rail-marks';
 import type { RibbonLane } from '@/client/drawings/ribbon-types';
+import { centreOn, clampWindow, spanOf } from '@/client/screens/replay/replay-window';
 import type { Window } from '@/client/screens/replay/replay-window';
 
 type ChannelAnalysis = Analysis['channels'][string];
@@ -77,12 +78,48 @@ export function aroundWindow<T extends { t: number }>(sorted: readonly T[], { fr
   return sorted.slice(Math.max(0, firstAfter(sorted, fromS) - 1), firstAfter(sorted, toS) + 1);
 }
 
-/** Where to start: about eight teeth around the worst finding, else at the beginning. */
+/** Where to start: at the worst finding as `findingWindow` shows it, else at the beginning. */
 export function firstWindow(analysis: Analysis, durationS: number): { window: Window; cursorS: number } {
   const rank = { fault: 0, warn: 1, note: 2 };
   const worst = [...analysis.findings].sort((a, b) => rank[a.severity] - rank[b.severity] || a.at - b.at)[0];
-  const at = Math.min(durationS, Math.max(0, worst?.at ?? 0));
-  const counted = Object.values(analysis.channels)[0]?.edges.filter((e) => e.rising) ?? [];
+  const cursorS = Math.min(durationS, Math.max(0, worst?.at ?? 0));
+  const whole = { fromS: 0, toS: durationS };
+  const window = worst
+    ? findingWindow(analysis, worst, whole, durationS)
+    : centreOn({ fromS: 0, toS: teethSpan(analysis, null, 0, durationS) }, 0, durationS);
+  return { window, cursorS };
+}
+
+/**
+ * What shows a finding, `now` in sight before: a gap whole with signal at either side; a stretch of some teeth whole;
+ * of a longer one about eight teeth around its instant. A picture that is closer already stays as close.
+ */
+export function findingWindow(
+  analysis: Analysis,
+  finding: Pick<Finding, 'at' | 'from' | 'to' | 'channel'>,
+  now: Window,
+  durationS: number,
+): Window {
+  const teethS = teethSpan(analysis, finding.channel, finding.at, durationS);
+  const gap = analysis.gaps.find((g) => finding.at >= g.from - 1e-6 && finding.at <= g.to + 1e-6);
+  if (gap) return about(gap.from, gap.to, Math.max(teethS, (gap.to - gap.from) * 1.5), durationS);
+  const to = finding.to ?? Infinity;
+  const short = to >= finding.from && to - finding.from <= 2 * teethS;
+  const span = short ? Math.max(teethS, (to - finding.from) * 1.25) : teethS;
+  if (span >= spanOf(now)) return centreOn(now, finding.at, durationS);
+  return short ? about(finding.from, to, span, durationS) : about(finding.at, finding.at, span, durationS);
+}
+
+function about(from: number, to: number, span: number, durationS: number): Window {
+  const fromS = (from + to - span) / 2;
+  return clampWindow({ fromS, toS: fromS + span }, durationS, 0);
+}
+
+/** How long about eight teeth take near `at`, s; half a second where no tooth is counted. */
+function teethSpan(analysis: Analysis, channel: string | null, at: number, durationS: number): number {
+  const { channels } = analysis;
+  const counted =
+    (channels[channel ?? ''] ?? Object.values(channels)[0])?.edges.filter((e) => e.rising) ?? [];
   const i = firstAfter(counted, at);
   const near = counted.slice(Math.max(0, i - 8), i + 8);
   const periods = near
@@ -90,9 +127,7 @@ export function firstWindow(analysis: Analysis, durationS: number): { window: Wi
     .map((e, k) => e.t - near[k]!.t)
     .sort((a, b) => a - b);
   const usual = periods[periods.length >> 1];
-  const span = Math.min(durationS, usual === undefined ? 0.5 : Math.min(8 * usual, 4));
-  const fromS = Math.min(Math.max(0, at - span / 2), durationS - span);
-  return { window: { fromS, toS: fromS + span }, cursorS: at };
+  return Math.min(durationS, usual === undefined ? 0.5 : Math.min(8 * usual, 4));
 }
 
 /** Index of the first entry later than `t`. */

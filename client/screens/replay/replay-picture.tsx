@@ -3,13 +3,13 @@ import { View } from 'react-native';
 import { Plate } from '@/client/components/plate';
 import { Segmented } from '@/client/components/segmented';
 import { Text } from '@/client/components/text';
-import { Overview } from '@/client/drawings/overview';
+import { Overview, overviewSentence } from '@/client/drawings/overview';
 import { Ribbon } from '@/client/drawings/ribbon';
-import { gutterPx, rightPx, speedLanePx } from '@/client/drawings/ribbon-layout';
+import { gutterPx, ribbonSentence, rightPx, speedLanePx } from '@/client/drawings/ribbon-layout';
 import type { RibbonData, RibbonLane } from '@/client/drawings/ribbon-types';
 import { speedAt, speedExtremes, zeroRange } from '@/client/drawings/speed-line';
 import { rpmText } from '@/client/drawings/speed-words';
-import { secondsText, timeScale } from '@/client/drawings/time-axis';
+import { durationText, secondsText, timeScale } from '@/client/drawings/time-axis';
 import { inWindow } from '@/client/screens/replay/replay-data';
 import { spanOf } from '@/client/screens/replay/replay-window';
 import { ScrubSurface } from '@/client/screens/replay/scrub-surface';
@@ -54,6 +54,7 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
   const cursorText = `${secondsText(cursorS, spanOf(window) / 200, Math.max(1, replay.durationS))}${rpm === null ? '' : ` · ${rpmText(rpm)} rpm`}`;
   const secondsAt = (x: number, widthPx: number) =>
     timeScale(window.fromS, window.toS, gutterPx, widthPx - rightPx).s(x);
+  const data = pictureOf(replay, analysis, lanes);
   const perPx = (widthPx: number) => spanOf(window) / (widthPx - gutterPx - rightPx);
   return (
     <Plate
@@ -64,6 +65,7 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
       <ScrubSurface
         label="Cursor in the signal"
         valueText={cursorText}
+        description={ribbonSentence(data, durationText(spanOf(window)))}
         replay={replay}
         grow={wide}
         onPoint={(x, widthPx) =>
@@ -79,7 +81,7 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
         }}
       >
         <Ribbon
-          data={pictureOf(replay, analysis, lanes)}
+          data={data}
           height={wide ? 'fill' : height}
           focus={focus}
           markS={cursorS}
@@ -118,22 +120,18 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
 export function OverviewPicture({ replay, analysis }: Omit<PictureProps, 'lanes' | 'note'>) {
   const { window, cursorS, durationS } = replay;
   const valueText = `${secondsText(cursorS, 0.01, Math.max(1, durationS))} of ${secondsText(durationS, 0.01, Math.max(1, durationS))}`;
+  const { speed = [], gaps = [], findings = [] } = analysis ?? {};
+  const drawn = { durationS, speed, gaps, findings };
   return (
     <View style={{ marginVertical: -2 }}>
       <ScrubSurface
         label="Place in the capture"
         valueText={valueText}
+        description={overviewSentence(drawn)}
         replay={replay}
         onPoint={(x, widthPx) => replay.centre((x / widthPx) * durationS)}
       >
-        <Overview
-          durationS={durationS}
-          speed={analysis?.speed ?? []}
-          gaps={analysis?.gaps ?? []}
-          findings={analysis?.findings ?? []}
-          window={window}
-          cursorS={cursorS}
-        />
+        <Overview {...drawn} window={window} cursorS={cursorS} />
       </ScrubSurface>
     </View>
   );

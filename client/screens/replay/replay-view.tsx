@@ -10,6 +10,7 @@ import { Text } from '@/client/components/text';
 import type { RibbonLane } from '@/client/drawings/ribbon-types';
 import { durationText, secondsText } from '@/client/drawings/time-axis';
 import { CaptureFacts, WordsPlate } from '@/client/screens/replay/capture-facts';
+import { findingWindow } from '@/client/screens/replay/replay-data';
 import { ReplayControls } from '@/client/screens/replay/replay-controls';
 import { OverviewPicture, RibbonPicture } from '@/client/screens/replay/replay-picture';
 import { WindowTable } from '@/client/screens/replay/replay-tables';
@@ -96,7 +97,7 @@ function WideReplay(props: ReplayViewProps & { subtitle: string }) {
 function Side({ capture, analysis, analysisState, replay, onEdit, onDelete }: ReplayViewProps) {
   const show = (finding: Finding) => {
     if (finding.channel) replay.setFocus(finding.channel);
-    replay.centre(finding.at);
+    if (analysis) replay.show(findingWindow(analysis, finding, replay.window, replay.durationS), finding.at);
   };
   return (
     <>

@@ -1,6 +1,7 @@
-import { useEffect, useRef } from 'react';
+import { useEffect, useId, useRef } from 'react';
 import type { ReactNode } from 'react';
 import { View } from 'react-native';
+import { Hidden } from '@/client/components/hidden';
 import { keyMove, pinchMove, wheelFactor } from '@/client/screens/replay/gestures';
 import type { Point } from '@/client/screens/replay/gestures';
 import { spanOf } from '@/client/screens/replay/replay-window';
@@ -16,6 +17,8 @@ type Moves = {
 type ScrubSurfaceProps = Moves & {
   label: string;
   valueText: string;
+  /** What the drawing shows, in words: nothing inside of a slider is read out. */
+  description: string;
   replay: Replay;
   children: ReactNode;
   grow?: boolean;
@@ -30,7 +33,9 @@ type PointerLike = {
 };
 
 /** A drawing that is a slider too: press, drag, pinch, wheel, and every move by keys. */
-export function ScrubSurface({ label, valueText, replay, children, grow, ...moves }: ScrubSurfaceProps) {
+export function ScrubSurface(props: ScrubSurfaceProps) {
+  const { label, valueText, description, replay, children, grow, ...moves } = props;
+  const descriptionId = useId();
   const place = useRef<View>(null);
   const pointers = useRef(new Map<number, Point>());
   useWheel(place, moves.onWheel);
@@ -57,7 +62,7 @@ export function ScrubSurface({ label, valueText, replay, children, grow, ...move
   };
   const up = (event: PointerLike) => void pointers.current.delete(event.pointerId);
 
-  return (
+  const slider = (
     <View
       ref={place}
       role="slider"
@@ -73,11 +78,18 @@ export function ScrubSurface({ label, valueText, replay, children, grow, ...move
         onPointerUp: up,
         onPointerCancel: up,
         onKeyDown: keys(replay),
+        'aria-describedby': descriptionId,
       } as object)}
       style={[surface, grow ? { flex: 1, minHeight: 0 } : null]}
     >
       {children}
     </View>
+  );
+  return (
+    <>
+      {slider}
+      <Hidden id={descriptionId}>{description}</Hidden>
+    </>
   );
 }
 

@@ -1,4 +1,5 @@
 import type { Filter, Settings, Wheel } from '@/signal/model';
+import { countText } from '@/client/drawings/count-text';
 import { shortNumber } from '@/client/components/finding-words';
 
 const family = { butterworth: 'Butterworth', bessel: 'Bessel' } as const;
@@ -28,7 +29,7 @@ export function bandWords(band: Settings['band']): string {
 export function wheelWords(wheel: Wheel): string {
   const missing = wheel.missingPulses > 0 ? `, ${wheel.missingPulses} of them missing` : '';
   const gear = wheel.gearRatio === 1 ? '' : `, gear ${shortNumber(wheel.gearRatio)}`;
-  return `${wheel.pulsesPerTurn} positions a turn${missing}${gear}`;
+  return `${countText(wheel.pulsesPerTurn, 'position')} a turn${missing}${gear}`;
 }
 
 export function methodWords(speed: Settings['speed']): string {

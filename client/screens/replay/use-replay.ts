@@ -80,8 +80,12 @@ export function useReplay(capture: { durationS: number; rateHz: number }, analys
         return { cursorS, window: zoomAbout(window, factor, about, durationS, leastS) };
       }),
     pan: (byS: number) => move(({ window, cursorS }) => ({ cursorS, window: panBy(window, byS, durationS) })),
-    show: (window: Window) =>
-      move(({ cursorS }) => ({ cursorS, window: clampWindow(window, durationS, leastS) })),
+    /** Shows just that; the cursor stays unless it is sent somewhere. */
+    show: (window: Window, s?: number) =>
+      move(({ cursorS }) => ({
+        cursorS: s === undefined ? cursorS : within(s),
+        window: clampWindow(window, durationS, leastS),
+      })),
     jump: (way: 1 | -1) => {
       const to = neighbourOf(instants, place.cursorS, way);
       if (to !== null) move(({ window }) => ({ cursorS: to, window: reveal(window, to, durationS) }));

@@ -1,4 +1,5 @@
 import { Circle, Line, Svg } from 'react-native-svg';
+import { countText } from '@/client/drawings/count-text';
 import { wheelMarks } from '@/client/screens/rig-setup/wheel-marks';
 import { useColours } from '@/client/theme/use-theme';
 
@@ -9,7 +10,7 @@ export function WheelDrawing({ pulsesPerTurn, missingPulses, size }: WheelDrawin
   const colours = useColours();
   const { marks, everyNth } = wheelMarks(pulsesPerTurn, missingPulses);
   const label =
-    `Wheel with ${pulsesPerTurn} positions` +
+    `Wheel with ${countText(pulsesPerTurn, 'position')}` +
     (missingPulses > 0 ? `, ${missingPulses} of them missing` : '') +
     (everyNth > 1 ? `; one in ${everyNth} is drawn` : '');
   const width = Math.min(0.07, (1.6 / Math.max(8, marks.length)) * 1.2);

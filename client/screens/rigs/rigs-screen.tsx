@@ -4,6 +4,7 @@ import { Screen } from '@/client/components/screen';
 import { EmptyState, Skeleton } from '@/client/components/states';
 import { useMay } from '@/client/data/app-data-context';
 import { useRigs } from '@/client/data/rigs';
+import { countText } from '@/client/drawings/count-text';
 import { RigCard } from '@/client/screens/rigs/rig-card';
 import { RigsTable } from '@/client/screens/rigs/rigs-table';
 import { LinkBanner } from '@/client/screens/shared/link-banner';
@@ -22,7 +23,7 @@ export function RigsScreen() {
   return (
     <Screen
       title="Rigs"
-      subtitle={count > 0 ? (count === 1 ? '1 rig' : `${count} rigs`) : undefined}
+      subtitle={count > 0 ? countText(count, 'rig') : undefined}
       actions={may && count > 0 ? newRig : null}
       banner={<LinkBanner />}
       width="full"

@@ -4,6 +4,7 @@ import { Button } from '@/client/components/button';
 import { Screen } from '@/client/components/screen';
 import { EmptyState, Skeleton } from '@/client/components/states';
 import { Text } from '@/client/components/text';
+import { countText } from '@/client/drawings/count-text';
 import { useCaptures } from '@/client/data/captures';
 import { CaptureCard } from '@/client/screens/shelf/capture-card';
 import { CapturesTable } from '@/client/screens/shelf/captures-table';
@@ -55,7 +56,11 @@ export function ShelfScreen() {
       )}
       {/* For those who do not see the list change while they type. */}
       <Text role="status" size="tiny" style={spokenOnly}>
-        {captures.isFetching ? '' : `${items.length}${captures.hasNextPage ? ' or more' : ''} captures`}
+        {captures.isFetching
+          ? ''
+          : captures.hasNextPage
+            ? `${items.length} or more captures`
+            : countText(items.length, 'capture')}
       </Text>
     </Screen>
   );

@@ -1,3 +1,4 @@
+import { countText } from '@/client/drawings/count-text';
 import { durationText } from '@/client/drawings/time-axis';
 import type { RibbonWish } from '@/server/contract';
 
@@ -46,5 +47,5 @@ export function wishOf(span: Span, widthPx: number, aroundS: number | null = nul
 }
 
 export function spanText(span: Span): string {
-  return span.unit === 'teeth' ? `${span.teeth} teeth` : durationText(span.spanS);
+  return span.unit === 'teeth' ? countText(span.teeth, 'tooth', 'teeth') : durationText(span.spanS);
 }
