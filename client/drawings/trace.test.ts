@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { timeScale } from '@/client/drawings/time-axis';
-import { steadyRange, tracePaths, wantedRange } from '@/client/drawings/trace';
+import { calmColumns, steadyRange, tracePaths, wantedRange } from '@/client/drawings/trace';
 
 const time = timeScale(0, 10, 0, 100);
 const y = (v: number) => 100 - v * 10;
@@ -31,6 +31,22 @@ describe('tracePaths', () => {
   it('gives clipped columns once more', () => {
     const { clipped } = tracePaths(one([1, 5, 5, 1]), time, y, { lowV: null, highV: 5 });
     expect(clipped).toBe('M10.0 50.0h.01L20.0 50.0');
+  });
+});
+
+describe('calmColumns', () => {
+  const range = { lowV: 0, highV: 10 };
+  const columns = { firstS: 0, stepS: 1, min: [1, 2, null, 4.5], max: [2, 8, null, 5] };
+  it('takes the middle of flat columns and leaves the others', () => {
+    const calm = calmColumns(columns, range, noClip);
+    expect(calm.min).toEqual([1.5, 2, null, 4.75]);
+    expect(calm.max).toEqual([1.5, 8, null, 4.75]);
+  });
+  it('leaves what stands at a clip level', () => {
+    expect(calmColumns(columns, range, { lowV: 1, highV: 5 })).toMatchObject({
+      min: columns.min,
+      max: columns.max,
+    });
   });
 });
 

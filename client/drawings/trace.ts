@@ -64,6 +64,30 @@ export function tracePaths(
   return { trace, clipped };
 }
 
+/**
+ * Where a column spans little of the lane's range, its middle alone: a few samples a column on a smooth signal else
+ * draw stairs. Columns at a clip level, steep flanks and noise keep their extremes.
+ */
+export function calmColumns(
+  columns: Columns,
+  range: Range,
+  clip: { lowV: number | null; highV: number | null },
+): Columns {
+  const most = (range.highV - range.lowV) * calmShare;
+  const min = [...columns.min];
+  const max = [...columns.max];
+  for (let i = 0; i < min.length; i++) {
+    const a = min[i];
+    const b = max[i];
+    if (a == null || b == null || b - a > most) continue;
+    if (b >= (clip.highV ?? Infinity) || a <= (clip.lowV ?? -Infinity)) continue;
+    min[i] = max[i] = (a + b) / 2;
+  }
+  return { ...columns, min, max };
+}
+
+const calmShare = 0.12;
+
 export type Range = { lowV: number; highV: number };
 
 /** What a lane must show: the swing, the band and every sample, with 8 % of air; never flatter than 20 mV. */

@@ -2,7 +2,7 @@ import { Line, Path, Rect, Svg } from 'react-native-svg';
 import type { Rig } from '@/server/contract';
 import { Drawing } from '@/client/drawings/figure';
 import { timeScale } from '@/client/drawings/time-axis';
-import { tracePaths, wantedRange } from '@/client/drawings/trace';
+import { calmColumns, tracePaths, wantedRange } from '@/client/drawings/trace';
 import { ribbonDataOf } from '@/client/screens/watch/live-data';
 import type { LiveRigView } from '@/client/data/use-live';
 import { useColours } from '@/client/theme/use-theme';
@@ -53,7 +53,7 @@ export function MiniRibbon({ rig, view, height, live }: MiniRibbonProps) {
               // A switching sensor stands at the rails by its nature.
               const kind = rig.channels.find((c) => c.name === lane.channel)?.sensor.kind;
               const clip = kind === 'linear' ? { lowV: lane.clipLowV, highV: lane.clipHighV } : noClip;
-              const { trace, clipped } = tracePaths(lane, time, y, clip);
+              const { trace, clipped } = tracePaths(calmColumns(lane, range, clip), time, y, clip);
               return [
                 band ? (
                   <Rect
@@ -65,7 +65,14 @@ export function MiniRibbon({ rig, view, height, live }: MiniRibbonProps) {
                     fill={colours.band}
                   />
                 ) : null,
-                <Path key={lane.channel} d={trace} fill="none" stroke={colours.scribe} strokeWidth={1.5} />,
+                <Path
+                  key={lane.channel}
+                  d={trace}
+                  fill="none"
+                  stroke={colours.scribe}
+                  strokeWidth={1.5}
+                  strokeLinejoin="round"
+                />,
                 clipped ? (
                   <Path
                     key={`${lane.channel} clip`}

@@ -33,7 +33,7 @@ function NameCell({ rig }: { rig: Rig }) {
   return (
     <Link
       href={rigPath.watch(rig.id) as Href}
-      style={{ display: 'flex', alignItems: 'center', minHeight: size.target, maxWidth: 340 } as object}
+      style={{ display: 'flex', alignItems: 'center', minHeight: size.target, maxWidth: 300 } as object}
     >
       <Text weight="medium" tone="dye" lines={3}>
         {rig.name}
@@ -72,7 +72,7 @@ function HealthCell({ rig }: { rig: Rig }) {
 function StateCell({ rig }: { rig: Rig }) {
   const { saying, lastBlock } = useRigNow(rig, null);
   return (
-    <View style={{ minWidth: 190 }}>
+    <View style={{ width: 200 }}>
       <Text size="small">{stateWords(saying)}</Text>
       <Text size="small" tone="scribeSoft" figures>
         {lastBlock}
