@@ -15,7 +15,7 @@ export function Facts({ facts }: { facts: readonly Fact[] }) {
       <View key={fact.name} style={{ flexDirection: 'row', justifyContent: 'space-between', gap: space.m }}>
         {createElement(
           'dt',
-          { style: { flexShrink: 0, maxWidth: '50%' } },
+          { style: { flexShrink: 0, maxWidth: '50%', minWidth: 0 } },
           <Text size="small" tone="scribeSoft">
             {fact.name}
           </Text>,

@@ -151,7 +151,7 @@ test('a board that stops blanks the speed and says since when', async ({ page },
   expect(await farButton(page).textContent()).not.toMatch(/\d/);
   const { lastBlockAt } = await call<Live>('GET', `/rigs/${rig.id}/live`);
   const since = await page.evaluate(
-    (at) => new Date(at).toLocaleTimeString(undefined, { timeStyle: 'medium', hour12: false }),
+    (at) => new Date(at).toLocaleTimeString(undefined, { timeStyle: 'medium' }),
     lastBlockAt ?? '',
   );
   await expect(speedOf(page)).toContainText(`no block since ${since}`);

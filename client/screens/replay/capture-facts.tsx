@@ -113,7 +113,7 @@ function countedFacts(analysis: Analysis): Fact[] {
   return facts;
 }
 
-/** The instant to the second, in the reader's zone. */
+/** The instant to the second with its zone, the reader's. */
 function momentText(instant: string): string {
-  return new Date(instant).toLocaleString(undefined, { dateStyle: 'medium', timeStyle: 'medium' });
+  return new Date(instant).toLocaleString(undefined, { dateStyle: 'medium', timeStyle: 'long' });
 }

@@ -1,8 +1,8 @@
-/** "14:03" today, "2 Mar 14:03" else, "2 Mar 2025" in another year; in the reader's zone. */
+/** "14:03" today, "2 Mar 14:03" else, "2 Mar 2025" in another year; in the reader's zone, 12 or 24 hours as usual there. */
 export function shortInstant(instant: string, nowMs: number, locale?: string): string {
   const then = new Date(instant);
   const now = new Date(nowMs);
-  const time = then.toLocaleTimeString(locale, { hour: '2-digit', minute: '2-digit' });
+  const time = then.toLocaleTimeString(locale, { timeStyle: 'short' });
   if (then.toDateString() === now.toDateString()) return time;
   const sameYear = then.getFullYear() === now.getFullYear();
   const day = then.toLocaleDateString(locale, {

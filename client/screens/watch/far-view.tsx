@@ -52,12 +52,14 @@ export function FarView({ open, rigName, now, onClose }: FarViewProps) {
             </Text>
           </Row>
           <BigSpeed saying={saying} most={most} />
-          <Text
-            tone={saying.loud ? 'fault' : 'scribeSoft'}
-            style={[plainFigures, { fontSize: line * 0.55, lineHeight: line * 0.75 }]}
-          >
-            {saying.small}
-          </Text>
+          {saying.small ? (
+            <Text
+              tone={saying.loud ? 'fault' : 'scribeSoft'}
+              style={[plainFigures, { fontSize: line * 0.55, lineHeight: line * 0.75 }]}
+            >
+              {saying.small}
+            </Text>
+          ) : null}
           <Row>
             {health.status === 'good' || health.status === 'unknown' ? null : (
               <SeverityShape severity={health.status} size={line} />

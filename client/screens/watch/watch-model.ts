@@ -50,12 +50,7 @@ export function watchNow(rig: Pick<Rig, 'sensing'>, view: LiveRigView, nowMs: nu
   };
 }
 
-/** "13:52:07" in the reader's zone. */
+/** "13:52:07" in the reader's zone, 12 or 24 hours as usual there. */
 export function clockText(instant: string, locale?: string): string {
-  return new Date(instant).toLocaleTimeString(locale, {
-    hour: '2-digit',
-    minute: '2-digit',
-    second: '2-digit',
-    hour12: false,
-  });
+  return new Date(instant).toLocaleTimeString(locale, { timeStyle: 'medium' });
 }
