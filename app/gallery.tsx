@@ -1,11 +1,5 @@
-import { lazy, Suspense } from 'react';
+import { lazyPage } from '@/client/screens/shell/lazy-page';
 
-const Gallery = lazy(async () => ({ default: (await import('@/client/screens/gallery/gallery')).Gallery }));
+const Gallery = lazyPage(async () => (await import('@/client/screens/gallery/gallery')).Gallery);
 
-export default function GalleryRoute() {
-  return (
-    <Suspense fallback={null}>
-      <Gallery />
-    </Suspense>
-  );
-}
+export default Gallery;

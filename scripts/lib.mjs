@@ -61,6 +61,7 @@ export function ensureWebBuilt() {
     'assets',
     'public',
     'app.json',
+    'metro.config.mjs',
     'package-lock.json',
   ];
   onceFor('web', inputs, 'dist/web/index.html', () => {

@@ -1,1 +1,5 @@
-export { NewRigScreen as default } from '@/client/screens/rig-setup/new-rig-screen';
+import { lazyPage } from '@/client/screens/shell/lazy-page';
+
+const NewRigScreen = lazyPage(async () => (await import('@/client/screens/rig-setup/pages')).NewRigScreen);
+
+export default NewRigScreen;

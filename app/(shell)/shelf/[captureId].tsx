@@ -1,5 +1,9 @@
 import { useLocalSearchParams } from 'expo-router';
-import { ReplayScreen } from '@/client/screens/replay/replay-screen';
+import { lazyPage } from '@/client/screens/shell/lazy-page';
+
+const ReplayScreen = lazyPage(
+  async () => (await import('@/client/screens/replay/pages')).ReplayScreen,
+);
 
 export default function ReplayRoute() {
   const { captureId } = useLocalSearchParams<{ captureId: string }>();

@@ -1,5 +1,9 @@
 import { useLocalSearchParams } from 'expo-router';
-import { ConnectScreen } from '@/client/screens/connect/connect-screen';
+import { lazyPage } from '@/client/screens/shell/lazy-page';
+
+const ConnectScreen = lazyPage(
+  async () => (await import('@/client/screens/connect/connect-screen')).ConnectScreen,
+);
 
 export default function ConnectRoute() {
   const { rigId } = useLocalSearchParams<{ rigId: string }>();

@@ -1,5 +1,9 @@
 import { useLocalSearchParams } from 'expo-router';
-import { RigSetupScreen } from '@/client/screens/rig-setup/rig-setup-screen';
+import { lazyPage } from '@/client/screens/shell/lazy-page';
+
+const RigSetupScreen = lazyPage(
+  async () => (await import('@/client/screens/rig-setup/pages')).RigSetupScreen,
+);
 
 export default function RigSetupRoute() {
   const { rigId } = useLocalSearchParams<{ rigId: string }>();
