@@ -65,6 +65,15 @@ describe('jitter', () => {
     expect(fit.peakToPeakS).toBeGreaterThan(fit.rmsS);
   });
 
+  it('a ramp without noise is read to the last digit: first instant, first period, drift', () => {
+    const edges = Float64Array.from({ length: 9 }, (_, k) => 2 + 0.5 * k + 0.03 * k * k);
+    const { startS, periodS, driftS, rmsS } = valueOf(timeIntervalError(edges, 'drifting'));
+    expect(startS).toBeCloseTo(2, 12);
+    expect(periodS).toBeCloseTo(edges[1]! - edges[0]!, 12);
+    expect(driftS).toBeCloseTo(0.06, 12);
+    expect(rmsS).toBeLessThan(1e-12);
+  });
+
   it('without its trend a ramp of speed has the jitter of a steady shaft', () => {
     const random = normal(seeded(9));
     const ramp = passes(new Array<number>(30).fill(1 / 30), 10, 20, 0.4).map((t) => t + 1e-6 * random());

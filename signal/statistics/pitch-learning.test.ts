@@ -44,7 +44,7 @@ describe('pitch learning', () => {
         fc.double({ min: 5, max: 100, noNaN: true }),
         fc.double({ min: -1, max: 2, noNaN: true }),
         (n, seed, revPerS, ramp) => {
-          const shares = uneven(n, 0.08, seed);
+          const shares = uneven(n, 0.045, seed);
           // At most 0.08 % a tooth, and a third of the speed lost over the record.
           const learner = learnerOf(n);
           const teeth = passes(shares, 25, revPerS, ramp * revPerS * revPerS * Math.min(0.01, 4e-4 * n));

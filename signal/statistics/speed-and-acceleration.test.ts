@@ -66,6 +66,7 @@ describe('speed over a window', () => {
     expect(valueOf(countResolution(0.2, 30))).toEqual({ stepRpm: 10, delayS: 0.1, floorRpm: 10 });
     expect(valueOf(periodResolution(600, 10, 1e6, 2))).toMatchObject({ delayS: 0.005, floorRpm: 3 });
     expect(valueOf(gateResolution(600, 10, 1e6, 0.025, 2))).toMatchObject({ delayS: 0.015, floorRpm: 3 });
+    expect(valueOf(gateResolution(100, 10, 100, 0.1, 2)).stepRpm).toBeCloseTo(100 / 9, 9);
     expect(valueOf(gateResolution(600, 10, 1e6, 0.03, 2)).delayS).toBeCloseTo(0.015, 12);
   });
 });

@@ -53,6 +53,7 @@ describe('state levels', () => {
     expect(issueOf(stateLevels([2.5]))).toBe('no-two-states');
     expect(issueOf(stateLevels(noise, { method: 'mode', bins: 100, noiseV: 0.01 }))).toBe('no-two-states');
     expect(issueOf(stateLevels(noise, { method: 'mean', bins: 100, noiseV: 0.01 }))).toBe('no-two-states');
+    expect(issueOf(stateLevels(noise))).toBe('no-two-states');
     expect(issueOf(stateLevels([0, 0.03, 0, 0.03], { method: 'mode', bins: 100, noiseV: 0.01 }))).toBe(
       'no-two-states',
     );

@@ -30,6 +30,13 @@ describe('transitions', () => {
     expect(transitions[0]!.extraMidCrossings).toBe(4);
   });
 
+  it('takes the last tenth before the middle, not a later one of the same bounce', () => {
+    const { transitions } = find([0, 2, 0.5, 6, 0.5, 7, 10, 10]);
+    expect(transitions).toHaveLength(1);
+    expect(transitions[0]!.t10S).toBeCloseTo(102 + 0.5 / 5.5, 12);
+    expect(transitions[0]!.t90S).toBeCloseTo(105 + 2 / 3, 12);
+  });
+
   it('counts runts, and no noise within the states', () => {
     const { transitions, runts } = find([0, 0.1, 0, 7, 0, 0.5, 0, 10, 4, 10, 9.95, 10]);
     expect(transitions.map(({ rising }) => rising)).toEqual([true]);

@@ -8,7 +8,7 @@
  * Source: F. Gustafsson, IEEE Trans. Signal Processing 44 (1996) 988-992 for the problem of the ends; the odd extension
  * is the common way of toolboxes.
  */
-import { createCascade, primeCascade, runCascade } from '@/signal/biquad';
+import { createCascade, runCascade } from '@/signal/biquad';
 import type { Section } from '@/signal/filter-design';
 import { got, notFinite, refused, type Outcome } from '@/signal/statistics/issue';
 
@@ -57,9 +57,8 @@ export function filterZeroPhase(
   const pad = Math.min(n - 1, padding ?? memory.value);
   const buffer = oddExtension(volts, pad);
   for (let pass = 0; pass < 2; pass++) {
-    const cascade = createCascade(sections);
-    primeCascade(cascade, buffer[0]!);
-    runCascade(cascade, buffer, 0, buffer.length);
+    // A new chain primes itself from the first sample that it is given.
+    runCascade(createCascade(sections), buffer, 0, buffer.length);
     buffer.reverse();
   }
   const out = buffer.slice(pad, pad + n);
