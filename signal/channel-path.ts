@@ -42,6 +42,8 @@ export class ChannelPath implements FinderHost {
   readonly levels: Levels = createLevels();
   /** Rms of the filtered signal's noise, V, as of the last tick; NaN: not known. */
   noiseV = NaN;
+  /** Smallest step between neighbouring values as of the last tick, V. */
+  private quantumV = 0;
   rejectedCount = 0;
 
   private readonly band: Band;
@@ -174,7 +176,7 @@ export class ChannelPath implements FinderHost {
     let j = 1;
     while (j <= n) {
       if (finder.hunting) {
-        j = finder.huntOn(v, j, n, base, watch.noise.quantumV);
+        j = finder.huntOn(v, j, n, base, this.quantumV);
       } else {
         j = runDetector(detector, v, j, n, base, this);
         if (detector.edges.count > 0) this.takeEdges();
@@ -200,6 +202,7 @@ export class ChannelPath implements FinderHost {
   tick(): void {
     const { noise } = this.watch;
     flushCascade(this.cascade);
+    this.quantumV = noise.quantumV;
     this.finder.forgetQuiet(this.nextAt, noise.quantumV);
     // With fewer samples a period the differences hold more signal than noise.
     this.noiseV = this.intake.periodSamples < fewestForNoise ? NaN : rawNoiseV(noise) * this.gainOfNoise;

@@ -24,6 +24,8 @@ export function createIntervalMeter(): IntervalMeter {
 
 /** The interval of `intervalS` that a tooth at `t` closes, on a wheel that lacks `missing` teeth in a row. */
 export function noteInterval(meter: IntervalMeter, intervalS: number, t: number, missing: number): void {
+  // The delay that is taken off may change between two edges, more than bounce lies apart.
+  if (!(intervalS > 0)) return;
   meter.counted++;
   // The wheel's own gap is longer by the missing teeth.
   if (intervalS >= stepUp * (missing + 1) * meter.previousS) {
