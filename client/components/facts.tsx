@@ -6,6 +6,9 @@ import type { ColourName } from '@/client/theme/tokens';
 
 export type Fact = { name: string; value: string; tone?: ColourName };
 
+/** Letters of a value that leaves most of the width to a long name. */
+const shortValue = 12;
+
 /** Names left, values right. */
 export function Facts({ facts }: { facts: readonly Fact[] }) {
   return createElement(
@@ -15,7 +18,7 @@ export function Facts({ facts }: { facts: readonly Fact[] }) {
       <View key={fact.name} style={{ flexDirection: 'row', justifyContent: 'space-between', gap: space.m }}>
         {createElement(
           'dt',
-          { style: { flexShrink: 0, maxWidth: '50%', minWidth: 0 } },
+          { style: { flexShrink: 0, maxWidth: fact.value.length > shortValue ? '50%' : '75%', minWidth: 0 } },
           <Text size="small" tone="scribeSoft">
             {fact.name}
           </Text>,

@@ -56,7 +56,8 @@ export function Segmented<V extends string>({ label, value, options, onChange, b
               style={{
                 minHeight: size.button,
                 minWidth: size.button,
-                ...(oneRow ? { flexGrow: 1 } : { width: `${100 / columns}%` }),
+                flexGrow: 1,
+                ...(oneRow ? null : { width: `${100 / columns}%` }),
                 alignItems: 'center',
                 justifyContent: 'center',
                 paddingHorizontal: space.m,

@@ -41,7 +41,7 @@ export function RigCard({ rig }: { rig: Rig }) {
             <Text size="small" tone="scribeSoft" style={{ flexShrink: 1 }}>
               {stateWords(saying)}
             </Text>
-            <Text size="small" tone="scribeSoft" figures>
+            <Text size="small" tone="scribeSoft" figures style={{ flexShrink: 0 }}>
               {lastBlock}
             </Text>
           </View>

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import type { Finding } from '@/signal/model';
 import type { LiveRigView } from '@/client/data/use-live';
 import { demoFrame } from '@/client/screens/gallery/demo-frame';
-import { watchNow } from '@/client/screens/watch/watch-model';
+import { clockText, watchNow } from '@/client/screens/watch/watch-model';
 
 const rig = { sensing: 'quadrature' as const };
 const frame = demoFrame({ atS: 3 });
@@ -64,5 +64,14 @@ describe('watchNow', () => {
       frame: { ...frame, live: { ...frame.live, setupProblem: 'cutoff above half the rate' } },
     };
     expect(watchNow(rig, broken, atMs).health.word).toBe('settings do not run');
+  });
+});
+
+describe('clockText', () => {
+  const at = new Date(2026, 2, 5, 15, 5, 7).toISOString();
+  it('has 12 or 24 hours as the locale has', () => {
+    expect(clockText(at, 'second', 'en-GB')).toBe('15:05:07');
+    expect(clockText(at, 'minute', 'de')).toBe('15:05');
+    expect(clockText(at, 'minute', 'en-US')).toMatch(/^3:05\sPM$/);
   });
 });

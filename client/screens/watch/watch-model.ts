@@ -51,6 +51,6 @@ export function watchNow(rig: Pick<Rig, 'sensing'>, view: LiveRigView, nowMs: nu
 }
 
 /** "13:52:07" in the reader's zone, 12 or 24 hours as usual there. */
-export function clockText(instant: string, locale?: string): string {
-  return new Date(instant).toLocaleTimeString(locale, { timeStyle: 'medium' });
+export function clockText(instant: string, to: 'second' | 'minute' = 'second', locale?: string): string {
+  return new Date(instant).toLocaleTimeString(locale, { timeStyle: to === 'second' ? 'medium' : 'short' });
 }

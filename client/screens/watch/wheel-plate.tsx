@@ -17,19 +17,21 @@ type WheelPlateProps = { face: Face; live: LiveFrame['live']; gearRatio: number;
 
 export function WheelPlate({ face, live, gearRatio, size }: WheelPlateProps) {
   const { scale } = wheelDrawing(face, size / 2 - 4);
-  const turns = live.turns === null ? '' : `turn ${Math.floor(live.turns)}`;
-  const since = live.turnsSince ? ` since ${clockText(live.turnsSince).slice(0, 5)}` : '';
+  const turns = live.turns === null ? '' : `turn ${String(Math.floor(live.turns)).replace('-', '\u2212')}`;
+  const since = live.turnsSince ? ` since ${clockText(live.turnsSince, 'minute')}` : '';
   return (
-    <Plate role="region" label="Wheel face" style={{ gap: 0, paddingTop: space.m, paddingBottom: space.xs }}>
+    <Plate
+      role="region"
+      label="Wheel face"
+      style={{ gap: 0, paddingTop: space.m, paddingBottom: face.numbered ? space.xs : space.m }}
+    >
       <WheelFace
         face={face}
         rpm={live.speedRpm === null ? null : live.speedRpm * gearRatio}
         direction={live.direction}
         size={size}
       />
-      <View
-        style={{ flexDirection: 'row', justifyContent: 'space-between', alignItems: 'center', gap: space.s }}
-      >
+      <View style={{ flexDirection: 'row', alignItems: 'center', gap: space.s, marginRight: -space.m }}>
         <View style={{ flex: 1 }}>
           <Text size="tiny" tone="scribeSoft" figures>
             spacing error × {scale}
@@ -93,7 +95,8 @@ export function NumbersPlate({ live }: { live: LiveFrame['live'] }) {
     facts.push({ name: 'tooth frequency', value: `${rates.toothHz.toFixed(1)} Hz` });
   if (rates.toothHz && rates.declaredHz)
     facts.push({ name: 'samples a tooth', value: (rates.declaredHz / rates.toothHz).toFixed(1) });
-  if (phaseDeg !== null) facts.push({ name: 'phase A to B', value: `${phaseDeg.toFixed(1)}°` });
+  if (phaseDeg !== null)
+    facts.push({ name: 'phase A to B', value: `${phaseDeg.toFixed(1).replace('-', '\u2212')}°` });
   const duties = channels.filter((c) => c.duty !== null);
   if (duties.length > 0)
     facts.push({
