@@ -19,7 +19,7 @@ export function WheelPart() {
           name="wheel.pulsesPerTurn"
           label={threeHall ? 'Pole pairs' : 'Pulses per turn'}
           help={
-            threeHall ? 'Pairs of poles of the wheel.' : 'Positions of the wheel, the missing ones counted.'
+            threeHall ? 'Pairs of poles of the wheel.' : 'Positions, the missing ones counted.'
           }
         />
         <FormNumber
