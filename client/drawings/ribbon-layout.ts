@@ -61,7 +61,8 @@ export function keepRanges(held: Map<string, Range>, lane: RibbonLane): Range {
 
 /** The ribbon in a sentence or two. */
 export function ribbonSentence(data: RibbonData, spanText: string): string {
-  const counted = data.edges.filter((e) => e.rising && e.channel === data.lanes[0]?.channel).length;
+  const listed = data.edges.filter((e) => e.rising && e.channel === data.lanes[0]?.channel).length;
+  const counted = data.counts?.teeth ?? listed;
   const lanes = data.lanes
     .map(
       (l) =>
@@ -70,7 +71,7 @@ export function ribbonSentence(data: RibbonData, spanText: string): string {
     .join(', ');
   const gaps = data.gaps.filter((g) => g.to > data.fromS && g.from < data.toS).length;
   const lost = gaps === 0 ? '' : ` ${countText(gaps, 'gap')} with lost samples.`;
-  const crossings = data.rejected.length;
+  const crossings = data.counts?.rejected ?? data.rejected.length;
   const rejected = crossings === 0 ? '' : ` ${countText(crossings, 'crossing')} not counted.`;
   return `Signal over ${spanText}, ${data.lanes.length === 1 ? 'channel' : 'channels'} ${lanes || 'none'}. ${countText(counted, 'tooth', 'teeth')} counted.${rejected}${lost}`;
 }

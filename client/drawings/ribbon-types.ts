@@ -20,6 +20,8 @@ export type RibbonData = {
   lanes: readonly RibbonLane[];
   edges: readonly RailEdge[];
   rejected: readonly { channel: string; t: number }[];
+  /** How many there are, where the lists hold only what can be told apart in the picture. */
+  counts?: { teeth: number; rejected: number };
   gaps: readonly RibbonGap[];
 };
 

@@ -97,6 +97,7 @@ export const ribbon = z.object({
       clipHighV: z.number().nullable(),
     }),
   ),
+  /** Marks of the rail; where they would stand closer than a column, one for each kind and column. */
   edges: z.array(
     z.object({
       channel: z.string(),
@@ -106,6 +107,8 @@ export const ribbon = z.object({
     }),
   ),
   rejected: z.array(z.object({ channel: z.string(), t: z.number() })),
+  /** All of them, also those that are not in the lists above. */
+  edgeCounts: z.array(z.object({ channel: z.string(), edges: z.number(), rejected: z.number() })),
   gaps: z.array(
     z.object({ from: z.number(), to: z.number(), lostSamples: z.number(), estimated: z.boolean() }),
   ),

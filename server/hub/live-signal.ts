@@ -13,7 +13,6 @@ import { SpeedHistory } from '@/server/hub/speed-history';
 
 const ringSeconds = 20;
 const ringMaxSamples = 1 << 20;
-const marksHeld = 4096;
 const gapsHeld = 256;
 
 export const markRising = 1;
@@ -45,8 +44,8 @@ export class LiveSignal {
     this.nextIndex = startIndex;
     const capacity = Math.min(ringMaxSamples, Math.max(4096, Math.ceil(rateHz * ringSeconds)));
     this.signals = channels.map(() => new RecentSignal(capacity, { voltsPerCode: 1, codeOffset: 0 }));
-    this.edges = channels.map(() => new RecentMarks(marksHeld));
-    this.rejected = channels.map(() => new RecentMarks(marksHeld));
+    this.edges = channels.map(() => new RecentMarks());
+    this.rejected = channels.map(() => new RecentMarks());
     this.configure(rig);
   }
 

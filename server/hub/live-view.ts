@@ -70,6 +70,8 @@ export function liveOf(now: RigNow, nowMs: number): Live {
 
 const defaultTeeth = 6;
 const freeRunningS = 1;
+/** Marks of one lane in a frame; above it they are thinned to one a column. */
+const mostMarks = 500;
 
 /** Stretch to draw: a number of teeth up to the last counted edge, or the newest seconds. */
 function windowOf(
@@ -105,9 +107,15 @@ export function ribbonOf(
   const group = Math.max(1, Math.ceil((spanS * rateHz) / wish.columns));
   const firstIndex = Math.floor((fromS * rateHz) / group) * group;
   const count = Math.max(1, Math.ceil((toS * rateHz - firstIndex) / group) + 1);
+  // Closer ones merge in the picture, and a minute of teeth would make a frame of megabytes.
+  const marksApartS = signal.edges.some((edges) => edges.count(fromS, toS) > mostMarks)
+    ? spanS / wish.columns
+    : 0;
   const marks = (of: LiveSignal['edges']) =>
     of.flatMap((marksOfChannel, i) =>
-      marksOfChannel.between(fromS, toS).map((mark) => ({ channel: signal.channels[i] as string, ...mark })),
+      marksOfChannel
+        .between(fromS, toS, marksApartS)
+        .map((mark) => ({ channel: signal.channels[i] as string, ...mark })),
     );
   const columnsOf = (recent: LiveSignal['signals'][number] | undefined, channel: Channel | undefined) => {
     if (recent === undefined || channel === undefined) return { min: [], max: [] };
@@ -146,6 +154,11 @@ export function ribbonOf(
       rising: (flags & markRising) !== 0,
       direction:
         (flags & markForward) !== 0 ? 'forward' : (flags & markReverse) !== 0 ? 'reverse' : 'unknown',
+    })),
+    edgeCounts: signal.channels.map((channel, i) => ({
+      channel,
+      edges: signal.edges[i]?.count(fromS, toS) ?? 0,
+      rejected: signal.rejected[i]?.count(fromS, toS) ?? 0,
     })),
     rejected: marks(signal.rejected).map(({ channel, t }) => ({ channel, t })),
     gaps: signal.gaps

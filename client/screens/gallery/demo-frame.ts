@@ -127,6 +127,7 @@ export function demoFrame(options: DemoOptions): LiveFrame {
       lanes,
       edges,
       rejected,
+      edgeCounts: [],
       gaps: gap ? [{ ...gap, lostSamples: 48, estimated: false }] : [],
     },
     wheelFace: {

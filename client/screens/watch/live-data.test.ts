@@ -22,10 +22,20 @@ const ribbon = {
   lanes: [lane],
   edges: [],
   rejected: [],
+  edgeCounts: [],
   gaps: [],
 };
 
 describe('ribbonDataOf', () => {
+  it('says how many teeth there are where the marks were thinned, and leaves counting to the list else', () => {
+    const edges = [{ channel: 'A', t: 1.5, rising: true, direction: 'unknown' as const }];
+    const of = (count: number) =>
+      ribbonDataOf({ ...ribbon, edges, edgeCounts: [{ channel: 'A', edges: count, rejected: 3 }] }, [])
+        .counts;
+    expect(of(4001)).toEqual({ teeth: 2001, rejected: 3 });
+    expect(of(1)).toBeUndefined();
+  });
+
   it('draws a band only where both its points are known', () => {
     expect(ribbonDataOf(ribbon, []).lanes[0]!.bands).toEqual([]);
     const known = ribbonDataOf({ ...ribbon, lanes: [{ ...lane, releaseV: 0.8 }] }, []);

@@ -8,11 +8,22 @@ type FrameRibbon = NonNullable<LiveFrame['ribbon']>;
 
 /** What a frame says of the signal, as the ribbon draws it: the band stands still for the length of a window. */
 export function ribbonDataOf(ribbon: FrameRibbon, channels: readonly Channel[] = []): RibbonData {
-  const { fromS, toS, firstS, stepS, edges, rejected, gaps } = ribbon;
+  const { fromS, toS, firstS, stepS, edges, rejected, gaps, edgeCounts } = ribbon;
+  const first = edgeCounts.find((c) => c.channel === ribbon.lanes[0]?.channel);
+  const thinned = edgeCounts.reduce((sum, c) => sum + c.edges, 0) > edges.length;
   return {
     fromS,
     toS,
     edges,
+    // A tooth has two edges, and of thinned marks their kinds are not known.
+    ...(thinned && first
+      ? {
+          counts: {
+            teeth: Math.round(first.edges / 2),
+            rejected: edgeCounts.reduce((sum, c) => sum + c.rejected, 0),
+          },
+        }
+      : {}),
     rejected,
     gaps,
     lanes: ribbon.lanes.map(({ operateV, releaseV, ...lane }) => ({
