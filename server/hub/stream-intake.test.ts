@@ -63,6 +63,17 @@ function stored(spool: Spool, streamId: number): number[] {
   return values;
 }
 
+/** One open stream, nothing of it held yet. */
+function oneStream() {
+  const databases = openDatabases({ dataDir: ':memory:', durability: 'normal' });
+  opened.push(databases);
+  const { spool } = databases;
+  const b = bench(spool);
+  const streamId = spool.openStream({ rigId: 'r', name: 'boot', rateHz, channels: ['A'], nowMs: 0 });
+  const opening = { rateHz, channels: ['A'], lastBlockAtMs: 0 };
+  return { b, spool, streamId, intake: new StreamIntake(streamId, 'r', 'boot', opening, b.events) };
+}
+
 describe('a stream on its way in', () => {
   it('stores every block once and in order, however they come and whatever commit fails', () => {
     const deal = fc.record({
@@ -124,23 +135,7 @@ describe('a stream on its way in', () => {
   });
 
   it('acks nothing before the commit, and says unavailable when it fails', () => {
-    const databases = openDatabases({ dataDir: ':memory:', durability: 'normal' });
-    opened.push(databases);
-    const b = bench(databases.spool);
-    const streamId = databases.spool.openStream({
-      rigId: 'r',
-      name: 'boot',
-      rateHz,
-      channels: ['A'],
-      nowMs: 0,
-    });
-    const intake = new StreamIntake(
-      streamId,
-      'r',
-      'boot',
-      { rateHz, channels: ['A'], lastBlockAtMs: 0 },
-      b.events,
-    );
+    const { b, spool, streamId, intake } = oneStream();
     const seen: string[] = [];
     const note = (outcome: BlockOutcome) => void seen.push(outcome.result);
     intake.offer(blockOf(5, 4), 0, note, 0);
@@ -150,27 +145,11 @@ describe('a stream on its way in', () => {
     intake.offer(blockOf(5, 4), 0, note, 0);
     b.commit(true);
     expect([seen, intake.ackedSeq]).toEqual([['unavailable', 'duplicate'], 5]);
-    expect(stored(databases.spool, streamId)).toEqual([500, 501, 502, 503]);
+    expect(stored(spool, streamId)).toEqual([500, 501, 502, 503]);
   });
 
   it('keeps a gap as it was told, and refuses what comes after all', () => {
-    const databases = openDatabases({ dataDir: ':memory:', durability: 'normal' });
-    opened.push(databases);
-    const b = bench(databases.spool);
-    const streamId = databases.spool.openStream({
-      rigId: 'r',
-      name: 'boot',
-      rateHz,
-      channels: ['A'],
-      nowMs: 0,
-    });
-    const intake = new StreamIntake(
-      streamId,
-      'r',
-      'boot',
-      { rateHz, channels: ['A'], lastBlockAtMs: 0 },
-      b.events,
-    );
+    const { b, spool, streamId, intake } = oneStream();
     const seen: BlockOutcome[] = [];
     const note = (outcome: BlockOutcome) => void seen.push(outcome);
     intake.offer(blockOf(0, 4), 0, note, 0);
@@ -180,32 +159,14 @@ describe('a stream on its way in', () => {
     intake.advance(2_100);
     expect(b.gaps).toEqual([4]);
     b.commit(true);
-    expect(databases.spool.readGaps(streamId, 0, 100)).toEqual([
-      { fromIndex: 4, lostSamples: 4, estimated: true },
-    ]);
+    expect(spool.readGaps(streamId, 0, 100)).toEqual([{ fromIndex: 4, lostSamples: 4, estimated: true }]);
     intake.offer(blockOf(1, 4), 0, note, 2_200);
     expect(seen[seen.length - 1]).toMatchObject({ result: 'refused', issue: { slug: 'too-late' } });
     expect(intake.ackedSeq).toBe(2);
   });
 
   it('knows where everything that is held ends once the missing block is declared lost', async () => {
-    const databases = openDatabases({ dataDir: ':memory:', durability: 'normal' });
-    opened.push(databases);
-    const b = bench(databases.spool);
-    const streamId = databases.spool.openStream({
-      rigId: 'r',
-      name: 'boot',
-      rateHz,
-      channels: ['A'],
-      nowMs: 0,
-    });
-    const intake = new StreamIntake(
-      streamId,
-      'r',
-      'boot',
-      { rateHz, channels: ['A'], lastBlockAtMs: 0 },
-      b.events,
-    );
+    const { b, spool, streamId, intake } = oneStream();
     const quiet = () => undefined;
     intake.offer(blockOf(0, 4), 0, quiet, 0);
     expect(await intake.whenOrdered()).toBe(4);
