@@ -166,7 +166,7 @@ describe('a stream on its way in', () => {
   });
 
   it('knows where everything that is held ends once the missing block is declared lost', async () => {
-    const { b, spool, streamId, intake } = oneStream();
+    const { intake } = oneStream();
     const quiet = () => undefined;
     intake.offer(blockOf(0, 4), 0, quiet, 0);
     expect(await intake.whenOrdered()).toBe(4);
