@@ -18,9 +18,7 @@ export function WheelPart() {
         <FormNumber
           name="wheel.pulsesPerTurn"
           label={threeHall ? 'Pole pairs' : 'Pulses per turn'}
-          help={
-            threeHall ? 'Pairs of poles of the wheel.' : 'Positions, the missing ones counted.'
-          }
+          help={threeHall ? 'Pairs of poles of the wheel.' : 'Positions, the missing ones counted.'}
         />
         <FormNumber
           name="wheel.missingPulses"
