@@ -28,7 +28,6 @@ import { rawNoiseV } from '@/signal/noise';
 import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline-types';
 import type { RailMeter } from '@/signal/rail-meter';
 import { RawWatch } from '@/signal/raw-watch';
-import { noiseGain } from '@/signal/response';
 import { toVolts } from '@/signal/scale';
 
 /** Most samples that one call of `advance` takes. */
@@ -66,6 +65,8 @@ export class ChannelPath implements FinderHost {
     channel: Channel;
     band: Band;
     sections: readonly Section[];
+    /** What the filter leaves of white noise, `noiseGain`. */
+    gainOfNoise: number;
     rateHz: number;
     startIndex: number;
     holdoffS: number;
@@ -81,7 +82,7 @@ export class ChannelPath implements FinderHost {
     this.bands = options.bands;
     this.cascade = createCascade(sections);
     this.fromCodes = takesCodes(this.cascade);
-    this.gainOfNoise = noiseGain(sections, rateHz);
+    this.gainOfNoise = options.gainOfNoise;
     this.detector = createDetector(options.holdoffS * rateHz, band.mode === 'fitted');
     this.intake = new EdgeIntake(this.detector, this.levels, sections, rateHz, missingPulses, teethPerTurn);
     this.watch = new RawWatch(channel, rateHz);

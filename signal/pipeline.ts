@@ -20,6 +20,7 @@ import type {
   PipelineStatus,
   SetupIssue,
 } from '@/signal/pipeline-types';
+import { noiseGain } from '@/signal/response';
 import { statusOf } from '@/signal/status';
 import { neededRoles, validateSetup } from '@/signal/validate-setup';
 
@@ -47,6 +48,7 @@ class SignalPipeline implements Pipeline {
 
   constructor({ rig, settings, rateHz, channels, startIndex }: PipelineOptions) {
     const sections = designFilters(settings.filter, rateHz);
+    const gainOfNoise = noiseGain(sections, rateHz);
     const bands: PipelineOutput['bands'] = [];
     const speed = createSpeedColumns();
     const directions: PipelineOutput['directions'] = [];
@@ -60,6 +62,7 @@ class SignalPipeline implements Pipeline {
           channel: rig.channels.find((channel) => channel.name === name) as Channel,
           band: settings.band,
           sections,
+          gainOfNoise,
           rateHz,
           startIndex,
           holdoffS: settings.holdoffS,

@@ -1,35 +1,51 @@
 /**
- * The newest marks of the tooth rail, for drawing: a ring of columns that grows while its oldest mark is still within
- * what a viewer may ask for.
+ * The newest marks of the tooth rail, for drawing: pieces of columns, held for as long as a picture may reach back, and
+ * in pieces so that no growing copies them (see `RecentSignal`).
  */
-const firstCapacity = 1024;
-const mostMarks = 1 << 17;
+const pieceMarks = 1024;
+const mostPieces = 128;
 /** Longest picture, s. */
 const keptS = 60;
 
 export type Mark = { t: number; flags: number };
 
+type Piece = { count: number; t: Float64Array; flags: Uint8Array };
+
 export class RecentMarks {
-  #t = new Float64Array(firstCapacity);
-  #flags = new Uint8Array(firstCapacity);
-  #written = 0;
+  /** Oldest first. */
+  #pieces: Piece[] = [];
 
   push(t: number, flags: number): void {
-    const capacity = this.#t.length;
-    const at = this.#written % capacity;
-    if (this.#written >= capacity && capacity < mostMarks && t - (this.#t[at] as number) < keptS) {
-      this.#grow();
-      return this.push(t, flags);
+    let last = this.#pieces[this.#pieces.length - 1];
+    if (last === undefined || last.count === pieceMarks) {
+      last = this.#fresh(t);
+      this.#pieces.push(last);
     }
-    this.#t[at] = t;
-    this.#flags[at] = flags;
-    this.#written += 1;
+    last.t[last.count] = t;
+    last.flags[last.count] = flags;
+    last.count += 1;
+  }
+
+  /** A piece that is too old to be drawn, or a new one. */
+  #fresh(t: number): Piece {
+    const first = this.#pieces[0];
+    const spent =
+      first !== undefined &&
+      (t - (first.t[first.count - 1] as number) > keptS || this.#pieces.length === mostPieces);
+    if (!spent) return { count: 0, t: new Float64Array(pieceMarks), flags: new Uint8Array(pieceMarks) };
+    this.#pieces.shift();
+    first.count = 0;
+    return first;
   }
 
   /** How many lie in `fromS <= t <= toS`. */
   count(fromS: number, toS: number): number {
-    const [first, end] = this.#range(fromS, toS);
-    return end - first;
+    let sum = 0;
+    for (const piece of this.#pieces) {
+      const [from, end] = rangeOf(piece, fromS, toS);
+      sum += end - from;
+    }
+    return sum;
   }
 
   /**
@@ -37,46 +53,34 @@ export class RecentMarks {
    * with the same flags: closer ones fall on one place of the picture.
    */
   between(fromS: number, toS: number, apartS = 0): Mark[] {
-    const [first, end] = this.#range(fromS, toS);
     const found: Mark[] = [];
     const lastOf = new Map<number, number>();
-    for (let i = first; i < end; i += 1) {
-      const t = this.#t[i % this.#t.length] as number;
-      const flags = this.#flags[i % this.#t.length] as number;
-      if (apartS > 0 && t - (lastOf.get(flags) ?? -Infinity) < apartS) continue;
-      lastOf.set(flags, t);
-      found.push({ t, flags });
+    for (const piece of this.#pieces) {
+      const [from, end] = rangeOf(piece, fromS, toS);
+      for (let i = from; i < end; i += 1) {
+        const t = piece.t[i] as number;
+        const flags = piece.flags[i] as number;
+        if (apartS > 0 && t - (lastOf.get(flags) ?? -Infinity) < apartS) continue;
+        lastOf.set(flags, t);
+        found.push({ t, flags });
+      }
     }
     return found;
   }
+}
 
-  #grow(): void {
-    const old = this.#t.length;
-    const t = new Float64Array(2 * old);
-    const flags = new Uint8Array(2 * old);
-    for (let i = this.#written - old; i < this.#written; i += 1) {
-      t[i % (2 * old)] = this.#t[i % old] as number;
-      flags[i % (2 * old)] = this.#flags[i % old] as number;
-    }
-    this.#t = t;
-    this.#flags = flags;
-  }
+/** Places of a piece in the stretch; marks come in order of time. */
+function rangeOf(piece: Piece, fromS: number, toS: number): [from: number, end: number] {
+  return [firstFrom(piece, (t) => t >= fromS), firstFrom(piece, (t) => t > toS)];
+}
 
-  /** Running numbers of the marks in the stretch; marks come in order of time. */
-  #range(fromS: number, toS: number): [first: number, end: number] {
-    const oldest = Math.max(0, this.#written - this.#t.length);
-    return [this.#firstFrom(oldest, fromS, false), this.#firstFrom(oldest, toS, true)];
+function firstFrom({ t, count }: Piece, reached: (t: number) => boolean): number {
+  let low = 0;
+  let high = count;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (reached(t[middle] as number)) high = middle;
+    else low = middle + 1;
   }
-
-  #firstFrom(oldest: number, limitS: number, after: boolean): number {
-    let low = oldest;
-    let high = this.#written;
-    while (low < high) {
-      const middle = Math.floor((low + high) / 2);
-      const t = this.#t[middle % this.#t.length] as number;
-      if (after ? t <= limitS : t < limitS) low = middle + 1;
-      else high = middle;
-    }
-    return low;
-  }
+  return low;
 }

@@ -9,9 +9,11 @@ import type { LiveFeed, VerifyViewer, ViewerIdentity } from '@/server/live/live-
 
 const helloWithinMs = 5_000;
 const pingEveryMs = 20_000;
-/** At most so often, ms: a page being watched, and a row of the list. */
+/** A page being watched gets a frame at most so often, ms. */
 const detailFrameMs = 45;
-const listFrameMs = 240;
+/** Rows of a list share a viewer's budget: the more rows, the slower each, between the two. */
+const msARow = 15;
+const slowestRowMs = 240;
 /** A frame comes at least so often, so that a silent rig is seen to be silent. */
 const heartbeatMs = 500;
 const historyEveryMs = 1_000;
@@ -129,7 +131,8 @@ export class Viewer {
 
   #news(watched: Watched): void {
     if (watched.due !== undefined) return;
-    const spacingMs = watched.detail ? detailFrameMs : listFrameMs;
+    const row = Math.min(slowestRowMs, Math.max(detailFrameMs, msARow * this.#watched.size));
+    const spacingMs = watched.detail ? detailFrameMs : row;
     const waitMs = watched.lastFrameMs + spacingMs - this.options.nowMs();
     if (waitMs <= 0) return this.#frame(watched);
     watched.due = setTimeout(() => this.#frame(watched), waitMs);
