@@ -3,15 +3,10 @@
  * event loop stands still (one transaction of every rig's rows plus a checkpoint blocks it for tens of milliseconds).
  */
 import { StorageUnavailableError } from '@/db/errors';
-import type { EarlyWrite, GapWrite, SegmentWrite, Spool, StreamState } from '@/db/spool-types';
+import type { Spool, SpoolBatch } from '@/db/spool-types';
 
-export type CommitBatch = {
-  segments: SegmentWrite[];
-  early: EarlyWrite[];
-  releasedEarly: { streamId: number; seq: number }[];
-  gaps: GapWrite[];
-  streams: StreamState[];
-};
+/** What one transaction will write, while it is being gathered. */
+export type CommitBatch = { -readonly [K in keyof SpoolBatch]: SpoolBatch[K][number][] };
 
 export interface CommitSource {
   /** Adds what waits to the batch; called once before `committed` or `failed`. */

@@ -1,5 +1,5 @@
 /** Signing in and out. All of these demand JSON; a browser's page must be the hub's own. */
-import type { Request } from 'express';
+import type { Request, Response } from 'express';
 import type { ReadToken } from '@/server/auth/authenticate';
 import type { AttemptLimits } from '@/server/auth/attempt-limits';
 import { attemptLimiters } from '@/server/auth/attempt-limits';
@@ -52,6 +52,15 @@ export function sessionRoutes(deps: SessionRoutesDeps): Route[] {
     if (person !== undefined) return person;
     const token = cookieOfOwnPage(req);
     return token === undefined ? undefined : sessions.ownerOf(token);
+  }
+
+  /** Who signs out, here or everywhere; the cookie goes either way. */
+  async function leaving(req: Request, res: Response) {
+    refuseForeign(req);
+    const who = await caller(req);
+    cookie.clear(res);
+    if (who === undefined) throw notSignedIn('There is no sign-in to end.');
+    return who;
   }
 
   return [
@@ -115,10 +124,7 @@ export function sessionRoutes(deps: SessionRoutesDeps): Route[] {
       answers: [{ status: 204, description: 'Signed out' }],
       problems: ['not-signed-in', 'foreign-origin', 'content-type'],
       async handle({ req, res }) {
-        refuseForeign(req);
-        const who = await caller(req);
-        cookie.clear(res);
-        if (who === undefined) throw notSignedIn('There is no sign-in to end.');
+        const who = await leaving(req, res);
         await sessions.end(who.familyId);
         await audit.signedOut(actorOf(who), req.ip);
         return { status: 204 };
@@ -134,10 +140,7 @@ export function sessionRoutes(deps: SessionRoutesDeps): Route[] {
       answers: [{ status: 204, description: 'Signed out everywhere; live sockets are closed' }],
       problems: ['not-signed-in', 'foreign-origin', 'content-type'],
       async handle({ req, res }) {
-        refuseForeign(req);
-        const who = await caller(req);
-        cookie.clear(res);
-        if (who === undefined) throw notSignedIn('There is no sign-in to end.');
+        const who = await leaving(req, res);
         await sessions.endAll(who.id);
         await audit.signedOutEverywhere(actorOf(who), req.ip);
         return { status: 204 };
