@@ -1,6 +1,7 @@
 /** The state of a signal path at its last sample, as plain values. */
 import type { ChannelPath } from '@/signal/channel-path';
 import type { Finding, Margin } from '@/signal/model';
+import { angleDeg, speedAtMostRpm } from '@/signal/falling-bound';
 import type { Motion } from '@/signal/motion';
 import type { ChannelStatus, PipelineStatus } from '@/signal/pipeline-types';
 
@@ -12,34 +13,35 @@ export function statusOf(
   nowS: number,
   findings: Finding[],
 ): PipelineStatus {
-  const atMost = motion.speedAtMostRpm(nowS, latencyOf(paths));
+  const { train } = motion;
+  const atMost = speedAtMostRpm(motion, nowS, latencyOf(paths));
   const { pulsesPerTurn, gearRatio } = motion.rig.wheel;
   const running = motion.state === 'running';
-  const bounded = Math.abs(motion.rpm) > atMost;
+  const bounded = Math.abs(train.rpm) > atMost;
   return {
     nowS,
     state: motion.state,
-    speedRpm: known(bounded ? Math.sign(motion.rpm) * atMost : motion.rpm),
+    speedRpm: known(bounded ? Math.sign(train.rpm) * atMost : train.rpm),
     // Only the bound is known then: the shaft turns at anything from 0 up to it.
-    speedErrorRpm: known(bounded ? atMost : motion.errorRpm),
+    speedErrorRpm: known(bounded ? atMost : train.errorRpm),
     speedAtMostRpm: known(atMost),
     direction: motion.direction,
     pulses: motion.pulses,
     positions: motion.positions,
     turns: motion.positions / (pulsesPerTurn * gearRatio),
     countsSinceS: motion.countsSinceS,
-    synced: motion.synced,
-    toothHz: running ? known((Math.abs(motion.rpm) * pulsesPerTurn * gearRatio) / 60) : null,
+    synced: train.synced,
+    toothHz: running ? known((Math.abs(train.rpm) * pulsesPerTurn * gearRatio) / 60) : null,
     lastEdgeS: known(motion.lastEdgeS),
     delayS: paths[primary]!.delayS,
-    phaseDeg: motion.rig.sensing === 'quadrature' ? known(motion.phaseDeg) : null,
+    phaseDeg: motion.rig.sensing === 'quadrature' ? known(motion.phase.deg) : null,
     channels: paths.map(channelStatus),
     margin: worstMargin(paths),
-    wheelFace: motion.face
-      ? motion.face.snapshot(
-          motion.sync.missing > 0 && motion.synced,
+    wheelFace: train.face
+      ? train.face.snapshot(
+          train.sync.missing > 0 && train.synced,
           motion.reversed,
-          known(motion.angleDeg(nowS)),
+          known(angleDeg(motion, nowS)),
         )
       : null,
     findings,

@@ -24,7 +24,7 @@ export class EdgeBounceRule implements FindingRule {
   tick(nowS: number): void {
     const latch = this.latches[0]!;
     const { motion, paths, primary } = this.context;
-    const { intervals } = motion;
+    const { intervals } = motion.train;
     if (Number.isNaN(this.fromS)) this.fromS = nowS;
     if (!(nowS - this.fromS >= windowS) || intervals.counted < fewestTeeth) {
       latch.rest(nowS);
@@ -60,6 +60,6 @@ export class EdgeBounceRule implements FindingRule {
 
   gap(): void {
     this.fromS = NaN;
-    restartIntervals(this.context.motion.intervals);
+    restartIntervals(this.context.motion.train.intervals);
   }
 }

@@ -22,7 +22,7 @@ export class MissingToothRule implements FindingRule {
 
   tick(nowS: number): void {
     const { motion, paths, primary, rig } = this.context;
-    const { face } = motion;
+    const { face, sync } = motion.train;
     if (!face || rig.wheel.pulsesPerTurn < fewestPositions) return;
     let empty = 0;
     for (let position = 0; position < face.missedInRow.length; position++) {
@@ -38,7 +38,7 @@ export class MissingToothRule implements FindingRule {
       const seenS = face.lastSeenS[position]!;
       const evidence = {
         position,
-        numbering: motion.sync.missing > 0 ? 'fixed to the wheel' : 'relative',
+        numbering: sync.missing > 0 ? 'fixed to the wheel' : 'relative',
         turnsMissed: turns,
       };
       latch.raise(

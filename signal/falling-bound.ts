@@ -1,0 +1,38 @@
+/** What silence since the last edge proves: the most that the shaft can turn at, and where the wheel can stand by now. */
+import type { Motion } from '@/signal/motion';
+
+/** Largest number of positions that can still be silent after the last edge. */
+function silentPositions({ tracker, train }: Motion): number {
+  if (!tracker) return train.silentPositions();
+  const even = 1 / tracker.table.stepsPerCycle;
+  const { widestState } = train.uneven;
+  return Number.isNaN(widestState) ? 2 * even : Math.min(1, Math.max(even, 1.1 * widestState));
+}
+
+/**
+ * Falling bound, rpm, at `nowS`: 60 p / (N gear elapsed), p the positions that can be silent. NaN before any edge.
+ * @param latencyS how long after its instant an edge is known: silence is proven only up to `nowS` less that.
+ */
+export function speedAtMostRpm(motion: Motion, nowS: number, latencyS: number): number {
+  const { tracker, train, rig, lastEdgeS, state } = motion;
+  const since = tracker ? lastEdgeS : train.lastRiseS;
+  if (Number.isNaN(lastEdgeS)) return NaN;
+  const elapsed =
+    state === 'stopped'
+      ? motion.stoppedAfterS
+      : nowS - latencyS - (Number.isNaN(since) ? motion.quietSinceS : Math.max(since, 0));
+  const { pulsesPerTurn, gearRatio } = rig.wheel;
+  return (60 * silentPositions(motion)) / (pulsesPerTurn * gearRatio * Math.max(elapsed, 0));
+}
+
+/** Angle of the wheel at `nowS`, degrees; NaN where not known. */
+export function angleDeg({ train, rig, reversed }: Motion, nowS: number): number {
+  if (Number.isNaN(train.lastRiseS) || !train.synced) return NaN;
+  const { pulsesPerTurn, gearRatio } = rig.wheel;
+  const since = Number.isNaN(train.rpm)
+    ? 0
+    : (train.rpm / 60) * gearRatio * pulsesPerTurn * (nowS - train.lastRiseS);
+  const angle =
+    ((reversed ? -1 : 1) * (train.lastPosition + Math.min(1, Math.abs(since))) * 360) / pulsesPerTurn;
+  return ((angle % 360) + 360) % 360;
+}
