@@ -29,6 +29,9 @@ import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline
 import type { RailMeter } from '@/signal/rail-meter';
 import { RawWatch } from '@/signal/raw-watch';
 import { toVolts } from '@/signal/scale';
+import { createSlowRing, keepSlow } from '@/signal/slow-ring';
+import type { SlowRing } from '@/signal/slow-ring';
+import type { ToothLog } from '@/signal/tooth-log';
 
 /** Most samples that one call of `advance` takes. */
 export const chunkSamples = 1024;
@@ -44,6 +47,7 @@ export class ChannelPath implements FinderHost {
   /** Smallest step between neighbouring values as of the last tick, V. */
   private quantumV = 0;
   rejectedCount = 0;
+  readonly slow: SlowRing;
 
   private readonly band: Band;
   private readonly rateHz: number;
@@ -86,6 +90,7 @@ export class ChannelPath implements FinderHost {
     this.detector = createDetector(options.holdoffS * rateHz, band.mode === 'fitted');
     this.intake = new EdgeIntake(this.detector, this.levels, sections, rateHz, missingPulses, teethPerTurn);
     this.watch = new RawWatch(channel, rateHz);
+    this.slow = createSlowRing(rateHz);
     this.finder = new LevelFinder(this.detector, this.levels, rateHz, this);
     this.nextAt = startIndex;
     if (band.mode === 'fixed') {
@@ -102,6 +107,10 @@ export class ChannelPath implements FinderHost {
 
   get queue(): EdgeQueue {
     return this.intake.queue;
+  }
+
+  get log(): ToothLog {
+    return this.intake.log;
   }
 
   get edgeCount(): number {
@@ -170,6 +179,7 @@ export class ChannelPath implements FinderHost {
     }
     // After the filter, which reads in order: skipping through samples that are in no cache yet is slow.
     watch.take(array, from, to, at);
+    keepSlow(this.slow, v, 1, n, at);
     if (this.fresh) {
       v[0] = v[1]!;
       this.fresh = false;
@@ -193,6 +203,7 @@ export class ChannelPath implements FinderHost {
     resetCascade(this.cascade);
     forgetState(this.detector);
     this.watch.gap();
+    this.slow.unbrokenFrom = this.slow.count;
     this.intake.gap();
     this.fresh = true;
     this.nextAt = at;

@@ -15,11 +15,15 @@ import type { MarginMeter } from '@/signal/margin-meter';
 import { edgeRising } from '@/signal/pipeline-types';
 import type { EdgeColumns } from '@/signal/pipeline-types';
 import { dcDelayS } from '@/signal/response';
+import { samplesPerTick } from '@/signal/ticks';
+import { breakLog, createToothLog } from '@/signal/tooth-log';
+import type { ToothLog } from '@/signal/tooth-log';
 
 export class EdgeIntake {
   readonly edges: EdgeColumns = createEdgeColumns();
   readonly queue: EdgeQueue = createEdgeQueue();
   readonly marginMeter: MarginMeter;
+  readonly log: ToothLog;
   edgeCount = 0;
   duty = NaN;
   delayS = NaN;
@@ -56,6 +60,7 @@ export class EdgeIntake {
     this.delays = createDelayCurve(sections, rateHz);
     this.delayS = dcDelayS(sections, rateHz);
     this.marginMeter = createMarginMeter(teethPerTurn);
+    this.log = createToothLog(teethPerTurn, samplesPerTick(rateHz) / 2);
   }
 
   /** How long after its mid crossing an edge is known: the filter's delay and the way to the switching point, s. */
@@ -67,6 +72,7 @@ export class EdgeIntake {
   /** Samples were lost: no interval reaches across. */
   gap(): void {
     this.riseMidAt = this.fallMidAt = this.lastExtremeV = NaN;
+    breakLog(this.log);
   }
 
   /**
@@ -75,7 +81,7 @@ export class EdgeIntake {
    * @param noiseV rms of the filtered signal's noise, V; NaN: not known.
    */
   take(noiseV: number): void {
-    const { detector, levels, edges, queue, rateHz, missing, oneTooth, delays, marginMeter } = this;
+    const { detector, levels, edges, queue, rateHz, missing, oneTooth, delays, marginMeter, log } = this;
     const raw = detector.edges;
     const { operateV, releaseV } = detector;
     const noisePerBand = noiseV / (operateV - detector.midV);
@@ -139,6 +145,19 @@ export class EdgeIntake {
       queue.sigmaS[q] = Math.sqrt(noise * noise + grid) * periodS;
       queue.extremeV[q] = extremeV;
       queue.flags[q] = flags | (this.delayKnown ? 0 : delayGuessed);
+      if (rising) {
+        const tooth = log.count++ & log.mask;
+        log.riseS[tooth] = midS - delayS;
+        log.fallS[tooth] = log.peakV[tooth] = NaN;
+        log.troughV[tooth] = extremeV;
+        log.sigmaS[tooth] = queue.sigmaS[q]!;
+        log.riseWayS[tooth] = (at - midAt) * periodS;
+      } else if (log.count > log.unbrokenFrom) {
+        const tooth = (log.count - 1) & log.mask;
+        log.fallS[tooth] = midS - delayS;
+        log.peakV[tooth] = extremeV;
+        log.fallWayS[tooth] = (at - midAt) * periodS;
+      }
     }
     this.edgeCount += raw.count;
     this.lastEdgeAt = raw.at[raw.count - 1]!;

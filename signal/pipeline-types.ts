@@ -120,11 +120,20 @@ export type PipelineStatus = {
   findings: Finding[];
 };
 
+/** What the hub knows of a board beside its samples. */
+export type BoardNote =
+  /** A block came: stream time at its end, and the hub's steady clock then, s. */
+  | { kind: 'arrival'; streamS: number; hubS: number }
+  /** This stream begins because the board started anew; so long nothing had come before it, s (null: not known). */
+  | { kind: 'restart'; awayS: number | null };
+
 export interface Pipeline {
   /** `arrays[i]` belongs to `channels[i]`; all hold `count` valid samples, finite, in the array's own type. */
   process(arrays: readonly SampleArray[], count: number): void;
   /** Samples that were lost: time runs on, filters are primed anew, the band's state is unknown. */
   skip(lostSamples: number, estimated: boolean): void;
+  /** For findings that samples alone cannot show. */
+  note(note: BoardNote): void;
   /** The output since the last drain; valid until the next call of `process`, `skip` or `drain`. */
   readonly output: PipelineOutput;
   /** Empties the output. */

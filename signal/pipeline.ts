@@ -9,11 +9,11 @@ import { createSpeedColumns } from '@/signal/columns';
 import { mergeEdges } from '@/signal/edge-merge';
 import type { Lane } from '@/signal/edge-merge';
 import { designFilters } from '@/signal/filter-design';
-import type { FindingRule } from '@/signal/findings/rule';
-import { createRules } from '@/signal/findings/rules';
-import type { Channel, Finding, Result, SampleArray } from '@/signal/model';
+import { FindingsDesk } from '@/signal/findings/desk';
+import type { Channel, Result, SampleArray } from '@/signal/model';
 import { Motion } from '@/signal/motion';
 import type {
+  BoardNote,
   Pipeline,
   PipelineOptions,
   PipelineOutput,
@@ -21,7 +21,9 @@ import type {
   SetupIssue,
 } from '@/signal/pipeline-types';
 import { noiseGain } from '@/signal/response';
+import { memorySamples } from '@/signal/statistics/zero-phase';
 import { statusOf } from '@/signal/status';
+import { samplesPerTick } from '@/signal/ticks';
 import { neededRoles, validateSetup } from '@/signal/validate-setup';
 
 /**
@@ -42,20 +44,21 @@ class SignalPipeline implements Pipeline {
   /** Place of each path in the sensing arrangement; -1: none. */
   private readonly roles: number[];
   private readonly lanes: Lane[] = [];
-  private readonly rules: FindingRule[];
+  private readonly desk: FindingsDesk;
   private readonly tickSamples: number;
   private nextAt: number;
 
   constructor({ rig, settings, rateHz, channels, startIndex }: PipelineOptions) {
     const sections = designFilters(settings.filter, rateHz);
     const gainOfNoise = noiseGain(sections, rateHz);
+    const memory = memorySamples(sections);
     const bands: PipelineOutput['bands'] = [];
     const speed = createSpeedColumns();
     const directions: PipelineOutput['directions'] = [];
     const { pulsesPerTurn, missingPulses } = rig.wheel;
     this.rateHz = rateHz;
     this.nextAt = startIndex;
-    this.tickSamples = Math.min(8192, Math.max(1, Math.round(rateHz / 10)));
+    this.tickSamples = samplesPerTick(rateHz);
     this.paths = channels.map(
       (name) =>
         new ChannelPath({
@@ -93,14 +96,22 @@ class SignalPipeline implements Pipeline {
       gaps: [],
       closedFindings: [],
     };
-    this.rules = createRules({
-      rig,
-      settings,
-      rateHz,
-      paths: this.paths,
-      motion: this.motion,
-      primary: this.roles.indexOf(0),
-    });
+    this.desk = new FindingsDesk(
+      {
+        rig,
+        settings,
+        rateHz,
+        paths: this.paths,
+        motion: this.motion,
+        primary: this.roles.indexOf(0),
+        lanes: needed.map((_role, place) => this.roles.indexOf(place)),
+        index: channels.findIndex((name) =>
+          rig.channels.some((own) => own.name === name && own.role === 'Z'),
+        ),
+        settleS: (memory.ok ? memory.value : 0) / rateHz,
+      },
+      this.output.closedFindings,
+    );
   }
 
   process(arrays: readonly SampleArray[], count: number): void {
@@ -130,8 +141,11 @@ class SignalPipeline implements Pipeline {
     this.motion.gap(fromS, toS, this.nextAt);
     const gap = { fromS, toS, lostSamples: Math.round(lostSamples), estimated };
     this.output.gaps.push(gap);
-    for (const rule of this.rules) rule.gap?.(gap);
-    this.collectClosed();
+    this.desk.gap(gap);
+  }
+
+  note(note: BoardNote): void {
+    this.desk.note(note, this.nextAt / this.rateHz);
   }
 
   drain(): void {
@@ -147,27 +161,12 @@ class SignalPipeline implements Pipeline {
   }
 
   status(): PipelineStatus {
-    const findings: Finding[] = [];
-    for (const rule of this.rules) for (const { open } of rule.latches) if (open) findings.push(open);
-    return statusOf(this.motion, this.paths, this.roles.indexOf(0), this.nextAt / this.rateHz, findings);
+    const primary = this.roles.indexOf(0);
+    return statusOf(this.motion, this.paths, primary, this.nextAt / this.rateHz, this.desk.open());
   }
 
   private tick(): void {
     for (const path of this.paths) path.tick();
-    const nowS = this.nextAt / this.rateHz;
-    for (const rule of this.rules) rule.tick(nowS);
-    this.collectClosed();
-  }
-
-  private collectClosed(): void {
-    for (let r = 0; r < this.rules.length; r++) {
-      const { latches } = this.rules[r]!;
-      for (let k = 0; k < latches.length; k++) {
-        const { closed } = latches[k]!;
-        if (closed.length === 0) continue;
-        this.output.closedFindings.push(...closed);
-        closed.length = 0;
-      }
-    }
+    this.desk.tick(this.nextAt / this.rateHz);
   }
 }

@@ -10,7 +10,17 @@ import type { WheelFace } from '@/signal/model';
 /** Wheels with more positions are not drawn, and no single tooth of theirs is judged. */
 export const mostPositions = 4096;
 
+export interface TurnListener {
+  /**
+   * A whole turn is over.
+   * @param times instant of the tooth at each position, s; NaN where none came. @param start position that the turn began
+   * with. @param endS instant of that position's tooth a turn later, s. The array is used again for the next turn.
+   */
+  turn(times: Float64Array, start: number, endS: number): void;
+}
+
 export class WheelFaceMeter {
+  readonly listeners: TurnListener[] = [];
   /** Turns in a row in which nothing came where the tooth should be. */
   readonly missedInRow: Uint16Array;
   readonly lastSeenS: Float64Array;
@@ -109,6 +119,7 @@ export class WheelFaceMeter {
 
   private finishTurn(): void {
     const { positions, startPosition, turnTimes, t } = this;
+    for (const listener of this.listeners) listener.turn(turnTimes, startPosition, t);
     const t0 = turnTimes[startPosition]!;
     const turnS = t - t0;
     const before = this.lastTurnS;

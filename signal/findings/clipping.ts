@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { wordsFor } from '@/signal/finding-text';
+import { wordsFor } from '@/signal/finding-words';
 import { restartRails } from '@/signal/rail-meter';
 
 /** Share of the samples at a rail that opens the finding, and the one below which it starts to rest. */

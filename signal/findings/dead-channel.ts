@@ -1,7 +1,7 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { wordsFor } from '@/signal/finding-text';
+import { wordsFor } from '@/signal/finding-words';
 
 /** So many edges of another channel without one of its own. */
 const otherEdgesNeeded = 12;

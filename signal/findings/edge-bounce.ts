@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { wordsFor } from '@/signal/finding-text';
+import { wordsFor } from '@/signal/finding-words';
 import { restartIntervals } from '@/signal/interval-meter';
 
 /** Share of counted teeth that came too soon, each beside a whole one: opens the finding, and keeps it. */

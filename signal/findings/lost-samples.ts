@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleGap } from '@/signal/findings/rule';
-import { wordsFor } from '@/signal/finding-text';
+import { wordsFor } from '@/signal/finding-words';
 
 /** A fault where it lost more than this, s; less is a warning. */
 const faultS = 0.1;

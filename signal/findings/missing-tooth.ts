@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { wordsFor } from '@/signal/finding-text';
+import { wordsFor } from '@/signal/finding-words';
 
 /** A tooth is accused only after so many turns in a row. */
 const turnsNeeded = 3;

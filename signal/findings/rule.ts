@@ -5,6 +5,7 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import type { Motion } from '@/signal/motion';
 import type { Finding, RigSetup, Settings } from '@/signal/model';
+import type { BoardNote } from '@/signal/pipeline-types';
 
 export type RuleContext = {
   rig: RigSetup;
@@ -14,6 +15,12 @@ export type RuleContext = {
   motion: Motion;
   /** Index into `paths` of the channel that speed comes from. */
   primary: number;
+  /** Indices into `paths` of the arrangement's channels (A, B or U, V, W), in its order. */
+  lanes: readonly number[];
+  /** Index into `paths` of the index channel Z; -1: there is none. */
+  index: number;
+  /** So long after a start the filter still rings, s. */
+  settleS: number;
 };
 
 export type RuleGap = { fromS: number; toS: number; lostSamples: number; estimated: boolean };
@@ -22,6 +29,7 @@ export interface FindingRule {
   /** @param nowS stream time of the tick. */
   tick(nowS: number): void;
   gap?(gap: RuleGap): void;
+  note?(note: BoardNote, nowS: number): void;
   readonly latches: readonly FindingLatch[];
 }
 
@@ -43,7 +51,13 @@ export class FindingLatch {
   raise(finding: Omit<Finding, 'to'>, seenS: number): void {
     this.lastSeenS = seenS;
     this.open = this.open
-      ? { ...finding, from: this.open.from, at: this.open.at, to: null }
+      ? {
+          ...finding,
+          from: this.open.from,
+          at: this.open.at,
+          causedBy: this.open.causedBy ?? finding.causedBy,
+          to: null,
+        }
       : { ...finding, to: null };
   }
 

@@ -8,10 +8,15 @@ import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 /** All rules, in the order in which their findings are listed. */
 export function createRules(context: RuleContext): FindingRule[] {
   return [
+    // On the way from the board.
     new LostSamplesRule(),
+    // Between channels.
     new DeadChannelRule(context),
+    // The signal of one channel.
     new ClippingRule(context),
+    // Edges and teeth.
     new EdgeBounceRule(context),
     new MissingToothRule(context),
+    // The wheel.
   ];
 }

@@ -1,0 +1,57 @@
+/**
+ * Which finding follows from which: a consequence is folded under its cause where both are there together, or where the
+ * cause ended no more than two seconds before the consequence began.
+ */
+import type { Finding, FindingCode } from '@/signal/model';
+
+/** Possible causes of a finding, the nearest first. */
+const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
+  'direction-flip': ['inverted-channel', 'illegal-state', 'phase-error', 'near-alias', 'lost-samples'],
+  'illegal-state': [
+    'dead-channel',
+    'inverted-channel',
+    'near-alias',
+    'edge-bounce',
+    'phase-error',
+    'lost-samples',
+  ],
+  'wrong-count': [
+    'illegal-state',
+    'missing-tooth',
+    'extra-pulse',
+    'edge-bounce',
+    'near-alias',
+    'lost-samples',
+  ],
+  'missing-tooth': ['weak-swing', 'offset-drift'],
+  'extra-pulse': ['edge-bounce', 'mains-hum'],
+  'edge-bounce': ['slow-edge', 'mains-hum', 'supply-ripple'],
+  'duty-shift': ['offset-drift', 'clipping', 'slow-edge'],
+  'uneven-teeth': ['missing-tooth', 'extra-pulse', 'edge-bounce', 'run-out'],
+  'run-out': ['missing-tooth', 'extra-pulse'],
+  'weak-swing': ['run-out', 'clipping'],
+  'phase-error': ['dead-channel', 'inverted-channel', 'duty-shift'],
+  'standstill-chatter': ['mains-hum', 'supply-ripple'],
+  'mains-hum': ['supply-ripple'],
+  'offset-drift': ['supply-ripple'],
+  'lost-samples': ['board-restart'],
+};
+
+const reachS = 2;
+
+/**
+ * The cause of `finding` among others that are open, or that ended lately.
+ * @returns null where none is known.
+ */
+export function causeOf(finding: Finding, others: Iterable<Finding>): FindingCode | null {
+  const causes = causesOf[finding.code];
+  if (!causes) return null;
+  let best = causes.length;
+  for (const other of others) {
+    if (other.to !== null && other.to < finding.from - reachS) continue;
+    if (other.channel !== null && finding.channel !== null && other.channel !== finding.channel) continue;
+    const rank = causes.indexOf(other.code);
+    if (rank >= 0 && rank < best) best = rank;
+  }
+  return causes[best] ?? null;
+}
