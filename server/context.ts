@@ -125,7 +125,7 @@ export async function createContext(config: ServerConfig, overrides: Overrides) 
       sink: hub,
       idempotency: createIdempotencyStore(db, clock),
       nowMs,
-      newStreamName: () => `post-${randomUUID()}`,
+      newStreamName: () => `${postedStreamPrefix}${randomUUID()}`,
       pause: () => new Promise((resolve) => setImmediate(resolve)),
     });
 

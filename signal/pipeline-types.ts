@@ -124,8 +124,8 @@ export type PipelineStatus = {
 export type BoardNote =
   /** A block came: stream time at its end, and the hub's steady clock then, s. */
   | { kind: 'arrival'; streamS: number; hubS: number }
-  /** This stream begins because the board started anew; so long nothing had come before it, s (null: not known). */
-  | { kind: 'restart'; awayS: number | null };
+  /** This stream begins where another had just been running; `restarts` in the last ten minutes, this one included. */
+  | { kind: 'restart'; awayS: number; restarts: number };
 
 export interface Pipeline {
   /** `arrays[i]` belongs to `channels[i]`; all hold `count` valid samples, finite, in the array's own type. */

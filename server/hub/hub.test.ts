@@ -207,4 +207,33 @@ describe('a spool that cannot store', () => {
     await settle();
     expect([again, hub.ackPosition('r', 'bad')]).toEqual([['accepted'], 1]);
   });
+
+  it('says that a board started anew, how long nothing came, and how often, but not of single posts', async () => {
+    const found = () => hub.live('r')?.findings.filter(({ code }) => code === 'board-restart') ?? [];
+    offer('boot-1', 0);
+    await settle();
+    expect(found()).toEqual([]);
+    await vi.advanceTimersByTimeAsync(4_900);
+    offer('boot-2', 0);
+    await settle();
+    expect(found()).toMatchObject([{ severity: 'warn', from: 0, evidence: { awayS: 5, restarts: 1 } }]);
+    for (const name of ['boot-3', 'boot-4']) offer(name, 0);
+    await settle();
+    expect(found()).toMatchObject([{ severity: 'fault', evidence: { restarts: 3 } }]);
+    offer('post-1', 0);
+    offer('post-2', 0);
+    await settle();
+    expect(found()).toEqual([]);
+  });
+
+  it('says that a board samples faster than it declares, once a minute has shown it', async () => {
+    for (let k = 0; k < 700; k += 1) {
+      offer('fast', k, { length: 101 });
+      await vi.advanceTimersByTimeAsync(100);
+    }
+    const drift = hub.live('r')?.findings.find(({ code }) => code === 'clock-drift');
+    expect(drift?.severity).toBe('fault');
+    expect(Number(drift?.evidence.driftPpm)).toBeGreaterThan(9_000);
+    expect(Number(drift?.evidence.driftPpm)).toBeLessThan(11_000);
+  });
 });

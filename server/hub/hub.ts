@@ -26,6 +26,8 @@ export type HubOptions = {
   rigs: readonly HubRig[];
   lookbackS: number;
   nowMs: () => number;
+  /** A clock that is never set back; the process's own where left out. */
+  steadyMs?: () => number;
   log: { warn(fields: object, message: string): void; error(fields: object, message: string): void };
 };
 
@@ -63,6 +65,7 @@ export function createHub(options: HubOptions): RunningHub {
     const made = new RigSession(rig, {
       spool,
       nowMs,
+      steadyMs: options.steadyMs ?? (() => performance.now()),
       dirty: (intake) => committer.markDirty(intake),
       onSignalFailure: (id, error) => log.error({ err: error, rigId: id }, 'the signal path failed'),
     });

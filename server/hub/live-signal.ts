@@ -2,7 +2,7 @@
  * One stream as it is seen live: the signal path with the newest samples and marks beside it. It holds what a viewer
  * may ask for; the spool, not this, is what is kept.
  */
-import type { Gap, Pipeline, PipelineStatus } from '@/signal/pipeline-types';
+import type { BoardNote, Gap, Pipeline, PipelineStatus } from '@/signal/pipeline-types';
 import type { SampleArray } from '@/signal/model';
 import { edgeRising } from '@/signal/pipeline-types';
 import { createPipeline } from '@/signal/pipeline';
@@ -93,6 +93,12 @@ export class LiveSignal {
     if (this.pipeline === null) return;
     this.pipeline.skip(lostSamples, estimated);
     this.#take(this.pipeline);
+  }
+
+  /** What the hub knows of the board beside its samples. */
+  note(note: BoardNote): void {
+    this.pipeline?.note(note);
+    this.#status = null;
   }
 
   /** The signal path threw: the samples go on being drawn and kept, the speed does not. */

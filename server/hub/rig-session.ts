@@ -3,6 +3,7 @@ import type { Spool } from '@/db/spool-types';
 import type { Block, IngestIssue } from '@/ingest/block';
 import type { OutcomeCallback } from '@/ingest/block-sink';
 import type { SampleArray } from '@/signal/model';
+import { BoardRestarts } from '@/server/hub/board-restarts';
 import type { HubRig } from '@/server/hub/hub-types';
 import { LiveSignal } from '@/server/hub/live-signal';
 import { RateMeter } from '@/server/hub/rate-meter';
@@ -21,6 +22,8 @@ const maxReserved = 256;
 export type SessionDeps = {
   spool: Spool;
   nowMs: () => number;
+  /** Never set back, for comparing clocks. */
+  steadyMs: () => number;
   dirty(intake: StreamIntake): void;
   onSignalFailure(rigId: string, error: unknown): void;
 };
@@ -31,6 +34,7 @@ export class RigSession implements StreamEvents {
   readonly #newsWatchers = new Set<() => void>();
   readonly arriving = new RateMeter();
   readonly #reserved = new Map<string, number>();
+  readonly #restarts = new BoardRestarts();
   #channelNames: ReadonlySet<string>;
   #newest: StreamIntake | null = null;
   #signal: { intake: StreamIntake; live: LiveSignal } | null = null;
@@ -209,7 +213,10 @@ export class RigSession implements StreamEvents {
     this.arriving.add(nowMs, count);
     this.#newest = intake;
     try {
-      this.#liveOf(intake, startIndex).append(startIndex, arrays, count);
+      const live = this.#liveOf(intake, startIndex, nowMs);
+      live.append(startIndex, arrays, count);
+      const streamS = (startIndex + count) / intake.rateHz;
+      live.note({ kind: 'arrival', streamS, hubS: this.deps.steadyMs() / 1000 });
     } catch (error) {
       // A fault in the signal path must cost neither the samples nor the other rigs.
       this.live?.fail();
@@ -240,10 +247,14 @@ export class RigSession implements StreamEvents {
     for (const moved of this.#ackWatchers) moved(intake.name);
   }
 
-  #liveOf(intake: StreamIntake, startIndex: number): LiveSignal {
-    if (this.#signal?.intake === intake) return this.#signal.live;
+  #liveOf(intake: StreamIntake, startIndex: number, nowMs: number): LiveSignal {
+    const before = this.#signal?.intake;
+    if (this.#signal && before === intake) return this.#signal.live;
     const live = new LiveSignal(this.rig, intake.rateHz, intake.channels, startIndex);
     this.#signal = { intake, live };
+    const restarts = before ? this.#restarts.note(before, intake.name, nowMs) : null;
+    if (before && restarts !== null)
+      live.note({ kind: 'restart', awayS: Math.max(0, nowMs - before.lastBlockAtMs) / 1000, restarts });
     return live;
   }
 

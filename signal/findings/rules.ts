@@ -1,4 +1,6 @@
+import { BoardRestartRule } from '@/signal/findings/board-restart';
 import { ClippingRule } from '@/signal/findings/clipping';
+import { ClockDriftRule } from '@/signal/findings/clock-drift';
 import { DeadChannelRule } from '@/signal/findings/dead-channel';
 import { EdgeBounceRule } from '@/signal/findings/edge-bounce';
 import { LostSamplesRule } from '@/signal/findings/lost-samples';
@@ -9,7 +11,9 @@ import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 export function createRules(context: RuleContext): FindingRule[] {
   return [
     // On the way from the board.
+    new BoardRestartRule(),
     new LostSamplesRule(),
+    new ClockDriftRule(),
     // Between channels.
     new DeadChannelRule(context),
     // The signal of one channel.
