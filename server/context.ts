@@ -21,6 +21,7 @@ import type { ServerConfig } from './config/config';
 import { secretsFor } from './config/secrets';
 import { Disposers } from './disposers';
 import { createOriginCheck } from './http/origin';
+import { postedStreamPrefix } from './hub/board-restarts';
 import { createHub } from './hub/hub';
 import { startHousekeeping } from './housekeeping';
 import { createIdempotencyStore } from './idempotency-store';
