@@ -8,8 +8,9 @@ Rig
   --rig NAME           which one (its setup on the hub must have the same channels)
   --seed N             another wheel and other noise of the same make (1)
   --fault NAME         adds a fault for the whole run; may be given more than once:
-                       weak-tooth missing-tooth gap-wide gap-narrow clipping hum noise offset-drift
-                       dead-channel bounce phase supply-ripple; NAME:A for channel A only,
+                       weak-tooth missing-tooth uneven-pitch burr run-out gap-wide gap-narrow
+                       clipping hum noise spikes freeze offset-drift dead-channel inverted-line
+                       weak-pull-up points-drift bounce phase supply-ripple; NAME:A for channel A only,
                        NAME@FROM-TO for that part of the rig's loop, in seconds
 
 Streaming

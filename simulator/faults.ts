@@ -4,56 +4,62 @@
  */
 
 type Span = { beginS: number; endS: number };
+type Eased = Span & { easeS?: number };
 type OnChannel = Span & { channel?: string };
 
-export type Fault =
-  | (Span & { kind: 'weak-tooth'; position: number; strength: number; easeS?: number })
+/** What the wheel and what turns it do. Positions and shares count in pitches of the wheel. */
+type MechanicalFault =
+  | (Eased & { kind: 'weak-tooth'; position: number; strength: number })
   | (Span & { kind: 'missing-tooth'; position: number })
-  | (Span & { kind: 'gap'; addMm: number; easeS?: number })
+  /** Teeth stand off their places: share of the pitch by position. */
+  | (Eased & { kind: 'uneven-pitch'; shifts: Record<number, number> })
+  /** Something stands on the rim at the place `at` (in positions), `strength` times a tooth, `width` of a pitch wide. */
+  | (Eased & { kind: 'burr'; at: number; strength: number; width: number })
+  /** A chip that sits elsewhere each turn, in so large a share of the turns. */
+  | (Span & { kind: 'chips'; share: number; strength: number; width: number })
+  /** The wheel's centre moves off its axis. */
+  | (Eased & { kind: 'run-out'; addMm: number })
+  | (Eased & { kind: 'gap'; addMm: number })
+  /** All of the wheel's field, as a magnet does that lost its strength. */
+  | (Eased & { kind: 'weak-magnet'; factor: number })
+  /** The wheel shakes to and fro by so many degrees of one position. The truth leaves it out. */
+  | (Eased & { kind: 'shake'; amplitudeDeg: number; hz: number });
+
+/** What sensor, cable, supply and input do. */
+type ElectricalFault =
   | (OnChannel & { kind: 'offset-drift'; offsetV: number; easeS?: number })
   | (OnChannel & { kind: 'clipping'; lowV?: number; highV?: number })
-  | (OnChannel & { kind: 'hum'; amplitudeV: number; hz: number })
+  /** `thirdShare`: its third harmonic, as transformers and lamps add. */
+  | (OnChannel & { kind: 'hum'; amplitudeV: number; hz: number; thirdShare?: number })
   | (OnChannel & { kind: 'noise'; rmsV: number })
   | (OnChannel & { kind: 'dead-channel'; levelV: number })
+  /** A loose contact: a switching sensor's line chatters for so long after each of its edges. */
   | (OnChannel & { kind: 'bounce'; bounceS: number })
+  /** A switching sensor's line rings after each of its edges, beginning with that share of the step. */
+  | (OnChannel & { kind: 'ringing'; hz: number; decayS: number; share: number })
+  /** The pull-up of a switching sensor's line; `highV` where something loads it, so that it stays below the supply. */
+  | (OnChannel & { kind: 'weak-pull-up'; ohm: number; highV?: number })
+  /** Operate and release point of a switching sensor, both. */
+  | (OnChannel & { kind: 'points-drift'; addMt: number; easeS?: number })
   | (OnChannel & { kind: 'phase'; degrees: number; easeS?: number })
-  | (Span & { kind: 'supply-ripple'; amplitudeV: number; hz: number })
+  /** The line shows high for low, or a linear sensor faces the other pole. */
+  | (OnChannel & { kind: 'inverted-line' })
+  /** Two channels on each other's input. */
+  | (Span & { kind: 'swapped-channels'; channels: [string, string] })
+  /** Short pulses at random instants, so many a second. */
+  | (OnChannel & { kind: 'spikes'; perS: number; heightV: number; widthS: number })
+  /** The input holds its value for `forS` at random instants, so many a second; without a channel all at once. */
+  | (OnChannel & { kind: 'freeze'; perS: number; forS: number })
+  | (Span & { kind: 'supply-ripple'; amplitudeV: number; hz: number });
+
+/** What the board does. */
+type BoardFault =
   | (Span & { kind: 'lost-blocks' })
   /** The board is down from begin to end and comes back with a new stream name. */
   | (Span & { kind: 'restart' });
+
+export type Fault = MechanicalFault | ElectricalFault | BoardFault;
 export type FaultKind = Fault['kind'];
-
-/** What faults do to the whole rig now. */
-export type RigEffects = { gapAddMm: number; rippleV: number; rippleHz: number };
-/** What faults do to one channel now. */
-export type ChannelEffects = {
-  offsetV: number;
-  lowV: number;
-  highV: number;
-  humV: number;
-  humHz: number;
-  noiseV: number;
-  deadV: number | null;
-  bounceS: number;
-  phaseDeg: number;
-};
-
-export function noRigEffects(): RigEffects {
-  return { gapAddMm: 0, rippleV: 0, rippleHz: 0 };
-}
-export function noChannelEffects(): ChannelEffects {
-  return {
-    offsetV: 0,
-    lowV: -Infinity,
-    highV: Infinity,
-    humV: 0,
-    humHz: 0,
-    noiseV: 0,
-    deadV: null,
-    bounceS: 0,
-    phaseDeg: 0,
-  };
-}
 
 /** 0 outside the span, 1 well inside, half a cosine of `easeS` at either end. */
 export function shareOf(fault: Span & { easeS?: number }, tS: number): number {
@@ -61,73 +67,4 @@ export function shareOf(fault: Span & { easeS?: number }, tS: number): number {
   const ease = Math.min(fault.easeS ?? 0, (fault.endS - fault.beginS) / 2);
   const inside = Math.min(tS - fault.beginS, fault.endS - tS);
   return inside >= ease ? 1 : 0.5 - 0.5 * Math.cos((Math.PI * inside) / ease);
-}
-
-/** Adds one fault at time `tS` to the effects and to the wheel's strengths. */
-export function applyFault(
-  fault: Fault,
-  tS: number,
-  rig: RigEffects,
-  channels: ReadonlyMap<string, ChannelEffects>,
-  strengths: Float64Array,
-): void {
-  const share = shareOf(fault, tS);
-  if (share === 0) return;
-  switch (fault.kind) {
-    case 'weak-tooth':
-      strengths[fault.position] = (strengths[fault.position] ?? 0) * (1 - share * (1 - fault.strength));
-      return;
-    case 'missing-tooth':
-      strengths[fault.position] = 0;
-      return;
-    case 'gap':
-      rig.gapAddMm += share * fault.addMm;
-      return;
-    case 'supply-ripple':
-      rig.rippleV = fault.amplitudeV;
-      rig.rippleHz = fault.hz;
-      return;
-    case 'lost-blocks':
-    case 'restart':
-      return;
-    default:
-      for (const [name, effects] of channels) {
-        if (fault.channel === undefined || fault.channel === name) applyToChannel(fault, share, effects);
-      }
-  }
-}
-
-type ChannelFault = Extract<
-  Fault,
-  OnChannel & { kind: 'hum' | 'noise' | 'dead-channel' | 'bounce' | 'phase' | 'offset-drift' | 'clipping' }
->;
-
-function applyToChannel(fault: ChannelFault, share: number, effects: ChannelEffects): void {
-  switch (fault.kind) {
-    case 'offset-drift':
-      effects.offsetV += share * fault.offsetV;
-      return;
-    case 'clipping':
-      effects.lowV = fault.lowV ?? -Infinity;
-      effects.highV = fault.highV ?? Infinity;
-      return;
-    case 'hum':
-      effects.humV = fault.amplitudeV;
-      effects.humHz = fault.hz;
-      return;
-    case 'noise':
-      effects.noiseV = fault.rmsV;
-      return;
-    case 'dead-channel':
-      effects.deadV = fault.levelV;
-      return;
-    case 'bounce':
-      effects.bounceS = fault.bounceS;
-      return;
-    case 'phase':
-      effects.phaseDeg += share * fault.degrees;
-      return;
-    default:
-      fault satisfies never;
-  }
 }

@@ -27,10 +27,16 @@ export function createPoleField(ring: PoleRing): (phase: number, gapMm: number) 
   const b1 = poleHarmonicMt(ring, 1, 0);
   const b3 = poleHarmonicMt(ring, 3, 0);
   const b5 = poleHarmonicMt(ring, 5, 0);
+  let gapBefore = NaN;
+  let d = NaN;
   return (phase, gapMm) => {
+    // The gap seldom changes from one sample to the next.
+    if (gapMm !== gapBefore) {
+      gapBefore = gapMm;
+      d = gapDecay(ring.pairLengthMm, gapMm);
+    }
     const s = Math.sin(2 * Math.PI * phase);
     const s2 = s * s;
-    const d = gapDecay(ring.pairLengthMm, gapMm);
     const d2 = d * d;
     const third = b3 * d2 * (3 - 4 * s2);
     const fifth = b5 * d2 * d2 * (5 - 20 * s2 + 16 * s2 * s2);

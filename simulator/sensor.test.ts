@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { noChannelEffects } from '@/simulator/faults';
+import { noChannelEffects } from '@/simulator/fault-effects';
 import { createSensor, type SwitchingSensor } from '@/simulator/sensor';
 
 const quiet = { noiseRmsV: 0 };

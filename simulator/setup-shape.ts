@@ -3,7 +3,12 @@
 export type RigBody = {
   name: string;
   sensing: 'single' | 'quadrature' | 'three-hall' | 'width-coded';
-  wheel: { pulsesPerTurn: number; missingPulses: number; gearRatio: number };
+  wheel: {
+    pulsesPerTurn: number;
+    missingPulses: number;
+    gearRatio: number;
+    widthClasses?: { widthS: number; means: 'forward' | 'reverse' | 'weak' }[];
+  };
   channels: {
     name: string;
     role: 'A' | 'B' | 'Z' | 'U' | 'V' | 'W' | 'aux';

@@ -26,11 +26,18 @@ export type Truth = {
   toothTimes(fromS: number, toS: number, placeTurns?: number): ToothPass[];
 };
 
-export function createTruth(motion: Motion, wheel: Wheel, gearRatio: number): Truth {
+/** `runOutMm`: how far the wheel's centre is off its axis as built. */
+export function createTruth(motion: Motion, wheel: Wheel, gearRatio: number, runOutMm = 0): Truth {
   const n = wheel.positions;
 
+  /** Turns of the wheel as they pass before a sensor. */
+  function seenTurns(tS: number): number {
+    const turns = motion.turnsAt(tS) * gearRatio;
+    return runOutMm ? turns + wheel.runOutTurns(turns, runOutMm) : turns;
+  }
+
   function passes(fromS: number, toS: number, place: number, out: ToothPass[]): void {
-    const at = (tS: number) => (motion.turnsAt(tS) * gearRatio - place) * n;
+    const at = (tS: number) => (seenTurns(tS) - place) * n;
     const begin = at(fromS);
     const end = at(toS);
     if (begin === end) return;
