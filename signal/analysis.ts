@@ -2,6 +2,8 @@
  * The same signal path over a whole capture: what `GET /captures/:id/analysis` answers.
  */
 import type { Analysis, Finding, Result, RigSetup, SampleArray, Settings } from '@/signal/model';
+import { captureStatistics } from '@/signal/capture-statistics';
+import { WindowKeeper } from '@/signal/capture-statistics/window';
 import { createPipeline } from '@/signal/pipeline';
 import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import type { DirectionChange, Pipeline, SetupIssue } from '@/signal/pipeline-types';
@@ -29,9 +31,10 @@ type ChannelAnalysis = Analysis['channels'][string];
 const sliceSamples = 65_536;
 
 export function createAnalyser(options: AnalyserOptions): Result<Analyser, SetupIssue> {
-  const made = createPipeline({ ...options, startIndex: 0 });
+  const window = new WindowKeeper(options.channels.length);
+  const made = createPipeline({ ...options, startIndex: 0, tap: window });
   if (!made.ok) return made;
-  return { ok: true, value: new CaptureAnalyser(made.value, options) };
+  return { ok: true, value: new CaptureAnalyser(made.value, options, window) };
 }
 
 /** A capture in memory, in one call. A chunk is arrays of one length (one a channel, in order) or a gap. */
@@ -50,6 +53,8 @@ export function analyse(
 
 class CaptureAnalyser implements Analyser {
   private readonly pipeline: Pipeline;
+  private readonly options: AnalyserOptions;
+  private readonly window: WindowKeeper;
   private readonly names: readonly string[];
   private readonly channels: ChannelAnalysis[];
   private readonly speed: Analysis['speed'] = [];
@@ -57,8 +62,10 @@ class CaptureAnalyser implements Analyser {
   private readonly gaps: Analysis['gaps'] = [];
   private readonly findings: Finding[] = [];
 
-  constructor(pipeline: Pipeline, options: AnalyserOptions) {
+  constructor(pipeline: Pipeline, options: AnalyserOptions, window: WindowKeeper) {
     this.pipeline = pipeline;
+    this.options = options;
+    this.window = window;
     this.names = options.channels;
     this.channels = options.channels.map(() => ({
       lowV: null,
@@ -93,6 +100,16 @@ class CaptureAnalyser implements Analyser {
       const { lowV, highV, operateV, releaseV } = status.channels[index]!;
       channels[name] = { ...this.channels[index]!, lowV, highV, operateV, releaseV };
     });
+    const { rig, rateHz } = this.options;
+    const statistics = captureStatistics({
+      rig,
+      rateHz,
+      names: this.names,
+      channels,
+      speed: this.speed,
+      status,
+      window: this.window.finish(this.pipeline.motionNow()),
+    });
     const open = status.findings.map((finding) => ({ ...finding, to: endS }));
     return {
       channels,
@@ -104,6 +121,8 @@ class CaptureAnalyser implements Analyser {
       gaps: this.gaps,
       delayS: status.delayS,
       margin: status.margin,
+      wheelFace: status.wheelFace,
+      statistics,
       findings: [...this.findings, ...open].sort((a, b) => a.from - b.from),
     };
   }

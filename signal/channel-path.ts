@@ -101,6 +101,11 @@ export class ChannelPath implements FinderHost {
     }
   }
 
+  /** Filtered volts of the last chunk, from index 1 on; index 0 is the sample before it. */
+  get filtered(): Float64Array {
+    return this.scratch;
+  }
+
   get edges(): EdgeColumns {
     return this.intake.edges;
   }

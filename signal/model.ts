@@ -3,6 +3,8 @@
  * contract of the hub is checked against them, so that the API and the mathematics cannot drift apart.
  */
 
+import type { CaptureStatistics } from '@/signal/capture-statistics/shapes';
+
 export type Sensing = 'single' | 'quadrature' | 'three-hall' | 'width-coded';
 export type ChannelRole = 'A' | 'B' | 'Z' | 'U' | 'V' | 'W' | 'aux';
 export type SensorKind = 'linear' | 'switch' | 'latch' | 'omnipolar';
@@ -192,6 +194,8 @@ export type Analysis = {
   gaps: { from: number; to: number; lostSamples: number; estimated: boolean }[];
   delayS: number;
   margin: Margin | null;
+  wheelFace: WheelFace | null;
+  statistics: CaptureStatistics | null;
   findings: Finding[];
 };
 

@@ -14,7 +14,20 @@ export type PipelineOptions = {
   channels: readonly string[];
   /** Sample index on the stream's axis of the first sample to come (0 unless settings changed mid-stream). */
   startIndex: number;
+  tap?: SampleTap;
 };
+
+/** Sees the filtered samples as they pass, for statistics of a capture. */
+export interface SampleTap {
+  /** `v[from..from + count)` of channel `channel`; the first is sample `at` of the stream. Not to be kept. */
+  chunk(channel: number, v: Float64Array, from: number, count: number, at: number): void;
+  /** At fixed places of the stream, after all that was decided there. */
+  tick(now: MotionNow): void;
+  gap(now: MotionNow): void;
+}
+
+/** Teeth of the first channel and disturbances of the motion so far. */
+export type MotionNow = { state: 'running' | 'stopped' | 'unknown'; teeth: number; disturbances: number };
 
 /** Why a pipeline cannot be built from these settings. Wording for people is in `detail`. */
 export type SetupIssue = {
@@ -136,6 +149,8 @@ export interface Pipeline {
   note(note: BoardNote): void;
   /** The output since the last drain; valid until the next call of `process`, `skip` or `drain`. */
   readonly output: PipelineOutput;
+  /** What a tap is told. */
+  motionNow(): MotionNow;
   /** Empties the output. */
   drain(): void;
   /** Computed at each call; cheap enough for 25 calls a second. */

@@ -14,10 +14,12 @@ import type { Channel, Result, SampleArray } from '@/signal/model';
 import { Motion } from '@/signal/motion';
 import type {
   BoardNote,
+  MotionNow,
   Pipeline,
   PipelineOptions,
   PipelineOutput,
   PipelineStatus,
+  SampleTap,
   SetupIssue,
 } from '@/signal/pipeline-types';
 import { noiseGain } from '@/signal/response';
@@ -46,9 +48,10 @@ class SignalPipeline implements Pipeline {
   private readonly lanes: Lane[] = [];
   private readonly desk: FindingsDesk;
   private readonly tickSamples: number;
+  private readonly tap: SampleTap | null;
   private nextAt: number;
 
-  constructor({ rig, settings, rateHz, channels, startIndex }: PipelineOptions) {
+  constructor({ rig, settings, rateHz, channels, startIndex, tap }: PipelineOptions) {
     const sections = designFilters(settings.filter, rateHz);
     const gainOfNoise = noiseGain(sections, rateHz);
     const memory = memorySamples(sections);
@@ -57,6 +60,7 @@ class SignalPipeline implements Pipeline {
     const directions: PipelineOutput['directions'] = [];
     const { pulsesPerTurn, missingPulses } = rig.wheel;
     this.rateHz = rateHz;
+    this.tap = tap ?? null;
     this.nextAt = startIndex;
     this.tickSamples = samplesPerTick(rateHz);
     this.paths = channels.map(
@@ -122,8 +126,10 @@ class SignalPipeline implements Pipeline {
     while (from < count) {
       const toTick = this.tickSamples - (this.nextAt % this.tickSamples);
       const size = Math.min(count - from, toTick, chunkSamples);
-      for (let c = 0; c < this.paths.length; c++)
+      for (let c = 0; c < this.paths.length; c++) {
         this.paths[c]!.advance(arrays[c]!, from, from + size, this.nextAt);
+        this.tap?.chunk(c, this.paths[c]!.filtered, 1, size, this.nextAt);
+      }
       from += size;
       this.nextAt += size;
       mergeEdges(this.lanes, this.motion);
@@ -142,6 +148,7 @@ class SignalPipeline implements Pipeline {
     const gap = { fromS, toS, lostSamples: Math.round(lostSamples), estimated };
     this.output.gaps.push(gap);
     this.desk.gap(gap);
+    this.tap?.gap(this.motionNow());
   }
 
   note(note: BoardNote): void {
@@ -168,5 +175,11 @@ class SignalPipeline implements Pipeline {
   private tick(): void {
     for (const path of this.paths) path.tick();
     this.desk.tick(this.nextAt / this.rateHz);
+    this.tap?.tick(this.motionNow());
+  }
+
+  motionNow(): MotionNow {
+    const { calm, state } = this.motion;
+    return { state, teeth: this.paths[this.roles.indexOf(0)]!.log.count, disturbances: calm.disturbances };
   }
 }

@@ -1,9 +1,10 @@
 import { z } from 'zod';
 import { findingCodes } from '@/signal/model';
-import { direction, finding, margin } from '@/server/contract/findings';
+import { direction, finding, margin, wheelFace } from '@/server/contract/findings';
 import { finite, id, instant, listOf, positive } from '@/server/contract/common';
 import { rig, wheel } from '@/server/contract/rig';
 import { settings, signalSettings } from '@/server/contract/settings';
+import { captureStatistics } from '@/server/contract/statistics';
 
 const tag = z.string().trim().min(1).max(40);
 const words = {
@@ -132,6 +133,8 @@ export const analysis = z
     ),
     delayS: z.number(),
     margin: margin.nullable(),
+    wheelFace: wheelFace.nullable(),
+    statistics: captureStatistics.nullable(),
     findings: z.array(finding),
   })
   .meta({ id: 'Analysis' });

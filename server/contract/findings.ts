@@ -27,3 +27,17 @@ export const margin = z
   .meta({ id: 'Margin' });
 
 export const direction = z.enum(['forward', 'reverse', 'stopped', 'unknown']);
+
+export const wheelFace = z.object({
+  numbered: z.boolean(),
+  positions: z.array(
+    z.object({
+      angleDeg: z.number(),
+      spacingErrorDeg: z.number().nullable(),
+      swingV: z.number().nullable(),
+      missing: z.boolean(),
+      count: z.number(),
+    }),
+  ),
+  angleDeg: z.number().nullable(),
+});

@@ -4,7 +4,7 @@
  */
 import { z } from 'zod';
 import { id, instant } from '@/server/contract/common';
-import { direction, finding, margin } from '@/server/contract/findings';
+import { direction, finding, margin, wheelFace } from '@/server/contract/findings';
 
 /** `GET /rigs/:rigId/live` */
 export const live = z
@@ -53,20 +53,6 @@ export const live = z
   })
   .meta({ id: 'Live' });
 export type Live = z.infer<typeof live>;
-
-export const wheelFace = z.object({
-  numbered: z.boolean(),
-  positions: z.array(
-    z.object({
-      angleDeg: z.number(),
-      spacingErrorDeg: z.number().nullable(),
-      swingV: z.number().nullable(),
-      missing: z.boolean(),
-      count: z.number(),
-    }),
-  ),
-  angleDeg: z.number().nullable(),
-});
 
 /** The signal of a stretch of stream time, made for drawing. Lanes in the rig's channel order. */
 export const ribbon = z.object({

@@ -160,6 +160,8 @@ export function demoAnalysis(): Analysis {
     gaps: [{ from: 16, to: 16.6, lostSamples: 12000, estimated: false }],
     delayS: 0,
     margin: { channel: 'A', volts: 0.31, sigmas: 20, millitesla: null },
+    wheelFace: null,
+    statistics: null,
     findings: [
       {
         ...weakTooth,

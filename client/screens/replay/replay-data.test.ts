@@ -29,6 +29,8 @@ function analysisOf(change: Partial<Analysis> = {}): Analysis {
     gaps: [],
     delayS: 0,
     margin: null,
+    wheelFace: null,
+    statistics: null,
     findings: [],
     ...change,
   };
