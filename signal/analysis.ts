@@ -1,12 +1,16 @@
 /**
  * The same signal path over a whole capture: what `GET /captures/:id/analysis` answers.
  */
-import type { Analysis, Finding, Result, RigSetup, SampleArray, Settings } from '@/signal/model';
+import { designFilters } from '@/signal/filter-design';
+import type { Section } from '@/signal/filter-design';
+import type { Analysis, Channel, Finding, Result, RigSetup, SampleArray, Settings } from '@/signal/model';
+import { BothWaysFeed, longestMemorySamples } from '@/signal/both-ways-feed';
 import { captureStatistics } from '@/signal/capture-statistics';
 import { WindowKeeper } from '@/signal/capture-statistics/window';
 import { createPipeline } from '@/signal/pipeline';
 import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import type { DirectionChange, Pipeline, SetupIssue } from '@/signal/pipeline-types';
+import { memorySamples } from '@/signal/statistics/zero-phase';
 
 export type AnalyserOptions = {
   rig: RigSetup;
@@ -14,6 +18,8 @@ export type AnalyserOptions = {
   rateHz: number;
   /** Names of the channels present, in the order of the arrays given to `push`. */
   channels: readonly string[];
+  /** Filter forward and backward: no delay at all, the gain squared. */
+  zeroPhase?: boolean;
 };
 
 /** Feed it a capture's samples and gaps in order, then ask once for the result. */
@@ -31,11 +37,31 @@ type ChannelAnalysis = Analysis['channels'][string];
 const sliceSamples = 65_536;
 
 export function createAnalyser(options: AnalyserOptions): Result<Analyser, SetupIssue> {
-  const window = new WindowKeeper(options.channels.length);
-  const made = createPipeline({ ...options, startIndex: 0, tap: window });
+  const { rig, settings, rateHz, channels, zeroPhase = false } = options;
+  const window = new WindowKeeper(channels.length);
+  const made = createPipeline({
+    rig,
+    settings,
+    rateHz,
+    channels,
+    startIndex: 0,
+    tap: window,
+    bothWays: zeroPhase,
+  });
   if (!made.ok) return made;
-  return { ok: true, value: new CaptureAnalyser(made.value, options, window) };
+  const sections = zeroPhase ? designFilters(settings.filter, rateHz) : [];
+  const memory = memorySamples(sections);
+  if (!memory.ok || memory.value > longestMemorySamples) return { ok: false, issue: tooSlow };
+  const analyser = new CaptureAnalyser(made.value, options, window);
+  if (zeroPhase) analyser.feedBothWays(sections, memory.value);
+  return { ok: true, value: analyser };
 }
+
+const tooSlow: SetupIssue = {
+  code: 'bad-filter',
+  pointer: '/filter',
+  detail: 'A filter this slow cannot be run forward and backward; raise its lowest cutoff.',
+};
 
 /** A capture in memory, in one call. A chunk is arrays of one length (one a channel, in order) or a gap. */
 export function analyse(
@@ -61,6 +87,7 @@ class CaptureAnalyser implements Analyser {
   private readonly changes: DirectionChange[] = [];
   private readonly gaps: Analysis['gaps'] = [];
   private readonly findings: Finding[] = [];
+  private feed: BothWaysFeed | null = null;
 
   constructor(pipeline: Pipeline, options: AnalyserOptions, window: WindowKeeper) {
     this.pipeline = pipeline;
@@ -77,21 +104,40 @@ class CaptureAnalyser implements Analyser {
     }));
   }
 
+  feedBothWays(sections: readonly Section[], memory: number): void {
+    const { rig } = this.options;
+    const channels = this.names.map((name) => rig.channels.find((own) => own.name === name) as Channel);
+    this.feed = new BothWaysFeed(channels, sections, memory, (arrays, count, filtered) =>
+      this.run(arrays, count, filtered),
+    );
+  }
+
   push(arrays: readonly SampleArray[], count: number): void {
+    if (this.feed) this.feed.push(arrays, count);
+    else this.run(arrays, count);
+  }
+
+  private run(arrays: readonly SampleArray[], count: number, filtered?: readonly Float64Array[]): void {
     for (let from = 0; from < count; from += sliceSamples) {
       const size = Math.min(sliceSamples, count - from);
       const whole = from === 0 && size === count;
-      this.pipeline.process(whole ? arrays : arrays.map((array) => array.subarray(from, from + size)), size);
+      this.pipeline.process(
+        whole ? arrays : arrays.map((array) => array.subarray(from, from + size)),
+        size,
+        filtered?.map((volts) => volts.subarray(from, from + size)),
+      );
       this.take();
     }
   }
 
   gap(lostSamples: number, estimated: boolean): void {
+    this.feed?.end();
     this.pipeline.skip(lostSamples, estimated);
     this.take();
   }
 
   finish(): Analysis {
+    this.feed?.end();
     this.take();
     const status = this.pipeline.status();
     const endS = status.nowS;

@@ -169,13 +169,18 @@ export class ChannelPath implements FinderHost {
     return worstMarginV(this.intake.marginMeter);
   }
 
-  /** Takes `array[from..to)`, at most `chunkSamples` of them; the first is sample `at` of the stream. */
-  advance(array: SampleArray, from: number, to: number, at: number): void {
+  /**
+   * Takes `array[from..to)`, at most `chunkSamples` of them; the first is sample `at` of the stream.
+   * @param filtered the same samples filtered already, V: the path's own filter is left out.
+   */
+  advance(array: SampleArray, from: number, to: number, at: number, filtered?: Float64Array): void {
     const { detector, finder, watch } = this;
     const n = to - from;
     const v = this.scratch;
     const base = at - 1;
-    if (this.fromCodes && array instanceof Int16Array) {
+    if (filtered) {
+      v.set(filtered.subarray(from, to), 1);
+    } else if (this.fromCodes && array instanceof Int16Array) {
       const { codeOffset, voltsPerCode } = this.channel;
       runCascadeFromInt16(this.cascade, array, from, to, codeOffset, voltsPerCode, v, 1);
     } else {

@@ -15,6 +15,8 @@ export type PipelineOptions = {
   /** Sample index on the stream's axis of the first sample to come (0 unless settings changed mid-stream). */
   startIndex: number;
   tap?: SampleTap;
+  /** Samples come filtered forward and backward beside the raw ones (captures only): nothing is delayed. */
+  bothWays?: boolean;
 };
 
 /** Sees the filtered samples as they pass, for statistics of a capture. */
@@ -141,8 +143,11 @@ export type BoardNote =
   | { kind: 'restart'; awayS: number; restarts: number };
 
 export interface Pipeline {
-  /** `arrays[i]` belongs to `channels[i]`; all hold `count` valid samples, finite, in the array's own type. */
-  process(arrays: readonly SampleArray[], count: number): void;
+  /**
+   * `arrays[i]` belongs to `channels[i]`; all hold `count` valid samples, finite, in the array's own type.
+   * @param filtered the same in volts, filtered both ways; given always or never, as `bothWays` says.
+   */
+  process(arrays: readonly SampleArray[], count: number, filtered?: readonly Float64Array[]): void;
   /** Samples that were lost: time runs on, filters are primed anew, the band's state is unknown. */
   skip(lostSamples: number, estimated: boolean): void;
   /** For findings that samples alone cannot show. */

@@ -51,9 +51,11 @@ class SignalPipeline implements Pipeline {
   private readonly tap: SampleTap | null;
   private nextAt: number;
 
-  constructor({ rig, settings, rateHz, channels, startIndex, tap }: PipelineOptions) {
-    const sections = designFilters(settings.filter, rateHz);
-    const gainOfNoise = noiseGain(sections, rateHz);
+  constructor({ rig, settings, rateHz, channels, startIndex, tap, bothWays }: PipelineOptions) {
+    const designed = designFilters(settings.filter, rateHz);
+    // Filtered both ways, nothing is left to filter or to be taken off, and noise has passed the filter twice.
+    const sections = bothWays ? [] : designed;
+    const gainOfNoise = noiseGain(bothWays ? [...designed, ...designed] : designed, rateHz);
     const memory = memorySamples(sections);
     const bands: PipelineOutput['bands'] = [];
     const speed = createSpeedColumns();
@@ -118,7 +120,7 @@ class SignalPipeline implements Pipeline {
     );
   }
 
-  process(arrays: readonly SampleArray[], count: number): void {
+  process(arrays: readonly SampleArray[], count: number, filtered?: readonly Float64Array[]): void {
     if (arrays.length !== this.paths.length) {
       throw new Error(`process wants ${this.paths.length} arrays, one a channel, and got ${arrays.length}`);
     }
@@ -127,7 +129,7 @@ class SignalPipeline implements Pipeline {
       const toTick = this.tickSamples - (this.nextAt % this.tickSamples);
       const size = Math.min(count - from, toTick, chunkSamples);
       for (let c = 0; c < this.paths.length; c++) {
-        this.paths[c]!.advance(arrays[c]!, from, from + size, this.nextAt);
+        this.paths[c]!.advance(arrays[c]!, from, from + size, this.nextAt, filtered?.[c]);
         this.tap?.chunk(c, this.paths[c]!.filtered, 1, size, this.nextAt);
       }
       from += size;

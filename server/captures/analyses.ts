@@ -14,7 +14,7 @@ import { createTurns, WorkQueue } from './turns';
 /** JSON of an `Analysis`, with the findings' summary. */
 export type AnalysisResult = { json: Buffer; findings: CaptureFinding[] };
 
-export type AnalysisWish = { settings: Settings; wheel: Wheel };
+export type AnalysisWish = { settings: Settings; wheel: Wheel; zeroPhase?: boolean };
 
 const maxCachedBytes = 64 * 1024 * 1024;
 /** A capture with more samples than this is summed up after the answer. */
@@ -96,11 +96,12 @@ export class CaptureAnalyses {
 
   async #run(
     capture: CaptureRecord,
-    { settings, wheel }: AnalysisWish,
+    { settings, wheel, zeroPhase = false }: AnalysisWish,
     key: string,
   ): Promise<Result<AnalysisResult, SetupIssue>> {
     const { channels, rateHz } = capture;
-    const made = createAnalyser({ rig: { ...setupOf(capture.rig), wheel }, settings, rateHz, channels });
+    const rig = { ...setupOf(capture.rig), wheel };
+    const made = createAnalyser({ rig, settings, rateHz, channels, zeroPhase });
     if (!made.ok) return made;
     const turn = createTurns();
     for await (const stretch of captureStretches(this.deps.store, capture, channels)) {

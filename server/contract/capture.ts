@@ -86,7 +86,8 @@ export const samplesQuery = z.object({
   fromS: z.coerce.number().min(0).default(0),
   toS: z.coerce.number().optional(),
   points: z.coerce.number().int().min(1).max(20_000).default(1000),
-  signal: z.enum(['raw', 'filtered']).default('raw'),
+  /** `zero-phase`: the filter run forward and backward, without any delay. */
+  signal: z.enum(['raw', 'filtered', 'zero-phase']).default('raw'),
 });
 
 const volts = z.array(z.number().nullable());
@@ -105,7 +106,12 @@ export const samples = z
 export type Samples = z.infer<typeof samples>;
 
 export const analysisInput = z
-  .object({ settings: signalSettings, wheel: wheel.optional() })
+  .object({
+    settings: signalSettings,
+    wheel: wheel.optional(),
+    /** Run the filter forward and backward: no delay, its gain squared. */
+    zeroPhase: z.boolean().default(false),
+  })
   .meta({ id: 'AnalysisInput' });
 
 export const analysis = z

@@ -4,6 +4,7 @@ import type { CaptureRecord, CaptureStore, TurnmarkDb } from '@/db';
 import type { AnalysisWish, CaptureAnalyses } from '@/server/captures/analyses';
 import { filteredSamples } from '@/server/captures/filtered-samples';
 import { rawSamples } from '@/server/captures/samples';
+import { zeroPhaseSamples } from '@/server/captures/zero-phase-samples';
 import { analysis, analysisInput, samples, samplesQuery } from '@/server/contract';
 import { ApiProblem, invalidField } from '@/server/http/problems';
 import type { Answer, Route } from '@/server/http/route';
@@ -76,7 +77,10 @@ export function captureSignalRoutes({ db, store, analyses }: CaptureSignalDeps):
         const settings = signalSettingsOf(capture.settings);
         const issue = validateSetup(setupOf(capture.rig), settings, capture.rateHz, capture.channels);
         if (issue !== null) throw keptProblem(issue);
-        return { status: 200, body: await filteredSamples(store, capture, wish) };
+        if (signal === 'filtered') return { status: 200, body: await filteredSamples(store, capture, wish) };
+        const both = await zeroPhaseSamples(store, capture, wish);
+        if (!both.ok) throw keptProblem(both.issue);
+        return { status: 200, body: both.value };
       },
     }),
     route({
@@ -103,9 +107,9 @@ export function captureSignalRoutes({ db, store, analyses }: CaptureSignalDeps):
       body: analysisInput,
       answers: [{ status: 200, description: 'Times in seconds from the first sample', schema: analysis }],
       problems: ['not-found', 'unavailable'],
-      async handle({ params, body: { settings, wheel }, res }) {
+      async handle({ params, body: { settings, wheel, zeroPhase }, res }) {
         const capture = found(await getCapture(db, params.captureId), 'capture');
-        const wish = { settings: signalSettingsOf(settings), wheel: wheel ?? capture.rig.wheel };
+        const wish = { settings: signalSettingsOf(settings), wheel: wheel ?? capture.rig.wheel, zeroPhase };
         return answerAnalysis(capture, wish, res, wishProblem);
       },
     }),

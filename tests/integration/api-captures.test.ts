@@ -181,12 +181,51 @@ describe('analysis', () => {
     expect(body.speed.findLast(({ rpm }) => rpm !== null)!.rpm).toBeCloseTo((60 * toothHz) / 12, 1);
   });
 
+  it('filters forward and backward on request: no delay, and the edges stand where they stood', async () => {
+    const filter = { kind: 'lowpass', family: 'butterworth', order: 2, cutoffHz: 40 };
+    const run = async (zeroPhase: boolean) =>
+      (
+        await reviewer<Analysis>('POST', `/api/v1/captures/${id}/analysis`, {
+          settings: { filter },
+          zeroPhase,
+        })
+      ).body;
+    const [once, both] = [await run(false), await run(true)];
+    expect(once.delayS).toBeGreaterThan(0.001);
+    expect(both.delayS).toBe(0);
+    const { edges } = both.channels.A!;
+    expect(edges.length).toBeGreaterThan(150);
+    for (const { midT, rising } of edges.slice(4, -4)) {
+      const half = 2 * toothHz * midT;
+      expect(Math.abs(half - Math.round(half))).toBeLessThan(0.01);
+      expect(Math.round(half) % 2).toBe(rising ? 0 : 1);
+    }
+    expect(both.statistics!.channels.A!.sine!.offsetV).toBeCloseTo(1.5, 2);
+  });
+
   it('says which setting cannot be run', async () => {
     const filter = { kind: 'lowpass', family: 'butterworth', order: 4, cutoffHz: 600 };
     const { status, body } = await reviewer<Problem>('POST', `/api/v1/captures/${id}/analysis`, {
       settings: { filter },
     });
     expect([status, body.errors?.[0]?.pointer]).toEqual([422, '/settings/filter/cutoffHz']);
+  });
+
+  it('shows the signal filtered both ways beside the one that the filter delays', async () => {
+    const filter = { kind: 'lowpass', family: 'butterworth', order: 2, cutoffHz: 40 };
+    const settings = { filter, reason: 'to see the delay' };
+    expect((await engineer('POST', `/api/v1/rigs/${rig.id}/settings`, settings)).status).toBe(201);
+    await board('POST', '/ingest/v1/samples', block('filtered', 0, 0, 2000));
+    const kept = (await keep({ lastSeconds: 2, title: 'Filtered' })).body;
+    const of = async (signal: string) => {
+      const path = `/api/v1/captures/${kept.id}/samples?channel=A&fromS=1.01&toS=1.1&points=200&signal=${signal}`;
+      return (await reviewer<Samples>('GET', path)).body.v as number[];
+    };
+    const [raw, once, both] = [await of('raw'), await of('filtered'), await of('zero-phase')];
+    const rise = (volts: number[]) => volts.findIndex((v, i) => i > 0 && volts[i - 1]! < 1.5 && v >= 1.5);
+    expect(Math.abs(rise(both) - rise(raw))).toBeLessThanOrEqual(1);
+    expect(rise(once) - rise(raw)).toBeGreaterThan(3);
+    expect(Math.max(...both)).toBeLessThan(Math.max(...once));
   });
 
   it('knows the gap, and the shelf knows the finding', async () => {
