@@ -10,6 +10,7 @@ import { Text } from '@/client/components/text';
 import type { RibbonLane } from '@/client/drawings/ribbon-types';
 import { durationText, secondsText } from '@/client/drawings/time-axis';
 import { CaptureFacts, WordsPlate } from '@/client/screens/replay/capture-facts';
+import { MeasuredPlate } from '@/client/screens/replay/measured-plate';
 import { findingWindow } from '@/client/screens/replay/replay-data';
 import { ReplayControls } from '@/client/screens/replay/replay-controls';
 import { OverviewPicture, RibbonPicture } from '@/client/screens/replay/replay-picture';
@@ -111,6 +112,7 @@ function Side({ capture, analysis, analysisState, replay, onEdit, onDelete }: Re
         {analysis ? <FoundPlates analysis={analysis} onShow={show} /> : analysisState}
       </View>
       <WordsPlate capture={capture} onEdit={onEdit} onDelete={onDelete} />
+      {analysis ? <MeasuredPlate analysis={analysis} /> : null}
       <CaptureFacts capture={capture} analysis={analysis} />
     </>
   );
