@@ -22,6 +22,7 @@ const units: Record<string, string> = {
   Percent: '%',
   Mt: 'mT',
   K: 'K',
+  Ppm: 'ppm',
 };
 
 /** `{ peakV: 1.7, turnsInARow: 312 }` becomes "peak 1.7 V, turns in a row 312". */
