@@ -7,4 +7,9 @@ export const channelWords = {
     message: `Channel ${channel} stands at the ${evidence.rail} end of its range for ${short(evidence.railPercent)} % of the time, so its peaks are cut off.`,
     remedy: 'Widen the air gap, take a less sensitive sensor, or put an attenuator before the input.',
   }),
+  'offset-drift': (channel, evidence) => ({
+    message: `The middle of channel ${channel} has moved by ${short(evidence.movedV)} V since the stream began, to ${short(evidence.middleV)} V; that is ${short(evidence.movedPercentOfSwing)} % of its swing.`,
+    remedy:
+      'Let the fitted band follow it or take it away with a high pass, and look for heat, a slipped magnet or bracket, and a supply that the converter does not share.',
+  }),
 } satisfies Record<string, Wording>;

@@ -1,5 +1,5 @@
 import { BoardRestartRule } from '@/signal/findings/board-restart';
-import { ClippingRule } from '@/signal/findings/clipping';
+import { channelRules } from '@/signal/findings/channel-rules';
 import { ClockDriftRule } from '@/signal/findings/clock-drift';
 import { DeadChannelRule } from '@/signal/findings/dead-channel';
 import { EdgeBounceRule } from '@/signal/findings/edge-bounce';
@@ -17,7 +17,7 @@ export function createRules(context: RuleContext): FindingRule[] {
     // Between channels.
     new DeadChannelRule(context),
     // The signal of one channel.
-    new ClippingRule(context),
+    ...channelRules(context),
     // Edges and teeth.
     new EdgeBounceRule(context),
     new MissingToothRule(context),

@@ -1,0 +1,133 @@
+/**
+ * What one channel's teeth were like on average over the last whole turns, read from its log twice a second. Whole turns,
+ * so that run-out and unequal teeth are the same in each of them.
+ */
+import type { ChannelPath } from '@/signal/channel-path';
+import { teethPerTurn } from '@/signal/findings/channel-finding';
+import type { RuleContext } from '@/signal/findings/rule';
+import { readableFrom } from '@/signal/tooth-log';
+
+/** Not more often than this, s (ticks are a tenth of a second apart at most). */
+const everyS = 0.45;
+const fewestTeeth = 4;
+/** A wheel with more teeth than this is judged by so many of them. */
+const mostTeeth = 512;
+/** From one look to the next the speed may differ by so much. */
+const steadyShare = 0.05;
+
+export class TurnMeans {
+  /** The teeth looked at: `first` up to, not with, `end`. All of them have ended, and the one after has begun. */
+  first = 0;
+  end = 0;
+  fromS = NaN;
+  toS = NaN;
+  /** Of one position of the wheel, Hz. */
+  toothHz = NaN;
+  highV = NaN;
+  lowV = NaN;
+  /** High share of the period, of teeth whose neighbour is in its place. */
+  duty = NaN;
+  /** The speed was the same at the look before. */
+  steady = false;
+  private readonly path: ChannelPath;
+  private readonly context: RuleContext;
+  private readonly turn: number;
+  private readonly positions: number;
+  private disturbances = -1;
+  private begin = 0;
+  private lookedS = -Infinity;
+  private askedS = NaN;
+  private isNew = false;
+  private beforeHz = NaN;
+
+  constructor(context: RuleContext, path: ChannelPath) {
+    const { pulsesPerTurn } = context.rig.wheel;
+    this.context = context;
+    this.path = path;
+    this.turn = teethPerTurn(context, path);
+    this.positions = path.channel.role === 'Z' ? 1 : pulsesPerTurn;
+  }
+
+  get swingV(): number {
+    return this.highV - this.lowV;
+  }
+
+  get middleV(): number {
+    return (this.highV + this.lowV) / 2;
+  }
+
+  get teeth(): number {
+    return this.end - this.first;
+  }
+
+  /** To be asked at every tick, by as many rules as want. @returns true where there is something new to judge. */
+  look(nowS: number): boolean {
+    if (nowS !== this.askedS) {
+      this.askedS = nowS;
+      this.isNew = this.lookAgain(nowS);
+    }
+    return this.isNew;
+  }
+
+  private lookAgain(nowS: number): boolean {
+    if (nowS - this.lookedS < everyS || Number.isNaN(this.turn)) return false;
+    const { motion, settleS } = this.context;
+    const { calm, state } = motion;
+    const { log } = this.path;
+    if (calm.disturbances !== this.disturbances || state !== 'running' || nowS - calm.sinceS < settleS) {
+      this.disturbances = calm.disturbances;
+      this.begin = log.count;
+      this.beforeHz = NaN;
+      return false;
+    }
+    const begin = readableFrom(log, this.begin);
+    const end = log.count - 1;
+    const teeth = this.wanted(end - begin);
+    if (teeth === 0) return false;
+    this.lookedS = nowS;
+    this.first = end - teeth;
+    this.end = end;
+    this.average();
+    this.steady = Math.abs(this.toothHz / this.beforeHz - 1) < steadyShare;
+    this.beforeHz = this.toothHz;
+    return true;
+  }
+
+  /** Of so many teeth at hand; 0 where they are too few. */
+  private wanted(atHand: number): number {
+    const { turn } = this;
+    if (turn > mostTeeth) return atHand >= mostTeeth ? mostTeeth : 0;
+    const least = turn * Math.ceil(fewestTeeth / turn);
+    if (atHand < least) return 0;
+    // As many as came since the last look, so that quick wheels are averaged over more turns.
+    const recent = Math.min(atHand, mostTeeth, this.path.log.count - 1 - this.end);
+    return Math.max(least, turn * Math.floor(recent / turn));
+  }
+
+  private average(): void {
+    const { log } = this.path;
+    const { mask } = log;
+    const { first, end, turn } = this;
+    this.fromS = log.riseS[first & mask]!;
+    this.toS = log.riseS[end & mask]!;
+    const positions = turn > mostTeeth ? end - first : ((end - first) / turn) * this.positions;
+    const pitchS = (this.toS - this.fromS) / positions;
+    this.toothHz = 1 / pitchS;
+    let high = 0;
+    let low = 0;
+    let highS = 0;
+    let wholeS = 0;
+    for (let n = first; n < end; n++) {
+      const riseS = log.riseS[n & mask]!;
+      const periodS = log.riseS[(n + 1) & mask]! - riseS;
+      high += log.peakV[n & mask]!;
+      low += log.troughV[n & mask]!;
+      if (periodS > 1.5 * pitchS) continue;
+      highS += log.fallS[n & mask]! - riseS;
+      wholeS += periodS;
+    }
+    this.highV = high / (end - first);
+    this.lowV = low / (end - first);
+    this.duty = highS / wholeS;
+  }
+}
