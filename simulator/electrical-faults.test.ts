@@ -1,14 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import {
-  linear,
-  poles,
-  risesOf,
-  swingOf,
-  switching,
-  toothed,
-  voltsOf,
-  withFaults,
-} from '@/simulator/test-rigs';
+import { linear, poles, risesOf, swingOf, toothed, voltsOf, withFaults } from '@/simulator/test-rigs';
 
 const first = (spec: Parameters<typeof voltsOf>[0], seconds = 2) => voltsOf(spec, seconds)[0] as number[];
 const share = (volts: readonly number[]) => volts.filter((v) => v > 2.5).length / volts.length;
