@@ -1,0 +1,31 @@
+/** States are skipped that no shaft skips: the input freezes now and then while the shaft turns on. */
+import { runningMotion, timingFor, type CaseMaker } from '@/tests/accuracy/findings/case';
+import { benchOf, drawMachine } from '@/tests/accuracy/findings/machine';
+
+export const illegalState: CaseMaker = (draw) => {
+  const machine = drawMachine(draw, {
+    sensing: ['quadrature', 'three-hall'],
+    toothHz: [10, 300],
+    turnsPerS: [0.5, 40],
+  });
+  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 2 });
+  const { beginS, endS } = timing;
+  const perS = draw.uniform(3, Math.min(8, 0.4 * machine.toothHz));
+  const forS = draw.uniform(0.4, 0.6) / machine.toothHz;
+  return {
+    ...benchOf(machine, runningMotion(draw, machine, timing.seconds), {
+      faults: [{ kind: 'freeze', beginS, endS, perS, forS }],
+    }),
+    ...timing,
+    variant: machine.sensing,
+    consequences: [
+      'uneven-teeth',
+      'missing-tooth',
+      'direction-flip',
+      'phase-error',
+      'extra-pulse',
+      'edge-bounce',
+      'duty-shift',
+    ],
+  };
+};
