@@ -12,4 +12,21 @@ export const channelWords = {
     remedy:
       'Let the fitted band follow it or take it away with a high pass, and look for heat, a slipped magnet or bracket, and a supply that the converter does not share.',
   }),
+  'duty-shift': (channel, evidence) =>
+    evidence.usualDuty === undefined
+      ? {
+          message: `Channel ${channel} is high for ${percent(evidence.duty)} of each period, where a latch before equal poles is high for about half of it.`,
+          remedy:
+            'Check that the sensor is a latch, that it faces poles of both kinds, and that nothing magnetic stands beside it.',
+        }
+      : {
+          message: `Channel ${channel} is high for ${percent(evidence.duty)} of each period instead of the ${percent(evidence.usualDuty)} that were usual at this speed.`,
+          remedy:
+            'Look for a gap that has changed, a magnet or iron that came near the sensor, and a threshold that drifts with heat.',
+        },
 } satisfies Record<string, Wording>;
+
+/** "43.6 %" of a share. */
+function percent(share: number | string | undefined): string {
+  return typeof share === 'number' ? `${short(100 * share)} %` : String(share);
+}

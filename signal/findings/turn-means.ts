@@ -27,6 +27,8 @@ export class TurnMeans {
   lowV = NaN;
   /** High share of the period, of teeth whose neighbour is in its place. */
   duty = NaN;
+  /** Standard error of that mean, from how teeth differ. */
+  dutyError = NaN;
   /** The speed was the same at the look before. */
   steady = false;
   private readonly path: ChannelPath;
@@ -54,10 +56,6 @@ export class TurnMeans {
 
   get middleV(): number {
     return (this.highV + this.lowV) / 2;
-  }
-
-  get teeth(): number {
-    return this.end - this.first;
   }
 
   /** To be asked at every tick, by as many rules as want. @returns true where there is something new to judge. */
@@ -98,9 +96,11 @@ export class TurnMeans {
     const { turn } = this;
     if (turn > mostTeeth) return atHand >= mostTeeth ? mostTeeth : 0;
     const least = turn * Math.ceil(fewestTeeth / turn);
-    if (atHand < least) return 0;
+    const since = this.path.log.count - 1 - this.end;
+    // Two looks that share most of their teeth prove no more than one.
+    if (atHand < least || 2 * since < least) return 0;
     // As many as came since the last look, so that quick wheels are averaged over more turns.
-    const recent = Math.min(atHand, mostTeeth, this.path.log.count - 1 - this.end);
+    const recent = Math.min(atHand, mostTeeth, since);
     return Math.max(least, turn * Math.floor(recent / turn));
   }
 
@@ -117,17 +117,26 @@ export class TurnMeans {
     let low = 0;
     let highS = 0;
     let wholeS = 0;
+    let sum = 0;
+    let squares = 0;
+    let counted = 0;
     for (let n = first; n < end; n++) {
       const riseS = log.riseS[n & mask]!;
       const periodS = log.riseS[(n + 1) & mask]! - riseS;
       high += log.peakV[n & mask]!;
       low += log.troughV[n & mask]!;
       if (periodS > 1.5 * pitchS) continue;
-      highS += log.fallS[n & mask]! - riseS;
+      const toothHighS = log.fallS[n & mask]! - riseS;
+      const share = toothHighS / periodS;
+      highS += toothHighS;
       wholeS += periodS;
+      sum += share;
+      squares += share * share;
+      counted++;
     }
     this.highV = high / (end - first);
     this.lowV = low / (end - first);
     this.duty = highS / wholeS;
+    this.dutyError = Math.sqrt(Math.max(0, squares / counted - (sum / counted) ** 2) / counted);
   }
 }

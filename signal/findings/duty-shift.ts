@@ -1,0 +1,97 @@
+import type { ChannelPath } from '@/signal/channel-path';
+import { Baseline } from '@/signal/findings/baseline';
+import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
+import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import type { TurnMeans } from '@/signal/findings/turn-means';
+import type { Evidence } from '@/signal/finding-words/values';
+
+const opensAt = 0.05;
+const staysAt = 0.03;
+/** So many standard errors of the mean: teeth that differ much from each other prove less. */
+const errors = 4;
+/** The swing may differ from the usual one by so much: pulses of one pole widen as they grow. */
+const swingShare = 0.15;
+/** A latch before poles of equal length is high for half of the time; so far from it, poles or points are not equal. */
+const latchOpensAt = 0.2;
+const latchStaysAt = 0.17;
+const looksForBaseline = 2;
+const looksToOpen = 2;
+
+/**
+ * The share of high in the period has moved from what it was at this speed and in this direction, while the swing has
+ * not. A filter and a slow line change it with speed, so that each half octave of speed has a baseline of its own.
+ */
+export class DutyShiftRule implements FindingRule {
+  readonly latches: SizedLatch[];
+  private readonly context: RuleContext;
+  private readonly means: readonly TurnMeans[];
+  private readonly duties: Baseline[];
+  private readonly swings: Baseline[];
+  private readonly seen: number[];
+
+  constructor(context: RuleContext, means: readonly TurnMeans[]) {
+    const { paths } = context;
+    this.context = context;
+    this.means = means;
+    this.latches = paths.map(() => new SizedLatch(2));
+    this.duties = paths.map(() => new Baseline(looksForBaseline, true));
+    this.swings = paths.map(() => new Baseline(looksForBaseline, true));
+    this.seen = paths.map(() => 0);
+  }
+
+  tick(nowS: number): void {
+    const { paths } = this.context;
+    for (let index = 0; index < paths.length; index++) {
+      // An index mark has no second state to speak of.
+      if (this.means[index]!.look(nowS) && paths[index]!.channel.role !== 'Z')
+        this.judge(paths[index]!, index, nowS);
+      this.latches[index]!.rest(nowS);
+    }
+  }
+
+  private judge(path: ChannelPath, index: number, nowS: number): void {
+    const means = this.means[index]!;
+    if (!means.steady || !(means.duty > 0 && means.duty < 1)) return;
+    const latch = this.latches[index]!;
+    const usual = this.usualDuty(index);
+    const shift = means.duty - usual;
+    const limit = latch.open ? staysAt : Math.max(opensAt, errors * means.dutyError);
+    const shifted = Math.abs(shift) > limit && this.swingIsUsual(index);
+    const fromHalf = means.duty - 0.5;
+    const unequal =
+      path.channel.sensor.kind === 'latch' && Math.abs(fromHalf) > (latch.open ? latchStaysAt : latchOpensAt);
+    this.seen[index] = shifted || unequal ? this.seen[index]! + 1 : 0;
+    if (!shifted && !latch.open) this.learn(index);
+    if (this.seen[index] === 0 || (!latch.open && this.seen[index]! < looksToOpen)) return;
+    const evidence: Evidence = shifted
+      ? { duty: means.duty, usualDuty: usual, shift, toothHz: means.toothHz }
+      : { duty: means.duty, expectedDuty: 0.5, toothHz: means.toothHz };
+    const size = Math.abs(shifted ? shift : fromHalf);
+    const severity = size > (shifted ? 0.15 : 0.35) ? 'fault' : 'warn';
+    const seen = { fromS: means.fromS, atS: means.fromS, severity, evidence } as const;
+    latch.raiseSized(findingOf('duty-shift', path.channel.name, seen), size, nowS);
+  }
+
+  /** While the finding is open, the nearest speed known will do: a fault must not become the usual thing of a new one. */
+  private usualDuty(index: number): number {
+    const { direction } = this.context.motion;
+    const { toothHz } = this.means[index]!;
+    const duties = this.duties[index]!;
+    const usual = duties.usual(direction, toothHz);
+    if (!Number.isNaN(usual) || !this.latches[index]!.open) return usual;
+    return duties.usual(direction, duties.nearestHz(direction, toothHz));
+  }
+
+  private swingIsUsual(index: number): boolean {
+    const { toothHz, swingV } = this.means[index]!;
+    const usual = this.swings[index]!.usual(this.context.motion.direction, toothHz);
+    return Number.isNaN(usual) || Math.abs(swingV / usual - 1) < swingShare;
+  }
+
+  private learn(index: number): void {
+    const { direction } = this.context.motion;
+    const { toothHz, duty, swingV } = this.means[index]!;
+    this.duties[index]!.learn(direction, toothHz, duty);
+    this.swings[index]!.learn(direction, toothHz, swingV);
+  }
+}
