@@ -1,25 +1,66 @@
 /**
- * The gap of a missing-tooth wheel: how many positions an interval spans, and where in the turn a tooth stands.
+ * Sync with the gap of a missing-tooth wheel (N positions, M of them missing): where in the turn a tooth stands.
  *
- * An interval is long when it is more than sqrt(M + 1) times the time for one position before it, the geometric middle
- * between a tooth and a gap of M missing positions. Outside sync, or where no gap is due, a long interval is believed only
- * once the next one is short again by the same ratio (else the shaft just slowed down). In sync means: from one gap
- * to the next exactly N positions were passed.
+ *     unsynced --a gap--> proving --exactly N positions, then a gap--> synced --anything that cannot be--> unsynced
+ *
+ * In sync, teeth that did not show and pulses that are no teeth are told from the wheel's own gap by where they come
+ * (`gap-judge.ts`), so that one of them does not cost the sync; what cannot be explained loses it, with a reason.
+ * Outside sync two gaps a turn cannot be told apart, so that nothing is believed before one turn held exactly one.
  */
 export type SyncState = 'unsynced' | 'proving' | 'synced';
+
+export type SyncLoss =
+  /** A gap came before all teeth had: the count was behind. */
+  | 'early-gap'
+  /** Where the gap was due teeth went on: the count was ahead, or the gap was filled. */
+  | 'late-gap'
+  /** More pulses than the wheel has teeth: exactly one before the gap, or too many to say which are the teeth. */
+  | 'extra-tooth'
+  /** A silence too long for its positions to be counted: some stop shorter than what is called stopped. */
+  | 'timeout'
+  | 'stopped'
+  | 'reversed'
+  | 'lost-samples';
 
 export type GapSync = {
   positions: number;
   missing: number;
   state: SyncState;
+  /** Why the sync that was there is gone; null in sync, and before the first. */
+  lostBecause: SyncLoss | null;
+  /** How often it was lost, by reason, since the stream began. */
+  readonly losses: Record<SyncLoss, number>;
   /** Position of the last tooth, 0 the first after the gap; meaningless while unsynced. */
   position: number;
-  /** Time for one position, s; NaN: not known. */
+  /** Mean of the last gaps over the mean pitch beside them, in sync or not: M + 1 on a sound wheel; NaN: none seen. */
+  gapRatio: number;
+  /** Positions from one gap to the next as last seen, in sync or not, and how many times in a row; 0: not known. */
+  betweenGaps: number;
+  sameBetween: number;
+  /** Pulses in sync that were recognised as no teeth. */
+  extraPulses: number;
+  /** Time for one position in the last interval, s; how many it spanned, and the time for one in the interval before. */
   perPositionS: number;
+  lastSpans: number;
+  olderS: number;
   /** The interval that is to be judged, s. */
   intervalS: number;
-  /** A long interval that waits for the next to be judged, s; NaN: none. */
+  /** An interval that waits for the next to be judged, s; NaN: none. */
   waitingS: number;
+  /** What the last judgement says of a tooth that stands where the gap is due. */
+  lateAs: 'late-gap' | 'extra-tooth';
+  /** Why the last interval cannot be counted in positions; null: it can. */
+  uncountable: 'timeout' | 'extra-tooth' | null;
+  /** Teeth since the last extra pulse. */
+  sinceExtra: number;
+  /** The last gap and the time for one position before it, until the interval after it is known, s; NaN: none waits. */
+  gapS: number;
+  beforeGapS: number;
+  sinceGap: number;
+  /** Positions since a gap that came too early, or was a tooth that did not show; -1: there is none. */
+  sinceDoubt: number;
+  /** Missing positions passed while proving, which count once it is proven. */
+  owed: number;
 };
 
 export function createGapSync(positions: number, missing: number): GapSync {
@@ -27,69 +68,66 @@ export function createGapSync(positions: number, missing: number): GapSync {
     positions,
     missing,
     state: 'unsynced',
+    lostBecause: null,
+    losses: {
+      'early-gap': 0,
+      'late-gap': 0,
+      'extra-tooth': 0,
+      timeout: 0,
+      stopped: 0,
+      reversed: 0,
+      'lost-samples': 0,
+    },
     position: 0,
+    gapRatio: NaN,
+    betweenGaps: 0,
+    sameBetween: 0,
+    extraPulses: 0,
     perPositionS: NaN,
+    lastSpans: 1,
+    olderS: NaN,
     intervalS: NaN,
     waitingS: NaN,
+    lateAs: 'late-gap',
+    uncountable: null,
+    sinceExtra: 0,
+    gapS: NaN,
+    beforeGapS: NaN,
+    sinceGap: -1,
+    sinceDoubt: -1,
+    owed: 0,
   };
 }
 
-export function resetSync(sync: GapSync): void {
+/** Leaves the sync, if there was one, for a reason. */
+export function loseSync(sync: GapSync, because: SyncLoss): void {
+  if (sync.state === 'synced' && sync.missing > 0) {
+    sync.lostBecause = because;
+    sync.losses[because]++;
+  }
   sync.state = 'unsynced';
   sync.position = 0;
-  sync.perPositionS = NaN;
+  sync.sinceDoubt = -1;
+}
+
+/** Nothing is known of the teeth any more. The counters and what was learnt of the gap stay. */
+export function resetSync(sync: GapSync, because: SyncLoss = 'stopped'): void {
+  loseSync(sync, because);
+  sync.perPositionS = sync.olderS = NaN;
   sync.waitingS = NaN;
+  sync.gapS = NaN;
+  sync.sinceGap = -1;
+  sync.uncountable = null;
 }
 
-/** Ratio from which an interval is long. */
-function threshold(sync: GapSync): number {
-  return Math.sqrt(sync.missing + 1);
-}
-
-function gapIsDue(sync: GapSync): boolean {
+export function gapIsDue(sync: GapSync): boolean {
   return sync.state === 'synced' && sync.position === sync.positions - sync.missing - 1;
 }
 
 /** True where no gap can come next, so that one silent position is all there can be. */
 export function noGapAhead(sync: GapSync): boolean {
-  return sync.missing === 0 || (sync.state === 'synced' && !gapIsDue(sync));
-}
-
-/**
- * Judges the interval that a tooth closes, `sync.intervalS`.
- * @returns positions that it spans, or 0 where that must wait for the next tooth.
- */
-export function judgeInterval(sync: GapSync): number {
-  const { intervalS } = sync;
-  if (sync.missing === 0 || Number.isNaN(sync.perPositionS)) {
-    sync.perPositionS = intervalS;
-    return 1;
-  }
-  const ratio = intervalS / sync.perPositionS;
-  if (ratio <= threshold(sync)) {
-    sync.perPositionS = intervalS;
-    return 1;
-  }
-  const whole = sync.missing + 1;
-  if (gapIsDue(sync) && ratio < whole * threshold(sync)) {
-    sync.perPositionS = intervalS / whole;
-    return whole;
-  }
-  sync.waitingS = intervalS;
-  return 0;
-}
-
-/** Judges the interval that waited, now that the next one, `sync.intervalS`, is known. */
-export function judgeWaiting(sync: GapSync): number {
-  const nextS = sync.intervalS;
-  const waited = sync.waitingS;
-  sync.waitingS = NaN;
-  const believed = nextS < waited / threshold(sync);
-  // The mean of both sides follows a shaft that speeds up or slows down across the gap.
-  const each = (sync.perPositionS + nextS) / 2;
-  const spans = believed ? Math.max(1, Math.round(waited / each)) : 1;
-  sync.perPositionS = waited / spans;
-  return spans;
+  if (sync.missing === 0) return true;
+  return sync.state === 'synced' && !gapIsDue(sync) && Number.isNaN(sync.waitingS);
 }
 
 /**
@@ -103,26 +141,73 @@ export function moveOn(sync: GapSync, spans: number): number {
     sync.position = (sync.position + 1) % positions;
     return 0;
   }
+  noteSpacing(sync, spans);
+  if (sync.uncountable) {
+    loseSync(sync, sync.uncountable);
+    sync.uncountable = null;
+    return 0;
+  }
   const gap = spans === missing + 1;
-  if (sync.state === 'unsynced') {
-    if (gap) {
-      sync.state = 'proving';
-      sync.position = 0;
-    }
-    return 0;
-  }
   const next = sync.position + spans;
-  if (next === positions && gap) {
-    const proven = sync.state === 'proving';
+  if (sync.state === 'synced') return moveInSync(sync, spans, next);
+  if (sync.state === 'proving' && next <= positions - missing - 1 && !gap) {
+    sync.position = next;
+    sync.owed += spans - 1;
+  } else if (sync.state === 'proving' && next === positions && gap) {
     sync.state = 'synced';
+    sync.lostBecause = null;
     sync.position = 0;
-    return proven ? 2 * missing : missing;
+    return sync.owed + missing;
+  } else if (gap) {
+    prove(sync, 0);
+  } else {
+    sync.state = 'unsynced';
   }
-  if (next > positions - missing - 1) {
-    sync.state = gap ? 'proving' : 'unsynced';
-    sync.position = 0;
-    return 0;
+  return 0;
+}
+
+function moveInSync(sync: GapSync, spans: number, next: number): number {
+  const { positions, missing } = sync;
+  const gap = spans > missing;
+  const last = positions - missing - 1;
+  if (next >= positions) {
+    sync.position = next - positions;
+    sync.sinceDoubt = -1;
+    return spans - 1;
   }
-  sync.position = next;
-  return sync.state === 'synced' ? spans - 1 : 0;
+  if (next <= last) {
+    // A tooth that did not show, or the gap before its time: the place where the gap is due will tell.
+    if (gap) sync.sinceDoubt = 0;
+    else if (sync.sinceDoubt >= 0) sync.sinceDoubt += spans;
+    sync.position = next;
+    return spans - 1;
+  }
+  const since = sync.sinceDoubt + spans;
+  if (gap) {
+    loseSync(sync, 'early-gap');
+    prove(sync, 0);
+  } else if (sync.sinceDoubt >= 0 && since <= last) {
+    loseSync(sync, 'early-gap');
+    prove(sync, since);
+  } else {
+    loseSync(sync, sync.lateAs);
+  }
+  return 0;
+}
+
+function prove(sync: GapSync, position: number): void {
+  sync.state = 'proving';
+  sync.position = position;
+  sync.owed = sync.missing;
+}
+
+/** How far gaps lie apart, whatever the wheel is said to be: tells a wheel that is set up wrongly. */
+function noteSpacing(sync: GapSync, spans: number): void {
+  if (sync.sinceGap >= 0) sync.sinceGap += spans;
+  if (spans === 1) return;
+  if (sync.sinceGap > 0) {
+    sync.sameBetween = sync.sinceGap === sync.betweenGaps ? sync.sameBetween + 1 : 1;
+    sync.betweenGaps = sync.sinceGap;
+  }
+  sync.sinceGap = 0;
 }

@@ -7,7 +7,8 @@
  */
 import { createEdgeQueue, delayGuessed, roomForSpeed } from '@/signal/columns';
 import type { EdgeQueue } from '@/signal/columns';
-import { createGapSync, judgeInterval, judgeWaiting, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
+import { judgeInterval, judgeWaiting } from '@/signal/gap-judge';
+import { createGapSync, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
 import type { GapSync } from '@/signal/gap-sync';
 import { createIntervalMeter, noteInterval } from '@/signal/interval-meter';
 import type { RigSetup, Settings } from '@/signal/model';
@@ -161,9 +162,15 @@ export class ToothTrain {
   private resumeWaiting(): boolean {
     const { meter, placer, queue, entry } = this;
     const spans = judgeWaiting(this.sync);
-    placer.t = meter.t = this.waitingT;
-    meter.sigmaS = this.waitingSigmaS;
+    const t = this.waitingT;
     this.waitingT = NaN;
+    if (spans === 0) {
+      // A pulse, and counted as one, but no tooth of the wheel.
+      this.extraPositions--;
+      return false;
+    }
+    placer.t = meter.t = t;
+    meter.sigmaS = this.waitingSigmaS;
     const found = this.advance(spans);
     placer.t = meter.t = queue.midS[entry]! - queue.delayS[entry]!;
     placer.show();
