@@ -47,14 +47,13 @@ export class Motion {
     startIndex: number,
     speed: SpeedColumns,
     directions: DirectionChange[],
-    toothMissed: () => void,
   ) {
     const table = stepTable(rig.sensing);
     this.rig = rig;
     this.stoppedAfterS = settings.speed.stoppedAfterS;
     this.stoppedAfterSamples = settings.speed.stoppedAfterS * rateHz;
     this.tracker = table ? createDirectionTracker(table) : null;
-    this.train = new ToothTrain(rig, table ? 0 : rig.wheel.missingPulses, settings, speed, toothMissed);
+    this.train = new ToothTrain(rig, table ? 0 : rig.wheel.missingPulses, settings, speed);
     this.speed = speed;
     this.directions = directions;
     this.countsSinceS = startIndex / rateHz;

@@ -90,9 +90,7 @@ class SignalPipeline implements Pipeline {
       const role = this.roles[index]!;
       if (role >= 0) this.lanes.push({ path, queue: path.queue, role });
     });
-    this.motion = new Motion(rig, settings, rateHz, startIndex, speed, directions, () =>
-      this.paths[this.roles.indexOf(0)]!.toothMissed(),
-    );
+    this.motion = new Motion(rig, settings, rateHz, startIndex, speed, directions);
     this.output = {
       edges: this.paths.map(({ edges }) => edges),
       rejected: this.paths.map(({ rejectedMarks }) => rejectedMarks),

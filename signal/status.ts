@@ -37,13 +37,7 @@ export function statusOf(
     phaseDeg: motion.rig.sensing === 'quadrature' ? known(motion.phase.deg) : null,
     channels: paths.map(channelStatus),
     margin: worstMargin(paths),
-    wheelFace: train.face
-      ? train.face.snapshot(
-          train.sync.missing > 0 && train.synced,
-          motion.reversed,
-          known(angleDeg(motion, nowS)),
-        )
-      : null,
+    wheelFace: train.face ? train.face.snapshot(known(angleDeg(motion, nowS))) : null,
     findings,
   };
 }

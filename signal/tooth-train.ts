@@ -38,7 +38,7 @@ export class ToothTrain {
   rowS = NaN;
   private readonly rig: RigSetup;
   private readonly meter: SpeedMeter;
-  private readonly placer: ToothPlacer;
+  readonly placer: ToothPlacer;
   private readonly speed: SpeedColumns;
   private queue: EdgeQueue = createEdgeQueue();
   private entry = 0;
@@ -51,13 +51,12 @@ export class ToothTrain {
   private troughV = NaN;
   private placedT = NaN;
 
-  /** @param missing positions in a row that the wheel lacks. @param toothMissed a tooth that should have come did not. */
+  /** @param missing positions in a row that the wheel lacks. */
   constructor(
     rig: RigSetup,
     missing: number,
     { speed: { method, windowS } }: Settings,
     speed: SpeedColumns,
-    toothMissed: () => void,
   ) {
     const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
     this.rig = rig;
@@ -65,7 +64,7 @@ export class ToothTrain {
     this.meter = new SpeedMeter(method, windowS, pulsesPerTurn, gearRatio);
     this.sync = createGapSync(pulsesPerTurn, missing);
     this.face = pulsesPerTurn <= mostPositions ? new WheelFaceMeter(pulsesPerTurn, missingPulses) : null;
-    this.placer = new ToothPlacer(this.sync, this.face, toothMissed);
+    this.placer = new ToothPlacer(this.sync, this.face, missingPulses);
     this.uneven = new Unevenness(pulsesPerTurn);
   }
 
@@ -128,11 +127,10 @@ export class ToothTrain {
     }
     let found = false;
     placer.t = t;
-    if (placer.isHolding) placer.show();
+    placer.rise(this.sign < 0);
     meter.t = t;
     meter.sigmaS = queue.sigmaS[i]!;
     if (meter.count === 0) {
-      placer.hold(1);
       this.firstGuessed = guessed;
       this.firstMidS = queue.midS[i]!;
       meter.add(this.place);
@@ -160,7 +158,7 @@ export class ToothTrain {
 
   /** The tooth whose interval waited is placed, now that the entry at hand closes the next one. */
   private resumeWaiting(): boolean {
-    const { meter, placer, queue, entry } = this;
+    const { meter, queue, entry } = this;
     const spans = judgeWaiting(this.sync);
     const t = this.waitingT;
     this.waitingT = NaN;
@@ -169,11 +167,10 @@ export class ToothTrain {
       this.extraPositions--;
       return false;
     }
-    placer.t = meter.t = t;
+    meter.t = t;
     meter.sigmaS = this.waitingSigmaS;
     const found = this.advance(spans);
-    placer.t = meter.t = queue.midS[entry]! - queue.delayS[entry]!;
-    placer.show();
+    meter.t = queue.midS[entry]! - queue.delayS[entry]!;
     meter.sigmaS = queue.sigmaS[entry]!;
     return found;
   }
@@ -183,7 +180,6 @@ export class ToothTrain {
     const { meter, speed } = this;
     this.place += spans;
     if (this.sync.missing > 0) this.extraPositions += moveOn(this.sync, spans);
-    this.placer.hold(spans);
     if (!Number.isNaN(this.rpm)) {
       const { pulsesPerTurn, gearRatio } = this.rig.wheel;
       const pitches = (meter.t - this.placedT) * Math.abs(this.rpm) * pulsesPerTurn * gearRatio;

@@ -1,101 +1,159 @@
 /**
- * What the wheel face draws: spacing and strength of every tooth, averaged over turns, and which places stayed empty.
+ * What the wheel face draws and rules of findings judge: spacing and strength of every tooth over turns, mean and spread,
+ * and which places stayed empty.
  *
- * Spacing of a tooth at the share x of the turn's time, in a turn during which the speed changed by the share a (from
- * this and the last turn's durations): its angle is 360 (x - a x (1 - x) / 2); the nominal angle taken off, the mean of
- * the turn taken off. Turns whose duration changed by more than 5 % teach nothing.
+ * Spacing is learnt from whole turns. The shaft's angle is the cubic through four passes of the SAME tooth, which the
+ * wheel's own unevenness cannot bend: the middle turn of the three is judged, so that speeding up, and speeding up ever
+ * more, leaves nothing behind. Turns of a shaft that changes its speed by more than a tenth a turn, or by fits, teach nothing.
+ *
+ * Positions are counted the way in which the wheel turned when they were learnt; `numberOf` says where that is on the wheel.
  */
 import type { WheelFace } from '@/signal/model';
+import { WheelAbsence } from '@/signal/wheel-absence';
+import type { WheelSeat } from '@/signal/wheel-tracker';
 
 /** Wheels with more positions are not drawn, and no single tooth of theirs is judged. */
 export const mostPositions = 4096;
+
+/** Means run over about so many turns. */
+const memoryTurns = 8;
+/** Turns that such means, and spreads, are worth: (2 - g) / g for a gain of 1 / 8. */
+export const memoryWorth = 2 * memoryTurns - 1;
+const mostChange = 0.1;
+const mostFits = 0.03;
 
 export interface TurnListener {
   /**
    * A whole turn is over.
    * @param times instant of the tooth at each position, s; NaN where none came. @param start position that the turn began
-   * with. @param endS instant of that position's tooth a turn later, s. The array is used again for the next turn.
+   * with. @param endS instant of that position's tooth a turn later, s. The array is used again for a later turn.
    */
   turn(times: Float64Array, start: number, endS: number): void;
 }
 
-export class WheelFaceMeter {
+export class WheelFaceMeter implements WheelSeat {
   readonly listeners: TurnListener[] = [];
-  /** Turns in a row in which nothing came where the tooth should be. */
-  readonly missedInRow: Uint16Array;
-  readonly lastSeenS: Float64Array;
-  /** Instant of the tooth that `place` is to take, s, and its peak to peak, V (NaN: not known). */
+  readonly absence: WheelAbsence;
+  readonly positions: number;
+  readonly missing: number;
   t = NaN;
   toothSwingV = NaN;
-  private readonly positions: number;
-  private readonly missing: number;
-  private readonly spacingDeg: Float64Array;
-  private readonly swingV: Float64Array;
-  private readonly counts: Float64Array;
-  private readonly turnTimes: Float64Array;
+  /** Turns that were whole, and those that spacing was learnt from, since there was anything to be forgotten. */
+  turns = 0;
+  learntTurns = 0;
+  /** Measured less nominal angle, degrees, by position; NaN: not known. */
+  readonly spacingDeg: Float64Array;
+  /** From the tooth before to this one, above a whole pitch, as a share of it: mean, and variance of single turns. */
+  readonly step: Float64Array;
+  readonly stepVariance: Float64Array;
+  /** Peak to peak, V. */
+  readonly swingV: Float64Array;
+  readonly swingVariance: Float64Array;
+  readonly counts: Float64Array;
+  /** Last pass, s. */
+  readonly seenS: Float64Array;
+  private readonly learnt: Uint8Array;
+  private isReversed = false;
+  private isStale = false;
   private started = false;
   private startPosition = 0;
   private lastPosition = 0;
-  private lastTurnS = NaN;
+  private lastT = NaN;
+  private turnTimes: Float64Array;
+  private timesBefore: Float64Array;
+  /** When the turn before the one under way began, and the one before that, s; NaN: not with the same tooth. */
+  private beganS = NaN;
+  private beganBeforeS = NaN;
 
   constructor(positions: number, missing: number) {
+    const column = (): Float64Array => new Float64Array(positions).fill(NaN);
     this.positions = positions;
     this.missing = missing;
-    this.spacingDeg = new Float64Array(positions).fill(NaN);
-    this.swingV = new Float64Array(positions).fill(NaN);
+    this.absence = new WheelAbsence(positions);
+    this.spacingDeg = column();
+    this.step = column();
+    this.stepVariance = column();
+    this.swingV = column();
+    this.swingVariance = column();
     this.counts = new Float64Array(positions);
-    this.missedInRow = new Uint16Array(positions);
-    this.lastSeenS = new Float64Array(positions).fill(NaN);
-    this.turnTimes = new Float64Array(positions).fill(NaN);
+    this.seenS = column();
+    this.learnt = new Uint8Array(positions);
+    this.turnTimes = column();
+    this.timesBefore = column();
   }
 
-  /** Position unknown from here on (stop, gap, reversal, out of sync). */
-  lose(forget: boolean): void {
+  /** Position on the wheel of what was counted as `position`: a wheel that turns in reverse shows its teeth backwards. */
+  numberOf(position: number): number {
+    return this.isReversed ? mirrored(position, this.positions, this.missing) : position;
+  }
+
+  /** What was learnt holds for the teeth that come now. */
+  get isKnown(): boolean {
+    return this.started && !this.isStale;
+  }
+
+  /** On a wheel with a gap the numbers hold on; otherwise what was learnt is of other teeth than those that come now. */
+  start(reversed: boolean): void {
+    if (this.isStale || reversed !== this.isReversed) this.forget();
+    this.isReversed = reversed;
+  }
+
+  lose(): void {
     this.started = false;
-    this.lastTurnS = NaN;
-    this.missedInRow.fill(0);
-    if (!forget) return;
-    this.spacingDeg.fill(NaN);
-    this.swingV.fill(NaN);
-    this.counts.fill(0);
+    this.beganS = this.beganBeforeS = NaN;
+    this.absence.clear();
+    if (this.missing === 0) this.isStale = true;
   }
 
-  /** Takes a tooth at `position`, `spans` positions after the one before. */
   place(position: number, spans: number): void {
-    const { positions, t, toothSwingV: swingV } = this;
-    this.counts[position] = this.counts[position]! + 1;
+    const { t, toothSwingV: swingV } = this;
+    const count = this.counts[position]! + 1;
+    this.counts[position] = count;
     if (!Number.isNaN(swingV)) {
       const old = this.swingV[position]!;
-      this.swingV[position] = Number.isNaN(old) ? swingV : old + (swingV - old) / 4;
+      if (Number.isNaN(old)) {
+        this.swingV[position] = swingV;
+        this.swingVariance[position] = 0;
+      } else {
+        const gain = count < memoryTurns ? 1 / count : 1 / memoryTurns;
+        const off = swingV - old;
+        this.swingV[position] = old + gain * off;
+        this.swingVariance[position] = (1 - gain) * (this.swingVariance[position]! + gain * off * off);
+      }
     }
+    this.absence.came(position);
+    this.seenS[position] = t;
     if (!this.started) {
+      this.started = true;
       this.begin(position);
       return;
     }
-    for (let k = 1; k < spans; k++) this.miss((this.lastPosition + k) % positions);
-    const passedStart = (this.lastPosition - this.startPosition + positions) % positions;
-    if (passedStart + spans >= positions) {
-      if (position === this.startPosition) this.finishTurn();
-      this.begin(position);
-    } else {
+    if (spans > 1) this.passEmpty(spans);
+    this.lastT = t;
+    const { positions, startPosition } = this;
+    const passed = (this.lastPosition - startPosition + positions) % positions;
+    this.lastPosition = position;
+    if (passed + spans < positions) {
       this.turnTimes[position] = t;
-      this.lastPosition = position;
+      return;
     }
-    this.missedInRow[position] = 0;
-    this.lastSeenS[position] = t;
+    if (passed + spans === positions) this.finishTurn();
+    else this.beganS = this.beganBeforeS = NaN;
+    this.begin(position);
   }
 
-  /** @param mirrored positions were counted backwards (reverse). */
-  snapshot(numbered: boolean, mirrored: boolean, angleDeg: number | null): WheelFace {
-    const { positions, missing } = this;
+  snapshot(angleDeg: number | null): WheelFace {
+    const { positions, missing, isReversed } = this;
+    const numbered = missing > 0 && !Number.isNaN(this.seenS[0]!);
     const list: WheelFace['positions'] = [];
     for (let i = 0; i < positions; i++) {
-      const k = mirrored ? (positions - i) % positions : i;
-      const gone = numbered && k >= positions - missing;
+      const k = isReversed ? mirrored(i, positions, missing) : i;
+      const gone = numbered && i >= positions - missing;
+      const hidden = gone || this.absence.inRow[k]! > 0;
       list.push({
         angleDeg: (360 * i) / positions,
-        spacingErrorDeg: gone ? null : known(mirrored ? -this.spacingDeg[k]! : this.spacingDeg[k]!),
-        swingV: gone ? null : known(this.swingV[k]!),
+        spacingErrorDeg: gone ? null : known(isReversed ? -this.spacingDeg[k]! : this.spacingDeg[k]!),
+        swingV: hidden ? null : known(this.swingV[k]!),
         missing: gone,
         count: this.counts[k]!,
       });
@@ -103,51 +161,96 @@ export class WheelFaceMeter {
     return { numbered, positions: list, angleDeg };
   }
 
-  private begin(position: number): void {
-    this.turnTimes.fill(NaN);
-    this.started = true;
-    this.startPosition = position;
-    this.lastPosition = position;
-    this.turnTimes[position] = this.t;
+  private forget(): void {
+    this.isStale = false;
+    this.turns = this.learntTurns = 0;
+    for (const column of [this.spacingDeg, this.step, this.stepVariance, this.swingV, this.swingVariance])
+      column.fill(NaN);
+    this.seenS.fill(NaN);
+    this.counts.fill(0);
+    this.learnt.fill(0);
   }
 
-  private miss(position: number): void {
-    if (this.missing > 0 && position >= this.positions - this.missing) return;
-    this.missedInRow[position] = Math.min(65_535, this.missedInRow[position]! + 1);
-    this.lastSeenS[position] = this.t;
+  private begin(position: number): void {
+    this.turnTimes.fill(NaN);
+    this.startPosition = this.lastPosition = position;
+    this.turnTimes[position] = this.lastT = this.t;
+  }
+
+  private passEmpty(spans: number): void {
+    const { positions, missing, lastPosition, lastT, t } = this;
+    for (let k = 1; k < spans; k++) {
+      const position = (lastPosition + k) % positions;
+      if (position < positions - missing)
+        this.absence.stayedEmpty(position, lastT + (k / spans) * (t - lastT));
+    }
   }
 
   private finishTurn(): void {
-    const { positions, startPosition, turnTimes, t } = this;
+    const { turnTimes, timesBefore, startPosition, t, beganS, beganBeforeS } = this;
+    const fromS = turnTimes[startPosition]!;
+    this.turns++;
     for (const listener of this.listeners) listener.turn(turnTimes, startPosition, t);
-    const t0 = turnTimes[startPosition]!;
-    const turnS = t - t0;
-    const before = this.lastTurnS;
-    this.lastTurnS = turnS;
-    if (Number.isNaN(before) || Math.abs(before / turnS - 1) > 0.05) return;
-    const change = (before - turnS) / turnS;
-    let sum = 0;
-    let seen = 0;
-    for (let k = 0; k < positions; k++) {
-      const error = this.errorDeg(k, t0, turnS, change);
-      if (Number.isNaN(error)) continue;
-      sum += error;
-      seen++;
-    }
-    const mean = sum / seen;
-    for (let k = 0; k < positions; k++) {
-      const error = this.errorDeg(k, t0, turnS, change) - mean;
-      if (Number.isNaN(error)) continue;
-      const position = (startPosition + k) % positions;
-      const old = this.spacingDeg[position]!;
-      this.spacingDeg[position] = Number.isNaN(old) ? error : old + (error - old) / 8;
-    }
+    if (!Number.isNaN(beganBeforeS)) this.learn(timesBefore, beganBeforeS, beganS, fromS, t);
+    this.beganBeforeS = beganS;
+    this.beganS = fromS;
+    this.timesBefore = turnTimes;
+    this.turnTimes = timesBefore;
   }
 
-  private errorDeg(k: number, t0: number, turnS: number, change: number): number {
-    const x = (this.turnTimes[(this.startPosition + k) % this.positions]! - t0) / turnS;
-    return 360 * (x - (change * x * (1 - x)) / 2 - k / this.positions);
+  /** The turn with its teeth at `times`, from `fromS` to `toS`; the same tooth passed at `beforeS` and `afterS` too. */
+  private learn(times: Float64Array, beforeS: number, fromS: number, toS: number, afterS: number): void {
+    const { positions, startPosition, spacingDeg, step, stepVariance, learnt } = this;
+    const turnS = toS - fromS;
+    const before = (beforeS - fromS) / turnS;
+    const after = (afterS - fromS) / turnS;
+    const slower = -before - 1;
+    const faster = after - 2;
+    if (Math.abs(slower) > mostChange || Math.abs(faster) > mostChange) return;
+    if (Math.abs(slower + faster) > mostFits) return;
+    // Newton's divided differences of -1, 0, 1, 2 turns over before, 0, 1, after.
+    const second = 2 / (1 - before);
+    const third = (second - 1) / before;
+    const fourth = ((3 / (after - before) - second) / (after - 1) - third) / after;
+    let sum = 0;
+    let seen = 0;
+    let last = NaN;
+    for (let k = 0; k <= positions; k++) {
+      const position = (startPosition + k) % positions;
+      const u = k === positions ? 1 : (times[position]! - fromS) / turnS;
+      const turns = u + u * (u - 1) * (third + fourth * (u - before));
+      const off = turns * positions - k;
+      if (!Number.isNaN(off - last)) {
+        const n = learnt[position]! + 1;
+        const gain = n < memoryTurns ? 1 / n : 1 / memoryTurns;
+        learnt[position] = Math.min(n, memoryTurns);
+        const old = n === 1 ? off - last : step[position]!;
+        const change = off - last - old;
+        step[position] = old + gain * change;
+        stepVariance[position] =
+          n === 1 ? 0 : (1 - gain) * (stepVariance[position]! + gain * change * change);
+      }
+      last = off;
+      if (k === positions || Number.isNaN(off)) continue;
+      times[position] = off;
+      sum += off;
+      seen++;
+    }
+    const gain = Math.max(1 / memoryTurns, 1 / (this.learntTurns + 1));
+    const mean = sum / seen;
+    for (let k = 0; k < positions; k++) {
+      const errorDeg = (360 * (times[k]! - mean)) / positions;
+      if (Number.isNaN(errorDeg)) continue;
+      const old = spacingDeg[k]!;
+      spacingDeg[k] = Number.isNaN(old) ? errorDeg : old + gain * (errorDeg - old);
+    }
+    this.learntTurns++;
   }
+}
+
+/** Position 0 is the first tooth in either sense; on a wheel with a gap it follows that. */
+export function mirrored(position: number, positions: number, missing: number): number {
+  return (2 * positions - missing - (missing > 0 ? 1 : 0) - position) % positions;
 }
 
 function known(value: number): number | null {

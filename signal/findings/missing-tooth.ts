@@ -1,11 +1,13 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import type { WheelLane, WheelLanes } from '@/signal/findings/wheel-lanes';
 import { wordsFor } from '@/signal/finding-words';
 
-/** A tooth is accused only after so many turns in a row. */
-const turnsNeeded = 3;
-/** Below this many positions an empty place cannot be told from a change of speed. */
-const fewestPositions = 6;
+/** Points that accuse a tooth, and below which it is let go: three turns in a row, or every other one for long. */
+const opensAt = 3;
+const staysAt = 1.5;
+/** On fewer positions an empty place cannot be told from a change of speed. */
+const fewestPositions = 4;
 /** Where more places than this share seem empty, it is not the teeth: bounce or a wrong count looks like that. */
 const mostEmptyShare = 0.25;
 const mostAtOnce = 4;
@@ -13,59 +15,70 @@ const mostAtOnce = 4;
 /** One and the same tooth does not show, turn after turn. Starts, stops and the wheel's own gap are none of it. */
 export class MissingToothRule implements FindingRule {
   readonly latches: FindingLatch[] = [];
-  private readonly context: RuleContext;
-  private readonly accused = new Map<number, FindingLatch>();
+  private readonly lanes: readonly WheelLane[];
+  private readonly hasGap: boolean;
+  /** By channel and position. */
+  private readonly accused = new Map<string, FindingLatch>();
 
-  constructor(context: RuleContext) {
-    this.context = context;
+  constructor({ rig }: RuleContext, wheels: WheelLanes) {
+    const { pulsesPerTurn, missingPulses } = rig.wheel;
+    this.lanes = pulsesPerTurn < fewestPositions ? [] : wheels.lanes;
+    this.hasGap = missingPulses > 0;
   }
 
   tick(nowS: number): void {
-    const { motion, paths, primary, rig } = this.context;
-    const { face, sync } = motion.train;
-    if (!face || rig.wheel.pulsesPerTurn < fewestPositions) return;
-    let empty = 0;
-    for (let position = 0; position < face.missedInRow.length; position++) {
-      if (face.missedInRow[position]! > 0) empty++;
-    }
-    const credible = empty <= Math.max(1, mostEmptyShare * rig.wheel.pulsesPerTurn);
-    for (let position = 0; credible && position < face.missedInRow.length; position++) {
-      const turns = face.missedInRow[position]!;
-      if (turns < turnsNeeded) continue;
-      const latch = this.latchFor(position);
+    for (const lane of this.lanes) if (lane.absence.suspects > 0) this.look(lane, nowS);
+    for (const [key, latch] of this.accused) if (latch.rest(nowS)) this.accused.delete(key);
+  }
+
+  private look(lane: WheelLane, nowS: number): void {
+    const { absence, path, counts, tracker } = lane;
+    const { name } = path.channel;
+    if (absence.suspects > Math.max(1, mostEmptyShare * counts.length)) return;
+    for (let place = 0; place < counts.length; place++) {
+      const score = absence.score[place]!;
+      if (score < staysAt) continue;
+      const position = lane.numberOf(place);
+      const key = `${name} ${position}`;
+      if (score < opensAt && !this.accused.has(key)) continue;
+      const latch = this.latchFor(key);
       if (!latch) continue;
-      const path = paths[primary]!;
-      const seenS = face.lastSeenS[position]!;
       const evidence = {
         position,
-        numbering: sync.missing > 0 ? 'fixed to the wheel' : 'relative',
-        turnsMissed: turns,
+        numbering: this.numbering(counts[place]!),
+        turnsMissed: absence.inRow[place]!,
+        toothS: tracker.pitchS,
       };
       latch.raise(
         {
           code: 'missing-tooth',
-          channel: path.channel.name,
-          from: seenS,
+          channel: name,
+          from: absence.sinceS[place]!,
           severity: 'fault',
           outcome: 'found',
-          at: seenS,
+          at: absence.missedS[place]!,
           evidence,
-          ...wordsFor('missing-tooth', path.channel.name, evidence),
+          ...wordsFor('missing-tooth', name, evidence),
           causedBy: null,
         },
         nowS,
       );
     }
-    for (const [position, latch] of this.accused) if (latch.rest(nowS)) this.accused.delete(position);
   }
 
-  private latchFor(position: number): FindingLatch | null {
-    const old = this.accused.get(position);
+  /** A tooth beside a gap, or a gap as wide as the wheel's own, that was there from the start: it may be the other one. */
+  private numbering(timesSeen: number): string {
+    if (!this.hasGap) return 'relative';
+    return timesSeen > 0 ? 'fixed to the wheel' : 'never seen since the gap was found';
+  }
+
+  private latchFor(key: string): FindingLatch | null {
+    const old = this.accused.get(key);
     if (old) return old;
     if (this.accused.size >= mostAtOnce) return null;
     const free = this.latches.find((latch) => !latch.open) ?? new FindingLatch(2);
     if (!this.latches.includes(free)) this.latches.push(free);
-    this.accused.set(position, free);
+    this.accused.set(key, free);
     return free;
   }
 }

@@ -6,9 +6,11 @@ import { EdgeBounceRule } from '@/signal/findings/edge-bounce';
 import { LostSamplesRule } from '@/signal/findings/lost-samples';
 import { MissingToothRule } from '@/signal/findings/missing-tooth';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import { WheelLanes } from '@/signal/findings/wheel-lanes';
 
 /** All rules, in the order in which their findings are listed. */
 export function createRules(context: RuleContext): FindingRule[] {
+  const wheels = new WheelLanes(context);
   return [
     // On the way from the board.
     new BoardRestartRule(),
@@ -20,7 +22,8 @@ export function createRules(context: RuleContext): FindingRule[] {
     ...channelRules(context),
     // Edges and teeth.
     new EdgeBounceRule(context),
-    new MissingToothRule(context),
+    wheels,
+    new MissingToothRule(context, wheels),
     // The wheel.
   ];
 }
