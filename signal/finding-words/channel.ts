@@ -1,5 +1,5 @@
 /** What is wrong with the signal of one channel, and what usually mends it. */
-import { short } from '@/signal/finding-words/values';
+import { short, time } from '@/signal/finding-words/values';
 import type { Wording } from '@/signal/finding-words/values';
 
 export const channelWords = {
@@ -24,6 +24,27 @@ export const channelWords = {
           remedy:
             'Look for a gap that has changed, a magnet or iron that came near the sensor, and a threshold that drifts with heat.',
         },
+  'slow-edge': (channel, evidence) => {
+    if (evidence.slow === 'noise') {
+      const filter =
+        evidence.helpingCutoffHz === undefined
+          ? 'Narrow the air gap or take a stronger magnet, so that the flank gets steeper.'
+          : `Set a low pass at about ${short(evidence.helpingCutoffHz)} Hz, which leaves ${time(evidence.scatterThenS)} of it, or narrow the air gap.`;
+      return {
+        message: `Noise of ${short(evidence.noiseV)} V on a flank of ${short(evidence.slopeVPerS)} V/s moves each edge of channel ${channel} by ${time(evidence.scatterS)}, ${short(evidence.scatterPercentOfTooth)} % of a tooth.`,
+        remedy: filter,
+      };
+    }
+    const flank = evidence.slow === 'both' ? 'Both flanks' : `The ${evidence.slow} flank`;
+    const takes = evidence.slow === 'both' ? 'take' : 'takes';
+    return {
+      message: `${flank} of channel ${channel} ${takes} ${short(evidence.periodPercent)} % of a period (up in ${time(evidence.riseS)}, down in ${time(evidence.fallS)}).`,
+      remedy:
+        evidence.slow === 'falling'
+          ? 'Check what pulls the line down, and shorten the cable or its capacitance.'
+          : 'Fit a stronger pull-up (1 to 10 kilohm to the logic supply), and shorten the cable or its capacitance.',
+    };
+  },
 } satisfies Record<string, Wording>;
 
 /** "43.6 %" of a share. */
