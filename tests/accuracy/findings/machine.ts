@@ -73,9 +73,11 @@ const fits: Record<SensorWord, readonly WheelKind[]> = {
 };
 
 export function drawMachine(draw: Draw, wants: Wants): Machine {
-  const sensing = draw.pick(wants.sensing ?? (['single', 'single', 'quadrature', 'three-hall'] as const));
-  const { word, kind } = drawMake(draw, sensing, wants);
   const missing = draw.pick(wants.missing ?? [0]);
+  const asked = draw.pick(wants.sensing ?? (['single', 'single', 'quadrature', 'three-hall'] as const));
+  // A gap in the wheel says where it stands to a single sensor only.
+  const sensing = missing > 0 ? 'single' : asked;
+  const { word, kind } = drawMake(draw, sensing, missing, wants);
   const { positions, toothHz } = drawSpeed(draw, kind, missing, word, wants);
   const wheel = drawWheel(draw, kind, positions, missing, wants.tolerances ?? soundTolerances);
   const rigSeed = draw.seed();
@@ -146,17 +148,21 @@ export function benchOf(
   return { spec, setup, settings: { ...machine.settings, ...more.settings }, rigSeed: machine.rigSeed };
 }
 
-function drawMake(draw: Draw, sensing: Sensing, wants: Wants): { word: SensorWord; kind: WheelKind } {
+function drawMake(
+  draw: Draw,
+  sensing: Sensing,
+  missing: number,
+  wants: Wants,
+): { word: SensorWord; kind: WheelKind } {
   const words = wants.sensors ?? (['linear', 'linear', 'latch', 'switch'] as const);
   const kinds = wants.wheels ?? (['toothed', 'pole-ring', 'magnets'] as const);
-  const hasGap = wants.missing?.some((count) => count > 0) ?? false;
   for (;;) {
     const word = sensing === 'width-coded' ? 'pulse' : draw.pick(words);
     const kind = draw.pick(sensing === 'width-coded' ? (['toothed'] as const) : kinds);
     if (!fits[word].includes(kind)) continue;
     // Narrow pulses do not overlap, so that they make no ring of states.
     if ((sensing === 'quadrature' || sensing === 'three-hall') && kind === 'magnets') continue;
-    if (hasGap && kind !== 'toothed') continue;
+    if (missing > 0 && kind !== 'toothed') continue;
     return { word, kind };
   }
 }

@@ -19,12 +19,12 @@ export const clipping: CaseMaker = (draw) => {
   const factor = draw.uniform(1.2, 1.8) * (1 + room / half);
   const fault = { kind: 'weak-magnet', beginS, endS, easeS: wholeS - beginS, factor } as const;
   const bench = benchOf(machine, runningMotion(draw, machine, timing.seconds), { faults: [fault] });
-  // Rails of the sensor beyond those of the converter, so that it is the converter that cuts.
-  const beyond = { lowRailV: -1, highRailV: machine.sensor.supplyV + 1 };
-  if (variant === 'converter') {
-    bench.spec.channels = bench.spec.channels.map((channel) =>
-      channel.sensor.kind === 'linear' ? { ...channel, sensor: { ...channel.sensor, ...beyond } } : channel,
-    );
-  }
+  // Where it is the converter that cuts, the sensor's own ends are beyond.
+  const ends = variant === 'converter' ? { lowRailV: -1, highRailV: machine.sensor.supplyV + 1 } : {};
+  bench.spec.channels = bench.spec.channels.map((channel) => {
+    const { electronics, sensor } = channel;
+    if (sensor.kind !== 'linear') return channel;
+    return { ...channel, sensor: { ...sensor, ...ends }, electronics: { ...electronics, humV: 0 } };
+  });
   return { ...bench, ...timing, variant, consequences: ['duty-shift', 'offset-drift', 'slow-edge'] };
 };

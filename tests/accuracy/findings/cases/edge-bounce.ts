@@ -18,7 +18,13 @@ export const edgeBounce: CaseMaker = (draw) => {
   const machine = drawMachine(
     draw,
     variant === 'narrow band'
-      ? { ...switching, sensors: ['linear'], wheels: ['toothed', 'pole-ring'], snrDb: [25, 35] }
+      ? {
+          ...switching,
+          sensors: ['linear'],
+          wheels: ['toothed', 'pole-ring'],
+          samplesPerTooth: [100, 200],
+          snrDb: [32, 42],
+        }
       : switching,
   );
   const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3 });
@@ -36,8 +42,9 @@ export const edgeBounce: CaseMaker = (draw) => {
               share: draw.uniform(0.9, 1.2),
             },
           ]
-        : [{ kind: 'noise', ...span, rmsV: machine.noiseV * draw.uniform(2, 3) }];
-  const band: Band = variant === 'narrow band' ? narrowBand(machine) : fitted;
+        : [{ kind: 'noise', ...span, rmsV: machine.noiseV * draw.uniform(5, 7) }];
+  const band: Band =
+    variant === 'narrow band' ? narrowBand(machine) : variant === 'ringing' ? halfwayBand(machine) : fitted;
   return {
     ...benchOf(machine, runningMotion(draw, machine, timing.seconds), {
       faults,
@@ -67,4 +74,10 @@ function ringFor({ toothHz, rateHz }: Machine, share: number): { hz: number; dec
 function narrowBand({ sensor, noiseV }: Machine): Band {
   const middleV = (sensor.lowV + sensor.highV) / 2;
   return { mode: 'fixed', operateV: middleV + 2.8 * noiseV, releaseV: middleV - 2.8 * noiseV };
+}
+
+/** A fitted band would find the ends of the ringing, and stand clear of it. */
+function halfwayBand({ sensor }: Machine): Band {
+  const at = (share: number) => sensor.lowV + share * (sensor.highV - sensor.lowV);
+  return { mode: 'fixed', operateV: at(0.6), releaseV: at(0.4) };
 }
