@@ -27,12 +27,14 @@ export function speedAtMostRpm(motion: Motion, nowS: number, latencyS: number): 
 
 /** Angle of the wheel at `nowS`, degrees; NaN where not known. */
 export function angleDeg({ train, rig, reversed }: Motion, nowS: number): number {
-  if (Number.isNaN(train.lastRiseS) || !train.synced) return NaN;
-  const { pulsesPerTurn, gearRatio } = rig.wheel;
+  if (Number.isNaN(train.lastRiseS) || !train.synced || train.lastPosition < 0) return NaN;
+  const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
   const since = Number.isNaN(train.rpm)
     ? 0
     : (train.rpm / 60) * gearRatio * pulsesPerTurn * (nowS - train.lastRiseS);
-  const angle =
-    ((reversed ? -1 : 1) * (train.lastPosition + Math.min(1, Math.abs(since))) * 360) / pulsesPerTurn;
+  const passed = train.lastPosition + Math.min(1, Math.abs(since));
+  // In reverse the first tooth after the gap is the last one of the wheel.
+  const place = reversed ? (missingPulses > 0 ? pulsesPerTurn - missingPulses - 1 : 0) - passed : passed;
+  const angle = (360 * place) / pulsesPerTurn;
   return ((angle % 360) + 360) % 360;
 }

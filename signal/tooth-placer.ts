@@ -50,10 +50,11 @@ export class ToothPlacer {
     return face !== null && face.absence.inRow[(this.lastPosition() + 1) % sync.positions]! > 0;
   }
 
-  /** Of the last pulse, where the wheel is in sync. */
+  /** Of the last pulse, counted the way in which the wheel turns, where the wheel is in sync; -1: not known. */
   lastPosition(): number {
     const { sync, tracker } = this;
     if (sync.missing > 0) return sync.position;
+    if (tracker.position < 0) return -1;
     const next = tracker.position + tracker.waiting + 1;
     const { positions, missing } = tracker;
     return (next < positions - missing ? next : next + missing) % positions;

@@ -41,6 +41,8 @@ const offPlace = 0.25;
 /** Longer silence is a shaft that paused: more teeth in a row do not go missing. */
 const mostEmpty = 3;
 const mostWaiting = 12;
+/** Pulses too many and empty places in one stretch are believed only after so many teeth: the pitch is well known then. */
+const teethForBoth = 12;
 
 export class WheelTracker {
   /** The pulse that `take` is to take, s, and its peak to peak, V. */
@@ -67,7 +69,10 @@ export class WheelTracker {
   private readonly extras: ExtraPulses;
   private readonly waitT = new Float64Array(mostWaiting);
   private readonly waitSwingV = new Float64Array(mostWaiting);
+  private readonly waitPlace = new Int32Array(mostWaiting);
   private lastT = NaN;
+  /** Of the last eight teeth or so, s. */
+  private meanPitchS = NaN;
   /** Count modulo the positions, and where position 0 is in it; -1: not known. */
   private relative = 0;
   private zero = -1;
@@ -120,7 +125,9 @@ export class WheelTracker {
 
   private seat(spans: number): void {
     const { t, positions, missing, seatOf } = this;
-    this.pitchS += ((t - this.lastT) / spans - this.pitchS) / 2;
+    const each = (t - this.lastT) / spans;
+    this.pitchS += (each - this.pitchS) / 2;
+    this.meanPitchS += (each - this.meanPitchS) / 8;
     this.lastT = t;
     this.count += spans;
     const relative = this.relative + spans;
@@ -147,47 +154,49 @@ export class WheelTracker {
     if (waiting < 2) return;
     const end = waiting - 2;
     const nextS = waitT[end + 1]! - waitT[end]!;
-    if (nextS > regularFrom * pitchS && nextS < regularTo * pitchS) {
-      // The mean of both sides follows a shaft that speeds up or slows down meanwhile.
-      const each = (pitchS + nextS) / 2;
-      const spans = this.wholeSpans((waitT[end]! - this.lastT) / each);
-      if (spans > 0) {
-        this.settle(end, spans, each);
-        return;
-      }
+    const stretchS = waitT[end]! - this.lastT;
+    // The mean of both sides follows a shaft that speeds up or slows down meanwhile; that of the last teeth is better on a
+    // wheel that is uneven all round.
+    for (let attempt = 0; attempt < 2; attempt++) {
+      const beforeS = attempt === 0 ? pitchS : this.meanPitchS;
+      if (nextS < regularFrom * beforeS || nextS > regularTo * beforeS) continue;
+      const each = attempt === 0 ? (beforeS + nextS) / 2 : beforeS;
+      const spans = this.wholeSpans(stretchS / each, end);
+      if (spans > 0 && this.settle(end, spans, each)) return;
     }
-    if (waiting === mostWaiting || (waiting >= 4 && this.isSteady())) this.loseCount();
+    if (waiting === mostWaiting || (waiting >= 4 && this.isAnotherSpeed())) this.loseCount();
   }
 
-  /** @returns 0 where that is no whole number of pitches. */
-  private wholeSpans(pitches: number): number {
+  /** @param between pulses in it. @returns 0 where that is no whole number of pitches, or too many empty ones. */
+  private wholeSpans(pitches: number, between: number): number {
     const whole = Math.round(pitches);
-    if (whole < 1 || whole > this.missing + 1 + mostEmpty) return 0;
+    if (whole < 1 || whole > this.missing + 1 + mostEmpty + 2 * between) return 0;
     const off = whole === 1 ? offSingle : Math.min(offAtMost, Math.max(offStretch, offPerPitch * whole));
     return Math.abs(pitches - whole) <= off ? whole : 0;
   }
 
-  /** The last three intervals are alike: the shaft turns steadily, at another speed than before. */
-  private isSteady(): boolean {
+  /** The last three intervals are alike, and not as long as two or three pitches, which every second tooth would be. */
+  private isAnotherSpeed(): boolean {
     const { waitT, waiting: n } = this;
     const a = waitT[n - 1]! - waitT[n - 2]!;
     const b = waitT[n - 2]! - waitT[n - 3]!;
     const c = waitT[n - 3]! - waitT[n - 4]!;
-    return Math.max(a, b, c) < steadyWithin * Math.min(a, b, c);
+    if (Math.max(a, b, c) > steadyWithin * Math.min(a, b, c)) return false;
+    return this.wholeSpans((a + b + c) / (3 * this.pitchS), 0) < 2;
   }
 
-  /** `end` pulses and then a tooth wait, `spans` pitches after the last tooth; after it comes one more pulse. */
-  private settle(end: number, spans: number, each: number): void {
+  /**
+   * `end` pulses and then a tooth wait, `spans` pitches after the last tooth; after it comes one more pulse.
+   * @returns false where that reading is too odd to be believed.
+   */
+  private settle(end: number, spans: number, each: number): boolean {
     const { waitT, waitSwingV, lastT: fromT, count: fromCount } = this;
-    let inOrder = end === spans - 1;
-    for (let i = 0; i < end && inOrder; i++)
-      inOrder = Math.abs((waitT[i]! - fromT) / each - (i + 1)) < offAtMost;
+    if (!this.readPlaces(end, spans, each)) return false;
     let done = 0;
     for (let i = 0; i <= end; i++) {
-      const pitches = (waitT[i]! - fromT) / each;
-      const place = i === end ? spans : inOrder ? i + 1 : Math.round(pitches);
-      if (i < end && !inOrder && !(place > done && place < spans && Math.abs(pitches - place) <= offPlace)) {
-        this.extras.note(fromCount + pitches, waitT[i]!);
+      const place = i === end ? spans : this.waitPlace[i]!;
+      if (place === 0) {
+        this.extras.note(fromCount + (waitT[i]! - fromT) / each, waitT[i]!);
         continue;
       }
       this.t = waitT[i]!;
@@ -201,6 +210,27 @@ export class WheelTracker {
     this.swingV = waitSwingV[end + 1]!;
     this.waiting = 0;
     this.take();
+    return true;
+  }
+
+  /** Writes the place of each of the `end` pulses that wait, 0 for one that is no tooth. */
+  private readPlaces(end: number, spans: number, each: number): boolean {
+    const { waitT, waitPlace, lastT } = this;
+    let inOrder = end === spans - 1;
+    for (let i = 0; i < end && inOrder; i++)
+      inOrder = Math.abs((waitT[i]! - lastT) / each - (i + 1)) < offAtMost;
+    let done = 0;
+    let extra = 0;
+    for (let i = 0; i < end; i++) {
+      const pitches = (waitT[i]! - lastT) / each;
+      const place = inOrder ? i + 1 : Math.round(pitches);
+      const fits = inOrder || (place > done && place < spans && Math.abs(pitches - place) <= offPlace);
+      waitPlace[i] = fits ? place : 0;
+      if (fits) done = place;
+      else extra++;
+    }
+    const empty = spans - 1 - (end - extra);
+    return extra === 0 || empty === 0 || this.count >= teethForBoth;
   }
 
   private noteLong(spans: number): void {
@@ -284,7 +314,7 @@ export class WheelTracker {
       const before = waitT[n - 3]! - waitT[n - 4]!;
       const each = (before + b) / 2;
       const regular = b > regularFrom * before && b < regularTo * before;
-      if (regular && this.wholeSpans(a / each) === missing + 1) {
+      if (regular && this.wholeSpans(a / each, 0) === missing + 1) {
         this.begin(4, missing + 1, each);
         return;
       }
@@ -302,7 +332,7 @@ export class WheelTracker {
     this.count = this.relative = this.owed = 0;
     this.t = this.lastT = waitT[0]!;
     this.swingV = waitSwingV[0]!;
-    this.pitchS = pitchS;
+    this.pitchS = this.meanPitchS = pitchS;
     if (this.missing === 0) {
       this.zero = 0;
       if (seatOf) {
