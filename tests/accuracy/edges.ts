@@ -1,8 +1,8 @@
 /** Goals a and b: every flank found once, at its instant. */
 import type { Filter } from '@/signal/model';
-import type { MotionSpec } from '@/simulator/motion';
 import { matchEdges, passesOf, positionsAt } from '@/tests/accuracy/match';
-import { createBench, rpmFor, steady, type Arrangement, type Bench } from '@/tests/accuracy/rigs';
+import { fromRest, steady } from '@/tests/accuracy/motions';
+import { createBench, rpmFor, type Arrangement, type Bench } from '@/tests/accuracy/rigs';
 import { runBench } from '@/tests/accuracy/run';
 import { drawsOf } from '@/tests/accuracy/seeds';
 import { centred } from '@/tests/accuracy/statistics';
@@ -55,18 +55,6 @@ export function runFromRest(
     turnedDeg: draw(0, 360),
   });
   return judgeEdges(bench, 1, NaN);
-}
-
-function fromRest(rpm: number, standS: number, rampS: number): MotionSpec {
-  return {
-    startRpm: 0,
-    segments: [
-      { durationS: standS, toRpm: 0 },
-      { durationS: rampS, toRpm: rpm },
-      { durationS: 10, toRpm: rpm },
-      { durationS: 1, toRpm: 0 },
-    ],
-  };
 }
 
 /** @param unitS noise over slope, s; NaN: timing is not judged. */

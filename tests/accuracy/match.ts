@@ -38,22 +38,23 @@ export function positionsAt({ rig }: Bench, tS: number): number {
  */
 export function matchEdges(bench: Bench, channel: number, flanks: readonly Flank[], endS: number): Match {
   const match: Match = { due: 0, found: 0, extra: 0, pairs: [] };
-  const passes = passesOf(bench, channel, 0, endS);
+  // An edge just before the end may belong to a flank just after it.
+  const passes = passesOf(bench, channel, 0, 1.05 * endS);
   const last = Math.abs(positionsAt(bench, endS)) - 1;
-  // A switching sensor wakes open and settles within two samples; that is an edge, but no flank of the wheel.
-  const wakingS = bench.arrangement.sensor.kind === 'linear' ? 0 : 2 / bench.rig.spec.rateHz;
+  // A switching sensor wakes open: its first edge may be where it finds its state, and no flank of the wheel.
+  const waking = bench.arrangement.sensor.kind === 'linear' ? 0 : 1;
   for (const rising of [true, false]) {
     const wanted = passes.filter((pass) => pass.rising === rising);
     const places = wanted.map((pass) => Math.abs(positionsAt(bench, pass.tS)));
     const owner = new Array<number>(wanted.length).fill(NaN);
     let i = 0;
     for (const flank of flanks) {
-      if (flank.rising !== rising || flank.midT < wakingS) continue;
+      if (flank.rising !== rising) continue;
       const at = Math.abs(positionsAt(bench, flank.midT));
       while (i + 1 < places.length && Math.abs(places[i + 1]! - at) <= Math.abs(places[i]! - at)) i += 1;
       const isOwn = i < places.length && Math.abs(places[i]! - at) <= reach && Number.isNaN(owner[i]!);
       if (isOwn) owner[i] = flank.midT;
-      else match.extra += 1;
+      else if (at >= waking) match.extra += 1;
     }
     wanted.forEach((pass, k) => {
       if (pass === passes[0] || places[k]! > last) return;

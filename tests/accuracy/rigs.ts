@@ -12,7 +12,7 @@ import {
 import { codeRange, type AdcSpec } from '@/simulator/adc';
 import type { MotionSpec } from '@/simulator/motion';
 import { createRig, type ChannelSpec, type Rig, type RigSpec } from '@/simulator/rig-model';
-import type { SensorSpec } from '@/simulator/sensor';
+import type { LinearSensor, SwitchingSensor } from '@/simulator/sensor';
 import type { WheelSpec } from '@/simulator/wheel';
 import { idealOf, type Ideal } from '@/tests/accuracy/ideal';
 
@@ -21,7 +21,7 @@ export type Arrangement = {
   sensing: Sensing;
   wheel: WheelSpec;
   gapMm: number;
-  sensor: SensorSpec;
+  sensor: LinearSensor | SwitchingSensor;
   /** Role and place in degrees of a position, in the order of the channels. */
   channels: { role: ChannelRole; placeDeg: number }[];
 };
@@ -43,7 +43,7 @@ const adc: Extract<AdcSpec, { kind: 'codes' }> = {
   codeOffset: 0,
 };
 
-function linear(quiescentV: number, sensitivityMvPerMt: number): SensorSpec {
+function linear(quiescentV: number, sensitivityMvPerMt: number): LinearSensor {
   return { kind: 'linear', quiescentV, sensitivityMvPerMt, lowRailV: 0, highRailV: 5 };
 }
 
@@ -175,7 +175,7 @@ export function createBench(arrangement: Arrangement, options: BenchOptions): Be
     electronics: { noiseRmsV: 0 },
   }));
   const bare: RigSpec = { rateHz, motion, wheel, gapMm: arrangement.gapMm, channels, adc, faults: [] };
-  const ideal = idealOf(bare);
+  const ideal = idealFor(arrangement, bare);
   const noiseV = ideal.rmsV / 10 ** (snrDb / 20);
   const spec: RigSpec = {
     ...bare,
@@ -189,6 +189,14 @@ export function createBench(arrangement: Arrangement, options: BenchOptions): Be
     ideal,
     noiseV,
   };
+}
+
+const ideals = new Map<Arrangement, Ideal>();
+
+function idealFor(arrangement: Arrangement, spec: RigSpec): Ideal {
+  const known = ideals.get(arrangement) ?? idealOf(spec);
+  ideals.set(arrangement, known);
+  return known;
 }
 
 function setupOf({ sensing, wheel, channels, sensor }: Arrangement, spec: RigSpec): RigSetup {
@@ -225,9 +233,4 @@ function setupOf({ sensing, wheel, channels, sensor }: Arrangement, spec: RigSpe
 /** Speed at which a position takes so many samples. */
 export function rpmFor(arrangement: Arrangement, samplesPerPosition: number): number {
   return (60 * rateHz) / (samplesPerPosition * arrangement.wheel.positions);
-}
-
-/** One speed for ever. */
-export function steady(rpm: number): MotionSpec {
-  return { startRpm: rpm, segments: [{ durationS: 1000, toRpm: rpm }] };
 }

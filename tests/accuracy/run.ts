@@ -15,11 +15,15 @@ export type RunResult = {
   status: PipelineStatus;
 };
 
-export type Watcher = (status: () => PipelineStatus, nowS: number) => void;
+export type Watcher = (
+  directions: readonly DirectionChange[],
+  nowS: number,
+  status: () => PipelineStatus,
+) => void;
 
 /**
  * @param seconds from the beginning of the rig's time.
- * @param watch asked after each block, with the direction changes and speeds so far taken over.
+ * @param watch called after each block, with all changes of direction so far.
  */
 export function runBench(bench: Bench, seconds: number, blockSamples = 1000, watch?: Watcher): RunResult {
   const { rig, setup, settings } = bench;
@@ -48,7 +52,7 @@ export function runBench(bench: Bench, seconds: number, blockSamples = 1000, wat
       });
     directions.push(...output.directions);
     pipeline.drain();
-    watch?.(() => pipeline.status(), (at + length) / rateHz);
+    watch?.(directions, (at + length) / rateHz, () => pipeline.status());
   }
   return { endS: count / rateHz, flanks, speed, directions, status: pipeline.status() };
 }

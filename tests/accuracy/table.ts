@@ -1,7 +1,7 @@
 /** The table as text. */
 import type { Row } from '@/tests/accuracy/section';
 
-const widths = { what: 24, conditions: 84, goal: 38 };
+const widths = { what: 28, conditions: 106, goal: 36 };
 
 export function heading(section: string): string {
   const { what, conditions, goal } = widths;
