@@ -32,6 +32,8 @@ export const directionFlip: CaseMaker = (draw) => {
   const wholeS = beginS + rampS;
   const endS = wholeS + timing.appearS + 3 + rampS + standS;
   const rpm = machine.rpm;
+  // The shaft has to be at speed again before the direction can be told.
+  const goneS = timing.goneS + rampS + 2 / machine.turnsPerS;
   const motion = {
     startRpm: rpm,
     segments: [
@@ -43,7 +45,7 @@ export const directionFlip: CaseMaker = (draw) => {
       { durationS: rampS, toRpm: 0 },
       { durationS: standS, toRpm: 0 },
       { durationS: rampS, toRpm: rpm },
-      { durationS: timing.goneS + 3, toRpm: rpm },
+      { durationS: goneS + 3, toRpm: rpm },
     ],
   };
   const swap = { ...swapped, beginS: beginS - standS / 2, endS: endS - standS / 2 };
@@ -53,9 +55,8 @@ export const directionFlip: CaseMaker = (draw) => {
     beginS: swap.beginS,
     wholeS,
     endS,
-    // The shaft has to be at speed again before the direction can be told.
-    goneS: timing.goneS + rampS + 2 / machine.turnsPerS,
-    seconds: endS + timing.goneS + 3,
+    goneS,
+    seconds: endS + goneS + 0.5,
     variant,
     consequences: [],
   };

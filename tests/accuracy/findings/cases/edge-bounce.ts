@@ -53,6 +53,7 @@ export const edgeBounce: CaseMaker = (draw) => {
     ...timing,
     variant,
     consequences: [
+      'slow-edge',
       'extra-pulse',
       'uneven-teeth',
       'wrong-count',

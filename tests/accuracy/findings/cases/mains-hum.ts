@@ -28,7 +28,7 @@ export const mainsHum: CaseMaker = (draw) => {
     ...benchOf(machine, motion, { faults: [fault], settings: { filter: { kind: 'none' } } }),
     ...timing,
     variant,
-    consequences: ['edge-bounce', 'extra-pulse', 'offset-drift', 'duty-shift'],
+    consequences: ['slow-edge', 'edge-bounce', 'extra-pulse', 'offset-drift', 'duty-shift'],
   };
 };
 

@@ -1,10 +1,9 @@
-/** The pull-up is far too weak for its cable, or something loads the line. */
+/** The pull-up is far too weak for its cable. */
 import { runningMotion, timingFor, type CaseMaker } from '@/tests/accuracy/findings/case';
 import { benchOf, drawMachine } from '@/tests/accuracy/findings/machine';
 import { fitted } from '@/tests/accuracy/findings/settings';
 
 export const slowEdge: CaseMaker = (draw) => {
-  const variant = draw.pick(['slow rise', 'slow rise', 'low high level'] as const);
   const machine = drawMachine(draw, {
     sensing: ['single', 'quadrature'],
     sensors: ['latch', 'switch'],
@@ -20,18 +19,14 @@ export const slowEdge: CaseMaker = (draw) => {
   const { beginS, endS } = timing;
   // 10 to 90 % takes 2.2 R C.
   const riseS = draw.uniform(0.16, 0.28) / machine.toothHz;
-  const slow = { kind: 'weak-pull-up', beginS, endS } as const;
-  const fault =
-    variant === 'slow rise'
-      ? { ...slow, ohm: riseS / (Math.log(9) * sensor.lineFarad) }
-      : { ...slow, ohm: sensor.pullUpOhm, highV: draw.uniform(0.3, 0.43) * sensor.pullUpV };
+  const ohm = riseS / (Math.log(9) * sensor.lineFarad);
   return {
     ...benchOf(machine, runningMotion(draw, machine, timing.seconds), {
-      faults: [fault],
+      faults: [{ kind: 'weak-pull-up', beginS, endS, ohm }],
       settings: { band: fitted, filter: { kind: 'none' } },
     }),
     ...timing,
-    variant,
+    variant: machine.sensing,
     consequences: ['duty-shift', 'phase-error', 'weak-swing', 'offset-drift'],
   };
 };

@@ -50,6 +50,7 @@ export const standstillChatter: CaseMaker = (draw) => {
     seconds: endS + timing.goneS + 0.5,
     variant,
     consequences: [
+      'slow-edge',
       'edge-bounce',
       'direction-flip',
       'extra-pulse',
