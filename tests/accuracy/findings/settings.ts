@@ -9,10 +9,12 @@ export function drawSettings(
   draw: Draw,
   rig: { toothHz: number; rateHz: number; sensor: DrawnSensor; isPlain: boolean; mayBeFixed: boolean },
 ): Settings {
+  // A coded pulse is shorter than any hold-off worth having.
+  const holdsOff = draw.chance(0.2) && rig.sensor.sensor.kind !== 'pulse';
   return {
     filter: drawFilter(draw, rig),
     band: rig.mayBeFixed ? drawBand(draw, rig.sensor) : fitted,
-    holdoffS: draw.chance(0.8) ? 0 : draw.uniform(0.02, 0.12) / rig.toothHz,
+    holdoffS: holdsOff ? draw.uniform(0.02, 0.12) / rig.toothHz : 0,
     speed: {
       method: draw.pick(['tooth', 'turn', 'window'] as const),
       windowS: draw.uniform(0.05, 0.3),
