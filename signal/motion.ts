@@ -2,43 +2,39 @@
  * From the edges of all channels, in order of time, to count, direction and speed.
  *
  * Speed comes from whole cycles: mid crossings on rising edges of the first channel (A or U). Where a ring of states is
- * known, an interval counts only if exactly one cycle was passed in it, so that dither at one edge makes no speed.
+ * known, an interval counts only if exactly one cycle was passed in it, so that dither at one edge makes no speed. Where
+ * the width of a pulse tells the direction, its leading edge is the tooth, taken once that width is known.
  */
-import { Calm } from '@/signal/calm';
-import { pushSpeed } from '@/signal/columns';
 import type { EdgeQueue } from '@/signal/columns';
-import { createDirectionTracker, forgetLevels, forgetSense, stepTo } from '@/signal/direction-tracker';
 import type { DirectionTracker } from '@/signal/direction-tracker';
-import type { Direction, RigSetup, Settings } from '@/signal/model';
+import { createIndexCounts } from '@/signal/index-counts';
+import type { IndexCounts } from '@/signal/index-counts';
+import type { RigSetup, Settings } from '@/signal/model';
+import { PhaseLead } from '@/signal/phase-lead';
 import { edgeRising } from '@/signal/pipeline-types';
 import type { DirectionChange, SpeedColumns } from '@/signal/pipeline-types';
-import { PhaseLead } from '@/signal/phase-lead';
-import { illegalStep, stepTable } from '@/signal/step-table';
-import { ToothTrain } from '@/signal/tooth-train';
+import type { RingMotion } from '@/signal/ring-motion';
+import { ShaftState } from '@/signal/shaft-state';
+import type { StateDwell } from '@/signal/state-dwell';
+import { illegalStep } from '@/signal/step-table';
+import { standStill, widthReader } from '@/signal/width-reader';
+import type { WidthReader } from '@/signal/width-reader';
 
-export class Motion {
-  readonly rig: RigSetup;
-  readonly train: ToothTrain;
-  readonly tracker: DirectionTracker | null;
-  readonly phase = new PhaseLead();
-  readonly calm = new Calm();
+const noPhase = new PhaseLead();
+
+export class Motion extends ShaftState {
+  /** Where the width of a pulse tells the direction. */
+  readonly widths: WidthReader | null;
+  /** Where an index is there to hold the count against. */
+  readonly indexCounts: IndexCounts | null;
   readonly stoppedAfterS: number;
-  direction: Direction = 'unknown';
-  state: 'running' | 'stopped' | 'unknown' = 'unknown';
   pulses = 0;
   // Numbers begin as numbers: a field that was ever undefined holds boxed ones for good.
   countsSinceS = NaN;
-  /** Raw axis, s, delay taken off; NaN before any edge. */
-  lastEdgeS = NaN;
   quietSinceS = NaN;
   private readonly stoppedAfterSamples: number;
-  private readonly speed: SpeedColumns;
-  private readonly directions: DirectionChange[];
   private stopAt = NaN;
   private countsReset = false;
-  private speedUnknown = false;
-  private netAtRise = NaN;
-  private lastStepS = NaN;
 
   constructor(
     rig: RigSetup,
@@ -48,47 +44,49 @@ export class Motion {
     speed: SpeedColumns,
     directions: DirectionChange[],
   ) {
-    const table = stepTable(rig.sensing);
-    this.rig = rig;
-    this.stoppedAfterS = settings.speed.stoppedAfterS;
-    this.stoppedAfterSamples = settings.speed.stoppedAfterS * rateHz;
-    this.tracker = table ? createDirectionTracker(table) : null;
-    this.train = new ToothTrain(rig, table ? 0 : rig.wheel.missingPulses, settings, speed);
-    this.speed = speed;
-    this.directions = directions;
+    super(rig, settings, rateHz, startIndex / rateHz, speed, directions);
+    const { stoppedAfterS } = settings.speed;
+    this.stoppedAfterS = stoppedAfterS;
+    this.stoppedAfterSamples = stoppedAfterS * rateHz;
+    this.widths = widthReader(rig, rateHz);
+    const hasIndex = rig.channels.some(({ role }) => role === 'Z');
+    this.indexCounts = hasIndex ? createIndexCounts(rig.wheel.pulsesPerTurn) : null;
     this.countsSinceS = startIndex / rateHz;
     this.stopAt = startIndex + this.stoppedAfterSamples;
     this.quietSinceS = startIndex / rateHz;
-    directions.push({ t: this.countsSinceS, value: 'unknown' });
-    this.openUnknown(this.countsSinceS);
   }
 
   get positions(): number {
     return this.pulses + this.train.extraPositions;
   }
 
-  /** Positions are counted in the direction of travel; on the wheel itself they then run backwards. */
-  get reversed(): boolean {
-    return this.direction === 'reverse';
+  get tracker(): DirectionTracker | null {
+    return this.ring && this.ring.tracker;
+  }
+
+  /** Widths of the states of the ring, by direction. */
+  get stateDwell(): StateDwell | null {
+    return this.ring && this.ring.dwell;
+  }
+
+  /** How far A leads B in the direction at hand. */
+  get phase(): PhaseLead {
+    const { ring, sense } = this;
+    return ring === null || sense === 0 ? noPhase : ring.phase(sense < 0);
   }
 
   /** Nothing came up to sample `at`: the shaft may have been found stopped on the way. */
   quietUpTo(at: number): void {
     if (this.state === 'stopped' || at <= this.stopAt) return;
-    const t = this.quietSinceS + this.stoppedAfterS;
-    this.state = 'stopped';
-    this.forgetTeeth();
-    this.train.rpm = 0;
-    this.train.errorRpm = NaN;
-    this.speedUnknown = false;
-    pushSpeed(this.speed, t, 0, NaN);
-    this.turnTo('stopped', t);
+    if (this.widths !== null && this.widths.mayHoldTooth(at, this.stopAt)) return;
+    this.stop(this.quietSinceS + this.stoppedAfterS);
   }
 
   /** Samples were lost from `fromS` to `toS`; the next sample is `at`. */
   gap(fromS: number, toS: number, at: number): void {
-    this.forgetTeeth();
-    if (this.tracker) forgetLevels(this.tracker);
+    this.forgetTeeth('lost-samples', toS);
+    this.ring?.forgetLevels();
+    this.widths?.forget();
     this.state = 'unknown';
     this.turnTo('unknown', fromS);
     this.openUnknown(fromS);
@@ -100,10 +98,36 @@ export class Motion {
 
   /** Entry `i` of the queue of the channel with the place `role` in the arrangement (0 for A or U), in order of time. */
   take(queue: EdgeQueue, i: number, role: number): void {
+    if (this.widths !== null) {
+      this.takePulse(this.widths, queue, i);
+      return;
+    }
+    this.note(queue, i);
+    if (this.ring !== null) this.step(this.ring, queue, i, role);
+    if (role !== 0) return;
+    if ((queue.flags[i]! & edgeRising) !== 0) this.rise(queue, i);
+    else this.train.fall(queue, i);
+  }
+
+  private takePulse(widths: WidthReader, queue: EdgeQueue, i: number): void {
+    if (widths.isLead(queue, i)) {
+      widths.hold(queue, i);
+      return;
+    }
+    const way = widths.isHolding ? widths.read(queue, i) : standStill;
+    if (way === standStill) return;
+    this.note(widths.lead, 0);
+    if (way === 0) this.turnTo('unknown', this.lastEdgeS);
+    else this.face(way > 0 ? 1 : -1);
+    this.rise(widths.lead, 0);
+    this.train.fall(queue, i);
+  }
+
+  /** An edge proves that the shaft turns. */
+  private note(queue: EdgeQueue, i: number): void {
     const at = queue.at[i]!;
     if (at > this.stopAt) this.quietUpTo(at);
     const t = queue.midS[i]! - queue.delayS[i]!;
-    const rising = (queue.flags[i]! & edgeRising) !== 0;
     this.stopAt = at + this.stoppedAfterSamples;
     this.quietSinceS = t;
     this.lastEdgeS = t;
@@ -111,83 +135,40 @@ export class Motion {
       this.countsReset = false;
       this.countsSinceS = t;
     }
-    if (this.state === 'stopped') {
-      this.state = 'unknown';
-      if (this.tracker) forgetSense(this.tracker);
-      this.turnTo('unknown', t);
-      this.openUnknown(t);
+    if (this.state === 'stopped') this.wake(t);
+  }
+
+  private step(ring: RingMotion, queue: EdgeQueue, i: number, role: number): void {
+    const { tracker } = ring;
+    tracker.t = this.lastEdgeS;
+    const step = ring.take(queue, i, role);
+    if (step !== 0 && step !== illegalStep) {
+      this.pulses = tracker.netSteps / tracker.table.stepsPerCycle;
+      if (this.state === 'running') this.train.uneven.noteState(ring.stateS / this.train.periodS);
+      if (tracker.sense !== this.sense && tracker.sense !== 0) this.face(tracker.sense);
     }
-    if (this.tracker) this.step(this.tracker, role, rising, t);
-    if (role === 0) {
-      if (rising) this.rise(queue, i, t);
-      else this.train.fall(queue, i);
-    } else if (role === 1 && rising && this.state === 'running') {
-      this.phase.learn((t - this.train.rowS) / this.train.periodS);
+    // Right after turning back it would be the other direction's.
+    if (role === 1 && step === this.sense && tracker.levels[1] === 1 && this.state === 'running') {
+      ring.phase(this.sense < 0).learn((tracker.t - this.train.rowS) / this.train.periodS);
     }
   }
 
-  private step(tracker: DirectionTracker, role: number, rising: boolean, t: number): void {
-    const step = stepTo(tracker, role, rising);
-    if (step === illegalStep) {
-      this.netAtRise = NaN;
-      return;
-    }
-    this.pulses = tracker.netSteps / tracker.table.stepsPerCycle;
-    const { train } = this;
-    if (step !== 0 && this.state === 'running') train.uneven.noteState((t - this.lastStepS) / train.periodS);
-    this.lastStepS = t;
-    if (tracker.sense === 0) return;
-    const value: Direction = tracker.sense > 0 ? 'forward' : 'reverse';
-    if (value === this.direction) return;
-    if (this.direction === 'forward' || this.direction === 'reverse') {
-      this.forgetTeeth();
-      this.openUnknown(t);
-    } else if (!Number.isNaN(train.rpm)) {
-      train.rpm = Math.abs(train.rpm) * tracker.sense;
-    }
-    this.turnTo(value, t);
-  }
-
-  private rise(queue: EdgeQueue, i: number, t: number): void {
-    const { train, tracker } = this;
-    if (tracker && !this.wholeCycle(tracker)) {
+  /** A tooth of the first channel. */
+  private rise(queue: EdgeQueue, i: number): void {
+    const { train, ring, indexCounts } = this;
+    if (ring === null) {
+      this.pulses += this.sense < 0 ? -1 : 1;
+    } else if (!ring.closeCycle() && train.isCounting) {
       train.breakSpeed();
-      this.openUnknown(t);
+      this.openUnknown(this.lastEdgeS);
     }
-    if (!tracker) this.pulses++;
     this.calm.teeth++;
-    if (!train.rise(queue, i)) return;
-    this.state = 'running';
-    this.speedUnknown = false;
-  }
-
-  private wholeCycle(tracker: DirectionTracker): boolean {
-    const before = this.netAtRise;
-    this.netAtRise = tracker.netSteps;
-    return !this.train.isCounting || Math.abs(tracker.netSteps - before) === tracker.table.stepsPerCycle;
-  }
-
-  private forgetTeeth(): void {
-    this.train.forget();
-    this.netAtRise = NaN;
-    this.lastStepS = NaN;
-    this.phase.reset();
-  }
-
-  private turnTo(value: Direction, t: number): void {
-    if (value === this.direction) return;
-    this.direction = value;
-    this.train.sign = value === 'reverse' ? -1 : 1;
-    this.directions.push({ t, value });
-  }
-
-  private openUnknown(t: number): void {
-    this.calm.disturb(t);
-    this.train.rpm = NaN;
-    this.train.errorRpm = NaN;
-    if (this.state === 'running') this.state = 'unknown';
-    if (this.speedUnknown) return;
-    this.speedUnknown = true;
-    pushSpeed(this.speed, t, NaN, NaN);
+    if (indexCounts !== null) {
+      const n = indexCounts.teeth++ & indexCounts.mask;
+      indexCounts.t[n] = this.lastEdgeS;
+      indexCounts.counts[n] = ring === null ? this.pulses : ring.tracker.netSteps;
+    }
+    if (this.widths !== null && this.widths.isBlind) return;
+    if (train.rise(queue, i)) this.run();
   }
 }

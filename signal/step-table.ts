@@ -8,7 +8,7 @@
 import type { Sensing } from '@/signal/model';
 
 /** A jump that leaves the count unknown. */
-export const illegalStep = 2;
+export const illegalStep = 9;
 
 export type StepTable = {
   /** Weight of each channel in the state, in the order of `neededRoles`. */
@@ -17,6 +17,10 @@ export type StepTable = {
   /** Step from state `from` to `to` at `from * states + to`: +1, -1, 0 or `illegalStep`. */
   steps: Int8Array;
   states: number;
+  /** The states in the order of turning forward. */
+  order: readonly number[];
+  /** Place of each state in that order; -1 where it is none of the ring's. */
+  places: Int8Array;
 };
 
 export function stepTable(sensing: Sensing): StepTable | null {
@@ -27,11 +31,13 @@ export function stepTable(sensing: Sensing): StepTable | null {
 
 function ring(order: readonly number[], weights: readonly number[], states: number): StepTable {
   const steps = new Int8Array(states * states).fill(illegalStep);
+  const places = new Int8Array(states).fill(-1);
   for (let state = 0; state < states; state++) steps[state * states + state] = 0;
   order.forEach((from, index) => {
     const next = order[(index + 1) % order.length]!;
+    places[from] = index;
     steps[from * states + next] = 1;
     steps[next * states + from] = -1;
   });
-  return { weights, stepsPerCycle: order.length, steps, states };
+  return { weights, stepsPerCycle: order.length, steps, states, order, places };
 }
