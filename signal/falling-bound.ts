@@ -1,9 +1,15 @@
 /** What silence since the last edge proves: the most that the shaft can turn at, and where the wheel can stand by now. */
+import { noGapAhead } from '@/signal/gap-sync';
 import type { Motion } from '@/signal/motion';
 
 /** Largest number of positions that can still be silent after the last edge. */
 function silentPositions({ tracker, train }: Motion): number {
-  if (!tracker) return train.silentPositions();
+  if (!tracker) {
+    const { sync, placer, uneven } = train;
+    const places = noGapAhead(sync) ? 1 : sync.missing + 1;
+    const nextIsWeak = train.synced && placer.nextIsOftenMissed();
+    return (places + (nextIsWeak ? 1 : 0)) * Math.max(1, uneven.widestPitch);
+  }
   const even = 1 / tracker.table.stepsPerCycle;
   const { widestState } = train.uneven;
   return Number.isNaN(widestState) ? 2 * even : Math.min(1, Math.max(even, 1.1 * widestState));

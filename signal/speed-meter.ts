@@ -2,67 +2,89 @@
  * Speed from the instants of teeth: per tooth, per turn (the last whole turn, slid on by each tooth) or over a window
  * (least squares of instant over position).
  *
- * With k positions passed in T seconds the shaft turns at 60 k / (N gear T) rpm. Standard error of a period from two
- * instants, each with the error s: sqrt(2) s / k; from the line through K + 1 of them: s sqrt(12 / (K (K + 1) (K + 2))).
- * Unevenness of the teeth themselves is not in it.
+ * With k positions passed in T seconds the shaft turns at 60 k / (N gear T) rpm. Before the first whole turn `turn` takes
+ * what there is, `window` takes two teeth at least. What it says of its error is in `speed-error.ts`.
  */
 import type { SpeedMethod } from '@/signal/model';
+import { SpeedError } from '@/signal/speed-error';
+import { SpeedRing } from '@/signal/speed-ring';
+import { WholeTurn } from '@/signal/whole-turn';
+import { WindowLine } from '@/signal/window-line';
+
+/** Two turns are kept of wheels up to this size, one of larger ones. */
+const mostKeptTwice = 4096;
 
 export type Speed = { rpm: number; errorRpm: number };
 
 export class SpeedMeter {
   readonly latest: Speed = { rpm: NaN, errorRpm: NaN };
-  /** Instant of the tooth that `add` is to take, s, and its standard error, s. */
+  readonly ring = new SpeedRing();
+  readonly error: SpeedError;
+  /** Instant of the tooth that `add` is to take, s, its standard error, s, and its learnt offset in positions. */
   t = NaN;
   sigmaS = NaN;
+  offset = 0;
   private readonly method: SpeedMethod;
-  private readonly windowS: number;
   private readonly turnPositions: number;
+  private readonly kept: number;
   /** rpm of one position a second. */
   private readonly factor: number;
-  private times: Float64Array;
-  private places: Float64Array;
-  /** Entries are `first .. next - 1`, each at its number modulo the length. */
-  private first = 0;
-  private next = 0;
-  private sinceRefit = 0;
-  private originS = 0;
-  private originPlace = 0;
-  private sumT = 0;
-  private sumP = 0;
-  private sumPP = 0;
-  private sumTP = 0;
+  private readonly turn: WholeTurn;
+  private readonly line: WindowLine;
 
   /** @param turnPositions positions of the wheel; `gearRatio` turns of the wheel a turn of the shaft. */
   constructor(method: SpeedMethod, windowS: number, turnPositions: number, gearRatio: number) {
     this.method = method;
-    this.windowS = windowS;
     this.turnPositions = turnPositions;
+    this.kept = (turnPositions > mostKeptTwice ? 1 : 2) * turnPositions + 1;
     this.factor = 60 / (turnPositions * gearRatio);
-    this.times = new Float64Array(64);
-    this.places = new Float64Array(64);
+    this.error = new SpeedError(this.ring, turnPositions);
+    this.turn = new WholeTurn(this.ring, turnPositions);
+    this.line = new WindowLine(this.ring, windowS);
   }
 
-  /** Nothing is known of the speed until two more teeth have come. */
+  /** Nothing is known of the speed until two more teeth have come. How far teeth scatter is remembered. */
   reset(): void {
-    this.first = this.next = 0;
+    this.ring.clear();
     this.latest.rpm = this.latest.errorRpm = NaN;
-    this.clearSums();
-  }
-
-  private get mask(): number {
-    return this.times.length - 1;
+    this.error.scatter.loosen();
+    this.turn.restart();
+    this.line.refit();
   }
 
   get count(): number {
-    return this.next - this.first;
+    return this.ring.count;
   }
 
   /** The only tooth so far is moved in time: its filter delay became known. */
   retimeFirst(t: number): void {
-    if (this.count !== 1) return;
-    this.times[this.first & this.mask] = t;
-    this.refit();
+    const { ring } = this;
+    if (ring.count !== 1) return;
+    ring.times[ring.first & ring.mask] = t;
+    this.line.refit();
+  }
+
+  /** The tooth taken last ended at `t`. */
+  fall(): void {
+    const { ring } = this;
+    const i = (ring.next - 1) & ring.mask;
+    // The first fall after it: another one is that of a pulse which waits to be judged.
+    if (ring.count > 0 && Number.isNaN(ring.falls[i]!)) ring.falls[i] = this.t;
+  }
+
+  /**
+   * Learnt offsets come into use, change, or end.
+   * @param offsets by position; null: none. @param origin place of position 0.
+   * @param variance of a tooth's place about these marks, positions squared; NaN: not known.
+   */
+  remark(offsets: Float64Array | null, origin: number, variance: number): void {
+    const { ring, turnPositions: n } = this;
+    for (let k = ring.first; k < ring.next; k++) {
+      const place = ring.places[k & ring.mask]!;
+      ring.marks[k & ring.mask] = offsets ? place + offsets[(((place - origin) % n) + n) % n]! : place;
+    }
+    this.line.refit();
+    this.error.scatter.presume(variance);
   }
 
   /**
@@ -71,98 +93,62 @@ export class SpeedMeter {
    * @returns true where `latest` holds a speed.
    */
   add(place: number): boolean {
-    this.push(place);
-    if (this.method === 'turn') this.dropTo(place - this.turnPositions);
-    else if (this.method === 'tooth') this.keepLast(2);
-    else this.dropBeforeWindow();
-    const intervals = this.count - 1;
-    if (intervals < 1) return false;
-    if (this.method === 'window' && intervals > 1) this.fromLine();
-    else this.fromEnds();
+    const { ring, method, error, turn, line } = this;
+    const i = ring.room();
+    ring.times[i] = this.t;
+    ring.places[i] = place;
+    ring.marks[i] = place + this.offset;
+    let from = ring.next - 2;
+    if (method === 'turn') {
+      turn.follow(true);
+      from = turn.from;
+    } else if (method === 'window') {
+      line.slide();
+      turn.follow(false);
+      from = line.from;
+    }
+    const oldest = place - this.kept;
+    while (ring.first < from && ring.places[ring.first & ring.mask]! < oldest) ring.first++;
+    error.scatter.note();
+    if (ring.count < 2) return false;
+    error.sigmaS = this.sigmaS;
+    this.judge(from);
+    const { latest } = this;
+    // Two teeth at one instant: a filter's delay that changed between them. There is no speed in that.
+    if (!(error.perPositionS > 0)) {
+      latest.rpm = latest.errorRpm = NaN;
+      return false;
+    }
+    latest.rpm = this.factor / error.perPositionS;
+    latest.errorRpm = latest.rpm * error.share;
     return true;
   }
 
-  private push(place: number): void {
-    if (this.count === this.times.length) this.widen();
-    const i = this.next & this.mask;
-    this.times[i] = this.t;
-    this.places[i] = place;
-    this.next++;
-    if (this.method !== 'window') return;
-    if (this.count === 1) this.refit();
-    else this.account(this.t, place, 1);
-  }
-
-  private widen(): void {
-    const times = new Float64Array(this.times.length * 2);
-    const places = new Float64Array(times.length);
-    for (let k = this.first; k < this.next; k++) {
-      times[k & (times.length - 1)] = this.times[k & this.mask]!;
-      places[k & (times.length - 1)] = this.places[k & this.mask]!;
+  /** Time for one position and its error, from the entry `from` to the newest. */
+  private judge(from: number): void {
+    const { ring, method, error, turn, line } = this;
+    const { times, marks, mask, next } = ring;
+    const a = from & mask;
+    const b = (next - 1) & mask;
+    error.perPositionS = (times[b]! - times[a]!) / (marks[b]! - marks[a]!);
+    if (method !== 'tooth' && turn.turnS > 0) {
+      turn.scatter.told = error.told;
+      turn.scatter.turnS = turn.turnS;
+      turn.scatter.endS = turn.endS;
+      turn.scatter.spans = ring.places[b]! - ring.places[(next - 2) & mask]!;
+      turn.scatter.note(turn.edges, error.scatter);
     }
-    this.times = times;
-    this.places = places;
-  }
-
-  private dropTo(place: number): void {
-    while (this.count > 2 && this.places[(this.first + 1) & this.mask]! <= place) this.first++;
-    // A place that a missed tooth left empty: start from the one after it.
-    if (this.count > 2 && this.places[this.first & this.mask]! < place) this.first++;
-  }
-
-  private keepLast(count: number): void {
-    while (this.count > count) this.first++;
-  }
-
-  private dropBeforeWindow(): void {
-    const t = this.t - this.windowS;
-    while (this.count > 2 && this.times[this.first & this.mask]! < t) {
-      const i = this.first & this.mask;
-      this.account(this.times[i]!, this.places[i]!, -1);
-      this.first++;
+    if (method === 'turn' && turn.turnS > 0) {
+      error.perPositionS = turn.turnS / this.turnPositions;
+      error.ofTurn(from, turn.edges, turn.scatter);
+    } else if (method === 'window' && next - from > 2) {
+      const endsS = error.perPositionS;
+      line.solve();
+      error.perPositionS = line.perPositionS;
+      error.ofLine(line, turn.from > from ? turn.scatter : null, endsS);
+      error.perPositionS *= 1 + error.bent;
+    } else {
+      error.ofEnds(from);
     }
-    // Running sums drift; they are taken anew every 256 teeth.
-    if (++this.sinceRefit >= 256) this.refit();
-  }
-
-  private account(t: number, place: number, sign: 1 | -1): void {
-    const x = t - this.originS;
-    const p = place - this.originPlace;
-    this.sumT += sign * x;
-    this.sumP += sign * p;
-    this.sumPP += sign * p * p;
-    this.sumTP += sign * x * p;
-  }
-
-  private clearSums(): void {
-    this.sumT = this.sumP = this.sumPP = this.sumTP = 0;
-    this.sinceRefit = 0;
-  }
-
-  private refit(): void {
-    this.clearSums();
-    this.originS = this.times[this.first & this.mask]!;
-    this.originPlace = this.places[this.first & this.mask]!;
-    for (let k = this.first; k < this.next; k++)
-      this.account(this.times[k & this.mask]!, this.places[k & this.mask]!, 1);
-  }
-
-  private fromEnds(): void {
-    const a = this.first & this.mask;
-    const b = (this.next - 1) & this.mask;
-    const spans = this.places[b]! - this.places[a]!;
-    const perPositionS = (this.times[b]! - this.times[a]!) / spans;
-    const rpm = this.factor / perPositionS;
-    this.latest.rpm = rpm;
-    this.latest.errorRpm = (rpm * Math.SQRT2 * this.sigmaS) / (spans * perPositionS);
-  }
-
-  private fromLine(): void {
-    const n = this.count;
-    const spread = this.sumPP - (this.sumP * this.sumP) / n;
-    const perPositionS = (this.sumTP - (this.sumT * this.sumP) / n) / spread;
-    const rpm = this.factor / perPositionS;
-    this.latest.rpm = rpm;
-    this.latest.errorRpm = (rpm * this.sigmaS) / (Math.sqrt(spread) * perPositionS);
   }
 }

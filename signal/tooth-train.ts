@@ -8,12 +8,16 @@
 import { createEdgeQueue, delayGuessed, roomForSpeed } from '@/signal/columns';
 import type { EdgeQueue } from '@/signal/columns';
 import { judgeInterval, judgeWaiting } from '@/signal/gap-judge';
-import { createGapSync, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
+import { createGapSync, moveOn, resetSync } from '@/signal/gap-sync';
 import type { GapSync } from '@/signal/gap-sync';
 import { createIntervalMeter, noteInterval } from '@/signal/interval-meter';
 import type { RigSetup, Settings } from '@/signal/model';
 import type { SpeedColumns } from '@/signal/pipeline-types';
+import { Pitch } from '@/signal/pitch';
+import type { PitchStatus } from '@/signal/pitch';
+import { PlainJudge } from '@/signal/plain-judge';
 import { SpeedMeter } from '@/signal/speed-meter';
+import { stepTable } from '@/signal/step-table';
 import { ToothPlacer } from '@/signal/tooth-placer';
 import { Unevenness } from '@/signal/unevenness';
 import { mostPositions, WheelFaceMeter } from '@/signal/wheel-face-meter';
@@ -37,8 +41,11 @@ export class ToothTrain {
   /** Last tooth of an unbroken row, s. */
   rowS = NaN;
   private readonly rig: RigSetup;
-  private readonly meter: SpeedMeter;
   readonly placer: ToothPlacer;
+  private readonly meter: SpeedMeter;
+  private readonly teeth: Pitch;
+  /** Of a wheel without a gap and without other channels, which would tell. */
+  private readonly plain: PlainJudge | null;
   private readonly speed: SpeedColumns;
   private queue: EdgeQueue = createEdgeQueue();
   private entry = 0;
@@ -52,12 +59,7 @@ export class ToothTrain {
   private placedT = NaN;
 
   /** @param missing positions in a row that the wheel lacks. */
-  constructor(
-    rig: RigSetup,
-    missing: number,
-    { speed: { method, windowS } }: Settings,
-    speed: SpeedColumns,
-  ) {
+  constructor(rig: RigSetup, missing: number, { speed: { method, windowS } }: Settings, speed: SpeedColumns) {
     const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
     this.rig = rig;
     this.speed = speed;
@@ -66,6 +68,13 @@ export class ToothTrain {
     this.face = pulsesPerTurn <= mostPositions ? new WheelFaceMeter(pulsesPerTurn, missingPulses) : null;
     this.placer = new ToothPlacer(this.sync, this.face, missingPulses);
     this.uneven = new Unevenness(pulsesPerTurn);
+    this.teeth = new Pitch(this.meter, this.placer.tracker, this.face);
+    this.plain = missing === 0 && !stepTable(rig.sensing) ? new PlainJudge(this.sync) : null;
+  }
+
+  /** What is learnt of the wheel's own spacing. */
+  get pitch(): PitchStatus {
+    return this.teeth.status;
   }
 
   /** Synchronous with the wheel's gap; a plain wheel needs none. */
@@ -78,13 +87,6 @@ export class ToothTrain {
     return this.placer.lastPosition();
   }
 
-  /** Largest number of positions that can still be silent after the last tooth. */
-  silentPositions(): number {
-    const places = noGapAhead(this.sync) ? 1 : this.sync.missing + 1;
-    const nextIsWeak = this.synced && this.placer.nextIsOftenMissed();
-    return (places + (nextIsWeak ? 1 : 0)) * Math.max(1, this.uneven.widestPitch);
-  }
-
   /** Stop, gap or reversal: nothing is known of where teeth stand, and no interval reaches across. */
   forget(): void {
     this.meter.reset();
@@ -95,6 +97,8 @@ export class ToothTrain {
     this.periodS = NaN;
     this.uneven.reset();
     this.placer.reset();
+    this.teeth.lose();
+    this.plain?.reset();
   }
 
   /** The interval that the next tooth closes is not a whole cycle: no speed reaches across it. */
@@ -109,6 +113,8 @@ export class ToothTrain {
   /** The falling edge at entry `i` of the queue ends the tooth at hand. */
   fall(queue: EdgeQueue, i: number): void {
     this.placer.swingV = queue.extremeV[i]! - this.troughV;
+    this.meter.t = queue.midS[i]! - queue.delayS[i]!;
+    this.meter.fall();
   }
 
   /**
@@ -133,11 +139,13 @@ export class ToothTrain {
     if (meter.count === 0) {
       this.firstGuessed = guessed;
       this.firstMidS = queue.midS[i]!;
+      this.teeth.begin();
       meter.add(this.place);
     } else {
       this.sync.intervalS = t - this.lastRiseS;
-      if (!Number.isNaN(this.waitingT) && this.resumeWaiting()) found = true;
-      const spans = judgeInterval(this.sync);
+      if (Number.isNaN(this.waitingT)) this.teeth.follow(this.sign < 0);
+      else if (this.resumeWaiting()) found = true;
+      const spans = this.plain ? this.plain.judge() : judgeInterval(this.sync);
       if (spans > 0) {
         if (this.advance(spans)) found = true;
       } else {
@@ -159,12 +167,12 @@ export class ToothTrain {
   /** The tooth whose interval waited is placed, now that the entry at hand closes the next one. */
   private resumeWaiting(): boolean {
     const { meter, queue, entry } = this;
-    const spans = judgeWaiting(this.sync);
+    const spans = this.plain ? this.plain.judgeWaiting() : judgeWaiting(this.sync);
     const t = this.waitingT;
     this.waitingT = NaN;
     if (spans === 0) {
       // A pulse, and counted as one, but no tooth of the wheel.
-      this.extraPositions--;
+      if (!this.plain) this.extraPositions--;
       return false;
     }
     meter.t = t;
@@ -186,6 +194,7 @@ export class ToothTrain {
       this.uneven.notePitch(pitches / (60 * spans));
     }
     this.placedT = meter.t;
+    this.teeth.mark(this.place, spans);
     if (!meter.add(this.place)) return false;
     const rpm = this.sign * meter.latest.rpm;
     this.rpm = rpm;

@@ -59,8 +59,10 @@ describe('speed from pulses', () => {
   it('a window of ten periods has 0.4767 us of period error by least squares for 5 us a tooth, 0.7071 us by its ends (formula)', () => {
     const random = normal(seeded(60));
     const periods: number[] = [];
+    let stated = 0;
+    const runs = 20_000;
     const window = new SpeedMeter('window', 10.5e-3, 1, 1);
-    for (let run = 0; run < 20_000; run++) {
+    for (let run = 0; run < runs; run++) {
       window.reset();
       for (let k = 0; k <= 10; k++) {
         window.t = k * 1e-3 + 5e-6 * random() + 1e-4;
@@ -68,19 +70,32 @@ describe('speed from pulses', () => {
         window.add(k);
       }
       periods.push(60 / window.latest.rpm);
+      stated += ((window.latest.errorRpm / window.latest.rpm) * 1e-3) / runs;
     }
     const mean = periods.reduce((sum, p) => sum + p, 0) / periods.length;
     const rms = Math.sqrt(periods.reduce((sum, p) => sum + (p - mean) ** 2, 0) / periods.length);
     expect(rms / 0.4767e-6).toBeGreaterThan(0.97);
     expect(rms / 0.4767e-6).toBeLessThan(1.03);
-    expect((window.latest.errorRpm / window.latest.rpm) * 1e-3).toBeCloseTo(0.4767e-6, 9);
+    // What it says of its error is measured from a handful of teeth, and wide enough for that.
+    expect(stated / 0.4767e-6).toBeGreaterThan(1);
+    expect(stated / 0.4767e-6).toBeLessThan(1.5);
     const ends = new SpeedMeter('turn', 1, 10, 1);
-    for (let k = 0; k <= 10; k++) {
-      ends.t = k * 1e-3;
-      ends.sigmaS = 5e-6;
-      ends.add(k);
+    let squares = 0;
+    let said = 0;
+    for (let run = 0; run < runs; run++) {
+      ends.reset();
+      for (let k = 0; k <= 10; k++) {
+        ends.t = k * 1e-3 + 5e-6 * random() + 1e-4;
+        ends.sigmaS = 5e-6;
+        ends.add(k);
+      }
+      squares += (6 / ends.latest.rpm - 1e-3) ** 2 / runs;
+      said += ((ends.latest.errorRpm / ends.latest.rpm) * 1e-3) / runs;
     }
-    expect((ends.latest.errorRpm / ends.latest.rpm) * 1e-3).toBeCloseTo(0.7071e-6, 9);
+    expect(Math.sqrt(squares) / 0.7071e-6).toBeGreaterThan(0.97);
+    expect(Math.sqrt(squares) / 0.7071e-6).toBeLessThan(1.03);
+    expect(said / 0.7071e-6).toBeGreaterThan(1);
+    expect(said / 0.7071e-6).toBeLessThan(1.5);
   });
 
   it('six teeth and 0.25 s since the last bound the speed to 40 rpm (60 / (N dt))', () => {
