@@ -29,6 +29,6 @@ export const invertedChannel: CaseMaker = (draw) => {
     }),
     ...timing,
     variant: standing ? `${variant}, from the start` : variant,
-    consequences: ['illegal-state', 'direction-flip', 'duty-shift', 'phase-error'],
+    consequences: ['illegal-state', 'direction-flip', 'duty-shift', 'phase-error', 'offset-drift'],
   };
 };
