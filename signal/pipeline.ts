@@ -10,6 +10,7 @@ import { mergeEdges } from '@/signal/edge-merge';
 import type { Lane } from '@/signal/edge-merge';
 import { designFilters } from '@/signal/filter-design';
 import { FindingsDesk } from '@/signal/findings/desk';
+import { IndexWatch } from '@/signal/index-watch';
 import type { Channel, Result, SampleArray } from '@/signal/model';
 import { Motion } from '@/signal/motion';
 import type {
@@ -47,6 +48,7 @@ class SignalPipeline implements Pipeline {
   private readonly roles: number[];
   private readonly lanes: Lane[] = [];
   private readonly desk: FindingsDesk;
+  private readonly indexWatch: IndexWatch | null;
   private readonly tickSamples: number;
   private readonly tap: SampleTap | null;
   private nextAt: number;
@@ -65,22 +67,23 @@ class SignalPipeline implements Pipeline {
     this.tap = tap ?? null;
     this.nextAt = startIndex;
     this.tickSamples = samplesPerTick(rateHz);
-    this.paths = channels.map(
-      (name) =>
-        new ChannelPath({
-          channel: rig.channels.find((channel) => channel.name === name) as Channel,
-          band: settings.band,
-          sections,
-          gainOfNoise,
-          rateHz,
-          startIndex,
-          holdoffS: settings.holdoffS,
-          missingPulses: rig.sensing === 'single' ? missingPulses : 0,
-          teethPerTurn: Math.max(1, pulsesPerTurn - missingPulses),
-          bands,
-        }),
-    );
     const needed: readonly string[] = neededRoles(rig);
+    this.paths = channels.map((name) => {
+      const channel = rig.channels.find((own) => own.name === name) as Channel;
+      const hasGap = needed.length === 1 && channel.role === needed[0];
+      return new ChannelPath({
+        channel,
+        band: settings.band,
+        sections,
+        gainOfNoise,
+        rateHz,
+        startIndex,
+        holdoffS: settings.holdoffS,
+        missingPulses: hasGap ? missingPulses : 0,
+        teethPerTurn: channel.role === 'Z' ? 1 : Math.max(1, pulsesPerTurn - missingPulses),
+        bands,
+      });
+    });
     this.roles = this.paths.map(({ channel }, index) => {
       const place = needed.indexOf(channel.role);
       const first = this.paths.findIndex((other) => other.channel.role === channel.role);
@@ -100,6 +103,10 @@ class SignalPipeline implements Pipeline {
       gaps: [],
       closedFindings: [],
     };
+    const index = channels.findIndex((name) =>
+      rig.channels.some((own) => own.name === name && own.role === 'Z'),
+    );
+    this.indexWatch = IndexWatch.of(this.paths[index], this.motion, rateHz);
     this.desk = new FindingsDesk(
       {
         rig,
@@ -109,9 +116,8 @@ class SignalPipeline implements Pipeline {
         motion: this.motion,
         primary: this.roles.indexOf(0),
         lanes: needed.map((_role, place) => this.roles.indexOf(place)),
-        index: channels.findIndex((name) =>
-          rig.channels.some((own) => own.name === name && own.role === 'Z'),
-        ),
+        index,
+        indexWatch: this.indexWatch,
         settleS: (memory.ok ? memory.value : 0) / rateHz,
       },
       this.output.closedFindings,
@@ -174,6 +180,7 @@ class SignalPipeline implements Pipeline {
 
   private tick(): void {
     for (const path of this.paths) path.tick();
+    this.indexWatch?.tick();
     this.desk.tick(this.nextAt / this.rateHz);
     this.tap?.tick(this.motionNow());
   }

@@ -3,6 +3,7 @@
  * stream, 10 a second or more) and at gaps, and holds its own findings. Rules know nothing of each other.
  */
 import type { ChannelPath } from '@/signal/channel-path';
+import type { IndexWatch } from '@/signal/index-watch';
 import type { Motion } from '@/signal/motion';
 import type { Finding, RigSetup, Settings } from '@/signal/model';
 import type { BoardNote } from '@/signal/pipeline-types';
@@ -19,6 +20,8 @@ export type RuleContext = {
   lanes: readonly number[];
   /** Index into `paths` of the index channel Z; -1: there is none. */
   index: number;
+  /** Counts a turn, held against the index; null without one. */
+  indexWatch: IndexWatch | null;
   /** So long after a start the filter still rings, s. */
   settleS: number;
 };
