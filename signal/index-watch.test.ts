@@ -1,66 +1,22 @@
 import { describe, expect, it } from 'vitest';
-import { ChannelPath, chunkSamples } from '@/signal/channel-path';
 import { createSpeedColumns } from '@/signal/columns';
-import { mergeEdges } from '@/signal/edge-merge';
 import { IndexWatch } from '@/signal/index-watch';
 import { defaultSettings } from '@/signal/model';
 import type { RigSetup } from '@/signal/model';
 import { Motion } from '@/signal/motion';
+import { openPaths } from '@/signal/test-paths';
 import { normal, seeded, testChannel, testRig } from '@/signal/test-signals';
-import { samplesPerTick } from '@/signal/ticks';
-import { neededRoles } from '@/signal/validate-setup';
 
 const rateHz = 20_000;
 
-/** The path from volts to the watch, as the pipeline runs it; `volts[c]` belongs to the rig's channel `c`. */
-function watched(rig: RigSetup, seconds: number, volts: readonly ((t: number) => number)[], lostAtS = NaN) {
-  const motion = new Motion(rig, defaultSettings, rateHz, 0, createSpeedColumns(), []);
-  const needed: readonly string[] = neededRoles(rig);
-  const paths = rig.channels.map(
-    (channel) =>
-      new ChannelPath({
-        channel,
-        band: defaultSettings.band,
-        sections: [],
-        gainOfNoise: 1,
-        rateHz,
-        startIndex: 0,
-        holdoffS: 0,
-        missingPulses: channel.role === 'Z' ? 0 : rig.wheel.missingPulses,
-        teethPerTurn: channel.role === 'Z' ? 1 : rig.wheel.pulsesPerTurn - rig.wheel.missingPulses,
-        bands: [],
-      }),
-  );
-  const lanes = paths
-    .filter(({ channel }) => needed.includes(channel.role))
-    .map((path) => ({ path, queue: path.queue, role: needed.indexOf(path.channel.role) }));
-  const watch = IndexWatch.of(
-    paths.find(({ channel }) => channel.role === 'Z'),
-    motion,
-    rateHz,
-  )!;
-  const tick = samplesPerTick(rateHz);
-  const lostAt = Math.round(lostAtS * rateHz);
-  const samples = new Float64Array(chunkSamples);
-  for (let at = 0; at < seconds * rateHz;) {
-    if (at === lostAt) {
-      at += 4000;
-      for (const path of paths) path.skipTo(at);
-      motion.gap((at - 4000) / rateHz, at / rateHz, at);
-    }
-    const count = Math.min(chunkSamples, tick - (at % tick), lostAt > at ? lostAt - at : Infinity);
-    paths.forEach((path, c) => {
-      for (let i = 0; i < count; i++) samples[i] = volts[c]!((at + i) / rateHz);
-      path.advance(samples, 0, count, at);
-    });
-    at += count;
-    mergeEdges(lanes, motion);
-    if (at % tick === 0) {
-      for (const path of paths) path.tick();
-      watch.tick();
-    }
-  }
-  return { watch, motion };
+function watched(
+  rig: RigSetup,
+  seconds: number,
+  volts: readonly ((t: number) => number)[],
+  lostAtS = Infinity,
+) {
+  const { watch, motion } = openPaths(rig, rateHz, seconds, volts, { lost: { atS: lostAtS, samples: 4000 } });
+  return { watch: watch!, motion };
 }
 
 const withIndex = (rig: RigSetup): RigSetup => ({

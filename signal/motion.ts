@@ -35,6 +35,8 @@ export class Motion extends ShaftState {
   private readonly stoppedAfterSamples: number;
   private stopAt = NaN;
   private countsReset = false;
+  /** Pulses since the last stop or lost samples that no direction was known of yet: the first that is known is theirs too. */
+  private unsigned = 0;
 
   constructor(
     rig: RigSetup,
@@ -94,6 +96,7 @@ export class Motion extends ShaftState {
     this.quietSinceS = toS;
     this.train.lastRiseS = NaN;
     this.countsReset = true;
+    this.unsigned = 0;
   }
 
   /** Entry `i` of the queue of the channel with the place `role` in the arrangement (0 for A or U), in order of time. */
@@ -117,8 +120,13 @@ export class Motion extends ShaftState {
     const way = widths.isHolding ? widths.read(queue, i) : standStill;
     if (way === standStill) return;
     this.note(widths.lead, 0);
-    if (way === 0) this.turnTo('unknown', this.lastEdgeS);
-    else this.face(way > 0 ? 1 : -1);
+    if (way === 0) {
+      this.turnTo('unknown', this.lastEdgeS);
+    } else {
+      if (way < 0) this.pulses -= 2 * this.unsigned;
+      this.unsigned = 0;
+      this.face(way > 0 ? 1 : -1);
+    }
     this.rise(widths.lead, 0);
     this.train.fall(queue, i);
   }
@@ -135,7 +143,9 @@ export class Motion extends ShaftState {
       this.countsReset = false;
       this.countsSinceS = t;
     }
-    if (this.state === 'stopped') this.wake(t);
+    if (this.state !== 'stopped') return;
+    this.unsigned = 0;
+    this.wake(t);
   }
 
   private step(ring: RingMotion, queue: EdgeQueue, i: number, role: number): void {
@@ -158,6 +168,7 @@ export class Motion extends ShaftState {
     const { train, ring, indexCounts } = this;
     if (ring === null) {
       this.pulses += this.sense < 0 ? -1 : 1;
+      if (this.sense === 0) this.unsigned++;
     } else if (!ring.closeCycle() && train.isCounting) {
       train.breakSpeed();
       this.openUnknown(this.lastEdgeS);
