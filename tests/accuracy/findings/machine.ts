@@ -1,17 +1,17 @@
 /** A sound rig drawn at random, within what a case wants of it: the model's data and the setup that the hub is told. */
 import type { RigSetup, Sensing, Settings } from '@/signal/model';
-import { codeRange, type AdcSpec } from '@/simulator/adc';
+import { codeRange } from '@/simulator/adc';
 import type { MotionSpec } from '@/simulator/motion';
-import type { ChannelSpec, RigSpec } from '@/simulator/rig-model';
+import type { RigSpec } from '@/simulator/rig-model';
 import { setupOf } from '@/simulator/setup';
 import type { Draw } from '@/tests/accuracy/findings/draw';
 import {
-  drawElectronics,
   drawSensor,
   indexSensorFor,
   type DrawnSensor,
   type SensorWord,
 } from '@/tests/accuracy/findings/sensors';
+import { drawAdc, drawChannels, rateFor, type Wants } from '@/tests/accuracy/findings/machine-parts';
 import { drawSettings } from '@/tests/accuracy/findings/settings';
 import {
   drawPositions,
@@ -20,27 +20,10 @@ import {
   soundTolerances,
   type DrawnWheel,
   type Field,
-  type Tolerances,
   type WheelKind,
 } from '@/tests/accuracy/findings/wheels';
 
-type Range = [number, number];
-export type Wants = {
-  sensing?: readonly Sensing[];
-  sensors?: readonly SensorWord[];
-  wheels?: readonly WheelKind[];
-  positions?: Range;
-  /** Positions without a tooth, one of these numbers. */
-  missing?: readonly number[];
-  index?: boolean;
-  /** Of the wheel, at its fastest. */
-  toothHz?: Range;
-  turnsPerS?: Range;
-  samplesPerTooth?: Range;
-  snrDb?: Range;
-  adc?: AdcSpec['kind'];
-  tolerances?: Tolerances;
-};
+export type { Wants };
 
 /** A rig without motion and faults yet, and what cases need to know of it. */
 export type Machine = {
@@ -62,8 +45,6 @@ export type Machine = {
 };
 
 export type Bench = { spec: RigSpec; setup: RigSetup; settings: Settings; rigSeed: number };
-
-const rates = [1000, 1250, 2000, 2500, 4000, 5000, 8000, 10_000, 12_500, 20_000, 25_000, 50_000];
 
 const fits: Record<SensorWord, readonly WheelKind[]> = {
   linear: ['toothed', 'pole-ring', 'magnets'],
@@ -179,52 +160,6 @@ function drawSpeed(draw: Draw, kind: WheelKind, missing: number, word: SensorWor
     if (word === 'pulse' && toothHz > 350) continue;
     return { positions, toothHz };
   }
-}
-
-function rateFor(draw: Draw, toothHz: number, sensing: Sensing, wants: Wants): number {
-  const least = sensing === 'three-hall' ? 24 : 16;
-  const [low, high] = wants.samplesPerTooth ?? [least, 3 * least];
-  // The shortest pulse, 0.2 ms, takes at least four samples.
-  const wanted = Math.max(draw.uniform(low, high) * toothHz, sensing === 'width-coded' ? 20_000 : 0);
-  return rates.find((rate) => rate >= wanted) ?? 50_000;
-}
-
-function drawChannels(
-  draw: Draw,
-  sensing: Sensing,
-  wants: Wants,
-  drawn: DrawnSensor,
-  noiseV: number,
-): ChannelSpec[] {
-  const places = { single: [0], 'width-coded': [0], quadrature: [0, 90], 'three-hall': [0, 120, 240] }[
-    sensing
-  ];
-  const names = sensing === 'three-hall' ? ['U', 'V', 'W'] : ['A', 'B'];
-  const { inverted, sensor, baselineMt } = drawn;
-  const channels: ChannelSpec[] = places.map((placeDeg, i) => ({
-    inverted,
-    sensor,
-    baselineMt,
-    name: names[i] as string,
-    placeDeg: i === 0 ? 0 : placeDeg + draw.uniform(-6, 6),
-    electronics: { ...drawElectronics(draw, drawn, 40), noiseRmsV: noiseV },
-  }));
-  if (wants.index)
-    channels.push({
-      name: 'Z',
-      placeDeg: 0,
-      sensor: indexSensorFor(drawn).sensor,
-      track: 'index',
-      electronics: { noiseRmsV: noiseV },
-    });
-  return channels;
-}
-
-function drawAdc(draw: Draw, supplyV: number, kind: AdcSpec['kind'] | undefined): AdcSpec {
-  if ((kind ?? draw.pick(['codes', 'codes', 'codes', 'volts'] as const)) === 'volts')
-    return { kind: 'volts' };
-  const bits = draw.pick([10, 12, 12, 14, 16]);
-  return { kind: 'codes', bits, voltsPerCode: supplyV / 2 ** bits, codeOffset: 0 };
 }
 
 /** Ends of what the converter can tell, V; those of the sensor where it has none. */
