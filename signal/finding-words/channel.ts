@@ -1,5 +1,5 @@
 /** What is wrong with the signal of one channel, and what usually mends it. */
-import { short, time } from '@/signal/finding-words/values';
+import { short, time, whole } from '@/signal/finding-words/values';
 import type { Wording } from '@/signal/finding-words/values';
 
 export const channelWords = {
@@ -24,6 +24,29 @@ export const channelWords = {
           remedy:
             'Look for a gap that has changed, a magnet or iron that came near the sensor, and a threshold that drifts with heat.',
         },
+  'mains-hum': (channel, evidence) => {
+    const { harmonic, mainsHz } = evidence;
+    const times = harmonic === 1 ? '' : ` (${whole(harmonic)} times ${whole(mainsHz)} Hz)`;
+    const tone = `a tone of ${short(evidence.humHz)} Hz${times} and ${short(evidence.amplitudeV)} V`;
+    const size = `${short(evidence.percentOfHalfSwing)} % of half the swing`;
+    if (evidence.order !== undefined) {
+      return {
+        message: `Channel ${channel} carries ${tone} (${size}), which may be mains hum or, as the wheel turns ${short(evidence.turnHz)} times a second, its order ${whole(evidence.order)}.`,
+        remedy: 'Change the speed by a tenth and look again: hum stays where it is, an order moves along.',
+      };
+    }
+    if (evidence.edgesHz !== undefined) {
+      return {
+        message: `Channel ${channel} makes ${short(evidence.edgesHz)} edges a second from a swing less than half of what its teeth had, which may be mains hum on a shaft that stands still.`,
+        remedy: 'Turn the shaft or change its speed by a tenth and look again: hum keeps its frequency.',
+      };
+    }
+    return {
+      message: `Channel ${channel} carries mains hum: ${tone}, ${size}.`,
+      remedy:
+        'Use a twisted or shielded pair with its ground at one point, a stronger pull-up, or a notch filter, and keep the cable away from mains and motors.',
+    };
+  },
   'slow-edge': (channel, evidence) => {
     if (evidence.slow === 'noise') {
       const filter =

@@ -1,16 +1,20 @@
 import { ClippingRule } from '@/signal/findings/clipping';
 import { DutyShiftRule } from '@/signal/findings/duty-shift';
+import { MainsHumRule } from '@/signal/findings/mains-hum';
 import { OffsetDriftRule } from '@/signal/findings/offset-drift';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { SlowEdgeRule } from '@/signal/findings/slow-edge';
+import { SlowSpectra } from '@/signal/findings/slow-spectrum';
 import { TurnMeans } from '@/signal/findings/turn-means';
 
-/** Rules about the signal of one channel; what teeth are like on average is read once for all of them. */
+/** Rules about the signal of one channel. What teeth are like on average, and spectra, are made once for all of them. */
 export function channelRules(context: RuleContext): FindingRule[] {
   const means = context.paths.map((path) => new TurnMeans(context, path));
+  const spectra = new SlowSpectra(context);
   return [
     new ClippingRule(context),
     new OffsetDriftRule(context, means),
+    new MainsHumRule(context, spectra, false),
     new SlowEdgeRule(context, means),
     new DutyShiftRule(context, means),
   ];

@@ -1,0 +1,187 @@
+import type { ChannelPath } from '@/signal/channel-path';
+import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
+import { besideTone, toneNear } from '@/signal/findings/hum-tone';
+import type { Tone } from '@/signal/findings/hum-tone';
+import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
+import type { SlowWheel } from '@/signal/findings/slow-wheel';
+
+/** Amplitude over half the swing. */
+const opens = { found: 0.05, cannotTell: 0.08 };
+const stays = { found: 0.03, cannotTell: 0.05 };
+const looksToOpen = 2;
+/** Grids keep their frequency within 0.2 Hz; small generators within this. */
+const reachHz = 0.5;
+const sameHz = 0.25;
+/** A tone stands so many times above everything beside it. */
+const prominent = 2;
+/** As near as this to a multiple of the shaft's frequency the two cannot be told apart, Hz. */
+const onOrderHz = 0.35;
+/** Orders up to this one are what run-out, an ellipse or a motor on the same shaft make; higher ones come in rows. */
+const lowOrders = 4;
+
+type Verdict = 'nothing' | 'found' | 'order' | 'edges';
+type Judged = {
+  path: ChannelPath;
+  latch: SizedLatch;
+  /** Looks in a row at which a tone was seen, and its frequency at the last one. */
+  seen: number;
+  seenHz: number;
+  sinceS: number;
+};
+type Sight = { tone: Tone; mainsHz: number; harmonic: number; verdict: Verdict };
+
+/** A tone of 50 or 60 Hz, or of their second and third harmonic, that is not the wheel's own. Sought at rest as well. */
+export class MainsHumRule implements FindingRule {
+  readonly latches: SizedLatch[];
+  private readonly context: RuleContext;
+  private readonly spectra: SlowSpectra;
+  private readonly judged: Judged[];
+  /** Where harmonics alone may be the ripple of the sensors' supply, another rule looks for it. */
+  private readonly mostHarmonic: number;
+
+  /** @param ripples true where supply ripple is judged. */
+  constructor(context: RuleContext, spectra: SlowSpectra, ripples: boolean) {
+    this.context = context;
+    this.spectra = spectra;
+    this.mostHarmonic = ripples ? 1 : 3;
+    this.judged = spectra.list.map(({ index }) => ({
+      path: context.paths[index]!,
+      latch: new SizedLatch(2),
+      seen: 0,
+      seenHz: NaN,
+      sinceS: NaN,
+    }));
+    this.latches = this.judged.map(({ latch }) => latch);
+  }
+
+  tick(nowS: number): void {
+    const isNew = this.spectra.look(nowS);
+    for (let i = 0; i < this.judged.length; i++) {
+      if (isNew) this.judge(this.judged[i]!, this.spectra.list[i]!, nowS);
+      this.latches[i]!.rest(nowS);
+    }
+  }
+
+  private judge(judged: Judged, spectrum: Spectrum, nowS: number): void {
+    const { spectra } = this;
+    const { latch, path } = judged;
+    const { wheel } = spectrum;
+    const sight = this.strongest(judged, spectrum);
+    if (!sight) {
+      judged.seen = 0;
+      return;
+    }
+    // Hum keeps its frequency from look to look; a peak of noise does not.
+    judged.seen = Math.abs(sight.tone.hz - judged.seenHz) < sameHz ? judged.seen + 1 : 1;
+    judged.seenHz = sight.tone.hz;
+    // The window that it was first seen in holds some of the time before.
+    if (judged.seen === 1) judged.sinceS = (spectra.fromS + spectra.toS) / 2;
+    if (!latch.open && judged.seen < looksToOpen) return;
+    const { tone, mainsHz, harmonic, verdict } = sight;
+    const share = tone.amplitudeV / wheel.halfSwingV;
+    const evidence = {
+      humHz: tone.hz,
+      mainsHz,
+      harmonic,
+      amplitudeV: tone.amplitudeV,
+      halfSwingV: wheel.halfSwingV,
+      percentOfHalfSwing: 100 * share,
+      ...(verdict === 'order' && { turnHz: wheel.turnHz, order: Math.round(tone.hz / wheel.turnHz) }),
+      ...(verdict === 'edges' && { edgesHz: wheel.toothHz }),
+    };
+    const seen = {
+      fromS: judged.sinceS,
+      atS: judged.sinceS,
+      severity: share > 0.4 ? 'fault' : share > 0.1 ? 'warn' : 'note',
+      outcome: verdict === 'found' ? 'found' : 'cannot-tell',
+      evidence,
+    } as const;
+    latch.raiseSized(findingOf('mains-hum', path.channel.name, seen), share, nowS);
+  }
+
+  private strongest(judged: Judged, spectrum: Spectrum): Sight | null {
+    const { spectra } = this;
+    const { latch } = judged;
+    const { wheel } = spectrum;
+    const { halfSwingV } = wheel;
+    const limits = latch.open ? stays : opens;
+    let best: Sight | null = null;
+    for (const mainsHz of [50, 60]) {
+      for (let harmonic = 1; harmonic <= this.mostHarmonic; harmonic++) {
+        const hz = harmonic * mainsHz;
+        if (hz > spectra.nyquistHz - 4 * spectra.binHz) break;
+        const tone = toneNear(spectrum, spectra.binHz, hz, harmonic * reachHz);
+        if (!tone || !(tone.amplitudeV > stays.found * halfSwingV)) continue;
+        spectra.suspected = true;
+        if (best && tone.amplitudeV <= best.tone.amplitudeV) continue;
+        const verdict = wheel.locate() ? this.verdict(judged, spectrum, tone) : 'nothing';
+        const limit = verdict === 'found' ? limits.found : limits.cannotTell;
+        if (verdict !== 'nothing' && tone.amplitudeV > limit * halfSwingV)
+          best = { tone, mainsHz, harmonic, verdict };
+      }
+    }
+    return best;
+  }
+
+  private verdict(judged: Judged, spectrum: Spectrum, tone: Tone): Verdict {
+    const { latch, path } = judged;
+    const { wheel } = spectrum;
+    const known = latch.open?.outcome === 'found' && Math.abs(judged.seenHz - tone.hz) < sameHz;
+    const beside = besideTone(spectrum, tone.bin, 3, 8, (bin) => wheel.fills(bin));
+    if (beside * (known ? 0.75 : 1) * prominent > tone.amplitudeV) return 'nothing';
+    if (isAnImage(path.noiseV, besideTone(spectrum, tone.bin, 6, 10), tone)) return 'nothing';
+    if (wheel.mostAt(tone.hz) > tone.amplitudeV / 2)
+      return looksLikeEdges(path, wheel, tone) ? 'edges' : 'nothing';
+    if (known) return 'found';
+    return this.onOrder(spectrum, tone);
+  }
+
+  private onOrder(spectrum: Spectrum, tone: Tone): Verdict {
+    const { wheel } = spectrum;
+    const { binHz } = this.spectra;
+    const { gearRatio } = this.context.rig.wheel;
+    // Closer rows of orders would stand beside the tone too.
+    if (wheel.turnHz < 2 * binHz) return 'found';
+    for (const shaftHz of [wheel.turnHz, wheel.turnHz / gearRatio]) {
+      const order = Math.round(tone.hz / shaftHz);
+      const off = Math.abs(order * shaftHz - tone.hz);
+      if (order === 0 || off > onOrderHz + (order * wheel.spreadHz) / wheel.positions) continue;
+      // A gap or a weak tooth makes a row of orders, each about as large as the next.
+      const row = Math.max(
+        order > 1 ? sizeNear(spectrum, ((order - 1) * shaftHz) / binHz) : 0,
+        sizeNear(spectrum, ((order + 1) * shaftHz) / binHz),
+      );
+      if (3 * row > tone.amplitudeV) return 'nothing';
+      if (order <= lowOrders) return 'order';
+    }
+    return wheel.besideTeeth(tone.hz, onOrderHz) ? 'order' : 'found';
+  }
+}
+
+function sizeNear({ re, im }: Spectrum, place: number): number {
+  const bin = Math.round(place);
+  return bin < re.length - 1 ? Math.hypot(re[bin]!, im[bin]!) : 0;
+}
+
+/** Edges at the mains' own pace, from a swing less than half of what the teeth had before: hum may make them itself. */
+function looksLikeEdges(path: ChannelPath, wheel: SlowWheel, tone: Tone): boolean {
+  const { supplyV } = path.channel.sensor;
+  return (
+    wheel.learnt &&
+    supplyV !== null &&
+    supplyV > 0 &&
+    wheel.swingV < wheel.halfSwingV &&
+    Math.abs(wheel.toothHz - tone.hz) < reachHz &&
+    wheel.spreadHz < reachHz
+  );
+}
+
+/**
+ * Neighbouring samples differ as if by noise, and yet there is none of it beside the tone: the ring holds the image of
+ * something above half its rate, a wheel perhaps that turns too fast for its edges to be found. (Ten bins of white noise
+ * reach 0.14 of its rms.)
+ */
+function isAnImage(noiseV: number, besideV: number, { amplitudeV }: Tone): boolean {
+  return noiseV > 0.1 * amplitudeV && besideV < 0.03 * noiseV + 0.003 * amplitudeV;
+}

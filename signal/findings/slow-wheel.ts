@@ -1,0 +1,221 @@
+/**
+ * What a turning wheel itself puts into the spectrum of the slow ring: harmonics of the tooth frequency and orders of the
+ * shaft, folded at half the ring's rate.
+ */
+import type { ChannelPath } from '@/signal/channel-path';
+import { teethPerTurn } from '@/signal/findings/channel-finding';
+import type { RuleContext } from '@/signal/findings/rule';
+import { readableFrom } from '@/signal/tooth-log';
+import type { ToothLog } from '@/signal/tooth-log';
+
+const harmonics = 60;
+
+export class SlowWheel {
+  /** Of one position over the window, Hz, once located; 0 where fewer than three teeth came in it. */
+  toothHz = 0;
+  /** By how much it differed over the window, Hz. */
+  spreadHz = 0;
+  /** Turns of the wheel a second. */
+  turnHz = 0;
+  /** Mean peak to peak over the window, V; NaN where no tooth came. */
+  swingV = NaN;
+  /** Half of the swing as last seen; before any tooth, what the sensor lets expect. NaN: nothing to measure against. */
+  halfSwingV: number;
+  /** Teeth have been seen. */
+  learnt = false;
+  /** From 10 % to 90 % of the swing, s. */
+  private flankS = 0;
+  private readonly path: ChannelPath;
+  private first = 0;
+  private last = -1;
+  private readonly turn: number;
+  /** Of one turn, those without a tooth included. */
+  readonly positions: number;
+  private readonly binHz: number;
+  private readonly nyquistHz: number;
+
+  constructor(context: RuleContext, path: ChannelPath, binHz: number, nyquistHz: number) {
+    this.path = path;
+    this.turn = teethPerTurn(context, path);
+    this.positions = path.channel.role === 'Z' ? 1 : context.rig.wheel.pulsesPerTurn;
+    this.binHz = binHz;
+    this.nyquistHz = nyquistHz;
+    this.halfSwingV = expectedHalfSwingV(path, context);
+  }
+
+  /** Takes the teeth of the window; their frequency is found when it is asked for. */
+  read(fromS: number): void {
+    const { log } = this.path;
+    this.last = log.count - 1;
+    this.first = firstSince(log, fromS);
+    this.toothHz = this.spreadHz = this.turnHz = 0;
+    this.swingV = NaN;
+    this.readFlanks(Math.max(this.first, this.last - 16), this.last);
+    this.learnSwing();
+  }
+
+  /** Teeth a second in the window, gaps not filled; 0 where there are fewer than three. */
+  private edgesHz(): number {
+    const { first, last } = this;
+    const { log } = this.path;
+    if (last - first < 2) return 0;
+    return (last - first) / (log.riseS[last & log.mask]! - log.riseS[first & log.mask]!);
+  }
+
+  /**
+   * Fills in the frequencies. Places without a tooth are counted as multiples of the usual interval; where teeth are too
+   * uneven for that, their pattern has to come again each turn.
+   * @returns false where neither holds, as with edges that bounce: then nothing is known of where orders are.
+   */
+  locate(): boolean {
+    const { first, last, positions, turn } = this;
+    const { log } = this.path;
+    if (last - first < 2) return true;
+    const usualS = this.usualInterval();
+    const even = isEven(log, first, last, usualS);
+    if (!even && !repeats(log, first, last, turn)) return false;
+    const middle = (first + last) >> 1;
+    const perTooth = positions / turn;
+    const earlier = even ? placesBetween(log, first, middle, usualS) : (middle - first) * perTooth;
+    const later = even ? placesBetween(log, middle, last, usualS) : (last - middle) * perTooth;
+    const startS = log.riseS[first & log.mask]!;
+    const middleS = log.riseS[middle & log.mask]!;
+    const endS = log.riseS[last & log.mask]!;
+    this.toothHz = (earlier + later) / (endS - startS);
+    this.spreadHz = Math.abs(later / (endS - middleS) - earlier / (middleS - startS));
+    this.turnHz = this.toothHz / positions;
+    return true;
+  }
+
+  /** The median of some intervals of the window, s. */
+  private usualInterval(): number {
+    const { first, last } = this;
+    const some = Math.min(last - first, 15);
+    const intervals = Float64Array.from({ length: some }, (_, i) =>
+      intervalS(this.path.log, first + Math.floor((i * (last - first)) / some)),
+    );
+    return intervals.sort()[some >> 1]!;
+  }
+
+  /** The largest amplitude that harmonics of the teeth may have at `hz`, V. */
+  mostAt(hz: number): number {
+    const { halfSwingV, toothHz, spreadHz, turnHz, binHz, flankS } = this;
+    if (toothHz === 0) return 0;
+    let most = 0;
+    for (let h = 1; h <= harmonics; h++) {
+      const off = Math.abs(this.folded(h * toothHz) - hz);
+      const smearHz = h * spreadHz;
+      const on = off < 2 * binHz + smearHz;
+      // Beside the first ones stand the orders by which teeth differ; where they can be told apart, see `besideTeeth`.
+      if (!on && !(h <= 2 && off < 3 * turnHz && turnHz < 2 * binHz)) continue;
+      // Of a trapezoid: 4 / (pi h) of a square wave, less beyond 1 / (pi flank).
+      const soft = Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS));
+      const size = ((1.27 * halfSwingV) / h) * soft * (on ? 1 : 0.25);
+      most = Math.max(most, size / Math.max(1, smearHz / (2 * binHz)));
+    }
+    return most;
+  }
+
+  /** True where the third order or a nearer one beside a harmonic of the teeth, or its image, comes within `offHz` of `hz`. */
+  besideTeeth(hz: number, offHz: number): boolean {
+    const { toothHz, turnHz, spreadHz } = this;
+    if (toothHz === 0) return false;
+    for (let h = 1; h <= 3; h++) {
+      for (let k = -3; k <= 3; k++) {
+        if (Math.abs(this.folded(h * toothHz + k * turnHz) - hz) < offHz + h * spreadHz) return true;
+      }
+    }
+    return false;
+  }
+
+  /** True where one of the first harmonics fills that bin; one that is smeared over many is weak in each. */
+  fills(bin: number): boolean {
+    const { toothHz, binHz, spreadHz } = this;
+    if (toothHz === 0) return false;
+    for (let h = 1; h <= 6 && h * spreadHz < 5 * binHz; h++) {
+      if (Math.abs(this.folded(h * toothHz) - bin * binHz) < 2.5 * binHz + h * spreadHz) return true;
+    }
+    return false;
+  }
+
+  folded(hz: number): number {
+    const rate = 2 * this.nyquistHz;
+    return Math.abs(hz - rate * Math.round(hz / rate));
+  }
+
+  /** Small teeth that come as the mains do are left out: hum may make them. */
+  private learnSwing(): void {
+    if (!(this.swingV > 0)) return;
+    const edgesHz = this.edgesHz();
+    const isHum = Math.abs(edgesHz - 50) < 0.5 || Math.abs(edgesHz - 60) < 0.5;
+    if (this.learnt && isHum && this.swingV < this.halfSwingV) return;
+    this.halfSwingV = this.swingV / 2;
+    this.learnt = true;
+  }
+
+  private readFlanks(first: number, last: number): void {
+    const { log, operateV, releaseV } = this.path;
+    if (last <= first) return;
+    let swing = 0;
+    let ways = 0;
+    for (let n = first; n < last; n++) {
+      swing += log.peakV[n & log.mask]! - log.troughV[n & log.mask]!;
+      ways += Math.min(log.riseWayS[n & log.mask]!, log.fallWayS[n & log.mask]!);
+    }
+    this.swingV = swing / (last - first);
+    this.flankS = (((1.6 * this.swingV) / (operateV - releaseV)) * ways) / (last - first);
+  }
+}
+
+/** Of the supply, what half the swing of a sensor usually is. Without a supply a fixed band says what is expected. */
+const usualHalf = { linear: 0.2, switching: 0.4 };
+
+function expectedHalfSwingV({ channel, operateV, releaseV }: ChannelPath, { settings }: RuleContext): number {
+  const { kind, supplyV } = channel.sensor;
+  if (supplyV !== null && supplyV > 0)
+    return (kind === 'linear' ? usualHalf.linear : usualHalf.switching) * supplyV;
+  return settings.band.mode === 'fixed' ? operateV - releaseV : NaN;
+}
+
+/** The first tooth of the unbroken row that began at `fromS` or later; the number of teeth where there is none. */
+function firstSince(log: ToothLog, fromS: number): number {
+  let low = readableFrom(log, 0);
+  let high = log.count;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (log.riseS[middle & log.mask]! < fromS) low = middle + 1;
+    else high = middle;
+  }
+  return low;
+}
+
+function intervalS({ riseS, mask }: ToothLog, n: number): number {
+  return riseS[(n + 1) & mask]! - riseS[n & mask]!;
+}
+
+function placesBetween(log: ToothLog, first: number, last: number, usualS: number): number {
+  let places = 0;
+  for (let n = first; n < last; n++) places += Math.max(1, Math.round(intervalS(log, n) / usualS));
+  return places;
+}
+
+/** So few intervals may be of another length. */
+const oddShare = 0.1;
+
+function isEven(log: ToothLog, first: number, last: number, usualS: number): boolean {
+  let odd = 0;
+  for (let n = first; n < last; n++) {
+    const places = intervalS(log, n) / usualS;
+    if (places < 0.5 || Math.abs(places - Math.round(places)) > 0.25) odd++;
+  }
+  return odd <= oddShare * (last - first);
+}
+
+function repeats(log: ToothLog, first: number, last: number, turn: number): boolean {
+  if (first - turn < readableFrom(log, 0)) return false;
+  let odd = 0;
+  for (let n = first; n < last; n++) {
+    if (Math.abs(intervalS(log, n) / intervalS(log, n - turn) - 1) > 0.1) odd++;
+  }
+  return odd <= oddShare * (last - first);
+}
