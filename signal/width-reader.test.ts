@@ -46,7 +46,7 @@ describe('pulses whose width carries the direction', () => {
   it.each([false, true])('say which way, with the sign in speed and count (active low: %s)', (activeLow) => {
     for (const means of ['forward', 'reverse'] as const) {
       const pulses = row(0.021_23, 300, 2e-3, means);
-      const { motion, speeds, directions } = openPaths(rigOf(activeLow), rateHz, 0.6, [
+      const { motion, paths, speeds, directions } = openPaths(rigOf(activeLow), rateHz, 0.63, [
         line(pulses, activeLow),
       ]);
       const sign = means === 'forward' ? 1 : -1;
