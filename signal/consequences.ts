@@ -2,9 +2,13 @@
  * What a rig's setup leads to, for the setup form: computed while typing, from the setup alone.
  *
  * Tooth frequency f = N gear n / 60. A single channel needs a sample in each half of a tooth, a ring of states one in every
- * state; twice that is recommended. Three-hall: six states a cycle.
+ * state: n_max = 60 fs (w_min / w) / (states N gear k), k = 1 samples a state at least, 2 recommended. Three-hall: six states
+ * a cycle. Widths: `statistics/width-code.ts`. Sources: counting states is an identity; factor 2 is ours.
  */
-import type { RigSetup, Settings, Sensing } from '@/signal/model';
+import type { RigSetup, Sensing, Settings, Wheel } from '@/signal/model';
+import { sensorNotes } from '@/signal/sensor-notes';
+import type { SensorNote } from '@/signal/sensor-notes';
+import { neededRateHz } from '@/signal/statistics/width-code';
 
 export type Consequences = {
   /** Tooth frequency at the rated speed, Hz; null where no rated speed is given. */
@@ -15,12 +19,29 @@ export type Consequences = {
   highestRpm: number | null;
   /** With each state sampled at least twice, rpm. */
   recommendedRpm: number | null;
+  /** Samples a second on each channel that the rated speed takes, each state sampled twice; null where none is given. */
+  neededRateHz: number | null;
   /** Slower than this reads stopped, rpm. */
   lowestRpm: number;
-  /** Teeth faster than this lose edges to the hold-off, Hz; null without hold-off. */
+  /** The fastest edge that is left: one that comes sooner after the one before on its channel is eaten, s; null without hold-off. */
+  holdoffS: number | null;
+  /** Teeth faster than this lose edges to the hold-off, Hz. */
   holdoffHz: number | null;
   /** The same as a speed, rpm. */
   holdoffRpm: number | null;
+  /** Pulses whose width carries the direction; null for other arrangements. */
+  widths: WidthConsequences | null;
+  /** What the kind of sensor means for count and polarity. */
+  notes: SensorNote[];
+};
+
+export type WidthConsequences = {
+  /** Samples a second without which no direction is told: four in the narrowest pulse. */
+  neededRateHz: number;
+  /** Null where no rate is known yet. */
+  isRateEnough: boolean | null;
+  /** Faster than this pulses fill more than half of their period, and tell no direction, rpm. */
+  directionUpToRpm: number;
 };
 
 /** States a cycle that must each be seen. */
@@ -37,30 +58,96 @@ export function statesPerCycle(sensing: Sensing): number {
 }
 
 /**
- * @param rateHz samples a second, or null where no board has told it yet.
- * @param narrowestStateShare the narrowest state over an even one, 1 where A and B are 90 degrees apart.
+ * The highest speed that an arrangement allows at a sample rate, rpm, with `samplesPerState` samples in its narrowest state.
+ * Width-coded with known widths: a pulse and the pause after it; 0 where a pulse can fall between two samples.
+ */
+export function highestRpmAt(
+  sensing: Sensing,
+  wheel: Wheel,
+  rateHz: number,
+  samplesPerState = 1,
+  narrowestStateShare = 1,
+): number {
+  const rpmPerHz = rpmPerToothHz(wheel);
+  if (sensing === 'width-coded' && wheel.widthClasses?.length) {
+    const widths = wheel.widthClasses.map(({ widthS }) => widthS);
+    const longestStateS = samplesPerState / rateHz;
+    if (Math.min(...widths) < longestStateS) return 0;
+    return rpmPerHz / (Math.max(...widths) + longestStateS);
+  }
+  return (rateHz * narrowestStateShare * rpmPerHz) / (statesPerCycle(sensing) * samplesPerState);
+}
+
+/**
+ * @param rig its channels may be left out, and then nothing is said of sensors. @param rateHz samples a second, or null where
+ * no board has told it yet. @param narrowestStateShare the narrowest state over an even one, 1 where A and B are 90 degrees
+ * apart. @param narrowestHalfShare the shorter of a pulse and the pause after it, over their period.
  */
 export function consequencesOf(
-  rig: Pick<RigSetup, 'sensing' | 'wheel' | 'ratedRpm'>,
+  rig: Pick<RigSetup, 'sensing' | 'wheel' | 'ratedRpm'> & Partial<Pick<RigSetup, 'channels'>>,
   settings: Pick<Settings, 'holdoffS' | 'speed'>,
   rateHz: number | null,
   narrowestStateShare = 1,
+  narrowestHalfShare = 0.5,
 ): Consequences {
-  const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
-  const rpmPerHz = 60 / (pulsesPerTurn * gearRatio);
-  const toothHz = rig.ratedRpm === null ? null : rig.ratedRpm / rpmPerHz;
-  const highestRpm =
-    rateHz === null ? null : (rateHz * narrowestStateShare * rpmPerHz) / statesPerCycle(rig.sensing);
-  const silent = rig.sensing === 'single' ? missingPulses + 1 : 1;
-  // Each edge, of either polarity, opens a hold-off: at a duty of one half it must end within half a tooth.
-  const holdoffHz = settings.holdoffS > 0 ? 1 / (2 * settings.holdoffS) : null;
+  const { sensing, wheel, ratedRpm } = rig;
+  const rpmPerHz = rpmPerToothHz(wheel);
+  const toothHz = ratedRpm === null ? null : ratedRpm / rpmPerHz;
+  const widths = widthsOf(sensing, wheel, rateHz);
+  const highest = (samplesPerState: number): number | null =>
+    rateHz === null ? null : highestRpmAt(sensing, wheel, rateHz, samplesPerState, narrowestStateShare);
+  const twice = highest(2);
+  // Each edge, of either polarity, opens a hold-off: it must end within the shorter half of a tooth.
+  const holdoffHz = settings.holdoffS > 0 ? holdoffLimitHz(rig, settings.holdoffS, narrowestHalfShare) : null;
   return {
     toothHz,
     samplesPerTooth: rateHz === null || toothHz === null || toothHz === 0 ? null : rateHz / toothHz,
-    highestRpm,
-    recommendedRpm: highestRpm === null ? null : highestRpm / 2,
-    lowestRpm: (silent * rpmPerHz) / settings.speed.stoppedAfterS,
+    highestRpm: highest(1),
+    recommendedRpm: twice === null || !widths ? twice : Math.min(twice, widths.directionUpToRpm),
+    neededRateHz:
+      toothHz === null
+        ? null
+        : Math.max((2 * statesPerCycle(sensing) * toothHz) / narrowestStateShare, widths?.neededRateHz ?? 0),
+    lowestRpm:
+      (silentPositions(sensing, wheel, narrowestStateShare) * rpmPerHz) / settings.speed.stoppedAfterS,
+    holdoffS: settings.holdoffS > 0 ? settings.holdoffS : null,
     holdoffHz,
     holdoffRpm: holdoffHz === null ? null : holdoffHz * rpmPerHz,
+    widths,
+    notes: sensorNotes(rig.channels ?? []),
+  };
+}
+
+/** rpm of the shaft at one position a second. */
+function rpmPerToothHz({ pulsesPerTurn, gearRatio }: Wheel): number {
+  return 60 / (pulsesPerTurn * gearRatio);
+}
+
+/** Positions without any edge while the shaft turns: its gap, or the widest state of a ring. */
+function silentPositions(sensing: Sensing, wheel: Wheel, narrowestStateShare: number): number {
+  if (sensing === 'single' || sensing === 'width-coded') return wheel.missingPulses + 1;
+  return (2 - narrowestStateShare) / statesPerCycle(sensing);
+}
+
+function holdoffLimitHz(
+  { sensing, wheel }: Pick<RigSetup, 'sensing' | 'wheel'>,
+  holdoffS: number,
+  narrowestHalfShare: number,
+): number {
+  if (sensing !== 'width-coded' || !wheel.widthClasses?.length) return narrowestHalfShare / holdoffS;
+  // The end of a pulse is eaten at any speed where the pulse is shorter; else the pause after the widest decides.
+  const widths = wheel.widthClasses.map(({ widthS }) => widthS);
+  return Math.min(...widths) <= holdoffS ? 0 : 1 / (Math.max(...widths) + holdoffS);
+}
+
+function widthsOf(sensing: Sensing, wheel: Wheel, rateHz: number | null): WidthConsequences | null {
+  if (sensing !== 'width-coded' || !wheel.widthClasses) return null;
+  const needed = neededRateHz(wheel.widthClasses);
+  if (!needed.ok) return null;
+  const widestS = Math.max(...wheel.widthClasses.map(({ widthS }) => widthS));
+  return {
+    neededRateHz: needed.value,
+    isRateEnough: rateHz === null ? null : rateHz >= needed.value,
+    directionUpToRpm: rpmPerToothHz(wheel) / (2 * widestS),
   };
 }
