@@ -47,6 +47,11 @@ export const channelWords = {
         'Use a twisted or shielded pair with its ground at one point, a stronger pull-up, or a notch filter, and keep the cable away from mains and motors.',
     };
   },
+  'supply-ripple': (_channel, evidence) => ({
+    message: `Channels ${evidence.channels} move up and down together by ${short(evidence.amplitudeV)} V at ${short(evidence.rippleHz)} Hz, ${short(evidence.percentOfHalfSwing)} % of half the swing, as sensors do whose supply ripples.`,
+    remedy:
+      'Take the reference of the converter from the supply of the sensors, or put a capacitor or a regulator of their own before them.',
+  }),
   'slow-edge': (channel, evidence) => {
     if (evidence.slow === 'noise') {
       const filter =

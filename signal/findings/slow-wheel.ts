@@ -5,8 +5,7 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import { teethPerTurn } from '@/signal/findings/channel-finding';
 import type { RuleContext } from '@/signal/findings/rule';
-import { readableFrom } from '@/signal/tooth-log';
-import type { ToothLog } from '@/signal/tooth-log';
+import { firstSince, isEven, placesBetween, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
 
 const harmonics = 60;
 
@@ -54,6 +53,11 @@ export class SlowWheel {
     this.learnSwing();
   }
 
+  /** Rising edges in the window. */
+  get teeth(): number {
+    return Math.max(0, this.last - this.first + 1);
+  }
+
   /** Teeth a second in the window, gaps not filled; 0 where there are fewer than three. */
   private edgesHz(): number {
     const { first, last } = this;
@@ -71,7 +75,7 @@ export class SlowWheel {
     const { first, last, positions, turn } = this;
     const { log } = this.path;
     if (last - first < 2) return true;
-    const usualS = this.usualInterval();
+    const usualS = usualIntervalS(log, first, last);
     const even = isEven(log, first, last, usualS);
     if (!even && !repeats(log, first, last, turn)) return false;
     const middle = (first + last) >> 1;
@@ -85,16 +89,6 @@ export class SlowWheel {
     this.spreadHz = Math.abs(later / (endS - middleS) - earlier / (middleS - startS));
     this.turnHz = this.toothHz / positions;
     return true;
-  }
-
-  /** The median of some intervals of the window, s. */
-  private usualInterval(): number {
-    const { first, last } = this;
-    const some = Math.min(last - first, 15);
-    const intervals = Float64Array.from({ length: some }, (_, i) =>
-      intervalS(this.path.log, first + Math.floor((i * (last - first)) / some)),
-    );
-    return intervals.sort()[some >> 1]!;
   }
 
   /** The largest amplitude that harmonics of the teeth may have at `hz`, V. */
@@ -126,6 +120,22 @@ export class SlowWheel {
       }
     }
     return false;
+  }
+
+  /**
+   * True where two channels may have something of the wheel in phase: at harmonics of the teeth, at orders beside them, and
+   * below four tenths of the tooth frequency, where the sensors stand close together for the shaft. There only what lies
+   * clearly between its orders is no part of it.
+   */
+  makesInCommon(hz: number): boolean {
+    const { toothHz, turnHz, spreadHz, binHz } = this;
+    if (toothHz === 0) return false;
+    for (let h = 1; h <= 16; h++) {
+      if (Math.abs(this.folded(h * toothHz) - hz) < 2.5 * binHz + h * spreadHz) return true;
+    }
+    if (this.besideTeeth(hz, 2 * binHz)) return true;
+    if (hz > 0.4 * toothHz) return false;
+    return turnHz < 6 * binHz || Math.abs(hz - turnHz * Math.round(hz / turnHz)) < 2.5 * binHz;
   }
 
   /** True where one of the first harmonics fills that bin; one that is smeared over many is weak in each. */
@@ -175,47 +185,4 @@ function expectedHalfSwingV({ channel, operateV, releaseV }: ChannelPath, { sett
   if (supplyV !== null && supplyV > 0)
     return (kind === 'linear' ? usualHalf.linear : usualHalf.switching) * supplyV;
   return settings.band.mode === 'fixed' ? operateV - releaseV : NaN;
-}
-
-/** The first tooth of the unbroken row that began at `fromS` or later; the number of teeth where there is none. */
-function firstSince(log: ToothLog, fromS: number): number {
-  let low = readableFrom(log, 0);
-  let high = log.count;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (log.riseS[middle & log.mask]! < fromS) low = middle + 1;
-    else high = middle;
-  }
-  return low;
-}
-
-function intervalS({ riseS, mask }: ToothLog, n: number): number {
-  return riseS[(n + 1) & mask]! - riseS[n & mask]!;
-}
-
-function placesBetween(log: ToothLog, first: number, last: number, usualS: number): number {
-  let places = 0;
-  for (let n = first; n < last; n++) places += Math.max(1, Math.round(intervalS(log, n) / usualS));
-  return places;
-}
-
-/** So few intervals may be of another length. */
-const oddShare = 0.1;
-
-function isEven(log: ToothLog, first: number, last: number, usualS: number): boolean {
-  let odd = 0;
-  for (let n = first; n < last; n++) {
-    const places = intervalS(log, n) / usualS;
-    if (places < 0.5 || Math.abs(places - Math.round(places)) > 0.25) odd++;
-  }
-  return odd <= oddShare * (last - first);
-}
-
-function repeats(log: ToothLog, first: number, last: number, turn: number): boolean {
-  if (first - turn < readableFrom(log, 0)) return false;
-  let odd = 0;
-  for (let n = first; n < last; n++) {
-    if (Math.abs(intervalS(log, n) / intervalS(log, n - turn) - 1) > 0.1) odd++;
-  }
-  return odd <= oddShare * (last - first);
 }

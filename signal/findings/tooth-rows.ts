@@ -1,0 +1,58 @@
+/** Rows of teeth in a log: where one begins, and how regular its intervals are. */
+import { readableFrom } from '@/signal/tooth-log';
+import type { ToothLog } from '@/signal/tooth-log';
+
+/** The first tooth of the unbroken row that began at `fromS` or later; the number of teeth where there is none. */
+export function firstSince(log: ToothLog, fromS: number): number {
+  let low = readableFrom(log, 0);
+  let high = log.count;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (log.riseS[middle & log.mask]! < fromS) low = middle + 1;
+    else high = middle;
+  }
+  return low;
+}
+
+function intervalS({ riseS, mask }: ToothLog, n: number): number {
+  return riseS[(n + 1) & mask]! - riseS[n & mask]!;
+}
+
+/** Positions from one tooth to another, where some of them are empty. */
+export function placesBetween(log: ToothLog, first: number, last: number, usualS: number): number {
+  let places = 0;
+  for (let n = first; n < last; n++) places += Math.max(1, Math.round(intervalS(log, n) / usualS));
+  return places;
+}
+
+/** So few intervals may be of another length. */
+const oddShare = 0.1;
+
+/** All but a few intervals are whole multiples of the usual one. */
+export function isEven(log: ToothLog, first: number, last: number, usualS: number): boolean {
+  let odd = 0;
+  for (let n = first; n < last; n++) {
+    const places = intervalS(log, n) / usualS;
+    if (places < 0.5 || Math.abs(places - Math.round(places)) > 0.25) odd++;
+  }
+  return odd <= oddShare * (last - first);
+}
+
+/** All but a few intervals are as they were a turn before. @param turn teeth of one turn. */
+export function repeats(log: ToothLog, first: number, last: number, turn: number): boolean {
+  if (first - turn < readableFrom(log, 0)) return false;
+  let odd = 0;
+  for (let n = first; n < last; n++) {
+    if (Math.abs(intervalS(log, n) / intervalS(log, n - turn) - 1) > 0.1) odd++;
+  }
+  return odd <= oddShare * (last - first);
+}
+
+/** The median of some of the intervals, s. */
+export function usualIntervalS(log: ToothLog, first: number, last: number): number {
+  const some = Math.min(last - first, 15);
+  const intervals = Float64Array.from({ length: some }, (_, i) =>
+    intervalS(log, first + Math.floor((i * (last - first)) / some)),
+  );
+  return intervals.sort()[some >> 1]!;
+}
