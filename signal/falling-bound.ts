@@ -1,34 +1,47 @@
 /** What silence since the last edge proves: the most that the shaft can turn at, and where the wheel can stand by now. */
-import { noGapAhead } from '@/signal/gap-sync';
 import type { Motion } from '@/signal/motion';
+
+/** Standard errors by which an edge is presumed to be off, at most: the bound must hold on noisy signals too. */
+const mostOff = 3;
 
 /** Largest number of positions that can still be silent after the last edge. */
 function silentPositions({ tracker, train }: Motion): number {
-  if (!tracker) {
-    const { sync, placer, uneven } = train;
-    const places = noGapAhead(sync) ? 1 : sync.missing + 1;
-    const nextIsWeak = train.synced && placer.nextIsOftenMissed();
-    return (places + (nextIsWeak ? 1 : 0)) * Math.max(1, uneven.widestPitch);
-  }
+  const { uneven, edgeError } = train;
+  const off = mostOff * Math.SQRT2 * edgeError;
+  if (!tracker) return train.silentPlaces * Math.max(1 + off, uneven.widestPitch);
   const even = 1 / tracker.table.stepsPerCycle;
-  const { widestState } = train.uneven;
-  return Number.isNaN(widestState) ? 2 * even : Math.min(1, Math.max(even, 1.1 * widestState));
+  const { widestState } = uneven;
+  return Math.min(1, Math.max(even + off, 1.1 * (Number.isNaN(widestState) ? 2 * even : widestState)));
 }
 
 /**
- * Falling bound, rpm, at `nowS`: 60 p / (N gear elapsed), p the positions that can be silent. NaN before any edge.
+ * Falling bound, rpm, at `nowS`: 60 p / (N gear elapsed), p the positions that can be silent. NaN before any edge. Once
+ * stopped, and just before, it is the slowest speed that can be told from standing: p over the time until stopped.
  * @param latencyS how long after its instant an edge is known: silence is proven only up to `nowS` less that.
  */
 export function speedAtMostRpm(motion: Motion, nowS: number, latencyS: number): number {
-  const { tracker, train, rig, lastEdgeS, state } = motion;
-  const since = tracker ? lastEdgeS : train.lastRiseS;
+  const { tracker, train, rig, lastEdgeS, state, stoppedAfterS } = motion;
   if (Number.isNaN(lastEdgeS)) return NaN;
-  const elapsed =
-    state === 'stopped'
-      ? motion.stoppedAfterS
-      : nowS - latencyS - (Number.isNaN(since) ? motion.quietSinceS : Math.max(since, 0));
+  const since = tracker ? lastEdgeS : train.lastRiseS;
+  const begin = Number.isNaN(since) ? motion.quietSinceS : Math.max(since, 0);
   const { pulsesPerTurn, gearRatio } = rig.wheel;
-  return (60 * silentPositions(motion)) / (pulsesPerTurn * gearRatio * Math.max(elapsed, 0));
+  const perPosition = 60 / (pulsesPerTurn * gearRatio);
+  const positions = silentPositions(motion);
+  if (state === 'stopped') return (perPosition * (tracker ? positions : train.silentAtEnd)) / stoppedAfterS;
+  return (perPosition * positions) / Math.min(stoppedAfterS, Math.max(nowS - latencyS - begin, 0));
+}
+
+/**
+ * Standard error of the speed shown while silence holds it down to `atMostRpm`, in the sense of all others: two of it hold
+ * what the shaft may turn at.
+ *
+ * What is shown is the bound, and nothing but standing still is certain below it, so that half of it holds everything. As
+ * the bound begins to bite it contradicts the last speed by little: an edge that is a little late. Then the doubt is as far
+ * as it has fallen below that speed, until, at two thirds of it, both meet.
+ */
+export function boundErrorRpm({ train }: Motion, atMostRpm: number): number {
+  const fallen = Math.abs(train.rpm) - atMostRpm;
+  return Math.max(Math.min(atMostRpm / 2, fallen), Math.min(atMostRpm / 2, train.errorRpm || 0));
 }
 
 /** Angle of the wheel at `nowS`, degrees; NaN where not known. */

@@ -25,7 +25,7 @@ export class PitchLearner {
   /** Variance of a tooth's place in a single turn, mean of all teeth, positions squared. */
   scatter = NaN;
   private readonly variances: Float64Array;
-  private readonly counts: Uint16Array;
+  readonly counts: Uint16Array;
 
   constructor(positions: number) {
     this.offsets = new Float64Array(positions);
@@ -132,36 +132,6 @@ export class PitchLearner {
       last = k;
     }
     return last >= 0;
-  }
-
-  /**
-   * The part of the pitches' variance, as shares of a pitch squared, that changes too slowly from tooth to tooth to be seen
-   * by third differences: a wheel that runs out. 0 where there is none.
-   */
-  slowUnevenness(): number {
-    const { offsets, counts } = this;
-    const n = offsets.length;
-    let steps = 0;
-    let seen = 0;
-    let thirds = 0;
-    let seenThirds = 0;
-    let row = 0;
-    for (let k = 0; k < n + 3; k++) {
-      const at = k % n;
-      row = counts[at] === 0 ? 0 : row + 1;
-      const d = offsets[at]!;
-      if (row < 2) continue;
-      const c = offsets[(k + n - 1) % n]!;
-      if (k < n) {
-        steps += (d - c) ** 2;
-        seen++;
-      }
-      if (row < 4) continue;
-      thirds += (d - 3 * c + 3 * offsets[(k + n - 2) % n]! - offsets[(k + 2 * n - 3) % n]!) ** 2;
-      seenThirds++;
-    }
-    const slow = steps / seen - (2 * thirds) / (20 * seenThirds);
-    return slow > 0 ? slow : 0;
   }
 
   private common(turn: Float64Array, shift: number): number {

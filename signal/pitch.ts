@@ -7,13 +7,16 @@
  * changes the speed by 0.1 % or more from tooth to tooth teach nothing.
  * Forward and reverse are learnt apart: teeth rise on other flanks.
  */
-import { PitchMemory } from '@/signal/pitch-memory';
 import { turnsNeeded } from '@/signal/pitch-learner';
+import { PitchMemory } from '@/signal/pitch-memory';
+import { slowUnevenness } from '@/signal/pitch-orders';
 import type { SpeedMeter } from '@/signal/speed-meter';
 import type { TurnListener, WheelFaceMeter } from '@/signal/wheel-face-meter';
 import type { WheelTracker } from '@/signal/wheel-tracker';
 
 const mostSpeedChange = 0.001;
+/** Pitches off by so much, slowly over the turn, are presumed until some turns were seen: a wheel that runs out a little. */
+const presumedSlow = 0.003;
 
 export type PitchStatus = {
   /** none: a wheel of one tooth, or of too many; learning; in-use: taken out of the speed. */
@@ -53,7 +56,9 @@ export class Pitch implements TurnListener {
     this.reverse = new PitchMemory(size, missing > 0);
     this.memory = this.forward;
     this.offsets = new Float64Array(size);
-    if (!this.isOff) face?.listeners.push(this);
+    if (this.isOff) return;
+    face?.listeners.push(this);
+    meter.error.hidden = this.hidden();
   }
 
   get status(): PitchStatus {
@@ -107,7 +112,12 @@ export class Pitch implements TurnListener {
     const variance = !best ? NaN : table ? best.scatter : best.scatter + best.rms() ** 2;
     this.marked = table;
     this.meter.remark(table, origin, variance);
-    this.meter.error.hidden = table ? 0 : (best?.slowUnevenness() ?? 0);
+    this.meter.error.hidden = table ? 0 : this.hidden();
+  }
+
+  private hidden(): number {
+    const { best } = this.memory;
+    return best ? slowUnevenness(best.offsets, best.counts) : presumedSlow ** 2;
   }
 
   turn(times: Float64Array, start: number, endS: number): void {
@@ -131,6 +141,6 @@ export class Pitch implements TurnListener {
       offsets[k] = n * (a * t + b * t * t) - i;
     }
     memory.take(offsets);
-    if (!this.marked) this.meter.error.hidden = memory.best?.slowUnevenness() ?? 0;
+    if (!this.marked) this.meter.error.hidden = this.hidden();
   }
 }

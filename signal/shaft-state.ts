@@ -4,7 +4,6 @@
  */
 import { Calm } from '@/signal/calm';
 import { pushSpeed } from '@/signal/columns';
-import { loseSync } from '@/signal/gap-sync';
 import type { SyncLoss } from '@/signal/gap-sync';
 import type { Direction, RigSetup, Settings } from '@/signal/model';
 import type { DirectionChange, SpeedColumns } from '@/signal/pipeline-types';
@@ -100,8 +99,7 @@ export class ShaftState {
 
   /** Nothing is known of where teeth stand, and no interval reaches across what happened at `t`. */
   protected forgetTeeth(because: SyncLoss, t: number): void {
-    loseSync(this.train.sync, because);
-    this.train.forget();
+    this.train.forget(because);
     this.ring?.forgetCycle();
     this.sense = 0;
     this.sameWaySinceS = t;

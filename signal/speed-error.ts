@@ -17,14 +17,17 @@ const margin = 1.1;
 /**
  * Edges that drift slowly against their places (a wheel in step with the sample grid, noise that a filter has slowed down)
  * hardly disagree from one tooth to the next and still do so over a stretch: so much of the variance that noise and
- * grid tell of an edge is held to, whatever was measured. In a turn the grid moves rising and falling edges alike.
+ * grid tell of an edge is held to, whatever was measured. In a turn the grid moves rising and falling edges alike; where
+ * turns hardly disagree at all, a few are off by nearly a whole sample and the rest by little.
  */
 const leastTold = 0.64;
-const leastToldOfTurn = 1.5;
+const toldOfTurn = 1.5;
+const inStep = 0.25;
+const toldInStep = 2.7;
 /** A change of speed within a window is believed where chance would make it this many standard errors only once in 400 times. */
 const believed = 3;
 /** What a line is off by on an even acceleration is taken off; so much of it stays in doubt. */
-const bentDoubt = 0.3;
+const bentDoubt = 0.1;
 
 export class SpeedError {
   readonly scatter: SpeedScatter;
@@ -65,16 +68,46 @@ export class SpeedError {
     }
     // What is uneven once a turn cancels over a whole one.
     const part = Math.max(0, 1 - (spans / positions) ** 2);
-    let square = (2 * tooth) / (spans * spans) + this.hidden * part;
+    let square = (this.ends(from) * tooth) / (spans * spans) + this.hidden * part;
     if (scatter.doubtAt >= from) square += (scatter.doubt / spans) ** 2;
     this.share = margin * Math.sqrt(square);
   }
 
+  /**
+   * Sum of the squares of the mean speed over that at either end: an edge that is off by a share of its pitch is late by
+   * the more the slower the shaft turned, as it does when it starts. 2 on a steady shaft.
+   */
+  private ends(from: number): number {
+    const { ring, perPositionS } = this;
+    const last = ring.next - 1;
+    if (last - ring.first < 2) return 2;
+    // By straight lines through the middles of intervals, not below a quarter of an interval's own speed.
+    let begin: number;
+    if (from > ring.first) begin = this.pace(from - 1, from + 1);
+    else {
+      const here = this.pace(from, from + 1);
+      begin = Math.max(here / 4, 2 * here - this.pace(from, from + 2));
+    }
+    const here = this.pace(last - 1, last);
+    const end = Math.max(here / 4, 2 * here - this.pace(last - 2, last));
+    return (1 / (begin * begin) + 1 / (end * end)) / (perPositionS * perPositionS);
+  }
+
+  /** Positions a second from one entry to another. */
+  private pace(from: number, to: number): number {
+    const { times, marks, mask } = this.ring;
+    return (marks[to & mask]! - marks[from & mask]!) / (times[to & mask]! - times[from & mask]!);
+  }
+
   /** Of a whole turn that begins with the entry `from`. @param edges its variance in variances of an edge. */
   ofTurn(from: number, edges: number, turns: TurnScatter): void {
-    const { positions, scatter } = this;
-    let edge = margin * margin * edges * turns.variance;
-    if (this.told > 0) edge = Math.max(edge, leastToldOfTurn * this.told);
+    const { positions, scatter, told } = this;
+    const { variance } = turns;
+    let edge = margin * margin * edges * variance;
+    if (told > 0) {
+      const least = variance < inStep * told ? toldInStep : toldOfTurn;
+      edge = Math.max(edge, (least * told * this.ends(from)) / 2);
+    }
     let square = edge / (positions * positions);
     if (scatter.doubtAt >= from && scatter.isSlip) square += (scatter.doubt / positions) ** 2;
     this.share = Math.sqrt(square);

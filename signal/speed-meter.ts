@@ -56,6 +56,16 @@ export class SpeedMeter {
     return this.ring.count;
   }
 
+  /** Instant of the newest tooth, s, and time for one position as of the latest speed, s; NaN: none. */
+  get newestS(): number {
+    const { ring } = this;
+    return ring.count > 0 ? ring.times[(ring.next - 1) & ring.mask]! : NaN;
+  }
+
+  get perPositionS(): number {
+    return this.factor / this.latest.rpm;
+  }
+
   /** The only tooth so far is moved in time: its filter delay became known. */
   retimeFirst(t: number): void {
     const { ring } = this;

@@ -1,7 +1,7 @@
 /** The state of a signal path at its last sample, as plain values. */
 import type { ChannelPath } from '@/signal/channel-path';
 import type { Finding, Margin } from '@/signal/model';
-import { angleDeg, speedAtMostRpm } from '@/signal/falling-bound';
+import { angleDeg, boundErrorRpm, speedAtMostRpm } from '@/signal/falling-bound';
 import type { Motion } from '@/signal/motion';
 import type { ChannelStatus, PipelineStatus } from '@/signal/pipeline-types';
 
@@ -22,8 +22,7 @@ export function statusOf(
     nowS,
     state: motion.state,
     speedRpm: known(bounded ? Math.sign(train.rpm) * atMost : train.rpm),
-    // Only the bound is known then: the shaft turns at anything from 0 up to it.
-    speedErrorRpm: known(bounded ? atMost : train.errorRpm),
+    speedErrorRpm: known(bounded ? boundErrorRpm(motion, atMost) : train.errorRpm),
     speedAtMostRpm: known(atMost),
     direction: motion.direction,
     pulses: motion.pulses,

@@ -7,7 +7,8 @@ export class Unevenness {
   private readonly fading: number;
 
   constructor(pulsesPerTurn: number) {
-    this.fading = 1 - 1 / (2 * pulsesPerTurn);
+    // The widest comes once a turn, and must still be known when it comes again.
+    this.fading = 1 - 1 / (8 * pulsesPerTurn);
     this.reset();
   }
 
