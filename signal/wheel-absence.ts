@@ -10,6 +10,8 @@ export class WheelAbsence {
   /** Turns in a row in which nothing came where the tooth should be. */
   readonly inRow: Uint16Array;
   readonly score: Float32Array;
+  /** Turns in which the tooth did not come since it first failed to. */
+  readonly turns: Uint32Array;
   /** Where the tooth of each position should have come when it last did not, s, and when that began. */
   readonly missedS: Float64Array;
   readonly sinceS: Float64Array;
@@ -19,14 +21,25 @@ export class WheelAbsence {
   constructor(positions: number) {
     this.inRow = new Uint16Array(positions);
     this.score = new Float32Array(positions);
+    this.turns = new Uint32Array(positions);
     this.missedS = new Float64Array(positions).fill(NaN);
     this.sinceS = new Float64Array(positions).fill(NaN);
   }
 
   clear(): void {
+    this.missedS.fill(NaN);
     this.inRow.fill(0);
     this.score.fill(0);
     this.suspects = 0;
+  }
+
+  /** A tooth near `place` (in positions) has failed since `fromS`. */
+  failedNear(place: number, fromS: number): boolean {
+    const { missedS } = this;
+    const { length } = missedS;
+    for (let k = Math.floor(place) - 1; k <= Math.floor(place) + 2; k++)
+      if (missedS[(k + length) % length]! >= fromS) return true;
+    return false;
   }
 
   /** The tooth at `position` came. */
@@ -44,8 +57,10 @@ export class WheelAbsence {
     if (score === 0) {
       this.suspects++;
       this.sinceS[position] = dueS;
+      this.turns[position] = 0;
     }
     this.inRow[position] = Math.min(65_535, this.inRow[position]! + 1);
+    this.turns[position] = this.turns[position]! + 1;
     this.score[position] = Math.min(mostScore, score + 1);
     this.missedS[position] = dueS;
   }

@@ -30,8 +30,8 @@ export class ExtraPulses {
   private readonly positions: number;
   private readonly list: (ExtraPlace & { lastCount: number })[] = [];
   private readonly recentS = new Float64Array(mostRecent).fill(NaN);
-  /** How far after the tooth before it each came, share of the pitch. */
-  private readonly recentShare = new Float64Array(mostRecent);
+  /** Where each came, in positions as they are counted. */
+  private readonly recentPlace = new Float64Array(mostRecent);
 
   constructor(positions: number) {
     this.positions = positions;
@@ -45,14 +45,11 @@ export class ExtraPulses {
   /** A pulse at the instant `t`, `count` positions after the count began (not whole). */
   note(count: number, t: number): void {
     this.recentS[this.total % mostRecent] = t;
-    this.recentShare[this.total % mostRecent] = count - Math.floor(count);
+    this.recentPlace[this.total % mostRecent] = count % this.positions;
     this.total++;
     const { positions, list } = this;
     const place = count % positions;
-    const old = list.find((entry) => {
-      const off = Math.abs(entry.place - place);
-      return Math.min(off, positions - off) <= sameWithin;
-    });
+    const old = list.find((entry) => this.apart(entry.place, place) <= sameWithin);
     if (old) {
       const turns = Math.round((count - old.lastCount) / positions);
       // Two in one pitch, as bounce makes them, are one visit.
@@ -79,21 +76,22 @@ export class ExtraPulses {
     return found;
   }
 
-  /**
-   * Pulses since `fromS` (at most 64 are remembered).
-   * @param least, most how far after the tooth before them, share of the pitch.
-   */
-  countSince(fromS: number, least: number, most: number): number {
-    const { recentS, recentShare } = this;
-    let count = 0;
+  /** What came since `fromS`, s, in no order; at most 64 are remembered. */
+  since(fromS: number): { t: number; place: number }[] {
+    const found: { t: number; place: number }[] = [];
     for (let i = 0; i < mostRecent; i++)
-      if (recentS[i]! >= fromS && recentShare[i]! >= least && recentShare[i]! <= most) count++;
-    return count;
+      if (this.recentS[i]! >= fromS) found.push({ t: this.recentS[i]!, place: this.recentPlace[i]! });
+    return found;
   }
 
-  /** The last pulse, s; NaN: none yet. */
-  get lastS(): number {
-    return this.total === 0 ? NaN : this.recentS[(this.total - 1) % mostRecent]!;
+  /** Whether two places are one and the same thing on the rim. */
+  isSame(a: number, b: number): boolean {
+    return this.apart(a, b) <= sameWithin;
+  }
+
+  private apart(a: number, b: number): number {
+    const off = Math.abs(a - b);
+    return Math.min(off, this.positions - off);
   }
 
   private scoreAt(entry: { score: number; lastCount: number }, count: number): number {

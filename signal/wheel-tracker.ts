@@ -156,9 +156,11 @@ export class WheelTracker {
     const nextS = waitT[end + 1]! - waitT[end]!;
     const stretchS = waitT[end]! - this.lastT;
     // The mean of both sides follows a shaft that speeds up or slows down meanwhile; that of the last teeth is better on a
-    // wheel that is uneven all round.
-    for (let attempt = 0; attempt < 2; attempt++) {
-      const beforeS = attempt === 0 ? pitchS : this.meanPitchS;
+    // wheel that is uneven all round, while the shaft turns steadily.
+    const { meanPitchS } = this;
+    const isSteady = pitchS < steadyWithin * meanPitchS && meanPitchS < steadyWithin * pitchS;
+    for (let attempt = 0; attempt < (isSteady ? 2 : 1); attempt++) {
+      const beforeS = attempt === 0 ? pitchS : meanPitchS;
       if (nextS < regularFrom * beforeS || nextS > regularTo * beforeS) continue;
       const each = attempt === 0 ? (beforeS + nextS) / 2 : beforeS;
       const spans = this.wholeSpans(stretchS / each, end);
@@ -175,14 +177,18 @@ export class WheelTracker {
     return Math.abs(pitches - whole) <= off ? whole : 0;
   }
 
-  /** The last three intervals are alike, and not as long as two or three pitches, which every second tooth would be. */
+  /** The last three intervals are alike, and the pulses that wait do not come at every second or third tooth. */
   private isAnotherSpeed(): boolean {
-    const { waitT, waiting: n } = this;
+    const { waitT, waiting: n, pitchS } = this;
     const a = waitT[n - 1]! - waitT[n - 2]!;
     const b = waitT[n - 2]! - waitT[n - 3]!;
     const c = waitT[n - 3]! - waitT[n - 4]!;
     if (Math.max(a, b, c) > steadyWithin * Math.min(a, b, c)) return false;
-    return this.wholeSpans((a + b + c) / (3 * this.pitchS), 0) < 2;
+    for (let i = 0; i < n; i++) {
+      const pitches = (waitT[i]! - (i === 0 ? this.lastT : waitT[i - 1]!)) / pitchS;
+      if (this.wholeSpans(pitches, 0) < 2) return true;
+    }
+    return false;
   }
 
   /**
@@ -191,7 +197,9 @@ export class WheelTracker {
    */
   private settle(end: number, spans: number, each: number): boolean {
     const { waitT, waitSwingV, lastT: fromT, count: fromCount } = this;
-    if (!this.readPlaces(end, spans, each)) return false;
+    const nextS = waitT[end + 1]! - waitT[end]!;
+    const alike = nextS < steadyWithin * this.pitchS && this.pitchS < steadyWithin * nextS;
+    if (!this.readPlaces(end, spans, each, alike)) return false;
     let done = 0;
     for (let i = 0; i <= end; i++) {
       const place = i === end ? spans : this.waitPlace[i]!;
@@ -213,8 +221,11 @@ export class WheelTracker {
     return true;
   }
 
-  /** Writes the place of each of the `end` pulses that wait, 0 for one that is no tooth. */
-  private readPlaces(end: number, spans: number, each: number): boolean {
+  /**
+   * Writes the place of each of the `end` pulses that wait, 0 for one that is no tooth.
+   * @param alike the pitch is the same on both sides. @returns false where that reading is too odd to be believed.
+   */
+  private readPlaces(end: number, spans: number, each: number, alike: boolean): boolean {
     const { waitT, waitPlace, lastT } = this;
     let inOrder = end === spans - 1;
     for (let i = 0; i < end && inOrder; i++)
@@ -230,7 +241,11 @@ export class WheelTracker {
       else extra++;
     }
     const empty = spans - 1 - (end - extra);
-    return extra === 0 || empty === 0 || this.count >= teethForBoth;
+    if (extra === 0) return true;
+    // Several pulses too many, or one beside empty places: only where all is well known, and in a short stretch.
+    if (extra === 1 && empty === 0) return true;
+    if (!alike || spans > this.missing + mostEmpty) return false;
+    return empty === 0 || (extra === 1 && this.count >= teethForBoth);
   }
 
   private noteLong(spans: number): void {
@@ -267,7 +282,11 @@ export class WheelTracker {
     this.candidate = -1;
     this.gapFilled = false;
     this.owed = 0;
-    if (this.zero >= 0) seatOf?.lose();
+    if (this.zero >= 0) {
+      // What came in the gap were teeth.
+      seatOf?.lose();
+      this.extras.lose();
+    }
     this.zero = this.relative;
     if (!seatOf) return;
     seatOf.start(this.isReversed);

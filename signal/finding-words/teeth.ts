@@ -1,5 +1,5 @@
 /** What is wrong with single edges and teeth, and what usually mends it. */
-import { short, time, whole } from '@/signal/finding-words/values';
+import { short, time } from '@/signal/finding-words/values';
 import type { Wording } from '@/signal/finding-words/values';
 
 export const teethWords = {
@@ -7,9 +7,5 @@ export const teethWords = {
     message: `Channel ${channel} counts some teeth more than once: ${short(evidence.shortPercent)} % of its edges follow the one before within a quarter of a tooth, the closest after ${time(evidence.shortestS)}, so the speed reads too high.`,
     remedy:
       'Widen the band or set a hold-off a little longer than the bounce, and look for a loose connector, a weak pull-up or a long unshielded cable.',
-  }),
-  'missing-tooth': (channel, evidence) => ({
-    message: `The tooth at position ${whole(evidence.position)} did not show on channel ${channel} in ${whole(evidence.turnsMissed)} turns running.`,
-    remedy: 'Look at that tooth for damage or dirt, narrow the air gap, or lower the operate point.',
   }),
 } satisfies Record<string, Wording>;

@@ -2,6 +2,7 @@ import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import type { WheelLane, WheelLanes } from '@/signal/findings/wheel-lanes';
 import { wordsFor } from '@/signal/finding-words';
+import type { WheelAbsence } from '@/signal/wheel-absence';
 
 /** Points that accuse a tooth, and below which it is let go: three turns in a row, or every other one for long. */
 const opensAt = 3;
@@ -11,6 +12,7 @@ const fewestPositions = 4;
 /** Where more places than this share seem empty, it is not the teeth: bounce or a wrong count looks like that. */
 const mostEmptyShare = 0.25;
 const mostAtOnce = 4;
+const shadowShare = 0.7;
 
 /** One and the same tooth does not show, turn after turn. Starts, stops and the wheel's own gap are none of it. */
 export class MissingToothRule implements FindingRule {
@@ -34,10 +36,12 @@ export class MissingToothRule implements FindingRule {
   private look(lane: WheelLane, nowS: number): void {
     const { absence, path, counts, tracker } = lane;
     const { name } = path.channel;
-    if (absence.suspects > Math.max(1, mostEmptyShare * counts.length)) return;
+    let failing = 0;
+    for (const score of absence.score) if (score >= staysAt) failing++;
+    if (failing > Math.max(2, mostEmptyShare * counts.length)) return;
     for (let place = 0; place < counts.length; place++) {
       const score = absence.score[place]!;
-      if (score < staysAt) continue;
+      if (score < staysAt || isShadowed(absence, place)) continue;
       const position = lane.numberOf(place);
       const key = `${name} ${position}`;
       if (score < opensAt && !this.accused.has(key)) continue;
@@ -45,8 +49,9 @@ export class MissingToothRule implements FindingRule {
       if (!latch) continue;
       const evidence = {
         position,
+        positions: counts.length,
         numbering: this.numbering(counts[place]!),
-        turnsMissed: absence.inRow[place]!,
+        turnsMissed: absence.turns[place]!,
         toothS: tracker.pitchS,
       };
       latch.raise(
@@ -69,7 +74,7 @@ export class MissingToothRule implements FindingRule {
   /** A tooth beside a gap, or a gap as wide as the wheel's own, that was there from the start: it may be the other one. */
   private numbering(timesSeen: number): string {
     if (!this.hasGap) return 'relative';
-    return timesSeen > 0 ? 'fixed to the wheel' : 'never seen since the gap was found';
+    return timesSeen > 0 ? 'fixed to the wheel' : 'fixed since it went missing';
   }
 
   private latchFor(key: string): FindingLatch | null {
@@ -81,4 +86,12 @@ export class MissingToothRule implements FindingRule {
     this.accused.set(key, free);
     return free;
   }
+}
+
+/** Where a tooth is gone, noise may take the next flank away now and then: the neighbour fails far more often. */
+function isShadowed({ turns, score }: WheelAbsence, place: number): boolean {
+  const { length } = score;
+  for (const neighbour of [(place + 1) % length, (place + length - 1) % length])
+    if (score[neighbour]! >= staysAt && turns[place]! < shadowShare * turns[neighbour]!) return true;
+  return false;
 }

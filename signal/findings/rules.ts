@@ -4,13 +4,11 @@ import { ClockDriftRule } from '@/signal/findings/clock-drift';
 import { DeadChannelRule } from '@/signal/findings/dead-channel';
 import { EdgeBounceRule } from '@/signal/findings/edge-bounce';
 import { LostSamplesRule } from '@/signal/findings/lost-samples';
-import { MissingToothRule } from '@/signal/findings/missing-tooth';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { WheelLanes } from '@/signal/findings/wheel-lanes';
+import { wheelRules } from '@/signal/findings/wheel-rules';
 
 /** All rules, in the order in which their findings are listed. */
 export function createRules(context: RuleContext): FindingRule[] {
-  const wheels = new WheelLanes(context);
   return [
     // On the way from the board.
     new BoardRestartRule(),
@@ -20,10 +18,9 @@ export function createRules(context: RuleContext): FindingRule[] {
     new DeadChannelRule(context),
     // The signal of one channel.
     ...channelRules(context),
-    // Edges and teeth.
+    // Edges.
     new EdgeBounceRule(context),
-    wheels,
-    new MissingToothRule(context, wheels),
-    // The wheel.
+    // Teeth and the wheel.
+    ...wheelRules(context),
   ];
 }

@@ -30,6 +30,8 @@ export class WheelLanes implements FindingRule {
   private readonly context: RuleContext;
   private readonly readers: LogReader[] = [];
   private readonly missedBefore: number[];
+  /** Since when the first channel's teeth have been counted without a break, s; Infinity: they are not. */
+  countedSinceS = Infinity;
 
   constructor(context: RuleContext) {
     const { motion, paths, lanes, rig } = context;
@@ -51,8 +53,10 @@ export class WheelLanes implements FindingRule {
     this.missedBefore = this.lanes.map(() => 0);
   }
 
-  tick(): void {
+  tick(nowS: number): void {
     const { motion } = this.context;
+    if (!motion.train.placer.tracker.isLocked) this.countedSinceS = Infinity;
+    else if (this.countedSinceS === Infinity) this.countedSinceS = nowS;
     for (const reader of this.readers) reader.read(motion.direction === 'stopped', motion.reversed);
     for (let i = 0; i < this.lanes.length; i++) {
       const { tracker, path } = this.lanes[i]!;

@@ -1,0 +1,128 @@
+import { FindingLatch } from '@/signal/findings/rule';
+import type { FindingRule } from '@/signal/findings/rule';
+import type { WheelLane, WheelLanes } from '@/signal/findings/wheel-lanes';
+import { wordsFor } from '@/signal/finding-words';
+import type { ExtraPlace } from '@/signal/wheel-extras';
+
+/** Points of a place (one a turn in which a pulse came there) that accuse it, and below which it is let go. */
+const placeOpensAt = 3;
+const placeStaysAt = 1.5;
+/** More places than this share of the wheel's, and than two, are bounce: that has a rule of its own. */
+const mostPlacesShare = 0.25;
+/** Pulses that come anywhere: two at two places within the last three seconds or eight turns, whichever is longer, open. */
+const straysOpenAt = 2;
+const leastWindowS = 3;
+const windowTurns = 8;
+/** Nearer to a tooth than this, in pitches, a stray pulse is bounce of its flank. */
+const clearOfTooth = 0.15;
+const mostStraysShare = 0.2;
+
+/**
+ * Pulses that are no teeth: at the same place of the wheel turn after turn (a burr, a scratch, a lobe of a magnet), or
+ * now and then anywhere (a chip, a spike on the wire). They are told by the regular pitches around them, so that neither
+ * a start nor a reversal makes one. Where a tooth fails, noise may cross the band instead of it: that is the tooth's matter.
+ */
+export class ExtraPulseRule implements FindingRule {
+  readonly latches: FindingLatch[];
+  private readonly wheels: WheelLanes;
+
+  constructor(wheels: WheelLanes) {
+    this.wheels = wheels;
+    this.latches = wheels.lanes.map(() => new FindingLatch(2));
+  }
+
+  tick(nowS: number): void {
+    const { lanes, countedSinceS } = this.wheels;
+    for (let i = 0; i < lanes.length; i++) {
+      const latch = this.latches[i]!;
+      if (lanes[i]!.extras.total > 0 && nowS > countedSinceS) this.look(lanes[i]!, latch, nowS);
+      latch.rest(nowS);
+    }
+  }
+
+  private look(lane: WheelLane, latch: FindingLatch, nowS: number): void {
+    const { extras, tracker, absence } = lane;
+    const { positions, missing, count, pitchS, isLocked } = tracker;
+    if (!isLocked) return;
+    const windowS = Math.max(leastWindowS, windowTurns * positions * pitchS);
+    const fromS = Math.max(nowS - windowS, this.wheels.countedSinceS);
+    // A turn more, for the tooth that failed just before.
+    const failedFromS = fromS - positions * pitchS;
+    const isOwn = ({ place }: { place: number }) => !absence.failedNear(tracker.onWheel(place), failedFromS);
+    const recent = extras.since(fromS).filter(isOwn);
+    if (recent.length === 0) return;
+    const places = extras.placesAt(count, latch.open ? placeStaysAt : placeOpensAt).filter(isOwn);
+    if (places.length > 0 && places.length <= Math.max(2, mostPlacesShare * positions)) {
+      places.sort((a, b) => b.score - a.score || a.place - b.place);
+      const evidence = placed(lane, places, recent.length, windowS);
+      this.raise(lane, latch, evidence, places[0]!.firstS, places[0]!.lastS, nowS);
+      return;
+    }
+    const strays = recent.filter(({ place }) => isClear(place - Math.floor(place)));
+    const teeth = Math.min(count, windowS / pitchS) * (1 - missing / positions);
+    if (strays.length === 0 || recent.length > mostStraysShare * teeth) return;
+    // Pulses at one place only are waited for: the third one tells that it is the wheel's.
+    const scattered = strays.some(({ place }) => !extras.isSame(place, strays[0]!.place));
+    const isOpen = latch.open?.evidence.where === 'anywhere';
+    if (!isOpen && !(strays.length >= straysOpenAt && scattered)) return;
+    const evidence = {
+      where: 'anywhere',
+      pulses: strays.length,
+      windowS,
+      extraPercent: (100 * strays.length) / teeth,
+    };
+    const instants = strays.map(({ t }) => t);
+    this.raise(lane, latch, evidence, Math.min(...instants), Math.max(...instants), nowS);
+  }
+
+  private raise(
+    { path }: WheelLane,
+    latch: FindingLatch,
+    evidence: Record<string, number | string>,
+    from: number,
+    at: number,
+    nowS: number,
+  ): void {
+    const { name } = path.channel;
+    latch.raise(
+      {
+        code: 'extra-pulse',
+        channel: name,
+        from,
+        severity: evidence.where === 'anywhere' ? 'warn' : 'fault',
+        outcome: 'found',
+        at,
+        evidence,
+        ...wordsFor('extra-pulse', name, evidence),
+        causedBy: null,
+      },
+      nowS,
+    );
+  }
+}
+
+function placed(
+  { tracker }: WheelLane,
+  places: readonly ExtraPlace[],
+  pulses: number,
+  windowS: number,
+): Record<string, number | string> {
+  const { place, turns } = places[0]!;
+  const { positions, missing } = tracker;
+  const onWheel = tracker.onWheel(place);
+  return {
+    where: places.length === 1 ? 'one place' : 'several places',
+    places: places.length,
+    afterPosition: Math.floor(onWheel),
+    pitchPercent: 100 * (onWheel - Math.floor(onWheel)),
+    positions,
+    numbering: missing > 0 && tracker.position >= 0 ? 'fixed to the wheel' : 'relative',
+    turns,
+    pulses,
+    windowS,
+  };
+}
+
+function isClear(share: number): boolean {
+  return share > clearOfTooth && share < 1 - clearOfTooth;
+}

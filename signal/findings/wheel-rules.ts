@@ -1,0 +1,10 @@
+/** The rules of teeth and wheel. They share what each channel sees of the wheel. */
+import { ExtraPulseRule } from '@/signal/findings/extra-pulse';
+import { MissingToothRule } from '@/signal/findings/missing-tooth';
+import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import { WheelLanes } from '@/signal/findings/wheel-lanes';
+
+export function wheelRules(context: RuleContext): FindingRule[] {
+  const wheels = new WheelLanes(context);
+  return [wheels, new MissingToothRule(context, wheels), new ExtraPulseRule(wheels)];
+}
