@@ -5,13 +5,15 @@
  * With k positions passed in T seconds the shaft turns at 60 k / (N gear T) rpm. Before the first whole turn `turn` takes
  * what there is, `window` takes two teeth at least. What it says of its error is in `speed-error.ts`.
  */
+import { fitTurns, positionsForFit } from '@/signal/acceleration-fit';
+import type { Acceleration } from '@/signal/acceleration-fit';
 import type { SpeedMethod } from '@/signal/model';
 import { SpeedError } from '@/signal/speed-error';
 import { SpeedRing } from '@/signal/speed-ring';
 import { WholeTurn } from '@/signal/whole-turn';
 import { WindowLine } from '@/signal/window-line';
 
-/** Two turns are kept of wheels up to this size, one of larger ones. */
+/** Two turns are kept of wheels up to this size, one of larger ones, whose acceleration is not told. */
 const mostKeptTwice = 4096;
 
 export type Speed = { rpm: number; errorRpm: number };
@@ -36,7 +38,7 @@ export class SpeedMeter {
   constructor(method: SpeedMethod, windowS: number, turnPositions: number, gearRatio: number) {
     this.method = method;
     this.turnPositions = turnPositions;
-    this.kept = (turnPositions > mostKeptTwice ? 1 : 2) * turnPositions + 1;
+    this.kept = 1 + (turnPositions > mostKeptTwice ? turnPositions : positionsForFit(turnPositions));
     this.factor = 60 / (turnPositions * gearRatio);
     this.error = new SpeedError(this.ring, turnPositions);
     this.turn = new WholeTurn(this.ring, turnPositions);
@@ -132,6 +134,12 @@ export class SpeedMeter {
     latest.rpm = this.factor / error.perPositionS;
     latest.errorRpm = latest.rpm * error.share;
     return true;
+  }
+
+  /** Of the wheel, as of the newest tooth: computed when asked. */
+  acceleration(): Acceleration {
+    const { told } = this.error;
+    return fitTurns(this.ring, this.turnPositions, told > 0 ? Math.sqrt(told) : 0);
   }
 
   /** Time for one position and its error, from the entry `from` to the newest. */

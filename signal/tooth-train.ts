@@ -36,15 +36,18 @@ export class ToothTrain {
   /** Positions that could still be silent when the teeth were last forgotten. */
   silentAtEnd = 1;
   private readonly speed: ToothSpeed;
+  /** rpm of the shaft for one turn of the wheel a second. */
+  private readonly rpmPerTurns: number;
   private troughV = NaN;
 
   /** @param missing positions in a row that the wheel lacks. */
   constructor(rig: RigSetup, missing: number, settings: Settings, columns: SpeedColumns) {
-    const { pulsesPerTurn, missingPulses } = rig.wheel;
+    const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
     this.sync = createGapSync(pulsesPerTurn, missing);
     this.face = pulsesPerTurn <= mostPositions ? new WheelFaceMeter(pulsesPerTurn, missingPulses) : null;
     this.placer = new ToothPlacer(this.sync, this.face, missingPulses);
     this.uneven = new Unevenness(pulsesPerTurn);
+    this.rpmPerTurns = 60 / gearRatio;
     const { tracker } = this.placer;
     this.speed = new ToothSpeed(rig, settings, this.sync, this.uneven, tracker, this.face, columns);
   }
@@ -52,6 +55,16 @@ export class ToothTrain {
   /** What is learnt of the wheel's own spacing. */
   get pitch(): PitchStatus {
     return this.speed.pitch.status;
+  }
+
+  /** rpm per second, signed as the speed is; NaN where not known: less than one and a half turns since the last break. */
+  get accelerationRpmPerS(): number {
+    return this.sign * this.rpmPerTurns * this.speed.meter.acceleration().perS2;
+  }
+
+  /** Its standard error. */
+  get accelerationErrorRpmPerS(): number {
+    return this.rpmPerTurns * this.speed.meter.acceleration().errorPerS2;
   }
 
   /** Missing positions of the wheel that were passed. */
