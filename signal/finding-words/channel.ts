@@ -1,8 +1,15 @@
 /** What is wrong with the signal of one channel, and what usually mends it. */
 import { short, time, whole } from '@/signal/finding-words/values';
-import type { Wording } from '@/signal/finding-words/values';
+import type { Evidence, Wording } from '@/signal/finding-words/values';
 
 export const channelWords = {
+  'weak-swing': (channel, evidence) => ({
+    message: `${swingMessage(channel, evidence)}.`,
+    remedy:
+      evidence.filterPercent === undefined
+        ? swingRemedy(evidence)
+        : `Raise the cutoff of the filter, which leaves ${short(evidence.filterPercent)} % of the teeth at this speed.`,
+  }),
   clipping: (channel, evidence) => ({
     message: `Channel ${channel} stands at the ${evidence.rail} end of its range for ${short(evidence.railPercent)} % of the time, so its peaks are cut off.`,
     remedy: 'Widen the air gap, take a less sensitive sensor, or put an attenuator before the input.',
@@ -78,4 +85,38 @@ export const channelWords = {
 /** "43.6 %" of a share. */
 function percent(share: number | string | undefined): string {
   return typeof share === 'number' ? `${short(100 * share)} %` : String(share);
+}
+
+function swingMessage(channel: string | null, evidence: Evidence): string {
+  const { against, marginV, swingV } = evidence;
+  switch (against) {
+    case 'missed':
+      return `About ${short(evidence.emptyPerTurn)} teeth a turn of channel ${channel} do not reach the band of ${short(evidence.releaseV)} to ${short(evidence.operateV)} V, so they are not counted`;
+    case 'short':
+      return `Channel ${channel} goes up and down between ${short(evidence.lowV)} and ${short(evidence.highV)} V and never crosses its band of ${short(evidence.releaseV)} to ${short(evidence.operateV)} V, so nothing is counted`;
+    case 'band': {
+      const sigmas =
+        evidence.marginSigmas === undefined ? '' : ` (${short(evidence.marginSigmas)} times the noise)`;
+      return `The worst tooth of channel ${channel} stands only ${short(marginV)} V${sigmas} beyond the band`;
+    }
+    case 'noise':
+      return `The swing of channel ${channel}, ${short(swingV)} V, is only ${short(evidence.swingSigmas)} times its noise, too little for a band that keeps the noise out`;
+    case 'range':
+      return `The swing of channel ${channel} is ${short(swingV)} V, ${short(evidence.swingPercentOfSupply)} % of the sensor's supply`;
+    case 'pull-up':
+      return `Channel ${channel} reaches only ${short(evidence.highV)} V where its line should be pulled up to ${short(evidence.expectedHighV)} V`;
+    default:
+      return `The swing of channel ${channel} has fallen to ${short(swingV)} V, ${short(evidence.percentOfUsual)} % of what was usual at this speed`;
+  }
+}
+
+function swingRemedy({ against }: Evidence): string {
+  if (against === 'pull-up')
+    return 'Fit a pull-up of 1 to 10 kilohm to the logic supply, and look for what loads the line.';
+  if (against === 'short')
+    return 'Narrow the air gap or move the band into the signal; where the shaft only rocks, turn it and look again.';
+  const gap = 'Narrow the air gap or take a stronger magnet';
+  return against === 'before'
+    ? `${gap}, and look for a bracket that gave way, heat and dirt.`
+    : `${gap}, or fit the band to the signal and quieten the noise.`;
 }

@@ -33,8 +33,10 @@ export class TurnMeans {
   steady = false;
   private readonly path: ChannelPath;
   private readonly context: RuleContext;
-  private readonly turn: number;
-  private readonly positions: number;
+  /** Teeth of one turn; NaN for a channel that carries anything else. */
+  readonly turn: number;
+  /** Places of one turn, those without a tooth included. */
+  readonly positions: number;
   private disturbances = -1;
   private begin = 0;
   private lookedS = -Infinity;

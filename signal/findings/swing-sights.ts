@@ -1,0 +1,131 @@
+/** What can be wrong with a swing, each against another thing: the band, the noise, the supply. */
+import type { ChannelPath } from '@/signal/channel-path';
+import type { TurnMeans } from '@/signal/findings/turn-means';
+import { isEven, placesBetween, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
+import type { Evidence } from '@/signal/finding-words/values';
+import type { Finding } from '@/signal/model';
+
+export type SwingSight = {
+  /** By which one look is worse than another. */
+  size: number;
+  severity: Finding['severity'];
+  /** Where to look, s. */
+  atS: number;
+  evidence: Evidence;
+};
+
+/** What the worst tooth must stand beyond a fixed band: sigmas of noise, or share of the swing. */
+const marginSigmas = 4;
+const marginShare = 0.05;
+/** Teeth that a fixed band did not count are a matter of swing where so large a share of the places is empty. */
+const manyEmpty = 0.2;
+/** Peak to peak in sigmas at which a fitted band wants more than half of the swing for its hysteresis. */
+const cappedSigmas = 20;
+/** Of what the line is pulled up to. */
+const highShare = 0.5;
+/** Swing of a linear sensor over its supply: 40 codes of 12 bits. */
+const tinyShare = 0.01;
+/** An open finding asks for this much more before it goes. */
+const more = 1.25;
+
+/**
+ * The worst tooth of the last turns against a fixed band, those that were not counted included.
+ * @param rejected crossings of mid since the last look that did not come as far as the band's end.
+ */
+export function againstBand(
+  path: ChannelPath,
+  means: TurnMeans,
+  rejected: number,
+  open: boolean,
+): SwingSight | null {
+  const { log, operateV, releaseV, noiseV } = path;
+  const { first, end, swingV } = means;
+  // Edges that bounce leave teeth that are none.
+  const usualS = usualIntervalS(log, first, end);
+  const even = isEven(log, first, end, usualS);
+  if (!even && !repeats(log, first, end, means.turn)) return null;
+  let worstV = Infinity;
+  let atS = NaN;
+  for (let n = first; n < end; n++) {
+    const i = n & log.mask;
+    const beyondV = Math.min(log.peakV[i]! - operateV, releaseV - log.troughV[i]!);
+    if (!(beyondV < worstV)) continue;
+    worstV = beyondV;
+    atS = (log.riseS[i]! + log.fallS[i]!) / 2;
+  }
+  const expected = Math.ceil(((end - first) * means.positions) / means.turn);
+  const places = even ? placesBetween(log, first, end, usualS) : expected;
+  const empty = Math.max(0, places - expected);
+  if (empty > 0 && (rejected >= empty || empty > manyEmpty * places)) {
+    const evidence = {
+      against: 'missed',
+      ...(path.worstMarginV < 0 && { marginV: path.worstMarginV }),
+      emptyPerTurn: (empty * means.positions) / places,
+      swingV,
+      operateV,
+      releaseV,
+    };
+    return { size: 10, severity: 'fault', atS: longestGapS(path, means), evidence };
+  }
+  const least = Math.max(marginShare * swingV, noiseV > 0 ? marginSigmas * noiseV : 0);
+  if (!(worstV < (open ? more : 1) * least)) return null;
+  const evidence = {
+    against: 'band',
+    marginV: worstV,
+    ...(noiseV > 0 && { marginSigmas: worstV / noiseV }),
+    swingV,
+    operateV,
+    releaseV,
+  };
+  return { size: 1 + (least - worstV) / least, severity: 'warn', atS, evidence };
+}
+
+/** Noise so large that a fitted band cannot be as wide as it should. */
+export function againstNoise({ noiseV }: ChannelPath, means: TurnMeans, open: boolean): SwingSight | null {
+  const sigmas = means.swingV / noiseV;
+  if (!(sigmas < (open ? more : 1) * cappedSigmas)) return null;
+  const evidence = { against: 'noise', swingV: means.swingV, noiseV, swingSigmas: sigmas };
+  const severity = sigmas < 12 ? 'fault' : 'warn';
+  return { size: cappedSigmas / sigmas, severity, atS: means.fromS, evidence };
+}
+
+/** What a sensor should give by its supply. Nothing is known of levels behind a filter that takes the middle away. */
+export function againstSupply({ channel }: ChannelPath, means: TurnMeans, open: boolean): SwingSight | null {
+  const { kind, supplyV } = channel.sensor;
+  const { highV, swingV, fromS } = means;
+  const room = open ? more : 1;
+  if (kind === 'linear') {
+    if (!supplyV || !(swingV < room * tinyShare * supplyV)) return null;
+    const evidence = { against: 'range', swingV, supplyV, swingPercentOfSupply: (100 * swingV) / supplyV };
+    return { size: (tinyShare * supplyV) / swingV, severity: 'note', atS: fromS, evidence };
+  }
+  const pulledToV = pulledTo(channel.maxInputV, supplyV);
+  if (!(highV < room * highShare * pulledToV)) return null;
+  const share = highV / pulledToV;
+  const evidence = { against: 'pull-up', highV, expectedHighV: pulledToV, highPercent: 100 * share };
+  return { size: highShare / share, severity: share < 0.3 ? 'fault' : 'warn', atS: fromS, evidence };
+}
+
+/**
+ * What an open line can be pulled up to: the supply, but no more than the input takes. A supply above what logic runs at
+ * says nothing where the input's limit is not known. NaN: not known.
+ */
+function pulledTo(maxInputV: number | null, supplyV: number | null): number {
+  if (!supplyV || !(supplyV > 0)) return NaN;
+  if (maxInputV !== null) return Math.min(maxInputV, supplyV);
+  return supplyV <= 5.5 ? supplyV : NaN;
+}
+
+/** The middle of the longest interval. */
+function longestGapS({ log }: ChannelPath, { first, end }: TurnMeans): number {
+  let longestS = 0;
+  let atS = NaN;
+  for (let n = first; n < end; n++) {
+    const startS = log.riseS[n & log.mask]!;
+    const lengthS = log.riseS[(n + 1) & log.mask]! - startS;
+    if (lengthS <= longestS) continue;
+    longestS = lengthS;
+    atS = startS + lengthS / 2;
+  }
+  return atS;
+}

@@ -1,0 +1,130 @@
+import type { ChannelPath } from '@/signal/channel-path';
+import { designFilters } from '@/signal/filter-design';
+import type { Section } from '@/signal/filter-design';
+import { Baseline } from '@/signal/findings/baseline';
+import { SizedLatch, findingOf, takesMiddleAway } from '@/signal/findings/channel-finding';
+import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import type { SlowSpectra } from '@/signal/findings/slow-spectrum';
+import { ShortSwing } from '@/signal/findings/swing-short';
+import { againstBand, againstNoise, againstSupply } from '@/signal/findings/swing-sights';
+import type { SwingSight } from '@/signal/findings/swing-sights';
+import type { TurnMeans } from '@/signal/findings/turn-means';
+import { responseAt } from '@/signal/response';
+
+/** Of the usual swing at this speed; at another speed, of a sensor that does not live by speed, a little less. */
+const fallenShare = 0.5;
+const fallenElsewhere = 0.4;
+const recoveredShare = 0.6;
+const looksForBaseline = 2;
+const looksToOpen = 2;
+/** A filter that leaves less than this of the teeth is named. */
+const filterBlame = 0.7;
+
+/**
+ * A swing that is too small for the band, for the noise, for its sensor, or beside what it was in this stream: for each
+ * direction and half octave of speed, since the swing of a coil grows with speed.
+ */
+export class WeakSwingRule implements FindingRule {
+  readonly latches: SizedLatch[];
+  private readonly context: RuleContext;
+  private readonly means: readonly TurnMeans[];
+  private readonly swings: Baseline[];
+  private readonly short: ShortSwing[];
+  private readonly seen: number[];
+  private readonly rejected: number[];
+  private readonly sections: readonly Section[];
+  private readonly levelsKnown: boolean;
+
+  constructor(context: RuleContext, means: readonly TurnMeans[], spectra: SlowSpectra) {
+    const { paths, settings, rateHz } = context;
+    this.context = context;
+    this.means = means;
+    this.latches = paths.map(() => new SizedLatch(2));
+    this.swings = paths.map(() => new Baseline(looksForBaseline, true));
+    this.short = paths.map((_, index) => new ShortSwing(context, index, spectra));
+    this.seen = paths.map(() => 0);
+    this.rejected = paths.map(() => 0);
+    this.sections = designFilters(settings.filter, rateHz);
+    this.levelsKnown = !takesMiddleAway(settings);
+  }
+
+  tick(nowS: number): void {
+    const { paths } = this.context;
+    for (let index = 0; index < paths.length; index++) {
+      const latch = this.latches[index]!;
+      if (this.means[index]!.look(nowS)) this.judge(paths[index]!, index, nowS);
+      const sight = this.short[index]!.look(nowS);
+      if (sight !== undefined) this.count(index, sight, nowS, sight?.sure === false);
+      latch.rest(nowS);
+    }
+  }
+
+  private judge(path: ChannelPath, index: number, nowS: number): void {
+    const means = this.means[index]!;
+    const open = this.latches[index]!.open !== null;
+    const rejected = path.rejectedCount - this.rejected[index]!;
+    this.rejected[index] = path.rejectedCount;
+    const fixed = this.context.settings.band.mode === 'fixed';
+    const sights = [
+      fixed ? againstBand(path, means, rejected, open) : againstNoise(path, means, open),
+      this.fallen(path, index),
+      this.levelsKnown ? againstSupply(path, means, open) : null,
+    ];
+    const sight = sights.reduce((worst, one) => (one && one.size > (worst?.size ?? 0) ? one : worst), null);
+    if (sight) this.blameFilter(sight, means.toothHz);
+    this.count(index, sight, nowS, false);
+  }
+
+  /** Opens at the second look in a row. */
+  private count(index: number, sight: SwingSight | null, nowS: number, unsure: boolean): void {
+    const latch = this.latches[index]!;
+    this.seen[index] = sight ? this.seen[index]! + 1 : 0;
+    if (!sight || (!latch.open && this.seen[index]! < looksToOpen)) return;
+    const { size, severity, atS, evidence } = sight;
+    const fromS = Math.min(atS, nowS);
+    const outcome = unsure ? 'cannot-tell' : 'found';
+    const { name } = this.context.paths[index]!.channel;
+    latch.raiseSized(findingOf('weak-swing', name, { fromS, atS, severity, outcome, evidence }), size, nowS);
+  }
+
+  private fallen(path: ChannelPath, index: number): SwingSight | null {
+    const { toothHz, swingV, fromS, steady } = this.means[index]!;
+    const { direction } = this.context.motion;
+    const baseline = this.swings[index]!;
+    if (!steady) return null;
+    let usualV = baseline.usual(direction, toothHz);
+    let limit = fallenShare;
+    if (Number.isNaN(usualV)) {
+      usualV = this.usualElsewhere(path, index);
+      limit = fallenElsewhere;
+    }
+    const share = swingV / usualV;
+    if (!(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);
+    if (!(share < (this.latches[index]!.open ? recoveredShare : limit))) return null;
+    const evidence = { against: 'before', swingV, usualSwingV: usualV, percentOfUsual: 100 * share, toothHz };
+    return { size: 0.5 / share, severity: share < 0.25 ? 'fault' : 'warn', atS: fromS, evidence };
+  }
+
+  /** From the nearest speed known, less what the filter takes here; a sensor without supply is a coil, which lives by speed. */
+  private usualElsewhere(path: ChannelPath, index: number): number {
+    const { supplyV } = path.channel.sensor;
+    if (supplyV === null || !(supplyV > 0)) return NaN;
+    const { direction } = this.context.motion;
+    const { toothHz } = this.means[index]!;
+    const nearHz = this.swings[index]!.nearestHz(direction, toothHz);
+    if (Number.isNaN(nearHz)) return NaN;
+    const usualV = this.swings[index]!.usual(direction, nearHz);
+    return (usualV * this.gainAt(toothHz)) / this.gainAt(nearHz);
+  }
+
+  private gainAt(hz: number): number {
+    const { sections, context } = this;
+    if (sections.length === 0) return 1;
+    return responseAt(sections, Math.min(hz, context.rateHz / 2), context.rateHz).magnitude;
+  }
+
+  private blameFilter(sight: SwingSight, toothHz: number): void {
+    const gain = this.gainAt(toothHz);
+    if (gain < filterBlame) sight.evidence.filterPercent = 100 * gain;
+  }
+}
