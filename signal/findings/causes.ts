@@ -2,6 +2,7 @@
  * Which finding follows from which: a consequence is folded under its cause where both are there together, or where the
  * cause ended no more than two seconds before the consequence began.
  */
+import { findingCodes } from '@/signal/model';
 import type { Finding, FindingCode } from '@/signal/model';
 
 /** Possible causes of a finding, the nearest first. */
@@ -13,6 +14,7 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
     'near-alias',
     'edge-bounce',
     'phase-error',
+    'weak-swing',
     'lost-samples',
   ],
   'wrong-count': [
@@ -26,10 +28,13 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
   'missing-tooth': ['weak-swing', 'offset-drift'],
   'extra-pulse': ['edge-bounce', 'mains-hum'],
   'edge-bounce': ['slow-edge', 'mains-hum', 'supply-ripple'],
-  'duty-shift': ['offset-drift', 'clipping', 'slow-edge'],
+  'duty-shift': ['offset-drift', 'clipping', 'slow-edge', 'weak-swing', 'supply-ripple'],
+  'slow-edge': ['weak-swing', 'mains-hum', 'supply-ripple'],
   'uneven-teeth': ['missing-tooth', 'extra-pulse', 'edge-bounce', 'run-out'],
-  'run-out': ['missing-tooth', 'extra-pulse'],
-  'weak-swing': ['run-out', 'clipping'],
+  'run-out': ['missing-tooth', 'extra-pulse', 'supply-ripple'],
+  'weak-swing': ['run-out', 'clipping', 'supply-ripple'],
+  'dead-channel': ['weak-swing'],
+  clipping: ['offset-drift', 'supply-ripple'],
   'phase-error': ['dead-channel', 'inverted-channel', 'duty-shift'],
   'standstill-chatter': ['mains-hum', 'supply-ripple'],
   'mains-hum': ['supply-ripple'],
@@ -40,18 +45,30 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
 const reachS = 2;
 
 /**
- * The cause of `finding` among others that are open, or that ended lately.
+ * The cause of `finding` among others that are open, or that ended lately. What cannot be told is no cause, nor is what
+ * follows from the finding itself.
  * @returns null where none is known.
  */
-export function causeOf(finding: Finding, others: Iterable<Finding>): FindingCode | null {
+export function causeOf(finding: Finding, others: readonly Finding[]): FindingCode | null {
   const causes = causesOf[finding.code];
   if (!causes) return null;
   let best = causes.length;
   for (const other of others) {
     if (other.to !== null && other.to < finding.from - reachS) continue;
     if (other.channel !== null && finding.channel !== null && other.channel !== finding.channel) continue;
+    if (other.outcome === 'cannot-tell' || followsFrom(other, finding.code, others)) continue;
     const rank = causes.indexOf(other.code);
     if (rank >= 0 && rank < best) best = rank;
   }
   return causes[best] ?? null;
+}
+
+function followsFrom(finding: Finding, code: FindingCode, others: readonly Finding[]): boolean {
+  let { causedBy } = finding;
+  for (let steps = 0; causedBy !== null && steps < findingCodes.length; steps++) {
+    if (causedBy === code) return true;
+    const known: FindingCode = causedBy;
+    causedBy = others.find((other) => other.code === known)?.causedBy ?? null;
+  }
+  return false;
 }

@@ -1,0 +1,49 @@
+import { describe, expect, it } from 'vitest';
+import { causeOf } from '@/signal/findings/causes';
+import type { Finding, FindingCode } from '@/signal/model';
+
+function finding(code: FindingCode, more: Partial<Finding> = {}): Finding {
+  return {
+    code,
+    channel: 'A',
+    from: 10,
+    to: null,
+    severity: 'warn',
+    outcome: 'found',
+    at: 10,
+    evidence: {},
+    message: '',
+    remedy: '',
+    causedBy: null,
+    ...more,
+  };
+}
+
+describe('what follows from what', () => {
+  it('takes the nearest cause that is there, or that ended less than two seconds before', () => {
+    const flip = finding('direction-flip', { channel: null });
+    const lost = finding('lost-samples', { channel: null, from: 7, to: 8.5 });
+    expect(causeOf(flip, [lost])).toBe('lost-samples');
+    expect(causeOf(flip, [lost, finding('phase-error')])).toBe('phase-error');
+    expect(causeOf(flip, [finding('lost-samples', { from: 5, to: 7.9 })])).toBeNull();
+    expect(causeOf(flip, [finding('clipping')])).toBeNull();
+  });
+
+  it('leaves channels apart, and takes nothing for a cause that cannot be told', () => {
+    const shift = finding('duty-shift');
+    expect(causeOf(shift, [finding('offset-drift')])).toBe('offset-drift');
+    expect(causeOf(shift, [finding('offset-drift', { channel: 'B' })])).toBeNull();
+    expect(causeOf(shift, [finding('supply-ripple', { channel: null })])).toBe('supply-ripple');
+    const bounce = finding('edge-bounce');
+    expect(causeOf(bounce, [finding('mains-hum')])).toBe('mains-hum');
+    expect(causeOf(bounce, [finding('mains-hum', { outcome: 'cannot-tell' })])).toBeNull();
+  });
+
+  it('never folds a finding under one of its own consequences', () => {
+    const missing = finding('missing-tooth', { causedBy: 'weak-swing' });
+    const runOut = finding('run-out', { causedBy: 'missing-tooth' });
+    const swing = finding('weak-swing');
+    expect(causeOf(swing, [missing, runOut])).toBeNull();
+    expect(causeOf(swing, [missing, finding('run-out')])).toBe('run-out');
+  });
+});
