@@ -45,7 +45,19 @@ export type SetupIssue = {
     | 'bad-filter'
     | 'bad-gear'
     | 'bad-holdoff'
-    | 'bad-speed';
+    | 'bad-speed'
+    | 'too-many-pulses'
+    | 'gap-not-followed'
+    | 'no-widths'
+    | 'bad-widths'
+    | 'bad-number'
+    | 'bad-codes'
+    | 'bad-scale'
+    | 'channel-twice'
+    | 'role-twice'
+    | 'bad-band'
+    | 'band-outside'
+    | 'bad-start';
   /** JSON pointer into the settings or the rig. */
   pointer: string;
   detail: string;

@@ -34,7 +34,8 @@ import { neededRoles, validateSetup } from '@/signal/validate-setup';
  * @returns the first thing that is wrong with rig, settings, rate or channels as an issue; never throws for these.
  */
 export function createPipeline(options: PipelineOptions): Result<Pipeline, SetupIssue> {
-  const issue = validateSetup(options.rig, options.settings, options.rateHz, options.channels);
+  const { rig, settings, rateHz, channels, startIndex } = options;
+  const issue = validateSetup(rig, settings, rateHz, channels, startIndex);
   if (issue) return { ok: false, issue };
   return { ok: true, value: new SignalPipeline(options) };
 }

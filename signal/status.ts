@@ -76,7 +76,7 @@ function worstMargin(paths: readonly ChannelPath[]): Margin | null {
     // A signal without any noise (computed, or far above its quantum) has no margin in sigmas.
     sigmas: worst.noiseV > 1e-9 * Math.abs(volts) ? volts / worst.noiseV : null,
     millitesla:
-      kind === 'linear' && sensitivityMvPerMt ? (1000 * volts) / Math.abs(sensitivityMvPerMt) : null,
+      kind === 'linear' && sensitivityMvPerMt ? known((1000 * volts) / Math.abs(sensitivityMvPerMt)) : null,
   };
 }
 
