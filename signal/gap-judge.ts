@@ -7,6 +7,7 @@
  * position at 0.25 to 0.5 of alpha d / w^2. In sync the places decide as well (`gap-readings.ts`).
  */
 import { bestReading } from '@/signal/gap-readings';
+import { noteGapRatio } from '@/signal/gap-spacing';
 import { gapIsDue } from '@/signal/gap-sync';
 import type { GapSync } from '@/signal/gap-sync';
 
@@ -16,7 +17,6 @@ const halfWay = Math.SQRT2;
 const quarterWay = 2 ** 0.25;
 /** A due gap is believed at once within this ratio of M + 1. */
 const nearGap = 1.16;
-const gapShare = 1 / 8;
 
 /**
  * Judges the interval that a tooth closes, `sync.intervalS`.
@@ -37,7 +37,7 @@ export function judgeInterval(sync: GapSync): number {
       return accept(sync, whole);
     }
   } else if (sync.state === 'synced' ? ratio < halfWay && ratio > 1 / quarterWay : ratio < quarterWay) {
-    if (sync.gapS > 0) noteGap(sync, sync.gapS, sync.beforeGapS, intervalS);
+    if (sync.gapS > 0) noteGapRatio(sync, sync.gapS, sync.beforeGapS, intervalS);
     return accept(sync, 1);
   }
   sync.gapS = NaN;
@@ -58,7 +58,7 @@ export function judgeWaiting(sync: GapSync): number {
     sync.sinceExtra = 0;
     return 0;
   }
-  if (spans > 1 && (sync.state !== 'synced' || gapIsDue(sync))) noteGap(sync, waitingS, beforeS, nextS);
+  if (spans > 1 && (sync.state !== 'synced' || gapIsDue(sync))) noteGapRatio(sync, waitingS, beforeS, nextS);
   sync.intervalS = waitingS;
   accept(sync, spans);
   sync.intervalS = nextS;
@@ -78,10 +78,4 @@ function accept(sync: GapSync, spans: number): number {
 function plainReading({ missing, perPositionS, intervalS }: GapSync, waitingS: number): number {
   const ratio = waitingS / Math.sqrt(perPositionS * intervalS);
   return ratio > halfWay && ratio < missing + 3.5 ? Math.round(ratio) : 1;
-}
-
-function noteGap(sync: GapSync, gapS: number, beforeS: number, afterS: number): void {
-  const ratio = gapS / Math.sqrt(beforeS * afterS);
-  sync.gapRatio = Number.isNaN(sync.gapRatio) ? ratio : sync.gapRatio + (ratio - sync.gapRatio) * gapShare;
-  sync.gapS = NaN;
 }

@@ -7,6 +7,8 @@
  * (`gap-judge.ts`), so that one of them does not cost the sync; what cannot be explained loses it, with a reason.
  * Outside sync two gaps a turn cannot be told apart, so that nothing is believed before one turn held exactly one.
  */
+import { noteSpacing } from '@/signal/gap-spacing';
+
 export type SyncState = 'unsynced' | 'proving' | 'synced';
 
 export type SyncLoss =
@@ -63,21 +65,18 @@ export type GapSync = {
   owed: number;
 };
 
+function noLosses(): Record<SyncLoss, number> {
+  const own = { 'early-gap': 0, 'late-gap': 0, 'extra-tooth': 0, timeout: 0 };
+  return { ...own, stopped: 0, reversed: 0, 'lost-samples': 0 };
+}
+
 export function createGapSync(positions: number, missing: number): GapSync {
   return {
     positions,
     missing,
     state: 'unsynced',
     lostBecause: null,
-    losses: {
-      'early-gap': 0,
-      'late-gap': 0,
-      'extra-tooth': 0,
-      timeout: 0,
-      stopped: 0,
-      reversed: 0,
-      'lost-samples': 0,
-    },
+    losses: noLosses(),
     position: 0,
     gapRatio: NaN,
     betweenGaps: 0,
@@ -199,15 +198,4 @@ function prove(sync: GapSync, position: number): void {
   sync.state = 'proving';
   sync.position = position;
   sync.owed = sync.missing;
-}
-
-/** How far gaps lie apart, whatever the wheel is said to be: tells a wheel that is set up wrongly. */
-function noteSpacing(sync: GapSync, spans: number): void {
-  if (sync.sinceGap >= 0) sync.sinceGap += spans;
-  if (spans === 1) return;
-  if (sync.sinceGap > 0) {
-    sync.sameBetween = sync.sinceGap === sync.betweenGaps ? sync.sameBetween + 1 : 1;
-    sync.betweenGaps = sync.sinceGap;
-  }
-  sync.sinceGap = 0;
 }

@@ -128,7 +128,7 @@ export class Motion extends ShaftState {
       this.face(way > 0 ? 1 : -1);
     }
     this.rise(widths.lead, 0);
-    this.train.fall(queue, i);
+    this.train.endTooth(queue, i);
   }
 
   /** An edge proves that the shaft turns. */

@@ -116,8 +116,13 @@ export class ToothTrain {
 
   /** The falling edge at entry `i` of the queue ends the tooth at hand. */
   fall(queue: EdgeQueue, i: number): void {
-    this.placer.swingV = queue.extremeV[i]! - this.troughV;
+    this.endTooth(queue, i);
     this.speed.fall(queue, i);
+  }
+
+  /** As `fall`, for an edge whose instant says nothing of the wheel: the end of a pulse of coded width, either way up. */
+  endTooth(queue: EdgeQueue, i: number): void {
+    this.placer.swingV = Math.abs(queue.extremeV[i]! - this.troughV);
   }
 
   /**
