@@ -20,8 +20,9 @@ function silentPositions({ tracker, train }: Motion): number {
  * @param latencyS how long after its instant an edge is known: silence is proven only up to `nowS` less that.
  */
 export function speedAtMostRpm(motion: Motion, nowS: number, latencyS: number): number {
-  const { tracker, train, rig, lastEdgeS, state, stoppedAfterS } = motion;
-  if (Number.isNaN(lastEdgeS)) return NaN;
+  const { tracker, train, rig, lastEdgeS, state, stoppedAfterS, widths } = motion;
+  // Pulses that fall between samples: silence proves nothing.
+  if (Number.isNaN(lastEdgeS) || widths?.isBlind) return NaN;
   const since = tracker ? lastEdgeS : train.lastRiseS;
   const begin = Number.isNaN(since) ? motion.quietSinceS : Math.max(since, 0);
   const { pulsesPerTurn, gearRatio } = rig.wheel;
