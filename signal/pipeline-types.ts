@@ -4,7 +4,9 @@
  *
  * Times are seconds on the raw signal's axis, 0 at sample index 0 of the stream (or of the capture).
  */
+import type { SyncLoss, SyncState } from '@/signal/gap-sync';
 import type { Direction, Finding, Margin, RigSetup, SampleArray, Settings, WheelFace } from '@/signal/model';
+import type { SpeedLimits } from '@/signal/speed-limits';
 
 export type PipelineOptions = {
   rig: RigSetup;
@@ -116,6 +118,34 @@ export type ChannelStatus = {
   edges: number;
 };
 
+/** What stands behind the speed. */
+export type ShaftStatus = {
+  /** From whole turns; null where not known. */
+  accelerationRpmPerS: number | null;
+  accelerationErrorRpmPerS: number | null;
+  /** What the way to take the speed resolves, how late it is, how slow it reads. */
+  limits: SpeedLimits;
+  /** Spacing of the teeth, learnt over turns and taken out of the speed between them. `uneven`: rms, share of a pitch. */
+  pitch: {
+    state: 'none' | 'learning' | 'in-use';
+    turns: number;
+    turnsNeeded: number;
+    uneven: number | null;
+  };
+  /** Missing-tooth wheels only. */
+  sync: { state: SyncState; lostBecause: SyncLoss | null; gapRatio: number | null } | null;
+  /** Rigs with an index channel only: counts a turn against what the wheel makes. */
+  index: {
+    expectedCounts: number;
+    meanCounts: number | null;
+    exactTurns: number;
+    lostTurns: number;
+    extraTurns: number;
+  } | null;
+  /** Rings of states only: steps that cannot have been, and states that the ring does not have. */
+  falseSteps: { illegal: number; invalidStates: number } | null;
+};
+
 /** The state at the last sample processed. */
 export type PipelineStatus = {
   /** Stream time of the newest sample, s (index of the next sample / rate). */
@@ -144,6 +174,7 @@ export type PipelineStatus = {
   channels: ChannelStatus[];
   margin: Margin | null;
   wheelFace: WheelFace | null;
+  shaft: ShaftStatus;
   findings: Finding[];
 };
 

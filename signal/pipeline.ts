@@ -11,7 +11,7 @@ import type { Lane } from '@/signal/edge-merge';
 import { designFilters } from '@/signal/filter-design';
 import { FindingsDesk } from '@/signal/findings/desk';
 import { IndexWatch } from '@/signal/index-watch';
-import type { Channel, Result, SampleArray } from '@/signal/model';
+import type { Channel, Result, SampleArray, Settings } from '@/signal/model';
 import { Motion } from '@/signal/motion';
 import type {
   BoardNote,
@@ -26,6 +26,7 @@ import type {
 import { noiseGain } from '@/signal/response';
 import { memorySamples } from '@/signal/statistics/zero-phase';
 import { statusOf } from '@/signal/status';
+import { shaftStatus } from '@/signal/status-shaft';
 import { samplesPerTick } from '@/signal/ticks';
 import { neededRoles, validateSetup } from '@/signal/validate-setup';
 
@@ -43,6 +44,7 @@ export function createPipeline(options: PipelineOptions): Result<Pipeline, Setup
 class SignalPipeline implements Pipeline {
   readonly output: PipelineOutput;
   private readonly rateHz: number;
+  private readonly speedSettings: Settings['speed'];
   private readonly paths: ChannelPath[];
   private readonly motion: Motion;
   /** Place of each path in the sensing arrangement; -1: none. */
@@ -65,6 +67,7 @@ class SignalPipeline implements Pipeline {
     const directions: PipelineOutput['directions'] = [];
     const { pulsesPerTurn, missingPulses } = rig.wheel;
     this.rateHz = rateHz;
+    this.speedSettings = settings.speed;
     this.tap = tap ?? null;
     this.nextAt = startIndex;
     this.tickSamples = samplesPerTick(rateHz);
@@ -176,7 +179,8 @@ class SignalPipeline implements Pipeline {
 
   status(): PipelineStatus {
     const primary = this.roles.indexOf(0);
-    return statusOf(this.motion, this.paths, primary, this.nextAt / this.rateHz, this.desk.open());
+    const shaft = shaftStatus(this.motion, this.speedSettings, this.rateHz, this.indexWatch);
+    return statusOf(this.motion, this.paths, primary, this.nextAt / this.rateHz, shaft, this.desk.open());
   }
 
   private tick(): void {

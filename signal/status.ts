@@ -3,7 +3,7 @@ import type { ChannelPath } from '@/signal/channel-path';
 import type { Finding, Margin } from '@/signal/model';
 import { angleDeg, boundErrorRpm, speedAtMostRpm } from '@/signal/falling-bound';
 import type { Motion } from '@/signal/motion';
-import type { ChannelStatus, PipelineStatus } from '@/signal/pipeline-types';
+import type { ChannelStatus, PipelineStatus, ShaftStatus } from '@/signal/pipeline-types';
 
 /** @param primary index into `paths` of the channel that speed comes from. */
 export function statusOf(
@@ -11,6 +11,7 @@ export function statusOf(
   paths: readonly ChannelPath[],
   primary: number,
   nowS: number,
+  shaft: ShaftStatus,
   findings: Finding[],
 ): PipelineStatus {
   const { train } = motion;
@@ -37,6 +38,7 @@ export function statusOf(
     channels: paths.map(channelStatus),
     margin: worstMargin(paths),
     wheelFace: train.face ? train.face.snapshot(known(angleDeg(motion, nowS))) : null,
+    shaft,
     findings,
   };
 }

@@ -26,6 +26,7 @@ const running: Live = {
   phaseDeg: null,
   delayS: 0,
   channels: [],
+  shaft: null,
   setupProblem: null,
 };
 

@@ -48,6 +48,51 @@ export const live = z
         edges: z.number(),
       }),
     ),
+    /** What stands behind the speed; null before any block. */
+    shaft: z
+      .object({
+        accelerationRpmPerS: z.number().nullable(),
+        accelerationErrorRpmPerS: z.number().nullable(),
+        limits: z.object({
+          resolutionRpm: z.number().nullable(),
+          delayS: z.number().nullable(),
+          floorRpm: z.number(),
+        }),
+        pitch: z.object({
+          state: z.enum(['none', 'learning', 'in-use']),
+          turns: z.number().int(),
+          turnsNeeded: z.number().int(),
+          uneven: z.number().nullable(),
+        }),
+        sync: z
+          .object({
+            state: z.enum(['unsynced', 'proving', 'synced']),
+            lostBecause: z
+              .enum([
+                'early-gap',
+                'late-gap',
+                'extra-tooth',
+                'timeout',
+                'stopped',
+                'reversed',
+                'lost-samples',
+              ])
+              .nullable(),
+            gapRatio: z.number().nullable(),
+          })
+          .nullable(),
+        index: z
+          .object({
+            expectedCounts: z.number(),
+            meanCounts: z.number().nullable(),
+            exactTurns: z.number().int(),
+            lostTurns: z.number().int(),
+            extraTurns: z.number().int(),
+          })
+          .nullable(),
+        falseSteps: z.object({ illegal: z.number().int(), invalidStates: z.number().int() }).nullable(),
+      })
+      .nullable(),
     /** Why the settings in force cannot be run at the stream's rate, else null. */
     setupProblem: z.string().nullable(),
   })

@@ -64,6 +64,7 @@ export function liveOf(now: RigNow, nowMs: number): Live {
     phaseDeg: speaks ? status.phaseDeg : null,
     delayS: speaks ? status.delayS : null,
     channels: status?.channels ?? [],
+    shaft: speaks ? status.shaft : null,
     setupProblem: signal?.setupProblem ?? null,
   };
 }

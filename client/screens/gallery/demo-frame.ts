@@ -115,6 +115,15 @@ export function demoFrame(options: DemoOptions): LiveFrame {
         duty: 0.49,
         edges: 4,
       })),
+      shaft: {
+        accelerationRpmPerS: 0.4,
+        accelerationErrorRpmPerS: 1.2,
+        limits: { resolutionRpm: 0.3, delayS: 0.02, floorRpm: 0.5 },
+        pitch: { state: 'in-use', turns: 64, turnsNeeded: 20, uneven: 0.008 },
+        sync: null,
+        index: null,
+        falseSteps: null,
+      },
       setupProblem: null,
     },
     ribbon: {

@@ -9,6 +9,7 @@ import { TableButton } from '@/client/drawings/figure';
 import { WheelFace } from '@/client/drawings/wheel-face';
 import { wheelDrawing } from '@/client/drawings/wheel-geometry';
 import type { LiveFrame } from '@/server/contract';
+import { shaftFacts } from '@/client/screens/watch/shaft-facts';
 import { clockText } from '@/client/screens/watch/watch-model';
 import { space } from '@/client/theme/tokens';
 
@@ -105,6 +106,7 @@ export function NumbersPlate({ live }: { live: LiveFrame['live'] }) {
     });
   if (delayS !== null && delayS !== 0)
     facts.push({ name: 'filter delay taken off', value: `${(delayS * 1000).toFixed(2)} ms` });
+  if (live.shaft) facts.push(...shaftFacts(live.shaft));
   if (facts.length === 0) return null;
   return (
     <Plate role="region" label="Numbers">
