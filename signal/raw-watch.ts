@@ -1,11 +1,12 @@
 /**
  * What is learnt from a few raw samples only, so that it costs next to nothing: the noise from short bursts, rails and
- * spread from every thirty-second sample. Which samples these are follows from their place in the stream.
+ * spread from every thirty-second sample (of slow streams from more, 250 a second where there are as many). Which samples
+ * these are follows from their place in the stream.
  */
 import type { Channel, SampleArray } from '@/signal/model';
 import { breakBurst, burstLength, createNoiseMeter, endBurst } from '@/signal/noise';
 import type { NoiseMeter } from '@/signal/noise';
-import { createRailMeter, railStride, touchesRails, watchRails } from '@/signal/rail-meter';
+import { breakRails, createRailMeter, leaveRails, touchesRails, watchRails } from '@/signal/rail-meter';
 import type { RailMeter } from '@/signal/rail-meter';
 import { holdsCodes, scaleOf } from '@/signal/scale';
 
@@ -16,6 +17,8 @@ export class RawWatch {
   spreadLowV = Infinity;
   spreadHighV = -Infinity;
   private readonly channel: Channel;
+  private readonly rateHz: number;
+  private readonly stride: number;
   private readonly burstEvery: number;
   /** Constructor of the arrays that come, and what turns their samples into volts. */
   private kind: unknown = null;
@@ -25,6 +28,8 @@ export class RawWatch {
 
   constructor(channel: Channel, rateHz: number) {
     this.channel = channel;
+    this.rateHz = rateHz;
+    this.stride = 2 ** Math.min(5, Math.max(0, Math.floor(Math.log2(rateHz / 250))));
     this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(4096, Math.max(32, rateHz / 8))));
   }
 
@@ -36,19 +41,19 @@ export class RawWatch {
   /** Samples were lost. */
   gap(): void {
     breakBurst(this.noise);
-    if (this.rails) this.rails.previousV = NaN;
+    if (this.rails) breakRails(this.rails);
   }
 
   /** Takes `array[from..to)`; the first is sample `at` of the stream. */
   take(array: SampleArray, from: number, to: number, at: number): void {
     if (array.constructor !== this.kind) this.learnKind(array);
     this.feedNoise(array, from, to, at);
-    const first = from + ((railStride - (at % railStride)) % railStride);
+    const { ends, rails, stride } = this;
+    const first = from + ((stride - (at % stride)) % stride);
     if (first >= to) return;
-    const { ends, rails } = this;
     const { offset, factor } = this.scale;
-    if (array instanceof Int16Array) endsOfCodes(array, first, to, ends);
-    else endsOf(array, first, to, ends);
+    if (array instanceof Int16Array) endsOfCodes(array, first, to, stride, ends);
+    else endsOf(array, first, to, stride, ends);
     const a = (ends[0]! - offset) * factor;
     const b = (ends[1]! - offset) * factor;
     const lowV = a < b ? a : b;
@@ -57,12 +62,11 @@ export class RawWatch {
     if (highV > this.spreadHighV) this.spreadHighV = highV;
     if (!rails) return;
     if (touchesRails(rails, lowV, highV)) {
-      for (let i = first; i < to; i += railStride)
+      for (let i = first; i < to; i += stride)
         watchRails(rails, (array[i]! - offset) * factor, at + (i - from));
     } else {
-      const count = Math.ceil((to - first) / railStride);
-      rails.checked += count;
-      rails.previousV = (array[first + (count - 1) * railStride]! - offset) * factor;
+      rails.checked += Math.ceil((to - first) / stride);
+      leaveRails(rails, at + (first - from));
     }
   }
 
@@ -70,7 +74,7 @@ export class RawWatch {
     this.kind = array.constructor;
     this.scale = scaleOf(array, this.channel);
     const codes = holdsCodes(array);
-    this.rails = createRailMeter(this.channel, codes);
+    this.rails = createRailMeter(this.channel, codes, this.rateHz);
     if (!codes) return;
     this.noise.quantumV = Math.abs(this.channel.voltsPerCode);
     this.noise.quantumFixed = true;
@@ -97,10 +101,10 @@ export class RawWatch {
 }
 
 /** Of the commonest kind, apart from the others: a loop that sees several kinds of array is slow, and whole numbers are quick. */
-function endsOfCodes(array: Int16Array, first: number, to: number, ends: Float64Array): void {
+function endsOfCodes(array: Int16Array, first: number, to: number, stride: number, ends: Float64Array): void {
   let least = array[first]!;
   let most = least;
-  for (let i = first + railStride; i < to; i += railStride) {
+  for (let i = first + stride; i < to; i += stride) {
     const x = array[i]!;
     if (x < least) least = x;
     else if (x > most) most = x;
@@ -109,10 +113,10 @@ function endsOfCodes(array: Int16Array, first: number, to: number, ends: Float64
   ends[1] = most;
 }
 
-function endsOf(array: SampleArray, first: number, to: number, ends: Float64Array): void {
+function endsOf(array: SampleArray, first: number, to: number, stride: number, ends: Float64Array): void {
   let least = array[first]!;
   let most = least;
-  for (let i = first + railStride; i < to; i += railStride) {
+  for (let i = first + stride; i < to; i += stride) {
     const x = array[i]!;
     if (x < least) least = x;
     else if (x > most) most = x;

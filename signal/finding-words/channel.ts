@@ -11,11 +11,14 @@ export const channelWords = {
         : `Raise the cutoff of the filter, which leaves ${short(evidence.filterPercent)} % of the teeth at this speed.`,
   }),
   clipping: (channel, evidence) => ({
-    message: `Channel ${channel} stands at the ${evidence.rail} end of its range for ${short(evidence.railPercent)} % of the time, so its peaks are cut off.`,
-    remedy: 'Widen the air gap, take a less sensitive sensor, or put an attenuator before the input.',
+    message: `Channel ${channel} stands at the ${evidence.rail} end of its range (${short(evidence.railV)} V) for ${short(evidence.railPercent)} % of the time, so its peaks are cut off.`,
+    remedy:
+      evidence.cutBy === 'sensor'
+        ? 'Widen the air gap or take a less sensitive sensor: its own output can go no further.'
+        : 'Widen the air gap, take a less sensitive sensor, or put an attenuator before the input.',
   }),
   'offset-drift': (channel, evidence) => ({
-    message: `The middle of channel ${channel} has moved by ${short(evidence.movedV)} V since the stream began, to ${short(evidence.middleV)} V; that is ${short(evidence.movedPercentOfSwing)} % of its swing.`,
+    message: `The middle of channel ${channel} has moved by ${short(evidence.movedV)} V since the stream began, to ${short(evidence.middleV)} V; that is ${short(evidence.ofSwingPercent)} % of its swing.`,
     remedy:
       'Let the fitted band follow it or take it away with a high pass, and look for heat, a slipped magnet or bracket, and a supply that the converter does not share.',
   }),
@@ -35,7 +38,7 @@ export const channelWords = {
     const { harmonic, mainsHz } = evidence;
     const times = harmonic === 1 ? '' : ` (${whole(harmonic)} times ${whole(mainsHz)} Hz)`;
     const tone = `a tone of ${short(evidence.humHz)} Hz${times} and ${short(evidence.amplitudeV)} V`;
-    const size = `${short(evidence.percentOfHalfSwing)} % of half the swing`;
+    const size = `${short(evidence.ofHalfSwingPercent)} % of half the swing`;
     if (evidence.order !== undefined) {
       return {
         message: `Channel ${channel} carries ${tone} (${size}), which may be mains hum or, as the wheel turns ${short(evidence.turnHz)} times a second, its order ${whole(evidence.order)}.`,
@@ -55,7 +58,7 @@ export const channelWords = {
     };
   },
   'supply-ripple': (_channel, evidence) => ({
-    message: `Channels ${evidence.channels} move up and down together by ${short(evidence.amplitudeV)} V at ${short(evidence.rippleHz)} Hz, ${short(evidence.percentOfHalfSwing)} % of half the swing, as sensors do whose supply ripples.`,
+    message: `Channels ${evidence.channels} move up and down together by ${short(evidence.amplitudeV)} V at ${short(evidence.rippleHz)} Hz, ${short(evidence.ofHalfSwingPercent)} % of half the swing, as sensors do whose supply ripples.`,
     remedy:
       'Take the reference of the converter from the supply of the sensors, or put a capacitor or a regulator of their own before them.',
   }),
@@ -66,14 +69,14 @@ export const channelWords = {
           ? 'Narrow the air gap or take a stronger magnet, so that the flank gets steeper.'
           : `Set a low pass at about ${short(evidence.helpingCutoffHz)} Hz, which leaves ${time(evidence.scatterThenS)} of it, or narrow the air gap.`;
       return {
-        message: `Noise of ${short(evidence.noiseV)} V on a flank of ${short(evidence.slopeVPerS)} V/s moves each edge of channel ${channel} by ${time(evidence.scatterS)}, ${short(evidence.scatterPercentOfTooth)} % of a tooth.`,
+        message: `Noise of ${short(evidence.noiseV)} V on a flank of ${short(evidence.slopeVoltsPerSecond)} V/s moves each edge of channel ${channel} by ${time(evidence.scatterS)}, ${short(evidence.ofToothPercent)} % of a tooth.`,
         remedy: filter,
       };
     }
     const flank = evidence.slow === 'both' ? 'Both flanks' : `The ${evidence.slow} flank`;
     const takes = evidence.slow === 'both' ? 'take' : 'takes';
     return {
-      message: `${flank} of channel ${channel} ${takes} ${short(evidence.periodPercent)} % of a period (up in ${time(evidence.riseS)}, down in ${time(evidence.fallS)}).`,
+      message: `${flank} of channel ${channel} ${takes} ${short(evidence.ofPeriodPercent)} % of a period (up in ${time(evidence.riseS)}, down in ${time(evidence.fallS)}).`,
       remedy:
         evidence.slow === 'falling'
           ? 'Check what pulls the line down, and shorten the cable or its capacitance.'
@@ -102,11 +105,11 @@ function swingMessage(channel: string | null, evidence: Evidence): string {
     case 'noise':
       return `The swing of channel ${channel}, ${short(swingV)} V, is only ${short(evidence.swingSigmas)} times its noise, too little for a band that keeps the noise out`;
     case 'range':
-      return `The swing of channel ${channel} is ${short(swingV)} V, ${short(evidence.swingPercentOfSupply)} % of the sensor's supply`;
+      return `The swing of channel ${channel} is ${short(swingV)} V, ${short(evidence.ofSupplyPercent)} % of the sensor's supply`;
     case 'pull-up':
       return `Channel ${channel} reaches only ${short(evidence.highV)} V where its line should be pulled up to ${short(evidence.expectedHighV)} V`;
     default:
-      return `The swing of channel ${channel} has fallen to ${short(swingV)} V, ${short(evidence.percentOfUsual)} % of what was usual at this speed`;
+      return `The swing of channel ${channel} has fallen to ${short(swingV)} V, ${short(evidence.leftPercent)} % of what was usual at this speed`;
   }
 }
 

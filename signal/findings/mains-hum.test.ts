@@ -67,7 +67,7 @@ describe('mains hum', () => {
     expect(found).toHaveLength(1);
     expect(found[0]!.openedS).toBeLessThan(6.3);
     expect(found[0]!.outcome).toBe('found');
-    expect(found[0]!.evidence.percentOfHalfSwing).toBeCloseTo(10, 0);
+    expect(found[0]!.evidence.ofHalfSwingPercent).toBeCloseTo(10, 0);
   });
 
   it('is known at rest before any tooth, by what the sensor can give', () => {

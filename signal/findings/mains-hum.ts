@@ -86,7 +86,7 @@ export class MainsHumRule implements FindingRule {
       harmonic,
       amplitudeV: tone.amplitudeV,
       halfSwingV: wheel.halfSwingV,
-      percentOfHalfSwing: 100 * share,
+      ofHalfSwingPercent: 100 * share,
       ...(verdict === 'order' && { turnHz: wheel.turnHz, order: Math.round(tone.hz / wheel.turnHz) }),
       ...(verdict === 'edges' && { edgesHz: wheel.toothHz }),
     };

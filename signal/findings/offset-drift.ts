@@ -81,7 +81,7 @@ export class OffsetDriftRule implements FindingRule {
       usualMiddleV: (usualHighV + usualLowV) / 2,
       movedV: (highMovedV + lowMovedV) / 2,
       usualSwingV: swingV,
-      movedPercentOfSwing: 100 * share,
+      ofSwingPercent: 100 * share,
     };
     const severity = share > faultShare ? 'fault' : 'warn';
     const seen = { fromS: means.fromS, atS: means.fromS, severity, evidence } as const;
@@ -92,6 +92,8 @@ export class OffsetDriftRule implements FindingRule {
 /** Which ends of the signal stand where the sensor or the converter lets them go no further. */
 function endsAtRails({ rails }: ChannelPath, highV: number, lowV: number): { high: boolean; low: boolean } {
   if (!rails) return { high: false, low: false };
-  const near = 0.02 * (rails.highV - rails.lowV);
-  return { high: highV > rails.highV - near, low: lowV < rails.lowV + near };
+  const topV = Math.min(rails.highV, rails.zoneHighV);
+  const bottomV = Math.max(rails.lowV, rails.zoneLowV);
+  const near = 0.02 * (topV - bottomV);
+  return { high: highV > topV - near, low: lowV < bottomV + near };
 }

@@ -64,7 +64,7 @@ describe('slow edge', () => {
     const found = slow(trapezoid, 'latch');
     expect(found).toHaveLength(1);
     expect(found[0]!.evidence.slow).toBe('both');
-    expect(found[0]!.evidence.periodPercent).toBeGreaterThan(55);
+    expect(found[0]!.evidence.ofPeriodPercent).toBeGreaterThan(55);
   });
 
   it('a sine of a linear sensor is none, until noise moves its edges by more than a fiftieth of a tooth', () => {

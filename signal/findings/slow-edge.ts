@@ -79,7 +79,7 @@ export class SlowEdgeRule implements FindingRule {
       slow: oneSided ? (riseS > fallS ? 'rising' : 'falling') : 'both',
       riseS,
       fallS,
-      periodPercent: 100 * (oneSided ? share : both),
+      ofPeriodPercent: 100 * (oneSided ? share : both),
       toothHz,
     };
     return { size: both, severity: both > 0.5 ? 'fault' : 'warn', evidence };
@@ -105,9 +105,9 @@ export class SlowEdgeRule implements FindingRule {
     const evidence: Evidence = {
       slow: 'noise',
       scatterS,
-      scatterPercentOfTooth: 100 * share,
+      ofToothPercent: 100 * share,
       noiseV,
-      slopeVPerS,
+      slopeVoltsPerSecond: slopeVPerS,
       toothHz,
     };
     const cutoffHz = passesSlope * toothHz;

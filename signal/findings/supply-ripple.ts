@@ -73,7 +73,7 @@ export class SupplyRippleRule implements FindingRule {
       channels: `${first.name}, ${paths[b.index]!.channel.name}`,
       rippleHz: toneNear(a, binHz, strongest.bin * binHz, 1.5 * binHz)?.hz ?? strongest.bin * binHz,
       amplitudeV,
-      percentOfHalfSwing: 100 * share,
+      ofHalfSwingPercent: 100 * share,
       correlation: strongest.correlation,
       ...(quiescentV && supplyV && { supplyAmplitudeV: (amplitudeV * supplyV) / quiescentV }),
     };

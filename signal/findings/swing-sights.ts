@@ -96,13 +96,13 @@ export function againstSupply({ channel }: ChannelPath, means: TurnMeans, open: 
   const room = open ? more : 1;
   if (kind === 'linear') {
     if (!supplyV || !(swingV < room * tinyShare * supplyV)) return null;
-    const evidence = { against: 'range', swingV, supplyV, swingPercentOfSupply: (100 * swingV) / supplyV };
+    const evidence = { against: 'range', swingV, supplyV, ofSupplyPercent: (100 * swingV) / supplyV };
     return { size: (tinyShare * supplyV) / swingV, severity: 'note', atS: fromS, evidence };
   }
   const pulledToV = pulledTo(channel.maxInputV, supplyV);
   if (!(highV < room * highShare * pulledToV)) return null;
   const share = highV / pulledToV;
-  const evidence = { against: 'pull-up', highV, expectedHighV: pulledToV, highPercent: 100 * share };
+  const evidence = { against: 'pull-up', highV, expectedHighV: pulledToV, ofExpectedPercent: 100 * share };
   return { size: highShare / share, severity: share < 0.3 ? 'fault' : 'warn', atS: fromS, evidence };
 }
 

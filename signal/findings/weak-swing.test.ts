@@ -45,8 +45,8 @@ describe('weak swing', () => {
       expect(to).toBeLessThan(7.1);
       expect(severity).toBe('warn');
       expect(evidence.against).toBe('before');
-      expect(evidence.percentOfUsual).toBeGreaterThan(36);
-      expect(evidence.percentOfUsual).toBeLessThan(55);
+      expect(evidence.leftPercent).toBeGreaterThan(36);
+      expect(evidence.leftPercent).toBeLessThan(55);
     },
   );
 

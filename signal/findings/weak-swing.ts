@@ -101,7 +101,7 @@ export class WeakSwingRule implements FindingRule {
     const share = swingV / usualV;
     if (!(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);
     if (!(share < (this.latches[index]!.open ? recoveredShare : limit))) return null;
-    const evidence = { against: 'before', swingV, usualSwingV: usualV, percentOfUsual: 100 * share, toothHz };
+    const evidence = { against: 'before', swingV, usualSwingV: usualV, leftPercent: 100 * share, toothHz };
     return { size: 0.5 / share, severity: share < 0.25 ? 'fault' : 'warn', atS: fromS, evidence };
   }
 
