@@ -20,7 +20,9 @@ export function pulsesPerLikePole(kind: SensorKind): number {
   return kind === 'latch' ? 0 : 1;
 }
 
-export function sensorNotes(channels: readonly Pick<Channel, 'name' | 'role' | 'sensor'>[]): SensorNote[] {
+type Sensed = Pick<Channel, 'name' | 'role'> & { sensor: Pick<Channel['sensor'], 'kind' | 'activeLow'> };
+
+export function sensorNotes(channels: readonly Sensed[]): SensorNote[] {
   return channels.flatMap(({ name, role, sensor }): SensorNote[] => {
     if (role === 'aux') return [];
     const notes: SensorNote[] = [];

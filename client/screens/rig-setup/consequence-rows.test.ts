@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { consequenceRows, wheelOf } from '@/client/screens/rig-setup/consequence-rows';
+import { consequenceRows, sensorSentences, wheelOf } from '@/client/screens/rig-setup/consequence-rows';
 import { emptyDraft } from '@/client/screens/rig-setup/draft';
 
 const draft = (pulsesPerTurn: string, more: object = {}) => ({
@@ -24,6 +24,31 @@ describe('what the form says while one types', () => {
     const { facts, warning } = consequenceRows(wheelOf(draft('60', { sensing: 'quadrature' }))!, 20_000);
     expect(warning).toContain('24000 a second');
     expect(facts[1]).toMatchObject({ value: '6.667', tone: 'warn' });
+  });
+
+  it('tells what rate the widths of pulses take, and that no direction will be said below it', () => {
+    const widthClasses = [
+      { widthUs: '90', means: 'forward' as const },
+      { widthUs: '180', means: 'reverse' as const },
+    ];
+    const typed = { ...draft('48', { sensing: 'width-coded' }) };
+    const wheel = wheelOf({ ...typed, wheel: { ...typed.wheel, widthClasses } })!;
+    const slow = consequenceRows(wheel, 20_000);
+    expect(slow.facts.find((f) => f.name === 'Widths can be told from')).toMatchObject({
+      value: '44444 samples a second',
+      tone: 'warn',
+    });
+    expect(slow.warning).toContain('no direction');
+    expect(consequenceRows(wheel, 100_000).warning).toBeNull();
+  });
+
+  it('tells what the kinds of the sensors mean for count and polarity', () => {
+    const [channel] = emptyDraft.channels;
+    const of = (kind: 'linear' | 'latch' | 'omnipolar') =>
+      sensorSentences([{ ...channel!, sensor: { ...channel!.sensor, kind, activeLow: kind !== 'linear' } }]);
+    expect(of('linear')).toEqual([]);
+    expect(of('omnipolar')[0]).toContain('two pulses a pole pair');
+    expect(of('latch')[0]).toContain('lets go only at the other pole');
   });
 
   it('says what is missing', () => {

@@ -1,7 +1,8 @@
 import type { Fact } from '@/client/components/facts';
 import { shortNumber } from '@/client/components/finding-words';
-import { consequencesOf, statesPerCycle } from '@/signal/consequences';
-import { defaultSettings, type RigSetup, type Settings } from '@/signal/model';
+import { consequencesOf } from '@/signal/consequences';
+import { defaultSettings, type RigSetup, type Settings, type WidthClass } from '@/signal/model';
+import { sensorNotes } from '@/signal/sensor-notes';
 import { numberOf, type RigDraft } from '@/client/screens/rig-setup/draft';
 
 export type WheelTyped = Pick<RigSetup, 'sensing' | 'wheel' | 'ratedRpm'>;
@@ -17,9 +18,29 @@ export function wheelOf(draft: Pick<RigDraft, 'sensing' | 'wheel' | 'ratedRpm'>)
     return null;
   return {
     sensing: draft.sensing,
-    wheel: { pulsesPerTurn, missingPulses, gearRatio, widthClasses: null },
+    wheel: { pulsesPerTurn, missingPulses, gearRatio, widthClasses: widthsOf(draft) },
     ratedRpm: rated !== null && rated > 0 ? rated : null,
   };
+}
+
+/** The widths as far as they are typed; null for other arrangements, and while none is a number. */
+function widthsOf({ sensing, wheel }: Pick<RigDraft, 'sensing' | 'wheel'>): WidthClass[] | null {
+  if (sensing !== 'width-coded') return null;
+  const typed = wheel.widthClasses.flatMap(({ widthUs, means }) => {
+    const us = numberOf(widthUs);
+    return us !== null && us > 0 ? [{ widthS: us / 1e6, means }] : [];
+  });
+  return typed.length > 0 ? typed : null;
+}
+
+/** What the sensors' kinds mean for count and polarity. */
+export function sensorSentences(channels: RigDraft['channels']): string[] {
+  const sensors = channels.map(({ name, role, sensor: { kind, activeLow } }) => ({
+    name,
+    role,
+    sensor: { kind, activeLow },
+  }));
+  return sensorNotes(sensors).map(({ detail }) => detail);
 }
 
 export type Consequence = { facts: Fact[]; warning: string | null };
@@ -59,11 +80,27 @@ export function consequenceRows(
   if (found.holdoffRpm !== null) {
     facts.push({ name: 'Hold-off loses edges above', value: unit(found.holdoffRpm, 'rpm', '') });
   }
-  return { facts, warning: tooFew ? tooFewSamples(wheel, found.toothHz ?? 0) : null };
+  const { widths } = found;
+  if (widths) {
+    const few = widths.isRateEnough === false;
+    facts.push(
+      {
+        name: 'Widths can be told from',
+        value: `${unit(widths.neededRateHz, '', '')} samples a second`,
+        ...(few ? { tone: 'warn' as const } : {}),
+      },
+      { name: 'Direction is told up to', value: unit(widths.directionUpToRpm, 'rpm', '') },
+    );
+    if (few)
+      return {
+        facts,
+        warning: 'Too few samples for the narrowest width: speed is taken, but no direction will be said.',
+      };
+  }
+  return { facts, warning: tooFew && found.neededRateHz !== null ? tooFewSamples(found.neededRateHz) : null };
 }
 
-function tooFewSamples(wheel: WheelTyped, toothHz: number): string {
-  const neededHz = 2 * statesPerCycle(wheel.sensing) * toothHz;
+function tooFewSamples(neededHz: number): string {
   return `Too few samples for the rated speed: it needs ${shortNumber(Math.ceil(neededHz))} a second on each channel.`;
 }
 

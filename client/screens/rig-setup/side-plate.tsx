@@ -5,7 +5,7 @@ import { Plate } from '@/client/components/plate';
 import { StatusWord } from '@/client/components/status-word';
 import { Text } from '@/client/components/text';
 import type { Settings } from '@/signal/model';
-import { consequenceRows, wheelOf } from '@/client/screens/rig-setup/consequence-rows';
+import { consequenceRows, sensorSentences, wheelOf } from '@/client/screens/rig-setup/consequence-rows';
 import { numberOf, type RigDraft } from '@/client/screens/rig-setup/draft';
 import { WheelDrawing } from '@/client/screens/rig-setup/wheel-drawing';
 import { space } from '@/client/theme/tokens';
@@ -13,7 +13,14 @@ import { space } from '@/client/theme/tokens';
 /** The wheel as typed and what follows from it, while one types. */
 export function SidePlate({ settings }: { settings: Pick<Settings, 'holdoffS' | 'speed'> }) {
   const { watch } = useFormContext<RigDraft>();
-  const [sensing, typed, ratedRpm, rate] = watch(['sensing', 'wheel', 'ratedRpm', 'sampleRateHz']);
+  const [sensing, typed, ratedRpm, rate, channels] = watch([
+    'sensing',
+    'wheel',
+    'ratedRpm',
+    'sampleRateHz',
+    'channels',
+  ]);
+  const notes = sensorSentences(channels);
   const wheel = wheelOf({ sensing, wheel: typed, ratedRpm });
   const found = wheel ? consequenceRows(wheel, numberOf(rate), settings) : null;
   return (
@@ -39,6 +46,11 @@ export function SidePlate({ settings }: { settings: Pick<Settings, 'holdoffS' | 
           followed.
         </Text>
       )}
+      {notes.map((note) => (
+        <Text key={note} size="small" tone="scribeSoft">
+          {note}
+        </Text>
+      ))}
     </Plate>
   );
 }
