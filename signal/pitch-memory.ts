@@ -47,6 +47,11 @@ export class PitchMemory {
     return this.table && this.kept ? this.kept.turns : this.fresh.turns;
   }
 
+  /** In use, and the last turn was as it was learnt. */
+  get fits(): boolean {
+    return this.table !== null && this.strikes === 0;
+  }
+
   /** The best that is known of how uneven the wheel is, wherever its teeth stand now; null: nothing yet. */
   get best(): PitchLearner | null {
     return this.kept ?? (this.fresh.turns > triesAt[0]! ? this.fresh : null);

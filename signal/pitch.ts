@@ -2,9 +2,10 @@
  * The live path's learning of pitches: whole turns of the first channel teach where each tooth stands, and what was learnt
  * is taken out of the speed between single teeth.
  *
- * The shaft's angle is theta = a t + b t^2 through three passes of the SAME tooth (a turn ago, and the begin and end of
- * this one), which the wheel's own unevenness cannot bend: exact for an even acceleration. Turns in which acceleration
- * changes the speed by 0.1 % or more from tooth to tooth teach nothing.
+ * The shaft's angle is the cubic through four passes of the SAME tooth, which the wheel's own unevenness cannot bend: the
+ * middle turn of the three is judged. It is exact for an acceleration that itself changes evenly, so that turns need not
+ * be steady to 0.1 % from tooth to tooth, as a straight line would want them: an even ramp teaches as well. Left out are
+ * turns whose speed changes by more than a tenth, or whose change itself changes by more than 2 %.
  * Forward and reverse are learnt apart: teeth rise on other flanks.
  */
 import { turnsNeeded } from '@/signal/pitch-learner';
@@ -14,9 +15,12 @@ import type { SpeedMeter } from '@/signal/speed-meter';
 import type { TurnListener, WheelFaceMeter } from '@/signal/wheel-face-meter';
 import type { WheelTracker } from '@/signal/wheel-tracker';
 
-const mostSpeedChange = 0.001;
+const mostChange = 0.1;
+const mostFits = 0.02;
+/** What is in use and fits is held against one turn of so many and one. */
+const turnsSkipped = 3;
 /** Pitches off by so much, slowly over the turn, are presumed until some turns were seen: a wheel that runs out a little. */
-const presumedSlow = 0.003;
+const presumedSlow = 0.002;
 
 export type PitchStatus = {
   /** none: a wheel of one tooth, or of too many; learning; in-use: taken out of the speed. */
@@ -42,9 +46,14 @@ export class Pitch implements TurnListener {
   /** Position of the meter's newest tooth; -1: not known. */
   private at = -1;
   private marked: Float64Array | null = null;
-  private lastStart = -1;
-  private lastStartS = NaN;
-  private lastEndS = NaN;
+  /** Instants of the last turn's teeth where they are to be judged, where it began, and when it, the turn before it and the next one began, s. */
+  private readonly times: Float64Array;
+  private hasTimes = false;
+  private skipped = 0;
+  private start = -1;
+  private beforeS = NaN;
+  private startS = NaN;
+  private endS = NaN;
 
   constructor(meter: SpeedMeter, tracker: WheelTracker, face: WheelFaceMeter | null) {
     const { positions, missing } = tracker;
@@ -56,6 +65,7 @@ export class Pitch implements TurnListener {
     this.reverse = new PitchMemory(size, missing > 0);
     this.memory = this.forward;
     this.offsets = new Float64Array(size);
+    this.times = new Float64Array(size);
     if (this.isOff) return;
     face?.listeners.push(this);
     meter.error.hidden = this.hidden();
@@ -76,7 +86,7 @@ export class Pitch implements TurnListener {
   /** Stop, gap or reversal. */
   lose(): void {
     this.at = -1;
-    this.lastStartS = this.lastEndS = NaN;
+    this.beforeS = this.startS = this.endS = NaN;
     this.forward.renumber();
     this.reverse.renumber();
   }
@@ -95,7 +105,10 @@ export class Pitch implements TurnListener {
   mark(place: number, spans: number): void {
     const { meter, memory, offsets } = this;
     if (this.isOff) return;
-    if (this.at >= 0) this.at = (this.at + spans) % offsets.length;
+    if (this.at >= 0) {
+      this.at += spans;
+      if (this.at >= offsets.length) this.at %= offsets.length;
+    }
     const table = this.at >= 0 ? memory.table : null;
     if (table !== this.marked) this.remark(table, place - this.at);
     meter.offset = table ? table[this.at]! : 0;
@@ -121,26 +134,44 @@ export class Pitch implements TurnListener {
   }
 
   turn(times: Float64Array, start: number, endS: number): void {
-    const { offsets, memory } = this;
-    const n = offsets.length;
     const startS = times[start]!;
-    const beforeS = this.lastEndS === startS && this.lastStart === start ? this.lastStartS : NaN;
-    this.lastStart = start;
-    this.lastStartS = startS;
-    this.lastEndS = endS;
-    // In turns: 0 at the start of this turn, -1 at that of the turn before, 1 at the end.
-    const p = startS - beforeS;
-    const q = endS - startS;
-    const b = (p - q) / (p * q * (p + q));
-    const a = 1 / q - b * q;
-    const slowest = Math.min(a, a + 2 * b * q);
-    if (!(slowest > 0 && (2 * Math.abs(b)) / (n * slowest * slowest) < mostSpeedChange)) return;
+    const follows = this.endS === startS && this.start === start;
+    const { memory } = this;
+    if (this.hasTimes && follows && this.measure(endS)) {
+      memory.take(this.offsets);
+      if (!this.marked) this.meter.error.hidden = this.hidden();
+      this.skipped = 0;
+    } else {
+      this.skipped++;
+    }
+    this.hasTimes = !memory.fits || this.skipped >= turnsSkipped;
+    if (this.hasTimes) this.times.set(times);
+    this.start = start;
+    this.beforeS = follows ? this.startS : NaN;
+    this.startS = startS;
+    this.endS = endS;
+  }
+
+  /** Offsets of the last turn, now that the one after it has ended too. */
+  private measure(afterS: number): boolean {
+    const { times, offsets, start, startS } = this;
+    const n = offsets.length;
+    const turnS = this.endS - startS;
+    const before = (this.beforeS - startS) / turnS;
+    const after = (afterS - startS) / turnS;
+    const slower = -before - 1;
+    const faster = after - 2;
+    if (!(Math.abs(slower) < mostChange && Math.abs(faster) < mostChange)) return false;
+    if (Math.abs(slower + faster) > mostFits) return false;
+    // Newton's divided differences of -1, 0, 1, 2 turns over `before`, 0, 1, `after`.
+    const second = 2 / (1 - before);
+    const third = (second - 1) / before;
+    const fourth = ((3 / (after - before) - second) / (after - 1) - third) / after;
     for (let i = 0; i < n; i++) {
       const k = start + i < n ? start + i : start + i - n;
-      const t = times[k]! - startS;
-      offsets[k] = n * (a * t + b * t * t) - i;
+      const u = (times[k]! - startS) / turnS;
+      offsets[k] = n * (u + u * (u - 1) * (third + fourth * (u - before))) - i;
     }
-    memory.take(offsets);
-    if (!this.marked) this.meter.error.hidden = this.hidden();
+    return true;
   }
 }

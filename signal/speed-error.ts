@@ -12,8 +12,12 @@ import type { SpeedRing } from '@/signal/speed-ring';
 import type { TurnScatter } from '@/signal/turn-scatter';
 import type { WindowLine } from '@/signal/window-line';
 
-/** Noise of neighbouring edges is alike where a filter is narrow, so that what was measured is a little too small. */
-const margin = 1.1;
+/**
+ * Neighbouring edges are off alike where a filter is narrow, and neighbouring teeth where they were cut so: third differences
+ * then see a little less than what intervals are off by.
+ */
+const margin = 1.2;
+const marginOfTurn = 1.1;
 /**
  * Edges that drift slowly against their places (a wheel in step with the sample grid, noise that a filter has slowed down)
  * hardly disagree from one tooth to the next and still do so over a stretch: so much of the variance that noise and
@@ -26,8 +30,12 @@ const inStep = 0.25;
 const toldInStep = 2.7;
 /** A change of speed within a window is believed where chance would make it this many standard errors only once in 400 times. */
 const believed = 3;
+/** Ends and line disagree by more than so many standard errors by chance only once in nine times. */
+const byChance = 1.6;
 /** What a line is off by on an even acceleration is taken off; so much of it stays in doubt. */
 const bentDoubt = 0.1;
+/** Intervals within so much of each other make both ends of a tooth count alike. */
+const alike = 0.1;
 
 export class SpeedError {
   readonly scatter: SpeedScatter;
@@ -37,6 +45,8 @@ export class SpeedError {
   perPositionS = NaN;
   /** Unevenness too slow from tooth to tooth to be seen in the scatter: variance of the share by which a pitch is off. */
   hidden = 0;
+  /** Positions by which a turn may be miscounted, for want of a sync that should be there. */
+  unproven = 0;
   /** The standard error as a share of the speed. */
   share = NaN;
   /** By what share time for a position is longer than the line's slope, its bend considered. */
@@ -58,18 +68,20 @@ export class SpeedError {
 
   /** Of a speed from the entry `from` to the newest. */
   ofEnds(from: number): void {
-    const { ring, positions, scatter, told } = this;
+    const { ring, positions, scatter } = this;
     const { marks, mask } = ring;
     const spans = marks[(ring.next - 1) & mask]! - marks[from & mask]!;
+    const isLong = spans >= 2.5;
     let tooth = scatter.variance;
-    if (told > 0) {
-      tooth += told * scatter.ignorance;
-      if (spans >= 2.5) tooth = Math.max(tooth, leastTold * told);
+    if (isLong || scatter.isIgnorant) {
+      const { told } = this;
+      if (told > 0) tooth += told * scatter.ignorance;
+      if (isLong && leastTold * told > tooth) tooth = leastTold * told;
     }
     // What is uneven once a turn cancels over a whole one.
     const part = Math.max(0, 1 - (spans / positions) ** 2);
     let square = (this.ends(from) * tooth) / (spans * spans) + this.hidden * part;
-    if (scatter.doubtAt >= from) square += (scatter.doubt / spans) ** 2;
+    square += this.doubted(from, spans);
     this.share = margin * Math.sqrt(square);
   }
 
@@ -80,7 +92,7 @@ export class SpeedError {
   private ends(from: number): number {
     const { ring, perPositionS } = this;
     const last = ring.next - 1;
-    if (last - ring.first < 2) return 2;
+    if (last - ring.first < 2 || (from === last - 1 && this.isSteady(last))) return 2;
     // By straight lines through the middles of intervals, not below a quarter of an interval's own speed.
     let begin: number;
     if (from > ring.first) begin = this.pace(from - 1, from + 1);
@@ -93,6 +105,25 @@ export class SpeedError {
     return (1 / (begin * begin) + 1 / (end * end)) / (perPositionS * perPositionS);
   }
 
+  /** What a tooth far off its place, or one too many or too few, adds to the square. */
+  private doubted(from: number, spans: number): number {
+    const { scatter } = this;
+    if (scatter.doubtAt < from) return 0;
+    const off = spans > 1 && scatter.isSlip ? Math.max(1, scatter.doubt) : scatter.doubt;
+    return (off / spans) ** 2;
+  }
+
+  /** The last interval is like the one before. */
+  private isSteady(last: number): boolean {
+    const { times, places, mask } = this.ring;
+    const c = last & mask;
+    const b = (last - 1) & mask;
+    const a = (last - 2) & mask;
+    const here = (times[c]! - times[b]!) * (places[b]! - places[a]!);
+    const before = (times[b]! - times[a]!) * (places[c]! - places[b]!);
+    return Math.abs(here - before) < alike * before;
+  }
+
   /** Positions a second from one entry to another. */
   private pace(from: number, to: number): number {
     const { times, marks, mask } = this.ring;
@@ -103,13 +134,14 @@ export class SpeedError {
   ofTurn(from: number, edges: number, turns: TurnScatter): void {
     const { positions, scatter, told } = this;
     const { variance } = turns;
-    let edge = margin * margin * edges * variance;
+    let edge = marginOfTurn * marginOfTurn * edges * variance;
     if (told > 0) {
       const least = variance < inStep * told ? toldInStep : toldOfTurn;
       edge = Math.max(edge, (least * told * this.ends(from)) / 2);
     }
     let square = edge / (positions * positions);
-    if (scatter.doubtAt >= from && scatter.isSlip) square += (scatter.doubt / positions) ** 2;
+    if (scatter.isSlip) square += this.doubted(from, positions);
+    if (this.unproven > 0) square += (this.unproven / positions) ** 2;
     this.share = Math.sqrt(square);
   }
 
@@ -137,8 +169,9 @@ export class SpeedError {
     // Where the ends still disagree by more than chance, the speed did not change evenly.
     const disagreed = endsS / line.perPositionS - 1 - this.bent;
     const chance = tooth * (2 / (spans * spans) - 1 / spread);
-    if (disagreed * disagreed > chance) square += disagreed * disagreed - chance;
-    if (scatter.doubtAt >= line.from) square += (scatter.doubt / spans) ** 2;
+    if (disagreed * disagreed > byChance * byChance * chance) square += disagreed * disagreed - chance;
+    square += this.doubted(line.from, spans);
+    if (this.unproven > 0 && spans >= positions) square += (this.unproven / positions) ** 2;
     this.share = margin * Math.sqrt(square);
   }
 

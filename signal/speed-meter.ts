@@ -58,16 +58,6 @@ export class SpeedMeter {
     return this.ring.count;
   }
 
-  /** Instant of the newest tooth, s, and time for one position as of the latest speed, s; NaN: none. */
-  get newestS(): number {
-    const { ring } = this;
-    return ring.count > 0 ? ring.times[(ring.next - 1) & ring.mask]! : NaN;
-  }
-
-  get perPositionS(): number {
-    return this.factor / this.latest.rpm;
-  }
-
   /** The only tooth so far is moved in time: its filter delay became known. */
   retimeFirst(t: number): void {
     const { ring } = this;
@@ -163,7 +153,7 @@ export class SpeedMeter {
       const endsS = error.perPositionS;
       line.solve();
       error.perPositionS = line.perPositionS;
-      error.ofLine(line, turn.from > from ? turn.scatter : null, endsS);
+      error.ofLine(line, turn.turnS > 0 && turn.from >= from ? turn.scatter : null, endsS);
       error.perPositionS *= 1 + error.bent;
     } else {
       error.ofEnds(from);

@@ -15,6 +15,8 @@ const presumedWeight = 2;
 const keptWeight = 8;
 const shortestMemory = 48;
 const longestMemory = 512;
+/** From then on a few teeth more or less change the factor for small samples by next to nothing. */
+const settledWeight = 46;
 /** So many times the scatter is no scatter any more. */
 const outlier = 5;
 /** Positions; see `isSlip`. */
@@ -39,6 +41,7 @@ export class SpeedScatter {
   private readonly fading: number;
   private sum = presumedWeight * presumed ** 2;
   private weight = presumedWeight;
+  private factor = NaN;
 
   constructor(ring: SpeedRing, turnPositions: number) {
     this.ring = ring;
@@ -69,6 +72,10 @@ export class SpeedScatter {
     return presumedWeight / this.weight;
   }
 
+  get isIgnorant(): boolean {
+    return this.weight < settledWeight;
+  }
+
   /** The doubt may be a tooth that did not show, or a pulse that is none. */
   get isSlip(): boolean {
     return this.doubt > slip;
@@ -88,9 +95,10 @@ export class SpeedScatter {
     const d13 = d12 + d23;
     const d02 = d01 + d12;
     const d03 = d01 + d13;
-    const c3 = 1 / (d03 * d13 * d23);
-    const c2 = -1 / (d02 * d12 * d23);
-    const c1 = 1 / (d01 * d12 * d13);
+    // All c times the product of all differences, which leaves the ratio as it is and takes no division.
+    const c3 = d01 * d02 * d12;
+    const c2 = -d01 * d03 * d13;
+    const c1 = d02 * d03 * d23;
     const c0 = c1 + c2 + c3;
     const p0 = marks[i0]!;
     const misfit = c1 * (marks[i1]! - p0) + c2 * (marks[i2]! - p0) + c3 * (marks[i3]! - p0);
@@ -112,7 +120,7 @@ export class SpeedScatter {
 
   private refresh(): void {
     // Neighbouring differences share teeth: 2.3 of them tell as much as one.
-    const factor = smallSample(2 + this.weight / 2.3);
-    this.variance = (factor * factor * this.sum) / this.weight;
+    if (this.weight < settledWeight) this.factor = smallSample(2 + this.weight / 2.3) ** 2;
+    this.variance = (this.factor * this.sum) / this.weight;
   }
 }

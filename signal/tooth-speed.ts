@@ -37,6 +37,8 @@ export class ToothSpeed {
   private waitingT = NaN;
   private waitingSigmaS = NaN;
   private place = 0;
+  /** Positions passed out of sync. */
+  private unsynced = 0;
 
   constructor(
     { sensing, wheel }: RigSetup,
@@ -61,6 +63,7 @@ export class ToothSpeed {
     this.pitch.lose();
     this.plain?.reset();
     this.waitingT = NaN;
+    this.unsynced = 0;
   }
 
   /** The falling edge at entry `i` of the queue ends the tooth at hand. */
@@ -115,7 +118,7 @@ export class ToothSpeed {
     this.waitingT = NaN;
     if (spans === 0) {
       // A pulse, and counted as one, but no tooth of the wheel.
-      if (!this.plain) this.extraPositions--;
+      if (!this.plain) this.extraPositions -= this.sign;
       return false;
     }
     meter.t = t;
@@ -127,9 +130,12 @@ export class ToothSpeed {
   private advance(spans: number): boolean {
     const { meter, columns, uneven } = this;
     this.place += spans;
-    if (this.sync.missing > 0) this.extraPositions += moveOn(this.sync, spans);
-    const { newestS, perPositionS } = meter;
-    if (perPositionS > 0) uneven.notePitch((meter.t - newestS) / (perPositionS * spans));
+    if (this.sync.missing > 0) this.proveGap(spans);
+    const { times, next, mask } = meter.ring;
+    if (meter.latest.rpm > 0) {
+      uneven.ratio = (meter.t - times[(next - 1) & mask]!) / (meter.error.perPositionS * spans);
+      uneven.notePitch();
+    }
     this.pitch.mark(this.place, spans);
     if (!meter.add(this.place)) return false;
     const i = roomForSpeed(columns);
@@ -137,5 +143,13 @@ export class ToothSpeed {
     columns.rpm[i] = this.sign * meter.latest.rpm;
     columns.errorRpm[i] = meter.latest.errorRpm;
     return true;
+  }
+
+  /** Positions of a wheel with a gap are counted surely in sync only; in sync it should be two turns after a start. */
+  private proveGap(spans: number): void {
+    const { sync, meter } = this;
+    this.extraPositions += this.sign * moveOn(sync, spans);
+    this.unsynced = sync.state === 'synced' ? 0 : this.unsynced + spans;
+    meter.error.unproven = this.unsynced > 2 * sync.positions ? sync.missing : 0;
   }
 }

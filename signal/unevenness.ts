@@ -4,6 +4,7 @@ export class Unevenness {
   widestState = NaN;
   /** Longest pitch of the last turns in mean ones: uneven teeth and a swaying shaft. (Begins as a fraction, see `motion.ts`.) */
   widestPitch = 1.5;
+  ratio = NaN;
   private readonly fading: number;
 
   constructor(pulsesPerTurn: number) {
@@ -23,7 +24,9 @@ export class Unevenness {
     this.widestState = Math.max(share, before);
   }
 
-  notePitch(ratio: number): void {
+  /** A pitch took `ratio` mean ones; a field, since a number that is passed to a function may be boxed. */
+  notePitch(): void {
+    const { ratio } = this;
     if (ratio < 1.5) this.widestPitch = Math.max(ratio, 1 + (this.widestPitch - 1) * this.fading);
   }
 }
