@@ -1,4 +1,5 @@
 /** What silence since the last edge proves: the most that the shaft can turn at, and where the wheel can stand by now. */
+import { noGapAhead } from '@/signal/gap-sync';
 import type { Motion } from '@/signal/motion';
 
 /** Standard errors by which an edge is presumed to be off, at most: the bound must hold on noisy signals too. */
@@ -11,7 +12,9 @@ function silentPositions({ tracker, train }: Motion): number {
   if (!tracker) return train.silentPlaces * Math.max(1 + off, uneven.widestPitch);
   const even = 1 / tracker.table.stepsPerCycle;
   const { widestState } = uneven;
-  return Math.min(1, Math.max(even + off, 1.1 * (Number.isNaN(widestState) ? 2 * even : widestState)));
+  const state = Math.min(1, Math.max(even + off, 1.1 * (Number.isNaN(widestState) ? 2 * even : widestState)));
+  // In a gap of the wheel no line changes.
+  return (noGapAhead(train.sync) ? 0 : train.sync.missing) + state;
 }
 
 /**
@@ -53,8 +56,10 @@ export function angleDeg({ train, rig, reversed }: Motion, nowS: number): number
     ? 0
     : (train.rpm / 60) * gearRatio * pulsesPerTurn * (nowS - train.lastRiseS);
   const passed = train.lastPosition + Math.min(1, Math.abs(since));
+  const shift = train.face?.numberShift ?? 0;
   // In reverse the first tooth after the gap is the last one of the wheel.
-  const place = reversed ? (missingPulses > 0 ? pulsesPerTurn - missingPulses - 1 : 0) - passed : passed;
+  const last = missingPulses > 0 ? pulsesPerTurn - missingPulses - 1 : shift;
+  const place = reversed ? last - passed : passed - shift;
   const angle = (360 * place) / pulsesPerTurn;
   return ((angle % 360) + 360) % 360;
 }

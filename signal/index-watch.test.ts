@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { createSpeedColumns } from '@/signal/columns';
+import { angleDeg } from '@/signal/falling-bound';
 import { IndexWatch } from '@/signal/index-watch';
 import { defaultSettings } from '@/signal/model';
 import type { RigSetup } from '@/signal/model';
@@ -165,9 +166,73 @@ describe('an index', () => {
   });
 });
 
+describe('the numbers of the teeth', () => {
+  const strong = 7;
+  /** Tooth 7 of 24 stands out, on each line. */
+  const marked =
+    (turnsAt: (t: number) => number, shift = 0) =>
+    (t: number) => {
+      const place = turnsAt(t) * 24 - shift;
+      const tooth = ((Math.floor(place) % 24) + 24) % 24;
+      return 0.65 + (tooth === strong ? 1.2 : 1) * (1 - Math.cos(2 * Math.PI * place));
+    };
+  const faceOf = (motion: Motion) => motion.train.face!.snapshot(null);
+  const strongest = (motion: Motion): number => {
+    const swings = faceOf(motion).positions.map(({ swingV }) => swingV ?? 0);
+    return swings.indexOf(Math.max(...swings));
+  };
+
+  it('begin with the first after the index, wherever the count began', () => {
+    for (const from of [0.03, 0.4, 0.77]) {
+      const turnsAt = (t: number): number => 7 * t + from;
+      const rig = testRig('single', 24);
+      const plain = openPaths(rig, rateHz, 2, [marked(turnsAt)]).motion;
+      expect(faceOf(plain).numbered).toBe(false);
+      const { motion } = watched(withIndex(rig), 2, [marked(turnsAt), mark(turnsAt, 0.05, still)]);
+      expect(faceOf(motion).numbered).toBe(true);
+      expect(strongest(motion)).toBe(strong);
+      // Where the shaft stands now, on the same numbers.
+      const now = angleDeg(motion, 2);
+      expect(Math.abs(((now - 360 * (turnsAt(2) % 1) + 540) % 360) - 180)).toBeLessThan(16);
+    }
+  });
+
+  it('are the same turning the other way, and after a stop', () => {
+    const turnsAt = (t: number): number => (t < 2 ? 7 * t : t < 4.5 ? 14 : 14 - 7 * (t - 4.5)) + 0.4;
+    const lines = [0, 0.25].map((shift) => marked(turnsAt, shift));
+    const rig = withIndex(testRig('quadrature', 24));
+    const there = watched(rig, 2, [...lines, mark(turnsAt, 0.05, still)]).motion;
+    expect(strongest(there)).toBe(strong);
+    const { motion } = watched(rig, 6.5, [...lines, mark(turnsAt, 0.05, still)]);
+    expect(motion.direction).toBe('reverse');
+    expect(faceOf(motion).numbered).toBe(true);
+    expect(strongest(motion)).toBe(strong);
+    const now = angleDeg(motion, 6.5);
+    expect(Math.abs(((now - 360 * (turnsAt(6.5) % 1) + 540) % 360) - 180)).toBeLessThan(16);
+  });
+
+  it('stay where they are though the index jitters about the flank of a tooth', () => {
+    // The index rises with tooth 0, a little before or after it.
+    const turnsAt = (t: number): number => 7 * t + 0.4;
+    const jitter = normal(seeded(4));
+    const offs = Array.from({ length: 40 }, () => 0.08 * jitter());
+    const index = (t: number): number => {
+      const turn = Math.floor(turnsAt(t));
+      const places = (turnsAt(t) - turn) * 24;
+      return places > 0.25 + offs[turn]! && places < 3 ? 3 : 0.3;
+    };
+    const seen = new Set<number>();
+    for (const seconds of [2, 2.4, 2.9, 3.5, 4, 4.7])
+      seen.add(
+        strongest(watched(withIndex(testRig('single', 24)), seconds, [marked(turnsAt), index]).motion),
+      );
+    expect(seen.size).toBe(1);
+  });
+});
+
 describe('without an index', () => {
   it('there is no watch', () => {
     const motion = new Motion(testRig('single', 24), defaultSettings, rateHz, 0, createSpeedColumns(), []);
-    expect(IndexWatch.of(undefined, motion, rateHz)).toBeNull();
+    expect(IndexWatch.of(undefined, undefined, motion, rateHz)).toBeNull();
   });
 });

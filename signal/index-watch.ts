@@ -13,6 +13,7 @@
  */
 import type { ChannelPath } from '@/signal/channel-path';
 import type { IndexCounts } from '@/signal/index-counts';
+import { IndexNumbering } from '@/signal/index-numbering';
 import type { Motion } from '@/signal/motion';
 import { readableFrom } from '@/signal/tooth-log';
 
@@ -57,26 +58,38 @@ export class IndexWatch {
   private readonly motion: Motion;
   private readonly sampleS: number;
   private readonly countsOf: IndexCounts;
+  private readonly numbering: IndexNumbering;
   private next = 0;
   /** Count at the last index pulse, or where it should have been; NaN: not known. */
   private placeAtIndex = NaN;
   private lastSigmaS = NaN;
   private turnS = NaN;
 
-  /** Null where the rig has no index channel. */
-  static of(path: ChannelPath | undefined, motion: Motion, rateHz: number): IndexWatch | null {
-    return path && motion.indexCounts ? new IndexWatch(path, motion, motion.indexCounts, rateHz) : null;
+  /** Null where the rig has no index channel. @param primary the channel that speed comes from. */
+  static of(
+    path: ChannelPath | undefined,
+    primary: ChannelPath | undefined,
+    motion: Motion,
+    rateHz: number,
+  ): IndexWatch | null {
+    const { indexCounts } = motion;
+    return path && primary && indexCounts ? new IndexWatch(path, primary, motion, indexCounts, rateHz) : null;
   }
 
-  private constructor(path: ChannelPath, motion: Motion, counts: IndexCounts, rateHz: number) {
+  private constructor(
+    path: ChannelPath,
+    primary: ChannelPath,
+    motion: Motion,
+    counts: IndexCounts,
+    rateHz: number,
+  ) {
     const { pulsesPerTurn, missingPulses } = motion.rig.wheel;
     this.path = path;
     this.motion = motion;
     this.countsOf = counts;
     this.sampleS = 1 / rateHz;
-    this.expected = motion.tracker
-      ? pulsesPerTurn * motion.tracker.table.stepsPerCycle
-      : pulsesPerTurn - missingPulses;
+    this.numbering = new IndexNumbering(motion, primary.log, path.log);
+    this.expected = (pulsesPerTurn - missingPulses) * (motion.tracker?.table.stepsPerCycle ?? 1);
   }
 
   /** Judged turns. */
@@ -93,6 +106,7 @@ export class IndexWatch {
     if (teeth === 0) return;
     const lastToothS = t[(teeth - 1) & mask]!;
     while (this.next < log.count && log.riseS[this.next & log.mask]! < lastToothS) this.take(this.next++);
+    this.numbering.tick();
   }
 
   private take(n: number): void {
@@ -111,6 +125,7 @@ export class IndexWatch {
     const jitter = Math.sqrt(sigmaS ** 2 + this.lastSigmaS ** 2) * (counted / apartS);
     this.turnS = apartS;
     this.lastIndexS = indexS;
+    this.numbering.note(n);
     this.lastSigmaS = sigmaS;
     if (fromS >= this.motion.sameWaySinceS && n - log.unbrokenFrom > unproven && !Number.isNaN(counted)) {
       const excess = this.judge(counted, sigmas * jitter, fromS);

@@ -154,12 +154,12 @@ export class Motion extends ShaftState {
     const step = ring.take(queue, i, role);
     if (step !== 0 && step !== illegalStep) {
       this.pulses = tracker.netSteps / tracker.table.stepsPerCycle;
-      if (this.state === 'running') this.train.uneven.noteState(ring.stateS / this.train.periodS);
+      if (this.state === 'running') this.train.uneven.noteState(ring.stateS / this.train.sync.perPositionS);
       if (tracker.sense !== this.sense && tracker.sense !== 0) this.face(tracker.sense);
     }
     // Right after turning back it would be the other direction's.
     if (role === 1 && step === this.sense && tracker.levels[1] === 1 && this.state === 'running') {
-      ring.phase(this.sense < 0).learn((tracker.t - this.train.rowS) / this.train.periodS);
+      ring.phase(this.sense < 0).learn((tracker.t - this.train.rowS) / this.train.sync.perPositionS);
     }
   }
 

@@ -74,7 +74,6 @@ class SignalPipeline implements Pipeline {
     const needed: readonly string[] = neededRoles(rig);
     this.paths = channels.map((name) => {
       const channel = rig.channels.find((own) => own.name === name) as Channel;
-      const hasGap = needed.length === 1 && channel.role === needed[0];
       return new ChannelPath({
         channel,
         band: settings.band,
@@ -83,7 +82,7 @@ class SignalPipeline implements Pipeline {
         rateHz,
         startIndex,
         holdoffS: settings.holdoffS,
-        missingPulses: hasGap ? missingPulses : 0,
+        missingPulses: needed.includes(channel.role) ? missingPulses : 0,
         teethPerTurn: channel.role === 'Z' ? 1 : Math.max(1, pulsesPerTurn - missingPulses),
         bands,
       });
@@ -110,7 +109,12 @@ class SignalPipeline implements Pipeline {
     const index = channels.findIndex((name) =>
       rig.channels.some((own) => own.name === name && own.role === 'Z'),
     );
-    this.indexWatch = IndexWatch.of(this.paths[index], this.motion, rateHz);
+    this.indexWatch = IndexWatch.of(
+      this.paths[index],
+      this.paths[this.roles.indexOf(0)],
+      this.motion,
+      rateHz,
+    );
     this.desk = new FindingsDesk(
       {
         rig,

@@ -3,11 +3,13 @@ import { describe, expect, it } from 'vitest';
 import { createEdgeQueue, createSpeedColumns } from '@/signal/columns';
 import { createDirectionTracker, seenStates, stepTo, stepTogether } from '@/signal/direction-tracker';
 import type { DirectionTracker } from '@/signal/direction-tracker';
+import { speedAtMostRpm } from '@/signal/falling-bound';
 import { defaultSettings } from '@/signal/model';
 import { Motion } from '@/signal/motion';
 import { edgeRising } from '@/signal/pipeline-types';
 import type { DirectionChange } from '@/signal/pipeline-types';
 import { illegalStep, stepTable } from '@/signal/step-table';
+import { openPaths } from '@/signal/test-paths';
 import { normal, seeded, testRig } from '@/signal/test-signals';
 
 const rateHz = 10_000;
@@ -257,5 +259,47 @@ describe('widths of states', () => {
     const { motion } = motionOf('quadrature', edgesOf(quadrature, 0.5, cyclesAt, 4000));
     expect(motion.tracker!.netSteps).toBeGreaterThan(70);
     expect(motion.stateDwell!.forwardCycles).toBeLessThan(4);
+  });
+});
+
+describe('a quadrature pair on a wheel with a gap', () => {
+  const gapWheel = (turnsAt: (t: number) => number, shift: number) => (t: number) => {
+    const place = turnsAt(t) * 36 - shift;
+    return ((Math.floor(place) % 36) + 36) % 36 < 35 ? 1.65 - Math.cos(2 * Math.PI * place) : 0.65;
+  };
+
+  it('counts its positions and reads its speed across the gap, either way round', () => {
+    for (const way of [1, -1]) {
+      const turnsAt = (t: number): number => way * 10 * t + 0.4;
+      const settings = { speed: { method: 'tooth' as const, windowS: 0.1, stoppedAfterS: 2 } };
+      const lines = [0, 0.25].map((shift) => gapWheel(turnsAt, shift));
+      const { motion, speeds } = openPaths(testRig('quadrature', 36, 1), 20_000, 3, lines, { settings });
+      expect(motion.train.sync.state).toBe('synced');
+      expect(Math.abs(motion.positions / 36 - way * 30)).toBeLessThan(0.15);
+      for (const { rpm } of speeds.slice(80)) expect(Math.abs(rpm / (way * 600) - 1)).toBeLessThan(0.01);
+      expect(Math.abs(motion.phase.deg - way * 90)).toBeLessThan(2);
+    }
+  });
+
+  it('may be silent for longer where the gap is due', () => {
+    const turnsAt = (t: number): number => 10 * t + 0.4;
+    const lines = [0, 0.25].map((shift) => gapWheel(turnsAt, shift));
+    // 1.44 pitches of silence, after the last tooth before the gap and after another.
+    const atMost = (lastTooth: number): number => {
+      const seconds = (28.6 + (lastTooth + 0.4) / 36) / 10;
+      const { motion } = openPaths(testRig('quadrature', 36, 1), 20_000, seconds, lines);
+      expect(motion.train.sync).toMatchObject({ state: 'synced', position: lastTooth });
+      return speedAtMostRpm(motion, motion.lastEdgeS + 0.004, 0) / 600;
+    };
+    expect(atMost(34)).toBeGreaterThan(0.85);
+    expect(atMost(20)).toBeLessThan(0.25);
+  });
+
+  it('is in sync with it anew after turning back', () => {
+    const turnsAt = (t: number): number => 0.4 + 10 * (t < 1.5 ? t : 3 - t);
+    const lines = [0, 0.25].map((shift) => gapWheel(turnsAt, shift));
+    const { motion } = openPaths(testRig('quadrature', 36, 1), 20_000, 3, lines);
+    expect(motion.train.sync).toMatchObject({ state: 'synced', losses: { reversed: 1 } });
+    expect(Math.abs(motion.positions / 36)).toBeLessThan(0.2);
   });
 });

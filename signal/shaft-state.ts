@@ -39,7 +39,7 @@ export class ShaftState {
   ) {
     this.rig = rig;
     this.ring = ringMotion(rig, rateHz);
-    this.train = new ToothTrain(rig, this.ring ? 0 : rig.wheel.missingPulses, settings, speed);
+    this.train = new ToothTrain(rig, rig.wheel.missingPulses, settings, speed);
     this.speed = speed;
     this.directions = directions;
     this.sameWaySinceS = fromS;

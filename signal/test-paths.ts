@@ -53,18 +53,20 @@ export function openPaths(
     .filter(({ channel }) => needed.includes(channel.role))
     .map((path) => ({ path, queue: path.queue, role: needed.indexOf(path.channel.role) }));
   const indexPath = paths.find(({ channel }) => channel.role === 'Z');
-  const watch = IndexWatch.of(indexPath, motion, rateHz);
+  const primary = lanes.find(({ role }) => role === 0)?.path;
+  const watch = IndexWatch.of(indexPath, primary, motion, rateHz);
   const tick = samplesPerTick(rateHz);
   const lostAt = more.lost ? Math.round(more.lost.atS * rateHz) : Infinity;
   const samples = new Float64Array(chunkSamples);
-  for (let at = 0; at < seconds * rateHz;) {
+  const end = Math.round(seconds * rateHz);
+  for (let at = 0; at < end;) {
     if (at === lostAt) {
       at += more.lost!.samples;
       for (const path of paths) path.skipTo(at);
       motion.gap(lostAt / rateHz, at / rateHz, at);
     }
     const toLoss = lostAt > at ? lostAt - at : Infinity;
-    const count = Math.min(more.chunk ?? chunkSamples, tick - (at % tick), toLoss);
+    const count = Math.min(more.chunk ?? chunkSamples, tick - (at % tick), toLoss, end - at);
     paths.forEach((path, c) => {
       for (let i = 0; i < count; i++) samples[i] = volts[c]!((at + i) / rateHz);
       path.advance(samples, 0, count, at);

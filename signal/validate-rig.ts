@@ -44,11 +44,11 @@ function gapIssue({ sensing, wheel: { pulsesPerTurn, missingPulses } }: RigSetup
       detail: `${missingPulses} missing of ${pulsesPerTurn} positions leaves fewer than two teeth to tell the gap by.`,
     };
   }
-  if (missingPulses > 0 && (sensing === 'quadrature' || sensing === 'three-hall')) {
+  if (missingPulses > 0 && sensing === 'three-hall') {
     return {
       code: 'gap-not-followed',
       pointer,
-      detail: `A gap is followed on one channel only: ${sensing} sensing counts every pulse, so that none may be missing.`,
+      detail: 'A three-Hall set counts pole pairs, none of which can be missing.',
     };
   }
   return null;

@@ -53,8 +53,9 @@ function startIssue(startIndex: number): SetupIssue | null {
   };
 }
 
-/** Longer than any stream lasts; what is longer may as well be a slip of the pen. */
+/** Longer than any stream lasts, and shorter than any edge is timed: beyond them it is a slip of the pen. */
 const longestS = 1e6;
+const shortestS = 1e-9;
 
 function timingIssue({ holdoffS, speed }: Settings): SetupIssue | null {
   if (!(holdoffS >= 0 && holdoffS <= longestS)) {
@@ -63,10 +64,10 @@ function timingIssue({ holdoffS, speed }: Settings): SetupIssue | null {
   if (!['tooth', 'turn', 'window'].includes(speed.method)) {
     return { code: 'bad-speed', pointer: '/speed/method', detail: 'The method is tooth, turn or window.' };
   }
-  if (!(speed.windowS > 0 && speed.windowS <= longestS)) {
+  if (!(speed.windowS >= shortestS && speed.windowS <= longestS)) {
     return { code: 'bad-speed', pointer: '/speed/windowS', detail: 'The window must be longer than 0 s.' };
   }
-  if (!(speed.stoppedAfterS > 0 && speed.stoppedAfterS <= longestS)) {
+  if (!(speed.stoppedAfterS >= shortestS && speed.stoppedAfterS <= longestS)) {
     return {
       code: 'bad-speed',
       pointer: '/speed/stoppedAfterS',

@@ -53,8 +53,11 @@ export class WheelFaceMeter implements WheelSeat {
   /** Last pass, s. */
   readonly seenS: Float64Array;
   private readonly learnt: Uint8Array;
+  /** Position that bears the number 0, or in reverse the one before it, where an index has told; else 0. */
+  numberShift = 0;
   private isReversed = false;
   private isStale = false;
+  private hasIndex = false;
   private started = false;
   private startPosition = 0;
   private lastPosition = 0;
@@ -84,7 +87,29 @@ export class WheelFaceMeter implements WheelSeat {
 
   /** Position on the wheel of what was counted as `position`: a wheel that turns in reverse shows its teeth backwards. */
   numberOf(position: number): number {
-    return this.isReversed ? mirrored(position, this.positions, this.missing) : position;
+    const { positions, missing, numberShift, isReversed } = this;
+    if (missing > 0) return isReversed ? mirrored(position, positions, missing) : position;
+    return (positions + (isReversed ? numberShift - position : position - numberShift)) % positions;
+  }
+
+  /** Numbers are fixed to the wheel, by its gap or by an index. */
+  get isNumbered(): boolean {
+    return this.missing > 0 ? !Number.isNaN(this.seenS[0]!) : this.hasIndex;
+  }
+
+  /** An index says that the tooth at `position` is the first that comes after it; what was learnt stays with its teeth. */
+  numberFrom(position: number): void {
+    const { positions } = this;
+    this.hasIndex = true;
+    this.numberShift = (this.isReversed ? position - 1 + positions : position) % positions;
+  }
+
+  /** How many positions the tooth at `position` comes after the first one that an index told of, -N/2 to N/2. */
+  aheadOfFirst(position: number): number {
+    const { positions, numberShift, isReversed } = this;
+    const first = isReversed ? numberShift + 1 : numberShift;
+    const ahead = (position - first + 2 * positions) % positions;
+    return ahead > positions / 2 ? ahead - positions : ahead;
   }
 
   /** What was learnt holds for the teeth that come now. */
@@ -143,26 +168,27 @@ export class WheelFaceMeter implements WheelSeat {
   }
 
   snapshot(angleDeg: number | null): WheelFace {
-    const { positions, missing, isReversed } = this;
-    const numbered = missing > 0 && !Number.isNaN(this.seenS[0]!);
-    const list: WheelFace['positions'] = [];
-    for (let i = 0; i < positions; i++) {
-      const k = isReversed ? mirrored(i, positions, missing) : i;
+    const { positions, missing, isReversed, isNumbered: numbered } = this;
+    const list: WheelFace['positions'] = new Array<WheelFace['positions'][number]>(positions);
+    for (let k = 0; k < positions; k++) {
+      const i = this.numberOf(k);
       const gone = numbered && i >= positions - missing;
       const hidden = gone || this.absence.inRow[k]! > 0;
-      list.push({
+      list[i] = {
         angleDeg: (360 * i) / positions,
         spacingErrorDeg: gone ? null : known(isReversed ? -this.spacingDeg[k]! : this.spacingDeg[k]!),
         swingV: hidden ? null : known(this.swingV[k]!),
         missing: gone,
         count: this.counts[k]!,
-      });
+      };
     }
     return { numbered, positions: list, angleDeg };
   }
 
   private forget(): void {
     this.isStale = false;
+    this.hasIndex = false;
+    this.numberShift = 0;
     this.turns = this.learntTurns = 0;
     for (const column of [this.spacingDeg, this.step, this.stepVariance, this.swingV, this.swingVariance])
       column.fill(NaN);

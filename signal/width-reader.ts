@@ -27,6 +27,7 @@ export class WidthReader {
   readonly isBlind: boolean;
   /** The leading edge that waits for its width, as an entry of a queue of its own. */
   readonly lead: EdgeQueue = createEdgeQueue();
+  readonly leadRises: boolean;
   isHolding = false;
   /** Width of the last pulse, s. */
   widthS = NaN;
@@ -38,7 +39,6 @@ export class WidthReader {
   standStills = 0;
   private readonly classes: readonly WidthClass[];
   private readonly lnWidths: Float64Array;
-  private readonly leadRises: boolean;
   /** Wider than that, no tooth, s and samples. */
   private readonly widestS: number;
   private readonly longestHold: number;
