@@ -7,6 +7,7 @@ import type { Direction } from '@/signal/model';
 /** Half octaves of tooth frequency, from 2^-10 Hz on. */
 const speeds = 64;
 const lowest = 20;
+const step = 2 ** 0.5;
 
 export class Baseline {
   private readonly means: Float64Array;
@@ -26,8 +27,9 @@ export class Baseline {
     this.looks = new Uint8Array(places);
   }
 
-  /** NaN where it is not known (yet). */
+  /** NaN where it is not known (yet), or where the speed is not. */
   usual(direction: Direction, toothHz: number): number {
+    if (!(toothHz > 0)) return NaN;
     const place = this.place(direction, toothHz);
     return this.looks[place]! < this.needed ? NaN : this.means[place]!;
   }
@@ -47,15 +49,14 @@ export class Baseline {
     this.looks[place] = looks + 1;
   }
 
-  /** A better one, where it is known. */
-  replace(direction: Direction, toothHz: number, value: number): void {
-    const place = this.place(direction, toothHz);
-    if (this.looks[place]! >= this.needed) this.means[place] = value;
+  /** The next slower or faster half octave, where this one is not known. */
+  usualBeside(direction: Direction, toothHz: number): number {
+    const slower = this.usual(direction, toothHz / step);
+    return Number.isNaN(slower) ? this.usual(direction, toothHz * step) : slower;
   }
 
   /** The nearest speed in this direction of which it is known; NaN: none. */
   nearestHz(direction: Direction, toothHz: number): number {
-    const step = 2 ** 0.5;
     for (let far = 0; far < speeds; far++) {
       for (const hz of [toothHz * step ** far, toothHz / step ** far])
         if (!Number.isNaN(this.usual(direction, hz))) return hz;

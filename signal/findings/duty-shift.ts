@@ -7,6 +7,8 @@ import type { Evidence } from '@/signal/finding-words/values';
 
 const opensAt = 0.05;
 const staysAt = 0.03;
+/** Beside the half octave of speed next to it, where its own is not known yet. */
+const opensBesideAt = 0.08;
 /** So many standard errors of the mean: teeth that differ much from each other prove less. */
 const errors = 4;
 /** The swing may differ from the usual one by so much: pulses of one pole widen as they grow. */
@@ -51,17 +53,18 @@ export class DutyShiftRule implements FindingRule {
 
   private judge(path: ChannelPath, index: number, nowS: number): void {
     const means = this.means[index]!;
-    if (!means.steady || !(means.duty > 0 && means.duty < 1)) return;
+    if (means.ramps || !(means.duty > 0 && means.duty < 1)) return;
     const latch = this.latches[index]!;
-    const usual = this.usualDuty(index);
+    const { usual, own } = this.usualDuty(index);
     const shift = means.duty - usual;
-    const limit = latch.open ? staysAt : Math.max(opensAt, errors * means.dutyError);
+    const least = own ? opensAt : opensBesideAt;
+    const limit = latch.open ? staysAt : Math.max(least, errors * means.dutyError);
     const shifted = Math.abs(shift) > limit && this.swingIsUsual(index);
     const fromHalf = means.duty - 0.5;
     const unequal =
       path.channel.sensor.kind === 'latch' && Math.abs(fromHalf) > (latch.open ? latchStaysAt : latchOpensAt);
     this.seen[index] = shifted || unequal ? this.seen[index]! + 1 : 0;
-    if (!shifted && !latch.open) this.learn(index);
+    if (!shifted && !latch.open && means.steady) this.learn(index);
     if (this.seen[index] === 0 || (!latch.open && this.seen[index]! < looksToOpen)) return;
     const evidence: Evidence = shifted
       ? { duty: means.duty, usualDuty: usual, shift, toothHz: means.toothHz }
@@ -72,14 +75,18 @@ export class DutyShiftRule implements FindingRule {
     latch.raiseSized(findingOf('duty-shift', path.channel.name, seen), size, nowS);
   }
 
-  /** While the finding is open, the nearest speed known will do: a fault must not become the usual thing of a new one. */
-  private usualDuty(index: number): number {
+  /** While the finding is open, any speed will do: a fault must not become the usual thing of a new one. */
+  private usualDuty(index: number): { usual: number; own: boolean } {
     const { direction } = this.context.motion;
     const { toothHz } = this.means[index]!;
     const duties = this.duties[index]!;
     const usual = duties.usual(direction, toothHz);
-    if (!Number.isNaN(usual) || !this.latches[index]!.open) return usual;
-    return duties.usual(direction, duties.nearestHz(direction, toothHz));
+    if (!Number.isNaN(usual)) return { usual, own: true };
+    const nearHz = this.latches[index]!.open ? duties.nearestHz(direction, toothHz) : NaN;
+    const beside = Number.isNaN(nearHz)
+      ? duties.usualBeside(direction, toothHz)
+      : duties.usual(direction, nearHz);
+    return { usual: beside, own: false };
   }
 
   private swingIsUsual(index: number): boolean {

@@ -16,7 +16,7 @@ const sameHz = 0.25;
 /** A tone stands so many times above everything beside it. */
 const prominent = 2;
 /** As near as this to a multiple of the shaft's frequency the two cannot be told apart, Hz. */
-const onOrderHz = 0.35;
+const onOrderHz = 0.25;
 /** Orders up to this one are what run-out, an ellipse or a motor on the same shaft make; higher ones come in rows. */
 const lowOrders = 4;
 
@@ -131,7 +131,7 @@ export class MainsHumRule implements FindingRule {
     const beside = besideTone(spectrum, tone.bin, 3, 8, (bin) => wheel.fills(bin));
     if (beside * (known ? 0.75 : 1) * prominent > tone.amplitudeV) return 'nothing';
     if (isAnImage(path.noiseV, besideTone(spectrum, tone.bin, 6, 10), tone)) return 'nothing';
-    if (wheel.mostAt(tone.hz) > tone.amplitudeV / 2)
+    if (wheel.mostAt(tone.hz) > tone.amplitudeV)
       return looksLikeEdges(path, wheel, tone) ? 'edges' : 'nothing';
     if (known) return 'found';
     return this.onOrder(spectrum, tone);
@@ -149,8 +149,8 @@ export class MainsHumRule implements FindingRule {
       if (order === 0 || off > onOrderHz + (order * wheel.spreadHz) / wheel.positions) continue;
       // A gap or a weak tooth makes a row of orders, each about as large as the next.
       const row = Math.max(
-        order > 1 ? sizeNear(spectrum, ((order - 1) * shaftHz) / binHz) : 0,
-        sizeNear(spectrum, ((order + 1) * shaftHz) / binHz),
+        orderSize(spectrum, order - 1, shaftHz / binHz),
+        orderSize(spectrum, order + 1, shaftHz / binHz),
       );
       if (3 * row > tone.amplitudeV) return 'nothing';
       if (order <= lowOrders) return 'order';
@@ -159,8 +159,10 @@ export class MainsHumRule implements FindingRule {
   }
 }
 
-function sizeNear({ re, im }: Spectrum, place: number): number {
-  const bin = Math.round(place);
+/** Of an order of the shaft; 0 for the mean and for the teeth themselves. */
+function orderSize({ re, im, wheel }: Spectrum, order: number, binsAnOrder: number): number {
+  if (order % wheel.positions === 0) return 0;
+  const bin = Math.round(order * binsAnOrder);
   return bin < re.length - 1 ? Math.hypot(re[bin]!, im[bin]!) : 0;
 }
 

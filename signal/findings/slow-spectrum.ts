@@ -97,8 +97,16 @@ export class SlowSpectra {
     this.toS = this.askedS;
     this.fromS = this.toS - size * sampleS;
     for (let i = 0; i < list.length; i += 2) this.transformPair(list[i]!, list[i + 1]);
-    for (const { wheel } of list) wheel.read(this.fromS);
+    for (const spectrum of list) {
+      spectrum.wheel.read(this.fromS);
+      spectrum.wheel.learnLines((hz) => this.sizeNear(spectrum, hz));
+    }
     return true;
+  }
+
+  private sizeNear(spectrum: Spectrum, hz: number): number {
+    const bin = Math.round(hz / this.binHz);
+    return Math.max(sizeAt(spectrum, bin - 1), sizeAt(spectrum, bin), sizeAt(spectrum, bin + 1));
   }
 
   private transformPair(first: Spectrum, second: Spectrum | undefined): void {

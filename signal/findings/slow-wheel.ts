@@ -8,6 +8,9 @@ import type { RuleContext } from '@/signal/findings/rule';
 import { firstSince, isEven, placesBetween, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
 
 const harmonics = 60;
+const knownHarmonics = 12;
+/** With more teeth than this in the window their harmonics are images, which say nothing of other speeds. */
+const mostTeeth = 600;
 
 export class SlowWheel {
   /** Of one position over the window, Hz, once located; 0 where fewer than three teeth came in it. */
@@ -24,6 +27,9 @@ export class SlowWheel {
   learnt = false;
   /** From 10 % to 90 % of the swing, s. */
   private flankS = 0;
+  private isLocated: boolean | null = null;
+  /** Usual size of the first harmonics over half the swing; NaN: not seen yet. */
+  private readonly usual = new Float64Array(knownHarmonics + 1).fill(NaN);
   private readonly path: ChannelPath;
   private first = 0;
   private last = -1;
@@ -49,6 +55,7 @@ export class SlowWheel {
     this.first = firstSince(log, fromS);
     this.toothHz = this.spreadHz = this.turnHz = 0;
     this.swingV = NaN;
+    this.isLocated = null;
     this.readFlanks(Math.max(this.first, this.last - 16), this.last);
     this.learnSwing();
   }
@@ -72,6 +79,26 @@ export class SlowWheel {
    * @returns false where neither holds, as with edges that bounce: then nothing is known of where orders are.
    */
   locate(): boolean {
+    this.isLocated ??= this.place();
+    return this.isLocated;
+  }
+
+  /** Takes the size of the harmonics from a spectrum of a steady wheel. Beside the mains only where nothing is known yet. */
+  learnLines(sizeNear: (hz: number) => number): void {
+    if (this.teeth < 3 || this.teeth > mostTeeth || !this.locate()) return;
+    const { usual, toothHz, spreadHz, binHz, nyquistHz, halfSwingV } = this;
+    for (let h = 1; h <= knownHarmonics; h++) {
+      const hz = h * toothHz;
+      if (hz > nyquistHz - 3 * binHz || h * spreadHz > binHz) return;
+      const share = sizeNear(hz) / halfSwingV;
+      const before = usual[h]!;
+      if (Number.isNaN(before)) usual[h] = share;
+      else if (Math.abs(hz - 50) > 3 * binHz && Math.abs(hz - 60) > 3 * binHz)
+        usual[h] = before + (share - before) / 4;
+    }
+  }
+
+  private place(): boolean {
     const { first, last, positions, turn } = this;
     const { log } = this.path;
     if (last - first < 2) return true;
@@ -91,7 +118,10 @@ export class SlowWheel {
     return true;
   }
 
-  /** The largest amplitude that harmonics of the teeth may have at `hz`, V. */
+  /**
+   * A tone at `hz` of no more than this may be one of the teeth's harmonics, V: of those seen before half as much again,
+   * of others twice what a signal with such flanks can have.
+   */
   mostAt(hz: number): number {
     const { halfSwingV, toothHz, spreadHz, turnHz, binHz, flankS } = this;
     if (toothHz === 0) return 0;
@@ -102,10 +132,12 @@ export class SlowWheel {
       const on = off < 2 * binHz + smearHz;
       // Beside the first ones stand the orders by which teeth differ; where they can be told apart, see `besideTeeth`.
       if (!on && !(h <= 2 && off < 3 * turnHz && turnHz < 2 * binHz)) continue;
+      const known = this.usual[h] ?? NaN;
+      let share: number;
+      if (on && !Number.isNaN(known)) share = 0.03 + 1.5 * known * lobe(Math.max(0, off - smearHz) / binHz);
       // Of a trapezoid: 4 / (pi h) of a square wave, less beyond 1 / (pi flank).
-      const soft = Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS));
-      const size = ((1.27 * halfSwingV) / h) * soft * (on ? 1 : 0.25);
-      most = Math.max(most, size / Math.max(1, smearHz / (2 * binHz)));
+      else share = ((on ? 2 : 0.5) * 1.27 * Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS))) / h;
+      most = Math.max(most, (share * halfSwingV) / Math.max(1, smearHz / (2 * binHz)));
     }
     return most;
   }
@@ -175,6 +207,13 @@ export class SlowWheel {
     this.swingV = swing / (last - first);
     this.flankS = (((1.6 * this.swingV) / (operateV - releaseV)) * ways) / (last - first);
   }
+}
+
+/** What a tone leaves `off` bins beside itself behind a Hann window, up to two. */
+function lobe(off: number): number {
+  if (off < 1e-6) return 1;
+  if (Math.abs(off - 1) < 1e-6) return 0.5;
+  return Math.abs(Math.sin(Math.PI * off) / (Math.PI * off * (1 - off * off)));
 }
 
 /** Of the supply, what half the swing of a sensor usually is. Without a supply a fixed band says what is expected. */

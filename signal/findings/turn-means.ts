@@ -12,8 +12,9 @@ const everyS = 0.45;
 const fewestTeeth = 4;
 /** A wheel with more teeth than this is judged by so many of them. */
 const mostTeeth = 512;
-/** From one look to the next the speed may differ by so much. */
+/** From one look to the next the speed may differ by so much, to learn from it and to judge by it. */
 const steadyShare = 0.05;
+const slowShare = 0.15;
 
 export class TurnMeans {
   /** The teeth looked at: `first` up to, not with, `end`. All of them have ended, and the one after has begun. */
@@ -31,6 +32,8 @@ export class TurnMeans {
   dutyError = NaN;
   /** The speed was the same at the look before. */
   steady = false;
+  /** It was not far from it. */
+  ramps = true;
   private readonly path: ChannelPath;
   private readonly context: RuleContext;
   /** Teeth of one turn; NaN for a channel that carries anything else. */
@@ -88,7 +91,9 @@ export class TurnMeans {
     this.first = end - teeth;
     this.end = end;
     this.average();
-    this.steady = Math.abs(this.toothHz / this.beforeHz - 1) < steadyShare;
+    const change = Math.abs(this.toothHz / this.beforeHz - 1);
+    this.steady = change < steadyShare;
+    this.ramps = !(change < slowShare);
     this.beforeHz = this.toothHz;
     return true;
   }

@@ -11,9 +11,11 @@ import type { SwingSight } from '@/signal/findings/swing-sights';
 import type { TurnMeans } from '@/signal/findings/turn-means';
 import { responseAt } from '@/signal/response';
 
-/** Of the usual swing at this speed; at another speed, of a sensor that does not live by speed, a little less. */
+/** Of the usual swing at this speed; at one far from those known, of a sensor that does not live by speed, a little less. */
 const fallenShare = 0.5;
 const fallenElsewhere = 0.4;
+/** Speeds within this factor are as good as the same. */
+const near = 1.5;
 const recoveredShare = 0.6;
 const looksForBaseline = 2;
 const looksToOpen = 2;
@@ -91,30 +93,30 @@ export class WeakSwingRule implements FindingRule {
     const { toothHz, swingV, fromS, steady } = this.means[index]!;
     const { direction } = this.context.motion;
     const baseline = this.swings[index]!;
-    if (!steady) return null;
-    let usualV = baseline.usual(direction, toothHz);
-    let limit = fallenShare;
-    if (Number.isNaN(usualV)) {
-      usualV = this.usualElsewhere(path, index);
-      limit = fallenElsewhere;
-    }
-    const share = swingV / usualV;
-    if (!(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);
-    if (!(share < (this.latches[index]!.open ? recoveredShare : limit))) return null;
+    const reference = this.reference(path, index);
+    const share = swingV / reference.swingV;
+    if (steady && !(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);
+    if (!(share < (this.latches[index]!.open ? recoveredShare : reference.limit))) return null;
+    const usualV = reference.swingV;
     const evidence = { against: 'before', swingV, usualSwingV: usualV, leftPercent: 100 * share, toothHz };
     return { size: 0.5 / share, severity: share < 0.25 ? 'fault' : 'warn', atS: fromS, evidence };
   }
 
-  /** From the nearest speed known, less what the filter takes here; a sensor without supply is a coil, which lives by speed. */
-  private usualElsewhere(path: ChannelPath, index: number): number {
-    const { supplyV } = path.channel.sensor;
-    if (supplyV === null || !(supplyV > 0)) return NaN;
+  /**
+   * The usual swing at this speed, or from the nearest speed known, less what the filter takes here; not for a sensor
+   * without supply, which is a coil and lives by speed.
+   */
+  private reference(path: ChannelPath, index: number): { swingV: number; limit: number } {
     const { direction } = this.context.motion;
     const { toothHz } = this.means[index]!;
-    const nearHz = this.swings[index]!.nearestHz(direction, toothHz);
-    if (Number.isNaN(nearHz)) return NaN;
-    const usualV = this.swings[index]!.usual(direction, nearHz);
-    return (usualV * this.gainAt(toothHz)) / this.gainAt(nearHz);
+    const baseline = this.swings[index]!;
+    const own = baseline.usual(direction, toothHz);
+    const { supplyV } = path.channel.sensor;
+    if (!Number.isNaN(own) || !(supplyV !== null && supplyV > 0)) return { swingV: own, limit: fallenShare };
+    const nearHz = baseline.nearestHz(direction, toothHz);
+    const swingV = (baseline.usual(direction, nearHz) * this.gainAt(toothHz)) / this.gainAt(nearHz);
+    const isNear = nearHz < near * toothHz && toothHz < near * nearHz;
+    return { swingV, limit: isNear ? fallenShare : fallenElsewhere };
   }
 
   private gainAt(hz: number): number {
