@@ -6,7 +6,8 @@ const share = 1 / 8;
 /** An interval of `spans` positions has passed. */
 export function noteSpacing(sync: GapSync, spans: number): void {
   if (sync.sinceGap >= 0) sync.sinceGap += spans;
-  if (spans === 1) return;
+  // In sync a tooth that did not show is no gap.
+  if (spans === 1 || (sync.state === 'synced' && sync.position + spans < sync.positions)) return;
   if (sync.sinceGap > 0) {
     sync.sameBetween = sync.sinceGap === sync.betweenGaps ? sync.sameBetween + 1 : 1;
     sync.betweenGaps = sync.sinceGap;

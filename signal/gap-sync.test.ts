@@ -130,7 +130,7 @@ describe.each(wheels)('a wheel of %i - %i', (n, missing) => {
         losses: 0,
         wrong: [],
       });
-      expect(run.sync.state).toBe('synced');
+      expect(run.sync).toMatchObject({ state: 'synced', betweenGaps: n });
     }
   });
 
