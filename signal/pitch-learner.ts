@@ -7,7 +7,8 @@
  * - the standard error of each mean, not the scatter of single turns, is below 0.25 % of a pitch: at 20 dB of signal to
  *   noise single turns scatter by more than 1 %, and their mean is still worth having after some 20 turns;
  * - single turns scatter by less than 5 % of a pitch: beyond, what repeats is little beside what does not;
- * - no pitch is off by a tenth: that is damage, or a wrong number of teeth, and to be said rather than taken out.
+ * - no pitch is off by a fifth: that is damage, or a wrong number of teeth, and to be said rather than taken out. (A tenth
+ *   would shut out wheels whose teeth are off by 3 % rms, which have a pitch of 10 % among sixty.)
  * Source of the idea: self-calibration from time stamps, Lu et al., CIRP Annals 59 (2010) 529-534; the conditions are ours.
  */
 
@@ -16,7 +17,7 @@ export const turnsNeeded = 20;
 const memoryTurns = 256;
 const mostError = 0.0025;
 const mostScatter = 0.05;
-const mostOff = 0.1;
+const mostOff = 0.2;
 
 export class PitchLearner {
   turns = 0;

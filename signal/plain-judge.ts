@@ -2,9 +2,10 @@
  * How many positions of a plain wheel an interval spans, for the speed: a tooth that did not show must not halve it, a pulse
  * that is none must not double it.
  *
- * An interval that is far longer or shorter than the two before it, which agree, waits for the next one. A long one is so
- * many whole pitches where the next is as before; with a short one, both together are one pitch where the pulse
- * between them is no tooth. Else it is taken as it is: a shaft may speed up from rest by 2.4 from tooth to tooth.
+ * An interval that is longer or shorter than the two before it, which agree, waits for the next one. A long one is so many
+ * whole pitches where the next is as before. A short one makes one pitch with its neighbour, the next or the one before,
+ * where the pulse between them is no tooth. Else it is taken as it is: a shaft may speed up from rest by 2.4 from tooth to
+ * tooth, and what waited is only late.
  */
 import type { GapSync } from '@/signal/gap-sync';
 
@@ -12,11 +13,12 @@ import type { GapSync } from '@/signal/gap-sync';
 const fewestPositions = 6;
 /** A pulse so soon after a tooth is none on a wheel of any size: no shaft turns four times as fast for one tooth. */
 const impossible = 0.25;
-const soonest = 0.6;
+const soonest = 0.85;
 const latest = 1.5;
 const agreeWithin = 1.4;
 const offWhole = 0.25;
-const offBoth = 0.2;
+const offBoth = 0.25;
+const offOne = 0.1;
 const mostSilent = 3;
 
 /** Works on the interval, the one that waits and the time for one position of `sync`, whose gap is none. */
@@ -51,15 +53,24 @@ export class PlainJudge {
 
   /**
    * Judges the interval that waited, now that the next one, `sync.intervalS`, is known.
-   * @returns positions that it spans; 0 where the pulse that ended it was no tooth, and `sync.intervalS` is now both together.
+   * @returns positions that it spans; 0 where the pulse that ended it was no tooth, and `sync.intervalS` is now both together;
+   * -1 where the pulse that began it was none, and the one that ended it is the tooth in its place.
    */
   judgeWaiting(): number {
-    const { sync } = this;
+    const { sync, earlierS } = this;
     const { waitingS, intervalS: nextS, perPositionS: beforeS } = sync;
     sync.waitingS = NaN;
     let spans = 1;
     if (waitingS < beforeS) {
-      if (Math.abs((waitingS + nextS) / beforeS - 1) < offBoth) {
+      const off = Math.abs(beforeS + waitingS - earlierS);
+      const isBetter = off < offOne * earlierS && off < Math.abs(beforeS - earlierS);
+      if (isBetter && Math.abs(nextS / earlierS - 1) < offBoth) {
+        sync.perPositionS = beforeS + waitingS;
+        return -1;
+      }
+      // One more pitch of a shaft that goes on speeding up, or slowing down, as it did.
+      const nextPitchS = (beforeS * beforeS) / earlierS;
+      if (Math.abs((waitingS + nextS) / nextPitchS - 1) < offBoth) {
         sync.intervalS = waitingS + nextS;
         return 0;
       }

@@ -7,6 +7,7 @@
  * s sqrt(12 / (K (K + 1) (K + 2)))). Over more than a turn the same teeth come again with the same offsets: then theirs is
  * sum over positions k of (sum over turns r of w[r,k])^2, w the line's weights, and only the noise is as above.
  */
+import { EndPaces } from '@/signal/end-paces';
 import { SpeedScatter } from '@/signal/speed-scatter';
 import type { SpeedRing } from '@/signal/speed-ring';
 import type { TurnScatter } from '@/signal/turn-scatter';
@@ -34,8 +35,6 @@ const believed = 3;
 const byChance = 1.6;
 /** What a line is off by on an even acceleration is taken off; so much of it stays in doubt. */
 const bentDoubt = 0.1;
-/** Intervals within so much of each other make both ends of a tooth count alike. */
-const alike = 0.1;
 
 export class SpeedError {
   readonly scatter: SpeedScatter;
@@ -51,6 +50,7 @@ export class SpeedError {
   share = NaN;
   /** By what share time for a position is longer than the line's slope, its bend considered. */
   bent = 0;
+  readonly ends: EndPaces;
   private readonly ring: SpeedRing;
   private readonly positions: number;
 
@@ -58,11 +58,12 @@ export class SpeedError {
     this.ring = ring;
     this.positions = positions;
     this.scatter = new SpeedScatter(ring, positions);
+    this.ends = new EndPaces(ring);
   }
 
   /** Variance of an edge as it is told, positions squared. */
   get told(): number {
-    const share = this.sigmaS / this.perPositionS;
+    const share = this.sigmaS / this.ends.lastS;
     return share * share;
   }
 
@@ -80,29 +81,11 @@ export class SpeedError {
     }
     // What is uneven once a turn cancels over a whole one.
     const part = Math.max(0, 1 - (spans / positions) ** 2);
-    let square = (this.ends(from) * tooth) / (spans * spans) + this.hidden * part;
+    const { ends } = this;
+    ends.measure(from, this.perPositionS);
+    let square = (ends.sum * tooth) / (spans * spans) + this.hidden * part;
     square += this.doubted(from, spans);
     this.share = margin * Math.sqrt(square);
-  }
-
-  /**
-   * Sum of the squares of the mean speed over that at either end: an edge that is off by a share of its pitch is late by
-   * the more the slower the shaft turned, as it does when it starts. 2 on a steady shaft.
-   */
-  private ends(from: number): number {
-    const { ring, perPositionS } = this;
-    const last = ring.next - 1;
-    if (last - ring.first < 2 || (from === last - 1 && this.isSteady(last))) return 2;
-    // By straight lines through the middles of intervals, not below a quarter of an interval's own speed.
-    let begin: number;
-    if (from > ring.first) begin = this.pace(from - 1, from + 1);
-    else {
-      const here = this.pace(from, from + 1);
-      begin = Math.max(here / 4, 2 * here - this.pace(from, from + 2));
-    }
-    const here = this.pace(last - 1, last);
-    const end = Math.max(here / 4, 2 * here - this.pace(last - 2, last));
-    return (1 / (begin * begin) + 1 / (end * end)) / (perPositionS * perPositionS);
   }
 
   /** What a tooth far off its place, or one too many or too few, adds to the square. */
@@ -113,33 +96,13 @@ export class SpeedError {
     return (off / spans) ** 2;
   }
 
-  /** The last interval is like the one before. */
-  private isSteady(last: number): boolean {
-    const { times, places, mask } = this.ring;
-    const c = last & mask;
-    const b = (last - 1) & mask;
-    const a = (last - 2) & mask;
-    const here = (times[c]! - times[b]!) * (places[b]! - places[a]!);
-    const before = (times[b]! - times[a]!) * (places[c]! - places[b]!);
-    return Math.abs(here - before) < alike * before;
-  }
-
-  /** Positions a second from one entry to another. */
-  private pace(from: number, to: number): number {
-    const { times, marks, mask } = this.ring;
-    return (marks[to & mask]! - marks[from & mask]!) / (times[to & mask]! - times[from & mask]!);
-  }
-
   /** Of a whole turn that begins with the entry `from`. @param edges its variance in variances of an edge. */
   ofTurn(from: number, edges: number, turns: TurnScatter): void {
-    const { positions, scatter, told } = this;
+    const { positions, scatter, told, ends } = this;
     const { variance } = turns;
     let edge = marginOfTurn * marginOfTurn * edges * variance;
-    if (told > 0) {
-      const least = variance < inStep * told ? toldInStep : toldOfTurn;
-      edge = Math.max(edge, (least * told * this.ends(from)) / 2);
-    }
-    let square = edge / (positions * positions);
+    if (told > 0) edge = Math.max(edge, (variance < inStep * told ? toldInStep : toldOfTurn) * told);
+    let square = (edge * ends.sum) / (2 * positions * positions);
     if (scatter.isSlip) square += this.doubted(from, positions);
     if (this.unproven > 0) square += (this.unproven / positions) ** 2;
     this.share = Math.sqrt(square);

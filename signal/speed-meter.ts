@@ -66,6 +66,16 @@ export class SpeedMeter {
     this.line.refit();
   }
 
+  /** The pulse taken last was no tooth: the one at `t` stands in its place. */
+  replaceNewest(t: number): void {
+    const { ring } = this;
+    const i = (ring.next - 1) & ring.mask;
+    ring.times[i] = t;
+    ring.falls[i] = ring.turns[i] = NaN;
+    this.line.refit();
+    this.turn.scatter.interrupt();
+  }
+
   /** The tooth taken last ended at `t`. */
   fall(): void {
     const { ring } = this;
@@ -138,8 +148,11 @@ export class SpeedMeter {
     const { times, marks, mask, next } = ring;
     const a = from & mask;
     const b = (next - 1) & mask;
+    error.ends.follow();
     error.perPositionS = (times[b]! - times[a]!) / (marks[b]! - marks[a]!);
     if (method !== 'tooth' && turn.turnS > 0) {
+      error.ends.measure(turn.from, turn.turnS / this.turnPositions);
+      turn.scatter.growth = error.ends.growth;
       turn.scatter.told = error.told;
       turn.scatter.turnS = turn.turnS;
       turn.scatter.endS = turn.endS;

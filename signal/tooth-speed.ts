@@ -116,6 +116,10 @@ export class ToothSpeed {
     const spans = this.plain ? this.plain.judgeWaiting() : judgeWaiting(this.sync);
     const t = this.waitingT;
     this.waitingT = NaN;
+    if (spans < 0) {
+      meter.replaceNewest(t);
+      return false;
+    }
     if (spans === 0) {
       // A pulse, and counted as one, but no tooth of the wheel.
       if (!this.plain) this.extraPositions -= this.sign;

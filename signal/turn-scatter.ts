@@ -18,6 +18,8 @@ export class TurnScatter {
   turnS = NaN;
   endS = NaN;
   spans = NaN;
+  /** As `EndPaces`: a shaft that speeds up makes the older edges count for more. */
+  growth = 1;
   /** Variance of an edge by noise and sample grid, positions squared; NaN: not known. */
   told = NaN;
   /** Variance of one edge, positions squared, wide enough for what little it may come from; NaN before the first turn. */
@@ -64,7 +66,7 @@ export class TurnScatter {
     const change = (this.turnS - this.lastTurnS) / (this.endS - this.lastEndS);
     const off = change - this.lastChange;
     const share = per * per + (per + this.lastPer) ** 2 + this.lastPer * this.lastPer;
-    const square = (off * off) / (edges * share);
+    const square = (off * off) / (edges * share * this.growth);
     this.lastTurnS = this.turnS;
     this.lastEndS = this.endS;
     this.lastChange = change;
