@@ -1,7 +1,12 @@
+import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { createEdgeQueue } from '@/signal/columns';
 import type { RigSetup, WidthClass } from '@/signal/model';
+import { edgeRising } from '@/signal/pipeline-types';
+import { classifyWidths } from '@/signal/statistics/width-code';
 import { openPaths } from '@/signal/test-paths';
 import { normal, seeded, testChannel, testRig } from '@/signal/test-signals';
+import { WidthReader } from '@/signal/width-reader';
 
 const rateHz = 200_000;
 const teeth = 48;
@@ -148,6 +153,42 @@ describe('pulses whose width carries the direction', () => {
     expect(motion.state).toBe('unknown');
     expect(speeds.every(({ rpm }) => Number.isNaN(rpm))).toBe(true);
     expect(motion.pulses).toBeGreaterThan(100);
+  });
+});
+
+describe('pulse by pulse', () => {
+  it('reads what the statistics of a whole capture read, each against the period before it', () => {
+    const between = (min: number, max: number) => fc.double({ min, max, noNaN: true });
+    fc.assert(
+      fc.property(
+        fc.array(fc.tuple(between(20e-6, 220e-6), between(250e-6, 2e-3)), { maxLength: 40 }),
+        (pulses) => {
+          const reader = new WidthReader(ladder, false, rateHz);
+          const queue = createEdgeQueue();
+          const edge = (t: number, rising: boolean): void => {
+            queue.midS[0] = t;
+            queue.flags[0] = rising ? edgeRising : 0;
+          };
+          let t = 1;
+          const told = pulses.map(([widthS, periodS]) => {
+            t += periodS;
+            edge(t, true);
+            reader.hold(queue, 0);
+            edge(t + widthS, false);
+            return reader.read(queue, 0);
+          });
+          const found = classifyWidths(
+            pulses.map(([widthS]) => widthS),
+            pulses.map(([, periodS]) => periodS),
+            ladder,
+            rateHz,
+          );
+          if (!found.ok) throw new Error(found.issue.detail);
+          expect(told.slice(1)).toEqual([...found.value.direction].slice(1));
+        },
+      ),
+      { seed: 7 },
+    );
   });
 });
 
