@@ -4,6 +4,7 @@ import { ClockDriftRule } from '@/signal/findings/clock-drift';
 import { DeadChannelRule } from '@/signal/findings/dead-channel';
 import { EdgeBounceRule } from '@/signal/findings/edge-bounce';
 import { LostSamplesRule } from '@/signal/findings/lost-samples';
+import { ringRules } from '@/signal/findings/ring-rules';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { wheelRules } from '@/signal/findings/wheel-rules';
 
@@ -16,6 +17,7 @@ export function createRules(context: RuleContext): FindingRule[] {
     new ClockDriftRule(),
     // Between channels.
     new DeadChannelRule(context),
+    ...ringRules(context),
     // The signal of one channel.
     ...channelRules(context),
     // Edges.
