@@ -1,7 +1,9 @@
+import { DirectionFlipRule } from '@/signal/findings/direction-flip';
+import { InvertedChannelRule } from '@/signal/findings/inverted-channel';
 import { PhaseErrorRule } from '@/signal/findings/phase-error';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 
 /** Rules about channels beside each other, and about what a channel can show at all. */
 export function ringRules(context: RuleContext): FindingRule[] {
-  return [new PhaseErrorRule(context)];
+  return [new InvertedChannelRule(context), new PhaseErrorRule(context), new DirectionFlipRule(context)];
 }
