@@ -1,9 +1,15 @@
 import { DirectionFlipRule } from '@/signal/findings/direction-flip';
+import { IllegalStateRule } from '@/signal/findings/illegal-state';
 import { InvertedChannelRule } from '@/signal/findings/inverted-channel';
 import { PhaseErrorRule } from '@/signal/findings/phase-error';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 
 /** Rules about channels beside each other, and about what a channel can show at all. */
 export function ringRules(context: RuleContext): FindingRule[] {
-  return [new InvertedChannelRule(context), new PhaseErrorRule(context), new DirectionFlipRule(context)];
+  return [
+    new InvertedChannelRule(context),
+    new PhaseErrorRule(context),
+    new IllegalStateRule(context),
+    new DirectionFlipRule(context),
+  ];
 }
