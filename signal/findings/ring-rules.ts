@@ -1,12 +1,14 @@
 import { DirectionFlipRule } from '@/signal/findings/direction-flip';
 import { IllegalStateRule } from '@/signal/findings/illegal-state';
 import { InvertedChannelRule } from '@/signal/findings/inverted-channel';
+import { NearAliasRule } from '@/signal/findings/near-alias';
 import { PhaseErrorRule } from '@/signal/findings/phase-error';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 
 /** Rules about channels beside each other, and about what a channel can show at all. */
 export function ringRules(context: RuleContext): FindingRule[] {
   return [
+    new NearAliasRule(context),
     new InvertedChannelRule(context),
     new PhaseErrorRule(context),
     new IllegalStateRule(context),
