@@ -7,7 +7,16 @@ import type { Finding, FindingCode } from '@/signal/model';
 
 /** Possible causes of a finding, the nearest first. */
 const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
-  'direction-flip': ['inverted-channel', 'illegal-state', 'phase-error', 'near-alias', 'lost-samples'],
+  'direction-flip': [
+    'dead-channel',
+    'inverted-channel',
+    'illegal-state',
+    'phase-error',
+    'near-alias',
+    'edge-bounce',
+    'standstill-chatter',
+    'lost-samples',
+  ],
   'illegal-state': [
     'dead-channel',
     'inverted-channel',
@@ -15,8 +24,10 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
     'edge-bounce',
     'phase-error',
     'weak-swing',
+    'standstill-chatter',
     'lost-samples',
   ],
+  'near-alias': ['standstill-chatter', 'edge-bounce', 'dead-channel', 'mains-hum'],
   'wrong-count': [
     'illegal-state',
     'missing-tooth',
@@ -25,11 +36,11 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
     'near-alias',
     'lost-samples',
   ],
-  'missing-tooth': ['weak-swing', 'offset-drift'],
-  'extra-pulse': ['edge-bounce', 'mains-hum'],
-  'edge-bounce': ['slow-edge', 'mains-hum', 'supply-ripple'],
+  'missing-tooth': ['weak-swing', 'offset-drift', 'standstill-chatter'],
+  'extra-pulse': ['edge-bounce', 'mains-hum', 'standstill-chatter'],
+  'edge-bounce': ['slow-edge', 'mains-hum', 'supply-ripple', 'standstill-chatter'],
   'duty-shift': ['offset-drift', 'clipping', 'slow-edge', 'weak-swing', 'supply-ripple'],
-  'slow-edge': ['weak-swing', 'mains-hum', 'supply-ripple'],
+  'slow-edge': ['weak-swing', 'mains-hum', 'supply-ripple', 'standstill-chatter'],
   'uneven-teeth': ['missing-tooth', 'extra-pulse', 'edge-bounce', 'run-out'],
   'run-out': ['missing-tooth', 'extra-pulse', 'supply-ripple'],
   'weak-swing': ['run-out', 'clipping', 'supply-ripple'],

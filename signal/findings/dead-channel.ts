@@ -1,117 +1,185 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import { RunReference, unrestOf } from '@/signal/findings/unrest';
 import { wordsFor } from '@/signal/finding-words';
+import type { Finding } from '@/signal/model';
+import type { ToothLog } from '@/signal/tooth-log';
 
 /** So many edges of another channel without one of its own. */
 const otherEdgesNeeded = 12;
+/** So many turns of the shaft, and of its wheel, without an index. */
+const indexTurns = 5;
+/** Slower than this, against the last run: the shaft may stand and shake on one flank. */
+const farSlower = 3;
+const mainsHz = [50, 60, 100, 120];
+const humNeededS = 1;
+
+type Evidence = Finding['evidence'];
 
 /**
- * A channel that makes no edge while another one does; or a linear sensor that rests at the very end of its range (it
- * rests at its quiescent voltage when sound), flat, for as long as it takes to be called stopped. A flat signal anywhere
- * else may just be a shaft that stands still: no finding.
+ * A channel that makes no edge while another one does; an index that does not come; or a linear sensor that rests at the
+ * very end of its range (it rests at its quiescent voltage when sound), flat, for as long as it takes to be called
+ * stopped. A flat signal anywhere else may just be a shaft that stands still: no finding. Nor is the other channel of a
+ * shaft dead that stands and shakes with a flank under one sensor.
  */
 export class DeadChannelRule implements FindingRule {
   readonly latches: FindingLatch[];
   private readonly context: RuleContext;
+  private readonly references: RunReference[];
   /** Edges of each channel when the judged one last made one. */
   private readonly marks: number[][];
   private readonly ownEdges: number[];
   private readonly quietFromS: number[];
   private readonly flatFromS: number[];
+  private readonly humFromS: number[];
 
   constructor(context: RuleContext) {
+    const { paths } = context;
     this.context = context;
-    this.latches = context.paths.map(() => new FindingLatch(0));
-    this.marks = context.paths.map(() => context.paths.map(() => 0));
-    this.ownEdges = context.paths.map(() => 0);
-    this.quietFromS = context.paths.map(() => NaN);
-    this.flatFromS = context.paths.map(() => NaN);
+    this.latches = paths.map(() => new FindingLatch(0));
+    this.references = paths.map((path) => new RunReference(context, path));
+    this.marks = paths.map(() => paths.map(() => 0));
+    this.ownEdges = paths.map(() => 0);
+    this.quietFromS = paths.map(() => NaN);
+    this.flatFromS = paths.map(() => NaN);
+    this.humFromS = paths.map(() => NaN);
   }
 
   tick(nowS: number): void {
-    this.context.paths.forEach((path, index) => {
-      if (!this.besideOthers(path, index, nowS)) this.alone(path, index, nowS);
-    });
+    const { paths, index, lanes } = this.context;
+    if (lanes.length > 1) for (const lane of lanes) this.references[lane]!.tick(nowS);
+    for (let k = 0; k < paths.length; k++) {
+      const path = paths[k]!;
+      this.mark(path, k, nowS);
+      const found = this.besideOthers(k, nowS) ?? (k === index ? this.withoutIndex(nowS) : null);
+      if (found) this.raise(path, k, this.quietFromS[k]!, found, nowS);
+      else if (!this.floats(path, k, nowS) && path.channel.role !== 'aux') this.alone(path, k, nowS);
+    }
   }
 
   gap(): void {
     this.quietFromS.fill(NaN);
     this.flatFromS.fill(NaN);
+    this.humFromS.fill(NaN);
   }
 
-  private besideOthers(path: ChannelPath, index: number, nowS: number): boolean {
-    const { paths } = this.context;
-    const latch = this.latches[index]!;
-    if (path.edgeCount !== this.ownEdges[index] || Number.isNaN(this.quietFromS[index]!)) {
-      this.ownEdges[index] = path.edgeCount;
-      this.quietFromS[index] = nowS;
-      paths.forEach((other, k) => (this.marks[index]![k] = other.edgeCount));
-      latch.rest(nowS);
-      return false;
-    }
-    // An index channel comes once a turn, an aux channel may carry anything.
-    if (path.channel.role === 'Z' || path.channel.role === 'aux') return true;
+  private mark(path: ChannelPath, k: number, nowS: number): void {
+    if (path.edgeCount === this.ownEdges[k] && !Number.isNaN(this.quietFromS[k]!)) return;
+    this.ownEdges[k] = path.edgeCount;
+    this.quietFromS[k] = nowS;
+    const marks = this.marks[k]!;
+    for (let m = 0; m < marks.length; m++) marks[m] = this.context.paths[m]!.edgeCount;
+    this.latches[k]!.rest(nowS);
+  }
+
+  private besideOthers(k: number, nowS: number): Evidence | null {
+    const { paths, lanes } = this.context;
+    if (!lanes.includes(k)) return null;
     let most = 0;
     let busiest = -1;
-    paths.forEach((other, k) => {
-      const edges = other.edgeCount - this.marks[index]![k]!;
-      if (k === index || other.channel.role === 'Z' || other.channel.role === 'aux' || edges <= most) return;
+    let busy = 0;
+    for (const m of lanes) {
+      const edges = paths[m]!.edgeCount - this.marks[k]![m]!;
+      if (m === k || edges === 0) continue;
+      if (edges >= otherEdgesNeeded) busy++;
+      if (edges <= most) continue;
       most = edges;
-      busiest = k;
-    });
-    if (most < otherEdgesNeeded) return false;
+      busiest = m;
+    }
+    if (most < otherEdgesNeeded) return null;
     const evidence = {
       otherChannel: paths[busiest]!.channel.name,
       otherEdges: most,
-      quietS: nowS - this.quietFromS[index]!,
+      quietS: nowS - this.quietFromS[k]!,
     };
-    this.raise(path, index, this.quietFromS[index]!, evidence, nowS);
+    if (busy > 1 || this.latches[k]!.open) return evidence;
+    const { log } = paths[busiest]!;
+    const unrest = unrestOf(log, -Infinity, 1 / this.context.rateHz, 0);
+    const { toothS } = this.references[busiest]!;
+    return !unrest || unrest.isIrregular || unrest.meanS > farSlower * toothS ? null : evidence;
+  }
+
+  /** All that comes on it is the mains, while another channel shows how the shaft turns. */
+  private floats(path: ChannelPath, k: number, nowS: number): boolean {
+    const { paths, lanes, rateHz } = this.context;
+    const own = lanes.length > 1 && lanes.includes(k) ? humOn(path.log, nowS, rateHz) : NaN;
+    const isAlone =
+      !Number.isNaN(own) &&
+      lanes.some((m) => {
+        const other = m === k ? null : unrestOf(paths[m]!.log, -Infinity, 1 / rateHz, 0);
+        if (!other || other.isIrregular || nowS - other.lastS > 4 * other.meanS) return false;
+        return Math.abs(other.meanS * own - 1) > 0.1;
+      });
+    if (!isAlone) {
+      this.humFromS[k] = NaN;
+      return false;
+    }
+    if (Number.isNaN(this.humFromS[k]!)) this.humFromS[k] = nowS;
+    const fromS = this.humFromS[k]!;
+    if (nowS - fromS >= humNeededS) this.raise(path, k, fromS, { humHz: own, humS: nowS - fromS }, nowS);
     return true;
   }
 
-  private alone(path: ChannelPath, index: number, nowS: number): void {
-    const { supplyV, kind } = path.channel.sensor;
-    const levelV = path.spreadHighV;
-    const spreadV = path.spreadHighV - path.spreadLowV;
-    if (!(spreadV >= 0)) return;
-    path.restartSpread();
-    const atEnd =
-      kind === 'linear' &&
-      supplyV !== null &&
-      supplyV > 0 &&
-      (levelV < 0.03 * supplyV || levelV > 0.97 * supplyV);
-    if (!atEnd || spreadV > 0.02 * supplyV) {
-      this.flatFromS[index] = NaN;
-      if (this.latches[index]!.open?.evidence.otherEdges === undefined) this.latches[index]!.rest(nowS);
-      return;
-    }
-    if (Number.isNaN(this.flatFromS[index]!)) this.flatFromS[index] = nowS;
-    const from = this.flatFromS[index]!;
-    if (nowS - from < this.context.settings.speed.stoppedAfterS) return;
-    this.raise(path, index, from, { levelV, flatS: nowS - from }, nowS);
+  private withoutIndex(nowS: number): Evidence | null {
+    const { paths, index, primary, rig, motion } = this.context;
+    const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
+    if (motion.state !== 'running') return null;
+    const teeth = (paths[primary]!.edgeCount - this.marks[index]![primary]!) / 2;
+    const turns = teeth / ((pulsesPerTurn - missingPulses) * Math.max(1, gearRatio));
+    if (!(turns >= indexTurns)) return null;
+    return { turnsWithoutIndex: turns, quietS: nowS - this.quietFromS[index]! };
   }
 
-  private raise(
-    path: ChannelPath,
-    index: number,
-    fromS: number,
-    evidence: Record<string, number | string>,
-    nowS: number,
-  ): void {
-    this.latches[index]!.raise(
+  private alone(path: ChannelPath, k: number, nowS: number): void {
+    const spreadV = path.spreadHighV - path.spreadLowV;
+    if (!(spreadV >= 0)) return;
+    const levelV = path.spreadHighV;
+    path.restartSpread();
+    const latch = this.latches[k]!;
+    if (path.channel.sensor.kind !== 'linear' || !isAtEnd(path, levelV, spreadV)) {
+      this.flatFromS[k] = NaN;
+      latch.rest(nowS);
+      return;
+    }
+    if (Number.isNaN(this.flatFromS[k]!)) this.flatFromS[k] = nowS;
+    const from = this.flatFromS[k]!;
+    if (nowS - from < this.context.settings.speed.stoppedAfterS) return;
+    this.raise(path, k, from, { levelV, flatS: nowS - from }, nowS);
+  }
+
+  private raise(path: ChannelPath, k: number, fromS: number, evidence: Evidence, nowS: number): void {
+    const { name } = path.channel;
+    this.latches[k]!.raise(
       {
         code: 'dead-channel',
-        channel: path.channel.name,
+        channel: name,
         from: fromS,
         severity: 'fault',
         outcome: 'found',
         at: fromS,
         evidence,
-        ...wordsFor('dead-channel', path.channel.name, evidence),
+        ...wordsFor('dead-channel', name, evidence),
         causedBy: null,
       },
       nowS,
     );
   }
+}
+
+/** Frequency of the mains, or twice that, where the teeth of a channel come so; else NaN. */
+function humOn(log: ToothLog, nowS: number, rateHz: number): number {
+  const unrest = unrestOf(log, -Infinity, 1 / rateHz, 0);
+  if (!unrest || unrest.isIrregular || nowS - unrest.lastS > 4 * unrest.meanS) return NaN;
+  return mainsHz.find((hz) => Math.abs(unrest.meanS * hz - 1) < 0.01) ?? NaN;
+}
+
+/** At an end of the sensor's supply, or of the converter: no field takes a linear sensor there and leaves it flat. */
+function isAtEnd({ channel, rails }: ChannelPath, levelV: number, spreadV: number): boolean {
+  const { supplyV } = channel.sensor;
+  if (supplyV !== null && supplyV > 0 && spreadV <= 0.02 * supplyV)
+    if (levelV < 0.03 * supplyV || levelV > 0.97 * supplyV) return true;
+  if (!rails || !Number.isFinite(rails.highV - rails.lowV)) return false;
+  const within = 0.005 * (rails.highV - rails.lowV);
+  return spreadV <= within && (levelV >= rails.highV - within || levelV - spreadV <= rails.lowV + within);
 }

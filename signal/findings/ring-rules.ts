@@ -4,6 +4,7 @@ import { InvertedChannelRule } from '@/signal/findings/inverted-channel';
 import { NearAliasRule } from '@/signal/findings/near-alias';
 import { PhaseErrorRule } from '@/signal/findings/phase-error';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import { StandstillChatterRule } from '@/signal/findings/standstill-chatter';
 
 /** Rules about channels beside each other, and about what a channel can show at all. */
 export function ringRules(context: RuleContext): FindingRule[] {
@@ -13,5 +14,6 @@ export function ringRules(context: RuleContext): FindingRule[] {
     new PhaseErrorRule(context),
     new IllegalStateRule(context),
     new DirectionFlipRule(context),
+    new StandstillChatterRule(context),
   ];
 }
