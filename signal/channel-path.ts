@@ -47,6 +47,8 @@ export class ChannelPath implements FinderHost {
   /** Smallest step between neighbouring values as of the last tick, V. */
   private quantumV = 0;
   rejectedCount = 0;
+  /** Those within a quarter of a period after an edge: bounce that band or hold-off kept back. */
+  keptBackCount = 0;
   readonly slow: SlowRing;
 
   private readonly band: Band;
@@ -244,6 +246,7 @@ export class ChannelPath implements FinderHost {
     // Edges before it come first: their delay is the one to take off here.
     if (this.detector.edges.count > 0) this.takeEdges();
     this.rejectedCount++;
+    if (at - this.intake.lastEdgeAt < this.intake.periodSamples / 4) this.keptBackCount++;
     pushRejected(this.rejectedMarks, at / this.rateHz - this.intake.delayS);
     if (Number.isNaN(reachV)) return;
     const beyondV = rising ? reachV - this.detector.operateV : this.detector.releaseV - reachV;

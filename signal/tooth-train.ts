@@ -7,7 +7,6 @@
 import type { EdgeQueue } from '@/signal/columns';
 import { createGapSync, noGapAhead, resetSync } from '@/signal/gap-sync';
 import type { GapSync, SyncLoss } from '@/signal/gap-sync';
-import { createIntervalMeter, noteInterval } from '@/signal/interval-meter';
 import type { RigSetup, Settings } from '@/signal/model';
 import type { SpeedColumns } from '@/signal/pipeline-types';
 import type { PitchStatus } from '@/signal/pitch';
@@ -19,7 +18,6 @@ import { mostPositions, WheelFaceMeter } from '@/signal/wheel-face-meter';
 export class ToothTrain {
   readonly sync: GapSync;
   readonly face: WheelFaceMeter | null;
-  readonly intervals = createIntervalMeter();
   readonly uneven: Unevenness;
   readonly placer: ToothPlacer;
   /** Signed by `sign`; NaN where not known. */
@@ -143,7 +141,6 @@ export class ToothTrain {
     }
     if (!Number.isNaN(this.rowS)) {
       this.periodS = t - this.rowS;
-      noteInterval(this.intervals, this.periodS, t, this.sync.missing);
     }
     this.rowS = t;
     this.lastRiseS = t;
