@@ -4,6 +4,8 @@ import type { Motion } from '@/signal/motion';
 
 /** Standard errors by which an edge is presumed to be off, at most: the bound must hold on noisy signals too. */
 const mostOff = 3;
+/** The widest state that was seen need not be the widest there is. */
+const widerState = 1.1;
 
 /** Largest number of positions that can still be silent after the last edge. */
 function silentPositions({ tracker, train }: Motion): number {
@@ -12,7 +14,8 @@ function silentPositions({ tracker, train }: Motion): number {
   if (!tracker) return train.silentPlaces * Math.max(1 + off, uneven.widestPitch);
   const even = 1 / tracker.table.stepsPerCycle;
   const { widestState } = uneven;
-  const state = Math.min(1, Math.max(even + off, 1.1 * (Number.isNaN(widestState) ? 2 * even : widestState)));
+  const widest = Number.isNaN(widestState) ? 2 * even : Math.max(even, widestState);
+  const state = Math.min(1, widerState * widest + off);
   // In a gap of the wheel no line changes.
   return (noGapAhead(train.sync) ? 0 : train.sync.missing) + state;
 }
