@@ -8,8 +8,8 @@ const mostOff = 3;
 const widerState = 1.1;
 
 /** Largest number of positions that can still be silent after the last edge. */
-function silentPositions({ tracker, train }: Motion): number {
-  const { uneven, edgeError } = train;
+function silentPositions({ tracker, train, state: shaft }: Motion): number {
+  const { uneven, edgeError, sync } = train;
   const off = mostOff * Math.SQRT2 * edgeError;
   if (!tracker) return train.silentPlaces * Math.max(1 + off, uneven.widestPitch);
   const even = 1 / tracker.table.stepsPerCycle;
@@ -17,7 +17,8 @@ function silentPositions({ tracker, train }: Motion): number {
   const widest = Number.isNaN(widestState) ? 2 * even : Math.max(even, widestState);
   const state = Math.min(1, widerState * widest + off);
   // In a gap of the wheel no line changes.
-  return (noGapAhead(train.sync) ? 0 : train.sync.missing) + state;
+  const isGapAhead = shaft === 'stopped' ? train.silentAtEnd > sync.missing : !noGapAhead(sync);
+  return (isGapAhead ? sync.missing : 0) + state;
 }
 
 /**
