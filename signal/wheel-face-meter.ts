@@ -15,10 +15,12 @@ import type { WheelSeat } from '@/signal/wheel-tracker';
 /** Wheels with more positions are not drawn, and no single tooth of theirs is judged. */
 export const mostPositions = 4096;
 
-/** Means run over about so many turns. */
+/** Means of spacing and of swing run over about so many turns. */
 const memoryTurns = 8;
-/** Turns that such means, and spreads, are worth: (2 - g) / g for a gain of 1 / 8. */
-export const memoryWorth = 2 * memoryTurns - 1;
+const swingTurns = 4;
+/** Turns that such means are worth: (2 - g) / g for a gain g of one over them. */
+export const spacingWorth = 2 * memoryTurns - 1;
+export const swingWorth = 2 * swingTurns - 1;
 const mostChange = 0.1;
 const mostFits = 0.03;
 
@@ -140,7 +142,7 @@ export class WheelFaceMeter implements WheelSeat {
         this.swingV[position] = swingV;
         this.swingVariance[position] = 0;
       } else {
-        const gain = count < memoryTurns ? 1 / count : 1 / memoryTurns;
+        const gain = count < swingTurns ? 1 / count : 1 / swingTurns;
         const off = swingV - old;
         this.swingV[position] = old + gain * off;
         this.swingVariance[position] = (1 - gain) * (this.swingVariance[position]! + gain * off * off);

@@ -163,18 +163,21 @@ export class WheelTracker {
       const beforeS = attempt === 0 ? pitchS : meanPitchS;
       if (nextS < regularFrom * beforeS || nextS > regularTo * beforeS) continue;
       const each = attempt === 0 ? (beforeS + nextS) / 2 : beforeS;
-      const spans = this.wholeSpans(stretchS / each, end);
+      const spans = this.wholeSpans(stretchS / each, end, attempt === 1 ? offSingle : offStretch);
       if (spans > 0 && this.settle(end, spans, each)) return;
     }
     if (waiting === mostWaiting || (waiting >= 4 && this.isAnotherSpeed())) this.loseCount();
   }
 
-  /** @param between pulses in it. @returns 0 where that is no whole number of pitches, or too many empty ones. */
-  private wholeSpans(pitches: number, between: number): number {
+  /**
+   * @param between pulses in it. @param off how far from whole it may be where it is more than one pitch.
+   * @returns 0 where that is no whole number of pitches, or too many empty ones.
+   */
+  private wholeSpans(pitches: number, between: number, off: number): number {
     const whole = Math.round(pitches);
     if (whole < 1 || whole > this.missing + 1 + mostEmpty + 2 * between) return 0;
-    const off = whole === 1 ? offSingle : Math.min(offAtMost, Math.max(offStretch, offPerPitch * whole));
-    return Math.abs(pitches - whole) <= off ? whole : 0;
+    const most = whole === 1 ? offSingle : Math.min(offAtMost, Math.max(off, offPerPitch * whole));
+    return Math.abs(pitches - whole) <= most ? whole : 0;
   }
 
   /** The last three intervals are alike, and the pulses that wait do not come at every second or third tooth. */
@@ -186,7 +189,7 @@ export class WheelTracker {
     if (Math.max(a, b, c) > steadyWithin * Math.min(a, b, c)) return false;
     for (let i = 0; i < n; i++) {
       const pitches = (waitT[i]! - (i === 0 ? this.lastT : waitT[i - 1]!)) / pitchS;
-      if (this.wholeSpans(pitches, 0) < 2) return true;
+      if (this.wholeSpans(pitches, 0, offStretch) < 2) return true;
     }
     return false;
   }
@@ -233,7 +236,10 @@ export class WheelTracker {
     let done = 0;
     let extra = 0;
     for (let i = 0; i < end; i++) {
-      const pitches = (waitT[i]! - lastT) / each;
+      // From whichever end of the stretch it fits better: the tooth at the other one may stand off itself.
+      const ahead = (waitT[i]! - lastT) / each;
+      const back = spans - (waitT[end]! - waitT[i]!) / each;
+      const pitches = offWhole(back) < offWhole(ahead) ? back : ahead;
       const place = inOrder ? i + 1 : Math.round(pitches);
       const fits = inOrder || (place > done && place < spans && Math.abs(pitches - place) <= offPlace);
       waitPlace[i] = fits ? place : 0;
@@ -333,7 +339,7 @@ export class WheelTracker {
       const before = waitT[n - 3]! - waitT[n - 4]!;
       const each = (before + b) / 2;
       const regular = b > regularFrom * before && b < regularTo * before;
-      if (regular && this.wholeSpans(a / each, 0) === missing + 1) {
+      if (regular && this.wholeSpans(a / each, 0, offStretch) === missing + 1) {
         this.begin(4, missing + 1, each);
         return;
       }
@@ -370,4 +376,8 @@ export class WheelTracker {
     }
     this.pitchS = pitchS;
   }
+}
+
+function offWhole(value: number): number {
+  return Math.abs(value - Math.round(value));
 }

@@ -1,0 +1,47 @@
+/** When a rule looks at the wheel's face anew: a turn has passed, and the last look is half a second ago or more. */
+import type { RuleContext } from '@/signal/findings/rule';
+import type { WheelFaceMeter } from '@/signal/wheel-face-meter';
+
+const shortestS = 0.5;
+/** Wheels with more positions are looked at every two seconds: a look at 4096 of them takes about half a millisecond. */
+const manyPositions = 512;
+const longS = 2;
+
+export class WheelLook {
+  readonly face: WheelFaceMeter | null;
+  private readonly context: RuleContext;
+  private lookedS = -Infinity;
+  private turns = -1;
+
+  constructor(context: RuleContext) {
+    this.context = context;
+    this.face = context.motion.train.face;
+  }
+
+  /** What was learnt of the wheel is of the teeth that come now. */
+  get isKnown(): boolean {
+    return this.face !== null && this.face.isKnown;
+  }
+
+  /** Time for one turn, s. */
+  get turnS(): number {
+    const { tracker } = this.context.motion.train.placer;
+    return tracker.positions * tracker.pitchS;
+  }
+
+  isDue(nowS: number): boolean {
+    const { face, turns, lookedS } = this;
+    if (!face || face.turns === turns) return false;
+    if (nowS - lookedS < (face.positions > manyPositions ? longS : shortestS)) return false;
+    this.turns = face.turns;
+    this.lookedS = nowS;
+    return true;
+  }
+}
+
+/** Values of the places whose tooth has not just failed: what a missing one showed last says nothing. */
+export function ofTeethThere(values: Float64Array, face: WheelFaceMeter, to: Float64Array): Float64Array {
+  const { inRow } = face.absence;
+  for (let k = 0; k < to.length; k++) to[k] = inRow[k]! > 0 ? NaN : values[k]!;
+  return to;
+}
