@@ -64,7 +64,9 @@ export class DutyShiftRule implements FindingRule {
     const unequal =
       path.channel.sensor.kind === 'latch' && Math.abs(fromHalf) > (latch.open ? latchStaysAt : latchOpensAt);
     this.seen[index] = shifted || unequal ? this.seen[index]! + 1 : 0;
-    if (!shifted && !latch.open && means.steady) this.learn(index);
+    // A speed that is new while the duty is on its way must not take that for usual.
+    const strange = !own && Math.abs(shift) > staysAt;
+    if (!shifted && !strange && !latch.open && means.steady && means.bandStays) this.learn(index);
     if (this.seen[index] === 0 || (!latch.open && this.seen[index]! < looksToOpen)) return;
     const evidence: Evidence = shifted
       ? { duty: means.duty, usualDuty: usual, shift, toothHz: means.toothHz }

@@ -17,7 +17,8 @@ const sameHz = 0.25;
 const prominent = 2;
 /** As near as this to a multiple of the shaft's frequency the two cannot be told apart, Hz. */
 const onOrderHz = 0.25;
-/** Orders up to this one are what run-out, an ellipse or a motor on the same shaft make; higher ones come in rows. */
+
+/** Orders up to this one are what run-out, an ellipse or a motor on the same shaft make; of a squared signal, any. */
 const lowOrders = 4;
 
 type Verdict = 'nothing' | 'found' | 'order' | 'edges';
@@ -38,13 +39,13 @@ export class MainsHumRule implements FindingRule {
   private readonly spectra: SlowSpectra;
   private readonly judged: Judged[];
   /** Where harmonics alone may be the ripple of the sensors' supply, another rule looks for it. */
-  private readonly mostHarmonic: number;
+  private readonly ripples: boolean;
 
   /** @param ripples true where supply ripple is judged. */
   constructor(context: RuleContext, spectra: SlowSpectra, ripples: boolean) {
     this.context = context;
     this.spectra = spectra;
-    this.mostHarmonic = ripples ? 1 : 3;
+    this.ripples = ripples;
     this.judged = spectra.list.map(({ index }) => ({
       path: context.paths[index]!,
       latch: new SizedLatch(2),
@@ -106,9 +107,11 @@ export class MainsHumRule implements FindingRule {
     const { wheel } = spectrum;
     const { halfSwingV } = wheel;
     const limits = latch.open ? stays : opens;
+    // A squared signal has so many harmonics of its own that those of the mains are not worth the doubt.
+    const mostHarmonic = this.ripples || judged.path.channel.sensor.kind !== 'linear' ? 1 : 3;
     let best: Sight | null = null;
     for (const mainsHz of [50, 60]) {
-      for (let harmonic = 1; harmonic <= this.mostHarmonic; harmonic++) {
+      for (let harmonic = 1; harmonic <= mostHarmonic; harmonic++) {
         const hz = harmonic * mainsHz;
         if (hz > spectra.nyquistHz - 4 * spectra.binHz) break;
         const tone = toneNear(spectrum, spectra.binHz, hz, harmonic * reachHz);
@@ -134,10 +137,11 @@ export class MainsHumRule implements FindingRule {
     if (wheel.mostAt(tone.hz) > tone.amplitudeV)
       return looksLikeEdges(path, wheel, tone) ? 'edges' : 'nothing';
     if (known) return 'found';
-    return this.onOrder(spectrum, tone);
+    if (3 * this.spectra.sizeNear(spectrum, wheel.mirrorOf(tone.hz)) > tone.amplitudeV) return 'nothing';
+    return this.onOrder(spectrum, tone, path.channel.sensor.kind === 'linear');
   }
 
-  private onOrder(spectrum: Spectrum, tone: Tone): Verdict {
+  private onOrder(spectrum: Spectrum, tone: Tone, linear: boolean): Verdict {
     const { wheel } = spectrum;
     const { binHz } = this.spectra;
     const { gearRatio } = this.context.rig.wheel;
@@ -153,7 +157,7 @@ export class MainsHumRule implements FindingRule {
         orderSize(spectrum, order + 1, shaftHz / binHz),
       );
       if (3 * row > tone.amplitudeV) return 'nothing';
-      if (order <= lowOrders) return 'order';
+      if (order <= lowOrders || !linear) return 'order';
     }
     return wheel.besideTeeth(tone.hz, onOrderHz) ? 'order' : 'found';
   }

@@ -104,8 +104,10 @@ export class SlowSpectra {
     return true;
   }
 
-  private sizeNear(spectrum: Spectrum, hz: number): number {
+  /** Of what stands at `hz`, V; 0 outside the spectrum. */
+  sizeNear(spectrum: Spectrum, hz: number): number {
     const bin = Math.round(hz / this.binHz);
+    if (!(bin > 1 && bin < spectrum.re.length - 2)) return 0;
     return Math.max(sizeAt(spectrum, bin - 1), sizeAt(spectrum, bin), sizeAt(spectrum, bin + 1));
   }
 

@@ -9,6 +9,8 @@ import { firstSince, isEven, placesBetween, repeats, usualIntervalS } from '@/si
 
 const harmonics = 60;
 const knownHarmonics = 12;
+/** Torque ripples with up to about so many times a turn. */
+const sideOrders = 10;
 /** With more teeth than this in the window their harmonics are images, which say nothing of other speeds. */
 const mostTeeth = 600;
 
@@ -119,8 +121,8 @@ export class SlowWheel {
   }
 
   /**
-   * A tone at `hz` of no more than this may be one of the teeth's harmonics, V: of those seen before half as much again,
-   * of others twice what a signal with such flanks can have.
+   * A tone at `hz` of no more than this may come from harmonics of the teeth, V: of those seen before half as much again, of
+   * others twice what a signal with such flanks can have, all together.
    */
   mostAt(hz: number): number {
     const { halfSwingV, toothHz, spreadHz, turnHz, binHz, flankS } = this;
@@ -137,7 +139,7 @@ export class SlowWheel {
       if (on && !Number.isNaN(known)) share = 0.03 + 1.5 * known * lobe(Math.max(0, off - smearHz) / binHz);
       // Of a trapezoid: 4 / (pi h) of a square wave, less beyond 1 / (pi flank).
       else share = ((on ? 2 : 0.5) * 1.27 * Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS))) / h;
-      most = Math.max(most, (share * halfSwingV) / Math.max(1, smearHz / (2 * binHz)));
+      most += (share * halfSwingV) / Math.max(1, smearHz / (2 * binHz));
     }
     return most;
   }
@@ -152,6 +154,18 @@ export class SlowWheel {
       }
     }
     return false;
+  }
+
+  /**
+   * Where the other side band of the teeth stands if a tone at `hz` is one, Hz: a speed that ripples with the turn, and teeth
+   * that differ, make both alike. NaN where the tone is too far from the teeth for that.
+   */
+  mirrorOf(hz: number): number {
+    const { toothHz, turnHz, binHz } = this;
+    for (let h = 1; h <= 3 && toothHz > 0; h++) {
+      if (Math.abs(h * toothHz - hz) < sideOrders * turnHz + 2 * binHz) return 2 * h * toothHz - hz;
+    }
+    return NaN;
   }
 
   /**

@@ -1,7 +1,7 @@
 /** What can be wrong with a swing, each against another thing: the band, the noise, the supply. */
 import type { ChannelPath } from '@/signal/channel-path';
 import type { TurnMeans } from '@/signal/findings/turn-means';
-import { isEven, placesBetween, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
+import { emptyPlaces, isEven, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
 import type { Evidence } from '@/signal/finding-words/values';
 import type { Finding } from '@/signal/model';
 
@@ -53,9 +53,9 @@ export function againstBand(
     worstV = beyondV;
     atS = (log.riseS[i]! + log.fallS[i]!) / 2;
   }
-  const expected = Math.ceil(((end - first) * means.positions) / means.turn);
-  const places = even ? placesBetween(log, first, end, usualS) : expected;
-  const empty = Math.max(0, places - expected);
+  const ofGaps = Math.ceil(((end - first) * (means.positions - means.turn)) / means.turn);
+  const empty = even ? Math.max(0, emptyPlaces(log, first, end, usualS) - ofGaps) : 0;
+  const places = end - first + ofGaps + empty;
   if (empty > 0 && (rejected >= empty || empty > manyEmpty * places)) {
     const evidence = {
       against: 'missed',

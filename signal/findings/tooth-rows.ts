@@ -56,3 +56,19 @@ export function usualIntervalS(log: ToothLog, first: number, last: number): numb
   );
   return intervals.sort()[some >> 1]!;
 }
+
+/**
+ * Places without a tooth in intervals whose neighbours are of the usual length: a shaft that stops and goes on makes long
+ * intervals too, but slows down before them.
+ */
+export function emptyPlaces(log: ToothLog, first: number, last: number, usualS: number): number {
+  let empty = 0;
+  for (let n = first; n < last; n++) {
+    const places = Math.round(intervalS(log, n) / usualS);
+    if (places < 2) continue;
+    const before = n > first ? intervalS(log, n - 1) / usualS : 1;
+    const after = n + 1 < last ? intervalS(log, n + 1) / usualS : 1;
+    if (Math.abs(before - 1) < 0.2 && Math.abs(after - 1) < 0.2) empty += places - 1;
+  }
+  return empty;
+}

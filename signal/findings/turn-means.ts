@@ -10,6 +10,13 @@ import { readableFrom } from '@/signal/tooth-log';
 /** Not more often than this, s (ticks are a tenth of a second apart at most). */
 const everyS = 0.45;
 const fewestTeeth = 4;
+const bandShare = 0.02;
+const homeShare = 0.2;
+/** Peak to peak of edges that noise alone makes: sigmas, and share of the supply of a switching sensor. */
+const leastSigmas = 10;
+const leastOfSupply = 0.1;
+/** Mean swing over the largest one: teeth of a sound wheel differ by four to one, noise among teeth by more. */
+const leastOfLargest = 0.25;
 /** A wheel with more teeth than this is judged by so many of them. */
 const mostTeeth = 512;
 /** From one look to the next the speed may differ by so much, to learn from it and to judge by it. */
@@ -34,6 +41,8 @@ export class TurnMeans {
   steady = false;
   /** It was not far from it. */
   ramps = true;
+  /** The band has found itself: one that still moves cuts teeth at another level each time. */
+  bandStays = false;
   private readonly path: ChannelPath;
   private readonly context: RuleContext;
   /** Teeth of one turn; NaN for a channel that carries anything else. */
@@ -46,6 +55,8 @@ export class TurnMeans {
   private askedS = NaN;
   private isNew = false;
   private beforeHz = NaN;
+  private beforeMidV = NaN;
+  private largestV = 0;
 
   constructor(context: RuleContext, path: ChannelPath) {
     const { pulsesPerTurn } = context.rig.wheel;
@@ -95,7 +106,28 @@ export class TurnMeans {
     this.steady = change < steadyShare;
     this.ramps = !(change < slowShare);
     this.beforeHz = this.toothHz;
-    return true;
+    this.bandStays = this.isBandAtHome();
+    return !this.isNoise();
+  }
+
+  private isBandAtHome(): boolean {
+    const { operateV, releaseV } = this.path;
+    const { band } = this.context.settings;
+    const midV = (operateV + releaseV) / 2;
+    const movedV = Math.abs(midV - this.beforeMidV);
+    this.beforeMidV = midV;
+    if (band.mode === 'fixed') return true;
+    const homeV = this.lowV + ((band.operateFraction + band.releaseFraction) / 2) * this.swingV;
+    return movedV < bandShare * this.swingV && Math.abs(midV - homeV) < homeShare * this.swingV;
+  }
+
+  /** Edges that noise made of a line at rest are no teeth to judge. */
+  private isNoise(): boolean {
+    const { channel, noiseV } = this.path;
+    const { kind, supplyV } = channel.sensor;
+    if (this.swingV < Math.max(leastOfLargest * this.largestV, noiseV > 0 ? leastSigmas * noiseV : 0))
+      return true;
+    return kind !== 'linear' && supplyV !== null && this.swingV < leastOfSupply * supplyV;
   }
 
   /** Of so many teeth at hand; 0 where they are too few. */
@@ -127,11 +159,15 @@ export class TurnMeans {
     let sum = 0;
     let squares = 0;
     let counted = 0;
+    this.largestV = 0;
     for (let n = first; n < end; n++) {
       const riseS = log.riseS[n & mask]!;
       const periodS = log.riseS[(n + 1) & mask]! - riseS;
-      high += log.peakV[n & mask]!;
-      low += log.troughV[n & mask]!;
+      const peakV = log.peakV[n & mask]!;
+      const troughV = log.troughV[n & mask]!;
+      high += peakV;
+      low += troughV;
+      this.largestV = Math.max(this.largestV, peakV - troughV);
       if (periodS > 1.5 * pitchS) continue;
       const toothHighS = log.fallS[n & mask]! - riseS;
       const share = toothHighS / periodS;

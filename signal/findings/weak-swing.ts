@@ -17,6 +17,7 @@ const fallenElsewhere = 0.4;
 /** Speeds within this factor are as good as the same. */
 const near = 1.5;
 const recoveredShare = 0.6;
+const strangeShare = 0.1;
 const looksForBaseline = 2;
 const looksToOpen = 2;
 /** A filter that leaves less than this of the teeth is named. */
@@ -95,7 +96,9 @@ export class WeakSwingRule implements FindingRule {
     const baseline = this.swings[index]!;
     const reference = this.reference(path, index);
     const share = swingV / reference.swingV;
-    if (steady && !(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);
+    // A speed that is new while the swing is on its way down must not take that for usual.
+    const strange = !reference.own && Math.abs(share - 1) > strangeShare;
+    if (steady && !strange && !(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);
     if (!(share < (this.latches[index]!.open ? recoveredShare : reference.limit))) return null;
     const usualV = reference.swingV;
     const evidence = { against: 'before', swingV, usualSwingV: usualV, leftPercent: 100 * share, toothHz };
@@ -106,17 +109,18 @@ export class WeakSwingRule implements FindingRule {
    * The usual swing at this speed, or from the nearest speed known, less what the filter takes here; not for a sensor
    * without supply, which is a coil and lives by speed.
    */
-  private reference(path: ChannelPath, index: number): { swingV: number; limit: number } {
+  private reference(path: ChannelPath, index: number): { swingV: number; own: boolean; limit: number } {
     const { direction } = this.context.motion;
     const { toothHz } = this.means[index]!;
     const baseline = this.swings[index]!;
     const own = baseline.usual(direction, toothHz);
     const { supplyV } = path.channel.sensor;
-    if (!Number.isNaN(own) || !(supplyV !== null && supplyV > 0)) return { swingV: own, limit: fallenShare };
+    if (!Number.isNaN(own) || !(supplyV !== null && supplyV > 0))
+      return { swingV: own, own: true, limit: fallenShare };
     const nearHz = baseline.nearestHz(direction, toothHz);
     const swingV = (baseline.usual(direction, nearHz) * this.gainAt(toothHz)) / this.gainAt(nearHz);
     const isNear = nearHz < near * toothHz && toothHz < near * nearHz;
-    return { swingV, limit: isNear ? fallenShare : fallenElsewhere };
+    return { swingV, own: false, limit: isNear ? fallenShare : fallenElsewhere };
   }
 
   private gainAt(hz: number): number {
