@@ -144,18 +144,19 @@ export class MainsHumRule implements FindingRule {
   private onOrder(spectrum: Spectrum, tone: Tone, linear: boolean): Verdict {
     const { wheel } = spectrum;
     const { binHz } = this.spectra;
-    const { gearRatio } = this.context.rig.wheel;
     // Closer rows of orders would stand beside the tone too.
     if (wheel.turnHz < 2 * binHz) return 'found';
-    for (const shaftHz of [wheel.turnHz, wheel.turnHz / gearRatio]) {
-      const order = Math.round(tone.hz / shaftHz);
-      const off = Math.abs(order * shaftHz - tone.hz);
-      if (order === 0 || off > onOrderHz + (order * wheel.spreadHz) / wheel.positions) continue;
+    // What turns before or behind a gear has its own run-out.
+    const { gearRatio } = this.context.rig.wheel;
+    const shaftHz = wheel.turnHz / gearRatio;
+    const shaftOrder = Math.round(tone.hz / shaftHz);
+    const isOfShaft = shaftOrder >= 1 && shaftOrder <= lowOrders;
+    if (gearRatio !== 1 && isOfShaft && Math.abs(shaftOrder * shaftHz - tone.hz) < onOrderHz) return 'order';
+    const order = Math.round(tone.hz / wheel.turnHz);
+    const off = Math.abs(order * wheel.turnHz - tone.hz);
+    if (order > 0 && off < onOrderHz + (order * wheel.spreadHz) / wheel.positions) {
       // A gap or a weak tooth makes a row of orders, each about as large as the next.
-      const row = Math.max(
-        orderSize(spectrum, order - 1, shaftHz / binHz),
-        orderSize(spectrum, order + 1, shaftHz / binHz),
-      );
+      const row = Math.max(orderSize(spectrum, order - 1, binHz), orderSize(spectrum, order + 1, binHz));
       if (3 * row > tone.amplitudeV) return 'nothing';
       if (order <= lowOrders || !linear) return 'order';
     }
@@ -163,10 +164,10 @@ export class MainsHumRule implements FindingRule {
   }
 }
 
-/** Of an order of the shaft; 0 for the mean and for the teeth themselves. */
-function orderSize({ re, im, wheel }: Spectrum, order: number, binsAnOrder: number): number {
+/** Of an order of the wheel; 0 for the mean and for the teeth themselves. */
+function orderSize({ re, im, wheel }: Spectrum, order: number, binHz: number): number {
   if (order % wheel.positions === 0) return 0;
-  const bin = Math.round(order * binsAnOrder);
+  const bin = Math.round((order * wheel.turnHz) / binHz);
   return bin < re.length - 1 ? Math.hypot(re[bin]!, im[bin]!) : 0;
 }
 

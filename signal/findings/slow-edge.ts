@@ -52,6 +52,7 @@ export class SlowEdgeRule implements FindingRule {
 
   private judge(path: ChannelPath, index: number, nowS: number): void {
     const means = this.means[index]!;
+    if (!means.bandStays) return;
     const latch = this.latches[index]!;
     const least = latch.open ? staying : 1;
     const linear = path.channel.sensor.kind === 'linear';

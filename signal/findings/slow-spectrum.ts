@@ -24,7 +24,7 @@ const fewestSamples = 128;
 const windowS = 1.25;
 
 export class SlowSpectra {
-  /** Channels that carry teeth or an index mark. */
+  /** Channels that carry teeth. */
   readonly list: readonly Spectrum[];
   /** Distance of two bins, Hz; NaN where the stream is too slow for any of this. */
   readonly binHz: number;
@@ -67,7 +67,7 @@ export class SlowSpectra {
     this.cosines = Float64Array.from({ length: n / 2 }, (_, i) => Math.cos((2 * Math.PI * i) / n));
     this.sines = Float64Array.from({ length: n / 2 }, (_, i) => -Math.sin((2 * Math.PI * i) / n));
     this.places = reversed(n);
-    const judged = enough ? paths.filter(({ channel }) => channel.role !== 'aux') : [];
+    const judged = enough ? paths.filter(({ channel }) => !['aux', 'Z'].includes(channel.role)) : [];
     this.list = judged.map((path) => ({
       index: paths.indexOf(path),
       re: new Float64Array(n / 2 + 1),

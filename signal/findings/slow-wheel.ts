@@ -44,7 +44,7 @@ export class SlowWheel {
   constructor(context: RuleContext, path: ChannelPath, binHz: number, nyquistHz: number) {
     this.path = path;
     this.turn = teethPerTurn(context, path);
-    this.positions = path.channel.role === 'Z' ? 1 : context.rig.wheel.pulsesPerTurn;
+    this.positions = context.rig.wheel.pulsesPerTurn;
     this.binHz = binHz;
     this.nyquistHz = nyquistHz;
     this.halfSwingV = expectedHalfSwingV(path, context);
@@ -85,13 +85,18 @@ export class SlowWheel {
     return this.isLocated;
   }
 
-  /** Takes the size of the harmonics from a spectrum of a steady wheel. Beside the mains only where nothing is known yet. */
+  /**
+   * Takes the size of the harmonics from a spectrum of a steady wheel. Beside the mains only where nothing is known yet. Of
+   * a squared signal the next shift of its duty makes others, so that nothing is learnt from it.
+   */
   learnLines(sizeNear: (hz: number) => number): void {
+    if (this.path.channel.sensor.kind !== 'linear') return;
     if (this.teeth < 3 || this.teeth > mostTeeth || !this.locate()) return;
     const { usual, toothHz, spreadHz, binHz, nyquistHz, halfSwingV } = this;
     for (let h = 1; h <= knownHarmonics; h++) {
-      const hz = h * toothHz;
-      if (hz > nyquistHz - 3 * binHz || h * spreadHz > binHz) return;
+      const hz = this.folded(h * toothHz);
+      if (h * spreadHz > binHz) return;
+      if (hz < 3 * binHz || hz > nyquistHz - 3 * binHz) continue;
       const share = sizeNear(hz) / halfSwingV;
       const before = usual[h]!;
       if (Number.isNaN(before)) usual[h] = share;
@@ -162,10 +167,11 @@ export class SlowWheel {
    */
   mirrorOf(hz: number): number {
     const { toothHz, turnHz, binHz } = this;
-    for (let h = 1; h <= 3 && toothHz > 0; h++) {
-      if (Math.abs(h * toothHz - hz) < sideOrders * turnHz + 2 * binHz) return 2 * h * toothHz - hz;
-    }
-    return NaN;
+    const harmonic = Math.round(hz / toothHz);
+    const off = Math.abs(harmonic * toothHz - hz);
+    // Nearer than this the teeth themselves fill the place.
+    const apart = off > 3.5 * binHz && off < sideOrders * turnHz + 2 * binHz;
+    return harmonic > 0 && harmonic <= 3 && apart ? 2 * harmonic * toothHz - hz : NaN;
   }
 
   /**
