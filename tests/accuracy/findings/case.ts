@@ -19,6 +19,8 @@ export type FaultCase = Bench & {
   /** The finding must be open by so long after `wholeS`, and closed by so long after `endS`. */
   appearS: number;
   goneS: number;
+  /** One sensor cannot tell what it is: that it says so is all that can be asked. */
+  mayDoubt?: boolean;
   /** Codes that may well come with it. */
   consequences: readonly FindingCode[];
 };

@@ -27,7 +27,7 @@ export function runCase(code: CaseCode, seed: number): Verdict {
 }
 
 export function judge(code: CaseCode, seed: number, made: FaultCase, sights: readonly Sight[]): Verdict {
-  const { beginS, wholeS, endS, appearS, goneS, variant } = made;
+  const { beginS, wholeS, endS, appearS, goneS, variant, mayDoubt = false } = made;
   const own = sights.filter(
     (sight) => sight.code === code && sight.closedS > beginS && sight.openedS <= endS + 0.1,
   );
@@ -35,7 +35,8 @@ export function judge(code: CaseCode, seed: number, made: FaultCase, sights: rea
   const first = own.find(({ openedS }) => openedS > beginS);
   const afterS = first ? first.openedS - wholeS : NaN;
   const inTime = afterS <= appearS;
-  const outcome = !first ? 'missed' : !inTime ? 'late' : first.outcome === 'found' ? 'caught' : 'cannot tell';
+  const isSaid = first?.outcome === 'found' || mayDoubt;
+  const outcome = !first ? 'missed' : !inTime ? 'late' : isSaid ? 'caught' : 'cannot tell';
   const gone = !first || endS === Infinity ? null : own.every(({ closedS }) => closedS <= endS + goneS);
   return { seed, variant, outcome, afterS, gone, others: othersOf(code, made, sights) };
 }

@@ -56,7 +56,7 @@ export function drawChannels(
     sensor,
     baselineMt,
     name: names[i] as string,
-    placeDeg: i === 0 ? 0 : placeDeg + draw.uniform(-6, 6),
+    placeDeg: i === 0 ? 0 : placeDeg + (sensing === 'three-hall' ? 0.5 : 1) * draw.uniform(-6, 6),
     electronics: { ...drawElectronics(draw, drawn, 40), noiseRmsV: noiseV },
   }));
   if (wants.index)

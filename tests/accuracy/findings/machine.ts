@@ -60,7 +60,9 @@ export function drawMachine(draw: Draw, wants: Wants): Machine {
   const sensing = missing > 0 ? 'single' : asked;
   const { word, kind } = drawMake(draw, sensing, missing, wants);
   const { positions, toothHz } = drawSpeed(draw, kind, missing, word, wants);
-  const wheel = drawWheel(draw, kind, positions, missing, wants.tolerances ?? soundTolerances);
+  const isRing = sensing === 'quadrature' || sensing === 'three-hall';
+  const tolerances = wants.tolerances ?? soundTolerances;
+  const wheel = drawWheel(draw, kind, positions, missing, tolerances, isRing);
   const rigSeed = draw.seed();
   const field = fieldOf(wheel, rigSeed);
   const sensor = drawSensor(draw, word, kind, field);

@@ -24,6 +24,7 @@ export function drawWheel(
   positions: number,
   missing: number,
   tolerances: Tolerances,
+  evenHalves: boolean,
 ): DrawnWheel {
   const common = {
     positions,
@@ -37,7 +38,9 @@ export function drawWheel(
   switch (kind) {
     case 'toothed': {
       const pitchMm = draw.uniform(5, 12);
-      const toothWidth = draw.chance(0.6) ? 1 : draw.uniform(0.7, 1);
+      const drawn = draw.chance(0.6) ? 1 : draw.uniform(0.7, 1);
+      // Narrow teeth make the states of a ring uneven, which is what a phase error is.
+      const toothWidth = evenHalves ? 1 : drawn;
       const modulationMt = draw.uniform(60, 110);
       const wheel: WheelSpec = { kind, ...common, pitchMm, modulationMt, toothWidth };
       return withRunOut(wheel, pitchMm * draw.uniform(0.12, 0.3), pitchMm, runOut);

@@ -1,4 +1,7 @@
-/** The direction is not the expected one: A and B on each other's input, or a drive that turns the other way. */
+/**
+ * The direction is not the expected one (A and B on each other's input, or a drive that turns the other way: which, the
+ * data cannot tell), or it changes at speed, as no shaft can.
+ */
 import { timingOfStanding, timingFor, runningMotion, type CaseMaker } from '@/tests/accuracy/findings/case';
 import { benchOf, drawMachine } from '@/tests/accuracy/findings/machine';
 
@@ -7,6 +10,7 @@ export const directionFlip: CaseMaker = (draw) => {
     'swapped from the start',
     'swapped while it stood',
     'drive turned round',
+    'swapped at speed',
   ] as const);
   const machine = drawMachine(draw, { sensing: ['quadrature'], toothHz: [10, 300], turnsPerS: [0.5, 40] });
   const expected = { expectedDirection: 'forward' } as const;
@@ -20,10 +24,22 @@ export const directionFlip: CaseMaker = (draw) => {
       }),
       ...timing,
       variant,
+      mayDoubt: true,
       consequences: [],
     };
   }
   const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, leadTurns: 4 });
+  if (variant === 'swapped at speed') {
+    const { beginS, endS } = timing;
+    return {
+      ...benchOf(machine, runningMotion(draw, machine, timing.seconds), {
+        faults: [{ ...swapped, beginS, endS }],
+      }),
+      ...timing,
+      variant,
+      consequences: ['illegal-state'],
+    };
+  }
   const standS = draw.uniform(1, 2);
   const rampS = draw.uniform(0.5, 1.5);
   const way = variant === 'drive turned round' ? -1 : 1;
@@ -58,6 +74,7 @@ export const directionFlip: CaseMaker = (draw) => {
     goneS,
     seconds: endS + goneS + 0.5,
     variant,
+    mayDoubt: true,
     consequences: [],
   };
 };

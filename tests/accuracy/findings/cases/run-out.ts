@@ -28,6 +28,8 @@ export const runOut: CaseMaker = (draw) => {
     }),
     ...timing,
     variant,
+    // In the spacing alone the wheel and a speed that sways look alike.
+    mayDoubt: variant === 'spacing',
     consequences: ['uneven-teeth', 'weak-swing', 'clipping'],
   };
 };
