@@ -26,7 +26,7 @@ export type IntervalMeter = {
 /** An interval at least so many times the one before tells that the one before was short. */
 const stepUp = 4;
 /** What bounces does so at many teeth: the last ones of a tick are enough. */
-const mostPerTick = 64;
+const mostPerTick = 32;
 const remembered = 32;
 
 export function createIntervalMeter(): IntervalMeter {

@@ -1,7 +1,8 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { RunReference, unrestOf } from '@/signal/findings/unrest';
+import { unrestIntervals, unrestOf } from '@/signal/findings/unrest';
+import type { RunReference } from '@/signal/findings/unrest';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import type { ToothLog } from '@/signal/tooth-log';
@@ -34,11 +35,12 @@ export class DeadChannelRule implements FindingRule {
   private readonly flatFromS: number[];
   private readonly humFromS: number[];
 
-  constructor(context: RuleContext) {
+  /** @param references of the lanes, in their order. */
+  constructor(context: RuleContext, references: RunReference[]) {
     const { paths } = context;
     this.context = context;
     this.latches = paths.map(() => new FindingLatch(0));
-    this.references = paths.map((path) => new RunReference(context, path));
+    this.references = references;
     this.marks = paths.map(() => paths.map(() => 0));
     this.ownEdges = paths.map(() => 0);
     this.quietFromS = paths.map(() => NaN);
@@ -47,8 +49,8 @@ export class DeadChannelRule implements FindingRule {
   }
 
   tick(nowS: number): void {
-    const { paths, index, lanes } = this.context;
-    if (lanes.length > 1) for (const lane of lanes) this.references[lane]!.tick(nowS);
+    const { paths, index } = this.context;
+    for (const reference of this.references) reference.tick(nowS);
     for (let k = 0; k < paths.length; k++) {
       const path = paths[k]!;
       this.mark(path, k, nowS);
@@ -74,7 +76,7 @@ export class DeadChannelRule implements FindingRule {
   }
 
   private besideOthers(k: number, nowS: number): Evidence | null {
-    const { paths, lanes } = this.context;
+    const { paths, lanes, rateHz, rig } = this.context;
     if (!lanes.includes(k)) return null;
     let most = 0;
     let busiest = -1;
@@ -95,19 +97,21 @@ export class DeadChannelRule implements FindingRule {
     };
     if (busy > 1 || this.latches[k]!.open) return evidence;
     const { log } = paths[busiest]!;
-    const unrest = unrestOf(log, -Infinity, 1 / this.context.rateHz, 0);
-    const { toothS } = this.references[busiest]!;
+    const unrest = unrestOf(log, -Infinity, 1 / rateHz, rig.wheel.missingPulses);
+    const { toothS } = this.references[lanes.indexOf(busiest)]!;
     return !unrest || unrest.isIrregular || unrest.meanS > farSlower * toothS ? null : evidence;
   }
 
   /** All that comes on it is the mains, while another channel shows how the shaft turns. */
   private floats(path: ChannelPath, k: number, nowS: number): boolean {
-    const { paths, lanes, rateHz } = this.context;
-    const own = lanes.length > 1 && lanes.includes(k) ? humOn(path.log, nowS, rateHz) : NaN;
+    const { paths, lanes, rateHz, rig } = this.context;
+    if (lanes.length < 2 || !lanes.includes(k)) return false;
+    const own = humOn(path.log, nowS, rateHz);
     const isAlone =
       !Number.isNaN(own) &&
       lanes.some((m) => {
-        const other = m === k ? null : unrestOf(paths[m]!.log, -Infinity, 1 / rateHz, 0);
+        const other =
+          m === k ? null : unrestOf(paths[m]!.log, -Infinity, 1 / rateHz, rig.wheel.missingPulses);
         if (!other || other.isIrregular || nowS - other.lastS > 4 * other.meanS) return false;
         return Math.abs(other.meanS * own - 1) > 0.1;
       });
@@ -169,6 +173,10 @@ export class DeadChannelRule implements FindingRule {
 
 /** Frequency of the mains, or twice that, where the teeth of a channel come so; else NaN. */
 function humOn(log: ToothLog, nowS: number, rateHz: number): number {
+  const { riseS, mask, count } = log;
+  const roughlyS =
+    (riseS[(count - 1) & mask]! - riseS[(count - 1 - unrestIntervals) & mask]!) / unrestIntervals;
+  if (!mainsHz.some((hz) => Math.abs(roughlyS * hz - 1) < 0.02)) return NaN;
   const unrest = unrestOf(log, -Infinity, 1 / rateHz, 0);
   if (!unrest || unrest.isIrregular || nowS - unrest.lastS > 4 * unrest.meanS) return NaN;
   return mainsHz.find((hz) => Math.abs(unrest.meanS * hz - 1) < 0.01) ?? NaN;
@@ -177,8 +185,10 @@ function humOn(log: ToothLog, nowS: number, rateHz: number): number {
 /** At an end of the sensor's supply, or of the converter: no field takes a linear sensor there and leaves it flat. */
 function isAtEnd({ channel, rails }: ChannelPath, levelV: number, spreadV: number): boolean {
   const { supplyV } = channel.sensor;
-  if (supplyV !== null && supplyV > 0 && spreadV <= 0.02 * supplyV)
-    if (levelV < 0.03 * supplyV || levelV > 0.97 * supplyV) return true;
+  // What noise the input picks up may swing; its middle stands where it stands.
+  const middleV = levelV - spreadV / 2;
+  if (supplyV !== null && supplyV > 0 && spreadV <= 0.06 * supplyV)
+    if (middleV < 0.03 * supplyV || middleV > 0.97 * supplyV) return true;
   if (!rails || !Number.isFinite(rails.highV - rails.lowV)) return false;
   const within = 0.005 * (rails.highV - rails.lowV);
   return spreadV <= within && (levelV >= rails.highV - within || levelV - spreadV <= rails.lowV + within);

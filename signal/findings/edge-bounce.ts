@@ -49,7 +49,7 @@ export class EdgeBounceRule implements FindingRule {
     const { rig, paths } = context;
     const { pulsesPerTurn, missingPulses } = rig.wheel;
     this.context = context;
-    this.missing = rig.sensing === 'single' ? missingPulses : 0;
+    this.missing = missingPulses;
     this.teethPerTurn = pulsesPerTurn - this.missing;
     this.lanes = context.lanes.map((index) => ({
       path: paths[index]!,

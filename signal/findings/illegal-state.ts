@@ -52,7 +52,7 @@ export class IllegalStateRule implements FindingRule {
     if (tracker && this.table && this.walk) {
       const isCounted = tracker.illegalSteps !== this.seen;
       if (isCounted || calm.disturbances !== this.disturbances) {
-        const fresh = tracker.illegalSteps - this.seen + this.readBack(this.walk, this.table);
+        const fresh = Math.max(tracker.illegalSteps - this.seen, this.readBack(this.walk, this.table));
         if (fresh > this.forgiven) this.noteSkips(fresh - this.forgiven, nowS);
         this.forgiven = Math.max(0, this.forgiven - fresh);
       }
@@ -77,11 +77,10 @@ export class IllegalStateRule implements FindingRule {
       lately.copyWithin(0, 1);
       lately[opensAt - 1] = nowS;
     }
-    const { periodS } = context.motion.train;
-    const withinS = Math.max(windowS, Number.isNaN(periodS) ? 0 : windowTurns * pulsesPerTurn * periodS);
+    const withinS = Math.max(windowS, windowTurns * pulsesPerTurn * shortestTooth(log) || 0);
     if (!latch.open && nowS - lately[0]! > withinS) return;
     if (!latch.open) {
-      this.skips = 0;
+      this.skips = Math.max(0, opensAt - fresh);
       this.teethBefore = log.count - 1;
     }
     this.skips += fresh;
@@ -109,14 +108,14 @@ export class IllegalStateRule implements FindingRule {
 
   /**
    * Reads what happened since the last tick, the kinds of skips with it.
-   * @returns states that were passed far too fast and that the motion took in good faith.
+   * @returns skips, and states that were passed far too fast and that the motion took in good faith.
    */
   private readBack(walk: EdgeWalk, table: StepTable): number {
     const { kinds, lastTickS } = this;
     const { log } = this.context.paths[this.context.primary]!;
     const toothS = shortestTooth(log);
     const rushedS = (rushed * toothS) / table.stepsPerCycle;
-    let fast = 0;
+    let skips = 0;
     let beforeS = NaN;
     let laneBefore = -1;
     this.firstS = NaN;
@@ -128,19 +127,19 @@ export class IllegalStateRule implements FindingRule {
       beforeS = walk.atS;
       laneBefore = walk.lane;
       if (walk.atS <= lastTickS || (!walk.isIllegal && !isFast)) continue;
-      if (!walk.isIllegal) fast++;
+      skips++;
       if (Number.isNaN(this.firstS)) this.firstS = walk.atS;
       if (!walk.isIllegal || stateBefore < 0) continue;
       const kind = stateBefore * table.states + cameTo;
       kinds[kind] = kinds[kind]! + 1;
     }
-    return fast;
+    return skips;
   }
 
   /** Channels that stand nearly in phase always pass a state fast: a matter of their places. */
   private isAlwaysNarrow(): boolean {
     const { context, table } = this;
-    const phases = lanePhases(context, wholeTurns(context.rig.wheel.pulsesPerTurn), -Infinity);
+    const phases = lanePhases(context, wholeTurns(context.rig.wheel), -Infinity);
     if (!phases || !table) return false;
     const widths = ringWidths(phases, table.weights);
     return table.order.some((state) => widths[state]! < 180 / table.stepsPerCycle);

@@ -24,6 +24,7 @@ export class InvertedChannelRule implements FindingRule {
   /** The one of a pair that was seen to turn over, and when; -1: none. */
   private turnedLane = -1;
   private turnedS = NaN;
+  private invalid = 0;
 
   constructor(context: RuleContext) {
     this.context = context;
@@ -35,7 +36,7 @@ export class InvertedChannelRule implements FindingRule {
     if (this.watch) this.followFlips(this.watch, nowS);
     if ((sensing === 'quadrature' || sensing === 'three-hall') && nowS >= this.dueS) {
       this.dueS = nowS + everyS;
-      const found = invertedLine(this.context, nowS);
+      const found = this.mayBeInverted() ? invertedLine(this.context, nowS) : null;
       if (found) this.raise(found, nowS);
       else if (this.turnedLane >= 0) this.raiseTurned(nowS);
     }
@@ -45,6 +46,20 @@ export class InvertedChannelRule implements FindingRule {
   gap(): void {
     this.watch?.gap();
     this.turnedLane = -1;
+  }
+
+  /** Three lines: states came that never should; a pair: its running duties lean to either side. */
+  private mayBeInverted(): boolean {
+    const { motion, paths, lanes, rig } = this.context;
+    if (rig.sensing === 'three-hall') {
+      const invalid = motion.tracker?.invalidStates ?? 0;
+      const isFresh = invalid !== this.invalid;
+      this.invalid = invalid;
+      return isFresh;
+    }
+    const a = paths[lanes[0]!]!.duty - 0.5;
+    const b = paths[lanes[1]!]!.duty - 0.5;
+    return a * b < 0 && Math.min(Math.abs(a), Math.abs(b)) > 0.03;
   }
 
   /** A line that turns over takes its row of teeth half a tooth on, and leaves the other one's where it was. */
@@ -114,7 +129,7 @@ export type InvertedLine = { lane: number | null; phases: LanePhases };
 /** What the last turns say of an inverted line, for this rule and for the one that explains a wrong direction. */
 export function invertedLine(context: RuleContext, nowS: number): InvertedLine | null {
   const { rig, motion } = context;
-  const phases = lanePhases(context, wholeTurns(rig.wheel.pulsesPerTurn), -Infinity);
+  const phases = lanePhases(context, wholeTurns(rig.wheel), -Infinity);
   if (!phases || nowS - phases.toS > 4 * phases.periodS + context.settleS) return null;
   if (rig.sensing === 'three-hall') {
     const found = invertedOfThree(phases);

@@ -6,6 +6,7 @@
  * Statistics of Directional Data, 1972). A stretch with a start, a stop, a reversal or bounce in it gives nothing.
  */
 import type { RuleContext } from '@/signal/findings/rule';
+import type { Wheel } from '@/signal/model';
 import { readableFrom } from '@/signal/tooth-log';
 import type { ToothLog } from '@/signal/tooth-log';
 
@@ -36,8 +37,9 @@ const fewestCycles = 6;
 const leastResultant = 0.7;
 
 /** Whole turns of the wheel with at least 8 cycles, as cycles. */
-export function wholeTurns(pulsesPerTurn: number): number {
-  return pulsesPerTurn * Math.ceil(8 / pulsesPerTurn);
+export function wholeTurns({ pulsesPerTurn, missingPulses }: Wheel): number {
+  const cycles = pulsesPerTurn - missingPulses;
+  return cycles * Math.ceil(8 / cycles);
 }
 
 /**
@@ -45,7 +47,7 @@ export function wholeTurns(pulsesPerTurn: number): number {
  * @returns null where the logs do not hold so many, or where the channels' edges do not go together.
  */
 export function lanePhases(
-  { paths, lanes }: Pick<RuleContext, 'paths' | 'lanes'>,
+  { paths, lanes, rig }: Pick<RuleContext, 'paths' | 'lanes' | 'rig'>,
   cycles: number,
   sinceS: number,
 ): LanePhases | null {
@@ -57,7 +59,7 @@ export function lanePhases(
   if (begin - 1 < readableFrom(first, 0)) return null;
   const fromS = first.riseS[begin & first.mask]!;
   const toS = first.riseS[last & first.mask]!;
-  if (!(fromS >= sinceS) || restsBetween(first, begin - 1, last)) return null;
+  if (!(fromS >= sinceS) || restsBetween(first, begin - 1, last, rig.wheel.missingPulses + 1)) return null;
   const result: LanePhases = {
     cycles: 0,
     fromS,
@@ -130,12 +132,15 @@ function measureLane(
   return true;
 }
 
-/** True where an interval is so much longer or shorter than the next one as a shaft makes that stops, or turns back. */
-function restsBetween(log: ToothLog, begin: number, last: number): boolean {
-  const { riseS, mask } = log;
+/**
+ * True where an interval is so much longer or shorter than the next one as a shaft makes that stops, or turns back.
+ * @param gap positions from one side of the wheel's own gap to the other; 1: it has none.
+ */
+function restsBetween({ riseS, mask }: ToothLog, begin: number, last: number, gap: number): boolean {
   let beforeS = riseS[(begin + 1) & mask]! - riseS[begin & mask]!;
   for (let k = begin + 1; k < last; k++) {
-    const ownS = riseS[(k + 1) & mask]! - riseS[k & mask]!;
+    let ownS = riseS[(k + 1) & mask]! - riseS[k & mask]!;
+    if (gap > 1 && ownS > Math.sqrt(gap) * beforeS) ownS /= gap;
     if (!(ownS < nearlyRest * beforeS && beforeS < nearlyRest * ownS)) return true;
     beforeS = ownS;
   }

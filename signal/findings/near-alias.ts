@@ -85,6 +85,8 @@ export class NearAliasRule implements FindingRule {
     const first = last - teethNeeded;
     if (first < readableFrom(log, 0)) return null;
     const lastS = log.riseS[last & log.mask]!;
+    const meanS = (lastS - log.riseS[first & log.mask]!) / teethNeeded;
+    if (meanS * rateHz > this.enough()) return null;
     const perToothS = this.toothS(first);
     if (Number.isNaN(perToothS) || nowS - lastS > 4 * perToothS + context.settleS) return null;
     const perTooth = perToothS * rateHz;
@@ -104,6 +106,17 @@ export class NearAliasRule implements FindingRule {
       },
       atS: lastS,
     };
+  }
+
+  /** With so many samples a tooth on average nothing needs a closer look. */
+  private enough(): number {
+    const { paths, primary, rig } = this.context;
+    const { sensing, wheel } = rig;
+    const { duty } = paths[primary]!;
+    // States of a ring are never taken for narrower than half of an even one.
+    const share = sensing === 'single' ? Math.min(duty, 1 - duty) : 0.5 / statesPerCycle(sensing);
+    const least = Math.max(warnBelow, warnBelowInState / share) * staysBy;
+    return (wheel.missingPulses > 0 ? 1.5 : 1.1) * least;
   }
 
   /** Mean of the last teeth; NaN where the shaft speeds up or slows down, or where bounce comes between. */

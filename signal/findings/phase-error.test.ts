@@ -32,6 +32,22 @@ describe('phase error of a pair', () => {
     expect(one!.remedy).toContain('earlier');
   });
 
+  it('is told on a wheel with a gap too', () => {
+    const gapped: Ring = {
+      ...pair,
+      positions: 18,
+      seconds: 6,
+      placesDeg: [0, 130],
+      spoil: (volts, channel, t) => ((8 * t * 18 - (channel * 130) / 360 + 18) % 18 < 16 ? volts : 1.65 - 1),
+      turnsAt: (t) => 8 * t,
+    };
+    const rig = testRig('quadrature', 18, 2);
+    const list = watchFindings(rig, rateHz, {}, ...ringVolts({ ...gapped, rateHz }));
+    const [one] = list.filter(({ code }) => code === 'phase-error');
+    expect(one).toMatchObject({ severity: 'warn' });
+    expect(one!.evidence.errorDeg).toBeCloseTo(40, -1);
+  });
+
   it('is the same in reverse, and whatever the speed does', () => {
     const turned = { ...pair, placesDeg: [0, 52], turnsAt: speeds([0, -4], [4, -10]) };
     expect(found(turned)[0]!.evidence.errorDeg).toBeCloseTo(-38, 0);
@@ -125,6 +141,8 @@ describe('widths of states', () => {
   });
 
   it('come from whole turns of at least eight cycles', () => {
-    expect([1, 3, 8, 9, 60].map(wholeTurns)).toEqual([8, 9, 8, 9, 60]);
+    const of = (pulsesPerTurn: number, missingPulses = 0) =>
+      wholeTurns({ pulsesPerTurn, missingPulses, gearRatio: 1, widthClasses: null });
+    expect([of(1), of(3), of(8), of(9), of(60), of(6, 1), of(36, 2)]).toEqual([8, 9, 8, 9, 60, 10, 34]);
   });
 });

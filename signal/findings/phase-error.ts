@@ -8,6 +8,8 @@ import { stepTable } from '@/signal/step-table';
 import type { StepTable } from '@/signal/step-table';
 
 const everyS = 0.5;
+/** States that differ from even ones by less than this share of them are well within all limits. */
+const plainlyEven = 0.16;
 
 /**
  * The channels of a ring do not share the cycle evenly, so that its narrowest state is soon too short to be seen. Judged
@@ -18,6 +20,8 @@ export class PhaseErrorRule implements FindingRule {
   private readonly context: RuleContext;
   private readonly table: StepTable | null;
   private dueS = -Infinity;
+  private teeth = 0;
+  private cycles = 0;
 
   constructor(context: RuleContext) {
     this.context = context;
@@ -35,7 +39,8 @@ export class PhaseErrorRule implements FindingRule {
   private judge(table: StepTable, nowS: number): void {
     const { context } = this;
     const latch = this.latches[0]!;
-    const phases = lanePhases(context, wholeTurns(context.rig.wheel.pulsesPerTurn), -Infinity);
+    if (this.isPlainlyEven(table) && !latch.open) return;
+    const phases = lanePhases(context, wholeTurns(context.rig.wheel), -Infinity);
     // What has ended is no business of this rule any more.
     if (!phases || nowS - phases.toS > 4 * phases.periodS + context.settleS) return;
     const widths = ringWidths(phases, table.weights);
@@ -60,5 +65,22 @@ export class PhaseErrorRule implements FindingRule {
       },
       nowS,
     );
+  }
+
+  /** By the running widths of the states, where the teeth since the last look were learnt from. */
+  private isPlainlyEven({ order, stepsPerCycle }: StepTable): boolean {
+    const { motion, paths, primary } = this.context;
+    const { stateDwell } = motion;
+    const { count } = paths[primary]!.log;
+    if (!stateDwell) return false;
+    const { forwardCycles, reverseCycles, forwardDeg, reverseDeg } = stateDwell;
+    const teeth = count - this.teeth;
+    const cycles = forwardCycles + reverseCycles - this.cycles;
+    this.teeth = count;
+    this.cycles = forwardCycles + reverseCycles;
+    if (cycles < teeth / 2) return false;
+    const deg = motion.reversed ? reverseDeg : forwardDeg;
+    const even = 360 / stepsPerCycle;
+    return order.every((state) => Math.abs(deg[state]! - even) < plainlyEven * even);
   }
 }

@@ -1,8 +1,8 @@
 /**
  * Where the channels of a ring stand, judged from their phases: unevenly (phase error), or upside down (an inverted line).
- * Limits are ours: a pair is usable within 30 degrees of the quarter, three switches within 15 of 60 (sound ones are placed
- * to 5 or so, and their duties add as much), and a state that is half as wide as it should be halves the speed up to
- * which it is seen.
+ * Limits are ours: a pair is usable within 30 degrees of the quarter, three switches within 15 of their places. Of sound
+ * ones two may stand 6 degrees off to either side and duties add 7 more, so that a state that is off by 19 proves nothing yet.
+ * A state that is half as wide as it should be halves the speed up to which it is seen.
  */
 import type { LanePhases } from '@/signal/findings/lane-phases';
 import type { RuleContext } from '@/signal/findings/rule';
@@ -17,7 +17,9 @@ export type RingVerdict = { lane: number; severity: Severity; evidence: Record<s
 const staysBy = 3;
 const mostOffPair = 30;
 const narrowPair = 45;
-const mostSpread = 15;
+/** Of three: how far one stands from where the other two would have it, and how far a state may differ from 60 degrees. */
+const mostOffTriple = 15;
+const mostSpread = 20;
 const narrowTriple = 30;
 
 /** @param offDeg how far the means may be off. @param open severity of the finding that is open. */
@@ -68,9 +70,10 @@ export function judgeTriple(
       narrowest = state;
     }
   }
-  const isNarrow = narrowestDeg < narrowTriple - offDeg + (open === 'fault' ? staysBy : 0);
-  if (!isNarrow && spreadDeg <= mostSpread + offDeg - (open ? staysBy : 0)) return null;
   const { lane, errorDeg } = farthestOff(phases);
+  const isNarrow = narrowestDeg < narrowTriple - offDeg + (open === 'fault' ? staysBy : 0);
+  const more = offDeg - (open ? staysBy : 0);
+  if (!isNarrow && Math.abs(errorDeg) <= mostOffTriple + more && spreadDeg <= mostSpread + more) return null;
   return {
     lane,
     severity: isNarrow ? 'fault' : 'warn',

@@ -1,7 +1,6 @@
 import { BoardRestartRule } from '@/signal/findings/board-restart';
 import { channelRules } from '@/signal/findings/channel-rules';
 import { ClockDriftRule } from '@/signal/findings/clock-drift';
-import { DeadChannelRule } from '@/signal/findings/dead-channel';
 import { EdgeBounceRule } from '@/signal/findings/edge-bounce';
 import { LostSamplesRule } from '@/signal/findings/lost-samples';
 import { ringRules } from '@/signal/findings/ring-rules';
@@ -16,7 +15,6 @@ export function createRules(context: RuleContext): FindingRule[] {
     new LostSamplesRule(),
     new ClockDriftRule(),
     // Between channels.
-    new DeadChannelRule(context),
     ...ringRules(context),
     // The signal of one channel.
     ...channelRules(context),

@@ -1,8 +1,8 @@
 import { EdgeWalk } from '@/signal/findings/edge-walk';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { RunReference, unrestOf } from '@/signal/findings/unrest';
-import type { Unrest } from '@/signal/findings/unrest';
+import { unrestOf } from '@/signal/findings/unrest';
+import type { RunReference, Unrest } from '@/signal/findings/unrest';
 import { wordsFor } from '@/signal/finding-words';
 import { stepTable } from '@/signal/step-table';
 import type { StepTable } from '@/signal/step-table';
@@ -35,19 +35,26 @@ export class StandstillChatterRule implements FindingRule {
   private readonly walk: EdgeWalk | null;
   private readonly references: RunReference[];
   private gapS = -Infinity;
-  /** The last seconds of a ring, oldest first: time, net steps and edges of all lanes. */
-  private book: { nowS: number; net: number; edges: number }[] = [];
+  /** The last seconds of a ring: time, net steps and edges of all lanes; entry `n` is at `n % bookLength`. */
+  private readonly bookS = new Float64Array(bookLength).fill(NaN);
+  private readonly bookNet = new Float64Array(bookLength);
+  private readonly bookEdges = new Float64Array(bookLength);
+  private entries = 0;
 
-  constructor(context: RuleContext) {
+  /** @param references of the lanes, in their order. */
+  constructor(context: RuleContext, references: RunReference[]) {
     this.context = context;
     this.table = stepTable(context.rig.sensing);
     this.walk = this.table && new EdgeWalk(context, this.table);
-    this.references = context.lanes.map((index) => new RunReference(context, context.paths[index]!));
+    this.references = references;
   }
 
   tick(nowS: number): void {
     const latch = this.latches[0]!;
-    if (!latch.open) for (const reference of this.references) reference.tick(nowS);
+    for (const reference of this.references) {
+      reference.isHeld = latch.open !== null;
+      reference.tick(nowS);
+    }
     const seen = this.walk ? this.ofRing(this.walk, nowS) : this.ofSingle(nowS);
     if (seen) {
       const { paths, primary } = this.context;
@@ -72,17 +79,20 @@ export class StandstillChatterRule implements FindingRule {
 
   gap({ toS }: { toS: number }): void {
     this.gapS = toS;
-    this.book = [];
+    this.entries = 0;
   }
 
   private ofSingle(nowS: number): Seen | null {
     const { context, gapS } = this;
     const { paths, primary, rateHz, rig } = context;
-    const unrest = unrestOf(paths[primary]!.log, gapS, 1 / rateHz, rig.wheel.missingPulses);
-    if (!unrest?.isIrregular || !isGoingOn(unrest, nowS)) return null;
-    // What never turned steadily may be turned by hand.
+    const { log } = paths[primary]!;
     const { swingV, toothS, hasSlowed } = this.references[0]!;
+    // What never turned steadily may be turned by hand.
     if (Number.isNaN(toothS)) return null;
+    const last = (log.count - 2) & log.mask;
+    if (!hasSlowed && !(log.peakV[last]! - log.troughV[last]! < tiny * swingV)) return null;
+    const unrest = unrestOf(log, gapS, 1 / rateHz, rig.wheel.missingPulses);
+    if (!unrest?.isIrregular || !isGoingOn(unrest, nowS)) return null;
     const isTiny = unrest.mostV < tiny * swingV;
     const isSlow = hasSlowed && unrest.mostRatio < mostRatio;
     if (!isTiny && !isSlow) return null;
@@ -93,21 +103,22 @@ export class StandstillChatterRule implements FindingRule {
   private ofRing(walk: EdgeWalk, nowS: number): Seen | null {
     const { tracker } = this.context.motion;
     if (!tracker) return null;
-    const { book, context } = this;
+    const { context, bookS, bookNet, bookEdges } = this;
     let edges = 0;
-    for (const index of context.lanes) edges += context.paths[index]!.edgeCount;
+    for (let k = 0; k < context.lanes.length; k++) edges += context.paths[context.lanes[k]!]!.edgeCount;
     const net = tracker.netSteps;
-    const last = book.at(-1);
-    if (!last || nowS - last.nowS >= bookEveryS) {
-      book.push({ nowS, net, edges });
-      if (book.length > bookLength) book.shift();
+    if (this.entries === 0 || nowS - bookS[(this.entries - 1) % bookLength]! >= bookEveryS) {
+      const n = this.entries++ % bookLength;
+      bookS[n] = nowS;
+      bookNet[n] = net;
+      bookEdges[n] = edges;
     }
-    const oldest = book.find((entry) => entry.nowS >= nowS - windowS - bookEveryS);
-    if (!oldest) return null;
+    let oldest = Math.max(0, this.entries - bookLength);
+    while (oldest < this.entries - 1 && bookS[oldest % bookLength]! < nowS - windowS) oldest++;
+    const n = oldest % bookLength;
     // Nothing but subtractions while the shaft turns or rests.
-    const passed = edges - oldest.edges;
-    if (passed < edgesNeeded || Math.abs(net - oldest.net) > mostRange) return null;
-    return this.readBack(walk, oldest.nowS, nowS);
+    if (edges - bookEdges[n]! < edgesNeeded || Math.abs(net - bookNet[n]!) > mostRange) return null;
+    return this.readBack(walk, bookS[n]!, nowS);
   }
 
   private readBack(walk: EdgeWalk, fromS: number, nowS: number): Seen | null {
@@ -139,7 +150,7 @@ export class StandstillChatterRule implements FindingRule {
       if (count > perLane[busiest]!) busiest = lane;
     });
     const { log } = context.paths[context.lanes[busiest]!]!;
-    const unrest = unrestOf(log, this.gapS, 1 / context.rateHz, 0);
+    const unrest = unrestOf(log, this.gapS, 1 / context.rateHz, context.rig.wheel.missingPulses);
     const { swingV, toothS } = references[busiest]!;
     if (!unrest || !isGoingOn(unrest, nowS)) return null;
     // As regular and quick as at speed, the shaft turns: other channels are dead, or in step with this one.

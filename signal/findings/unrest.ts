@@ -97,6 +97,7 @@ function shortenGap(whole: number): void {
 /** The fastest run seen lately counts for less by so much a second. */
 const fadingPerS = 0.005;
 const steadyRatio = 1.1;
+const everyS = 0.4;
 /** So many times the shortest tooth is nearly at rest. */
 const atRest = 3;
 
@@ -108,9 +109,12 @@ export class RunReference {
   swingV = NaN;
   /** Since then it came nearly to rest: a tooth took several times as long. */
   hasSlowed = false;
+  /** What comes now is not to be learnt from. */
+  isHeld = false;
   private readonly context: RuleContext;
   private readonly path: ChannelPath;
   private lastS = NaN;
+  private dueS = -Infinity;
 
   constructor(context: RuleContext, path: ChannelPath) {
     this.context = context;
@@ -118,6 +122,8 @@ export class RunReference {
   }
 
   tick(nowS: number): void {
+    if (this.isHeld || nowS < this.dueS) return;
+    this.dueS = nowS + everyS;
     const { motion, rig, rateHz } = this.context;
     const { log } = this.path;
     const needed = Math.max(12, rig.wheel.pulsesPerTurn);
