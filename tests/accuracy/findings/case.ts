@@ -21,6 +21,8 @@ export type FaultCase = Bench & {
   goneS: number;
   /** One sensor cannot tell what it is: that it says so is all that can be asked. */
   mayDoubt?: boolean;
+  /** Another code under which the same thing may be said, where the data cannot tell one from the other. */
+  orSaidAs?: FindingCode;
   /** Codes that may well come with it. */
   consequences: readonly FindingCode[];
 };

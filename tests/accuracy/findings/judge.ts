@@ -29,7 +29,10 @@ export function runCase(code: CaseCode, seed: number): Verdict {
 export function judge(code: CaseCode, seed: number, made: FaultCase, sights: readonly Sight[]): Verdict {
   const { beginS, wholeS, endS, appearS, goneS, variant, mayDoubt = false } = made;
   const own = sights.filter(
-    (sight) => sight.code === code && sight.closedS > beginS && sight.openedS <= endS + 0.1,
+    (sight) =>
+      (sight.code === code || sight.code === made.orSaidAs) &&
+      sight.closedS > beginS &&
+      sight.openedS <= endS + 0.1,
   );
   // Seen before there was anything to see, it cannot count.
   const first = own.find(({ openedS }) => openedS > beginS);

@@ -28,6 +28,8 @@ export const invertedChannel: CaseMaker = (draw) => {
       setup: threeHall ? {} : { expectedDirection: 'forward' },
     }),
     ...timing,
+    // With even halves an inverted line and two that are swapped look the same.
+    ...(threeHall ? {} : { orSaidAs: 'direction-flip', mayDoubt: true }),
     variant: standing ? `${variant}, from the start` : variant,
     consequences: ['illegal-state', 'direction-flip', 'duty-shift', 'phase-error', 'offset-drift'],
   };
