@@ -1,6 +1,8 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
 import { toneNear } from '@/signal/findings/hum-tone';
+import { commonMiddles } from '@/signal/findings/ripple-middles';
+import type { CommonMiddles } from '@/signal/findings/ripple-middles';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { sizeAt } from '@/signal/findings/slow-spectrum';
 import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
@@ -15,6 +17,8 @@ const aboveNoise = 5;
 /** Cosine of the phase between the two channels (and their correlation at that line). */
 const inPhase = 0.85;
 const mostUnequal = 2.5;
+/** Two swings of a ripple of 1 Hz. */
+const slowWindowS = 2;
 /** The wheel must keep its speed for the window. */
 const mostSpread = 0.03;
 
@@ -54,32 +58,56 @@ export class SupplyRippleRule implements FindingRule {
     const { spectra } = this;
     const latch = this.latches[0]!;
     const halfSwingV = Math.sqrt(a.wheel.halfSwingV * b.wheel.halfSwingV);
-    const lines = this.linesOf(a, b, halfSwingV);
-    const amplitudeV = Math.sqrt(lines.reduce((sum, { power }) => sum + power, 0));
-    const share = amplitudeV / halfSwingV;
+    const ripple = this.quickRipple(a, b, halfSwingV) ?? this.slowRipple(a, b);
+    const share = (ripple?.amplitudeV ?? 0) / halfSwingV;
     if (share > staysAt) spectra.suspected = true;
-    if (!(share > (latch.open ? staysAt : opensAt))) {
+    if (!ripple || !(share > (latch.open ? staysAt : opensAt))) {
       this.seen = 0;
       return;
     }
     if (++this.seen === 1) this.sinceS = (spectra.fromS + spectra.toS) / 2;
     if (!latch.open && this.seen < looksToOpen) return;
-    const strongest = lines.reduce((best, line) => (line.power > best.power ? line : best));
-    const { binHz } = spectra;
     const { paths } = this.context;
     const first = paths[a.index]!.channel;
     const { quiescentV, supplyV } = first.sensor;
     const evidence = {
       channels: `${first.name}, ${paths[b.index]!.channel.name}`,
-      rippleHz: toneNear(a, binHz, strongest.bin * binHz, 1.5 * binHz)?.hz ?? strongest.bin * binHz,
-      amplitudeV,
+      rippleHz: ripple.hz,
+      amplitudeV: ripple.amplitudeV,
       ofHalfSwingPercent: 100 * share,
-      correlation: strongest.correlation,
-      ...(quiescentV && supplyV && { supplyAmplitudeV: (amplitudeV * supplyV) / quiescentV }),
+      correlation: ripple.correlation,
+      ...(quiescentV && supplyV && { supplyAmplitudeV: (ripple.amplitudeV * supplyV) / quiescentV }),
     };
     const severity = share > 0.3 ? 'fault' : share > 0.08 ? 'warn' : 'note';
     const seen = { fromS: this.sinceS, atS: this.sinceS, severity, evidence } as const;
     latch.raiseSized(findingOf('supply-ripple', null, seen), share, nowS);
+  }
+
+  private quickRipple(a: Spectrum, b: Spectrum, halfSwingV: number): CommonMiddles | null {
+    const { binHz } = this.spectra;
+    const lines = this.linesOf(a, b, halfSwingV);
+    const amplitudeV = Math.sqrt(lines.reduce((sum, { power }) => sum + power, 0));
+    if (!(amplitudeV > staysAt * halfSwingV)) return null;
+    const { bin, correlation } = lines.reduce((best, line) => (line.power > best.power ? line : best));
+    const hz = toneNear(a, binHz, bin * binHz, 1.5 * binHz)?.hz ?? bin * binHz;
+    return { amplitudeV, hz, correlation };
+  }
+
+  /** Slower than the teeth; a hum that both pick up would be seen there as what it beats with the teeth. */
+  private slowRipple(a: Spectrum, b: Spectrum): CommonMiddles | null {
+    const { context, spectra } = this;
+    const { paths, rig } = context;
+    if (a.wheel.teeth === 0) return null;
+    const { pulsesPerTurn } = rig.wheel;
+    const ripple = commonMiddles(paths[a.index]!, paths[b.index]!, pulsesPerTurn, spectra.toS - slowWindowS);
+    if (!ripple) return null;
+    const hums = [50, 60].some((hz) => {
+      const tone = toneNear(a, spectra.binHz, hz, 1);
+      return (
+        tone !== null && tone.amplitudeV > ripple.amplitudeV / 2 && !(a.wheel.mostAt(hz) > tone.amplitudeV)
+      );
+    });
+    return hums ? null : ripple;
   }
 
   /** A wheel that starts, stops or turns back makes things in common for a while. */
