@@ -250,8 +250,22 @@ export class WheelTracker {
     if (extra === 0) return true;
     // Several pulses too many, or one beside empty places: only where all is well known, and in a short stretch.
     if (extra === 1 && empty === 0) return true;
-    if (!alike || spans > this.missing + mostEmpty) return false;
+    if (!alike || spans > this.missing + mostEmpty || this.isRamp(end)) return false;
     return empty === 0 || (extra === 1 && this.count >= teethForBoth);
+  }
+
+  /** Pulses that come ever faster, or ever slower, are teeth of a shaft that does. */
+  private isRamp(end: number): boolean {
+    const { waitT } = this;
+    let before = waitT[0]! - this.lastT;
+    let faster = 0;
+    for (let i = 1; i <= end; i++) {
+      const here = waitT[i]! - waitT[i - 1]!;
+      if (here > 0.5 * before && here < before) faster++;
+      else if (here < 2 * before && here > before) faster--;
+      before = here;
+    }
+    return end > 1 && Math.abs(faster) === end;
   }
 
   private noteLong(spans: number): void {

@@ -67,7 +67,60 @@ export const wheelWords = {
           remedy:
             'Centre the wheel on the shaft and look at bore, bearing and bent shaft; until then keep the band well inside the weakest tooth.',
         },
+  'wrong-count': (channel, evidence) => ({
+    message: countMessage(channel, evidence),
+    remedy: countRemedy(evidence),
+  }),
 } satisfies Record<string, Wording>;
+
+function countMessage(channel: string | null, evidence: Evidence): string {
+  const { by, setPulses, foundPulses, setMissing, foundMissing, turns } = evidence;
+  const reads = `so the speed reads ${short(evidence.speedTimes)} times what it is`;
+  switch (by) {
+    case 'index':
+      return `From index to index ${whole(foundPulses)} pulses come, ${whole(turns)} turns running, where the wheel is set up with ${whole(setPulses)}, ${reads}.`;
+    case 'gap':
+      return foundPulses === setPulses
+        ? `The gap of the wheel lacks ${teeth(foundMissing)}, where ${whole(setMissing)} are set up.`
+        : `The gap of the wheel comes every ${whole(foundPulses)} positions and lacks ${teeth(foundMissing)}, where ${whole(setPulses)} with ${whole(setMissing)} missing are set up, ${reads}.`;
+    case 'no gap':
+      return `No gap came in ${whole(turns)} turns of ${whole(setPulses)} positions, where ${teeth(setMissing)} should be missing.`;
+    case 'channels':
+      return `Channel ${evidence.channel} makes ${whole(evidence.channelPulses)} pulses for ${whole(evidence.firstChannelPulses)} of channel ${evidence.firstChannel}, though both look at the same wheel.`;
+    default:
+      return `The teeth on channel ${channel} repeat their ${by} every ${whole(foundPulses)}, where the wheel is set up with ${whole(setPulses)} a turn.`;
+  }
+}
+
+function teeth(count: number | string | undefined): string {
+  return `${whole(count)} ${count === 1 ? 'tooth' : 'teeth'}`;
+}
+
+function countRemedy({
+  by,
+  setPulses,
+  foundPulses,
+  foundMissing,
+  ratio,
+  sensorKind,
+  outcome,
+}: Evidence): string {
+  if (outcome === 'cannot-tell')
+    return `Count the teeth of the wheel: it has ${whole(foundPulses)} a turn, or ${whole(Number(setPulses) / Number(foundPulses))} parts that are alike.`;
+  if (by === 'no gap')
+    return 'Set the number of missing teeth to 0, or look whether something fills the gap before the sensor.';
+  if (by === 'channels')
+    return 'Look whether both sensors are of the same kind (one that answers to both poles counts twice) and stand before the same track.';
+  if (foundMissing !== undefined)
+    return `Set ${whole(foundPulses)} pulses a turn with ${whole(foundMissing)} missing, if the wheel is made so: positions count with the missing ones.`;
+  if (ratio === '2 : 1')
+    return sensorKind === 'omnipolar'
+      ? 'Set twice the pulses a turn, since an omnipolar sensor answers to both poles, or take a sensor that answers to one.'
+      : 'Set twice the pulses a turn if both poles or both flanks are counted on purpose; else look for what doubles them.';
+  if (ratio === '1 : 2')
+    return 'Set half the pulses a turn: pole pairs count, not poles, and one flank of a tooth.';
+  return `Set ${whole(foundPulses)} pulses a turn if the wheel has so many; else look at the gear between wheel and shaft, or at pole pairs taken for poles.`;
+}
 
 function others({ teeth }: Evidence): string {
   const more = Number(teeth) - 1;

@@ -16,7 +16,7 @@ const swingShare = 0.4;
 const steadySwing = 0.1;
 const stays = 0.8;
 /** On a wheel that is a little rough all round, a tooth must stand out by so many rms; on a very rough one none need. */
-const standsOut = 4.5;
+const standsOut = 5.5;
 const roughAllRound = 0.03;
 /** Significance: so many standard errors of the mean over turns. */
 const significant = 5;
@@ -108,9 +108,12 @@ export class UnevenTeethRule implements FindingRule {
     if (this.setApart(left)) steps.fit(values, this.orders, this.apart);
     const rough = roughness(left);
     const limit = easier * (isRough ? offShare : Math.max(offShare, standsOut * rough));
+    const grid = this.gridShare();
     let worstStep = 0;
     for (let k = 0; k < positions; k++) {
       const off = Math.abs(left[k]!);
+      // A step that scatters less than the sample grid makes it has always been sampled alike: it is known to a sample only.
+      if (off < 1.25 * grid && face.stepVariance[k]! < (grid * grid) / 12) continue;
       const error = Math.sqrt(face.stepVariance[k]! / spacingWorth);
       if (off > limit && off > significant * error && off > worstStep) worstStep = off;
     }
@@ -136,6 +139,14 @@ export class UnevenTeethRule implements FindingRule {
       at: face.seenS[worst]!,
       evidence,
     };
+  }
+
+  /** A sample as a share of the pitch, where flanks are so steep that the instant of an edge is known to a sample only; else 0. */
+  private gridShare(): number {
+    const { rateHz, paths, primary, motion } = this.context;
+    const { log } = paths[primary]!;
+    const sigma = log.sigmaS[(log.count - 1) & log.mask]! * rateHz;
+    return sigma > 0.28 && sigma < 0.45 ? 1 / (rateHz * motion.train.placer.tracker.pitchS) : 0;
   }
 
   private setApart(left: Float64Array): boolean {

@@ -5,6 +5,7 @@ import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { RunOutRule } from '@/signal/findings/run-out';
 import { UnevenTeethRule } from '@/signal/findings/uneven-teeth';
 import { WheelLanes } from '@/signal/findings/wheel-lanes';
+import { WrongCountRule } from '@/signal/findings/wrong-count';
 
 export function wheelRules(context: RuleContext): FindingRule[] {
   const wheels = new WheelLanes(context);
@@ -14,5 +15,6 @@ export function wheelRules(context: RuleContext): FindingRule[] {
     new ExtraPulseRule(wheels),
     new UnevenTeethRule(context),
     new RunOutRule(context),
+    new WrongCountRule(context, wheels),
   ];
 }

@@ -1,0 +1,177 @@
+/**
+ * What speaks against the number of pulses that a wheel is set up with: the index, its gap, and channels that do not count
+ * alike. Each claim is a number that was there turn after turn, never a single turn that went wrong.
+ */
+import type { RuleContext } from '@/signal/findings/rule';
+import type { WheelLane } from '@/signal/findings/wheel-lanes';
+
+export type CountClaim = {
+  by: 'index' | 'gap' | 'no gap' | 'channels' | 'spacing' | 'swing';
+  /** Teeth a turn that were found where there should be `setTeeth`, and positions that lack one (null: not known). */
+  foundTeeth: number;
+  setTeeth: number;
+  foundMissing: number | null;
+  turns: number;
+  atS: number;
+  evidence?: Record<string, number | string>;
+};
+
+const mostFactor = 8;
+const nearRatio = 0.02;
+/** A ratio as far from 1 as this is no tooth more or less. */
+const farRatio = 1.2;
+const fewestSame = 2;
+const fewestOther = 4;
+const gapsNeeded = 4;
+const turnsWithoutGap = 4;
+const channelTurns = 8;
+const failsFrom = 1.5;
+
+/** The nearest ratio of whole numbers up to eight, "3 : 2"; null where none is within 2 %. */
+export function simpleRatio(ratio: number): { p: number; q: number } | null {
+  if (!Number.isFinite(ratio)) return null;
+  let best: { p: number; q: number } | null = null;
+  let least = nearRatio;
+  for (let q = 1; q <= mostFactor; q++) {
+    for (let p = 1; p <= mostFactor; p++) {
+      const off = Math.abs((ratio * q) / p - 1);
+      // 2 : 1 stays before 4 : 2.
+      if (off > least - 1e-9) continue;
+      best = { p, q };
+      least = off;
+    }
+  }
+  return best;
+}
+
+/** Between two index pulses there were the same wrong number of counts, turn after turn. */
+export function claimOfIndex(
+  { indexWatch, motion, rig }: RuleContext,
+  lane: WheelLane | undefined,
+  nowS: number,
+) {
+  const turn = indexWatch?.lastTurn;
+  if (!indexWatch || !turn || turn.excess === 0 || motion.direction === 'stopped') return null;
+  const turnS = turn.toS - turn.fromS;
+  if (nowS - turn.toS > 3 * turnS + 1) return null;
+  const steps = motion.tracker?.table.stepsPerCycle ?? 1;
+  const ratio = turn.counted / indexWatch.expected;
+  const isFar = simpleRatio(ratio) !== null && (ratio > farRatio || ratio < 1 / farRatio);
+  if (indexWatch.sameInRow < (isFar ? fewestSame : fewestOther)) return null;
+  // Steps that get lost or are made are no whole pulses; a tooth that fails and a burr have a finding of their own.
+  if (turn.counted % steps !== 0 || (lane && isExplained(lane, turn.excess / steps))) return null;
+  return claim({
+    by: 'index',
+    foundTeeth: turn.counted / steps,
+    setTeeth: rig.wheel.pulsesPerTurn - rig.wheel.missingPulses,
+    foundMissing: null,
+    turns: indexWatch.sameInRow,
+    atS: turn.fromS,
+  });
+}
+
+function isExplained({ absence, extras, tracker }: WheelLane, excess: number): boolean {
+  let failing = 0;
+  for (const score of absence.score) if (score >= failsFrom) failing++;
+  return excess === extras.placesAt(tracker.count, failsFrom).length - failing;
+}
+
+/** The gap comes at another distance, or is of another width, than the wheel was set up with; or there is none. */
+export function claimOfGap({ motion, rig }: RuleContext, nowS: number) {
+  const { tracker } = motion.train.placer;
+  const { face } = motion.train;
+  const { pulsesPerTurn: positions, missingPulses: missing } = rig.wheel;
+  if (!tracker.isLocked) return null;
+  const since = tracker.count - Math.max(0, tracker.longAt);
+  const setTeeth = positions - missing;
+  if (missing > 0 && since >= turnsWithoutGap * positions) {
+    return claim({
+      by: 'no gap',
+      foundTeeth: NaN,
+      setTeeth,
+      foundMissing: 0,
+      turns: Math.floor(since / positions),
+      atS: nowS,
+    });
+  }
+  const { between, sameBetween, longSpans } = tracker;
+  if (sameBetween < gapsNeeded || since > 2 * between) return null;
+  const found = { by: 'gap', setTeeth, turns: sameBetween, atS: nowS } as const;
+  if (between !== positions) {
+    // Two teeth opposite each other that fail look like a wheel of half the positions.
+    if (missing === 0 && positions % between === 0) return null;
+    return claim({ ...found, foundTeeth: between - longSpans + 1, foundMissing: longSpans - 1 });
+  }
+  if (missing === 0 || longSpans === missing + 1) return null;
+  // A wider gap is teeth beside it that fail, unless they have never been seen.
+  const wider = longSpans > missing + 1;
+  if (wider && (!face || tracker.position < 0 || face.counts[positions - missing - 1]! > 0)) return null;
+  return claim({ ...found, foundTeeth: positions - longSpans + 1, foundMissing: longSpans - 1 });
+}
+
+/** Channels of a ring that see the same wheel count at a simple ratio. */
+export class ChannelCounts {
+  private readonly context: RuleContext;
+  private readonly from: number[];
+  private ratio: { p: number; q: number; lane: number } | null = null;
+  private inRow = 0;
+
+  constructor(context: RuleContext) {
+    this.context = context;
+    this.from = context.lanes.map(() => 0);
+  }
+
+  restart(): void {
+    const { lanes, paths } = this.context;
+    lanes.forEach((index, k) => (this.from[k] = paths[index]!.log.count));
+  }
+
+  claim(nowS: number) {
+    const { lanes, paths, motion, rig } = this.context;
+    if (lanes.length < 2) return null;
+    if (motion.direction === 'stopped') {
+      this.restart();
+      this.inRow = 0;
+    }
+    const turn = Math.max(1, rig.wheel.pulsesPerTurn - rig.wheel.missingPulses);
+    const counts = lanes.map((index, k) => paths[index]!.log.count - this.from[k]!);
+    if (Math.max(...counts) >= channelTurns * turn) {
+      this.restart();
+      this.judge(counts);
+    }
+    const { ratio, inRow } = this;
+    if (!ratio || inRow < 2) return null;
+    return claim({
+      by: 'channels',
+      foundTeeth: (turn * ratio.p) / ratio.q,
+      setTeeth: turn,
+      foundMissing: null,
+      turns: channelTurns * inRow,
+      atS: nowS,
+      evidence: {
+        channel: paths[lanes[ratio.lane]!]!.channel.name,
+        channelPulses: ratio.p,
+        firstChannel: paths[lanes[0]!]!.channel.name,
+        firstChannelPulses: ratio.q,
+      },
+    });
+  }
+
+  private judge(counts: readonly number[]): void {
+    const before = this.ratio;
+    this.ratio = null;
+    for (let k = 1; k < counts.length && !this.ratio; k++) {
+      const share = counts[k]! / counts[0]!;
+      const simple = simpleRatio(share);
+      if (simple && (share > farRatio || share < 1 / farRatio)) this.ratio = { ...simple, lane: k };
+    }
+    const { ratio } = this;
+    const same =
+      ratio && before && ratio.p === before.p && ratio.q === before.q && ratio.lane === before.lane;
+    this.inRow = ratio ? (same ? this.inRow + 1 : 1) : 0;
+  }
+}
+
+function claim(made: CountClaim): CountClaim {
+  return made;
+}
