@@ -19,6 +19,8 @@ export const fewestPatternPositions = 12;
 export const mostPatternPositions = 512;
 const shortestLag = 6;
 const mostFactor = 8;
+/** Times N: nobody sets up a quarter of the teeth. */
+const longestLag = 4;
 const fewestTeeth = 200;
 const turnsNeeded = 8;
 /** A wider step than this is a tooth that is missing, or a pulse too many. */
@@ -67,7 +69,7 @@ export class WheelPattern {
     for (let p = 1; p <= mostFactor; p++)
       for (let q = 1; q <= mostFactor; q++) {
         const lag = (positions * p) / q;
-        if (Number.isInteger(lag) && lag >= shortestLag) lags.add(lag);
+        if (Number.isInteger(lag) && lag >= shortestLag && lag <= longestLag * positions) lags.add(lag);
       }
     const sorted = [...lags].sort((a, b) => a - b);
     this.wide = { spacing: new LagCorrelation(sorted), swing: new LagCorrelation(sorted) };

@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { ofTeethThere, WheelLook } from '@/signal/findings/wheel-look';
+import { ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import { spacingWorth, swingWorth } from '@/signal/wheel-face-meter';
@@ -76,6 +76,7 @@ export class RunOutRule implements FindingRule {
     const { waves, scratch } = this;
     if (!waves || !scratch || face.turns < turnsNeeded) return null;
     const { positions } = face;
+    if (!mayWave(face)) return null;
     waves.fit(ofTeethThere(face.swingV, face, scratch), 2);
     const swing = waveOf(waves, meanOf(face.swingVariance) / swingWorth);
     const strongest = strongestOf(face);
@@ -111,6 +112,17 @@ export class RunOutRule implements FindingRule {
       return { severity: 'note', outcome: 'cannot-tell', at, evidence };
     return null;
   }
+}
+
+/** An order's amplitude is at most 4 / pi of half of what lies between the least and the most (a square wave). */
+function mayWave(face: WheelFaceMeter): boolean {
+  const swing = rangeOf(face.swingV);
+  const step = rangeOf(face.step);
+  const most = 2 / Math.PI;
+  return (
+    most * (swing.most - swing.least) > stays * swingShare * swing.least ||
+    most * (step.most - step.least) > stays * pitchShare
+  );
 }
 
 /** @param errorVariance of the mean at one tooth. */

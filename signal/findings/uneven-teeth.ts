@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { ofTeethThere, WheelLook } from '@/signal/findings/wheel-look';
+import { ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import { spacingWorth } from '@/signal/wheel-face-meter';
@@ -29,6 +29,8 @@ const oneOrder = 0.8;
 const fewestForOneOrder = 16;
 const ordersUpTo = 512;
 const alternating = 0.8;
+/** Where all teeth lie within so small a part of a limit, no single one stands out by it. */
+const plain = 0.6;
 
 type Verdict = Pick<Finding, 'severity' | 'outcome' | 'at' | 'evidence'>;
 
@@ -98,6 +100,8 @@ export class UnevenTeethRule implements FindingRule {
   private bySpacing(face: WheelFaceMeter, steps: WheelOrders, easier: number): Verdict | null {
     if (face.learntTurns < turnsNeeded) return null;
     const { positions } = face;
+    const { least, most } = rangeOf(face.step);
+    if (most - least < easier * offShare * plain) return null;
     const values = ofTeethThere(face.step, face, this.scratch!);
     // The first tooth after the gap comes early or late by what sensor and filter make of the gap.
     if (face.missing > 0) values[1] = NaN;
@@ -163,6 +167,8 @@ export class UnevenTeethRule implements FindingRule {
 
   private bySwing(face: WheelFaceMeter, swings: WheelOrders, easier: number): Verdict | null {
     const { positions, missing, swingVariance, counts } = face;
+    const { least, most } = rangeOf(face.swingV);
+    if (most - least < easier * swingShare * plain * least) return null;
     swings.fit(ofTeethThere(face.swingV, face, this.scratch!), positions >= positionsPerOrder ? 1 : 0);
     // A wave over the turn is run-out's; one weak tooth makes hardly any.
     const isWave = swings.leftVariance < 0.5 * swings.variance;

@@ -1,8 +1,8 @@
-/** When a rule looks at the wheel's face anew: a turn has passed, and the last look is half a second ago or more. */
+/** When a rule looks at the wheel's face anew: a turn has passed, and the last look is a second ago or more. */
 import type { RuleContext } from '@/signal/findings/rule';
 import type { WheelFaceMeter } from '@/signal/wheel-face-meter';
 
-const shortestS = 0.5;
+const shortestS = 1;
 /** Wheels with more positions are looked at every two seconds: a look at 4096 of them takes about half a millisecond. */
 const manyPositions = 512;
 const longS = 2;
@@ -44,4 +44,19 @@ export function ofTeethThere(values: Float64Array, face: WheelFaceMeter, to: Flo
   const { inRow } = face.absence;
   for (let k = 0; k < to.length; k++) to[k] = inRow[k]! > 0 ? NaN : values[k]!;
   return to;
+}
+
+/**
+ * How far apart known values lie, least to most: a look that costs next to nothing, before one that costs more.
+ * @returns 0 and 0 where nothing is known.
+ */
+export function rangeOf(values: Float64Array): { least: number; most: number } {
+  let least = Infinity;
+  let most = -Infinity;
+  for (let k = 0; k < values.length; k++) {
+    const value = values[k]!;
+    if (value < least) least = value;
+    if (value > most) most = value;
+  }
+  return least <= most ? { least, most } : { least: 0, most: 0 };
 }
