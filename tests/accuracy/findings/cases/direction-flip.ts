@@ -12,7 +12,13 @@ export const directionFlip: CaseMaker = (draw) => {
     'drive turned round',
     'swapped at speed',
   ] as const);
-  const machine = drawMachine(draw, { sensing: ['quadrature'], toothHz: [10, 300], turnsPerS: [0.5, 40] });
+  // A slow shaft can turn round between two teeth.
+  const isFast = variant === 'swapped at speed';
+  const machine = drawMachine(draw, {
+    sensing: ['quadrature'],
+    toothHz: isFast ? [60, 300] : [10, 300],
+    turnsPerS: isFast ? [5, 40] : [0.5, 40],
+  });
   const expected = { expectedDirection: 'forward' } as const;
   const swapped = { kind: 'swapped-channels', channels: ['A', 'B'] as [string, string] } as const;
   if (variant === 'swapped from the start') {

@@ -14,8 +14,11 @@ export const extraPulse: CaseMaker = (draw) => {
     samplesPerTooth: [40, 90],
   });
   const { positions } = machine.wheel.wheel;
-  // A chip is counted where it falls between two teeth, in a third of the turns or so.
-  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: variant === 'chips' ? 10 : 4 });
+  // A chip is counted where it falls between two teeth, in a third of the turns or so; strays take several to be told from one.
+  const timing = timingFor(draw, machine.turnsPerS, {
+    needsTurns: { burr: 4, chips: 20, spikes: 6 }[variant],
+    needsS: variant === 'burr' ? 2 : 3.5,
+  });
   const { beginS, endS } = timing;
   const span = { beginS, endS };
   // Teeth and poles stand at half positions, so that a whole one is the middle between two.

@@ -10,7 +10,8 @@ export const runOut: CaseMaker = (draw) => {
     sensors: variant === 'swing' ? ['linear'] : ['latch'],
     wheels: ['toothed', 'pole-ring'],
     missing: variant === 'swing' ? [0, 0, 1] : [0],
-    positions: variant === 'swing' ? [6, 60] : [6, 14],
+    // Of fewer than eight teeth a weak one is as much a wave as an eccentric wheel is.
+    positions: variant === 'swing' ? [8, 60] : [8, 14],
     turnsPerS: [1, 40],
     snrDb: [30, 45],
   });

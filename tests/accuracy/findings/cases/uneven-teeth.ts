@@ -12,7 +12,8 @@ export const unevenTeeth: CaseMaker = (draw) => {
     sensing: ['single', 'single', 'quadrature'],
     wheels: ['toothed', 'pole-ring'],
     missing: [0, 0, 1],
-    positions: [8, 60],
+    // Several of a few teeth are a wave over the turn, which the shaft may make.
+    positions: variant === 'several' ? [18, 60] : [8, 60],
     turnsPerS: [2, 40],
   });
   const { positions, missing = [] } = machine.wheel.wheel;
