@@ -37,22 +37,28 @@ export const ringWords = {
       'Look first at what else is found on these channels; where there is nothing, raise the sample rate or turn more slowly, and see that no edge falls into the hold-off.',
   }),
   'direction-flip': (_channel, evidence) =>
-    evidence.expected === undefined
+    evidence.verdict === 'perhaps a servo'
       ? {
-          message: `The direction changed ${times(evidence.flips)} at ${short(evidence.speedRpm)} rpm without any slow-down on the way, which no shaft can do.`,
+          message: `The direction changed ${times(evidence.flips)} at ${short(evidence.speedRpm)} rpm from one tooth to the next: a drive that turns back with ${whole(evidence.neededRadPerS2)} rad/s² or more, or a line that changed.`,
           remedy:
-            'Look for a loose or swapped line, for channels that stand too close to each other in phase, and for edges that bounce; turns counted meanwhile are wrong.',
+            'Let the shaft turn one way without a reversal: if the direction still changes, look for a loose or swapped line; if not, the drive really turns back so fast.',
         }
-      : evidence.duties === 'mirrored'
+      : evidence.expected === undefined
         ? {
-            message: `The shaft reads ${evidence.turned} where ${evidence.expected} is expected, and one of the two lines is upside down.`,
-            remedy: 'Turn the inverted line round in the board, and the direction follows.',
-          }
-        : {
-            message: `The shaft has read ${evidence.turned} for ${whole(evidence.turns)} turns where ${evidence.expected} is expected.`,
+            message: `The direction changed ${times(evidence.flips)} at ${short(evidence.speedRpm)} rpm without any slow-down on the way, which no shaft can do.`,
             remedy:
-              'Turn the shaft by hand the expected way: if it still reads wrong, swap channels A and B or turn one line round; if it then reads right, the drive really turned the other way.',
-          },
+              'Look for a loose or swapped line, for channels that stand too close to each other in phase, and for edges that bounce; turns counted meanwhile are wrong.',
+          }
+        : evidence.duties === 'mirrored'
+          ? {
+              message: `The shaft reads ${evidence.turned} where ${evidence.expected} is expected, and one of the two lines is upside down.`,
+              remedy: 'Turn the inverted line round in the board, and the direction follows.',
+            }
+          : {
+              message: `The shaft has read ${evidence.turned} for ${whole(evidence.turns)} turns where ${evidence.expected} is expected.`,
+              remedy:
+                'Turn the shaft by hand the expected way: if it still reads wrong, swap channels A and B or turn one line round; if it then reads right, the drive really turned the other way.',
+            },
   'inverted-channel': (channel, evidence) =>
     evidence.turnedOverS !== undefined
       ? {

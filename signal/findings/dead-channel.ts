@@ -13,6 +13,8 @@ const otherEdgesNeeded = 12;
 const indexTurns = 5;
 /** Slower than this, against the last run: the shaft may stand and shake on one flank. */
 const farSlower = 3;
+/** So long, and ten teeth, without a sign of shaking. */
+const restS = 0.5;
 const mainsHz = [50, 60, 100, 120];
 const humNeededS = 1;
 
@@ -33,6 +35,7 @@ export class DeadChannelRule implements FindingRule {
   private readonly ownEdges: number[];
   private readonly quietFromS: number[];
   private readonly flatFromS: number[];
+  private readonly shookS: number[];
   private readonly humFromS: number[];
 
   /** @param references of the lanes, in their order. */
@@ -45,6 +48,7 @@ export class DeadChannelRule implements FindingRule {
     this.ownEdges = paths.map(() => 0);
     this.quietFromS = paths.map(() => NaN);
     this.flatFromS = paths.map(() => NaN);
+    this.shookS = paths.map(() => -Infinity);
     this.humFromS = paths.map(() => NaN);
   }
 
@@ -99,7 +103,10 @@ export class DeadChannelRule implements FindingRule {
     const { log } = paths[busiest]!;
     const unrest = unrestOf(log, -Infinity, 1 / rateHz, rig.wheel.missingPulses);
     const { toothS } = this.references[lanes.indexOf(busiest)]!;
-    return !unrest || unrest.isIrregular || unrest.meanS > farSlower * toothS ? null : evidence;
+    // Shaking looks regular for a moment now and then.
+    if (unrest?.isIrregular) this.shookS[busiest] = nowS;
+    if (!unrest || nowS - this.shookS[busiest]! < restS + 10 * unrest.meanS) return null;
+    return unrest.meanS > farSlower * toothS ? null : evidence;
   }
 
   /** All that comes on it is the mains, while another channel shows how the shaft turns. */

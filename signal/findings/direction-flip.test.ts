@@ -45,6 +45,25 @@ describe('a direction that changed at speed', () => {
     expect(one!.causedBy).not.toBeNull();
   });
 
+  it('cannot be told from a servo where the teeth are slow enough', () => {
+    const [one] = found({
+      ...pair,
+      seconds: 9,
+      turnsAt: (t) => 4 * t,
+      spoil: (volts, channel, t) => (channel === 1 && t > 3.004 ? 3.3 - volts : volts),
+    });
+    // 4 pi 48^2 / 12 = 2413 rad/s2 at 48 teeth a second; 603 at 24.
+    expect(one).toMatchObject({ outcome: 'found' });
+    const [slow] = found({
+      ...pair,
+      seconds: 9,
+      turnsAt: (t) => 2 * t,
+      spoil: (volts, channel, t) => (channel === 1 && t > 3.004 ? 3.3 - volts : volts),
+    });
+    expect(slow).toMatchObject({ severity: 'warn', outcome: 'cannot-tell' });
+    expect(slow!.evidence.neededRadPerS2).toBeCloseTo(603, -1);
+  });
+
   it('is not made of real reversals, slow or sudden, nor of a shaft that swings by more than a tooth', () => {
     const moves = [
       speeds([0, 0], [1, 20], [3, 20], [4, -20], [6, -20]),

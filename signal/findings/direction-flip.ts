@@ -20,6 +20,7 @@ export class DirectionFlipRule implements FindingRule {
   private readonly context: RuleContext;
   private readonly watch: FlipWatch;
   private flips = 0;
+  private isCertain = false;
   private againstFromS = NaN;
   private againstPulses = NaN;
   private against: number | null = null;
@@ -46,8 +47,12 @@ export class DirectionFlipRule implements FindingRule {
   private raiseFlips(nowS: number): void {
     const latch = this.latches[0]!;
     const { found } = this.watch;
-    if (!latch.open) this.flips = 0;
+    if (!latch.open) {
+      this.flips = 0;
+      this.isCertain = false;
+    }
     this.flips += found.length;
+    this.isCertain ||= found.some(({ isCertain }) => isCertain);
     const last = found.at(-1)!;
     const { rig, paths, primary } = this.context;
     const evidence = {
@@ -55,6 +60,7 @@ export class DirectionFlipRule implements FindingRule {
       toothS: last.toothS,
       speedRpm: 60 / (rig.wheel.pulsesPerTurn * rig.wheel.gearRatio * last.toothS),
       neededRadPerS2: last.radPerS2,
+      verdict: this.isCertain ? 'beyond any shaft' : 'perhaps a servo',
     };
     latch.raise(
       {
@@ -62,8 +68,8 @@ export class DirectionFlipRule implements FindingRule {
         channel: null,
         from: found[0]!.t,
         // An odd number leaves a direction that is wrong for good.
-        severity: this.flips % 2 === 1 || this.flips >= manyFlips ? 'fault' : 'warn',
-        outcome: 'found',
+        severity: this.isCertain && (this.flips % 2 === 1 || this.flips >= manyFlips) ? 'fault' : 'warn',
+        outcome: this.isCertain ? 'found' : 'cannot-tell',
         at: found[0]!.t,
         evidence,
         ...wordsFor('direction-flip', paths[primary]!.channel.name, evidence),

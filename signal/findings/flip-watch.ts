@@ -16,18 +16,22 @@ const teethAround = 3;
 const longest = 1.6;
 const onTime = 1.15;
 /**
- * A servo may turn back within one slow tooth. To do so at speed would take more than this, which is beyond a shaft with
- * anything on it, rad/s2 (4 pi / (N gear T^2) for a tooth of T).
+ * To turn back within one tooth takes 4 pi / (N gear T^2) for a tooth of T. Below the first of these a servo may well do so;
+ * above the second it is beyond a shaft with anything on it; between them the data cannot tell, rad/s2.
  */
-const mostRadPerS2 = 2000;
+const doubtfulRadPerS2 = 250;
+const beyondRadPerS2 = 1000;
 const mostPending = 64;
 const mostWaitS = 1.5;
 
-/** `jumps`: by what share of a tooth each lane's row of rises jumped at the change, 0..1; NaN where it is not steady. */
-export type Flip = { t: number; toothS: number; radPerS2: number; jumps: number[] };
+/**
+ * `isCertain`: no shaft does that. `jumps`: by what share of a tooth each lane's row of rises jumped at the change, 0..1; NaN
+ * where it is not steady.
+ */
+export type Flip = { t: number; toothS: number; radPerS2: number; isCertain: boolean; jumps: number[] };
 
 export class FlipWatch {
-  /** Impossible changes that the last `tick` proved, in order. */
+  /** Changes that the last `tick` found impossible, or doubtful, in order. */
   readonly found: Flip[] = [];
   private readonly context: RuleContext;
   private readonly walk: EdgeWalk | null;
@@ -95,8 +99,9 @@ export class FlipWatch {
     const { toothS } = steady;
     const radPerS2 = (4 * Math.PI) / (pulsesPerTurn * gearRatio * toothS * toothS);
     const isOnTime = around.every((one) => one?.isOnTime);
-    if (!isOnTime && radPerS2 < mostRadPerS2) return null;
-    return { t, toothS, radPerS2, jumps: around.map((one) => one?.jump ?? NaN) };
+    if (!isOnTime && radPerS2 < doubtfulRadPerS2) return null;
+    const isCertain = isOnTime || radPerS2 > beyondRadPerS2;
+    return { t, toothS, radPerS2, isCertain, jumps: around.map((one) => one?.jump ?? NaN) };
   }
 
   private settle(nowS: number): void {

@@ -24,6 +24,7 @@ export class InvertedChannelRule implements FindingRule {
   /** The one of a pair that was seen to turn over, and when; -1: none. */
   private turnedLane = -1;
   private turnedS = NaN;
+  private isCertain = false;
   private invalid = 0;
 
   constructor(context: RuleContext) {
@@ -66,12 +67,13 @@ export class InvertedChannelRule implements FindingRule {
   private followFlips(watch: FlipWatch, nowS: number): void {
     watch.tick(nowS);
     if (this.context.motion.state === 'stopped') this.turnedLane = -1;
-    for (const { t, jumps } of watch.found) {
+    for (const { t, jumps, isCertain } of watch.found) {
       const lane = jumps.findIndex((jump) => Math.abs(jump - 0.5) < halfWithin);
       const stays = jumps.some((jump) => Math.min(jump, 1 - jump) < halfWithin);
       if (lane < 0 || !stays) continue;
       this.turnedLane = lane === this.turnedLane ? -1 : lane;
       this.turnedS = t;
+      this.isCertain = isCertain;
     }
   }
 
@@ -87,7 +89,7 @@ export class InvertedChannelRule implements FindingRule {
         channel,
         from: turnedS,
         severity: 'fault',
-        outcome: expectedDirection === null ? 'cannot-tell' : 'found',
+        outcome: this.isCertain && expectedDirection !== null ? 'found' : 'cannot-tell',
         at: turnedS,
         evidence,
         ...wordsFor('inverted-channel', channel, evidence),

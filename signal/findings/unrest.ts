@@ -15,6 +15,7 @@ export const unrestIntervals = 7;
  */
 const change = 0.07;
 const changeOfSamples = 1.2;
+const fewestSamples = 8;
 const fewestChanges = 3;
 const fewestTurns = 2;
 
@@ -61,11 +62,12 @@ export function unrestOf(log: ToothLog, sinceS: number, stepS: number, missing: 
   if (missing > 0) shortenGap(missing + 1);
   const meanS = (lastS - fromS) / unrestIntervals;
   const unrest = { isIrregular: false, fromS, lastS, meanS, longestS, mostRatio: 1, mostV, leastV };
-  judgeChanges(unrest, change + (changeOfSamples * stepS) / meanS);
+  judgeChanges(unrest, stepS);
   return unrest;
 }
 
-function judgeChanges(unrest: Unrest, least: number): void {
+function judgeChanges(unrest: Unrest, stepS: number): void {
+  const least = change + (changeOfSamples * stepS) / unrest.meanS;
   let changes = 0;
   let turns = 0;
   let way = 0;
@@ -78,7 +80,9 @@ function judgeChanges(unrest: Unrest, least: number): void {
     if (way !== 0 && sign !== way) turns++;
     way = sign;
   }
-  unrest.isIrregular = changes >= fewestChanges && turns >= fewestTurns;
+  // With fewer samples teeth go by between them.
+  unrest.isIrregular =
+    unrest.meanS > fewestSamples * stepS && changes >= fewestChanges && turns >= fewestTurns;
 }
 
 /**
