@@ -15,12 +15,12 @@ import type { WheelSeat } from '@/signal/wheel-tracker';
 /** Wheels with more positions are not drawn, and no single tooth of theirs is judged. */
 export const mostPositions = 4096;
 
-/** Means of spacing and of swing run over about so many turns. */
+/** Means of spacing run over about so many turns; those of swing, and of recent steps, over fewer. */
 const memoryTurns = 8;
-const swingTurns = 4;
+const recentTurns = 4;
 /** Turns that such means are worth: (2 - g) / g for a gain g of one over them. */
-export const spacingWorth = 2 * memoryTurns - 1;
-export const swingWorth = 2 * swingTurns - 1;
+export const memoryWorth = 2 * memoryTurns - 1;
+export const recentWorth = 2 * recentTurns - 1;
 const mostChange = 0.1;
 const mostFits = 0.03;
 
@@ -45,9 +45,10 @@ export class WheelFaceMeter implements WheelSeat {
   learntTurns = 0;
   /** Measured less nominal angle, degrees, by position; NaN: not known. */
   readonly spacingDeg: Float64Array;
-  /** From the tooth before to this one, above a whole pitch, as a share of it: mean, and variance of single turns. */
+  /** From the tooth before to this one, above a whole pitch, as a share of it: mean, variance of single turns, and mean of the last few. */
   readonly step: Float64Array;
   readonly stepVariance: Float64Array;
+  readonly recentStep: Float64Array;
   /** Peak to peak, V. */
   readonly swingV: Float64Array;
   readonly swingVariance: Float64Array;
@@ -78,6 +79,7 @@ export class WheelFaceMeter implements WheelSeat {
     this.spacingDeg = column();
     this.step = column();
     this.stepVariance = column();
+    this.recentStep = column();
     this.swingV = column();
     this.swingVariance = column();
     this.counts = new Float64Array(positions);
@@ -142,7 +144,7 @@ export class WheelFaceMeter implements WheelSeat {
         this.swingV[position] = swingV;
         this.swingVariance[position] = 0;
       } else {
-        const gain = count < swingTurns ? 1 / count : 1 / swingTurns;
+        const gain = count < recentTurns ? 1 / count : 1 / recentTurns;
         const off = swingV - old;
         this.swingV[position] = old + gain * off;
         this.swingVariance[position] = (1 - gain) * (this.swingVariance[position]! + gain * off * off);
@@ -228,7 +230,7 @@ export class WheelFaceMeter implements WheelSeat {
 
   /** The turn with its teeth at `times`, from `fromS` to `toS`; the same tooth passed at `beforeS` and `afterS` too. */
   private learn(times: Float64Array, beforeS: number, fromS: number, toS: number, afterS: number): void {
-    const { positions, startPosition, spacingDeg, step, stepVariance, learnt } = this;
+    const { positions, startPosition, spacingDeg, step, stepVariance, recentStep, learnt } = this;
     const turnS = toS - fromS;
     const before = (beforeS - fromS) / turnS;
     const after = (afterS - fromS) / turnS;
@@ -252,9 +254,12 @@ export class WheelFaceMeter implements WheelSeat {
         const n = learnt[position]! + 1;
         const gain = n < memoryTurns ? 1 / n : 1 / memoryTurns;
         learnt[position] = Math.min(n, memoryTurns);
-        const old = n === 1 ? off - last : step[position]!;
-        const change = off - last - old;
+        const here = off - last;
+        const old = n === 1 ? here : step[position]!;
+        const change = here - old;
         step[position] = old + gain * change;
+        const recent = recentStep[position]!;
+        recentStep[position] = n <= recentTurns ? step[position]! : recent + (here - recent) / recentTurns;
         stepVariance[position] =
           n === 1 ? 0 : (1 - gain) * (stepVariance[position]! + gain * change * change);
       }

@@ -110,10 +110,10 @@ export class WheelOrders {
   }
 }
 
-/** The middle one of those that are not NaN; NaN where there is none. */
-export function middleOf(values: ArrayLike<number>): number {
-  const known = Float64Array.from(values).filter((value) => !Number.isNaN(value));
-  if (known.length === 0) return NaN;
-  known.sort();
-  return known[known.length >> 1]!;
+/** The middle one of the magnitudes that are not NaN; NaN where there is none. @param scratch at least as long; is overwritten. */
+export function middleMagnitude(values: ArrayLike<number>, scratch: Float64Array): number {
+  let count = 0;
+  for (let k = 0; k < values.length; k++)
+    if (!Number.isNaN(values[k]!)) scratch[count++] = Math.abs(values[k]!);
+  return count === 0 ? NaN : scratch.subarray(0, count).sort()[count >> 1]!;
 }

@@ -49,25 +49,34 @@ export function claimOfIndex(
   { indexWatch, motion, rig }: RuleContext,
   lane: WheelLane | undefined,
   nowS: number,
-) {
+): CountClaim | null {
   const turn = indexWatch?.lastTurn;
   if (!indexWatch || !turn || turn.excess === 0 || motion.direction === 'stopped') return null;
   const turnS = turn.toS - turn.fromS;
   if (nowS - turn.toS > 3 * turnS + 1) return null;
   const steps = motion.tracker?.table.stepsPerCycle ?? 1;
+  const setTeeth = rig.wheel.pulsesPerTurn - rig.wheel.missingPulses;
   const ratio = turn.counted / indexWatch.expected;
-  const isFar = simpleRatio(ratio) !== null && (ratio > farRatio || ratio < 1 / farRatio);
-  if (indexWatch.sameInRow < (isFar ? fewestSame : fewestOther)) return null;
+  const made = { by: 'index', setTeeth, foundMissing: null, atS: turn.fromS } as const;
+  // Far from the number set, a count or two that jitter makes more or less do not matter.
+  if (isFar(ratio) && isSame(ratio, indexWatch.meanCounted / indexWatch.expected)) {
+    const turns = Math.max(indexWatch.sameInRow, indexWatch.lostTurns + indexWatch.extraTurns);
+    return turns < fewestSame ? null : { ...made, foundTeeth: Math.round(turn.counted / steps), turns };
+  }
+  if (indexWatch.sameInRow < fewestOther) return null;
   // Steps that get lost or are made are no whole pulses; a tooth that fails and a burr have a finding of their own.
   if (turn.counted % steps !== 0 || (lane && isExplained(lane, turn.excess / steps))) return null;
-  return claim({
-    by: 'index',
-    foundTeeth: turn.counted / steps,
-    setTeeth: rig.wheel.pulsesPerTurn - rig.wheel.missingPulses,
-    foundMissing: null,
-    turns: indexWatch.sameInRow,
-    atS: turn.fromS,
-  });
+  return { ...made, foundTeeth: turn.counted / steps, turns: indexWatch.sameInRow };
+}
+
+function isFar(ratio: number): boolean {
+  return simpleRatio(ratio) !== null && (ratio > farRatio || ratio < 1 / farRatio);
+}
+
+function isSame(a: number, b: number): boolean {
+  const one = simpleRatio(a);
+  const other = simpleRatio(b);
+  return one !== null && other !== null && one.p === other.p && one.q === other.q;
 }
 
 function isExplained({ absence, extras, tracker }: WheelLane, excess: number): boolean {
@@ -77,7 +86,7 @@ function isExplained({ absence, extras, tracker }: WheelLane, excess: number): b
 }
 
 /** The gap comes at another distance, or is of another width, than the wheel was set up with; or there is none. */
-export function claimOfGap({ motion, rig }: RuleContext, nowS: number) {
+export function claimOfGap({ motion, rig }: RuleContext, nowS: number): CountClaim | null {
   const { tracker } = motion.train.placer;
   const { face } = motion.train;
   const { pulsesPerTurn: positions, missingPulses: missing } = rig.wheel;
@@ -85,14 +94,14 @@ export function claimOfGap({ motion, rig }: RuleContext, nowS: number) {
   const since = tracker.count - Math.max(0, tracker.longAt);
   const setTeeth = positions - missing;
   if (missing > 0 && since >= turnsWithoutGap * positions) {
-    return claim({
+    return {
       by: 'no gap',
       foundTeeth: NaN,
       setTeeth,
       foundMissing: 0,
       turns: Math.floor(since / positions),
       atS: nowS,
-    });
+    };
   }
   const { between, sameBetween, longSpans } = tracker;
   if (sameBetween < gapsNeeded || since > 2 * between) return null;
@@ -100,24 +109,28 @@ export function claimOfGap({ motion, rig }: RuleContext, nowS: number) {
   if (between !== positions) {
     // Two teeth opposite each other that fail look like a wheel of half the positions.
     if (missing === 0 && positions % between === 0) return null;
-    return claim({ ...found, foundTeeth: between - longSpans + 1, foundMissing: longSpans - 1 });
+    return { ...found, foundTeeth: between - longSpans + 1, foundMissing: longSpans - 1 };
   }
   if (missing === 0 || longSpans === missing + 1) return null;
   // A wider gap is teeth beside it that fail, unless they have never been seen.
   const wider = longSpans > missing + 1;
   if (wider && (!face || tracker.position < 0 || face.counts[positions - missing - 1]! > 0)) return null;
-  return claim({ ...found, foundTeeth: positions - longSpans + 1, foundMissing: longSpans - 1 });
+  return { ...found, foundTeeth: positions - longSpans + 1, foundMissing: longSpans - 1 };
 }
 
 /** Channels of a ring that see the same wheel count at a simple ratio. */
 export class ChannelCounts {
   private readonly context: RuleContext;
+  /** Teeth a turn. */
+  private readonly turn: number;
   private readonly from: number[];
   private ratio: { p: number; q: number; lane: number } | null = null;
   private inRow = 0;
 
   constructor(context: RuleContext) {
+    const { pulsesPerTurn, missingPulses } = context.rig.wheel;
     this.context = context;
+    this.turn = pulsesPerTurn - missingPulses;
     this.from = context.lanes.map(() => 0);
   }
 
@@ -126,22 +139,23 @@ export class ChannelCounts {
     lanes.forEach((index, k) => (this.from[k] = paths[index]!.log.count));
   }
 
-  claim(nowS: number) {
-    const { lanes, paths, motion, rig } = this.context;
+  claim(nowS: number): CountClaim | null {
+    const { lanes, paths, motion } = this.context;
     if (lanes.length < 2) return null;
     if (motion.direction === 'stopped') {
       this.restart();
       this.inRow = 0;
     }
-    const turn = Math.max(1, rig.wheel.pulsesPerTurn - rig.wheel.missingPulses);
-    const counts = lanes.map((index, k) => paths[index]!.log.count - this.from[k]!);
-    if (Math.max(...counts) >= channelTurns * turn) {
+    const { turn } = this;
+    let most = 0;
+    for (let k = 0; k < lanes.length; k++) most = Math.max(most, paths[lanes[k]!]!.log.count - this.from[k]!);
+    if (most >= channelTurns * turn) {
+      this.judge(lanes.map((index, k) => paths[index]!.log.count - this.from[k]!));
       this.restart();
-      this.judge(counts);
     }
     const { ratio, inRow } = this;
     if (!ratio || inRow < 2) return null;
-    return claim({
+    return {
       by: 'channels',
       foundTeeth: (turn * ratio.p) / ratio.q,
       setTeeth: turn,
@@ -154,7 +168,7 @@ export class ChannelCounts {
         firstChannel: paths[lanes[0]!]!.channel.name,
         firstChannelPulses: ratio.q,
       },
-    });
+    };
   }
 
   private judge(counts: readonly number[]): void {
@@ -163,15 +177,11 @@ export class ChannelCounts {
     for (let k = 1; k < counts.length && !this.ratio; k++) {
       const share = counts[k]! / counts[0]!;
       const simple = simpleRatio(share);
-      if (simple && (share > farRatio || share < 1 / farRatio)) this.ratio = { ...simple, lane: k };
+      if (simple && isFar(share)) this.ratio = { ...simple, lane: k };
     }
     const { ratio } = this;
     const same =
       ratio && before && ratio.p === before.p && ratio.q === before.q && ratio.lane === before.lane;
     this.inRow = ratio ? (same ? this.inRow + 1 : 1) : 0;
   }
-}
-
-function claim(made: CountClaim): CountClaim {
-  return made;
 }

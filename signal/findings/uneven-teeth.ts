@@ -3,9 +3,9 @@ import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
-import { spacingWorth } from '@/signal/wheel-face-meter';
+import { memoryWorth } from '@/signal/wheel-face-meter';
 import type { WheelFaceMeter } from '@/signal/wheel-face-meter';
-import { middleOf, WheelOrders } from '@/signal/wheel-orders';
+import { middleMagnitude, WheelOrders } from '@/signal/wheel-orders';
 
 const turnsNeeded = 10;
 /** Share of the pitch by which a tooth's distance to its neighbour is off; open findings stay down to four fifths. */
@@ -45,6 +45,7 @@ export class UnevenTeethRule implements FindingRule {
   private readonly steps: WheelOrders | null = null;
   private readonly swings: WheelOrders | null = null;
   private readonly scratch: Float64Array | null = null;
+  private readonly sorting: Float64Array | null = null;
   private readonly apart: Uint8Array | null = null;
   private readonly orders: number;
   private verdict: Verdict | null = null;
@@ -59,6 +60,7 @@ export class UnevenTeethRule implements FindingRule {
     this.steps = new WheelOrders(face.positions, this.orders);
     this.swings = new WheelOrders(face.positions, 1);
     this.scratch = new Float64Array(face.positions);
+    this.sorting = new Float64Array(face.positions);
     this.apart = new Uint8Array(face.positions);
   }
 
@@ -110,7 +112,7 @@ export class UnevenTeethRule implements FindingRule {
     const isRough = Math.sqrt(steps.leftVariance) > roughAllRound;
     // Teeth that stand out must not bend the wave that is taken out of the others.
     if (this.setApart(left)) steps.fit(values, this.orders, this.apart);
-    const rough = roughness(left);
+    const rough = roughness(left, this.sorting!);
     const limit = easier * (isRough ? offShare : Math.max(offShare, standsOut * rough));
     const grid = this.gridShare();
     let worstStep = 0;
@@ -118,7 +120,7 @@ export class UnevenTeethRule implements FindingRule {
       const off = Math.abs(left[k]!);
       // A step that scatters less than the sample grid makes it has always been sampled alike: it is known to a sample only.
       if (off < 1.25 * grid && face.stepVariance[k]! < (grid * grid) / 12) continue;
-      const error = Math.sqrt(face.stepVariance[k]! / spacingWorth);
+      const error = Math.sqrt(face.stepVariance[k]! / memoryWorth);
       if (off > limit && off > significant * error && off > worstStep) worstStep = off;
     }
     if (worstStep === 0) return null;
@@ -156,7 +158,7 @@ export class UnevenTeethRule implements FindingRule {
   private setApart(left: Float64Array): boolean {
     const { apart } = this;
     if (!apart || this.orders === 0) return false;
-    const limit = Math.max(offShare / 2, 2.5 * roughness(left));
+    const limit = Math.max(offShare / 2, 2.5 * roughness(left, this.sorting!));
     let count = 0;
     for (let k = 0; k < left.length; k++) {
       apart[k] = Math.abs(left[k]!) > limit ? 1 : 0;
@@ -172,7 +174,7 @@ export class UnevenTeethRule implements FindingRule {
     swings.fit(ofTeethThere(face.swingV, face, this.scratch!), positions >= positionsPerOrder ? 1 : 0);
     // A wave over the turn is run-out's; one weak tooth makes hardly any.
     const isWave = swings.leftVariance < 0.5 * swings.variance;
-    const middle = middleOf(this.scratch!);
+    const middle = middleMagnitude(this.scratch!, this.sorting!);
     let worst = -1;
     let worstShare = 0;
     let teeth = 0;
@@ -212,8 +214,8 @@ function isNear(a: Verdict, b: Verdict, positions: number): boolean {
 }
 
 /** Rms of what is left, by its middle, so that single teeth do not count. */
-function roughness(left: Float64Array): number {
-  return 1.4826 * middleOf(left.map(Math.abs));
+function roughness(left: Float64Array, scratch: Float64Array): number {
+  return 1.4826 * middleMagnitude(left, scratch);
 }
 
 /** Which tooth stands off most: its distances to both neighbours are off the opposite way. */
