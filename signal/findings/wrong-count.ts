@@ -7,7 +7,7 @@ import { wordsFor } from '@/signal/finding-words';
 import { fewestPatternPositions, mostPatternPositions, WheelPattern } from '@/signal/wheel-pattern';
 
 /** Between two looks at the wheel's pattern, s: wheels do not change, and a look costs as much as a few thousand edges. */
-const restS = 60;
+const restS = 120;
 
 /**
  * The wheel has another number of teeth than it was set up with, so that the speed is off by a fixed ratio. Said only of what
