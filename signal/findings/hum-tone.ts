@@ -7,8 +7,8 @@ export type Tone = { hz: number; amplitudeV: number; bin: number };
 /**
  * The tone within `reachHz` of `hz`, or null where nothing peaks there.
  *
- * With r the size of the larger neighbour of the peak over the peak, a tone behind a Hann window stands d = (2 r - 1) /
- * (r + 1) bins from it, and is pi d (1 - d^2) / sin(pi d) times its size.
+ * With r the size of a neighbour of the peak over the peak, a tone behind a Hann window stands d = (2 r - 1) / (r + 1) bins
+ * from it towards that neighbour, and is pi d (1 - d^2) / sin(pi d) times its size.
  * Source: Jain, Collins and Davis, IEEE Trans. Instrum. Meas. 28 (1979) 113-122, for the Hann window by Grandke (1983).
  */
 export function toneNear(spectrum: Spectrum, binHz: number, hz: number, reachHz: number): Tone | null {
@@ -27,10 +27,14 @@ export function toneNear(spectrum: Spectrum, binHz: number, hz: number, reachHz:
   const below = sizeAt(spectrum, bin - 1);
   const above = sizeAt(spectrum, bin + 1);
   if (below > peak || above > peak) return null;
-  const ratio = Math.max(below, above) / peak;
-  const off = Math.max(0, (2 * ratio - 1) / (ratio + 1));
-  const lost = off < 1e-6 ? 1 : (Math.PI * off * (1 - off * off)) / Math.sin(Math.PI * off);
-  const toneHz = (bin + (above > below ? off : -off)) * binHz;
+  // A larger tone two bins away spoils the neighbour on its side.
+  const belowSpoilt = sizeAt(spectrum, bin - 2) > peak;
+  const aboveSpoilt = sizeAt(spectrum, bin + 2) > peak;
+  const byAbove = belowSpoilt || (above > below && !aboveSpoilt);
+  const ratio = (byAbove ? above : below) / peak;
+  const off = ((byAbove ? 1 : -1) * (2 * ratio - 1)) / (ratio + 1);
+  const lost = Math.abs(off) < 1e-6 ? 1 : (Math.PI * off * (1 - off * off)) / Math.sin(Math.PI * off);
+  const toneHz = (bin + off) * binHz;
   return Math.abs(toneHz - hz) <= reachHz ? { hz: toneHz, amplitudeV: lost * peak, bin } : null;
 }
 

@@ -8,10 +8,12 @@ import type { SlowWheel } from '@/signal/findings/slow-wheel';
 
 /** Amplitude over half the swing. */
 const opens = { found: 0.05, cannotTell: 0.08 };
+/** A squared signal has much of its own, and its flanks pass quickly. */
+const opensSquared = { found: 0.1, cannotTell: 0.1 };
 const stays = { found: 0.03, cannotTell: 0.05 };
 const looksToOpen = 2;
-/** Grids keep their frequency within 0.2 Hz; small generators within this. */
-const reachHz = 0.5;
+/** Grids keep their frequency within 0.2 Hz; the rest is for what lies beside the tone and for its harmonics. */
+const reachHz = 0.35;
 const sameHz = 0.25;
 /** A tone stands so many times above everything beside it. */
 const prominent = 2;
@@ -106,9 +108,10 @@ export class MainsHumRule implements FindingRule {
     const { latch } = judged;
     const { wheel } = spectrum;
     const { halfSwingV } = wheel;
-    const limits = latch.open ? stays : opens;
+    const linear = judged.path.channel.sensor.kind === 'linear';
+    const limits = latch.open ? stays : linear ? opens : opensSquared;
     // A squared signal has so many harmonics of its own that those of the mains are not worth the doubt.
-    const mostHarmonic = this.ripples || judged.path.channel.sensor.kind !== 'linear' ? 1 : 3;
+    const mostHarmonic = this.ripples || !linear ? 1 : 3;
     let best: Sight | null = null;
     for (const mainsHz of [50, 60]) {
       for (let harmonic = 1; harmonic <= mostHarmonic; harmonic++) {

@@ -7,14 +7,18 @@ import { firstSince, isEven, usualIntervalS } from '@/signal/findings/tooth-rows
 import { readableFrom } from '@/signal/tooth-log';
 import type { ToothLog } from '@/signal/tooth-log';
 
-export type CommonMiddles = { amplitudeV: number; hz: number; correlation: number };
+export type CommonMiddles = {
+  amplitudeV: number;
+  hz: number;
+  correlation: number;
+  /** Half swings of the middle in the window: a step has none. */
+  halfSwings: number;
+};
 
 const fewest = 16;
 /** Rms of the change from turn to turn over the swing. */
 const leastChange = 0.03;
 const leastCorrelation = 0.8;
-/** Half swings of the middle in the window: a step has none. */
-const fewestCrossings = 3;
 
 /** A tooth of the first channel that the second has one beside. */
 type Row = {
@@ -61,7 +65,7 @@ export function commonMiddles(
   if (!(correlation > leastCorrelation) || !(Math.sqrt(together) > leastChange * swingV)) return null;
   const amplitudeV = Math.sqrt(2 * Math.max(0, covariance(now)));
   const { crossings, spanS } = crossingsOf(row, fromS, now.x / now.n, amplitudeV / 4);
-  return crossings < fewestCrossings ? null : { amplitudeV, hz: crossings / (2 * spanS), correlation };
+  return { amplitudeV, hz: crossings / (2 * spanS), correlation, halfSwings: crossings };
 }
 
 /** The teeth `first` up to, not with, `end` of one channel, with the nearest ones of the other. */

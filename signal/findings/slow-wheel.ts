@@ -207,7 +207,9 @@ export class SlowWheel {
 
   /** Small teeth that come as the mains do are left out: hum may make them. */
   private learnSwing(): void {
-    if (!(this.swingV > 0)) return;
+    const { kind, supplyV } = this.path.channel.sensor;
+    const leastV = kind !== 'linear' && supplyV !== null ? leastOfSupply * supplyV : 0;
+    if (!(this.swingV > leastV)) return;
     const edgesHz = this.edgesHz();
     const isHum = Math.abs(edgesHz - 50) < 0.5 || Math.abs(edgesHz - 60) < 0.5;
     if (this.learnt && isHum && this.swingV < this.halfSwingV) return;
@@ -236,6 +238,8 @@ function lobe(off: number): number {
   return Math.abs(Math.sin(Math.PI * off) / (Math.PI * off * (1 - off * off)));
 }
 
+/** A switching sensor swings over more of its supply than this; what is less, noise made. */
+const leastOfSupply = 0.2;
 /** Of the supply, what half the swing of a sensor usually is. Without a supply a fixed band says what is expected. */
 const usualHalf = { linear: 0.2, switching: 0.4 };
 

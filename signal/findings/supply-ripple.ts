@@ -2,7 +2,6 @@ import type { ChannelPath } from '@/signal/channel-path';
 import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
 import { toneNear } from '@/signal/findings/hum-tone';
 import { commonMiddles } from '@/signal/findings/ripple-middles';
-import type { CommonMiddles } from '@/signal/findings/ripple-middles';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { sizeAt } from '@/signal/findings/slow-spectrum';
 import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
@@ -19,9 +18,11 @@ const inPhase = 0.85;
 const mostUnequal = 2.5;
 /** Two swings of a ripple of 1 Hz. */
 const slowWindowS = 2;
+const fewestHalfSwings = 3;
 /** The wheel must keep its speed for the window. */
 const mostSpread = 0.03;
 
+type Ripple = { amplitudeV: number; hz: number; correlation: number };
 type Line = { bin: number; power: number; correlation: number };
 
 /**
@@ -36,6 +37,8 @@ export class SupplyRippleRule implements FindingRule {
   private readonly pair: readonly Spectrum[];
   private seen = 0;
   private sinceS = NaN;
+  /** When hum was last in the spectrum; the teeth's window is longer than that. */
+  private humS = -Infinity;
 
   constructor(context: RuleContext, spectra: SlowSpectra) {
     this.context = context;
@@ -83,7 +86,7 @@ export class SupplyRippleRule implements FindingRule {
     latch.raiseSized(findingOf('supply-ripple', null, seen), share, nowS);
   }
 
-  private quickRipple(a: Spectrum, b: Spectrum, halfSwingV: number): CommonMiddles | null {
+  private quickRipple(a: Spectrum, b: Spectrum, halfSwingV: number): Ripple | null {
     const { binHz } = this.spectra;
     const lines = this.linesOf(a, b, halfSwingV);
     const amplitudeV = Math.sqrt(lines.reduce((sum, { power }) => sum + power, 0));
@@ -94,20 +97,25 @@ export class SupplyRippleRule implements FindingRule {
   }
 
   /** Slower than the teeth; a hum that both pick up would be seen there as what it beats with the teeth. */
-  private slowRipple(a: Spectrum, b: Spectrum): CommonMiddles | null {
+  private slowRipple(a: Spectrum, b: Spectrum): Ripple | null {
     const { context, spectra } = this;
     const { paths, rig } = context;
     if (a.wheel.teeth === 0) return null;
     const { pulsesPerTurn } = rig.wheel;
     const ripple = commonMiddles(paths[a.index]!, paths[b.index]!, pulsesPerTurn, spectra.toS - slowWindowS);
     if (!ripple) return null;
-    const hums = [50, 60].some((hz) => {
-      const tone = toneNear(a, spectra.binHz, hz, 1);
-      return (
-        tone !== null && tone.amplitudeV > ripple.amplitudeV / 2 && !(a.wheel.mostAt(hz) > tone.amplitudeV)
-      );
+    if (this.hums(a, ripple.amplitudeV)) this.humS = spectra.toS;
+    if (spectra.fromS - this.humS < slowWindowS) return null;
+    // A step of both, or the begin of a ripple: the next look is to come soon.
+    if (ripple.halfSwings < fewestHalfSwings) spectra.suspected = true;
+    return ripple.halfSwings < fewestHalfSwings ? null : ripple;
+  }
+
+  private hums(a: Spectrum, rippleV: number): boolean {
+    return [50, 60].some((hz) => {
+      const tone = toneNear(a, this.spectra.binHz, hz, 1);
+      return tone !== null && tone.amplitudeV > rippleV / 2 && !(a.wheel.mostAt(tone.hz) > tone.amplitudeV);
     });
-    return hums ? null : ripple;
   }
 
   /** A wheel that starts, stops or turns back makes things in common for a while. */

@@ -15,6 +15,7 @@ const homeShare = 0.2;
 /** Peak to peak of edges that noise alone makes: sigmas, and share of the supply of a switching sensor. */
 const leastSigmas = 10;
 const leastOfSupply = 0.1;
+const humOfSupply = 0.02;
 /** Mean swing over the largest one: teeth of a sound wheel differ by four to one, noise among teeth by more. */
 const leastOfLargest = 0.25;
 /** A wheel with more teeth than this is judged by so many of them. */
@@ -127,7 +128,11 @@ export class TurnMeans {
     const { kind, supplyV } = channel.sensor;
     if (this.swingV < Math.max(leastOfLargest * this.largestV, noiseV > 0 ? leastSigmas * noiseV : 0))
       return true;
-    return kind !== 'linear' && supplyV !== null && this.swingV < leastOfSupply * supplyV;
+    if (supplyV === null) return false;
+    if (kind !== 'linear') return this.swingV < leastOfSupply * supplyV;
+    // Mains hum may be all there is on a shaft at rest.
+    const isHum = [50, 60].some((hz) => Math.abs(this.toothHz - hz) < 0.5);
+    return isHum && this.swingV < humOfSupply * supplyV;
   }
 
   /** Of so many teeth at hand; 0 where they are too few. */
