@@ -19,6 +19,9 @@ const fewest = 16;
 /** Rms of the change from turn to turn over the swing. */
 const leastChange = 0.03;
 const leastCorrelation = 0.8;
+/** Rms of what some of the middles have in common, over the swing, for a closer look. */
+const leastMoved = 0.02;
+const some = 64;
 
 /** A tooth of the first channel that the second has one beside. */
 type Row = {
@@ -42,6 +45,7 @@ export function commonMiddles(
 ): CommonMiddles | null {
   const { log } = a;
   const end = log.count - 1;
+  if (!moveTogether(log, b.log, firstSince(log, fromS), end)) return null;
   const usualS = usualIntervalS(log, Math.max(readableFrom(log, 0), end - 32), end);
   const first = Math.max(firstSince(log, fromS - 1.2 * positions * usualS), readableFrom(log, 0));
   if (!(end - first >= fewest) || !isEven(log, first, end, usualS)) return null;
@@ -66,6 +70,21 @@ export function commonMiddles(
   const amplitudeV = Math.sqrt(2 * Math.max(0, covariance(now)));
   const { crossings, spanS } = crossingsOf(row, fromS, now.x / now.n, amplitudeV / 4);
   return { amplitudeV, hz: crossings / (2 * spanS), correlation, halfSwings: crossings };
+}
+
+/** A quick look at some teeth of the window, as if none were missing: whether there is anything to look for. */
+function moveTogether(a: ToothLog, b: ToothLog, first: number, end: number): boolean {
+  const step = Math.max(1, Math.floor((end - first) / some));
+  const shift = b.count - a.count;
+  const oldest = Math.max(first, readableFrom(b, 0) - shift);
+  const pair = newPair();
+  for (let n = end - 1; n >= oldest && pair.n < some; n -= step) {
+    const i = n & a.mask;
+    const k = (n + shift) & b.mask;
+    add(pair, a.peakV[i]! + a.troughV[i]!, b.peakV[k]! + b.troughV[k]!);
+  }
+  const i = (end - 1) & a.mask;
+  return Math.sqrt(covariance(pair)) / 2 > leastMoved * (a.peakV[i]! - a.troughV[i]!);
 }
 
 /** The teeth `first` up to, not with, `end` of one channel, with the nearest ones of the other. */

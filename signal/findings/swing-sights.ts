@@ -19,6 +19,8 @@ const marginSigmas = 4;
 const marginShare = 0.05;
 /** Teeth that a fixed band did not count are a matter of swing where so large a share of the places is empty. */
 const manyEmpty = 0.2;
+/** An interval of so many places may hide a tooth that was not counted. */
+const longPlaces = 1.4;
 /** Peak to peak in sigmas at which a fitted band wants more than half of the swing for its hysteresis. */
 const cappedSigmas = 20;
 /** Of what the line is pulled up to. */
@@ -39,20 +41,26 @@ export function againstBand(
   open: boolean,
 ): SwingSight | null {
   const { log, operateV, releaseV, noiseV } = path;
-  const { first, end, swingV } = means;
+  const { first, end, swingV, toothHz } = means;
+  let worstV = Infinity;
+  let worst = first;
+  let longestS = 0;
+  for (let n = first; n < end; n++) {
+    const i = n & log.mask;
+    const beyondV = Math.min(log.peakV[i]! - operateV, releaseV - log.troughV[i]!);
+    if (beyondV < worstV) {
+      worstV = beyondV;
+      worst = n;
+    }
+    longestS = Math.max(longestS, log.riseS[(n + 1) & log.mask]! - log.riseS[i]!);
+  }
+  const least = Math.max(marginShare * swingV, noiseV > 0 ? marginSigmas * noiseV : 0);
+  const isNear = worstV < (open ? more : 1) * least;
+  if (!isNear && longestS * toothHz < longPlaces) return null;
   // Edges that bounce leave teeth that are none.
   const usualS = usualIntervalS(log, first, end);
   const even = isEven(log, first, end, usualS);
   if (!even && !repeats(log, first, end, means.turn)) return null;
-  let worstV = Infinity;
-  let atS = NaN;
-  for (let n = first; n < end; n++) {
-    const i = n & log.mask;
-    const beyondV = Math.min(log.peakV[i]! - operateV, releaseV - log.troughV[i]!);
-    if (!(beyondV < worstV)) continue;
-    worstV = beyondV;
-    atS = (log.riseS[i]! + log.fallS[i]!) / 2;
-  }
   const ofGaps = Math.ceil(((end - first) * (means.positions - means.turn)) / means.turn);
   const empty = even ? Math.max(0, emptyPlaces(log, first, end, usualS) - ofGaps) : 0;
   const places = end - first + ofGaps + empty;
@@ -67,8 +75,7 @@ export function againstBand(
     };
     return { size: 10, severity: 'fault', atS: longestGapS(path, means), evidence };
   }
-  const least = Math.max(marginShare * swingV, noiseV > 0 ? marginSigmas * noiseV : 0);
-  if (!(worstV < (open ? more : 1) * least)) return null;
+  if (!isNear) return null;
   const evidence = {
     against: 'band',
     marginV: worstV,
@@ -77,6 +84,7 @@ export function againstBand(
     operateV,
     releaseV,
   };
+  const atS = (log.riseS[worst & log.mask]! + log.fallS[worst & log.mask]!) / 2;
   return { size: 1 + (least - worstV) / least, severity: 'warn', atS, evidence };
 }
 
