@@ -23,6 +23,8 @@ const scatterShare = 0.02;
 const explained = 0.6;
 /** Peaks stand above the signal by so much of the noise, and troughs below it (by simulation, 50 to 1000 samples a tooth). */
 const noiseInSwing = 4.4;
+/** With fewer samples a tooth, what is taken for noise is signal too. */
+const fewestSamples = 14;
 /** Once open, this much less is enough. */
 const staying = 0.7;
 /** A low pass this many times above the tooth frequency leaves the slope of a sine as it is. */
@@ -97,6 +99,7 @@ export class SlowEdgeRule implements FindingRule {
    */
   private noiseMoves(path: ChannelPath, { first, end, toothHz, swingV }: TurnMeans, least: number): Sight {
     const { noiseV, log } = path;
+    if (this.context.rateHz < fewestSamples * toothHz) return null;
     const slopeVPerS = Math.PI * toothHz * (swingV - noiseInSwing * noiseV);
     const byNoise = (noiseV / slopeVPerS) * toothHz;
     if (!(byNoise > least * explained * scatterShare)) return null;

@@ -20,6 +20,8 @@ const recoveredShare = 0.6;
 const strangeShare = 0.1;
 const looksForBaseline = 2;
 const looksToOpen = 2;
+/** With fewer samples a tooth, what is taken for noise is signal too. */
+const fewestSamples = 14;
 /** A filter that leaves less than this of the teeth is named. */
 const filterBlame = 0.7;
 
@@ -69,13 +71,18 @@ export class WeakSwingRule implements FindingRule {
     this.rejected[index] = path.rejectedCount;
     const fixed = this.context.settings.band.mode === 'fixed';
     const sights = [
-      fixed ? againstBand(path, means, rejected, open) : againstNoise(path, means, open),
+      fixed ? againstBand(path, means, rejected, open) : this.noisy(path, means, open),
       this.fallen(path, index),
       this.levelsKnown ? againstSupply(path, means, open) : null,
     ];
     const sight = sights.reduce((worst, one) => (one && one.size > (worst?.size ?? 0) ? one : worst), null);
     if (sight) this.blameFilter(sight, means.toothHz);
     this.count(index, sight, nowS, false);
+  }
+
+  private noisy(path: ChannelPath, means: TurnMeans, open: boolean): SwingSight | null {
+    if (this.context.rateHz < fewestSamples * means.toothHz) return null;
+    return againstNoise(path, means, open);
   }
 
   /** Opens at the second look in a row. */
