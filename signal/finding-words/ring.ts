@@ -56,8 +56,11 @@ export const ringWords = {
             }
           : {
               message: `The shaft has read ${evidence.turned} for ${whole(evidence.turns)} turns where ${evidence.expected} is expected.`,
-              remedy:
-                'Turn the shaft by hand the expected way: if it still reads wrong, swap channels A and B or turn one line round; if it then reads right, the drive really turned the other way.',
+              remedy: `Turn the shaft by hand the expected way: if it still reads wrong, ${
+                evidence.channels === undefined
+                  ? 'exchange what the pulse widths mean'
+                  : `swap two of the channels ${evidence.channels} or turn one line round`
+              }; if it then reads right, the drive really turned the other way.`,
             },
   'inverted-channel': (channel, evidence) =>
     evidence.turnedOverS !== undefined
@@ -123,7 +126,7 @@ function ofPair({ errorDeg, narrowestDeg, aHighPercent, bHighPercent }: Evidence
 
 function ofThree(channel: string | null, evidence: Evidence): FindingWords {
   const off = Number(evidence.errorDeg);
-  const widths = `their states are ${whole(evidence.narrowestDeg)} to ${whole(evidence.widestDeg)} degrees wide where 60 are right`;
+  const widths = `the states of the set are ${whole(evidence.narrowestDeg)} to ${whole(evidence.widestDeg)} degrees wide where 60 are right`;
   if (Math.abs(off) < Number(evidence.spreadDeg) / 3)
     return {
       message: `The three lines do not share the cycle evenly: ${widths}, and line ${channel} is high for ${whole(evidence.highPercent)} % of it.`,

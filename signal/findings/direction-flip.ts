@@ -3,6 +3,7 @@ import { invertedLine } from '@/signal/findings/inverted-channel';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { wordsFor } from '@/signal/finding-words';
+import type { Finding } from '@/signal/model';
 
 /** Changes less far apart than this are one finding, s. */
 const holdS = 5;
@@ -98,7 +99,14 @@ export class DirectionFlipRule implements FindingRule {
     if (turns < turnsNeeded || nowS < this.dueS) return;
     this.dueS = nowS + everyS;
     const inverted = invertedLine(this.context, nowS) !== null;
-    const evidence = { turned: direction, expected, turns, duties: inverted ? 'mirrored' : 'alike' };
+    const { paths, lanes } = this.context;
+    const evidence: Finding['evidence'] = {
+      turned: direction,
+      expected,
+      turns,
+      duties: inverted ? 'mirrored' : 'alike',
+    };
+    if (lanes.length > 1) evidence.channels = lanes.map((index) => paths[index]!.channel.name).join(', ');
     this.latches[1]!.raise(
       {
         code: 'direction-flip',

@@ -22,6 +22,7 @@ const fewestEdges = 32;
 const fewestKept = 3;
 /** From the middle to the switching point, share of a tooth: a sine takes twice as long. */
 const longestWay = 0.015;
+const sigmasOfBand = 6;
 
 type Lane = {
   path: ChannelPath;
@@ -114,7 +115,7 @@ export class EdgeBounceRule implements FindingRule {
     const share = kept / edges;
     if (kept < fewestKept || share <= (latch.open ? heldStaysAt : heldOpensAt)) return;
     const { holdoffS } = this.context.settings;
-    if (isNoBounce(path, Math.min(teeth, 64), this.missing, holdoffS, nowS)) return;
+    if (lane.meter.short > 0 || isNoBounce(path, Math.min(teeth, 64), this.missing, holdoffS, nowS)) return;
     this.raise(latch, lane, nowS, 'note', fromS, nowS, { heldBackPercent: 100 * share, holdoffS });
   }
 
@@ -147,17 +148,18 @@ export class EdgeBounceRule implements FindingRule {
 }
 
 /**
- * True where the flank is gentle, so that it is noise; where teeth stayed away among the last ones or stay away now; or where
+ * True where the flank is gentle or the band no wider than the noise, so that it is noise; where teeth stayed away among the last ones or stay away now; or where
  * the hold-off is as long as a state: what was kept back were teeth then.
  */
 function isNoBounce(
-  { log, duty }: ChannelPath,
+  { log, duty, operateV, releaseV, noiseV }: ChannelPath,
   teeth: number,
   missing: number,
   holdoffS: number,
   nowS: number,
 ): boolean {
   const { riseS, riseWayS, fallWayS, mask, count } = log;
+  if (operateV - releaseV < sigmasOfBand * noiseV) return true;
   const oldest = readableFrom(log, count - teeth);
   const last = (count - 1) & mask;
   let longestS = 0;
