@@ -11,6 +11,10 @@ export const zones = {
   highDown: 5,
   highBack: 6,
   hold: 7,
+  /** Low, but not yet below the release point of a band that moved down. */
+  sinking: 8,
+  /** High, but not yet above the operate point of a band that moved up. */
+  climbing: 9,
 } as const;
 
 export type Detector = {
@@ -95,6 +99,26 @@ export function setThresholds(detector: Detector, operateV: number, releaseV: nu
   detector.operateV = operateV;
   detector.releaseV = releaseV;
   detector.midV = (operateV + releaseV) / 2;
+}
+
+/**
+ * The band has moved while the signal stands at `x`: a state that it contradicts holds until the signal has confirmed it, so
+ * that the move itself makes no edge.
+ */
+export function keepState(detector: Detector, x: number): void {
+  const { zone, midV } = detector;
+  const high = zone === zones.hold ? detector.high : zone === zones.high;
+  if (high && x < midV) detector.zone = zones.climbing;
+  else if (!high && (zone === zones.low || zone === zones.hold) && x > midV) detector.zone = zones.sinking;
+}
+
+/** As it was just after an edge at `edgeAt`; the band may have moved since. */
+export function resumeAfter(detector: Detector, edgeAt: number, rising: boolean): void {
+  detector.zone = rising ? zones.climbing : zones.sinking;
+  detector.high = detector.wouldBeHigh = rising;
+  detector.holdEndAt = edgeAt + detector.holdSamples;
+  detector.midAt = NaN;
+  detector.midStepV = NaN;
 }
 
 /** The band's state is unknown again: after a gap, or when levels were found anew. */

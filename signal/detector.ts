@@ -23,7 +23,9 @@ export function runDetector(
   base: number,
   sink: DetectorSink,
 ): number {
-  const end = Math.min(to, d.pauseAt - base - 1);
+  // Whole numbers are passed on as such only where they are known to be: else the inner loops get boxes.
+  const room = d.pauseAt - base - 1;
+  const end = room < to ? room | 0 : to;
   const operate = d.operateV;
   const release = d.releaseV;
   const mid = d.midV;
@@ -118,6 +120,16 @@ export function runDetector(
           sink.rejected(d.midAt, d.reachV, false);
           d.zone = zones.high;
         }
+        break;
+      }
+      case zones.sinking:
+      case zones.climbing: {
+        const low = d.zone === zones.sinking;
+        for (; j <= end; j++) if (low ? v[j]! < release : v[j]! > operate) break;
+        if (j > end) break;
+        d.extremeV = v[j]!;
+        if (base + j < d.holdEndAt) d.zone = zones.hold;
+        else d.zone = low ? zones.low : zones.high;
         break;
       }
       case zones.hold: {

@@ -8,16 +8,39 @@ import { createDelayCurve, delayAt } from '@/signal/delay-curve';
 import type { DelayCurve } from '@/signal/delay-curve';
 import type { Detector } from '@/signal/detector-state';
 import type { Section } from '@/signal/filter-design';
+import { lagOf, noiseCorrelation, spreadOf } from '@/signal/flank-error';
 import { followed } from '@/signal/levels';
 import type { Levels } from '@/signal/levels';
 import { createMarginMeter, endTooth } from '@/signal/margin-meter';
 import type { MarginMeter } from '@/signal/margin-meter';
-import { edgeRising } from '@/signal/pipeline-types';
+import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import type { EdgeColumns } from '@/signal/pipeline-types';
 import { dcDelayS } from '@/signal/response';
 import { samplesPerTick } from '@/signal/ticks';
 import { breakLog, createToothLog } from '@/signal/tooth-log';
 import type { ToothLog } from '@/signal/tooth-log';
+
+export type IntakeOptions = {
+  sections: readonly Section[];
+  rateHz: number;
+  missingPulses: number;
+  teethPerTurn: number;
+  /** Between neighbouring samples of the filtered noise; where not given, as the sections make it of white noise. */
+  correlation?: number | undefined;
+};
+
+/** The usual interval follows each one by so much at most: one tooth too many, or too few, does not make it another. */
+const mostLonger = 1.25;
+const mostShorter = 0.8;
+/** Noise takes no more than the rest of half the band from what the flank has to climb. */
+const leastOfHalf = 0.3;
+/**
+ * What a straight line between the samples of a sine misses its middle by, rms, samples times the square of its radians a
+ * sample: 1 / (36 sqrt 3) at the most.
+ */
+const bent = 0.011;
+/** A flank of two or three samples may be curved as well: found with pulses that are so short. */
+const curved = 0.02;
 
 export class EdgeIntake {
   readonly edges: EdgeColumns = createEdgeColumns();
@@ -28,8 +51,15 @@ export class EdgeIntake {
   duty = NaN;
   delayS = NaN;
   periodSamples = NaN;
+  /** The interval between teeth, position by position, that is usual here; samples. */
+  typicalSamples = NaN;
   /** Last accepted edge, samples, delay not taken off. */
   lastEdgeAt = NaN;
+  /** Its peak or trough, V; NaN after a gap. */
+  lastExtremeV = NaN;
+  /** Last mid crossings, samples. */
+  riseMidAt = NaN;
+  fallMidAt = NaN;
   private readonly detector: Detector;
   private readonly levels: Levels;
   private readonly rateHz: number;
@@ -37,26 +67,23 @@ export class EdgeIntake {
   private readonly oneTooth: boolean;
   private readonly delays: DelayCurve;
   private delayKnown = false;
-  private lastExtremeV = NaN;
-  private riseMidAt = NaN;
-  private fallMidAt = NaN;
-  /** Time from mid to the switching point, averaged, samples. */
-  private riseSpent = NaN;
-  private fallSpent = NaN;
+  /** What a flank takes for one volt at mid, averaged, samples. */
+  private risePerV = NaN;
+  private fallPerV = NaN;
+  /** Of the noise, over its rms: a step from sample to sample; and what the line between two samples makes of it. */
+  private readonly noiseStep: number;
+  private readonly oneCrossing: number;
 
-  constructor(
-    detector: Detector,
-    levels: Levels,
-    sections: readonly Section[],
-    rateHz: number,
-    missing: number,
-    teethPerTurn: number,
-  ) {
+  constructor(detector: Detector, levels: Levels, options: IntakeOptions) {
+    const { sections, rateHz, missingPulses, teethPerTurn } = options;
     this.detector = detector;
     this.levels = levels;
     this.rateHz = rateHz;
-    this.missing = missing;
+    this.missing = missingPulses;
     this.oneTooth = teethPerTurn === 1;
+    const correlation = options.correlation ?? noiseCorrelation(sections, rateHz);
+    this.noiseStep = Math.sqrt(2 * (1 - correlation));
+    this.oneCrossing = Math.sqrt((2 + correlation) / 3);
     this.delays = createDelayCurve(sections, rateHz);
     this.delayS = dcDelayS(sections, rateHz);
     this.marginMeter = createMarginMeter(teethPerTurn);
@@ -65,8 +92,9 @@ export class EdgeIntake {
 
   /** How long after its mid crossing an edge is known: the filter's delay and the way to the switching point, s. */
   get latencyS(): number {
-    const spent = Math.max(this.riseSpent || 0, this.fallSpent || 0);
-    return Math.max(0, this.delayS || 0) + (spent + 1) / this.rateHz;
+    const { operateV, midV } = this.detector;
+    const way = (operateV - midV) * Math.max(this.risePerV || 0, this.fallPerV || 0) || 0;
+    return Math.max(0, this.delayS || 0) + (way + 1) / this.rateHz;
   }
 
   /** Samples were lost: no interval reaches across. */
@@ -84,18 +112,23 @@ export class EdgeIntake {
     const { detector, levels, edges, queue, rateHz, missing, oneTooth, delays, marginMeter, log } = this;
     const raw = detector.edges;
     const { operateV, releaseV } = detector;
-    const noisePerBand = noiseV / (operateV - detector.midV);
+    const halfV = operateV - detector.midV;
+    const noiseStepV = this.noiseStep * noiseV;
+    const { oneCrossing } = this;
     const periodS = 1 / rateHz;
     let { lowV, highV, wobbleV } = levels;
-    let { duty, lastExtremeV, riseMidAt, fallMidAt, riseSpent, fallSpent, periodSamples, delayS } = this;
+    let { duty, lastExtremeV, riseMidAt, fallMidAt, risePerV, fallPerV, periodSamples, delayS } = this;
+    let { typicalSamples } = this;
     for (let k = 0; k < raw.count; k++) {
       const at = raw.at[k]!;
       const midAt = raw.midAt[k]!;
       const extremeV = raw.extremeV[k]!;
       const flags = raw.flags[k]!;
       const rising = (flags & edgeRising) !== 0;
+      // Where the state before was not seen from its begin, its peak or trough may not have been either.
+      const isWhole = lastExtremeV === lastExtremeV;
       const beyondV = rising ? releaseV - extremeV : extremeV - operateV;
-      if (beyondV < marginMeter.thisTurnV) marginMeter.thisTurnV = beyondV;
+      if (isWhole && beyondV < marginMeter.thisTurnV) marginMeter.thisTurnV = beyondV;
       if (!rising) endTooth(marginMeter);
 
       const toothV = Math.abs(extremeV - lastExtremeV);
@@ -120,18 +153,29 @@ export class EdgeIntake {
         const period = midAt - before;
         const gap = missing > 0 && spansGap(period / periodSamples, missing + 1);
         periodSamples = gap ? period / (missing + 1) : period;
+        const ratio = periodSamples / typicalSamples;
+        if (ratio > mostLonger) typicalSamples *= mostLonger;
+        else if (ratio < mostShorter) typicalSamples *= mostShorter;
+        else typicalSamples = periodSamples;
         delayS = delayAt(delays, rateHz / periodSamples);
         this.delayKnown = true;
       }
 
-      // Noise over the flank's slope, which is half the band over the time from mid to the switching point (a step between
-      // two samples would hold more noise than slope on a gentle flank); no better than the sample grid on a steep one.
-      let spent = rising ? riseSpent : fallSpent;
-      if (at > midAt) spent = Number.isNaN(spent) ? at - midAt : spent + (at - midAt - spent) / 8;
-      if (rising) riseSpent = spent;
-      else fallSpent = spent;
-      const noise = noisePerBand * spent;
-      const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : 0;
+      // The slope is half the band over the time from mid to the switching point (a step between two samples would hold more
+      // noise than slope on a gentle flank); the former comes late, and the latter early, where they are crossed repeatedly.
+      let perV = rising ? risePerV : fallPerV;
+      if (at > midAt && !(flags & edgeLate)) {
+        const farV = halfV - 2 * noiseV * lagOf(noiseStepV * perV);
+        const latest =
+          (at - midAt) / (farV > leastOfHalf * halfV ? farV : noiseV >= 0 ? leastOfHalf * halfV : halfV);
+        perV = Number.isNaN(perV) ? latest : perV + (latest - perV) / 8;
+      }
+      if (rising) risePerV = perV;
+      else fallPerV = perV;
+      const noise = noiseV * perV * spreadOf(noiseStepV * perV, oneCrossing);
+      // The line between two samples is no sine, and on a flank of one sample it says next to nothing.
+      const steep = 2 / (perV * swingV);
+      const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : (steep > 0.55 ? curved : bent) ** 2 * steep ** 4;
 
       const i = roomForEdge(edges);
       const midS = midAt / rateHz;
@@ -149,7 +193,7 @@ export class EdgeIntake {
         const tooth = log.count++ & log.mask;
         log.riseS[tooth] = midS - delayS;
         log.fallS[tooth] = log.peakV[tooth] = NaN;
-        log.troughV[tooth] = extremeV;
+        log.troughV[tooth] = isWhole ? extremeV : NaN;
         log.sigmaS[tooth] = queue.sigmaS[q]!;
         log.riseWayS[tooth] = (at - midAt) * periodS;
       } else if (log.count > log.unbrokenFrom) {
@@ -169,9 +213,10 @@ export class EdgeIntake {
     this.lastExtremeV = lastExtremeV;
     this.riseMidAt = riseMidAt;
     this.fallMidAt = fallMidAt;
-    this.riseSpent = riseSpent;
-    this.fallSpent = fallSpent;
+    this.risePerV = risePerV;
+    this.fallPerV = fallPerV;
     this.periodSamples = periodSamples;
+    this.typicalSamples = typicalSamples;
     this.delayS = delayS;
   }
 }

@@ -1,57 +1,87 @@
 /**
  * Finds the levels of a signal of which nothing is known yet, or whose known levels no longer fit: a zigzag of turning
- * points. A turning point counts once the signal has come back from it by `deltaV`, at least 14 noise sigmas (white noise
- * spans less than 13 even in 10^9 samples) and at least half the largest swing seen. Levels are taken as found once three
- * swings in a row are of one size (the smallest at least 0.6 of the largest). Nothing is decided from fewer.
+ * points. A turning point counts once the signal has come back from it by 12 noise sigmas (white noise spans that once in
+ * 10^8 samples, and it takes three such swings in a row) and by a fifth of the third largest swing seen, so that what is
+ * small beside the teeth does not crowd them out.
+ *
+ * Levels are taken as found once three swings in a row are of one size (the smallest at least 0.6 of the largest), where
+ * what is less than half the largest swing is no swing of its own; or once eight in a row are of one size, whatever was
+ * seen before: a single spike, or a step, is then not what the teeth are measured by. Nothing is decided from fewer.
  */
+import type { Levels } from '@/signal/levels';
+
 export type Hunter = {
   /** +1 looking for a peak, -1 for a trough, 0 for either. */
   heading: -1 | 0 | 1;
   highV: number;
   lowV: number;
-  largestV: number;
+  /** What the signal must come back by, at least; V. */
+  finestV: number;
   /** Swings are never judged against less than this, V: a share of the levels known before; 0 at the start. */
   leastV: number;
-  /** Last turning points, newest last. */
-  turns: Float64Array;
+  /** Levels known before, V; NaN at the start. */
+  knownLowV: number;
+  knownHighV: number;
+  /** Swings of one size that it takes to believe in less than these levels, on one side of their middle. */
+  manyAside: number;
+  /** Turning points, oldest first. */
+  readonly turns: Float64Array;
   turnCount: number;
-  lastTurnAt: number;
   found: boolean;
   foundLowV: number;
   foundHighV: number;
 };
 
-const minSigmas = 14;
+const minSigmas = 12;
 /** A swing below so many quanta may be one code toggling. */
 const minQuanta = 4;
 const alike = 0.6;
+const fewAlike = 3;
+const manyAlike = 8;
+const finestShare = 0.2;
+/** Rounding of doubles, and of a filter's: no swing. */
 const leastShare = 1e-9;
+const most = 64;
+/** What is less than this share of the levels known before, and no more than that outside of them. */
+const farSmaller = 0.6;
+const little = 0.1;
+
+const coarse = new Float64Array(most + 1);
+const swings = new Float64Array(3);
 
 export function createHunter(): Hunter {
   return {
     heading: 0,
     highV: -Infinity,
     lowV: Infinity,
-    largestV: 0,
-    leastV: 0,
-    turns: new Float64Array(4),
+    // Numbers begin as fractions: a field that was ever a whole number changes its layout later.
+    finestV: NaN,
+    leastV: NaN,
+    knownLowV: NaN,
+    knownHighV: NaN,
+    manyAside: 0,
+    turns: new Float64Array(most),
     turnCount: 0,
-    lastTurnAt: 0,
     found: false,
-    foundLowV: 0,
-    foundHighV: 0,
+    foundLowV: NaN,
+    foundHighV: NaN,
   };
 }
 
-/** @param leastV swings smaller than this are not taken for teeth. */
-export function startHunt(hunter: Hunter, at: number, leastV: number): void {
+/**
+ * @param leastV swings smaller than this are not taken for teeth.
+ * @param known levels known before. @param aside see `manyAside`.
+ */
+export function startHunt(hunter: Hunter, leastV: number, known: Levels, aside: number): void {
   hunter.heading = 0;
   hunter.highV = -Infinity;
   hunter.lowV = Infinity;
-  hunter.largestV = 2 * leastV;
+  hunter.finestV = 0;
   hunter.leastV = leastV;
+  hunter.knownLowV = known.lowV;
+  hunter.knownHighV = known.highV;
+  hunter.manyAside = aside;
   hunter.turnCount = 0;
-  hunter.lastTurnAt = at;
   hunter.found = false;
 }
 
@@ -61,9 +91,8 @@ export function swingFloorV(hunter: Hunter, noiseV: number, quantumV: number): n
 }
 
 /**
- * Takes `v[from..to]` (ends included; `v[j]` is sample `base + j` of the stream) until levels are found.
+ * Takes `v[from..to]` (ends included) until levels are found.
  * @param noiseV rms; NaN: not known, then nothing is decided.
- * @param patience samples without a turning point after which the largest swing seen is halved.
  * @returns index of the sample at which levels were found (`hunter.found`), else `to`.
  */
 export function hunt(
@@ -71,72 +100,125 @@ export function hunt(
   v: Float64Array,
   from: number,
   to: number,
-  base: number,
   noiseV: number,
   quantumV: number,
-  patience: number,
 ): number {
-  const floorV = Number.isNaN(noiseV)
-    ? Infinity
-    : Math.max(minSigmas * noiseV, minQuanta * quantumV, hunter.leastV);
-  let deltaV = Math.max(floorV, hunter.largestV / 2);
+  const floorV = swingFloorV(hunter, noiseV, quantumV);
+  let deltaV = Math.max(floorV, hunter.finestV);
   for (let j = from; j <= to; j++) {
     const x = v[j]!;
     if (x > hunter.highV) hunter.highV = x;
     if (x < hunter.lowV) hunter.lowV = x;
-    // A computed or digital signal has no noise at all: equal samples, and the rounding of a filter, are no swing.
-    if (
-      deltaV === 0 &&
-      hunter.highV - hunter.lowV <= leastShare * Math.max(Math.abs(hunter.highV), Math.abs(hunter.lowV))
-    )
-      continue;
-    if (hunter.heading >= 0 && hunter.highV - x >= deltaV) {
-      turn(hunter, hunter.highV, base + j);
-      hunter.heading = -1;
-      hunter.lowV = x;
-      deltaV = Math.max(floorV, hunter.largestV / 2);
-      if (settled(hunter)) return j;
-    } else if (hunter.heading <= 0 && x - hunter.lowV >= deltaV) {
-      turn(hunter, hunter.lowV, base + j);
-      hunter.heading = 1;
-      hunter.highV = x;
-      deltaV = Math.max(floorV, hunter.largestV / 2);
-      if (settled(hunter)) return j;
-    } else if (base + j - hunter.lastTurnAt >= patience) {
-      hunter.lastTurnAt = base + j;
-      hunter.largestV = Math.max(hunter.largestV / 2, 2 * hunter.leastV);
-      deltaV = Math.max(floorV, hunter.largestV / 2);
-    }
+    const isPeak = hunter.heading >= 0 && hunter.highV - x >= deltaV;
+    if (!isPeak && !(hunter.heading <= 0 && x - hunter.lowV >= deltaV)) continue;
+    // A computed or digital signal has no noise at all, so that deltaV is 0.
+    const backV = isPeak ? hunter.highV - x : x - hunter.lowV;
+    if (backV <= leastShare * Math.max(Math.abs(hunter.highV), Math.abs(hunter.lowV))) continue;
+    turn(hunter, isPeak ? hunter.highV : hunter.lowV);
+    hunter.heading = isPeak ? -1 : 1;
+    if (isPeak) hunter.lowV = x;
+    else hunter.highV = x;
+    deltaV = Math.max(floorV, hunter.finestV);
+    if (settled(hunter)) return j;
   }
   return to;
 }
 
-function turn(hunter: Hunter, value: number, at: number): void {
+function turn(hunter: Hunter, value: number): void {
   const { turns } = hunter;
-  if (hunter.turnCount > 0) {
-    const swing = Math.abs(value - turns[Math.min(hunter.turnCount, 4) - 1]!);
-    if (swing > hunter.largestV) hunter.largestV = swing;
+  if (hunter.turnCount === most) dropSmallest(hunter);
+  turns[hunter.turnCount++] = value;
+  // The third largest swing: one spike makes two.
+  swings.fill(0);
+  for (let i = 1; i < hunter.turnCount; i++) {
+    const swing = Math.abs(turns[i]! - turns[i - 1]!);
+    if (swing > swings[0]!) {
+      swings[2] = swings[1]!;
+      swings[1] = swings[0]!;
+      swings[0] = swing;
+    } else if (swing > swings[1]!) {
+      swings[2] = swings[1]!;
+      swings[1] = swing;
+    } else if (swing > swings[2]!) {
+      swings[2] = swing;
+    }
   }
-  if (hunter.turnCount < 4) {
-    turns[hunter.turnCount] = value;
-  } else {
-    turns.copyWithin(0, 1);
-    turns[3] = value;
-  }
-  hunter.turnCount++;
-  hunter.lastTurnAt = at;
+  hunter.finestV = finestShare * swings[2]!;
+}
+
+/** The pair of turning points that differ least goes; where it is the first or the last one, only that. */
+function dropSmallest(hunter: Hunter): void {
+  const { turns, turnCount } = hunter;
+  let at = 1;
+  for (let i = 2; i < turnCount; i++)
+    if (Math.abs(turns[i]! - turns[i - 1]!) < Math.abs(turns[at]! - turns[at - 1]!)) at = i;
+  const from = at === 1 ? 0 : at - 1;
+  const count = at === 1 || at === turnCount - 1 ? 1 : 2;
+  turns.copyWithin(from, from + count, turnCount);
+  hunter.turnCount -= count;
 }
 
 function settled(hunter: Hunter): boolean {
-  if (hunter.turnCount < 4) return false;
-  const [a, b, c, d] = hunter.turns as unknown as [number, number, number, number];
-  const first = Math.abs(a - b);
-  const second = Math.abs(b - c);
-  const third = Math.abs(c - d);
-  if (Math.min(first, second, third) < alike * Math.max(first, second, third)) return false;
-  hunter.found = true;
-  // The outermost of each kind: the first turning point may be no more than where the hunt began.
-  hunter.foundLowV = Math.min(a, b, c, d);
-  hunter.foundHighV = Math.max(a, b, c, d);
-  return true;
+  const { turns, turnCount } = hunter;
+  const count = coarsen(hunter, swings[0]! / 2);
+  if (areAlike(coarse, count, fewAlike)) take(hunter, coarse, count, fewAlike);
+  else if (areAlike(turns, turnCount, manyAlike)) take(hunter, turns, turnCount, manyAlike);
+  else return false;
+  hunter.found = !isAside(hunter) || areAlike(turns, turnCount, hunter.manyAside);
+  return hunter.found;
+}
+
+/**
+ * What was found is far smaller than the levels known before, within them, and clear of their middle: a shaft that shakes,
+ * with a tooth's top or a gap's bottom before the sensor, does that.
+ */
+function isAside({ foundLowV, foundHighV, knownLowV, knownHighV }: Hunter): boolean {
+  const knownV = knownHighV - knownLowV;
+  const middleV = (knownLowV + knownHighV) / 2;
+  const outsideV = Math.max(knownLowV - foundLowV, foundHighV - knownHighV);
+  return (
+    foundHighV - foundLowV < farSmaller * knownV &&
+    outsideV < little * knownV &&
+    (foundLowV > middleV || foundHighV < middleV)
+  );
+}
+
+/** Turning points of which each differs by `leastV` from the next, in `coarse`; @returns how many. */
+function coarsen({ turns, turnCount }: Hunter, leastV: number): number {
+  let count = 0;
+  let heading = 0;
+  coarse[0] = turns[0]!;
+  for (let i = 1; i < turnCount; i++) {
+    const step = turns[i]! - coarse[count]!;
+    if (heading * step > 0 || (heading === 0 && count === 0 && Math.abs(step) < leastV)) {
+      // Further on the same way; or nothing far enough from where the hunt began yet.
+      if (heading !== 0) coarse[count] = turns[i]!;
+    } else if (Math.abs(step) >= leastV) {
+      heading = Math.sign(step);
+      coarse[++count] = turns[i]!;
+    }
+  }
+  return count + 1;
+}
+
+function areAlike(points: Float64Array, count: number, swingCount: number): boolean {
+  if (count <= swingCount) return false;
+  let least = Infinity;
+  let largest = 0;
+  for (let i = count - swingCount; i < count; i++) {
+    const swing = Math.abs(points[i]! - points[i - 1]!);
+    if (swing < least) least = swing;
+    if (swing > largest) largest = swing;
+  }
+  return least >= alike * largest;
+}
+
+/** The outermost of the last four turning points: the first of all may be no more than where the hunt began. */
+function take(hunter: Hunter, points: Float64Array, count: number, swingCount: number): void {
+  hunter.foundLowV = Infinity;
+  hunter.foundHighV = -Infinity;
+  for (let i = count - swingCount - 1; i < count; i++) {
+    hunter.foundLowV = Math.min(hunter.foundLowV, points[i]!);
+    hunter.foundHighV = Math.max(hunter.foundHighV, points[i]!);
+  }
 }

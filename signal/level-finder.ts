@@ -1,32 +1,52 @@
 /**
- * Where the levels of a fitted band come from: a hunt at the start, of which the signal is remembered so that its edges
- * are found afterwards, and a hunt beside the old band where nothing has come for long.
+ * Where the levels of a band come from: a hunt at the start, of which the signal is remembered so that its edges are found
+ * afterwards, and a hunt beside the old band where nothing has come for long. A fixed band stays; what the hunt finds
+ * beside it is told for the margin.
  */
-import { runDetector } from '@/signal/detector';
 import { forgetState, zones } from '@/signal/detector-state';
-import type { Detector, DetectorSink } from '@/signal/detector-state';
+import type { Detector } from '@/signal/detector-state';
+import { leastToothV } from '@/signal/eye';
 import { createHunter, hunt, startHunt, swingFloorV } from '@/signal/hunter';
 import type { Levels } from '@/signal/levels';
+import type { Past } from '@/signal/past';
 import { Remembered } from '@/signal/remembered';
 
 /** Whom the finder works for. */
-export type FinderHost = DetectorSink & {
+export type FinderHost = {
   /** As of the last tick, V; NaN: not known. */
   readonly noiseV: number;
-  /** The detector holds edges: they are to be taken, and thresholds fitted anew. */
-  takeEdges(): void;
-  /** New levels: thresholds are to be set from them as of sample `at`. */
-  fit(at: number): void;
+  readonly quantumV: number;
+  /** The band stays where it is. */
+  readonly isFixed: boolean;
+  /** The shaft may turn to and fro. */
+  readonly isRing: boolean;
+  readonly edgeCount: number;
+  readonly lastEdgeAt: number;
+  /** Runs the band over `v[from..to]` and takes what edges it makes. @returns the first index not scanned. */
+  scan(v: Float64Array, from: number, to: number, base: number, past: Past | null): number;
+  /** New levels were found: thresholds are to be set from them, and from what is remembered, as of sample `at`. */
+  adopt(at: number, remembered: Remembered | null): void;
+  /** A fixed band makes nothing of a swing between these, V. */
+  notCounted(lowV: number, highV: number): void;
+  /** Edges that passed since the last one may still be made, now that sample `at` has come. */
+  mayFindLate(at: number): boolean;
   /** So long without an edge, and the levels are looked at again, samples. */
   quietSamples(): number;
 };
 
 const quietS = 1;
+/** Small swings aside of the known ones' middle that are believed; a shaft that may shake takes more. */
+const many = 8;
+const manyOfRing = 24;
+/** Samples by which remembering begins before the last edge is out of reach. */
+const spare = 8;
 
 export class LevelFinder {
-  hunting = false;
   /** Edges of what was remembered are being found. */
   replaying = false;
+  private hunting = false;
+  private starting = false;
+  private huntAt = Infinity;
   private readonly hunter = createHunter();
   private readonly detector: Detector;
   private readonly levels: Levels;
@@ -41,88 +61,135 @@ export class LevelFinder {
     this.host = host;
   }
 
-  /** Sample up to which nothing is left to be found; NaN where nothing is being remembered. */
+  /** `run` is to be called instead of the band's own scan. */
+  get isBusy(): boolean {
+    return this.hunting || this.remembered !== null;
+  }
+
+  /** Sample up to which nothing is left to be found; NaN where nothing is being remembered that must come first. */
   get decidedUpTo(): number {
-    return this.remembered ? this.remembered.base : NaN;
+    return this.starting && this.remembered ? this.remembered.base : NaN;
   }
 
   /** Nothing is known: the hunt begins with sample `at`. */
   startFromNothing(at: number): void {
-    this.hunting = true;
-    this.remembered = new Remembered(this.rateHz, at - 1);
-    startHunt(this.hunter, at, 0);
-  }
-
-  /** Levels are known, but nothing has reached them for long. */
-  startAgain(at: number): void {
-    this.hunting = true;
-    startHunt(this.hunter, at, (this.levels.highV - this.levels.lowV) / 4);
+    this.hunting = this.starting = true;
+    this.remembered = this.host.isFixed ? null : new Remembered(this.rateHz, at - 1);
+    startHunt(this.hunter, this.leastSwingV(), this.levels, this.host.isRing ? manyOfRing : many);
   }
 
   /** Samples were lost: `at` is the next one. */
   gap(at: number): void {
     if (Number.isNaN(this.levels.lowV)) {
       this.startFromNothing(at);
-    } else {
-      this.hunting = false;
-      this.detector.pauseAt = at + 2 * this.rateHz;
+      return;
     }
+    this.hunting = false;
+    this.remembered = null;
+    this.waitFrom(at, 2 * this.rateHz, Infinity);
+  }
+
+  /** An edge was taken: from here on it is waited for the next one. */
+  wait(past: Past | null): void {
+    if (this.replaying) this.detector.pauseAt = Infinity;
+    else this.waitFrom(this.host.lastEdgeAt, this.host.quietSamples(), past ? past.reach : Infinity);
+  }
+
+  private waitFrom(at: number, quiet: number, reach: number): void {
+    this.huntAt = Math.ceil(at + quiet);
+    this.detector.pauseAt = Math.min(this.huntAt, Math.ceil(at + reach) - spare);
+  }
+
+  /** The band's scan has paused before sample `at`: the next edge is long in coming. */
+  pause(at: number, past: Past | null): void {
+    const from = Math.floor(this.host.lastEdgeAt) + 1;
+    if (past && !this.host.isFixed && from >= past.from && at - from < past.reach) {
+      this.remembered = new Remembered(this.rateHz, from - 1);
+      if (!this.remembered.keep(past.v, from - past.base, at - 1 - past.base)) this.remembered = null;
+    }
+    this.detector.pauseAt = this.huntAt;
+    if (at >= this.huntAt) this.startAgain();
+  }
+
+  private startAgain(): void {
+    this.hunting = true;
+    startHunt(this.hunter, this.leastSwingV(), this.levels, this.host.isRing ? manyOfRing : many);
+  }
+
+  /** What is small beside the teeth, or beside a band as typed, is none. */
+  private leastSwingV(): number {
+    const { levels, detector, host } = this;
+    const ofTeeth = leastToothV(levels.highV - levels.lowV, host.noiseV) || 0;
+    return host.isFixed ? Math.max(ofTeeth, (detector.operateV - detector.releaseV) / 2) : ofTeeth;
   }
 
   /** Where nothing has swung yet for a second, no edge can be found there later: what was remembered of it may go. */
-  forgetQuiet(nextAt: number, quantumV: number): void {
-    const { hunter, remembered } = this;
-    if (!remembered || remembered.count < quietS * this.rateHz || hunter.turnCount > 0) return;
-    if (hunter.highV - hunter.lowV <= swingFloorV(hunter, this.host.noiseV, quantumV))
+  forgetQuiet(nextAt: number): void {
+    const { hunter, remembered, host } = this;
+    if (!remembered || !this.starting || remembered.count < quietS * this.rateHz || hunter.turnCount > 0)
+      return;
+    if (hunter.highV - hunter.lowV <= swingFloorV(hunter, host.noiseV, host.quantumV))
       remembered.restart(nextAt - 1);
   }
 
   /**
-   * Hunting over `v[from..to]` and, where levels are known, the old band side by side; an accepted edge ends the hunt.
+   * Takes `v[from..to]`: hunts, remembers, and runs the old band where there is one; an edge of it ends both.
    * @returns the first index not taken.
    */
-  huntOn(v: Float64Array, from: number, to: number, base: number, quantumV: number): number {
+  run(v: Float64Array, from: number, to: number, base: number, past: Past | null): number {
     const { hunter, detector, host } = this;
-    const patience = Math.max(64, 2 * this.rateHz);
-    const stop = hunt(hunter, v, from, to, base, host.noiseV, quantumV, patience);
-    const found = hunter.found;
-    if (!Number.isNaN(detector.operateV)) {
-      detector.pauseAt = Infinity;
-      const next = runDetector(detector, v, from, stop, base, host);
-      if (detector.edges.count > 0) {
-        host.takeEdges();
-        this.hunting = false;
-        return next;
+    let stop = to;
+    if (this.hunting) {
+      stop = hunt(hunter, v, from, to, host.noiseV, host.quantumV);
+    } else {
+      stop = Math.min(to, this.huntAt - base - 1);
+      if (stop < from) {
+        this.startAgain();
+        return from;
       }
     }
     if (this.remembered && !this.remembered.keep(v, from, stop)) this.remembered = null;
-    if (found) this.adopt(v, stop, base);
+    if (!Number.isNaN(detector.operateV)) {
+      const { edgeCount } = host;
+      detector.pauseAt = Infinity;
+      const next = host.scan(v, from, stop, base, this.remembered ?? past);
+      if (host.edgeCount > edgeCount) {
+        this.hunting = this.starting = false;
+        this.remembered = null;
+        return next;
+      }
+    }
+    if (this.hunting && hunter.found) this.adopt(v, stop, base);
+    if (!this.isBusy) detector.pauseAt = this.huntAt;
     return stop + 1;
   }
 
   private adopt(v: Float64Array, at: number, base: number): void {
-    const { hunter, detector, levels, host, remembered } = this;
-    this.hunting = false;
+    const { hunter, detector, levels, host, remembered, starting } = this;
+    if (host.isFixed) {
+      host.notCounted(hunter.foundLowV, hunter.foundHighV);
+      startHunt(hunter, this.leastSwingV(), levels, many);
+      return;
+    }
+    this.hunting = this.starting = false;
+    this.remembered = null;
     levels.lowV = hunter.foundLowV;
     levels.highV = hunter.foundHighV;
     // Nothing is known of the flanks yet: begin wide, and let whole teeth narrow it.
     levels.wobbleV = (levels.highV - levels.lowV) / 4;
     forgetState(detector);
-    if (remembered) {
-      host.fit(remembered.base + 1);
+    if (remembered && (starting || host.mayFindLate(base + at))) {
+      host.adopt(remembered.base + 1, remembered);
       this.replaying = true;
       detector.pauseAt = Infinity;
-      for (let j = 1; j <= remembered.count;) {
-        j = runDetector(detector, remembered.v, j, remembered.count, remembered.base, host);
-        if (detector.edges.count > 0) host.takeEdges();
-      }
+      for (let j = 1; j <= remembered.count;)
+        j = host.scan(remembered.v, j, remembered.count, remembered.base, remembered);
       this.replaying = false;
-      this.remembered = null;
     } else {
-      host.fit(base + at);
+      host.adopt(base + at, remembered);
       this.placeState(v[at]!);
     }
-    detector.pauseAt = Math.ceil(base + at + host.quietSamples());
+    this.waitFrom(base + at, host.quietSamples(), Infinity);
   }
 
   /** The hunter has seen on which side of the new band the signal was last. */

@@ -8,6 +8,7 @@
  * next. Peaks that are not counted move nothing, so levels stay where they are when the shaft stops.
  */
 import type { Band, BandLevels } from '@/signal/model';
+import { leastSigmas } from '@/signal/eye';
 
 export type Levels = {
   /** NaN: not known yet. */
@@ -41,31 +42,38 @@ export function followed(level: number, value: number, swingV: number, toothV: n
 }
 
 /**
- * Thresholds of a fitted band: the fractions of the swing, widened about their centre by noise, to half the swing at most.
- * Noise is the larger of two: ten sigmas of its white part, and one and a half times what the signal came back by on its
- * flanks lately, which sees hum, bumps and bounce too, of whatever colour. Ten sigmas keep a shaft that stops in the very
- * middle of the band five sigmas away from either point (Rice 1944: noise of the bandwidth f0 crosses there 3.7e-6 f0
- * times a second).
- * @param noiseV rms of the filtered signal's white noise; NaN: not known.
+ * Thresholds of a fitted band: the fractions of the eye (the lowest peak against the highest trough of the last turn),
+ * widened about their centre by noise, to half the eye at most. Noise is the larger of two: ten sigmas of its white part,
+ * and one and a half times what the signal came back by on its flanks lately, which sees hum, bumps and bounce too, of
+ * whatever colour. Ten sigmas keep a shaft that stops in the very middle of the band five sigmas away from either point
+ * (Rice 1944: noise of the bandwidth f0 crosses there 3.7e-6 f0 times a second). Teeth too weak for the noise do not
+ * narrow the eye: it then reaches towards the usual levels.
+ * @param noiseV rms of the filtered signal's white noise; NaN: not known. @param fitted written.
  */
-export function fittedThresholds(
+export function fitThresholds(
   levels: Levels,
+  eye: { readonly lowV: number; readonly highV: number },
   fractions: Extract<Band, { mode: 'fitted' }>,
   noiseV: number,
-): BandLevels {
-  const swingV = levels.highV - levels.lowV;
-  const narrowest = (fractions.operateFraction - fractions.releaseFraction) * swingV;
-  const noisy = Math.max(Number.isNaN(noiseV) ? 0 : 10 * noiseV, 1.5 * levels.wobbleV);
-  const wanted = Math.max(narrowest, Math.min(noisy, swingV / 2));
-  const centreV = levels.lowV + ((fractions.operateFraction + fractions.releaseFraction) / 2) * swingV;
-  return {
-    operateV: Math.min(
-      centreV + wanted / 2,
-      levels.lowV + Math.max(0.95, fractions.operateFraction) * swingV,
-    ),
-    releaseV: Math.max(
-      centreV - wanted / 2,
-      levels.lowV + Math.min(0.05, fractions.releaseFraction) * swingV,
-    ),
-  };
+  fitted: BandLevels,
+): void {
+  const { operateFraction, releaseFraction } = fractions;
+  const sigmaV = Number.isNaN(noiseV) ? 0 : noiseV;
+  let { lowV, highV } = eye;
+  const lackV = leastSigmas * sigmaV - (highV - lowV);
+  if (lackV > 0) {
+    const aboveV = Math.max(0, levels.highV - highV);
+    const belowV = Math.max(0, lowV - levels.lowV);
+    const share = Math.min(1, lackV / (aboveV + belowV));
+    if (share > 0) {
+      highV += share * aboveV;
+      lowV -= share * belowV;
+    }
+  }
+  const eyeV = highV - lowV;
+  const noisy = Math.max(10 * sigmaV, 1.5 * levels.wobbleV);
+  const wanted = Math.max((operateFraction - releaseFraction) * eyeV, Math.min(noisy, eyeV / 2));
+  const centreV = lowV + ((operateFraction + releaseFraction) / 2) * eyeV;
+  fitted.operateV = Math.min(centreV + wanted / 2, lowV + Math.max(0.95, operateFraction) * eyeV);
+  fitted.releaseV = Math.max(centreV - wanted / 2, lowV + Math.min(0.05, releaseFraction) * eyeV);
 }

@@ -1,20 +1,33 @@
 /**
  * Noise of the raw signal, from short bursts of neighbouring samples, so that it costs next to nothing.
  *
- * A burst's fourth differences (1 -4 6 -4 1, whose white-noise gain is sqrt(70)) hold almost nothing of a signal with
- * more than ten samples a period. Their median size over 0.6745 is robust against the few that touch a flank; the
- * estimate is the median of the last bursts. It is the white part of the noise only: hum and drift are not in it.
+ * A burst's sixth differences (1 -6 15 -20 15 -6 1, whose white-noise gain is sqrt(924)) hold almost nothing of a sine with
+ * ten samples a period or more (less than 0.2 % of its amplitude). Their median size over 0.6745 is robust against the few
+ * that touch a flank; the estimate is the median of the last bursts, within 8 % rms. It is the white part of the noise
+ * only: hum and drift are not in it. Where a switch steps at every few samples, first differences find room between the
+ * steps.
  *
  * Nothing below the quantum can be seen: the estimate never falls below quantum / sqrt(12). For codes the quantum is
  * one code, for floats the smallest step seen between neighbours.
  */
 export const burstLength = 24;
-const differences = burstLength - 4;
-const kept = 25;
+const differences = burstLength - 6;
+const kept = 41;
 /** An 8-bit converter of 5 V. */
 const coarsestQuantumV = 0.02;
-/** Median of |N(0,1)|, and the small-sample bias of the median of 20 overlapping differences (by simulation). */
-const medianOfUnit = 0.6745 * 1.007;
+/** Median of |N(0,1)|, and the small-sample bias of the median of 18 overlapping differences (by simulation). */
+const medianOfUnit = 0.6745 * 1.013;
+const whiteGain = Math.sqrt(924);
+const closeDifferences = burstLength - 2;
+const closeGain = Math.SQRT2;
+/** A burst of noise alone spans less than so many of its sigmas; steps that fill the differences less still. */
+const mostOfNoise = 8;
+const farLess = 0.5;
+/** Of a burst at a rail: samples on it, stretches off it, and how long these are on average at most, samples. */
+const fewestAtRail = 6;
+const fewestRuns = 2;
+const longestRun = 2.5;
+const mostQuanta = 3;
 
 export type NoiseMeter = {
   burst: Float64Array;
@@ -33,7 +46,7 @@ export function createNoiseMeter(): NoiseMeter {
   return {
     burst: new Float64Array(burstLength),
     filled: 0,
-    sizes: new Float64Array(differences),
+    sizes: new Float64Array(closeDifferences),
     recent: new Float64Array(kept),
     sorted: new Float64Array(kept),
     seen: 0,
@@ -51,16 +64,66 @@ export function breakBurst(meter: NoiseMeter): void {
 export function endBurst(meter: NoiseMeter): void {
   meter.filled = 0;
   const { burst, sizes } = meter;
+  let least = burst[0]!;
+  let largest = least;
+  for (let i = 1; i < burstLength; i++) {
+    const x = burst[i]!;
+    if (x < least) least = x;
+    else if (x > largest) largest = x;
+  }
   for (let i = 0; i < differences; i++) {
-    sizes[i] = Math.abs(
-      burst[i]! - 4 * burst[i + 1]! + 6 * burst[i + 2]! - 4 * burst[i + 3]! + burst[i + 4]!,
-    );
+    const ends = burst[i]! + burst[i + 6]!;
+    const inner = burst[i + 1]! + burst[i + 5]!;
+    const near = burst[i + 2]! + burst[i + 4]!;
+    sizes[i] = Math.abs(ends - 6 * inner + 15 * near - 20 * burst[i + 3]!);
   }
   if (!meter.quantumFixed) learnQuantum(meter);
-  sortFew(sizes, differences);
-  const median = (sizes[differences / 2 - 1]! + sizes[differences / 2]!) / 2;
-  meter.recent[meter.seen % kept] = median / (medianOfUnit * Math.sqrt(70));
+  let sigma = medianOf(sizes, differences) / (medianOfUnit * whiteGain);
+  // Nothing but noise, or steps of a switch too near each other for the differences to pass between them.
+  if (largest - least < mostOfNoise * sigma) {
+    for (let i = 0; i < closeDifferences; i++) sizes[i] = Math.abs(burst[i + 1]! - burst[i]!);
+    const close = medianOf(sizes, closeDifferences) / (medianOfUnit * closeGain);
+    if (close < farLess * sigma) sigma = close;
+  }
+  sigma = Math.max(
+    sigma,
+    clippedNoiseV(burst, least, meter.quantumV),
+    clippedNoiseV(burst, largest, meter.quantumV),
+  );
+  const at = meter.seen % kept;
+  replaceSorted(meter.sorted, Math.min(meter.seen, kept), meter.recent[at]!, sigma);
+  meter.recent[at] = sigma;
   meter.seen++;
+}
+
+/**
+ * Noise that a rail cuts off on one side, so that many samples are all the same: the rms of what comes out on the other
+ * side. It goes to and fro from sample to sample, which a tooth that clips does not. @returns 0 where there is none.
+ */
+function clippedNoiseV(burst: Float64Array, railV: number, quantumV: number): number {
+  let outside = 0;
+  let runs = 0;
+  let squares = 0;
+  let wasOutside = false;
+  for (let i = 0; i < burstLength; i++) {
+    const farV = burst[i]! - railV;
+    const isOutside = farV !== 0;
+    if (isOutside) {
+      outside++;
+      squares += farV * farV;
+      if (!wasOutside) runs++;
+    }
+    wasOutside = isOutside;
+  }
+  if (burstLength - outside < fewestAtRail || runs < fewestRuns || outside > longestRun * runs) return 0;
+  const rmsV = Math.sqrt(squares / outside);
+  // A code that toggles is at both of its ends most of the time.
+  return rmsV > mostQuanta * quantumV ? rmsV : 0;
+}
+
+function medianOf(values: Float64Array, count: number): number {
+  sortFew(values, count);
+  return (values[count / 2 - 1]! + values[count / 2]!) / 2;
 }
 
 function learnQuantum(meter: NoiseMeter): void {
@@ -71,6 +134,18 @@ function learnQuantum(meter: NoiseMeter): void {
     if (step <= 1e-9 * Math.abs(burst[i]!) || step > coarsestQuantumV) continue;
     if (meter.quantumV === 0 || step < meter.quantumV) meter.quantumV = step;
   }
+}
+
+/** Of `count` sorted numbers `old` goes, where there are as many as can be, and `fresh` takes its place. */
+function replaceSorted(sorted: Float64Array, count: number, old: number, fresh: number): void {
+  let j = count;
+  if (count === kept) {
+    j = 0;
+    while (sorted[j]! < old) j++;
+    for (; j + 1 < kept && sorted[j + 1]! < fresh; j++) sorted[j] = sorted[j + 1]!;
+  }
+  for (; j > 0 && sorted[j - 1]! > fresh; j--) sorted[j] = sorted[j - 1]!;
+  sorted[j] = fresh;
 }
 
 /** Insertion sort: for a couple of dozen numbers ten times faster than the built-in one. */
@@ -88,8 +163,6 @@ export function rawNoiseV(meter: NoiseMeter): number {
   const count = Math.min(meter.seen, kept);
   if (count === 0) return NaN;
   const { sorted } = meter;
-  for (let i = 0; i < count; i++) sorted[i] = meter.recent[i]!;
-  sortFew(sorted, count);
   const middle = (sorted[(count - 1) >> 1]! + sorted[count >> 1]!) / 2;
   return Math.max(middle, meter.quantumV / Math.sqrt(12));
 }

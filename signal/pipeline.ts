@@ -10,6 +10,7 @@ import { mergeEdges } from '@/signal/edge-merge';
 import type { Lane } from '@/signal/edge-merge';
 import { designFilters } from '@/signal/filter-design';
 import { FindingsDesk } from '@/signal/findings/desk';
+import { noiseCorrelation } from '@/signal/flank-error';
 import { IndexWatch } from '@/signal/index-watch';
 import type { Channel, Result, SampleArray, Settings } from '@/signal/model';
 import { Motion } from '@/signal/motion';
@@ -60,7 +61,9 @@ class SignalPipeline implements Pipeline {
     const designed = designFilters(settings.filter, rateHz);
     // Filtered both ways, nothing is left to filter or to be taken off, and noise has passed the filter twice.
     const sections = bothWays ? [] : designed;
-    const gainOfNoise = noiseGain(bothWays ? [...designed, ...designed] : designed, rateHz);
+    const passed = bothWays ? [...designed, ...designed] : designed;
+    const gainOfNoise = noiseGain(passed, rateHz);
+    const correlation = noiseCorrelation(passed, rateHz);
     const memory = memorySamples(sections);
     const bands: PipelineOutput['bands'] = [];
     const speed = createSpeedColumns();
@@ -72,6 +75,7 @@ class SignalPipeline implements Pipeline {
     this.nextAt = startIndex;
     this.tickSamples = samplesPerTick(rateHz);
     const needed: readonly string[] = neededRoles(rig);
+    const isAlone = needed.length === 1 && rig.channels.every(({ role }) => role !== 'Z');
     this.paths = channels.map((name) => {
       const channel = rig.channels.find((own) => own.name === name) as Channel;
       return new ChannelPath({
@@ -79,11 +83,13 @@ class SignalPipeline implements Pipeline {
         band: settings.band,
         sections,
         gainOfNoise,
+        correlation,
         rateHz,
         startIndex,
         holdoffS: settings.holdoffS,
         missingPulses: needed.includes(channel.role) ? missingPulses : 0,
         teethPerTurn: channel.role === 'Z' ? 1 : Math.max(1, pulsesPerTurn - missingPulses),
+        findLateS: isAlone ? settings.speed.stoppedAfterS : 0,
         bands,
       });
     });

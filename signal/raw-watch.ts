@@ -9,6 +9,9 @@ import type { NoiseMeter } from '@/signal/noise';
 import { breakRails, createRailMeter, leaveRails, touchesRails, watchRails } from '@/signal/rail-meter';
 import type { RailMeter } from '@/signal/rail-meter';
 import { holdsCodes, scaleOf } from '@/signal/scale';
+import { samplesPerTick } from '@/signal/ticks';
+
+const burstsOfStart = 12;
 
 export class RawWatch {
   readonly noise: NoiseMeter = createNoiseMeter();
@@ -19,7 +22,9 @@ export class RawWatch {
   private readonly channel: Channel;
   private readonly rateHz: number;
   private readonly stride: number;
-  private readonly burstEvery: number;
+  /** A burst begins at every multiple of so many samples. */
+  private burstEvery: number;
+  private readonly burstEveryLater: number;
   /** Constructor of the arrays that come, and what turns their samples into volts. */
   private kind: unknown = null;
   private scale = { offset: 0, factor: 1 };
@@ -30,7 +35,12 @@ export class RawWatch {
     this.channel = channel;
     this.rateHz = rateHz;
     this.stride = 2 ** Math.min(5, Math.max(0, Math.floor(Math.log2(rateHz / 250))));
-    this.burstEvery = 2 ** Math.floor(Math.log2(Math.min(4096, Math.max(32, rateHz / 8))));
+    this.burstEveryLater = powerOfTwo(Math.min(4096, Math.max(32, rateHz / 8)));
+    // Until the first tick there must be enough of them to judge by.
+    this.burstEvery = Math.min(
+      this.burstEveryLater,
+      powerOfTwo(Math.max(32, samplesPerTick(rateHz) / burstsOfStart)),
+    );
   }
 
   restartSpread(): void {
@@ -81,8 +91,8 @@ export class RawWatch {
   }
 
   private feedNoise(array: SampleArray, from: number, to: number, at: number): void {
-    const { burstEvery, noise, scale } = this;
-    let phase = at % burstEvery;
+    const { noise, scale } = this;
+    let phase = at % this.burstEvery;
     let i = from;
     while (i < to) {
       // A burst whose begin was not seen is left out.
@@ -91,9 +101,15 @@ export class RawWatch {
         if (phase === 0) noise.filled = 0;
         phase += end - i;
         for (; i < end; i++) noise.burst[noise.filled++] = (array[i]! - scale.offset) * scale.factor;
-        if (noise.filled === burstLength) endBurst(noise);
+        if (noise.filled === burstLength) {
+          endBurst(noise);
+          if (noise.seen === burstsOfStart) {
+            this.burstEvery = this.burstEveryLater;
+            phase = (at + (i - from)) % this.burstEvery;
+          }
+        }
       } else {
-        i += burstEvery - phase;
+        i += this.burstEvery - phase;
         phase = 0;
       }
     }
@@ -123,4 +139,8 @@ function endsOf(array: SampleArray, first: number, to: number, stride: number, e
   }
   ends[0] = least;
   ends[1] = most;
+}
+
+function powerOfTwo(value: number): number {
+  return 2 ** Math.floor(Math.log2(value));
 }

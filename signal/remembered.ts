@@ -1,8 +1,11 @@
+import type { Past } from '@/signal/past';
+
 /** Signal kept while levels are sought for the first time, so that its edges are found afterwards: 5 s at most. */
 const mostS = 5;
 const most = 65_536;
 
-export class Remembered {
+export class Remembered implements Past {
+  readonly reach = Infinity;
   /** `v[0]` is the sample before the first that is kept, `v[j]` sample `base + j` of the stream. */
   v = new Float64Array(256);
   count = 0;
@@ -12,6 +15,10 @@ export class Remembered {
   constructor(rateHz: number, base: number) {
     this.base = base;
     this.most = Math.min(most, Math.max(256, Math.ceil(mostS * rateHz)));
+  }
+
+  get from(): number {
+    return this.base + 1;
   }
 
   restart(base: number): void {
