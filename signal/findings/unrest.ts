@@ -92,7 +92,11 @@ function judgeChanges(unrest: Unrest, stepS: number): void {
 function shortenGap(whole: number): void {
   const least = Math.sqrt(whole);
   for (let k = 1; k + 1 < unrestIntervals; k++) {
-    if (!(intervals[k]! > least * intervals[k - 1]! && intervals[k]! > least * intervals[k + 1]!)) continue;
+    const before = intervals[k - 1]!;
+    const after = intervals[k + 1]!;
+    // One still longer is a halt.
+    if (!(intervals[k]! > least * Math.max(before, after))) continue;
+    if (intervals[k]! > 1.5 * whole * Math.max(before, after)) continue;
     intervals[k] = intervals[k]! / whole;
     return;
   }
