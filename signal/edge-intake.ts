@@ -175,7 +175,8 @@ export class EdgeIntake {
       const noise = noiseV * perV * spreadOf(noiseStepV * perV, oneCrossing);
       // The line between two samples is no sine, and on a flank of one sample it says next to nothing.
       const steep = 2 / (perV * swingV);
-      const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : (steep > 0.55 ? curved : bent) ** 2 * steep ** 4;
+      const off = (steep > 0.55 ? curved : bent) * steep * steep;
+      const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : off * off;
 
       const i = roomForEdge(edges);
       const midS = midAt / rateHz;
