@@ -7,6 +7,8 @@ import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import type { ToothLog } from '@/signal/tooth-log';
 
+/** A floating line makes an edge now and then, and is no sound channel for that, s. */
+const shortHoldS = 0.5;
 /** So many edges of another channel without one of its own. */
 const otherEdgesNeeded = 12;
 /** So many turns of the shaft, and of its wheel, without an index. */
@@ -42,7 +44,7 @@ export class DeadChannelRule implements FindingRule {
   constructor(context: RuleContext, references: RunReference[]) {
     const { paths } = context;
     this.context = context;
-    this.latches = paths.map(() => new FindingLatch(0));
+    this.latches = paths.map(() => new FindingLatch(shortHoldS));
     this.references = references;
     this.marks = paths.map(() => paths.map(() => 0));
     this.ownEdges = paths.map(() => 0);

@@ -47,7 +47,7 @@ export class DutyShiftRule implements FindingRule {
       // An index mark has no second state to speak of.
       if (this.means[index]!.look(nowS) && paths[index]!.channel.role !== 'Z')
         this.judge(paths[index]!, index, nowS);
-      this.latches[index]!.rest(nowS);
+      this.latches[index]!.rest(nowS, this.means[index]!.looksS);
     }
   }
 

@@ -44,7 +44,7 @@ export class OffsetDriftRule implements FindingRule {
     const { paths } = this.context;
     for (let index = 0; index < paths.length; index++) {
       if (this.means[index]!.look(nowS)) this.judge(paths[index]!, index, nowS);
-      this.latches[index]!.rest(nowS);
+      this.latches[index]!.rest(nowS, this.means[index]!.looksS);
     }
   }
 

@@ -64,9 +64,12 @@ export class FindingLatch {
       : { ...finding, to: null };
   }
 
-  /** @returns true where it was closed by this call. */
-  rest(nowS: number): boolean {
-    if (!this.open || nowS - this.lastSeenS < this.holdS) return false;
+  /**
+   * @param looksS time between two looks at the cause, where that can be long: the next one is waited for.
+   * @returns true where it was closed by this call.
+   */
+  rest(nowS: number, looksS = 0): boolean {
+    if (!this.open || nowS - this.lastSeenS < Math.max(this.holdS, 1.5 * looksS)) return false;
     this.closed.push({ ...this.open, to: Math.max(this.open.from, this.lastSeenS) });
     this.open = null;
     return true;

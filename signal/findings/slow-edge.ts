@@ -48,7 +48,7 @@ export class SlowEdgeRule implements FindingRule {
     const { paths } = this.context;
     for (let index = 0; index < paths.length; index++) {
       if (this.means[index]!.look(nowS)) this.judge(paths[index]!, index, nowS);
-      this.latches[index]!.rest(nowS);
+      this.latches[index]!.rest(nowS, this.means[index]!.looksS);
     }
   }
 

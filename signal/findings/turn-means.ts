@@ -9,6 +9,8 @@ import { readableFrom } from '@/signal/tooth-log';
 
 /** Not more often than this, s (ticks are a tenth of a second apart at most). */
 const everyS = 0.45;
+/** Looks further apart than this have a stop between them, s. */
+const longestS = 30;
 const fewestTeeth = 4;
 const bandShare = 0.02;
 const homeShare = 0.2;
@@ -57,6 +59,8 @@ export class TurnMeans {
   private isNew = false;
   private beforeHz = NaN;
   private beforeMidV = NaN;
+  /** Between the last two looks, s; 0 before the second. */
+  looksS = 0;
   private largestV = 0;
 
   constructor(context: RuleContext, path: ChannelPath) {
@@ -99,6 +103,8 @@ export class TurnMeans {
     const end = log.count - 1;
     const teeth = this.wanted(end - begin);
     if (teeth === 0) return false;
+    const sinceS = nowS - this.lookedS;
+    this.looksS = sinceS < longestS ? sinceS : 0;
     this.lookedS = nowS;
     this.first = end - teeth;
     this.end = end;

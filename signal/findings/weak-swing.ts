@@ -60,7 +60,7 @@ export class WeakSwingRule implements FindingRule {
       if (this.means[index]!.look(nowS)) this.judge(paths[index]!, index, nowS);
       const sight = this.short[index]!.look(nowS);
       if (sight !== undefined) this.count(index, sight, nowS, sight?.sure === false);
-      latch.rest(nowS);
+      latch.rest(nowS, this.means[index]!.looksS);
     }
   }
 
