@@ -37,18 +37,18 @@ describe('the face of the wheel', () => {
   ];
   it.each(ramps)('shows where the teeth stand on %s', (_name, timeAt) => {
     const face = faceOf(bent, 14, timeAt);
-    expect(face.learntTurns).toBeGreaterThanOrEqual(10);
+    expect(face.spacing.turns).toBeGreaterThanOrEqual(10);
     bent.forEach((place, k) => {
-      expect(Math.abs(face.spacingDeg[k]! - 45 * (place - k - meanOff))).toBeLessThan(0.02);
+      expect(Math.abs(face.spacing.spacingDeg[k]! - 45 * (place - k - meanOff))).toBeLessThan(0.02);
       const step = place - k - (k > 0 ? bent[k - 1]! - (k - 1) : bent[7]! - 7);
-      expect(Math.abs(face.step[k]! - step)).toBeLessThan(0.0005);
+      expect(Math.abs(face.spacing.step[k]! - step)).toBeLessThan(0.0005);
     });
   });
 
   it('learns nothing from turns of a shaft that changes its speed by more than a tenth in each', () => {
     const face = faceOf(bent, 14, (turns) => Math.expm1(turns / 8));
     expect(face.turns).toBe(13);
-    expect(face.learntTurns).toBe(0);
+    expect(face.spacing.turns).toBe(0);
   });
 
   it('keeps mean and spread of swing and spacing', () => {
@@ -65,7 +65,7 @@ describe('the face of the wheel', () => {
         (turns) => turns / 10 + (0.01 / 80) * random(),
         (k) => 2 + k / 10 + 0.05 * random(),
       );
-      stepVariance += face.stepVariance[2]! / runs;
+      stepVariance += face.spacing.stepVariance[2]! / runs;
       swing += face.swingV[4]! / runs;
       swingVariance += face.swingVariance[4]! / runs;
     }

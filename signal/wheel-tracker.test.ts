@@ -218,7 +218,7 @@ describe('the tracker of the wheel', () => {
         const run = tracked(24, 0);
         run.take(passes(24, 8, all(24), (turns) => timeAt(turns + phase / 24)));
         expect(run.extras.total).toBe(0);
-        expect(run.tracker.missedTeeth).toBe(0);
+        expect(run.tracker.gaps.missedTeeth).toBe(0);
       }
     }
   });
@@ -231,7 +231,7 @@ describe('the tracker of the wheel', () => {
       run.take(passes(60, 200, places, (turns) => turns / 10 + (0.02 / 600) * random()));
       expect(run.lost()).toBe(0);
       expect(run.extras.total).toBe(0);
-      expect(run.tracker.missedTeeth).toBe(0);
+      expect(run.tracker.gaps.missedTeeth).toBe(0);
     }
   });
 });

@@ -2,18 +2,18 @@
 import { short, time, whole } from '@/signal/finding-words/values';
 import type { Evidence, Wording } from '@/signal/finding-words/values';
 
-/** A tooth has a number only where a gap gives it one. */
+/** A tooth has a number only where a gap or an index gives it one. */
 function tooth({ position, positions, numbering }: Evidence): string {
-  return numbering === 'relative'
-    ? `One tooth in ${whole(positions)}`
-    : `Tooth ${whole(position)} of ${whole(positions)} (0 is the first after the gap)`;
+  if (numbering === 'relative') return `One tooth in ${whole(positions)}`;
+  const first = numbering === 'from the index' ? 'index' : 'gap';
+  return `Tooth ${whole(position)} of ${whole(positions)} (0 is the first after the ${first})`;
 }
 
 export const wheelWords = {
   'missing-tooth': (channel, evidence) => ({
     message: `${tooth(evidence)} did not show on channel ${channel} in ${whole(evidence.turnsMissed)} turns.`,
     remedy:
-      evidence.numbering === 'fixed since it went missing'
+      evidence.numbering === 'from the gap, since it went missing'
         ? 'Look at both gaps of the wheel: one of them is a tooth that is damaged, weak or dirty, or the number of missing teeth is not set as the wheel is made.'
         : 'Look at that tooth for damage or dirt, narrow the air gap, or lower the operate point; where the wheel is made so, set its missing teeth.',
   }),

@@ -3,7 +3,7 @@
  * alike. Each claim is a number that was there turn after turn, never a single turn that went wrong.
  */
 import type { RuleContext } from '@/signal/findings/rule';
-import type { WheelLane } from '@/signal/findings/wheel-lanes';
+import type { WheelLane } from '@/signal/findings/wheel-log-reader';
 
 export type CountClaim = {
   by: 'index' | 'gap' | 'no gap' | 'channels' | 'spacing' | 'swing';
@@ -23,6 +23,8 @@ const farRatio = 1.2;
 const fewestSame = 2;
 const fewestOther = 4;
 const gapsNeeded = 4;
+/** Teeth between two gaps. */
+const fewestBetween = 3;
 const turnsWithoutGap = 4;
 const channelTurns = 8;
 const failsFrom = 1.5;
@@ -91,7 +93,8 @@ export function claimOfGap({ motion, rig }: RuleContext, nowS: number): CountCla
   const { face } = motion.train;
   const { pulsesPerTurn: positions, missingPulses: missing } = rig.wheel;
   if (!tracker.isLocked) return null;
-  const since = tracker.count - Math.max(0, tracker.longAt);
+  const { between, sameBetween, spans, lastAt } = tracker.gaps;
+  const since = tracker.count - Math.max(0, lastAt);
   const setTeeth = positions - missing;
   if (missing > 0 && since >= turnsWithoutGap * positions) {
     return {
@@ -103,19 +106,18 @@ export function claimOfGap({ motion, rig }: RuleContext, nowS: number): CountCla
       atS: nowS,
     };
   }
-  const { between, sameBetween, longSpans } = tracker;
-  if (sameBetween < gapsNeeded || since > 2 * between) return null;
+  if (sameBetween < gapsNeeded || since > 2 * between || between - spans < fewestBetween) return null;
   const found = { by: 'gap', setTeeth, turns: sameBetween, atS: nowS } as const;
   if (between !== positions) {
     // Two teeth opposite each other that fail look like a wheel of half the positions.
     if (missing === 0 && positions % between === 0) return null;
-    return { ...found, foundTeeth: between - longSpans + 1, foundMissing: longSpans - 1 };
+    return { ...found, foundTeeth: between - spans + 1, foundMissing: spans - 1 };
   }
-  if (missing === 0 || longSpans === missing + 1) return null;
+  if (missing === 0 || spans === missing + 1) return null;
   // A wider gap is teeth beside it that fail, unless they have never been seen.
-  const wider = longSpans > missing + 1;
+  const wider = spans > missing + 1;
   if (wider && (!face || tracker.position < 0 || face.counts[positions - missing - 1]! > 0)) return null;
-  return { ...found, foundTeeth: positions - longSpans + 1, foundMissing: longSpans - 1 };
+  return { ...found, foundTeeth: positions - spans + 1, foundMissing: spans - 1 };
 }
 
 /** Channels of a ring that see the same wheel count at a simple ratio. */

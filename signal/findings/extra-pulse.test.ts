@@ -56,7 +56,7 @@ describe('an extra pulse', () => {
     expect(finding!.openedS).toBeLessThan(1.8);
     const { afterPosition, pitchPercent, numbering } = finding!.evidence;
     expect(Math.abs(Number(afterPosition) + Number(pitchPercent) / 100 - (place - 0.3))).toBeLessThan(0.15);
-    expect(numbering).toBe(lacking > 0 ? 'fixed to the wheel' : 'relative');
+    expect(numbering).toBe(lacking > 0 ? 'from the gap' : 'relative');
   });
 
   it('is found on a channel of a quadrature pair', () => {
@@ -64,6 +64,25 @@ describe('an extra pulse', () => {
     const b = toothWheel(24, 0, (t) => turning(t) - 0.25 / 24);
     const found = extra(testRig('quadrature', 24), 3, a, burr(b, 24, 9.3));
     expect(found.map(({ channel }) => channel)).toEqual(['B']);
+  });
+
+  it('stands at the same place of a wheel with a gap whichever way it turns', () => {
+    for (const sign of [1, -1]) {
+      const rim = (t: number) => 100.3 + sign * 10 * t;
+      const sound = (turns: (t: number) => number) => toothWheel(36, 1, turns);
+      const withBurr = (turns: (t: number) => number): Volts => {
+        const volts = sound(turns);
+        return (t) => (Math.abs(((36 * turns(t)) % 36) - 9) < 0.06 ? 2.5 : volts(t));
+      };
+      const found = extra(
+        testRig('quadrature', 36, 1),
+        4,
+        withBurr(rim),
+        withBurr((t) => rim(t) - 0.25 / 36),
+      );
+      const [a] = found.filter(({ channel }) => channel === 'A');
+      expect(a!.evidence).toMatchObject({ where: 'one place', numbering: 'from the gap', afterPosition: 8 });
+    }
   });
 
   it('now and then anywhere is found once there were two', () => {

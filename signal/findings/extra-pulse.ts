@@ -1,6 +1,7 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule } from '@/signal/findings/rule';
-import type { WheelLane, WheelLanes } from '@/signal/findings/wheel-lanes';
+import type { WheelLanes } from '@/signal/findings/wheel-lanes';
+import type { WheelLane } from '@/signal/findings/wheel-log-reader';
 import { wordsFor } from '@/signal/finding-words';
 import type { ExtraPlace } from '@/signal/wheel-extras';
 
@@ -28,14 +29,14 @@ export class ExtraPulseRule implements FindingRule {
 
   constructor(wheels: WheelLanes) {
     this.wheels = wheels;
-    this.latches = wheels.lanes.map(() => new FindingLatch(2));
+    this.latches = wheels.logs.map(() => new FindingLatch(2));
   }
 
   tick(nowS: number): void {
-    const { lanes, countedSinceS } = this.wheels;
-    for (let i = 0; i < lanes.length; i++) {
+    const { logs, countedSinceS } = this.wheels;
+    for (let i = 0; i < logs.length; i++) {
       const latch = this.latches[i]!;
-      if (lanes[i]!.extras.total > 0 && nowS > countedSinceS) this.look(lanes[i]!, latch, nowS);
+      if (logs[i]!.extras.total > 0 && nowS > countedSinceS) this.look(logs[i]!, latch, nowS);
       latch.rest(nowS);
     }
   }
@@ -102,22 +103,26 @@ export class ExtraPulseRule implements FindingRule {
 }
 
 function placed(
-  { tracker }: WheelLane,
+  lane: WheelLane,
   places: readonly ExtraPlace[],
   pulses: number,
   windowS: number,
 ): Record<string, number | string> {
-  const { place, turns } = places[0]!;
-  const { positions, missing } = tracker;
-  const onWheel = tracker.onWheel(place);
+  const { tracker } = lane;
+  const { positions } = tracker;
+  const onWheel = tracker.onWheel(places[0]!.place);
+  const before = Math.floor(onWheel);
+  const share = onWheel - before;
+  // In reverse the tooth that comes after it is the one before it on the wheel.
+  const position = tracker.isReversed ? (before + 1) % positions : before;
   return {
     where: places.length === 1 ? 'one place' : 'several places',
     places: places.length,
-    afterPosition: Math.floor(onWheel),
-    pitchPercent: 100 * (onWheel - Math.floor(onWheel)),
+    afterPosition: lane.numberOf(position),
+    pitchPercent: 100 * (tracker.isReversed ? 1 - share : share),
     positions,
-    numbering: missing > 0 && tracker.position >= 0 ? 'fixed to the wheel' : 'relative',
-    turns,
+    numbering: lane.numbering,
+    turns: places[0]!.turns,
     pulses,
     windowS,
   };

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { codesOf, watchFindings } from '@/signal/findings/test-watch';
 import type { RigSetup } from '@/signal/model';
-import { normal, sampled, seeded, testRig } from '@/signal/test-signals';
+import { normal, sampled, seeded, testChannel, testRig } from '@/signal/test-signals';
 
 const rateHz = 10_000;
 
@@ -59,14 +59,30 @@ describe('a missing tooth', () => {
     expect(found.map(({ evidence }) => evidence.position)).toEqual(gone);
     for (const { openedS, evidence } of found) {
       expect(openedS).toBeLessThan(1.7);
-      expect(evidence.numbering).toBe(lacking > 0 ? 'fixed to the wheel' : 'relative');
+      expect(evidence.numbering).toBe(lacking > 0 ? 'from the gap' : 'relative');
     }
+  });
+
+  it('is numbered by an index', () => {
+    const single = testRig('single', 24);
+    const rig = { ...single, channels: [...single.channels, testChannel('Z', 'Z')] };
+    // Its leading flank comes half a pitch before tooth 3 of the wheel as it starts.
+    const index = (t: number) => ((10 * t - 2.75 / 24 + 1) % 1 < 0.02 ? 3 : 0.3);
+    const gone = (position: number, _turn: number, t: number) => (position === 7 && t > 2 ? 0 : 1);
+    const found = missing(rig, 4, wheel(24, gone), index);
+    expect(found.map(({ evidence }) => evidence)).toMatchObject([
+      { position: 4, numbering: 'from the index' },
+    ]);
+    expect(found[0]!.message).toContain('Tooth 4 of 24');
   });
 
   it('beside the gap from the start is found, and said to be one of two', () => {
     const strength = (position: number) => (position >= 34 ? 0 : 1);
     const [finding] = missing(testRig('single', 36, 1), 3, wheel(36, strength));
-    expect(finding!.evidence).toMatchObject({ position: 34, numbering: 'fixed since it went missing' });
+    expect(finding!.evidence).toMatchObject({
+      position: 34,
+      numbering: 'from the gap, since it went missing',
+    });
     expect(finding!.remedy).toContain('gap');
   });
 

@@ -1,6 +1,7 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import type { WheelLane, WheelLanes } from '@/signal/findings/wheel-lanes';
+import type { WheelLanes } from '@/signal/findings/wheel-lanes';
+import type { WheelLane } from '@/signal/findings/wheel-log-reader';
 import { wordsFor } from '@/signal/finding-words';
 import type { WheelAbsence } from '@/signal/wheel-absence';
 
@@ -50,7 +51,7 @@ export class MissingToothRule implements FindingRule {
       const evidence = {
         position,
         positions: counts.length,
-        numbering: this.numbering(counts[place]!),
+        numbering: this.numbering(lane, counts[place]!),
         turnsMissed: absence.turns[place]!,
         toothS: tracker.pitchS,
       };
@@ -72,9 +73,8 @@ export class MissingToothRule implements FindingRule {
   }
 
   /** A tooth beside a gap, or a gap as wide as the wheel's own, that was there from the start: it may be the other one. */
-  private numbering(timesSeen: number): string {
-    if (!this.hasGap) return 'relative';
-    return timesSeen > 0 ? 'fixed to the wheel' : 'fixed since it went missing';
+  private numbering({ numbering }: WheelLane, timesSeen: number): string {
+    return this.hasGap && timesSeen === 0 ? 'from the gap, since it went missing' : numbering;
   }
 
   private latchFor(key: string): FindingLatch | null {

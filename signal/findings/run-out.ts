@@ -3,7 +3,7 @@ import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
-import { recentWorth } from '@/signal/wheel-face-meter';
+import { recentWorth } from '@/signal/wheel-spacing';
 import type { WheelFaceMeter } from '@/signal/wheel-face-meter';
 import { WheelOrders } from '@/signal/wheel-orders';
 
@@ -81,9 +81,9 @@ export class RunOutRule implements FindingRule {
     const swing = waveOf(waves, meanOf(face.swingVariance) / recentWorth);
     const strongest = strongestOf(face);
     let spacing = { amplitude: NaN, second: NaN, isClear: false };
-    if (face.learntTurns >= turnsNeeded) {
-      waves.fit(ofTeethThere(face.recentStep, face, scratch), 2);
-      spacing = waveOf(waves, meanOf(face.stepVariance) / recentWorth);
+    if (face.spacing.turns >= turnsNeeded) {
+      waves.fit(ofTeethThere(face.spacing.recentStep, face, scratch), 2);
+      spacing = waveOf(waves, meanOf(face.spacing.stepVariance) / recentWorth);
       const random =
         Math.sqrt(waves.leftVariance) * 2 * Math.sin(Math.PI / positions) * Math.sqrt(1 / positions);
       spacing.isClear &&= spacing.amplitude > aboveRoughness * random;
@@ -117,7 +117,7 @@ export class RunOutRule implements FindingRule {
 /** An order's amplitude is at most 4 / pi of half of what lies between the least and the most (a square wave). */
 function mayWave(face: WheelFaceMeter): boolean {
   const swing = rangeOf(face.swingV);
-  const step = rangeOf(face.recentStep);
+  const step = rangeOf(face.spacing.recentStep);
   const most = 2 / Math.PI;
   return (
     most * (swing.most - swing.least) > stays * swingShare * swing.least ||

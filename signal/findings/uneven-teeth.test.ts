@@ -34,7 +34,7 @@ describe('uneven teeth', () => {
   it('are found on a wheel with a gap, by their numbers', () => {
     const placeOf = (k: number) => (k === 20 ? -0.1 : k === 41 ? 0.12 : 0);
     const [finding] = uneven(testRig('single', 60, 2), 4, wheelVolts({ positions: 60, missing: 2, placeOf }));
-    expect(finding!.evidence).toMatchObject({ position: 41, numbering: 'fixed to the wheel', teeth: 2 });
+    expect(finding!.evidence).toMatchObject({ position: 41, numbering: 'from the gap', teeth: 2 });
     expect(finding!.evidence.offPercent).toBeCloseTo(12, 0);
     expect(finding!.evidence.offDeg).toBeCloseTo(0.72, 1);
   });

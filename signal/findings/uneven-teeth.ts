@@ -1,11 +1,12 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
+import { numberingOf, ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
-import { memoryWorth } from '@/signal/wheel-face-meter';
+import { memoryWorth } from '@/signal/wheel-spacing';
 import type { WheelFaceMeter } from '@/signal/wheel-face-meter';
 import { middleMagnitude, WheelOrders } from '@/signal/wheel-orders';
+import { displaced, patternOf, roughness, slowWave } from '@/signal/wheel-unevenness';
 
 const turnsNeeded = 10;
 /** Share of the pitch by which a tooth's distance to its neighbour is off; open findings stay down to four fifths. */
@@ -24,11 +25,6 @@ const significant = 5;
 const mostOrders = 4;
 const positionsPerOrder = 8;
 const mostApart = 0.4;
-/** One order that holds so large a share of what is left may be the shaft's sway too. */
-const oneOrder = 0.8;
-const fewestForOneOrder = 16;
-const ordersUpTo = 512;
-const alternating = 0.8;
 /** Where all teeth lie within so small a part of a limit, no single one stands out by it. */
 const plain = 0.6;
 
@@ -100,11 +96,11 @@ export class UnevenTeethRule implements FindingRule {
   }
 
   private bySpacing(face: WheelFaceMeter, steps: WheelOrders, easier: number): Verdict | null {
-    if (face.learntTurns < turnsNeeded) return null;
+    if (face.spacing.turns < turnsNeeded) return null;
     const { positions } = face;
-    const { least, most } = rangeOf(face.step);
+    const { least, most } = rangeOf(face.spacing.step);
     if (most - least < easier * offShare * plain) return null;
-    const values = ofTeethThere(face.step, face, this.scratch!);
+    const values = ofTeethThere(face.spacing.step, face, this.scratch!);
     // The first tooth after the gap comes early or late by what sensor and filter make of the gap.
     if (face.missing > 0) values[1] = NaN;
     steps.fit(values, this.orders);
@@ -119,8 +115,8 @@ export class UnevenTeethRule implements FindingRule {
     for (let k = 0; k < positions; k++) {
       const off = Math.abs(left[k]!);
       // A step that scatters less than the sample grid makes it has always been sampled alike: it is known to a sample only.
-      if (off < 1.25 * grid && face.stepVariance[k]! < (grid * grid) / 12) continue;
-      const error = Math.sqrt(face.stepVariance[k]! / memoryWorth);
+      if (off < 1.25 * grid && face.spacing.stepVariance[k]! < (grid * grid) / 12) continue;
+      const error = Math.sqrt(face.spacing.stepVariance[k]! / memoryWorth);
       if (off > limit && off > significant * error && off > worstStep) worstStep = off;
     }
     if (worstStep === 0) return null;
@@ -129,14 +125,14 @@ export class UnevenTeethRule implements FindingRule {
     const evidence = {
       position: face.numberOf(worst),
       positions,
-      numbering: face.missing > 0 ? 'fixed to the wheel' : 'relative',
+      numbering: numberingOf(face),
       offPercent: 100 * worstOff,
       offDeg: (360 * worstOff) / positions,
       stepPercent: 100 * worstStep,
       teeth,
       pattern: pattern.name,
       ...(pattern.order > 0 && { order: pattern.order }),
-      turns: face.learntTurns,
+      turns: face.spacing.turns,
     };
     const isUnsure = pattern.name === 'one order' || (this.orders === 0 && slowWave(steps));
     return {
@@ -197,7 +193,7 @@ export class UnevenTeethRule implements FindingRule {
       evidence: {
         position: face.numberOf(worst),
         positions,
-        numbering: missing > 0 ? 'fixed to the wheel' : 'relative',
+        numbering: numberingOf(face),
         swingPercent: 100 * worstShare,
         swingV: face.swingV[worst]!,
         othersV: middle,
@@ -211,66 +207,4 @@ export class UnevenTeethRule implements FindingRule {
 function isNear(a: Verdict, b: Verdict, positions: number): boolean {
   const apart = Math.abs(Number(a.evidence.position) - Number(b.evidence.position));
   return Math.min(apart, positions - apart) <= 1;
-}
-
-/** Rms of what is left, by its middle, so that single teeth do not count. */
-function roughness(left: Float64Array, scratch: Float64Array): number {
-  return 1.4826 * middleMagnitude(left, scratch);
-}
-
-/** Which tooth stands off most: its distances to both neighbours are off the opposite way. */
-function displaced(left: Float64Array, limit: number): { worst: number; worstOff: number; teeth: number } {
-  const n = left.length;
-  const offOf = (k: number): number => {
-    const before = left[k]!;
-    const after = left[(k + 1) % n]!;
-    if (Number.isNaN(after)) return before;
-    return Number.isNaN(before) ? -after : (before - after) / 2;
-  };
-  let worst = 0;
-  let worstOff = 0;
-  for (let k = 0; k < n; k++) {
-    const off = offOf(k);
-    if (!(Math.abs(off) > Math.abs(worstOff))) continue;
-    worst = k;
-    worstOff = off;
-  }
-  let teeth = 0;
-  // A neighbour of a tooth that is off seems off by half as much.
-  for (let k = 0; k < n; k++) if (Math.abs(offOf(k)) > Math.max(0.6 * Math.abs(worstOff), limit / 2)) teeth++;
-  return { worst, worstOff, teeth };
-}
-
-function patternOf(left: Float64Array, orders: number): { name: string; order: number } {
-  const n = left.length;
-  const full = left.map((value) => (Number.isNaN(value) ? 0 : value));
-  const energy = full.reduce((sum, value) => sum + value * value, 0);
-  const neighbours = full.reduce((sum, value, k) => sum + value * full[(k + 1) % n]!, 0);
-  // Cosine of the turn from tooth to tooth: -1 where every second one is off, -0.5 where one is.
-  if (neighbours < -alternating * energy) return { name: 'every second tooth', order: 0 };
-  if (n <= ordersUpTo && n >= fewestForOneOrder) {
-    for (let r = orders + 1; 2 * r < n; r++) {
-      let re = 0;
-      let im = 0;
-      for (let k = 0; k < n; k++) {
-        re += full[k]! * Math.cos((2 * Math.PI * r * k) / n);
-        im += full[k]! * Math.sin((2 * Math.PI * r * k) / n);
-      }
-      if ((2 * (re * re + im * im)) / n > oneOrder * energy) return { name: 'one order', order: r };
-    }
-  }
-  return { name: 'single teeth', order: 0 };
-}
-
-/** On a wheel of few teeth: the first order holds most of it, as a sway of the shaft would. */
-function slowWave(steps: WheelOrders): boolean {
-  const { left, positions, variance } = steps;
-  let re = 0;
-  let im = 0;
-  for (let k = 0; k < positions; k++) {
-    const value = Number.isNaN(left[k]!) ? 0 : left[k]!;
-    re += value * Math.cos((2 * Math.PI * k) / positions);
-    im += value * Math.sin((2 * Math.PI * k) / positions);
-  }
-  return positions > 2 && (2 * (re * re + im * im)) / positions > oneOrder * positions * variance;
 }

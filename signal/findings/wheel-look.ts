@@ -60,3 +60,11 @@ export function rangeOf(values: Float64Array): { least: number; most: number } {
   }
   return least <= most ? { least, most } : { least: 0, most: 0 };
 }
+
+/** What the numbers of teeth count from. */
+export type Numbering = 'from the gap' | 'from the index' | 'relative';
+
+export function numberingOf(face: WheelFaceMeter): Numbering {
+  if (!face.isNumbered) return 'relative';
+  return face.missing > 0 ? 'from the gap' : 'from the index';
+}

@@ -37,7 +37,7 @@ export class WrongCountRule implements FindingRule {
     const latch = this.latches[0]!;
     const { context } = this;
     const claim =
-      claimOfIndex(context, this.wheels.lanes[0], nowS) ??
+      claimOfIndex(context, this.wheels.logs[0], nowS) ??
       claimOfGap(context, nowS) ??
       this.channels.claim(nowS) ??
       this.claimOfPattern(nowS);
