@@ -49,6 +49,11 @@ export class Baseline {
     this.looks[place] = looks + 1;
   }
 
+  /** What was learnt was something else. */
+  forget(): void {
+    this.looks.fill(0);
+  }
+
   /** The next slower or faster half octave, where this one is not known. */
   usualBeside(direction: Direction, toothHz: number): number {
     const slower = this.usual(direction, toothHz / step);

@@ -16,6 +16,7 @@ const swingShare = 0.15;
 /** A latch before poles of equal length is high for half of the time; so far from it, poles or points are not equal. */
 const latchOpensAt = 0.2;
 const latchStaysAt = 0.17;
+const farLarger = 3;
 const looksForBaseline = 2;
 const looksToOpen = 2;
 
@@ -94,6 +95,12 @@ export class DutyShiftRule implements FindingRule {
   private swingIsUsual(index: number): boolean {
     const { toothHz, swingV } = this.means[index]!;
     const usual = this.swings[index]!.usual(this.context.motion.direction, toothHz);
+    // Noise at rest, not teeth, was learnt before.
+    if (swingV > farLarger * usual) {
+      this.swings[index]!.forget();
+      this.duties[index]!.forget();
+      return false;
+    }
     return Number.isNaN(usual) || Math.abs(swingV / usual - 1) < swingShare;
   }
 

@@ -3,6 +3,7 @@ import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
 import { besideTone, toneNear } from '@/signal/findings/hum-tone';
 import type { Tone } from '@/signal/findings/hum-tone';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import { besideTeeth, fills, mirrorOf, mostAt } from '@/signal/findings/slow-lines';
 import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
 import type { SlowWheel } from '@/signal/findings/slow-wheel';
 
@@ -134,13 +135,13 @@ export class MainsHumRule implements FindingRule {
     const { latch, path } = judged;
     const { wheel } = spectrum;
     const known = latch.open?.outcome === 'found' && Math.abs(judged.seenHz - tone.hz) < sameHz;
-    const beside = besideTone(spectrum, tone.bin, 3, 8, (bin) => wheel.fills(bin));
+    const beside = besideTone(spectrum, tone.bin, 3, 8, (bin) => fills(wheel, bin));
     if (beside * (known ? 0.75 : 1) * prominent > tone.amplitudeV) return 'nothing';
     if (isAnImage(path.noiseV, besideTone(spectrum, tone.bin, 6, 10), tone)) return 'nothing';
-    if (wheel.mostAt(tone.hz) > tone.amplitudeV)
+    if (mostAt(wheel, tone.hz) > tone.amplitudeV)
       return looksLikeEdges(path, wheel, tone) ? 'edges' : 'nothing';
     if (known) return 'found';
-    if (3 * this.spectra.sizeNear(spectrum, wheel.mirrorOf(tone.hz)) > tone.amplitudeV) return 'nothing';
+    if (3 * this.spectra.sizeNear(spectrum, mirrorOf(wheel, tone.hz)) > tone.amplitudeV) return 'nothing';
     return this.onOrder(spectrum, tone, path.channel.sensor.kind === 'linear');
   }
 
@@ -163,7 +164,7 @@ export class MainsHumRule implements FindingRule {
       if (3 * row > tone.amplitudeV) return 'nothing';
       if (order <= lowOrders || !linear) return 'order';
     }
-    return wheel.besideTeeth(tone.hz, onOrderHz) ? 'order' : 'found';
+    return besideTeeth(wheel, tone.hz, onOrderHz) ? 'order' : 'found';
   }
 }
 

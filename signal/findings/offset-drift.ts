@@ -11,6 +11,7 @@ import type { TurnMeans } from '@/signal/findings/turn-means';
 const opens = { middle: 0.18, common: 0.12 };
 const stays = { middle: 0.12, common: 0.08 };
 const faultShare = 0.3;
+const farLarger = 3;
 const looksForBaseline = 2;
 const looksToOpen = 2;
 
@@ -60,6 +61,11 @@ export class OffsetDriftRule implements FindingRule {
     const upV = highV - usualHighV;
     const lowUpV = lowV - usualLowV;
     const swingV = usualHighV - usualLowV;
+    // A swing so much larger: noise at rest, not teeth, was learnt before.
+    if (means.swingV > farLarger * swingV) {
+      highs.forget();
+      lows.forget();
+    }
     // An end that has come to stand at the rail cannot go on with the other one.
     const held = endsAtRails(path, highV, lowV);
     const highMovedV = held.high && upV > 0.1 * swingV ? Math.max(upV, lowUpV) : upV;
@@ -68,7 +74,7 @@ export class OffsetDriftRule implements FindingRule {
       highMovedV * lowMovedV > 0 ? Math.min(Math.abs(highMovedV), Math.abs(lowMovedV)) / swingV : 0;
     const share = Math.abs(highMovedV + lowMovedV) / 2 / swingV;
     const limits = latch.open ? stays : opens;
-    const drifted = common > limits.common && share > limits.middle;
+    const drifted = common > limits.common && share > limits.middle && means.swingV <= farLarger * swingV;
     this.seen[index] = drifted ? this.seen[index]! + 1 : 0;
     if (!drifted) {
       highs.learn(direction, toothHz, highV);

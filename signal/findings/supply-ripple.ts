@@ -3,6 +3,7 @@ import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
 import { toneNear } from '@/signal/findings/hum-tone';
 import { commonMiddles } from '@/signal/findings/ripple-middles';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import { makesInCommon, mostAt } from '@/signal/findings/slow-lines';
 import { sizeAt } from '@/signal/findings/slow-spectrum';
 import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
 
@@ -114,7 +115,7 @@ export class SupplyRippleRule implements FindingRule {
   private hums(a: Spectrum, rippleV: number): boolean {
     return [50, 60].some((hz) => {
       const tone = toneNear(a, this.spectra.binHz, hz, 1);
-      return tone !== null && tone.amplitudeV > rippleV / 2 && !(a.wheel.mostAt(tone.hz) > tone.amplitudeV);
+      return tone !== null && tone.amplitudeV > rippleV / 2 && !(mostAt(a.wheel, tone.hz) > tone.amplitudeV);
     });
   }
 
@@ -156,7 +157,7 @@ export class SupplyRippleRule implements FindingRule {
     const correlation = here / (sizeA * sizeB);
     if (correlation < inPhase || sizeA > mostUnequal * sizeB || sizeB > mostUnequal * sizeA) return null;
     const hz = k * this.spectra.binHz;
-    if (a.wheel.makesInCommon(hz) || this.isHum(a, hz, sizeA)) return null;
+    if (makesInCommon(a.wheel, hz) || this.isHum(a, hz, sizeA)) return null;
     // A tone fills three bins behind a Hann window, with one and a half times its power.
     const power = (Math.max(0, below) + here + Math.max(0, above)) / 1.5;
     return { bin: k, power, correlation };

@@ -100,7 +100,7 @@ export function againstNoise({ noiseV }: ChannelPath, means: TurnMeans, open: bo
 /** What a sensor should give by its supply. Nothing is known of levels behind a filter that takes the middle away. */
 export function againstSupply({ channel }: ChannelPath, means: TurnMeans, open: boolean): SwingSight | null {
   const { kind, supplyV } = channel.sensor;
-  const { highV, swingV, fromS } = means;
+  const { highV, topV, swingV, fromS } = means;
   const room = open ? more : 1;
   if (kind === 'linear') {
     if (!supplyV || !(swingV < room * tinyShare * supplyV)) return null;
@@ -108,7 +108,8 @@ export function againstSupply({ channel }: ChannelPath, means: TurnMeans, open: 
     return { size: (tinyShare * supplyV) / swingV, severity: 'note', atS: fromS, evidence };
   }
   const pulledToV = pulledTo(channel.maxInputV, supplyV);
-  if (!(highV < room * highShare * pulledToV)) return null;
+  // One tooth that comes up proves the pull-up: noise on a line at rest made the others.
+  if (!(topV < room * highShare * pulledToV)) return null;
   const share = highV / pulledToV;
   const evidence = { against: 'pull-up', highV, expectedHighV: pulledToV, ofExpectedPercent: 100 * share };
   return { size: highShare / share, severity: share < 0.3 ? 'fault' : 'warn', atS: fromS, evidence };

@@ -18,6 +18,7 @@ const homeShare = 0.2;
 const leastSigmas = 10;
 const leastOfSupply = 0.1;
 const humOfSupply = 0.02;
+const fewestSamples = 8;
 /** Mean swing over the largest one: teeth of a sound wheel differ by four to one, noise among teeth by more. */
 const leastOfLargest = 0.25;
 /** A wheel with more teeth than this is judged by so many of them. */
@@ -36,6 +37,8 @@ export class TurnMeans {
   toothHz = NaN;
   highV = NaN;
   lowV = NaN;
+  /** The highest peak of all. */
+  topV = NaN;
   /** High share of the period, of teeth whose neighbour is in its place. */
   duty = NaN;
   /** Standard error of that mean, from how teeth differ. */
@@ -171,6 +174,7 @@ export class TurnMeans {
     let squares = 0;
     let counted = 0;
     this.largestV = 0;
+    this.topV = -Infinity;
     for (let n = first; n < end; n++) {
       const riseS = log.riseS[n & mask]!;
       const periodS = log.riseS[(n + 1) & mask]! - riseS;
@@ -179,6 +183,7 @@ export class TurnMeans {
       high += peakV;
       low += troughV;
       this.largestV = Math.max(this.largestV, peakV - troughV);
+      this.topV = Math.max(this.topV, peakV);
       if (periodS > 1.5 * pitchS) continue;
       const toothHighS = log.fallS[n & mask]! - riseS;
       const share = toothHighS / periodS;

@@ -18,6 +18,7 @@ const fallenElsewhere = 0.4;
 const near = 1.5;
 const recoveredShare = 0.6;
 const strangeShare = 0.1;
+const farLarger = 3;
 const looksForBaseline = 2;
 const looksToOpen = 2;
 /** With fewer samples a tooth, what is taken for noise is signal too. */
@@ -103,6 +104,8 @@ export class WeakSwingRule implements FindingRule {
     const baseline = this.swings[index]!;
     const reference = this.reference(path, index);
     const share = swingV / reference.swingV;
+    // Noise at rest, not teeth, was learnt before.
+    if (share > farLarger) baseline.forget();
     // A speed that is new while the swing is on its way down must not take that for usual.
     const strange = !reference.own && Math.abs(share - 1) > strangeShare;
     if (steady && !strange && !(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);

@@ -1,0 +1,96 @@
+/**
+ * Which lines a turning wheel puts into the spectrum of the slow ring: harmonics of the tooth frequency and orders of the
+ * shaft, folded at half the ring's rate.
+ */
+import type { SlowWheel } from '@/signal/findings/slow-wheel';
+
+const harmonics = 60;
+/** Torque ripples with up to about so many times a turn. */
+const sideOrders = 10;
+
+/**
+ * A tone at `hz` of no more than this may come from harmonics of the teeth, V: of those seen before half as much again, of
+ * others twice what a signal with such flanks can have, all together.
+ */
+export function mostAt(wheel: SlowWheel, hz: number): number {
+  const { halfSwingV, toothHz, spreadHz, turnHz, binHz, flankS } = wheel;
+  if (toothHz === 0) return 0;
+  let most = 0;
+  for (let h = 1; h <= harmonics; h++) {
+    const off = Math.abs(folded(wheel, h * toothHz) - hz);
+    const smearHz = h * spreadHz;
+    const on = off < 2 * binHz + smearHz;
+    // Beside the first ones stand the orders by which teeth differ; where they can be told apart, see `besideTeeth`.
+    if (!on && !(h <= 2 && off < 3 * turnHz && turnHz < 2 * binHz)) continue;
+    const known = wheel.usual[h] ?? NaN;
+    let share: number;
+    if (on && !Number.isNaN(known)) share = 0.03 + 1.5 * known * lobe(Math.max(0, off - smearHz) / binHz);
+    // Of a trapezoid: 4 / (pi h) of a square wave, less beyond 1 / (pi flank).
+    else share = ((on ? 2 : 0.5) * 1.27 * Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS))) / h;
+    most += (share * halfSwingV) / Math.max(1, smearHz / (2 * binHz));
+  }
+  return most;
+}
+
+/** True where the third order or a nearer one beside a harmonic of the teeth, or its image, comes within `offHz` of `hz`. */
+export function besideTeeth(wheel: SlowWheel, hz: number, offHz: number): boolean {
+  const { toothHz, turnHz, spreadHz } = wheel;
+  if (toothHz === 0) return false;
+  for (let h = 1; h <= 3; h++) {
+    for (let k = -3; k <= 3; k++) {
+      if (Math.abs(folded(wheel, h * toothHz + k * turnHz) - hz) < offHz + h * spreadHz) return true;
+    }
+  }
+  return false;
+}
+
+/**
+ * Where the other side band of the teeth stands if a tone at `hz` is one, Hz: a speed that ripples with the turn, and teeth
+ * that differ, make both alike. NaN where the tone is too far from the teeth for that.
+ */
+export function mirrorOf(wheel: SlowWheel, hz: number): number {
+  const { toothHz, turnHz, binHz } = wheel;
+  const harmonic = Math.round(hz / toothHz);
+  const off = Math.abs(harmonic * toothHz - hz);
+  // Nearer than this the teeth themselves fill the place.
+  const apart = off > 3.5 * binHz && off < sideOrders * turnHz + 2 * binHz;
+  return harmonic > 0 && harmonic <= 3 && apart ? 2 * harmonic * toothHz - hz : NaN;
+}
+
+/**
+ * True where two channels may have something of the wheel in phase: at harmonics of the teeth, at orders beside them, and
+ * below four tenths of the tooth frequency, where the sensors stand close together for the shaft. There only what lies
+ * clearly between its orders is no part of it.
+ */
+export function makesInCommon(wheel: SlowWheel, hz: number): boolean {
+  const { toothHz, turnHz, spreadHz, binHz } = wheel;
+  if (toothHz === 0) return false;
+  for (let h = 1; h <= 16; h++) {
+    if (Math.abs(folded(wheel, h * toothHz) - hz) < 2.5 * binHz + h * spreadHz) return true;
+  }
+  if (besideTeeth(wheel, hz, 2 * binHz)) return true;
+  if (hz > 0.4 * toothHz) return false;
+  return turnHz < 6 * binHz || Math.abs(hz - turnHz * Math.round(hz / turnHz)) < 2.5 * binHz;
+}
+
+/** True where one of the first harmonics fills that bin; one that is smeared over many is weak in each. */
+export function fills(wheel: SlowWheel, bin: number): boolean {
+  const { toothHz, binHz, spreadHz } = wheel;
+  if (toothHz === 0) return false;
+  for (let h = 1; h <= 6 && h * spreadHz < 5 * binHz; h++) {
+    if (Math.abs(folded(wheel, h * toothHz) - bin * binHz) < 2.5 * binHz + h * spreadHz) return true;
+  }
+  return false;
+}
+
+export function folded(wheel: SlowWheel, hz: number): number {
+  const rate = 2 * wheel.nyquistHz;
+  return Math.abs(hz - rate * Math.round(hz / rate));
+}
+
+/** What a tone leaves `off` bins beside itself behind a Hann window, up to two. */
+function lobe(off: number): number {
+  if (off < 1e-6) return 1;
+  if (Math.abs(off - 1) < 1e-6) return 0.5;
+  return Math.abs(Math.sin(Math.PI * off) / (Math.PI * off * (1 - off * off)));
+}
