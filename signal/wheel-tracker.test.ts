@@ -1,3 +1,4 @@
+import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { normal, seeded } from '@/signal/test-signals';
 import { ExtraPulses } from '@/signal/wheel-extras';
@@ -233,5 +234,47 @@ describe('the tracker of the wheel', () => {
       expect(run.extras.total).toBe(0);
       expect(run.tracker.gaps.missedTeeth).toBe(0);
     }
+  });
+
+  it('keeps its books on pulses of any kind: places follow from each other by the positions passed', () => {
+    const wheelOf = fc.integer({ min: 1, max: 40 }).chain((positions) =>
+      fc.record({
+        positions: fc.constant(positions),
+        missing: fc.integer({ min: 0, max: Math.max(0, positions - 2) }),
+        intervals: fc.array(
+          fc.oneof(fc.constantFrom(1, 1, 1, 2, 3), fc.double({ min: 1e-6, max: 9, noNaN: true })),
+          {
+            maxLength: 300,
+          },
+        ),
+      }),
+    );
+    fc.assert(
+      fc.property(wheelOf, ({ positions, missing, intervals }) => {
+        let t = 0;
+        let before = -1;
+        const seat: WheelSeat = {
+          t: NaN,
+          toothSwingV: NaN,
+          start: () => (before = -1),
+          lose: () => (before = -1),
+          place: (position, spans) => {
+            expect(Number.isInteger(position) && position >= 0 && position < positions - missing).toBe(true);
+            expect(Number.isInteger(spans) && spans >= 1).toBe(true);
+            expect(seat.t).toBeLessThanOrEqual(t);
+            if (before >= 0) expect(position).toBe((before + spans) % positions);
+            before = position;
+          },
+        };
+        const tracker = new WheelTracker(positions, missing, seat, new ExtraPulses(positions));
+        for (const interval of intervals) {
+          tracker.t = t += interval;
+          tracker.take();
+        }
+        expect(tracker.waiting).toBeLessThanOrEqual(12);
+        expect(tracker.position).toBeLessThan(positions);
+      }),
+      { numRuns: 300 },
+    );
   });
 });

@@ -8,8 +8,9 @@ import type { ExtraPlace } from '@/signal/wheel-extras';
 /** Points of a place (one a turn in which a pulse came there) that accuse it, and below which it is let go. */
 const placeOpensAt = 3;
 const placeStaysAt = 1.5;
-/** More places than this share of the wheel's, and than two, are bounce: that has a rule of its own. */
+/** More places than this share of the wheel's, and than two, are bounce: that has a rule of its own. Close to teeth, fewer. */
 const mostPlacesShare = 0.25;
+const mostCloseShare = 0.125;
 /** Pulses that come anywhere: two at two places within the last three seconds or eight turns, whichever is longer, open. */
 const straysOpenAt = 2;
 const leastWindowS = 3;
@@ -53,7 +54,7 @@ export class ExtraPulseRule implements FindingRule {
     const recent = extras.since(fromS).filter(isOwn);
     if (recent.length === 0) return;
     const places = extras.placesAt(count, latch.open ? placeStaysAt : placeOpensAt).filter(isOwn);
-    if (places.length > 0 && places.length <= Math.max(2, mostPlacesShare * positions)) {
+    if (places.length > 0 && !isBounce(places, positions)) {
       places.sort((a, b) => b.score - a.score || a.place - b.place);
       const evidence = placed(lane, places, recent.length, windowS);
       this.raise(lane, latch, evidence, places[0]!.firstS, places[0]!.lastS, nowS);
@@ -126,6 +127,14 @@ function placed(
     pulses,
     windowS,
   };
+}
+
+function isBounce(places: readonly ExtraPlace[], positions: number): boolean {
+  const close = places.filter(({ place }) => !isClear(place - Math.floor(place))).length;
+  return (
+    places.length > Math.max(2, mostPlacesShare * positions) ||
+    close > Math.max(1, mostCloseShare * positions)
+  );
 }
 
 function isClear(share: number): boolean {
