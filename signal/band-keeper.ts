@@ -28,6 +28,8 @@ export type BandOptions<Kind extends Band = Band> = IntakeOptions & {
   chunk: number;
   /** Edges may be found so long after they passed; 0 where other channels' edges count in order with them. */
   findLateS: number;
+  /** While no levels are known, smaller swings are no teeth, V. */
+  leastFirstV: number;
   bands: BandChange[];
 };
 
@@ -60,6 +62,10 @@ export abstract class BandKeeper implements FinderHost, DetectorSink {
     this.intake = new EdgeIntake(this.detector, this.levels, options);
     this.weak = new WeakTeeth(teethPerTurn, missingPulses);
     this.finder = new LevelFinder(this.detector, this.levels, rateHz, this);
+  }
+
+  get leastFirstV(): number {
+    return this.options.leastFirstV;
   }
 
   get isRing(): boolean {

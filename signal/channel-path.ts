@@ -32,6 +32,8 @@ import type { ToothLog } from '@/signal/tooth-log';
 export const chunkSamples = 1024;
 
 const fewestForNoise = 8;
+/** Of the supply. */
+const switchingShare = 0.2;
 
 export type PathOptions = {
   channel: Channel;
@@ -71,7 +73,13 @@ export class ChannelPath {
     this.fromCodes = takesCodes(this.cascade);
     this.gainOfNoise = options.gainOfNoise;
     const { findLateS = 0 } = options;
-    const common = { ...options, findLateS, channelName: channel.name, chunk: chunkSamples };
+    const common = {
+      ...options,
+      findLateS,
+      channelName: channel.name,
+      chunk: chunkSamples,
+      leastFirstV: leastFirstV(channel),
+    };
     this.keeper =
       band.mode === 'fixed' ? new FixedBand({ ...common, band }) : new FittedBand({ ...common, band });
     this.watch = new RawWatch(channel, rateHz);
@@ -215,4 +223,12 @@ export class ChannelPath {
   toothMissed(): void {
     this.keeper.toothMissed();
   }
+}
+
+/**
+ * The output of a switching sensor is nearly all of its supply: what swings less, at first, is noise that stands at a rail
+ * with half of it cut off, which passes for less than it is.
+ */
+function leastFirstV({ sensor: { kind, supplyV } }: Channel): number {
+  return kind !== 'linear' && supplyV !== null && supplyV > 0 ? switchingShare * supplyV : 0;
 }

@@ -20,6 +20,8 @@ export type FinderHost = {
   readonly isFixed: boolean;
   /** The shaft may turn to and fro. */
   readonly isRing: boolean;
+  /** While no levels are known, smaller swings are no teeth, V. */
+  readonly leastFirstV: number;
   readonly edgeCount: number;
   readonly lastEdgeAt: number;
   /** Runs the band over `v[from..to]` and takes what edges it makes. @returns the first index not scanned. */
@@ -119,7 +121,7 @@ export class LevelFinder {
   /** What is small beside the teeth, or beside a band as typed, is none. */
   private leastSwingV(): number {
     const { levels, detector, host } = this;
-    const ofTeeth = leastToothV(levels.highV - levels.lowV, host.noiseV) || 0;
+    const ofTeeth = leastToothV(levels.highV - levels.lowV, host.noiseV) || host.leastFirstV;
     return host.isFixed ? Math.max(ofTeeth, (detector.operateV - detector.releaseV) / 2) : ofTeeth;
   }
 
