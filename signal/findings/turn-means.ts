@@ -137,6 +137,8 @@ export class TurnMeans {
     const { kind, supplyV } = channel.sensor;
     if (this.swingV < Math.max(leastOfLargest * this.largestV, noiseV > 0 ? leastSigmas * noiseV : 0))
       return true;
+    // So few samples a tooth that noise is not known: noise may be all it is.
+    if (Number.isNaN(noiseV) && this.context.rateHz < fewestSamples * this.toothHz) return true;
     if (supplyV === null) return false;
     if (kind !== 'linear') return this.swingV < leastOfSupply * supplyV;
     // Mains hum may be all there is on a shaft at rest.
