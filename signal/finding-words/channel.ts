@@ -11,7 +11,7 @@ export const channelWords = {
         : `Raise the cutoff of the filter, which leaves ${short(evidence.filterPercent)} % of the teeth at this speed.`,
   }),
   clipping: (channel, evidence) => ({
-    message: `Channel ${channel} stands at the ${evidence.rail} end of its range (${short(evidence.railV)} V) for ${short(evidence.railPercent)} % of the time, so its peaks are cut off.`,
+    message: `Channel ${channel} stands at the ${evidence.rail} end of its range (${short(evidence.railV)} V) for ${short(evidence.railPercent)} % of the time, so that it is cut off there.`,
     remedy:
       evidence.cutBy === 'sensor'
         ? 'Widen the air gap or take a less sensitive sensor: its own output can go no further.'

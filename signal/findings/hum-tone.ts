@@ -9,7 +9,8 @@ export type Tone = { hz: number; amplitudeV: number; bin: number };
  *
  * With r the size of a neighbour of the peak over the peak, a tone behind a Hann window stands d = (2 r - 1) / (r + 1) bins
  * from it towards that neighbour, and is pi d (1 - d^2) / sin(pi d) times its size.
- * Source: Jain, Collins and Davis, IEEE Trans. Instrum. Meas. 28 (1979) 113-122, for the Hann window by Grandke (1983).
+ * Source: Jain, Collins and Davis, IEEE Trans. Instrum. Meas. 28 (1979) 113-122, for the Hann window by T. Grandke, ibid. 32 (1983)
+ * 350-355 (both from memory; checked by the test beside).
  */
 export function toneNear(spectrum: Spectrum, binHz: number, hz: number, reachHz: number): Tone | null {
   const last = spectrum.re.length - 3;
