@@ -60,7 +60,8 @@ export class DutyShiftRule implements FindingRule {
     const shift = means.duty - usual;
     const least = own ? opensAt : opensBesideAt;
     const limit = latch.open ? staysAt : Math.max(least, errors * means.dutyError);
-    const shifted = Math.abs(shift) > limit && this.swingIsUsual(index);
+    // A fitted band that makes room for a weak tooth moves the duty of all others by itself.
+    const shifted = Math.abs(shift) > limit && means.bandStays && this.swingIsUsual(index);
     const fromHalf = means.duty - 0.5;
     const unequal =
       path.channel.sensor.kind === 'latch' && Math.abs(fromHalf) > (latch.open ? latchStaysAt : latchOpensAt);
