@@ -15,6 +15,8 @@ const mostCloseShare = 0.125;
 const straysOpenAt = 2;
 const leastWindowS = 3;
 const windowTurns = 8;
+/** What chatters at stand-still may look like a few teeth. */
+const turnsForStrays = 2;
 /** Nearer to a tooth than this, in pitches, a stray pulse is bounce of its flank. */
 const clearOfTooth = 0.15;
 const mostStraysShare = 0.2;
@@ -62,7 +64,8 @@ export class ExtraPulseRule implements FindingRule {
     }
     const strays = recent.filter(({ place }) => isClear(place - Math.floor(place)));
     const teeth = Math.min(count, windowS / pitchS) * (1 - missing / positions);
-    if (strays.length === 0 || recent.length > mostStraysShare * teeth) return;
+    if (strays.length === 0 || recent.length > mostStraysShare * teeth || count < turnsForStrays * positions)
+      return;
     // Pulses at one place only are waited for: the third one tells that it is the wheel's.
     const scattered = strays.some(({ place }) => !extras.isSame(place, strays[0]!.place));
     const isOpen = latch.open?.evidence.where === 'anywhere';
