@@ -18,6 +18,8 @@ const latchOpensAt = 0.2;
 const latchStaysAt = 0.17;
 const farLarger = 3;
 const looksForBaseline = 2;
+/** Share of the swing. */
+const mostOff = 0.08;
 const looksToOpen = 2;
 
 /**
@@ -61,7 +63,7 @@ export class DutyShiftRule implements FindingRule {
     const least = own ? opensAt : opensBesideAt;
     const limit = latch.open ? staysAt : Math.max(least, errors * means.dutyError);
     // A fitted band that makes room for a weak tooth moves the duty of all others by itself.
-    const shifted = Math.abs(shift) > limit && means.bandStays && this.swingIsUsual(index);
+    const shifted = Math.abs(shift) > limit && means.bandOff < mostOff && this.swingIsUsual(index);
     const fromHalf = means.duty - 0.5;
     const unequal =
       path.channel.sensor.kind === 'latch' && Math.abs(fromHalf) > (latch.open ? latchStaysAt : latchOpensAt);

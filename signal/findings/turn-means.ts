@@ -62,6 +62,8 @@ export class TurnMeans {
   private isNew = false;
   private beforeHz = NaN;
   private beforeMidV = NaN;
+  /** How far the middle of a fitted band stands from where the mean tooth would have it, share of the swing. */
+  bandOff = 0;
   /** Between the last two looks, s; 0 before the second. */
   looksS = 0;
   private largestV = 0;
@@ -126,9 +128,11 @@ export class TurnMeans {
     const midV = (operateV + releaseV) / 2;
     const movedV = Math.abs(midV - this.beforeMidV);
     this.beforeMidV = midV;
+    this.bandOff = 0;
     if (band.mode === 'fixed') return true;
     const homeV = this.lowV + ((band.operateFraction + band.releaseFraction) / 2) * this.swingV;
-    return movedV < bandShare * this.swingV && Math.abs(midV - homeV) < homeShare * this.swingV;
+    this.bandOff = Math.abs(midV - homeV) / this.swingV;
+    return movedV < bandShare * this.swingV && this.bandOff < homeShare;
   }
 
   /** Edges that noise made of a line at rest are no teeth to judge. */
