@@ -82,7 +82,9 @@ export class WeakSwingRule implements FindingRule {
   }
 
   private noisy(path: ChannelPath, means: TurnMeans, open: boolean): SwingSight | null {
-    if (this.context.rateHz < fewestSamples * means.toothHz) return null;
+    // The steps of a switching sensor pass for noise where they are close.
+    if (path.channel.sensor.kind !== 'linear' || this.context.rateHz < fewestSamples * means.toothHz)
+      return null;
     return againstNoise(path, means, open);
   }
 
