@@ -37,6 +37,7 @@ export function runHold(
     }
     if (crosses) {
       d.wouldBeHigh = !d.wouldBeHigh;
+      d.rejectedAt = base + j;
       sink.rejected(at, NaN, d.wouldBeHigh);
     }
     if (d.high ? x > d.extremeV : x < d.extremeV) d.extremeV = x;

@@ -32,6 +32,8 @@ export type Detector = {
   midAt: number;
   /** Size of the step across that crossing, V a sample. */
   midStepV: number;
+  /** Sample at which the last rejection was decided. */
+  rejectedAt: number;
   holdSamples: number;
   holdEndAt: number;
   /** State during hold-off, and where a band without hold-off would be. */
@@ -74,6 +76,7 @@ export function createDetector(holdSamples: number, pauseAtEdges: boolean): Dete
     backV: NaN,
     midAt: NaN,
     midStepV: NaN,
+    rejectedAt: NaN,
     holdSamples,
     holdEndAt: NaN,
     high: false,

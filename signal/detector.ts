@@ -73,6 +73,7 @@ export function runDetector(
           d.reachV = Math.max(d.reachV, x);
           d.zone = zones.lowUp;
         } else {
+          d.rejectedAt = base + j;
           sink.rejected(d.midAt, d.reachV, true);
           d.zone = zones.low;
         }
@@ -117,6 +118,7 @@ export function runDetector(
           d.reachV = Math.min(d.reachV, x);
           d.zone = zones.highDown;
         } else {
+          d.rejectedAt = base + j;
           sink.rejected(d.midAt, d.reachV, false);
           d.zone = zones.high;
         }

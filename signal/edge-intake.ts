@@ -104,11 +104,11 @@ export class EdgeIntake {
   }
 
   /**
-   * Takes over all edges that the detector holds, at least one. One function over locals on purpose: a number that is
-   * passed to a function which is not inlined is boxed.
+   * Takes over edges that the detector holds, `first` to before `last`, at least one; with the last of them it is emptied.
+   * One function over locals on purpose: a number that is passed to a function which is not inlined is boxed.
    * @param noiseV rms of the filtered signal's noise, V; NaN: not known.
    */
-  take(noiseV: number): void {
+  take(noiseV: number, first: number, last: number): void {
     const { detector, levels, edges, queue, rateHz, missing, oneTooth, delays, marginMeter, log } = this;
     const raw = detector.edges;
     const { operateV, releaseV } = detector;
@@ -119,7 +119,7 @@ export class EdgeIntake {
     let { lowV, highV, wobbleV } = levels;
     let { duty, lastExtremeV, riseMidAt, fallMidAt, risePerV, fallPerV, periodSamples, delayS } = this;
     let { typicalSamples } = this;
-    for (let k = 0; k < raw.count; k++) {
+    for (let k = first; k < last; k++) {
       const at = raw.at[k]!;
       const midAt = raw.midAt[k]!;
       const extremeV = raw.extremeV[k]!;
@@ -204,9 +204,9 @@ export class EdgeIntake {
         log.fallWayS[tooth] = (at - midAt) * periodS;
       }
     }
-    this.edgeCount += raw.count;
-    this.lastEdgeAt = raw.at[raw.count - 1]!;
-    raw.count = 0;
+    this.edgeCount += last - first;
+    this.lastEdgeAt = raw.at[last - 1]!;
+    if (last === raw.count) raw.count = 0;
     levels.lowV = lowV;
     levels.highV = highV;
     levels.wobbleV = wobbleV;

@@ -139,7 +139,7 @@ export class FittedBand extends BandKeeper {
     const rising = this.isRising;
     const extremeV = detector.edges.extremeV[0]!;
     const otherV = intake.lastExtremeV;
-    intake.take(noiseV);
+    intake.take(noiseV, 0, this.detector.edges.count);
     if (!rising && this.grown.note(levels, extremeV, otherV, intake.log.count)) {
       intake.typicalSamples = NaN;
       eye.open(levels.lowV, levels.highV);

@@ -25,6 +25,9 @@ export class FixedBand extends BandKeeper {
   private watchedTo = 0;
   private auditAt = 0;
   private ticks = 0;
+  /** First sample after the last tick; and so late after the one before an edge is late, as of then. */
+  private tickAt = 0;
+  private lateSamples = NaN;
   // The chunk that is being scanned.
   private chunk: Float64Array = new Float64Array(1);
   private chunkFrom = 0;
@@ -66,17 +69,20 @@ export class FixedBand extends BandKeeper {
 
   override tick(nextAt: number, noiseV: number, quantumV: number): void {
     super.tick(nextAt, noiseV, quantumV);
+    this.tickAt = nextAt;
+    this.lateSamples = longShare * this.intake.typicalSamples;
     if (++this.ticks % ticksBetweenAudits === 0) this.watchTo(this.edgeCount + edgesOfAudit, nextAt);
   }
 
   override rejected(at: number): void {
     super.rejected(at);
-    this.watchOn(Math.floor(at));
+    // Not from the crossing on, which may lie in a block that is gone.
+    this.watchOn(this.detector.rejectedAt);
   }
 
   override toothMissed(): void {
     super.toothMissed();
-    this.watchOn(Math.ceil(this.lastEdgeAt));
+    this.watchOn(this.tickAt);
   }
 
   quietSamples(): number {
@@ -92,25 +98,33 @@ export class FixedBand extends BandKeeper {
   protected takeEdges(): void {
     const { edges } = this.detector;
     const { intake, auditAt, watchedTo } = this;
-    const lateSamples = longShare * intake.typicalSamples;
     const isAuditDue = intake.edgeCount + edges.count > auditAt && intake.edgeCount < watchedTo;
+    let taken = 0;
     for (let k = 0; k < edges.count; k++) {
       const same =
         k > 1 ? edges.midAt[k - 2]! : edges.flags[k]! & edgeRising ? intake.riseMidAt : intake.fallMidAt;
-      if (isAuditDue || edges.midAt[k]! - same > lateSamples)
-        this.lookAt(k, edges.midAt[k]! - same > lateSamples);
+      const isLate = edges.midAt[k]! - same > this.lateSamples;
+      if (!isAuditDue && !isLate) continue;
+      // Whatever came before has to be known by then, wherever blocks end.
+      if (k > taken) intake.take(this.noiseV, taken, k);
+      taken = k;
+      this.lookAt(k, isLate);
     }
-    intake.take(this.noiseV);
+    intake.take(this.noiseV, taken, edges.count);
     this.finder.wait(null);
   }
 
+  /** Edge `k` that the detector holds, of which the ones before have been taken. */
   private lookAt(k: number, isLate: boolean): void {
     const { teethPerTurn } = this.options;
     const from = Math.ceil(this.detector.edges.at[k]!);
-    const number = this.edgeCount + k;
+    const number = this.edgeCount;
+    // As if the block had ended before it.
+    if (number > this.watchedTo) this.isWatching = false;
     const isAudit = number >= this.auditAt && number < this.watchedTo && teethPerTurn > 1;
     if (isLate) this.watchOn(from);
     if (isAudit) this.auditAt = number + (Math.max(fewestEdges / 2, teethPerTurn) | 1);
+    if (this.past === null || this.past === this.history) this.past = this.isWatching ? this.history : null;
     if (!(isLate || isAudit) || !this.look(k)) return;
     this.noteUncounted(k);
     this.watchOn(from);

@@ -10,7 +10,7 @@ import { displaced, patternOf, roughness, slowWave } from '@/signal/wheel-uneven
 
 const turnsNeeded = 10;
 /** Share of the pitch by which a tooth's distance to its neighbour is off; open findings stay down to four fifths. */
-const offShare = 0.05;
+const offShare = 0.06;
 const faultShare = 0.15;
 /** Share of the swing by which a tooth is weaker or stronger than the others. */
 const swingShare = 0.4;
