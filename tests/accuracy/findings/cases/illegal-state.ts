@@ -11,8 +11,8 @@ export const illegalState: CaseMaker = (draw) => {
   const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 2 });
   const { beginS, endS } = timing;
   const perS = draw.uniform(3, Math.min(8, 0.4 * machine.toothHz));
-  // Shorter than half a tooth no count is lost.
-  const forS = draw.uniform(0.55, 0.8) / machine.toothHz;
+  // About half a tooth: two states on at once. Longer ones look like a step back.
+  const forS = draw.uniform(0.4, 0.6) / machine.toothHz;
   return {
     ...benchOf(machine, runningMotion(draw, machine, timing.seconds), {
       faults: [{ kind: 'freeze', beginS, endS, perS, forS }],
