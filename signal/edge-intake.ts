@@ -17,6 +17,7 @@ import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import type { EdgeColumns } from '@/signal/pipeline-types';
 import { dcDelayS } from '@/signal/response';
 import { samplesPerTick } from '@/signal/ticks';
+import { strongShare } from '@/signal/tooth-size';
 import { breakLog, createToothLog } from '@/signal/tooth-log';
 import type { ToothLog } from '@/signal/tooth-log';
 
@@ -29,7 +30,10 @@ export type IntakeOptions = {
   correlation?: number | undefined;
 };
 
-/** The usual interval follows each one by so much at most: one tooth too many, or too few, does not make it another. */
+/**
+ * The usual interval follows each one by so much at most, unless two of one polarity in a row agree as well: one tooth too
+ * many, or too few, does not make it another.
+ */
 const mostLonger = 1.25;
 const mostShorter = 0.8;
 /** Noise takes no more than the rest of half the band from what the flank has to climb. */
@@ -53,6 +57,9 @@ export class EdgeIntake {
   periodSamples = NaN;
   /** The interval between teeth, position by position, that is usual here; samples. */
   typicalSamples = NaN;
+  /** The last two intervals, of either polarity, samples. */
+  private periodBefore = NaN;
+  private periodBetween = NaN;
   /** Last accepted edge, samples, delay not taken off. */
   lastEdgeAt = NaN;
   /** Its peak or trough, V; NaN after a gap. */
@@ -118,7 +125,9 @@ export class EdgeIntake {
     const periodS = 1 / rateHz;
     let { lowV, highV, wobbleV } = levels;
     let { duty, lastExtremeV, riseMidAt, fallMidAt, risePerV, fallPerV, periodSamples, delayS } = this;
-    let { typicalSamples } = this;
+    let { typicalSamples, periodBefore, periodBetween } = this;
+    // The one tooth of such a wheel has no other to be weak beside.
+    const strongAt = oneTooth ? 0.51 : strongShare;
     for (let k = first; k < last; k++) {
       const at = raw.at[k]!;
       const midAt = raw.midAt[k]!;
@@ -136,8 +145,8 @@ export class EdgeIntake {
       lastExtremeV = extremeV;
       if (!(toothV < swingV / 2)) wobbleV *= 0.97;
       else if (oneTooth && toothV > wobbleV) wobbleV = toothV;
-      if (rising) lowV = followed(lowV, extremeV, swingV, toothV);
-      else highV = followed(highV, extremeV, swingV, toothV);
+      if (rising) lowV = followed(lowV, extremeV, swingV, toothV, strongAt);
+      else highV = followed(highV, extremeV, swingV, toothV, strongAt);
 
       const before = rising ? riseMidAt : fallMidAt;
       if (rising) {
@@ -154,9 +163,13 @@ export class EdgeIntake {
         const gap = missing > 0 && spansGap(period / periodSamples, missing + 1);
         periodSamples = gap ? period / (missing + 1) : period;
         const ratio = periodSamples / typicalSamples;
-        if (ratio > mostLonger) typicalSamples *= mostLonger;
+        const again = periodSamples / periodBefore;
+        if (again >= mostShorter && again <= mostLonger) typicalSamples = periodSamples;
+        else if (ratio > mostLonger) typicalSamples *= mostLonger;
         else if (ratio < mostShorter) typicalSamples *= mostShorter;
         else typicalSamples = periodSamples;
+        periodBefore = periodBetween;
+        periodBetween = periodSamples;
         delayS = delayAt(delays, rateHz / periodSamples);
         this.delayKnown = true;
       }
@@ -218,6 +231,8 @@ export class EdgeIntake {
     this.fallPerV = fallPerV;
     this.periodSamples = periodSamples;
     this.typicalSamples = typicalSamples;
+    this.periodBefore = periodBefore;
+    this.periodBetween = periodBetween;
     this.delayS = delayS;
   }
 }

@@ -12,49 +12,20 @@ import type { Levels } from '@/signal/levels';
 import { fitDrift } from '@/signal/tooth-drift';
 import { readableFrom } from '@/signal/tooth-log';
 import type { ToothLog } from '@/signal/tooth-log';
+import type { ToothProof } from '@/signal/tooth-proof';
+import { leastAverageV, leastSigmas, leastToothV, strongShare } from '@/signal/tooth-size';
 
-/** A weak tooth stands at least so far out, share of the usual swing: teeth that differ by four to one, and a little more. */
-const weakestShare = 0.21;
-/** Where there are many, they stand so far out on average; less is hum or idle noise that goes on between the teeth. */
-const weakOnAverage = 0.225;
 const manyWeak = 8;
-/** What noise adds to the swing of a tooth, weak or strong: peak and trough are the outermost of many samples. */
-const noiseOfSwing = 3.5;
 /** An eye that would be narrower, share of the usual swing, is the mark of a step or a drift. */
 const closedShare = 0.12;
-/** Teeth weaker than this share of the usual swing must stand in the rhythm of the others. */
-export const strongShare = 0.8;
-/** In the rhythm: so much of the usual interval. */
-const leastInterval = 0.6;
-const longestInterval = 1.67;
-/** The same across a wheel's gap. */
-const leastGap = 0.75;
-const longestGap = 1.33;
-/** A band that leaves less room than so many noise sigmas would count noise. */
-export const leastSigmas = 12;
-/** Where the shaft may turn to and fro: a weak tooth was so weak a turn before, share of the usual swing. */
-const weakBefore = 0.9;
-const mostSearched = 64;
 const fewestTeeth = 8;
 const fewestForDrift = 4;
 /** A bump is kept clear of where that leaves this share of the eye. */
 const clearShare = 1 / 4;
 /** In the usual interval, share of the swing: what moves faster is the teeth's own doing. */
 const fastestDrift = 0.1;
-/** Drift is believed where the eye is so much wider for it. */
+/** Drift is believed where the eye then holds more teeth, or as many and is so much wider. */
 const widerForDrift = 1.1;
-
-/**
- * The least that a tooth stands out by, V, where the usual ones stand out by `swingV`.
- * @param noiseV rms; NaN: not known.
- */
-export function leastToothV(swingV: number, noiseV: number): number {
-  return shareWithNoise(weakestShare, swingV, noiseV);
-}
-
-function shareWithNoise(share: number, swingV: number, noiseV: number): number {
-  return share * swingV + (noiseV > 0 ? (1 - share) * noiseOfSwing * noiseV : 0);
-}
 
 export class Eye {
   lowV = NaN;
@@ -64,10 +35,7 @@ export class Eye {
   private readonly log: ToothLog;
   /** Teeth of a turn, or as many as can be kept. */
   private readonly turn: number;
-  /** Positions from the tooth before the wheel's gap to the one behind it; 1: there is no gap. */
-  private readonly gapSpan: number;
-  /** So many teeth before, a weak tooth must have been weak as well; 0: need not. */
-  private readonly turnBefore: number;
+  private readonly proof: ToothProof;
   /** Bumps beside the teeth that are none: the band keeps clear of them where the teeth leave room. */
   private lobeLowV = NaN;
   private lobeHighV = NaN;
@@ -75,14 +43,13 @@ export class Eye {
   // What `span` finds.
   private spanLowV = NaN;
   private spanHighV = NaN;
+  private spanTeeth = 0;
   private weakCount = 0;
   private weakSumV = NaN;
 
-  /** @param missing teeth that the wheel lacks in a row. @param isRing the shaft may turn to and fro. */
-  constructor(log: ToothLog, teethPerTurn: number, missing: number, isRing: boolean) {
+  constructor(log: ToothLog, teethPerTurn: number, proof: ToothProof) {
     this.log = log;
-    this.gapSpan = missing + 1;
-    this.turnBefore = isRing ? teethPerTurn : 0;
+    this.proof = proof;
     this.turn = Math.min(Math.max(fewestTeeth, teethPerTurn), log.length - 1);
   }
 
@@ -122,7 +89,7 @@ export class Eye {
     const peak = log.peakV[n & log.mask]!;
     const swingV = highV - lowV;
     if (!(peak - trough < strongShare * swingV) || peak - trough < leastToothV(swingV, noiseV)) return true;
-    if (!this.isProven(n, oldest, typicalS, swingV)) return true;
+    if (!this.proof.isProven(n, oldest, typicalS, swingV)) return true;
     return this.narrow(true, trough, swingV) && this.narrow(false, peak, swingV);
   }
 
@@ -143,20 +110,19 @@ export class Eye {
     this.weakAreTeeth = true;
     this.span(levels, typicalS, noiseV, 0);
     const swingV = levels.highV - levels.lowV;
-    if (
-      this.weakCount >= manyWeak &&
-      this.weakSumV < this.weakCount * shareWithNoise(weakOnAverage, swingV, noiseV)
-    ) {
+    if (this.weakCount >= manyWeak && this.weakSumV < this.weakCount * leastAverageV(swingV, noiseV)) {
       this.weakAreTeeth = false;
       this.span(levels, typicalS, noiseV, 0);
     }
     if (!(this.spanHighV - this.spanLowV < Infinity)) return;
     let low = this.spanLowV;
     let high = this.spanHighV;
+    const teeth = this.spanTeeth;
     const driftVPerS = fitDrift(log, readableFrom(log, log.count - this.turn), fewestForDrift);
     if (driftVPerS !== 0 && Math.abs(driftVPerS) * typicalS <= fastestDrift * swingV) {
       this.span(levels, typicalS, noiseV, driftVPerS);
-      if (this.spanHighV - this.spanLowV > widerForDrift * (high - low)) {
+      const isWider = this.spanHighV - this.spanLowV > widerForDrift * (high - low);
+      if (this.spanTeeth > teeth || (this.spanTeeth === teeth && isWider)) {
         low = this.spanLowV;
         high = this.spanHighV;
       }
@@ -176,9 +142,11 @@ export class Eye {
     const leastV = closedShare * swingV;
     const oldest = readableFrom(log, 0);
     const from = readableFrom(log, log.count - this.turn);
-    const newestS = riseS[(log.count - 1) & mask]!;
+    // Where drift is taken off, as it will be at the next tooth.
+    const newestS = riseS[(log.count - 1) & mask]! + typicalS;
     let high = Infinity;
     let low = -Infinity;
+    let teeth = 0;
     this.weakCount = 0;
     this.weakSumV = 0;
     for (let n = log.count - 1; n >= from; n--) {
@@ -189,7 +157,7 @@ export class Eye {
       const trough = troughV[i]! + movedV;
       if (peak - trough < strongV) {
         if (peak - trough < weakestV || !this.weakAreTeeth) break;
-        if (!this.isProven(n, oldest, typicalS, swingV)) continue;
+        if (!this.proof.isProven(n, oldest, typicalS, swingV)) continue;
         this.weakCount++;
         this.weakSumV += peak - trough;
       }
@@ -198,41 +166,11 @@ export class Eye {
       if (highest - lowest < leastV) break;
       high = highest;
       low = lowest;
+      teeth++;
     }
     this.spanLowV = low;
     this.spanHighV = high;
-  }
-
-  /**
-   * Tooth `n` is where the one before and the one after let it be expected; and, where a reversal may have cut it short, the
-   * same one was weak a turn before.
-   */
-  private isProven(n: number, oldest: number, typicalS: number, swingV: number): boolean {
-    const { log, turnBefore } = this;
-    const { riseS, mask } = log;
-    const here = riseS[n & mask]!;
-    if (n === oldest || n === log.count - 1) return false;
-    if (!this.isUsual((here - riseS[(n - 1) & mask]!) / typicalS)) return false;
-    if (!this.isUsual((riseS[(n + 1) & mask]! - here) / typicalS)) return false;
-    return turnBefore === 0 || this.wasWeakBefore(n, oldest, swingV);
-  }
-
-  /** Tooth `n` was weak a turn before as well, and others since then were not: the shaft does not just shake. */
-  private wasWeakBefore(n: number, oldest: number, swingV: number): boolean {
-    const { log, turnBefore } = this;
-    const { peakV, troughV, mask } = log;
-    const before = n - turnBefore;
-    if (before < oldest || !(peakV[before & mask]! - troughV[before & mask]! < weakBefore * swingV))
-      return false;
-    for (let k = Math.max(before, n - mostSearched) + 1; k < n; k++)
-      if (peakV[k & mask]! - troughV[k & mask]! >= strongShare * swingV) return true;
-    return false;
-  }
-
-  private isUsual(ratio: number): boolean {
-    const { gapSpan } = this;
-    if (ratio >= leastInterval && ratio <= longestInterval) return true;
-    return gapSpan > 1 && ratio >= leastGap * gapSpan && ratio <= longestGap * gapSpan;
+    this.spanTeeth = teeth;
   }
 
   private forgetLobes(): void {

@@ -7,7 +7,7 @@ import type { BandOptions } from '@/signal/band-keeper';
 import { runDetector } from '@/signal/detector';
 import { keepState, resumeAfter } from '@/signal/detector-state';
 import type { DetectorSink } from '@/signal/detector-state';
-import { Eye, leastSigmas, strongShare } from '@/signal/eye';
+import { Eye } from '@/signal/eye';
 import { GrownTeeth } from '@/signal/grown-teeth';
 import { fitThresholds } from '@/signal/levels';
 import type { Levels } from '@/signal/levels';
@@ -15,6 +15,8 @@ import type { Band } from '@/signal/model';
 import { History } from '@/signal/past';
 import { edgeRising } from '@/signal/pipeline-types';
 import type { Remembered } from '@/signal/remembered';
+import { ToothProof } from '@/signal/tooth-proof';
+import { leastSigmas, strongShare } from '@/signal/tooth-size';
 
 const mute: DetectorSink = { rejected: () => undefined, wobble: () => undefined };
 /** After levels were found, the first stretches are looked through for weak teeth, then one in half a turn. */
@@ -23,12 +25,11 @@ const edgesBetweenAudits = 9;
 /** A step of less than this share of the eye, or than the noise, is neither made nor reported. */
 const leastStep = 0.02;
 const mostStep = 0.04;
-/** What is counted in a turn while some teeth are not, share of its teeth. */
-const turnShare = 0.75;
 
 export class FittedBand extends BandKeeper {
   readonly isFixed = false;
   private readonly fractions: Extract<Band, { mode: 'fitted' }>;
+  private readonly proof: ToothProof;
   private readonly eye: Eye;
   /** What the band has to fit into: the eye, or the levels of a wheel that has but one tooth to differ from. */
   private readonly room: Eye | Levels;
@@ -38,15 +39,13 @@ export class FittedBand extends BandKeeper {
   private auditAt = 0;
   private startedAt = 0;
   private refreshedAt = 0;
-  /** Teeth counted when weak ones were last found, and how often they were. */
-  private readonly foundAt = new Float64Array(4).fill(-Infinity);
-  private findings = 0;
 
   constructor(options: BandOptions<Extract<Band, { mode: 'fitted' }>>) {
     super(options);
     const { band, rateHz, startIndex, teethPerTurn, chunk } = options;
     this.fractions = band;
-    this.eye = new Eye(this.intake.log, teethPerTurn, options.missingPulses, this.isRing);
+    this.proof = new ToothProof(this.intake.log, teethPerTurn, options.missingPulses, this.isRing);
+    this.eye = new Eye(this.intake.log, teethPerTurn, this.proof);
     this.room = teethPerTurn > 1 ? this.eye : this.levels;
     this.history = new History(rateHz, chunk, startIndex);
     this.finder.startFromNothing(startIndex);
@@ -103,7 +102,7 @@ export class FittedBand extends BandKeeper {
     if (
       isWeak &&
       room === this.eye &&
-      this.isBelieved() &&
+      this.proof.isBelieved(this.levels.highV - this.levels.lowV) &&
       this.closeEye(this.isRising) &&
       this.mayFindLate(at)
     ) {
@@ -170,21 +169,6 @@ export class FittedBand extends BandKeeper {
     if (edgeCount >= this.startedAt + edgesOfStart)
       this.auditAt = edgeCount + (Math.max(edgesBetweenAudits, teethPerTurn) | 1);
     return true;
-  }
-
-  /** Where the shaft may turn to and fro, a peak that a reversal cut short is no weak tooth: it must come again after a turn. */
-  private isBelieved(): boolean {
-    const { teethPerTurn } = this.options;
-    if (!this.isRing) return true;
-    const { count } = this.intake.log;
-    const { foundAt } = this;
-    let isAgain = false;
-    for (let k = 0; k < foundAt.length; k++) {
-      const since = count - foundAt[k]!;
-      if (since <= teethPerTurn && since >= turnShare * teethPerTurn) isAgain = true;
-    }
-    foundAt[this.findings++ % foundAt.length] = count;
-    return isAgain;
   }
 
   private noteLobe(): void {

@@ -9,6 +9,7 @@
  * seen before: a single spike, or a step, is then not what the teeth are measured by. Nothing is decided from fewer.
  */
 import type { Levels } from '@/signal/levels';
+import { leastQuanta, leastSigmas } from '@/signal/tooth-size';
 
 export type Hunter = {
   /** +1 looking for a peak, -1 for a trough, 0 for either. */
@@ -32,9 +33,6 @@ export type Hunter = {
   foundHighV: number;
 };
 
-const minSigmas = 12;
-/** A swing below so many quanta may be one code toggling. */
-const minQuanta = 4;
 const alike = 0.6;
 const fewAlike = 3;
 const manyAlike = 8;
@@ -44,7 +42,7 @@ const leastShare = 1e-9;
 const most = 64;
 /** What is less than this share of the levels known before, and no more than that outside of them. */
 const farSmaller = 0.6;
-const little = 0.1;
+const little = 0.25;
 
 const coarse = new Float64Array(most + 1);
 const swings = new Float64Array(3);
@@ -87,7 +85,9 @@ export function startHunt(hunter: Hunter, leastV: number, known: Levels, aside: 
 
 /** Swings below this may be noise, V; infinite while the noise is not known (NaN). */
 export function swingFloorV(hunter: Hunter, noiseV: number, quantumV: number): number {
-  return Number.isNaN(noiseV) ? Infinity : Math.max(minSigmas * noiseV, minQuanta * quantumV, hunter.leastV);
+  return Number.isNaN(noiseV)
+    ? Infinity
+    : Math.max(leastSigmas * noiseV, leastQuanta * quantumV, hunter.leastV);
 }
 
 /**

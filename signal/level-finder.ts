@@ -5,11 +5,11 @@
  */
 import { forgetState, zones } from '@/signal/detector-state';
 import type { Detector } from '@/signal/detector-state';
-import { leastToothV } from '@/signal/eye';
 import { createHunter, hunt, startHunt, swingFloorV } from '@/signal/hunter';
 import type { Levels } from '@/signal/levels';
 import type { Past } from '@/signal/past';
 import { Remembered } from '@/signal/remembered';
+import { leastToothV } from '@/signal/tooth-size';
 
 /** Whom the finder works for. */
 export type FinderHost = {

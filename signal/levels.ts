@@ -3,12 +3,12 @@
  * fitted band that follows from them.
  *
  * Each accepted tooth moves its level by a quarter of what it differs, and by no more than an eighth of the swing: one
- * wild peak cannot lift the band over the teeth. A tooth less than half as strong as the known swing moves it by a
- * thirty-second only: a bounce just across the band would else pull both levels towards the band, and so invite the
- * next. Peaks that are not counted move nothing, so levels stay where they are when the shaft stops.
+ * wild peak cannot lift the band over the teeth. A tooth less than four fifths as strong as the known swing moves it by
+ * less, by a thirty-second only from a half down: a bounce just across the band, or a peak that a reversal cuts short, would
+ * else pull both levels towards the band, and so invite the next. Peaks that are not counted move nothing, so levels stay where they are when the shaft stops.
  */
 import type { Band, BandLevels } from '@/signal/model';
-import { leastSigmas } from '@/signal/eye';
+import { leastSigmas } from '@/signal/tooth-size';
 
 export type Levels = {
   /** NaN: not known yet. */
@@ -21,6 +21,7 @@ export type Levels = {
 const share = 1 / 4;
 const shareOfWeak = 1 / 32;
 const mostOfSwing = 1 / 2;
+const weak = 0.5;
 
 export function createLevels(): Levels {
   // Numbers begin as fractions: a field that was ever a whole number changes its layout later.
@@ -32,12 +33,20 @@ export function createLevels(): Levels {
 /**
  * A level after one more tooth.
  * @param value the tooth's peak or trough, V. @param toothV its peak to peak, V; NaN where that was not seen.
+ * @param strongAt from this share of the swing on it counts in full; more than a half.
  */
-export function followed(level: number, value: number, swingV: number, toothV: number): number {
+export function followed(
+  level: number,
+  value: number,
+  swingV: number,
+  toothV: number,
+  strongAt: number,
+): number {
   if (Number.isNaN(level)) return value;
   if (Number.isNaN(swingV)) return level + share * (value - level);
   const most = mostOfSwing * swingV;
-  const gain = toothV < swingV / 2 ? shareOfWeak : share;
+  const strength = (toothV / swingV - weak) / (strongAt - weak);
+  const gain = strength < 1 ? shareOfWeak + (share - shareOfWeak) * Math.max(0, strength) : share;
   return level + gain * Math.min(most, Math.max(-most, value - level));
 }
 

@@ -1,21 +1,27 @@
 /**
- * How fast a whole signal drifts, from the log of its teeth: a straight line by least squares through the troughs,
- * through the peaks, and through the middles between them. The one that fits best is taken: on a wheel whose teeth differ,
- * pulses over a constant base have constant troughs, and swings about a constant middle have constant middles. Where troughs
- * and peaks both lie on lines the middle is taken: a swing that grows moves them apart, and is no drift.
+ * How fast a whole signal drifts, from the log of its teeth: a straight line by least squares through the troughs, through
+ * the peaks, and through the middles between a peak and the trough on either side of it. The one that fits best is taken: on
+ * a wheel whose teeth differ, pulses over a constant base have constant troughs, and swings about a constant middle have
+ * constant middles. Where troughs and peaks both lie on lines the middle is taken: a swing that grows moves them apart, and
+ * is no drift.
  */
 import type { ToothLog } from '@/signal/tooth-log';
 
-/** Of troughs, peaks and middles: sums of values, of values times times, and of squares. */
-const sums = new Float64Array(9);
-const series = 3;
+const troughs = 0;
+const peaks = 1;
+/** With the trough before the peak, and with the one after it. */
 const middles = 2;
+const middlesAfter = 3;
+const series = 4;
+/** Of each: sums of values, of values times times, and of squares. */
+const sums = new Float64Array(3 * series);
+const values = new Float64Array(series);
 /** A line fits: rms of what is left, share of the swing. */
 const fitsShare = 0.05;
 
 /**
- * V/s, over the whole teeth from number `from` on.
- * @returns 0 where there are fewer than `fewest`.
+ * V/s, over the teeth from number `from` on that are whole and followed by another one.
+ * @returns 0 where there are fewer than `fewest`, or where none of the four lies on a line.
  */
 export function fitDrift(log: ToothLog, from: number, fewest: number): number {
   const { mask, riseS, peakV, troughV } = log;
@@ -26,11 +32,12 @@ export function fitDrift(log: ToothLog, from: number, fewest: number): number {
   // Against the first of them, so that a large baseline costs no digits.
   let zeroV = NaN;
   let zeroS = NaN;
-  for (let n = from; n < log.count; n++) {
+  for (let n = from; n < log.count - 1; n++) {
     const i = n & mask;
     const trough = troughV[i]!;
     const peak = peakV[i]!;
-    if (Number.isNaN(trough + peak)) continue;
+    const after = troughV[(n + 1) & mask]!;
+    if (Number.isNaN(trough + peak + after)) continue;
     if (count++ === 0) {
       zeroV = trough;
       zeroS = riseS[i]!;
@@ -38,8 +45,12 @@ export function fitDrift(log: ToothLog, from: number, fewest: number): number {
     const t = riseS[i]! - zeroS;
     times += t;
     squares += t * t;
+    values[troughs] = trough - zeroV;
+    values[peaks] = peak - zeroV;
+    values[middles] = (trough + peak) / 2 - zeroV;
+    values[middlesAfter] = (peak + after) / 2 - zeroV;
     for (let s = 0; s < series; s++) {
-      const value = (s === 0 ? trough : s === 1 ? peak : (trough + peak) / 2) - zeroV;
+      const value = values[s]!;
       sums[s] = sums[s]! + value;
       sums[s + series] = sums[s + series]! + value * t;
       sums[s + 2 * series] = sums[s + 2 * series]! + value * value;
@@ -50,12 +61,15 @@ export function fitDrift(log: ToothLog, from: number, fewest: number): number {
   const slope = (s: number): number => (sums[s + series]! - (sums[s]! * times) / count) / spread;
   const residue = (s: number): number =>
     Math.max(0, sums[s + 2 * series]! - (sums[s]! * sums[s]!) / count - slope(s) ** 2 * spread);
-  const ofTroughs = residue(0);
-  const ofPeaks = residue(1);
-  const fitsV = (fitsShare * (sums[1]! - sums[0]!)) / count;
-  let best = ofTroughs < ofPeaks ? 0 : 1;
-  if (Math.max(ofTroughs, ofPeaks) < count * fitsV * fitsV || residue(middles) < residue(best))
-    best = middles;
+  const fitsV = (fitsShare * (sums[peaks]! - sums[troughs]!)) / count;
+  const most = count * fitsV * fitsV;
+  let best: number = middles;
+  if (residue(middlesAfter) < residue(best)) best = middlesAfter;
+  if (Math.max(residue(troughs), residue(peaks)) >= most) {
+    if (residue(troughs) < residue(best)) best = troughs;
+    if (residue(peaks) < residue(best)) best = peaks;
+  }
+  if (!(residue(best) < most)) return 0;
   const driftVPerS = slope(best);
   return Number.isFinite(driftVPerS) ? driftVPerS : 0;
 }

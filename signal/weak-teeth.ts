@@ -7,15 +7,14 @@
  * in it. Where all intervals are alike, as on a wheel whose every second tooth is weak, bumps must divide the interval
  * evenly and be of the counted teeth's own width.
  */
-import { leastSigmas, leastToothV } from '@/signal/eye';
 import { Stretch } from '@/signal/stretch';
+import { leastQuanta, leastSigmas, leastToothV } from '@/signal/tooth-size';
 
 /** An interval is long from so many usual ones on. */
 export const longShare = 1.5;
 const mostPlaces = 32;
 /** What is less beside the swing is not even looked at. */
 const bumpShare = 0.1;
-const minQuanta = 4;
 /** How far from its place a tooth may stand, share of the spacing; more closely where only evenness proves it. */
 const offPlace = 0.3;
 const offEven = 0.15;
@@ -74,7 +73,7 @@ export class WeakTeeth {
     const intervalAt = this.midAt - this.sameMidAt;
     const long = intervalAt > longShare * this.typicalSamples;
     const places = Math.round(intervalAt / this.typicalSamples);
-    const clearV = Math.max(leastSigmas * noiseV, minQuanta * quantumV);
+    const clearV = Math.max(leastSigmas * noiseV, leastQuanta * quantumV);
     // NaN where the noise is not known.
     if (!(clearV >= 0) || !(swingV > 0) || (long && places > mostPlaces)) return;
     const from = Math.ceil(this.beforeAt - base);
@@ -99,7 +98,7 @@ export class WeakTeeth {
   survey(v: Float64Array, from: number, to: number): boolean {
     const { stretch, noiseV, quantumV } = this;
     const leastV = leastToothV(this.swingV, noiseV);
-    const clearV = Math.max(leastSigmas * noiseV, minQuanta * quantumV, leastV);
+    const clearV = Math.max(leastSigmas * noiseV, leastQuanta * quantumV, leastV);
     if (!(clearV > 0)) return false;
     stretch.search(v, from, to, 0, false, clearV);
     if (!this.isEven()) return false;
