@@ -66,10 +66,20 @@ export function endBurst(meter: NoiseMeter): void {
   const { burst, sizes } = meter;
   let least = burst[0]!;
   let largest = least;
+  let atLeast = 1;
+  let atLargest = 1;
   for (let i = 1; i < burstLength; i++) {
     const x = burst[i]!;
-    if (x < least) least = x;
-    else if (x > largest) largest = x;
+    if (x < least) {
+      least = x;
+      atLeast = 1;
+    } else if (x > largest) {
+      largest = x;
+      atLargest = 1;
+    } else {
+      if (x === least) atLeast++;
+      if (x === largest) atLargest++;
+    }
   }
   for (let i = 0; i < differences; i++) {
     const ends = burst[i]! + burst[i + 6]!;
@@ -85,11 +95,8 @@ export function endBurst(meter: NoiseMeter): void {
     const close = medianOf(sizes, closeDifferences) / (medianOfUnit * closeGain);
     if (close < farLess * sigma) sigma = close;
   }
-  sigma = Math.max(
-    sigma,
-    clippedNoiseV(burst, least, meter.quantumV),
-    clippedNoiseV(burst, largest, meter.quantumV),
-  );
+  if (atLeast >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, least, meter.quantumV));
+  if (atLargest >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, largest, meter.quantumV));
   const at = meter.seen % kept;
   replaceSorted(meter.sorted, Math.min(meter.seen, kept), meter.recent[at]!, sigma);
   meter.recent[at] = sigma;
@@ -98,7 +105,8 @@ export function endBurst(meter: NoiseMeter): void {
 
 /**
  * Noise that a rail cuts off on one side, so that many samples are all the same: the rms of what comes out on the other
- * side. It goes to and fro from sample to sample, which a tooth that clips does not. @returns 0 where there is none.
+ * side. It goes to and fro from sample to sample, which a tooth that clips does not. @param railV where enough samples are.
+ * @returns 0 where there is none.
  */
 function clippedNoiseV(burst: Float64Array, railV: number, quantumV: number): number {
   let outside = 0;
@@ -115,15 +123,24 @@ function clippedNoiseV(burst: Float64Array, railV: number, quantumV: number): nu
     }
     wasOutside = isOutside;
   }
-  if (burstLength - outside < fewestAtRail || runs < fewestRuns || outside > longestRun * runs) return 0;
+  if (runs < fewestRuns || outside > longestRun * runs) return 0;
   const rmsV = Math.sqrt(squares / outside);
   // A code that toggles is at both of its ends most of the time.
   return rmsV > mostQuanta * quantumV ? rmsV : 0;
 }
 
+/** Of an even number of values, which come out in another order: only those up to the middle need sorting. */
 function medianOf(values: Float64Array, count: number): number {
-  sortFew(values, count);
-  return (values[count / 2 - 1]! + values[count / 2]!) / 2;
+  const middle = count / 2;
+  sortFew(values, middle + 1);
+  for (let i = middle + 1; i < count; i++) {
+    const value = values[i]!;
+    if (value >= values[middle]!) continue;
+    let j = middle - 1;
+    for (; j >= 0 && values[j]! > value; j--) values[j + 1] = values[j]!;
+    values[j + 1] = value;
+  }
+  return (values[middle - 1]! + values[middle]!) / 2;
 }
 
 function learnQuantum(meter: NoiseMeter): void {
