@@ -8,9 +8,6 @@
  * Both are fitted to simulated ramps (q from 0.02 to 70; white noise, and noise behind Butterworth low passes of 0.01 to
  * 0.2 of the rate): the spread within 11 %, the lag within 0.15.
  */
-import type { Section } from '@/signal/filter-design';
-import { responseAt } from '@/signal/response';
-
 /** @param q see above; NaN: not known. */
 export function lagOf(q: number): number {
   return q > 1 ? 0.04 + 0.43 * Math.log(q) : 0;
@@ -19,23 +16,4 @@ export function lagOf(q: number): number {
 /** @param oneCrossing what a single crossing has, sqrt((2 + rho) / 3). */
 export function spreadOf(q: number, oneCrossing: number): number {
   return q > 2 ? Math.max(oneCrossing, 0.424 + 0.343 * Math.log(q)) : oneCrossing;
-}
-
-const steps = 1500;
-const decades = 7;
-
-/** Correlation between neighbouring samples of white noise behind the filter: the mean of cos w over |H|^2. */
-export function noiseCorrelation(sections: readonly Section[], rateHz: number): number {
-  if (sections.length === 0) return 0;
-  let power = 0;
-  let product = 0;
-  let lastW = 0;
-  for (let k = 0; k <= steps; k++) {
-    const w = Math.PI * 10 ** (-decades * (1 - k / steps));
-    const share = responseAt(sections, (w / (2 * Math.PI)) * rateHz, rateHz).magnitude ** 2 * (w - lastW);
-    power += share;
-    product += share * Math.cos(w);
-    lastW = w;
-  }
-  return product / power;
 }

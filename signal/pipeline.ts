@@ -10,7 +10,6 @@ import { mergeEdges } from '@/signal/edge-merge';
 import type { Lane } from '@/signal/edge-merge';
 import { designFilters } from '@/signal/filter-design';
 import { FindingsDesk } from '@/signal/findings/desk';
-import { noiseCorrelation } from '@/signal/flank-error';
 import { IndexWatch } from '@/signal/index-watch';
 import type { Channel, Result, SampleArray, Settings } from '@/signal/model';
 import { Motion } from '@/signal/motion';
@@ -24,7 +23,7 @@ import type {
   SampleTap,
   SetupIssue,
 } from '@/signal/pipeline-types';
-import { noiseGain } from '@/signal/response';
+import { noiseBehind } from '@/signal/response';
 import { memorySamples } from '@/signal/statistics/zero-phase';
 import { statusOf } from '@/signal/status';
 import { shaftStatus } from '@/signal/status-shaft';
@@ -62,8 +61,7 @@ class SignalPipeline implements Pipeline {
     // Filtered both ways, nothing is left to filter or to be taken off, and noise has passed the filter twice.
     const sections = bothWays ? [] : designed;
     const passed = bothWays ? [...designed, ...designed] : designed;
-    const gainOfNoise = noiseGain(passed, rateHz);
-    const correlation = noiseCorrelation(passed, rateHz);
+    const { gain: gainOfNoise, correlation } = noiseBehind(passed);
     const memory = memorySamples(sections);
     const bands: PipelineOutput['bands'] = [];
     const speed = createSpeedColumns();

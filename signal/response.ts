@@ -53,21 +53,47 @@ export function dcDelayS(sections: readonly Section[], rateHz: number): number {
   return samples / rateHz;
 }
 
-/** White noise of 1 V rms over 0 to half the rate comes out with this rms, V: the root of the mean of |H|^2 over that band. */
-export function noiseGain(sections: readonly Section[], rateHz: number): number {
-  if (sections.length === 0) return 1;
-  const nyquist = rateHz / 2;
-  const steps = 1500;
-  const decades = 7;
-  let power = 0;
-  let lastHz = 0;
-  let last = responseAt(sections, nyquist * 10 ** -decades, rateHz).magnitude ** 2;
-  for (let k = 0; k <= steps; k++) {
-    const hz = nyquist * 10 ** (-decades * (1 - k / steps));
-    const here = responseAt(sections, hz, rateHz).magnitude ** 2;
-    power += ((last + here) / 2) * (hz - lastHz);
-    lastHz = hz;
-    last = here;
+/** |H|^2 of the chain at `w` radians a sample: what `responseAt` says without its phase, at a tenth of the cost. */
+export function powerAt(sections: readonly Section[], w: number): number {
+  const cos1 = Math.cos(w);
+  const sin1 = Math.sin(w);
+  const cos2 = 2 * cos1 * cos1 - 1;
+  const sin2 = 2 * sin1 * cos1;
+  let power = 1;
+  for (const { b0, b1, b2, a1, a2 } of sections) {
+    const re = b0 + b1 * cos1 + b2 * cos2;
+    const im = b1 * sin1 + b2 * sin2;
+    const fedRe = 1 + a1 * cos1 + a2 * cos2;
+    const fedIm = a1 * sin1 + a2 * sin2;
+    power *= (re * re + im * im) / (fedRe * fedRe + fedIm * fedIm);
   }
-  return Math.sqrt(power / nyquist);
+  return power;
+}
+
+const steps = 1500;
+const decades = 7;
+
+/**
+ * White noise behind the chain.
+ * @returns its rms over what went in (the root of the mean of |H|^2 up to half the rate), and the correlation between its
+ * neighbouring samples (the mean of cos w over |H|^2).
+ */
+export function noiseBehind(sections: readonly Section[]): { gain: number; correlation: number } {
+  if (sections.length === 0) return { gain: 1, correlation: 0 };
+  const ratio = 10 ** (decades / steps);
+  let w = Math.PI * 10 ** -decades;
+  let lastW = 0;
+  let last = powerAt(sections, w);
+  let power = 0;
+  let product = 0;
+  for (let k = 0; k <= steps; k++) {
+    const here = powerAt(sections, w);
+    const share = ((last + here) / 2) * (w - lastW);
+    power += share;
+    product += share * Math.cos((w + lastW) / 2);
+    last = here;
+    lastW = w;
+    w *= ratio;
+  }
+  return { gain: Math.sqrt(power / lastW), correlation: product / power };
 }
