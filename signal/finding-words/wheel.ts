@@ -20,7 +20,9 @@ export const wheelWords = {
   'extra-pulse': (channel, evidence) => ({
     message:
       evidence.where === 'anywhere'
-        ? `Channel ${channel} counted ${whole(evidence.pulses)} pulses between teeth in ${time(evidence.windowS)}, at no fixed place of the wheel.`
+        ? evidence.pulses === 1
+          ? `Channel ${channel} counted a pulse between two teeth, where no shaft can make one.`
+          : `Channel ${channel} counted ${whole(evidence.pulses)} pulses between teeth in ${time(evidence.windowS)}, at no fixed place of the wheel.`
         : `Channel ${channel} counts a pulse that is no tooth, turn after turn ${place(evidence)}, so the speed reads too high.`,
     remedy:
       evidence.where === 'anywhere'

@@ -11,11 +11,10 @@ const placeStaysAt = 1.5;
 /** More places than this share of the wheel's, and than two, are bounce: that has a rule of its own. Close to teeth, fewer. */
 const mostPlacesShare = 0.25;
 const mostCloseShare = 0.125;
-/** Pulses that come anywhere: two at two places within the last three seconds or eight turns, whichever is longer, open. */
-const straysOpenAt = 2;
+/** Pulses that came anywhere are told for three seconds or eight turns, whichever is longer. */
 const leastWindowS = 3;
 const windowTurns = 8;
-/** What chatters at stand-still may look like a few teeth. */
+/** A pulse anywhere is told where the count is so old: what chatters at stand-still may look like a few teeth. */
 const turnsForStrays = 2;
 /** Nearer to a tooth than this, in pitches, a stray pulse is bounce of its flank. */
 const clearOfTooth = 0.15;
@@ -24,27 +23,32 @@ const mostStraysShare = 0.2;
 /**
  * Pulses that are no teeth: at the same place of the wheel turn after turn (a burr, a scratch, a lobe of a magnet), or
  * now and then anywhere (a chip, a spike on the wire). They are told by the regular pitches around them, so that neither
- * a start nor a reversal makes one. Where a tooth fails, noise may cross the band instead of it: that is the tooth's matter.
+ * a start nor a reversal makes one: two parts that make one whole pitch, with whole ones on both sides, are no shaft's.
+ * That proves a single one, which is said at once, as a note. Where a tooth fails, noise may cross the band instead of it:
+ * that is the tooth's matter.
  */
 export class ExtraPulseRule implements FindingRule {
   readonly latches: FindingLatch[];
   private readonly wheels: WheelLanes;
+  /** Pulses up to here were told as those of a place, s. */
+  private readonly placedToS: number[];
 
   constructor(wheels: WheelLanes) {
     this.wheels = wheels;
     this.latches = wheels.logs.map(() => new FindingLatch(2));
+    this.placedToS = wheels.logs.map(() => -Infinity);
   }
 
   tick(nowS: number): void {
     const { logs, countedSinceS } = this.wheels;
     for (let i = 0; i < logs.length; i++) {
-      const latch = this.latches[i]!;
-      if (logs[i]!.extras.total > 0 && nowS > countedSinceS) this.look(logs[i]!, latch, nowS);
-      latch.rest(nowS);
+      if (logs[i]!.extras.total > 0 && nowS > countedSinceS) this.look(logs[i]!, i, nowS);
+      this.latches[i]!.rest(nowS);
     }
   }
 
-  private look(lane: WheelLane, latch: FindingLatch, nowS: number): void {
+  private look(lane: WheelLane, index: number, nowS: number): void {
+    const latch = this.latches[index]!;
     const { extras, tracker, absence } = lane;
     const { positions, missing, count, pitchS, isLocked } = tracker;
     if (!isLocked) return;
@@ -55,21 +59,21 @@ export class ExtraPulseRule implements FindingRule {
     const isOwn = ({ place }: { place: number }) => !absence.failedNear(tracker.onWheel(place), failedFromS);
     const recent = extras.since(fromS).filter(isOwn);
     if (recent.length === 0) return;
-    const places = extras.placesAt(count, latch.open ? placeStaysAt : placeOpensAt).filter(isOwn);
+    const isPlaced = latch.open !== null && latch.open.evidence.where !== 'anywhere';
+    const places = extras.placesAt(count, isPlaced ? placeStaysAt : placeOpensAt).filter(isOwn);
     if (places.length > 0 && !isBounce(places, positions)) {
       places.sort((a, b) => b.score - a.score || a.place - b.place);
       const evidence = placed(lane, places, recent.length, windowS);
+      this.placedToS[index] = nowS;
       this.raise(lane, latch, evidence, places[0]!.firstS, places[0]!.lastS, nowS);
       return;
     }
-    const strays = recent.filter(({ place }) => isClear(place - Math.floor(place)));
+    const strays = recent.filter(
+      ({ t, place }) => t > this.placedToS[index]! && isClear(place - Math.floor(place)),
+    );
     const teeth = Math.min(count, windowS / pitchS) * (1 - missing / positions);
     if (strays.length === 0 || recent.length > mostStraysShare * teeth || count < turnsForStrays * positions)
       return;
-    // Pulses at one place only are waited for: the third one tells that it is the wheel's.
-    const scattered = strays.some(({ place }) => !extras.isSame(place, strays[0]!.place));
-    const isOpen = latch.open?.evidence.where === 'anywhere';
-    if (!isOpen && !(strays.length >= straysOpenAt && scattered)) return;
     const evidence = {
       where: 'anywhere',
       pulses: strays.length,
@@ -89,12 +93,14 @@ export class ExtraPulseRule implements FindingRule {
     nowS: number,
   ): void {
     const { name } = path.channel;
+    // What came more than once stays worth a warning while the last of it is told.
+    const isLone = evidence.pulses === 1 && (latch.open?.severity ?? 'note') === 'note';
     latch.raise(
       {
         code: 'extra-pulse',
         channel: name,
         from,
-        severity: evidence.where === 'anywhere' ? 'warn' : 'fault',
+        severity: evidence.where !== 'anywhere' ? 'fault' : isLone ? 'note' : 'warn',
         outcome: 'found',
         at,
         evidence,
