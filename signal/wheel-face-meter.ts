@@ -6,8 +6,8 @@
  */
 import type { WheelFace } from '@/signal/model';
 import { WheelAbsence } from '@/signal/wheel-absence';
+import type { WheelSeat } from '@/signal/wheel-count';
 import { recentTurns, WheelSpacing } from '@/signal/wheel-spacing';
-import type { WheelSeat } from '@/signal/wheel-tracker';
 
 /** Wheels with more positions are not drawn, and no single tooth of theirs is judged. */
 export const mostPositions = 4096;

@@ -2,7 +2,7 @@ import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { normal, seeded } from '@/signal/test-signals';
 import { ExtraPulses } from '@/signal/wheel-extras';
-import type { WheelSeat } from '@/signal/wheel-tracker';
+import type { WheelSeat } from '@/signal/wheel-count';
 import { WheelTracker } from '@/signal/wheel-tracker';
 
 type Seen = { t: number; position: number; spans: number };

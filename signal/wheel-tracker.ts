@@ -6,27 +6,10 @@
  * mean of the pitches before and after, each pulse in it that stands near a place is a tooth, places without one stayed
  * empty, and a pulse between places is none. Where that does not add up, the count is lost and begins anew: never a number
  * that has silently slipped.
- *
- * On a wheel with a gap, position 0 is known once two gaps came exactly a turn apart. It does not need the speed's own
- * synchronisation, which an extra pulse or a tooth that is missing beside the gap may hinder.
  */
-import type { ExtraPulses } from '@/signal/wheel-extras';
-import { WheelGaps } from '@/signal/wheel-gaps';
+import { WheelCount } from '@/signal/wheel-count';
 import { isAlike, isRegular, mostEmpty, wholePitches } from '@/signal/wheel-pitches';
 import { mostWaiting, WaitingPulses } from '@/signal/wheel-waiting';
-
-/** Who takes the teeth. Numbers that come with every tooth are fields: passed to a function, they would be boxed. */
-export interface WheelSeat {
-  /** Instant of the tooth that `place` is to take, s, and its peak to peak, V (NaN: not known). */
-  t: number;
-  toothSwingV: number;
-  /** Positions are known from here on, counted the way in which the wheel turns. */
-  start(reversed: boolean): void;
-  /** A tooth at `position`, `spans` positions after the one before. */
-  place(position: number, spans: number): void;
-  /** Positions are not known any more. */
-  lose(): void;
-}
 
 /** A pulse within these shares of the pitch after the last tooth is the next one without further thought. */
 const soonest = 0.85;
@@ -34,55 +17,12 @@ const latest = 1.18;
 /** Pulses too many and empty places in one stretch are believed only after so many teeth: the pitch is well known then. */
 const teethForBoth = 12;
 
-export class WheelTracker {
-  /** The pulse that `take` is to take, s, and its peak to peak, V. */
-  t = NaN;
-  swingV = NaN;
-  isReversed = false;
-  isLocked = false;
-  /** Positions passed since the count began; its last tooth. */
-  count = 0;
-  /** Time for one position, s. */
-  pitchS = NaN;
-  readonly gaps: WheelGaps;
-  readonly positions: number;
-  readonly missing: number;
-  private readonly seatOf: WheelSeat | null;
-  private readonly extras: ExtraPulses;
+export class WheelTracker extends WheelCount {
   private readonly wait = new WaitingPulses();
-  private lastT = NaN;
-  /** Of the last eight teeth or so, s. */
-  private meanPitchS = NaN;
-  /** Count modulo the positions, and where position 0 is in it; -1: not known. */
-  private relative = 0;
-  private zero = -1;
-  /** Positions since the last tooth that was seated. */
-  private owed = 0;
-
-  constructor(positions: number, missing: number, seat: WheelSeat | null, extras: ExtraPulses) {
-    this.positions = positions;
-    this.missing = missing;
-    this.seatOf = seat;
-    this.extras = extras;
-    this.gaps = new WheelGaps(positions, missing);
-  }
 
   /** Pulses that are not placed yet. */
   get waiting(): number {
     return this.wait.count;
-  }
-
-  /** Of the last tooth: fixed to the wheel where that has a gap; -1: not known. */
-  get position(): number {
-    if (this.zero < 0) return -1;
-    const position = this.relative - this.zero;
-    return position < 0 ? position + this.positions : position;
-  }
-
-  /** Where a place in the running count stands on the wheel, in positions; the count's own place where that is not known. */
-  onWheel(place: number): number {
-    const { positions, zero } = this;
-    return (place - Math.max(0, zero) + positions) % positions;
   }
 
   /** Stop, lost samples or a reversal. */
@@ -91,7 +31,7 @@ export class WheelTracker {
     this.lose();
   }
 
-  /** Takes the pulse `t`. */
+  /** Takes the pulse at hand. */
   take(): void {
     const { wait } = this;
     if (wait.count === 0 && this.isLocked) {
@@ -106,35 +46,6 @@ export class WheelTracker {
     wait.count++;
     if (this.isLocked) this.resolve();
     else this.lock();
-  }
-
-  private seat(spans: number): void {
-    const { t, positions, missing } = this;
-    const each = (t - this.lastT) / spans;
-    this.pitchS += (each - this.pitchS) / 2;
-    this.meanPitchS += (each - this.meanPitchS) / 8;
-    this.lastT = t;
-    this.count += spans;
-    const relative = this.relative + spans;
-    this.relative = relative < positions ? relative : relative % positions;
-    if (this.zero < 0) return;
-    const { position } = this;
-    this.owed += spans;
-    if (missing > 0 && position >= positions - missing) {
-      this.gaps.isFilled = true;
-      this.extras.note(this.count, t);
-      return;
-    }
-    this.seatAt(position, this.owed);
-  }
-
-  private seatAt(position: number, spans: number): void {
-    const { seatOf } = this;
-    this.owed = 0;
-    if (!seatOf) return;
-    seatOf.t = this.t;
-    seatOf.toothSwingV = this.swingV;
-    seatOf.place(position, spans);
   }
 
   /** The waiting pulse `i` is a tooth, `spans` positions after the one before. */
@@ -212,29 +123,6 @@ export class WheelTracker {
     return empty === 0 || (extra === 1 && this.count >= teethForBoth);
   }
 
-  /** The last tooth is the first one after the gap. */
-  private anchor(): void {
-    if (this.zero >= 0) {
-      // What came in the gap were teeth.
-      this.seatOf?.lose();
-      this.extras.lose();
-    }
-    this.zero = this.relative;
-    this.seatOf?.start(this.isReversed);
-    this.seatAt(0, 1);
-  }
-
-  private lose(): void {
-    if (this.isLocked) {
-      this.seatOf?.lose();
-      this.extras.lose();
-    }
-    this.isLocked = false;
-    this.zero = -1;
-    this.gaps.clear();
-    this.pitchS = NaN;
-  }
-
   private loseCount(): void {
     this.lose();
     this.wait.keepLast(3);
@@ -268,16 +156,9 @@ export class WheelTracker {
     const { wait } = this;
     wait.keepLast(teeth);
     wait.count = 0;
-    this.isLocked = true;
-    this.count = this.relative = this.owed = 0;
-    this.t = this.lastT = wait.t[0]!;
+    this.t = wait.t[0]!;
     this.swingV = wait.swingV[0]!;
-    this.pitchS = this.meanPitchS = pitchS;
-    if (this.missing === 0) {
-      this.zero = 0;
-      this.seatOf?.start(this.isReversed);
-      this.seatAt(0, 1);
-    }
+    this.beginCount(pitchS);
     for (let i = 1; i < teeth; i++) this.seatWaiting(i, i === teeth - 2 ? middle : 1);
     this.pitchS = pitchS;
   }

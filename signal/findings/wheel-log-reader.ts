@@ -4,10 +4,10 @@ import type { Numbering } from '@/signal/findings/wheel-look';
 import { readableFrom } from '@/signal/tooth-log';
 import type { ToothLog } from '@/signal/tooth-log';
 import { WheelAbsence } from '@/signal/wheel-absence';
+import type { WheelSeat } from '@/signal/wheel-count';
 import { ExtraPulses } from '@/signal/wheel-extras';
 import { mirrored } from '@/signal/wheel-face-meter';
 import { WheelTracker } from '@/signal/wheel-tracker';
-import type { WheelSeat } from '@/signal/wheel-tracker';
 
 export type WheelLane = {
   path: ChannelPath;
