@@ -1,4 +1,7 @@
-/** The band during hold-off: what it would have done is noted, and its true state is taken up where the hold-off ends. */
+/**
+ * The band where its state is not what the signal says: during hold-off, where what it would have done is noted and its true
+ * state is taken up at the end; and after the band itself has moved.
+ */
 import { crossing, crossMid, record, settle } from '@/signal/detector-edges';
 import { zones } from '@/signal/detector-state';
 import type { Detector, DetectorSink } from '@/signal/detector-state';
@@ -41,6 +44,37 @@ export function runHold(
       sink.rejected(at, NaN, d.wouldBeHigh);
     }
     if (d.high ? x > d.extremeV : x < d.extremeV) d.extremeV = x;
+  }
+  return end + 1;
+}
+
+/** A state that the band's move contradicts, until it is confirmed or ends; returns the first index not scanned. */
+export function runUnconfirmed(
+  d: Detector,
+  v: Float64Array,
+  from: number,
+  end: number,
+  base: number,
+): number {
+  const low = d.zone === zones.sinking;
+  for (let j = from; j <= end; j++) {
+    const x = v[j]!;
+    const before = v[j - 1]!;
+    if (low ? x < d.releaseV : x > d.operateV) {
+      d.extremeV = x;
+      if (base + j < d.holdEndAt) d.zone = zones.hold;
+      else d.zone = low ? zones.low : zones.high;
+      return j;
+    }
+    if (low ? before <= d.midV && x > d.midV : before >= d.midV && x < d.midV) crossMid(d, v, j, base);
+    if ((low ? x > d.keptUpToV : x < d.keptUpToV) && !(base + j < d.holdEndAt)) {
+      record(d, low ? edgeRising : 0);
+      d.edges.at[d.edges.count - 1] = crossing(v, j, base, d.keptUpToV);
+      settle(d, low);
+      d.extremeV = x;
+      return j + 1;
+    }
+    if (low ? x < d.extremeV : x > d.extremeV) d.extremeV = x;
   }
   return end + 1;
 }

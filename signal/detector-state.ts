@@ -22,6 +22,11 @@ export type Detector = {
   operateV: number;
   releaseV: number;
   midV: number;
+  /** Of the band before this one, V. */
+  formerOperateV: number;
+  formerReleaseV: number;
+  /** Beyond this a state that the band's move left unconfirmed ends, V: the far point of the band that it began with. */
+  keptUpToV: number;
   /** The trough so far (low) or the peak so far (high), V. */
   extremeV: number;
   /** How far an excursion through mid has come, V. */
@@ -71,6 +76,9 @@ export function createDetector(holdSamples: number, pauseAtEdges: boolean): Dete
     operateV: NaN,
     releaseV: NaN,
     midV: NaN,
+    formerOperateV: NaN,
+    formerReleaseV: NaN,
+    keptUpToV: NaN,
     extremeV: NaN,
     reachV: NaN,
     backV: NaN,
@@ -99,6 +107,8 @@ export function createRawEdges(length: number): RawEdges {
 }
 
 export function setThresholds(detector: Detector, operateV: number, releaseV: number): void {
+  detector.formerOperateV = detector.operateV;
+  detector.formerReleaseV = detector.releaseV;
   detector.operateV = operateV;
   detector.releaseV = releaseV;
   detector.midV = (operateV + releaseV) / 2;
@@ -106,18 +116,43 @@ export function setThresholds(detector: Detector, operateV: number, releaseV: nu
 
 /**
  * The band has moved while the signal stands at `x`: a state that it contradicts holds until the signal has confirmed it, so
- * that the move itself makes no edge.
+ * that the move itself makes no edge. Where the signal turns back instead, to the far point of the band before, that is an
+ * edge: a shaft that reverses just then would else lose one.
  */
 export function keepState(detector: Detector, x: number): void {
   const { zone, midV } = detector;
   const high = zone === zones.hold ? detector.high : zone === zones.high;
-  if (high && x < midV) detector.zone = zones.climbing;
-  else if (!high && (zone === zones.low || zone === zones.hold) && x > midV) detector.zone = zones.sinking;
+  const low = zone === zones.hold ? !detector.high : zone === zones.low;
+  if (high && x < midV) {
+    detector.zone = zones.climbing;
+    detector.keptUpToV = Math.min(detector.releaseV, detector.formerReleaseV);
+  } else if (low && x > midV) {
+    detector.zone = zones.sinking;
+    detector.keptUpToV = Math.max(detector.operateV, detector.formerOperateV);
+  }
+}
+
+/** Which state the band is in: +1 high, -1 low, 0 not known. */
+export function stateOf({ zone, high }: Detector): -1 | 0 | 1 {
+  switch (zone) {
+    case zones.unknown:
+      return 0;
+    case zones.hold:
+      return high ? 1 : -1;
+    case zones.high:
+    case zones.highDown:
+    case zones.highBack:
+    case zones.climbing:
+      return 1;
+    default:
+      return -1;
+  }
 }
 
 /** As it was just after an edge at `edgeAt`; the band may have moved since. */
 export function resumeAfter(detector: Detector, edgeAt: number, rising: boolean): void {
   detector.zone = rising ? zones.climbing : zones.sinking;
+  detector.keptUpToV = NaN;
   detector.high = detector.wouldBeHigh = rising;
   detector.holdEndAt = edgeAt + detector.holdSamples;
   detector.midAt = NaN;

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import { runDetector } from '@/signal/detector';
-import { createDetector, setThresholds } from '@/signal/detector-state';
+import { createDetector, keepState, setThresholds } from '@/signal/detector-state';
 
 type Seen = { edges: [number, number, string][]; rejected: number[] };
 
@@ -83,6 +83,40 @@ describe('hold-off', () => {
     expect(seen.edges.map(([at, , kind]) => [at, kind])).toEqual([
       [0.5, 'rising'],
       [3.75, 'falling'],
+    ]);
+  });
+});
+
+describe('a band that moves', () => {
+  /** Falls through 1.5 V, whereupon the band of 1.5 to 2.5 V moves down to 0.5 to 1.2 V; then comes `rest`. */
+  function moved(rest: number[]): [number, string][] {
+    const detector = createDetector(0, false);
+    setThresholds(detector, 2.5, 1.5);
+    const v = Float64Array.of(3, 3, 1.4, ...rest);
+    const sink = { rejected: () => undefined, wobble: () => undefined };
+    runDetector(detector, v, 1, 2, 0, sink);
+    setThresholds(detector, 1.2, 0.5);
+    keepState(detector, 1.4);
+    runDetector(detector, v, 3, v.length - 1, 0, sink);
+    const { count, at, flags } = detector.edges;
+    return Array.from({ length: count }, (_, k) => [at[k]!, flags[k]! & edgeRising ? 'rising' : 'falling']);
+  }
+
+  it('makes no edge by moving', () => {
+    expect(moved([1.4, 1.3, 1.4, 1.6]).map(([, kind]) => kind)).toEqual(['falling']);
+    expect(moved([1, 0.4, 0.8, 1.3]).map(([, kind]) => kind)).toEqual(['falling', 'rising']);
+  });
+
+  it('loses no edge where the signal turns back before it has come to the new band', () => {
+    expect(moved([1.4, 2, 3, 3])).toEqual([
+      [expect.closeTo(1.9375, 9), 'falling'],
+      [4.5, 'rising'],
+    ]);
+    expect(moved([1.3, 2, 3, 0.4, 1.3]).map(([, kind]) => kind)).toEqual([
+      'falling',
+      'rising',
+      'falling',
+      'rising',
     ]);
   });
 });

@@ -6,7 +6,7 @@
  * Each zone is its own tight loop. The first sample, and the first arrival beyond a threshold, make no edge.
  */
 import { accept, crossMid } from '@/signal/detector-edges';
-import { runHold } from '@/signal/detector-hold';
+import { runHold, runUnconfirmed } from '@/signal/detector-hold';
 import { scanHigh, scanLow } from '@/signal/detector-scan';
 import { zones } from '@/signal/detector-state';
 import type { Detector, DetectorSink } from '@/signal/detector-state';
@@ -126,12 +126,7 @@ export function runDetector(
       }
       case zones.sinking:
       case zones.climbing: {
-        const low = d.zone === zones.sinking;
-        for (; j <= end; j++) if (low ? v[j]! < release : v[j]! > operate) break;
-        if (j > end) break;
-        d.extremeV = v[j]!;
-        if (base + j < d.holdEndAt) d.zone = zones.hold;
-        else d.zone = low ? zones.low : zones.high;
+        j = runUnconfirmed(d, v, j, end, base);
         break;
       }
       case zones.hold: {

@@ -36,6 +36,7 @@ export class Eye {
   /** Teeth of a turn, or as many as can be kept. */
   private readonly turn: number;
   private readonly proof: ToothProof;
+  private readonly isRing: boolean;
   /** Bumps beside the teeth that are none: the band keeps clear of them where the teeth leave room. */
   private lobeLowV = NaN;
   private lobeHighV = NaN;
@@ -47,8 +48,10 @@ export class Eye {
   private weakCount = 0;
   private weakSumV = NaN;
 
-  constructor(log: ToothLog, teethPerTurn: number, proof: ToothProof) {
+  /** @param isRing the shaft may turn to and fro. */
+  constructor(log: ToothLog, teethPerTurn: number, proof: ToothProof, isRing: boolean) {
     this.log = log;
+    this.isRing = isRing;
     this.proof = proof;
     this.turn = Math.min(Math.max(fewestTeeth, teethPerTurn), log.length - 1);
   }
@@ -118,7 +121,9 @@ export class Eye {
     let low = this.spanLowV;
     let high = this.spanHighV;
     const teeth = this.spanTeeth;
-    const driftVPerS = fitDrift(log, readableFrom(log, log.count - this.turn), fewestForDrift);
+    // A shaft that dithers cuts peaks and troughs short as it likes, a few of them on a line.
+    const leastV = this.isRing ? strongShare * swingV : 0;
+    const driftVPerS = fitDrift(log, readableFrom(log, log.count - this.turn), fewestForDrift, leastV);
     if (driftVPerS !== 0 && Math.abs(driftVPerS) * typicalS <= fastestDrift * swingV) {
       this.span(levels, typicalS, noiseV, driftVPerS);
       const isWider = this.spanHighV - this.spanLowV > widerForDrift * (high - low);

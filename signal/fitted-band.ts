@@ -45,7 +45,7 @@ export class FittedBand extends BandKeeper {
     const { band, rateHz, startIndex, teethPerTurn, chunk } = options;
     this.fractions = band;
     this.proof = new ToothProof(this.intake.log, teethPerTurn, options.missingPulses, this.isRing);
-    this.eye = new Eye(this.intake.log, teethPerTurn, this.proof);
+    this.eye = new Eye(this.intake.log, teethPerTurn, this.proof, this.isRing);
     this.room = teethPerTurn > 1 ? this.eye : this.levels;
     this.history = new History(rateHz, chunk, startIndex);
     this.finder.startFromNothing(startIndex);

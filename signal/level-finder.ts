@@ -3,7 +3,7 @@
  * afterwards, and a hunt beside the old band where nothing has come for long. A fixed band stays; what the hunt finds
  * beside it is told for the margin.
  */
-import { forgetState, zones } from '@/signal/detector-state';
+import { forgetState, keepState, stateOf, zones } from '@/signal/detector-state';
 import type { Detector } from '@/signal/detector-state';
 import { createHunter, hunt, startHunt, swingFloorV } from '@/signal/hunter';
 import type { Levels } from '@/signal/levels';
@@ -179,6 +179,7 @@ export class LevelFinder {
     levels.highV = hunter.foundHighV;
     // Nothing is known of the flanks yet: begin wide, and let whole teeth narrow it.
     levels.wobbleV = (levels.highV - levels.lowV) / 4;
+    const state = host.isRing ? stateOf(detector) : 0;
     forgetState(detector);
     if (remembered && (starting || host.mayFindLate(base + at))) {
       host.adopt(remembered.base + 1, remembered);
@@ -189,9 +190,18 @@ export class LevelFinder {
       this.replaying = false;
     } else {
       host.adopt(base + at, remembered);
-      this.placeState(v[at]!);
+      if (state === 0) this.placeState(v[at]!);
+      else this.carryState(v[at]!, state > 0);
     }
     this.waitFrom(base + at, host.quietSamples(), Infinity);
+  }
+
+  /** Another channel's edges count with this one's: a state that changed without an edge would lose a cycle. */
+  private carryState(x: number, high: boolean): void {
+    const { detector, levels } = this;
+    detector.zone = high ? zones.high : zones.low;
+    detector.extremeV = high ? Math.max(x, levels.highV) : Math.min(x, levels.lowV);
+    keepState(detector, x);
   }
 
   /** The hunter has seen on which side of the new band the signal was last. */

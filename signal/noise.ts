@@ -20,13 +20,14 @@ const medianOfUnit = 0.6745 * 1.013;
 const whiteGain = Math.sqrt(924);
 const closeDifferences = burstLength - 2;
 const closeGain = Math.SQRT2;
-/** A burst of noise alone spans less than so many of its sigmas; steps that fill the differences less still. */
-const mostOfNoise = 8;
+/** Steps that fill the differences leave so much less between neighbours; noise alone does not. */
 const farLess = 0.5;
 /** Of a burst at a rail: samples on it, stretches off it, and how long these are on average at most, samples. */
 const fewestAtRail = 6;
 const fewestRuns = 2;
 const longestRun = 2.5;
+/** Off a rail for more samples in a row, or beyond an end of the burst: that may be a tooth. */
+const mostInRun = 6;
 const mostQuanta = 3;
 
 export type NoiseMeter = {
@@ -89,12 +90,10 @@ export function endBurst(meter: NoiseMeter): void {
   }
   if (!meter.quantumFixed) learnQuantum(meter);
   let sigma = medianOf(sizes, differences) / (medianOfUnit * whiteGain);
-  // Nothing but noise, or steps of a switch too near each other for the differences to pass between them.
-  if (largest - least < mostOfNoise * sigma) {
-    for (let i = 0; i < closeDifferences; i++) sizes[i] = Math.abs(burst[i + 1]! - burst[i]!);
-    const close = medianOf(sizes, closeDifferences) / (medianOfUnit * closeGain);
-    if (close < farLess * sigma) sigma = close;
-  }
+  // Steps of a switch may be too near each other for the differences to pass between them.
+  for (let i = 0; i < closeDifferences; i++) sizes[i] = Math.abs(burst[i + 1]! - burst[i]!);
+  const close = medianOf(sizes, closeDifferences) / (medianOfUnit * closeGain);
+  if (close < farLess * sigma) sigma = close;
   if (atLeast >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, least, meter.quantumV));
   if (atLargest >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, largest, meter.quantumV));
   const at = meter.seen % kept;
@@ -112,16 +111,17 @@ function clippedNoiseV(burst: Float64Array, railV: number, quantumV: number): nu
   let outside = 0;
   let runs = 0;
   let squares = 0;
-  let wasOutside = false;
-  for (let i = 0; i < burstLength; i++) {
-    const farV = burst[i]! - railV;
-    const isOutside = farV !== 0;
-    if (isOutside) {
-      outside++;
-      squares += farV * farV;
-      if (!wasOutside) runs++;
-    }
-    wasOutside = isOutside;
+  let i = 0;
+  while (i < burstLength && burst[i]! !== railV) i++;
+  while (i < burstLength) {
+    while (i < burstLength && burst[i]! === railV) i++;
+    const from = i;
+    let own = 0;
+    for (; i < burstLength && burst[i]! !== railV; i++) own += (burst[i]! - railV) ** 2;
+    if (i === from || i === burstLength || i - from > mostInRun) continue;
+    runs++;
+    outside += i - from;
+    squares += own;
   }
   if (runs < fewestRuns || outside > longestRun * runs) return 0;
   const rmsV = Math.sqrt(squares / outside);

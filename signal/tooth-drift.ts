@@ -21,9 +21,10 @@ const fitsShare = 0.05;
 
 /**
  * V/s, over the teeth from number `from` on that are whole and followed by another one.
- * @returns 0 where there are fewer than `fewest`, or where none of the four lies on a line.
+ * @param leastV a tooth that swings less says that no whole teeth pass.
+ * @returns 0 where there are fewer than `fewest`, where one is less than `leastV`, or where none of the four lies on a line.
  */
-export function fitDrift(log: ToothLog, from: number, fewest: number): number {
+export function fitDrift(log: ToothLog, from: number, fewest: number, leastV: number): number {
   const { mask, riseS, peakV, troughV } = log;
   sums.fill(0);
   let count = 0;
@@ -38,6 +39,7 @@ export function fitDrift(log: ToothLog, from: number, fewest: number): number {
     const peak = peakV[i]!;
     const after = troughV[(n + 1) & mask]!;
     if (Number.isNaN(trough + peak + after)) continue;
+    if (peak - trough < leastV) return 0;
     if (count++ === 0) {
       zeroV = trough;
       zeroS = riseS[i]!;
