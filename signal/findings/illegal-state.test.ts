@@ -53,6 +53,40 @@ describe('skipped states', () => {
     expect([fromState, toState]).toEqual(['10', '01']);
   });
 
+  it('are found where the lines seem to change one after the other, and the count is right by chance', () => {
+    // Behind a filter both flanks take a while, and of the line that should change first it is a little earlier.
+    const filter = { kind: 'lowpass', family: 'bessel', order: 2, cutoffHz: 300 } as const;
+    const sines: Ring = { ...pair, shape: 'sine', placesDeg: [0, 104] };
+    const arrays = holding(sines, 0.0075);
+    const pipeline = testPipeline(testRig('quadrature', 12), pair.rateHz, { filter });
+    pipeline.process(arrays, arrays[0]!.length);
+    expect(pipeline.status().shaft.falseSteps!.illegal).toBe(0);
+    const list = watchFindings(testRig('quadrature', 12), pair.rateHz, { filter }, ...arrays);
+    const [one, more] = list.filter(({ code }) => code === 'illegal-state');
+    expect(more).toBeUndefined();
+    expect(one!.openedS).toBeLessThan(3.2);
+    expect(one!.evidence).toMatchObject({ fromState: '10', toState: '01', skips: 6 });
+    expect(one!.to).toBeLessThan(5);
+  });
+
+  it('are found where three are left out, which looks like a step back: the pace says otherwise', () => {
+    const [one, more] = found(holding(pair, 0.0125), pair);
+    expect(more).toBeUndefined();
+    expect(one!.openedS).toBeLessThan(3.2);
+    expect(one!.evidence).toMatchObject({ fromState: '10', toState: '00', skips: 6 });
+  });
+
+  it('are not found where an edge is late only, nor where a shaft steps back', () => {
+    expect(found(holding(pair, 0.003), pair)).toEqual([]);
+    // Stops over an edge, goes a third of a tooth back and on again, twice a second.
+    const turnsAt = (t: number) => {
+      const into = t % 0.5;
+      const back = into < 0.2 ? 0 : into < 0.25 ? -(into - 0.2) / 1.5 : into < 0.3 ? -(0.3 - into) / 1.5 : 0;
+      return 0.5 * Math.floor(t / 0.5) + Math.min(into, 0.2) * 2.5 + back;
+    };
+    expect(found(ringVolts({ ...pair, turnsAt }), pair)).toEqual([]);
+  });
+
   it('are found on three lines, and all low or all high is named', () => {
     const list = found(ringVolts({ ...three, placesDeg: [0, 60, 120] }), three, 'three-hall');
     expect(list[0]).toMatchObject({ severity: 'fault' });

@@ -11,7 +11,8 @@ export const illegalState: CaseMaker = (draw) => {
   const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 2 });
   const { beginS, endS } = timing;
   const perS = draw.uniform(3, Math.min(8, 0.4 * machine.toothHz));
-  // About half a tooth: two states on at once. Longer ones look like a step back.
+  // About half a tooth: two states on at once. A little less, and a part of them skips nothing but holds one edge up, which no
+  // count and no rule can know; a little more, and a part of them looks like a step back, which the pace betrays.
   const forS = draw.uniform(0.4, 0.6) / machine.toothHz;
   return {
     ...benchOf(machine, runningMotion(draw, machine, timing.seconds), {
