@@ -139,7 +139,8 @@ export class FittedBand extends BandKeeper {
     const extremeV = detector.edges.extremeV[0]!;
     const otherV = intake.lastExtremeV;
     intake.take(noiseV, 0, this.detector.edges.count);
-    if (!rising && this.grown.note(levels, extremeV, otherV, intake.log.count)) {
+    const isBack = this.finder.former.isBack(levels, rising, extremeV);
+    if (isBack || (!rising && this.grown.note(levels, extremeV, otherV, intake.log.count))) {
       intake.typicalSamples = NaN;
       eye.open(levels.lowV, levels.highV);
       this.refreshEye();

@@ -52,6 +52,20 @@ describe('a channel beside others', () => {
     );
   });
 
+  it('is not dead while the shaft stands and the mains are on the other line, nor while it swings within its band', () => {
+    const start = (t: number) => (t < 4 ? 0 : 4 * (t - 4));
+    const hum: Ring['spoil'] = (volts, channel, t) =>
+      channel === 0 ? volts + 0.01 * Math.sin(2 * Math.PI * 50 * t) : volts;
+    expect(
+      found(ringVolts({ ...pair, turnsAt: start, noiseV: 0.0004, spoil: hum }), testRig('quadrature', 12)),
+    ).toEqual([]);
+    // To and fro by a fifth of a tooth about an edge of A: B goes up and down near its top.
+    const shakes = (t: number) => (t < 4 ? 4 * t : 16 + (0.2 * Math.sin(2 * Math.PI * 9 * (t - 4))) / 12);
+    expect(found(ringVolts({ ...pair, turnsAt: shakes, noiseV: 0.005 }), testRig('quadrature', 12))).toEqual(
+      [],
+    );
+  });
+
   it('is not dead at rest, at a start, at a crawl, or with an empty aux channel beside it', () => {
     const rig = testRig('quadrature', 12);
     const busy = speeds([0, 0], [2, 0], [3, 4], [5, 4], [6, 0], [8, 0], [9, -0.1], [10, -0.1]);

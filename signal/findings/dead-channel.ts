@@ -9,10 +9,22 @@ import type { ToothLog } from '@/signal/tooth-log';
 
 /** A floating line makes an edge now and then, and is no sound channel for that, s. */
 const shortHoldS = 0.5;
-/** So many edges of another channel without one of its own. */
-const otherEdgesNeeded = 12;
-/** So many turns of the shaft, and of its wheel, without an index. */
+/**
+ * So many edges of another channel without one of its own: a fitted band looks for new levels after four teeth, and has
+ * them after two more.
+ */
+const otherEdgesNeeded = 20;
+/** So many turns of the shaft, and of its wheel, without an index, and so long: its levels have to be found first. */
 const indexTurns = 5;
+const indexQuietS = 0.5;
+/** What still swings so much is not dead, whatever its band makes of it: share of its usual swing, or of the supply; sigmas. */
+const aliveShare = 0.15;
+const aliveOfSupply = 0.1;
+const aliveSigmas = 12;
+const aliveS = 0.5;
+/** A wheel swings more than what hums or rustles on a shaft at rest: share of the supply; with the mains, less than that. */
+const restOfSupply = 0.02;
+const humOfSupply = 0.1;
 /** Slower than this, against the last run: the shaft may stand and shake on one flank. */
 const farSlower = 3;
 /** So long, and ten teeth, without a sign of shaking. */
@@ -88,14 +100,19 @@ export class DeadChannelRule implements FindingRule {
     let busiest = -1;
     let busy = 0;
     for (const m of lanes) {
-      const edges = paths[m]!.edgeCount - this.marks[k]![m]!;
+      const other = paths[m]!;
+      const edges = other.edgeCount - this.marks[k]![m]!;
       if (m === k || edges === 0) continue;
+      if (edges >= otherEdgesNeeded && mayRest(other, nowS, rateHz)) {
+        this.marks[k]![m] = other.edgeCount;
+        continue;
+      }
       if (edges >= otherEdgesNeeded) busy++;
       if (edges <= most) continue;
       most = edges;
       busiest = m;
     }
-    if (most < otherEdgesNeeded) return null;
+    if (most < otherEdgesNeeded || isAlive(paths[k]!)) return null;
     const evidence = {
       otherChannel: paths[busiest]!.channel.name,
       otherEdges: most,
@@ -140,8 +157,9 @@ export class DeadChannelRule implements FindingRule {
     if (motion.state !== 'running') return null;
     const teeth = (paths[primary]!.edgeCount - this.marks[index]![primary]!) / 2;
     const turns = teeth / ((pulsesPerTurn - missingPulses) * Math.max(1, gearRatio));
-    if (!(turns >= indexTurns)) return null;
-    return { turnsWithoutIndex: turns, quietS: nowS - this.quietFromS[index]! };
+    const quietS = nowS - this.quietFromS[index]!;
+    if (!(turns >= indexTurns) || quietS < indexQuietS) return null;
+    return { turnsWithoutIndex: turns, quietS };
   }
 
   private alone(path: ChannelPath, k: number, nowS: number): void {
@@ -178,6 +196,31 @@ export class DeadChannelRule implements FindingRule {
       nowS,
     );
   }
+}
+
+/** What makes its edges may be on the line while the shaft stands. */
+function mayRest({ log, levels, channel }: ChannelPath, nowS: number, rateHz: number): boolean {
+  const { supplyV } = channel.sensor;
+  const swingV = levels.highV - levels.lowV;
+  if (supplyV !== null && swingV < restOfSupply * supplyV) return true;
+  if (supplyV !== null && !(swingV < humOfSupply * supplyV)) return false;
+  return !Number.isNaN(humOn(log, nowS, rateHz));
+}
+
+/** It goes up and down: a shaft that shakes within a tooth may keep it from its band, or it is still to be found. */
+function isAlive({ slow, levels, noiseV, channel }: ChannelPath): boolean {
+  const { v, mask, count, rateHz, unbrokenFrom } = slow;
+  const from = Math.max(unbrokenFrom, count - Math.round(aliveS * rateHz), count - v.length, 0);
+  let low = Infinity;
+  let high = -Infinity;
+  for (let n = from; n < count; n++) {
+    const x = v[n & mask]!;
+    if (x < low) low = x;
+    if (x > high) high = x;
+  }
+  const usualV = levels.highV - levels.lowV;
+  const leastV = usualV > 0 ? aliveShare * usualV : aliveOfSupply * (channel.sensor.supplyV ?? NaN);
+  return high - low > leastV && !(high - low < aliveSigmas * noiseV);
 }
 
 /** Frequency of the mains, or twice that, where the teeth of a channel come so; else NaN. */
