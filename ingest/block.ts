@@ -27,6 +27,12 @@ export const blockLimits = {
   maxRateHz: 1_000_000,
   maxChannelNameChars: 16,
   maxSamplesPerChannel: 65_536,
+  /**
+   * What a sample in volts may have, either sign. No input of a board is rated for it, also behind a probe, so that what
+   * lies beyond is no voltage: a code sent as a float, or bytes in the wrong order. One such sample would ring in a
+   * high pass for longer than anything true in the stream.
+   */
+  maxVolts: 1_000_000,
   maxChannels: 8,
   /** CBOR or JSON message. */
   maxMessageBytes: 1024 * 1024,

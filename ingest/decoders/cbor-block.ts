@@ -15,9 +15,17 @@ import {
 } from './cbor-keys';
 import { indefinite } from './cbor-reader';
 import type { CborReader } from './cbor-reader';
-import { readPlainArray, readTypedArray } from './cbor-samples';
+import { readPlainArray, readTypedArray, refuseNoVolts } from './cbor-samples';
 import { CborFault } from './cbor-values';
-import { channelNameFault, rateFault, seqFault, streamFault, timeFault, toCodes } from './fields';
+import {
+  channelNameFault,
+  firstNoVolts64,
+  rateFault,
+  seqFault,
+  streamFault,
+  timeFault,
+  toCodes,
+} from './fields';
 import { pointerPart, quoted } from './result';
 
 /** Reads the block that follows; `pointer` names it within the message. */
@@ -72,7 +80,7 @@ export function readBlock(reader: CborReader, pointer: string): Block {
     }
   }
   requireKeys(seen, start, pointer);
-  if (codes && plain !== 0) plainToCodes(block.channels, plain, start, pointer);
+  if (plain !== 0) settlePlain(block.channels, plain, codes, start, pointer);
   return block;
 }
 
@@ -171,15 +179,26 @@ function requireKeys(seen: number, at: number, pointer: string): void {
   }
 }
 
-function plainToCodes(channels: BlockChannel[], plain: number, at: number, pointer: string): void {
+/** Once it is known what the plain arrays hold: makes codes of them, or sees that they can be volts. */
+function settlePlain(
+  channels: BlockChannel[],
+  plain: number,
+  areCodes: boolean,
+  at: number,
+  pointer: string,
+): void {
   for (let i = 0; i < channels.length; i++) {
     if ((plain & (1 << i)) === 0) continue;
     const channel = channels[i]!;
-    const codes = toCodes(channel.samples as Float64Array);
-    if (typeof codes === 'number') {
-      const where = `${pointer}/samples${pointerPart(channel.name)}/${codes}`;
-      throw new CborFault('invalid', 'A code must be a whole number of 32 bits.', at, where);
+    const samples = channel.samples as Float64Array;
+    const where = `${pointer}/samples${pointerPart(channel.name)}`;
+    if (!areCodes) {
+      refuseNoVolts(samples, firstNoVolts64(samples), at, where);
+      continue;
     }
+    const codes = toCodes(samples);
+    if (typeof codes === 'number')
+      throw new CborFault('invalid', 'A code must be a whole number of 32 bits.', at, `${where}/${codes}`);
     channel.samples = codes;
   }
 }

@@ -7,7 +7,7 @@ import { blockLimits } from '../block';
 import { indefinite } from './cbor-reader';
 import type { CborReader } from './cbor-reader';
 import { CborFault } from './cbor-values';
-import { firstNonFinite32, firstNonFinite64 } from './fields';
+import { firstNoVolts32, firstNoVolts64, voltsFault } from './fields';
 
 const littleEndianHost = new Uint8Array(new Uint16Array([1]).buffer)[0] === 1;
 const maxSamples = blockLimits.maxSamplesPerChannel;
@@ -87,12 +87,12 @@ function toSamples(
       return new Int32Array(buffer, offset, length);
     case 'float32': {
       const samples = new Float32Array(buffer, offset, length);
-      refuseNonFinite(firstNonFinite32(samples), at, pointer);
+      refuseNoVolts(samples, firstNoVolts32(samples), at, pointer);
       return samples;
     }
     case 'float64': {
       const samples = new Float64Array(buffer, offset, length);
-      refuseNonFinite(firstNonFinite64(samples), at, pointer);
+      refuseNoVolts(samples, firstNoVolts64(samples), at, pointer);
       return samples;
     }
   }
@@ -109,7 +109,10 @@ function swapBytes(content: Uint8Array, size: number): void {
   }
 }
 
-/** Reads a plain array of numbers whose head was just read. Throws a `CborFault`. */
+/**
+ * Reads a plain array of finite numbers whose head was just read: volts or codes, which the block says, perhaps later.
+ * Throws a `CborFault`.
+ */
 export function readPlainArray(reader: CborReader, pointer: string): Float64Array {
   const at = reader.pos;
   const count = reader.arg;
@@ -136,13 +139,19 @@ function readSample(reader: CborReader, index: number, pointer: string): number 
   const sample = reader.number();
   if (sample === undefined)
     throw new CborFault('invalid', 'A sample is no number.', at, `${pointer}/${index}`);
-  if (sample - sample !== 0) refuseNonFinite(index, at, pointer);
+  if (sample - sample !== 0) throw new CborFault('invalid', voltsFault(sample)!, at, `${pointer}/${index}`);
   return sample;
 }
 
-function refuseNonFinite(index: number, at: number, pointer: string): void {
+/** Throws a `CborFault` where `index` names a sample; -1 names none. */
+export function refuseNoVolts(
+  samples: Float32Array | Float64Array,
+  index: number,
+  at: number,
+  pointer: string,
+): void {
   if (index < 0) return;
-  throw new CborFault('invalid', 'A sample is NaN or infinite.', at, `${pointer}/${index}`);
+  throw new CborFault('invalid', voltsFault(samples[index]!)!, at, `${pointer}/${index}`);
 }
 
 function tooMany(at: number, pointer: string): CborFault {

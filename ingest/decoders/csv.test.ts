@@ -117,6 +117,7 @@ describe('CSV', () => {
     ['an empty field', 't,A\n0,\n', 'row 1'],
     ['NaN', 't,A\n0,NaN\n', 'row 1'],
     ['infinity', 't,A\n0,1e999\n', 'row 1'],
+    ['more than a million volts', 't,A\n0,1000000\n1,-1000000.1\n', 'row 2'],
     ['hexadecimal', 't,A\n0,0x10\n', 'row 1'],
     ['a time that is no number', 't,A\nnoon,1\n', 'row 1'],
   ])('refuses %s', (_, text, at) => {

@@ -6,7 +6,7 @@ import { CsvError, parse } from 'csv-parse/sync';
 import type { SampleArray } from '@/signal/model';
 import { blockLimits } from '../block';
 import type { IngestIssue } from '../block';
-import { channelNameFault, rateFault } from './fields';
+import { channelNameFault, rateFault, voltsFault } from './fields';
 import { createPieces, runAtOnce } from './recording';
 import type { Pieces, RecordingResult, Steps } from './recording';
 import { invalid, quoted, tooLarge, unreadable } from './result';
@@ -187,6 +187,11 @@ function addRow(table: Table, row: string[], codes: boolean): IngestIssue | unde
       return rowIssue(
         number,
         `has ${quoted(field)} for ${table.channels[c - 1]}, which is no code of 32 bits`,
+      );
+    if (!codes && voltsFault(value) !== undefined)
+      return rowIssue(
+        number,
+        `has ${quoted(field)} for ${table.channels[c - 1]}, which is beyond ${blockLimits.maxVolts} V`,
       );
     table.columns[c - 1]!.push(value);
   }

@@ -36,21 +36,23 @@ export function channelNameFault(name: string): string | undefined {
     : undefined;
 }
 
-/** Index of the first sample that is NaN or infinite, or -1. */
-export function firstNonFinite64(samples: Float64Array): number {
-  for (let i = 0; i < samples.length; i++) {
-    const v = samples[i]!;
-    if (v - v !== 0) return i;
-  }
+/** What is wrong with a sample in volts: NaN, infinite, or beyond what any input of a board can have. */
+export function voltsFault(volts: number): string | undefined {
+  if (Math.abs(volts) <= blockLimits.maxVolts) return undefined;
+  return Number.isFinite(volts)
+    ? `A sample of ${volts.toPrecision(3)} V is beyond ${blockLimits.maxVolts} V: floats are volts, codes are integers.`
+    : 'A sample is NaN or infinite.';
+}
+
+/** Index of the first sample for which `voltsFault` says something, or -1. */
+export function firstNoVolts64(samples: Float64Array): number {
+  for (let i = 0; i < samples.length; i++) if (!(Math.abs(samples[i]!) <= blockLimits.maxVolts)) return i;
   return -1;
 }
 
-/** As `firstNonFinite64`; a function of its own so that each stays fast for its one array type. */
-export function firstNonFinite32(samples: Float32Array): number {
-  for (let i = 0; i < samples.length; i++) {
-    const v = samples[i]!;
-    if (v - v !== 0) return i;
-  }
+/** As `firstNoVolts64`; a function of its own so that each stays fast for its one array type. */
+export function firstNoVolts32(samples: Float32Array): number {
+  for (let i = 0; i < samples.length; i++) if (!(Math.abs(samples[i]!) <= blockLimits.maxVolts)) return i;
   return -1;
 }
 

@@ -2,7 +2,7 @@
 import type { SampleArray } from '@/signal/model';
 import { blockLimits } from '../block';
 import type { Block, BlockChannel } from '../block';
-import { channelNameFault, rateFault, seqFault, streamFault, timeFault, toCodes } from './fields';
+import { channelNameFault, rateFault, seqFault, streamFault, timeFault, toCodes, voltsFault } from './fields';
 import {
   countKeysInText,
   countKeysInValue,
@@ -137,7 +137,8 @@ function readArray(values: unknown, codes: boolean, pointer: string): SampleArra
   for (let i = 0; i < values.length; i++) {
     const value: unknown = values[i];
     if (typeof value !== 'number') return { detail: 'A sample is no number.', pointer: `${pointer}/${i}` };
-    if (value - value !== 0) return { detail: 'A sample is too large.', pointer: `${pointer}/${i}` };
+    const fault = codes ? undefined : voltsFault(value);
+    if (fault !== undefined) return { detail: fault, pointer: `${pointer}/${i}` };
     volts[i] = value;
   }
   if (!codes) return volts;

@@ -50,10 +50,28 @@ describe.each(formats)('%s', (_, decode) => {
         block: { rateHz: undefined, channels: [{ samples: Int32Array.of(0, -5, 2147483647) }] },
       });
     }
-    expect(only(decode({ stream: 's', seq: 0, codes: false, samples }))).toMatchObject({
+    const volts = { A: [0, -5, 21474] };
+    expect(only(decode({ stream: 's', seq: 0, codes: false, samples: volts }))).toMatchObject({
       ok: true,
-      block: { channels: [{ samples: Float64Array.of(0, -5, 2147483647) }] },
+      block: { channels: [{ samples: Float64Array.of(0, -5, 21474) }] },
     });
+  });
+
+  it.each([1_000_000.5, -1e30, 3e38, 1.7e308, 2147483647])('refuses %d V, and says which sample', (volts) => {
+    expect(only(decode({ stream: 's', seq: 0, samples: { A: [1, 2], B: [1, volts] } }))).toMatchObject({
+      ok: false,
+      issue: {
+        slug: 'invalid',
+        status: 422,
+        pointer: '/samples/B/1',
+        detail: expect.stringContaining('beyond 1000000 V'),
+      },
+    });
+  });
+
+  it('takes a million volts either way', () => {
+    const samples = { A: [-1_000_000, 1_000_000] };
+    expect(only(decode({ stream: 's', seq: 0, samples })).ok).toBe(true);
   });
 
   it('ignores unknown keys', () => {
@@ -256,6 +274,20 @@ describe('CBOR only', () => {
     expect(decodeCbor(new Uint8Array(1024 * 1024 + 1))).toMatchObject({
       ok: false,
       issue: { slug: 'too-large', status: 413 },
+    });
+  });
+});
+
+describe('CBOR only', () => {
+  it.each([
+    ['float32', Float32Array.of(0, 1_000_000, 1e30), /^A sample of 1\.00e\+30 V is beyond 1000000 V/],
+    ['float64', Float64Array.of(0, -1_000_000, -1.7e308), /^A sample of -1\.70e\+308 V is beyond 1000000 V/],
+    ['float32', Float32Array.of(0, 1, NaN), /^A sample is NaN or infinite\.$/],
+    ['float64', Float64Array.of(0, 1, -Infinity), /^A sample is NaN or infinite\.$/],
+  ])('refuses a %s that is no voltage', (_, samples, detail) => {
+    expect(only(cbor({ stream: 's', seq: 0, samples: { A: samples } }))).toMatchObject({
+      ok: false,
+      issue: { slug: 'invalid', pointer: '/samples/A/2', detail: expect.stringMatching(detail) },
     });
   });
 });

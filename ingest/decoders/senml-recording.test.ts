@@ -72,6 +72,7 @@ describe('SenML as a recording', () => {
     ['a text', even([{ n: 'A', t: 3, vs: '1' }])],
     ['a record without a value', even([{ n: 'A', t: 3 }])],
     ['a name of 17 characters', even([{ n: 'x'.repeat(17), t: 3, v: 0 }])],
+    ['more than a million volts', even([{ n: 'A', t: 3, bv: 999_999, v: 1.5 }])],
     ['values that overflow', even([{ n: 'A', t: 3, bv: 1e308, v: 1e308 }])],
     ['a record that is no object', even([[]])],
   ])('refuses %s', (_, pack) => {

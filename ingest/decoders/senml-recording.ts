@@ -4,7 +4,7 @@
  */
 import { blockLimits } from '../block';
 import type { IngestIssue } from '../block';
-import { channelNameFault, rateFault } from './fields';
+import { channelNameFault, rateFault, voltsFault } from './fields';
 import { createPieces, runAtOnce } from './recording';
 import type { Pieces, RecordingResult, Steps } from './recording';
 import { invalid, quoted, tooLarge } from './result';
@@ -69,7 +69,8 @@ function addRecord(pack: Pack, record: SenmlRecord, base: SenmlBase, where: stri
   const series = seriesOf(pack, record, base, where);
   if ('slug' in series) return series;
   const value = (base.value ?? 0) + (record.v ?? 0);
-  if (!Number.isFinite(value)) return invalid('The value is too large.', where + '/v');
+  const unusable = voltsFault(value);
+  if (unusable !== undefined) return invalid(unusable, where + '/v');
   pack.firstBaseS ??= base.timeS;
   series.values.push(value);
   series.offsets.push(base.timeS - pack.firstBaseS + (record.t ?? 0));

@@ -14,7 +14,8 @@ const block = z
     }),
     time: z.number().optional().meta({ description: 'The board’s own clock at the first sample, s' }),
     samples: z.record(z.string(), z.array(z.number())).meta({
-      description: 'Channel name to samples, all of one length: volts, or codes where `codes` is true',
+      description:
+        'Channel name to samples, all of one length: volts within ±1,000,000, or codes where `codes` is true',
     }),
     codes: z.boolean().optional(),
   })
@@ -39,7 +40,8 @@ export const ingestPaths: RouteConfig[] = [
     summary: 'Send samples',
     description:
       'One block or a batch (CBOR, JSON: 1 MiB), a CSV table or a SenML pack (64 MiB). In CBOR, samples are typed arrays ' +
-      '(RFC 8746): integers are codes, floats are volts. What is answered for is stored. Sending again is always safe.',
+      '(RFC 8746): integers are codes, floats are volts. Volts lie within ±1,000,000 V: NaN, infinity and what no input of a board can ' +
+      'have is refused (422), naming the sample. What is answered for is stored. Sending again is always safe.',
     security: [{ rigKey: [] }],
     request: {
       headers: z.object({

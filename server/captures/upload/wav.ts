@@ -1,6 +1,7 @@
 /** WAV as a recording: integers are codes, floats are volts; its channels are the rig's, in the rig's order. */
 import type { SampleArray } from '@/signal/model';
 import { blockLimits } from '@/ingest/block';
+import { voltsFault } from '@/ingest/decoders/fields';
 import { createTurns } from '../turns';
 import { refused, unreadable } from './upload';
 import type { UploadResult } from './upload';
@@ -104,9 +105,9 @@ export async function readWav(bytes: Uint8Array, rigChannels: readonly string[])
     for (const piece of pieces()) {
       await turn();
       for (const { name, samples } of piece.channels) {
-        const bad = samples.findIndex((v) => !Number.isFinite(v));
+        const bad = samples.findIndex((v) => voltsFault(v) !== undefined);
         if (bad >= 0)
-          return refused(`Sample ${piece.startIndex + bad} of channel ${name} is no finite number.`);
+          return refused(`Sample ${piece.startIndex + bad} of channel ${name}: ${voltsFault(samples[bad]!)}`);
       }
     }
   }
