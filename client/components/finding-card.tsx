@@ -3,7 +3,8 @@ import { Button } from '@/client/components/button';
 import { Plate } from '@/client/components/plate';
 import { SeverityShape } from '@/client/components/shapes';
 import { Text } from '@/client/components/text';
-import { evidenceText, severityTone, severityWord } from '@/client/components/finding-words';
+import { evidenceText, foldAlike, severityTone, severityWord } from '@/client/components/finding-words';
+import { unbroken } from '@/client/components/unbroken';
 import { space } from '@/client/theme/tokens';
 import type { Finding } from '@/signal/model';
 
@@ -32,7 +33,7 @@ export function FindingCard({ finding, when, onShow, follows = [] }: FindingCard
           <SeverityShape severity={severity} />
         </View>
         <Text weight="medium" style={{ flex: 1 }}>
-          {message}
+          {unbroken(message)}
         </Text>
         {when ? (
           <Text size="small" tone="scribeSoft" figures>
@@ -44,13 +45,13 @@ export function FindingCard({ finding, when, onShow, follows = [] }: FindingCard
         {outcome === 'cannot-tell' ? 'Cannot tell' : severityWord[severity]}
         <Text size="small" tone="scribeSoft" figures>
           {channel ? `, channel ${channel}` : ''}
-          {evidence ? ` · ${evidence}` : ''}
+          {evidence ? ` · ${unbroken(evidence)}` : ''}
         </Text>
       </Text>
-      <Text size="small">{outcome === 'cannot-tell' ? `Do this: ${remedy}` : remedy}</Text>
-      {follows.map((f) => (
+      <Text size="small">{unbroken(outcome === 'cannot-tell' ? `Do this: ${remedy}` : remedy)}</Text>
+      {foldAlike(follows).map(({ finding: f, times }) => (
         <Text key={`${f.code}${f.channel}${f.from}`} size="small" tone="scribeSoft">
-          Follows from it: {f.message}
+          Follows from it{times > 1 ? `, ${times} times` : ''}: {unbroken(f.message)}
         </Text>
       ))}
       {onShow ? (

@@ -24,21 +24,43 @@ const units: Record<string, string> = {
   K: 'K',
   Ppm: 'ppm',
 };
+/** Units of more than one word. */
+const longUnits: Record<string, string> = { RadPerS2: 'rad/s²', VoltsPerSecond: 'V/s' };
 
 /** `{ peakV: 1.7, turnsInARow: 312 }` becomes "peak 1.7 V, turns in a row 312". */
 export function evidenceText(evidence: Finding['evidence']): string {
   return Object.entries(evidence)
     .map(([name, value]) => {
-      const words = name
-        .replace(/([a-z0-9])([A-Z])/g, '$1 $2')
-        .replace(/([A-Z])([A-Z][a-z])/g, '$1 $2')
-        .split(' ');
-      const unit = words.length > 1 ? units[words.at(-1)!] : undefined;
-      if (unit) words.pop();
-      const shown = typeof value === 'number' ? shortNumber(value) : value;
-      return `${words.join(' ').toLowerCase()} ${shown}${unit ? (unit === '°' ? unit : ` ${unit}`) : ''}`;
+      const { words, unit, after } = partsOf(name);
+      const shown = typeof value === 'number' ? withUnit(value, unit) : value;
+      return [...words, shown, ...after].join(' ');
     })
     .join(', ');
+}
+
+/** `jumpPercentOfTooth` is so many percent of a tooth: what follows the unit stands behind the number. */
+function partsOf(name: string): { words: string[]; unit: string | undefined; after: string[] } {
+  const long = Object.keys(longUnits).find((end) => name.endsWith(end));
+  const words = (long ? name.slice(0, -long.length) : name)
+    .replace(/([a-z0-9])([A-Z])/g, '$1 $2')
+    .replace(/([A-Z])([A-Z][a-z])/g, '$1 $2')
+    .split(' ');
+  const lower = (list: string[]) => list.map((word) => word.toLowerCase());
+  if (long) return { words: lower(words), unit: longUnits[long], after: [] };
+  const of = words.indexOf('Of');
+  const at = (of > 1 ? of : words.length) - 1;
+  const unit = at > 0 ? units[words[at]!] : undefined;
+  if (!unit) return { words: lower(words), unit: undefined, after: [] };
+  return { words: lower(words.slice(0, at)), unit, after: lower(words.slice(at + 1)) };
+}
+
+/** Three figures are enough to act on; short times in the unit that suits them. */
+function withUnit(value: number, unit: string | undefined): string {
+  const size = Math.abs(value);
+  if (unit === 's' && size > 0 && size < 1)
+    return size < 1e-3 ? withUnit(1e6 * value, 'µs') : withUnit(1e3 * value, 'ms');
+  const shown = shortNumber(size < 1000 ? Number(value.toPrecision(3)) : value);
+  return unit ? `${shown}${unit === '°' ? '' : ' '}${unit}` : shown;
 }
 
 /** At most four significant figures, a true minus, no exponent for what people meet on a bench. */
@@ -59,6 +81,19 @@ export function shortNumber(value: number): string {
 /** Worst first; within a severity the newest first. */
 export function worstFirst(findings: readonly Finding[]): Finding[] {
   return [...findings].sort((a, b) => rank[a.severity] - rank[b.severity] || b.from - a.from);
+}
+
+/** Consequences of one kind as one: the first of them, and how many there are. */
+export function foldAlike(findings: readonly Finding[]): { finding: Finding; times: number }[] {
+  const alike = new Map<string, { finding: Finding; times: number }>();
+  for (const finding of findings) {
+    const { code, channel, message } = finding;
+    const key = `${code} ${channel} ${message.replace(/[\d.]+/g, '#')}`;
+    const known = alike.get(key);
+    if (known) known.times += 1;
+    else alike.set(key, { finding, times: 1 });
+  }
+  return [...alike.values()];
 }
 
 export type FoldedFinding = { finding: Finding; follows: Finding[] };

@@ -19,7 +19,9 @@ export function StatusWord({
   const Shape = shapes[status];
   return (
     <View style={{ flexDirection: 'row', alignItems: 'center', gap: space.s, flexShrink: 1 }}>
-      <Shape size={size === 'tiny' || size === 'small' ? 14 : 18} />
+      <View style={{ flexShrink: 0 }}>
+        <Shape size={size === 'tiny' || size === 'small' ? 14 : 18} />
+      </View>
       <Text size={size} tone={tones[status]} figures style={{ flexShrink: 1 }}>
         {word}
       </Text>

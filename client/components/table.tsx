@@ -1,6 +1,6 @@
 import { createElement } from 'react';
 import type { CSSProperties, ReactNode } from 'react';
-import { ScrollView } from 'react-native';
+import { ScrollView, View } from 'react-native';
 import { Text } from '@/client/components/text';
 import { space } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
@@ -19,10 +19,12 @@ type TableProps<R> = {
   rows: readonly R[];
   keyOf: (row: R, index: number) => string;
   dense?: boolean;
+  /** The name is written above it too: where several stand under each other. */
+  titled?: boolean;
 };
 
 /** A table of the page's own kind, so that screen readers can walk it; scrolls sideways where it must. */
-export function Table<R>({ label, columns, rows, keyOf, dense }: TableProps<R>) {
+export function Table<R>({ label, columns, rows, keyOf, dense, titled }: TableProps<R>) {
   const colours = useColours();
   const cell = (numeric: boolean | undefined): CSSProperties => ({
     textAlign: numeric ? 'right' : 'left',
@@ -46,7 +48,7 @@ export function Table<R>({ label, columns, rows, keyOf, dense }: TableProps<R>) 
       columns.map((c) => createElement('td', { key: c.title, style: cell(c.numeric) }, wrapped(c.cell(row)))),
     ),
   );
-  return (
+  const table = (
     <ScrollView
       horizontal
       style={{ flexGrow: 0 }}
@@ -61,6 +63,15 @@ export function Table<R>({ label, columns, rows, keyOf, dense }: TableProps<R>) 
         createElement('tbody', null, body),
       )}
     </ScrollView>
+  );
+  if (!titled) return table;
+  return (
+    <View style={{ gap: space.xs }}>
+      <Text heading={3} weight="medium">
+        {label}
+      </Text>
+      {table}
+    </View>
   );
 }
 

@@ -67,7 +67,7 @@ const lineHeights: Record<TypeSize, number> = {
 
 // Features and wrapping that only the web knows by these names.
 const slashed = { fontVariant: ['tabular-nums', 'slashed-zero'] } as unknown as TextStyle;
-const breakWords = { overflowWrap: 'anywhere' } as unknown as TextStyle;
+const breakWords = { overflowWrap: 'anywhere', textWrap: 'pretty' } as unknown as TextStyle;
 const breakAnywhere = { wordBreak: 'break-all' } as unknown as TextStyle;
 
 /** Figures of equal width without the slash: the big speed. */

@@ -11,6 +11,9 @@ import { tracePaths } from '@/client/drawings/trace';
 import type { ColourName } from '@/client/theme/tokens';
 import { useColours } from '@/client/theme/use-theme';
 
+/** Of a lane's name, px: its face has letters of one width. */
+const nameCharPx = 8.6;
+
 type LaneProps = {
   box: LaneBox;
   time: TimeScale;
@@ -61,7 +64,14 @@ export function RibbonLaneDrawing({ box, time, gaps, hatchId, last }: LaneProps)
       <SvgText x={0} y={box.top + (box.thin ? (box.bottom - box.top) / 2 : 10)} tone="scribe" size={14} code>
         {lane.channel}
       </SvgText>
-      {box.thin ? null : <VoltLabels box={box} y={y} />}
+      {box.thin ? null : (
+        <>
+          <SvgText x={lane.channel.length * nameCharPx + 8} y={box.top + 10}>
+            volts
+          </SvgText>
+          <VoltLabels box={box} y={y} />
+        </>
+      )}
     </G>
   );
 }

@@ -25,6 +25,8 @@ import { useColours } from '@/client/theme/use-theme';
 
 export type RibbonProps = {
   data: RibbonData;
+  /** What its marks are: "teeth". */
+  positions?: string;
   height: number | 'fill';
   /** Live: labels count back from here, and `rightWord` stands there. */
   anchorS?: number;
@@ -54,6 +56,7 @@ export function Ribbon(props: RibbonProps) {
 
 function RibbonDrawing({
   data,
+  positions = 'teeth',
   size,
   anchorS,
   rightWord,
@@ -94,7 +97,15 @@ function RibbonDrawing({
           last={i === boxes.length - 1}
         />
       ))}
-      <ToothRail data={data} time={time} top={lanesHeight} height={railPx} labelX={gutterPx - 8} />
+      <ToothRail
+        data={data}
+        // The gutter holds one short word.
+        word={positions.split(' ').at(-1)!}
+        time={time}
+        top={lanesHeight}
+        height={railPx}
+        labelX={gutterPx - 8}
+      />
       <TornGaps gaps={data.gaps} time={time} bottom={lanesHeight} railY={lanesHeight + railPx / 2 - 3} />
       {extra ? extra(time, lanesHeight + railPx) : null}
       <TimeAxis

@@ -1,5 +1,12 @@
 import { describe, expect, it } from 'vitest';
-import { sparkRange, speedAt, speedExtremes, speedPath, zeroRange } from '@/client/drawings/speed-line';
+import {
+  sparkRange,
+  speedAt,
+  speedExtremes,
+  speedLabels,
+  speedPath,
+  zeroRange,
+} from '@/client/drawings/speed-line';
 
 const x = (t: number) => t * 10;
 const y = (rpm: number) => 100 - rpm;
@@ -70,5 +77,25 @@ describe('speedAt', () => {
     expect(speedAt(points, 1.5)).toBe(10);
     expect(speedAt(points, 2.5)).toBeNull();
     expect(speedAt(points, 99)).toBe(30);
+  });
+});
+
+describe('speedLabels', () => {
+  // Ten px to a hundred rpm, zero at 50.
+  const y = (rpm: number) => 50 - rpm / 10;
+  const texts = (low: number, high: number) =>
+    speedLabels({ low, high }, y, 0, 100)
+      .sort((a, b) => a.y - b.y)
+      .map((label) => label.text);
+  it('says the fastest, the unit and zero, each in a place of its own', () => {
+    expect(texts(0, 412.34)).toEqual(['412', 'rpm', '0']);
+    expect(texts(-250, 300)).toEqual(['300', 'rpm', '0', '\u2212250']);
+    expect(texts(-81.84, -12)).toEqual(['0', 'rpm', '\u221281.8']);
+    const placed = speedLabels({ low: 0, high: 60 }, y, 0, 100).map((label) => label.y);
+    expect(Math.min(...placed.slice(1).map((at, i) => at - placed[i]!))).toBeGreaterThanOrEqual(14);
+  });
+  it('has zero and the unit where no speed is known', () => {
+    const labels = speedLabels(null, y, 0, 100).map((label) => label.text);
+    expect(labels.sort()).toEqual(['0', 'rpm']);
   });
 });

@@ -1,3 +1,5 @@
+import { spreadLabels } from '@/client/drawings/labels';
+
 export type SpeedPoint = { t: number; rpm: number | null };
 export type SpeedRange = { low: number; high: number };
 
@@ -91,4 +93,26 @@ export function speedAt(points: readonly SpeedPoint[], t: number): number | null
     } else high = middle - 1;
   }
   return found < 0 ? null : points[found]!.rpm;
+}
+
+/** Speed with the digits that its size leaves worth reading. */
+export function axisNumber(rpm: number): string {
+  const magnitude = Math.abs(rpm);
+  const text = magnitude >= 100 ? magnitude.toFixed(0) : String(Number(magnitude.toPrecision(3)));
+  return `${rpm < 0 && Number(text) !== 0 ? '\u2212' : ''}${text}`;
+}
+
+/** What stands at the left of a drawing of speed: its zero, its ends, and the unit between them. */
+export function speedLabels(
+  extremes: SpeedRange | null,
+  y: (rpm: number) => number,
+  top: number,
+  bottom: number,
+): { text: string; y: number }[] {
+  const { low, high } = extremes ?? { low: 0, high: 0 };
+  const labels = [{ text: '0', y: y(0) }];
+  if (high > 0) labels.push({ text: axisNumber(high), y: y(high) });
+  if (low < 0) labels.push({ text: axisNumber(low), y: y(low) });
+  const unitY = high > 0 ? (y(high) + y(0)) / 2 : low < 0 ? (y(low) + y(0)) / 2 : top;
+  return spreadLabels([...labels, { text: 'rpm', y: unitY }], 14, top, bottom);
 }

@@ -24,6 +24,9 @@ describe('ticks', () => {
     expect(timeTicks(6.2, 6.6, 4).map((t) => t.label)).toEqual(['6.2 s', '6.3 s', '6.4 s', '6.5 s', '6.6 s']);
     expect(timeTicks(6.2, 6.2004, 2).map((t) => t.label)).toEqual(['6.2000 s', '6.2002 s', '6.2004 s']);
   });
+  it('writes positions in seconds from the first one on, as the cursor has them', () => {
+    expect(timeTicks(0, 0.02, 2).map((t) => t.label)).toEqual(['0.00 s', '0.01 s', '0.02 s']);
+  });
   it('has none for an empty stretch', () => {
     expect(timeTicks(1, 1, 4)).toEqual([]);
   });

@@ -32,7 +32,7 @@ export function timeTicks(fromS: number, toS: number, most: number, anchorS?: nu
     if (anchorS !== undefined && k === 0) continue;
     ticks.push({
       s: zero + k * step,
-      label: secondsText(k * step, step, anchorS === undefined ? toS : spanS),
+      label: secondsText(k * step, step, anchorS === undefined ? Math.max(1, toS) : spanS),
     });
   }
   return ticks;

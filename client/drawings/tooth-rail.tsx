@@ -7,12 +7,19 @@ import { SvgText } from '@/client/drawings/svg-text';
 import type { TimeScale } from '@/client/drawings/time-axis';
 import { useColours } from '@/client/theme/use-theme';
 
-type ToothRailProps = { data: RibbonData; time: TimeScale; top: number; height: number; labelX: number };
+type ToothRailProps = {
+  data: RibbonData;
+  word: string;
+  time: TimeScale;
+  top: number;
+  height: number;
+  labelX: number;
+};
 
 const markPx = 13;
 
 /** Forward up, reverse down, direction unknown across the line; a crossing that was not counted is a hollow ring. */
-export function ToothRail({ data, time, top, height, labelX }: ToothRailProps) {
+export function ToothRail({ data, word, time, top, height, labelX }: ToothRailProps) {
   const colours = useColours();
   const y = top + height / 2 + 4;
   const items = railItems(data.edges, data.lanes[0]?.channel, time);
@@ -20,7 +27,7 @@ export function ToothRail({ data, time, top, height, labelX }: ToothRailProps) {
   return (
     <G>
       <SvgText x={labelX} y={y} anchor="end">
-        teeth
+        {word}
       </SvgText>
       {withoutGaps({ from: time.fromS, to: time.toS }, data.gaps).map((s) => (
         <Line

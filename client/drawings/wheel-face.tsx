@@ -20,16 +20,27 @@ type WheelFaceProps = {
   rpm: number | null;
   direction: 'forward' | 'reverse' | 'stopped' | 'unknown';
   size: number;
+  /** What a position is called, one and many. */
+  nouns?: [one: string, many: string];
+  /** A wheel that was, not one that turns: no angle is said of it. */
+  past?: boolean;
 };
 
 /** One turn: every tooth at its angle, and the turn mark moving with the shaft. */
-export function WheelFace({ face, rpm, direction, size }: WheelFaceProps) {
+export function WheelFace({
+  face,
+  rpm,
+  direction,
+  size,
+  nouns = ['tooth', 'teeth'],
+  past = false,
+}: WheelFaceProps) {
   const still = useReducedMotion();
   const drawing = wheelDrawing(face, size / 2 - 4);
   const missing = face.positions.filter((p) => p.missing).length;
-  const words = turnWords(rpm, face.angleDeg);
-  const teeth = countText(face.positions.length - missing, 'tooth', 'teeth');
-  const label = `Wheel with ${teeth}${missing ? ` and ${missing} missing` : ''}, ${words}. Spacing errors drawn ${drawing.scale} times as large.`;
+  const words = past ? null : turnWords(rpm, face.angleDeg);
+  const teeth = countText(face.positions.length - missing, ...nouns);
+  const label = `Wheel with ${teeth}${missing ? ` and ${missing} missing` : ''}${words === null ? '' : `, ${words}`}. Spacing errors drawn ${drawing.scale} times as large.`;
   return (
     <Drawing label={label} height={size} style={{ width: size, alignSelf: 'center' }}>
       {() => (
@@ -42,12 +53,20 @@ export function WheelFace({ face, rpm, direction, size }: WheelFaceProps) {
             centre={size / 2}
             ring={drawing.ring}
           />
-          <SvgText x={size / 2} y={size / 2 - 10} anchor="middle" size={14} tone="scribe">
+          <SvgText
+            x={size / 2}
+            y={size / 2 - (words === null ? 0 : 10)}
+            anchor="middle"
+            size={14}
+            tone="scribe"
+          >
             {teeth}
           </SvgText>
-          <SvgText x={size / 2} y={size / 2 + 10} anchor="middle">
-            {words}
-          </SvgText>
+          {words === null ? null : (
+            <SvgText x={size / 2} y={size / 2 + 10} anchor="middle">
+              {words}
+            </SvgText>
+          )}
         </Svg>
       )}
     </Drawing>

@@ -26,7 +26,7 @@ test('speed and picture of a rig that runs', async ({ page }) => {
   await expect(farButton(page)).toHaveText(/^\d+(\.\d+)?rpmFar view$/, { timeout: 40_000 });
   await expect(speedOf(page)).toContainText('direction not sensed');
   await expect(speedOf(page)).toContainText(/no findings|\d findings?/);
-  await expect(speedOf(page)).toContainText(/±.*over the last turn · 58 teeth a turn/);
+  await expect(speedOf(page)).toContainText(/±.*over the last turn · 58\steeth\sa\sturn/);
 
   const picture = pictureOf(page).getByRole('img', { name: /^Signal over .* channel A from/ });
   await expect(picture).toHaveAttribute('aria-label', /[5-9] teeth counted/);

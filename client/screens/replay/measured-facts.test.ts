@@ -41,6 +41,16 @@ describe('what was measured, in words', () => {
     expect(value('swing, once a turn')).toBe('± 15 %');
   });
 
+  it('tells the slowest from the fastest turn, in reverse too', () => {
+    const of = (...rpms: number[]) => {
+      const facts = motionFacts({ ...bare, turns: rpms.map((rpm, t) => ({ t, rpm })) });
+      return ['slowest turn', 'fastest turn'].map((name) => facts.find((f) => f.name === name)?.value);
+    };
+    expect(of(208.6719, 208.6873, 208.6774)).toEqual(['208.672 rpm', '208.687 rpm']);
+    expect(of(-81.84, -198.51)).toEqual(['\u221282 rpm', '\u2212199 rpm']);
+    expect(of(600)).toEqual(['600.0 rpm', '600.0 rpm']);
+  });
+
   it('says the sine of a near-sine and the levels of the others', () => {
     expect(channelFacts(channel)[0]).toEqual({ name: 'state levels', value: '0.2 and 3.2 V' });
     const near = { ...channel, sine: { amplitudeV: 0.8, offsetV: 1.65, residualRmsV: 0.004 } };

@@ -1,7 +1,6 @@
 /** What was measured over a capture, as names and values. */
 import type { Fact } from '@/client/components/facts';
 import { shortNumber } from '@/client/components/finding-words';
-import { rpmText } from '@/client/drawings/speed-words';
 import type { CaptureStatistics, ChannelStatistics } from '@/signal/capture-statistics/shapes';
 
 /** 3.2 µs, 1.5 ms, 2 s. */
@@ -12,28 +11,51 @@ export function shortTime(seconds: number): string {
   return size < 1 ? `${shortNumber(1e3 * seconds)} ms` : `${shortNumber(seconds)} s`;
 }
 
+type Turns = CaptureStatistics['turns'];
+
+/** The slowest and the fastest turn, rpm; in reverse too the slow one is the one nearest to zero. */
+function ends(turns: Turns): { slow: number; fast: number } {
+  let slow = NaN;
+  let fast = NaN;
+  for (const { rpm } of turns) {
+    if (!(Math.abs(rpm) >= Math.abs(slow))) slow = rpm;
+    if (!(Math.abs(rpm) <= Math.abs(fast))) fast = rpm;
+  }
+  return { slow, fast };
+}
+
+/** Speeds of turns with the digits that tell the slowest from the fastest. */
+export function turnSpeedText(turns: Turns): (rpm: number) => string {
+  const { slow, fast } = ends(turns);
+  const apart = Math.abs(fast - slow);
+  const digits = apart > 0 ? Math.min(4, Math.max(0, 1 - Math.floor(Math.log10(apart)))) : 1;
+  return (rpm) => rpm.toFixed(digits).replace('-', '\u2212');
+}
+
 const percent = (share: number): string => `${shortNumber(Number((100 * share).toPrecision(2)))} %`;
 
 /** Of the speed and the wheel. */
 export function motionFacts({ turns, jitter, speedOrders, swingOrders, pair }: CaptureStatistics): Fact[] {
   const facts: Fact[] = [];
   if (turns.length > 0) {
-    const speeds = turns.map(({ rpm }) => rpm);
-    const mean = speeds.reduce((sum, rpm) => sum + rpm, 0) / speeds.length;
+    const text = turnSpeedText(turns);
+    const { slow, fast } = ends(turns);
+    const mean = turns.reduce((sum, { rpm }) => sum + rpm, 0) / turns.length;
     facts.push(
       { name: 'whole turns', value: String(turns.length) },
-      { name: 'mean speed of a turn', value: `${rpmText(mean)} rpm` },
-      {
-        name: 'slowest to fastest turn',
-        value: `${rpmText(Math.min(...speeds))} to ${rpmText(Math.max(...speeds))} rpm`,
-      },
+      { name: 'mean speed of a turn', value: `${text(mean)} rpm` },
+      { name: 'slowest turn', value: `${text(slow)} rpm` },
+      { name: 'fastest turn', value: `${text(fast)} rpm` },
     );
   }
   if (jitter) {
     facts.push(
       { name: 'jitter of a period, rms', value: shortTime(jitter.periodRmsS) },
       { name: 'cycle to cycle, rms', value: shortTime(jitter.cycleToCycleRmsS) },
-      { name: 'of a tooth pitch', value: `${shortNumber(jitter.timeIntervalErrorToothDeg)}°` },
+      {
+        name: 'time-interval error, rms',
+        value: `${shortNumber(Number(jitter.timeIntervalErrorToothDeg.toPrecision(3)))}° of a pitch`,
+      },
     );
   }
   const speedOnce = speedOrders?.lines.find(({ order }) => order === 1);

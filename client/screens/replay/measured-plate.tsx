@@ -4,11 +4,11 @@ import { Plate } from '@/client/components/plate';
 import { Table } from '@/client/components/table';
 import { Text } from '@/client/components/text';
 import { shortNumber } from '@/client/components/finding-words';
+import { positionNouns } from '@/client/drawings/count-text';
 import { TableButton } from '@/client/drawings/figure';
-import { rpmText } from '@/client/drawings/speed-words';
 import { WheelFace } from '@/client/drawings/wheel-face';
 import { wheelDrawing } from '@/client/drawings/wheel-geometry';
-import { channelFacts, motionFacts } from '@/client/screens/replay/measured-facts';
+import { channelFacts, motionFacts, turnSpeedText } from '@/client/screens/replay/measured-facts';
 import { space } from '@/client/theme/tokens';
 import type { CaptureStatistics, OrderLine } from '@/signal/capture-statistics/shapes';
 import type { Analysis, WheelFace as Face } from '@/signal/model';
@@ -17,7 +17,7 @@ const faceSize = 220;
 const mostRows = 300;
 
 /** What the capture says of its teeth, its wheel and its levels. */
-export function MeasuredPlate({ analysis }: { analysis: Analysis }) {
+export function MeasuredPlate({ analysis, sensing }: { analysis: Analysis; sensing: string }) {
   const { statistics, wheelFace } = analysis;
   if (!statistics) return null;
   const seen = wheelFace?.positions.some(
@@ -28,13 +28,20 @@ export function MeasuredPlate({ analysis }: { analysis: Analysis }) {
     .filter(({ facts }) => facts.length > 0);
   return (
     <Plate role="region" label="Measured" style={{ gap: space.m }}>
-      <View style={{ flexDirection: 'row', justifyContent: 'space-between', alignItems: 'center' }}>
+      <View
+        style={{
+          flexDirection: 'row',
+          justifyContent: 'space-between',
+          alignItems: 'center',
+          marginRight: -space.m,
+        }}
+      >
         <Text heading={2} weight="medium">
           Measured
         </Text>
         <MeasuredTable statistics={statistics} />
       </View>
-      {wheelFace && seen ? <CaptureWheel face={wheelFace} /> : null}
+      {wheelFace && seen ? <CaptureWheel face={wheelFace} sensing={sensing} /> : null}
       <Facts facts={motionFacts(statistics)} />
       {channels.map(({ name, facts }) => (
         <View key={name} style={{ gap: space.xs }}>
@@ -52,11 +59,18 @@ export function MeasuredPlate({ analysis }: { analysis: Analysis }) {
   );
 }
 
-function CaptureWheel({ face }: { face: Face }) {
+function CaptureWheel({ face, sensing }: { face: Face; sensing: string }) {
   const { scale } = wheelDrawing(face, faceSize / 2 - 4);
   return (
     <View style={{ gap: space.xs }}>
-      <WheelFace face={{ ...face, angleDeg: null }} rpm={null} direction="unknown" size={faceSize} />
+      <WheelFace
+        face={{ ...face, angleDeg: null }}
+        rpm={null}
+        direction="unknown"
+        size={faceSize}
+        nouns={positionNouns(sensing)}
+        past
+      />
       <Text size="tiny" tone="scribeSoft" figures>
         spacing error × {scale}, as at the end of the capture
       </Text>
@@ -67,15 +81,17 @@ function CaptureWheel({ face }: { face: Face }) {
 function MeasuredTable({ statistics }: { statistics: CaptureStatistics }) {
   const { turns, speedOrders, swingOrders } = statistics;
   if (turns.length === 0 && !speedOrders && !swingOrders) return null;
+  const rpmOf = turnSpeedText(turns);
   const orders = (label: string, lines: readonly OrderLine[], unit: string) => (
     <Table
       label={label}
       dense
+      titled
       rows={lines}
       keyOf={(line) => String(line.order)}
       columns={[
         { title: 'times a turn', numeric: true, cell: (line) => line.order },
-        { title: 'amplitude', numeric: true, cell: (line) => `${shortNumber(line.amplitude)} ${unit}` },
+        { title: 'amplitude', numeric: true, cell: (line) => amplitudeText(line.amplitude, unit) },
         {
           title: 'phase',
           numeric: true,
@@ -88,20 +104,28 @@ function MeasuredTable({ statistics }: { statistics: CaptureStatistics }) {
     <TableButton title="Measured, as tables">
       {() => (
         <View style={{ gap: space.l }}>
+          {speedOrders ? orders('Speed, what repeats with the shaft', speedOrders.lines, 'rpm') : null}
+          {swingOrders ? orders('Swing, what repeats with the shaft', swingOrders.lines, 'V') : null}
           <Table
             label="Whole turns"
             dense
+            titled
             rows={turns.slice(0, mostRows)}
             keyOf={(turn) => String(turn.t)}
             columns={[
               { title: 'ends at', numeric: true, cell: (turn) => `${turn.t.toFixed(6)} s` },
-              { title: 'rpm', numeric: true, cell: (turn) => rpmText(turn.rpm) },
+              { title: 'rpm', numeric: true, cell: (turn) => rpmOf(turn.rpm) },
             ]}
           />
-          {speedOrders ? orders('Speed, what repeats with the shaft', speedOrders.lines, 'rpm') : null}
-          {swingOrders ? orders('Swing, what repeats with the shaft', swingOrders.lines, 'V') : null}
         </View>
       )}
     </TableButton>
   );
+}
+
+/** Three figures; small volts as millivolts. */
+function amplitudeText(amplitude: number, unit: string): string {
+  const [value, shown] = unit === 'V' && amplitude < 0.1 ? [1000 * amplitude, 'mV'] : [amplitude, unit];
+  const text = value >= 100 ? value.toFixed(0) : value >= 0.001 ? value.toPrecision(3) : shortNumber(value);
+  return `${text} ${shown}`;
 }

@@ -5,14 +5,19 @@ import { BareSelect } from '@/client/components/select';
 import { playRates, spanOf } from '@/client/screens/replay/replay-window';
 import type { Replay } from '@/client/screens/replay/use-replay';
 import { size, space } from '@/client/theme/tokens';
+import { useWide } from '@/client/theme/use-theme';
 
-/** Every move without dragging: edge to edge, play, how fast, raw or filtered, closer, wider, earlier, later. */
+/**
+ * Every move without dragging: edge to edge, play, how fast, raw or filtered, closer, wider, earlier, later. One row where
+ * there is room.
+ */
 export function ReplayControls({ replay }: { replay: Replay }) {
+  const wide = useWide();
   const span = spanOf(replay.window);
   const other = replay.signal === 'raw' ? 'filtered' : 'raw';
   return (
-    <View style={{ gap: space.s }}>
-      <View style={row}>
+    <View style={wide ? { flexDirection: 'row', gap: space.l } : { gap: space.s }}>
+      <View style={[row, wide ? { gap: space.l } : null]}>
         <View style={{ flexDirection: 'row', gap: tightPx }}>
           <IconButton
             kind="outlined"
@@ -38,7 +43,7 @@ export function ReplayControls({ replay }: { replay: Replay }) {
             style={narrow}
           />
         </View>
-        <View style={{ flexDirection: 'row', gap: tightPx, marginLeft: 'auto' }}>
+        <View style={{ flexDirection: 'row', gap: tightPx, marginLeft: wide ? 0 : 'auto' }}>
           <View style={{ width: 104 }}>
             <BareSelect
               label="Replay speed"
@@ -55,7 +60,7 @@ export function ReplayControls({ replay }: { replay: Replay }) {
           />
         </View>
       </View>
-      <View style={row}>
+      <View style={[row, wide ? { flex: 1 } : null]}>
         <IconButton
           kind="outlined"
           icon="back"

@@ -7,7 +7,7 @@ import { Overview, overviewSentence } from '@/client/drawings/overview';
 import { Ribbon } from '@/client/drawings/ribbon';
 import { gutterPx, ribbonSentence, rightPx, speedLanePx } from '@/client/drawings/ribbon-layout';
 import type { RibbonData, RibbonLane } from '@/client/drawings/ribbon-types';
-import { speedAt, speedExtremes, zeroRange } from '@/client/drawings/speed-line';
+import { speedAt, speedExtremes } from '@/client/drawings/speed-line';
 import { rpmText } from '@/client/drawings/speed-words';
 import { durationText, secondsText, timeScale } from '@/client/drawings/time-axis';
 import { inWindow } from '@/client/screens/replay/replay-data';
@@ -24,6 +24,8 @@ type PictureProps = {
   analysis: Analysis | null;
   lanes: readonly RibbonLane[];
   note: string | null;
+  /** What a position of the wheel is called: "teeth". */
+  positions: string;
 };
 
 /** What the ribbon draws now. */
@@ -41,7 +43,7 @@ export function pictureOf(
   };
 }
 
-export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
+export function RibbonPicture({ replay, analysis, lanes, note, positions }: PictureProps) {
   const wide = useWide();
   const { window, cursorS } = replay;
   const count = lanes.length;
@@ -49,7 +51,7 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
   const focus = crowded ? (replay.focus ?? lanes[0]?.channel ?? null) : replay.focus;
   const height = (crowded ? 180 + 44 * (count - 1) : Math.max(2, count) * 116) + 68 + speedLanePx;
   const speed = analysis?.speed;
-  const range = useMemo(() => zeroRange(speedExtremes(speed ?? []) ?? { low: 0, high: 1 }), [speed]);
+  const extremes = useMemo(() => speedExtremes(speed ?? []), [speed]);
   const rpm = speedAt(speed ?? [], cursorS);
   const cursorText = `${secondsText(cursorS, spanOf(window) / 200, Math.max(1, replay.durationS))}${rpm === null ? '' : ` · ${rpmText(rpm)} rpm`}`;
   const secondsAt = (x: number, widthPx: number) =>
@@ -82,6 +84,7 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
       >
         <Ribbon
           data={data}
+          positions={positions}
           height={wide ? 'fill' : height}
           focus={focus}
           markS={cursorS}
@@ -90,7 +93,7 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
           extra={(time, top) => (
             <SpeedLane
               speed={speed ?? []}
-              range={range}
+              extremes={extremes}
               gaps={analysis?.gaps ?? []}
               time={time}
               top={top}
@@ -117,7 +120,7 @@ export function RibbonPicture({ replay, analysis, lanes, note }: PictureProps) {
   );
 }
 
-export function OverviewPicture({ replay, analysis }: Omit<PictureProps, 'lanes' | 'note'>) {
+export function OverviewPicture({ replay, analysis }: Pick<PictureProps, 'replay' | 'analysis'>) {
   const { window, cursorS, durationS } = replay;
   const valueText = `${secondsText(cursorS, 0.01, Math.max(1, durationS))} of ${secondsText(durationS, 0.01, Math.max(1, durationS))}`;
   const { speed = [], gaps = [], findings = [] } = analysis ?? {};

@@ -18,6 +18,7 @@ export function WindowTable({ replay, analysis }: { replay: Replay; analysis: An
           <Table
             label="Edges"
             dense
+            titled
             rows={inWindow(replay.edges, replay.window).slice(0, mostRows)}
             keyOf={(e, i) => `${e.channel}${i}`}
             columns={[
@@ -30,6 +31,7 @@ export function WindowTable({ replay, analysis }: { replay: Replay; analysis: An
           <Table
             label="Speed"
             dense
+            titled
             rows={inWindow(analysis.speed, replay.window).slice(0, mostRows)}
             keyOf={(p, i) => `${p.t}${i}`}
             columns={[
@@ -40,6 +42,7 @@ export function WindowTable({ replay, analysis }: { replay: Replay; analysis: An
           <Table
             label="Gaps of the capture"
             dense
+            titled
             rows={analysis.gaps}
             keyOf={(g) => String(g.from)}
             columns={[

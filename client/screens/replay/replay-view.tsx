@@ -7,6 +7,7 @@ import { Plate } from '@/client/components/plate';
 import { Screen, ScreenHeader, useDocumentTitle } from '@/client/components/screen';
 import { StatusWord } from '@/client/components/status-word';
 import { Text } from '@/client/components/text';
+import { positionNouns } from '@/client/drawings/count-text';
 import type { RibbonLane } from '@/client/drawings/ribbon-types';
 import { durationText, secondsText } from '@/client/drawings/time-axis';
 import { CaptureFacts, WordsPlate } from '@/client/screens/replay/capture-facts';
@@ -60,7 +61,13 @@ function PhoneReplay(props: ReplayViewProps & { subtitle: string }) {
   const { capture, analysis, subtitle, banner, replay, lanes, note } = props;
   return (
     <Screen title={capture.title} subtitle={subtitle} back={back} banner={banner}>
-      <RibbonPicture replay={replay} analysis={analysis} lanes={lanes} note={note} />
+      <RibbonPicture
+        replay={replay}
+        analysis={analysis}
+        lanes={lanes}
+        note={note}
+        positions={positionNouns(capture.rig.sensing)[1]}
+      />
       <OverviewPicture replay={replay} analysis={analysis} />
       <ReplayControls replay={replay} />
       <Side {...props} />
@@ -80,7 +87,13 @@ function WideReplay(props: ReplayViewProps & { subtitle: string }) {
           contentContainerStyle={{ padding: space.l, gap: space.l, flexGrow: 1, minHeight: '100%' }}
         >
           <ScreenHeader title={capture.title} subtitle={subtitle} back={back} />
-          <RibbonPicture replay={replay} analysis={analysis} lanes={lanes} note={note} />
+          <RibbonPicture
+            replay={replay}
+            analysis={analysis}
+            lanes={lanes}
+            note={note}
+            positions={positionNouns(capture.rig.sensing)[1]}
+          />
           <OverviewPicture replay={replay} analysis={analysis} />
           <ReplayControls replay={replay} />
         </ScrollView>
@@ -103,7 +116,7 @@ function Side({ capture, analysis, analysisState, replay, onEdit, onDelete }: Re
   return (
     <>
       <View role="region" aria-label="Findings" style={{ gap: space.m }}>
-        <View style={{ flexDirection: 'row', justifyContent: 'space-between', alignItems: 'center' }}>
+        <View style={headerRow}>
           <Text heading={2} weight="medium">
             Findings
           </Text>
@@ -112,11 +125,19 @@ function Side({ capture, analysis, analysisState, replay, onEdit, onDelete }: Re
         {analysis ? <FoundPlates analysis={analysis} onShow={show} /> : analysisState}
       </View>
       <WordsPlate capture={capture} onEdit={onEdit} onDelete={onDelete} />
-      {analysis ? <MeasuredPlate analysis={analysis} /> : null}
+      {analysis ? <MeasuredPlate analysis={analysis} sensing={capture.rig.sensing} /> : null}
       <CaptureFacts capture={capture} analysis={analysis} />
     </>
   );
 }
+
+// The picture of a button at the right stands level with the plates below.
+const headerRow = {
+  flexDirection: 'row',
+  justifyContent: 'space-between',
+  alignItems: 'center',
+  marginRight: -space.m,
+} as const;
 
 function FoundPlates({ analysis, onShow }: { analysis: Analysis; onShow: (finding: Finding) => void }) {
   const folded = foldFindings(analysis.findings);

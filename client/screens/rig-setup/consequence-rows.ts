@@ -33,14 +33,29 @@ function widthsOf({ sensing, wheel }: Pick<RigDraft, 'sensing' | 'wheel'>): Widt
   return typed.length > 0 ? typed : null;
 }
 
-/** What the sensors' kinds mean for count and polarity. */
+/** What the sensors' kinds mean for count and polarity; what holds for several channels is said once. */
 export function sensorSentences(channels: RigDraft['channels']): string[] {
   const sensors = channels.map(({ name, role, sensor: { kind, activeLow } }) => ({
     name,
     role,
     sensor: { kind, activeLow },
   }));
-  return sensorNotes(sensors).map(({ detail }) => detail);
+  const alike = new Map<string, { detail: string; others: string[] }>();
+  for (const { code, channel, detail } of sensorNotes(sensors)) {
+    const known = alike.get(code);
+    if (known) known.others.push(channel);
+    else alike.set(code, { detail, others: [] });
+  }
+  return [...alike.values()].map(({ detail, others }) =>
+    others.length === 0 ? detail : `${detail} ${alsoWords(others)}`,
+  );
+}
+
+/** "The same holds for B and C." */
+function alsoWords(names: readonly string[]): string {
+  const last = names.at(-1)!;
+  const listed = names.length === 1 ? last : `${names.slice(0, -1).join(', ')} and ${last}`;
+  return `The same holds for ${listed}.`;
 }
 
 export type Consequence = { facts: Fact[]; warning: string | null };
@@ -56,26 +71,18 @@ export function consequenceRows(
   const { stoppedAfterS } = settings.speed;
   const tooFew =
     wheel.ratedRpm !== null && found.recommendedRpm !== null && wheel.ratedRpm > found.recommendedRpm;
+  const tooth = wheel.sensing === 'three-hall' ? 'Pole-pair' : 'Tooth';
   const facts: Fact[] = [
-    { name: 'Tooth frequency at rated speed', value: unit(found.toothHz, 'Hz', 'needs the rated speed') },
+    { name: `${tooth} frequency`, value: unit(found.toothHz, 'Hz', 'needs rated speed') },
     {
-      name: 'Samples a tooth at rated speed',
-      value: unit(
-        found.samplesPerTooth,
-        '',
-        rateHz === null ? 'needs the samples a second' : 'needs the rated speed',
-      ),
+      name: wheel.sensing === 'three-hall' ? 'Samples a pole pair' : 'Samples a tooth',
+      value: unit(found.samplesPerTooth, '', rateHz === null ? 'needs sample rate' : 'needs rated speed'),
       ...(tooFew ? { tone: 'warn' as const } : {}),
     },
-    {
-      name: 'Fastest that is safe to follow',
-      value: unit(found.recommendedRpm, 'rpm', 'needs the samples a second'),
-    },
-    { name: 'Fastest at all', value: unit(found.highestRpm, 'rpm', 'needs the samples a second') },
-    {
-      name: `Reads stopped below (${shortNumber(stoppedAfterS)} s without an edge)`,
-      value: unit(found.lowestRpm, 'rpm', ''),
-    },
+    { name: 'Fastest that is safe to follow', value: fastest(found.recommendedRpm) },
+    { name: 'Fastest at all', value: fastest(found.highestRpm) },
+    { name: 'Reads stopped below', value: unit(found.lowestRpm, 'rpm', '') },
+    { name: 'that is, no edge for', value: unit(stoppedAfterS, 's', '') },
   ];
   if (found.holdoffRpm !== null) {
     facts.push({ name: 'Hold-off loses edges above', value: unit(found.holdoffRpm, 'rpm', '') });
@@ -85,8 +92,8 @@ export function consequenceRows(
     const few = widths.isRateEnough === false;
     facts.push(
       {
-        name: 'Widths can be told from',
-        value: `${unit(widths.neededRateHz, '', '')} samples a second`,
+        name: 'Samples to tell the widths',
+        value: `${shortNumber(Math.ceil(widths.neededRateHz))} a second`,
         ...(few ? { tone: 'warn' as const } : {}),
       },
       { name: 'Direction is told up to', value: unit(widths.directionUpToRpm, 'rpm', '') },
@@ -94,10 +101,17 @@ export function consequenceRows(
     if (few)
       return {
         facts,
-        warning: 'Too few samples for the narrowest width: speed is taken, but no direction will be said.',
+        warning:
+          found.highestRpm === 0
+            ? 'Far too few samples: a whole pulse can fall between two of them, so that not even the speed is right.'
+            : 'Too few samples for the narrowest width: speed is taken, but no direction will be said.',
       };
   }
   return { facts, warning: tooFew && found.neededRateHz !== null ? tooFewSamples(found.neededRateHz) : null };
+}
+
+function fastest(rpm: number | null): string {
+  return rpm === 0 ? 'none' : unit(rpm, 'rpm', 'needs sample rate');
 }
 
 function tooFewSamples(neededHz: number): string {
@@ -106,5 +120,6 @@ function tooFewSamples(neededHz: number): string {
 
 function unit(value: number | null, name: string, otherwise: string): string {
   if (value === null) return otherwise;
-  return name ? `${shortNumber(value)} ${name}` : shortNumber(value);
+  const short = shortNumber(value < 1000 ? Number(value.toPrecision(3)) : value);
+  return name ? `${short} ${name}` : short;
 }

@@ -29,14 +29,13 @@ export function SpeedPart() {
           />
         )}
       />
-      <Pair>
+      <Pair least={200}>
         <FormNumber name="ratedRpm" label="Rated speed of the shaft" unit="rpm" optional />
         <FormNumber
           name="sampleRateHz"
           label="Samples a second"
-          unit="a channel"
           optional
-          help="Only for the figures here: the board says its own."
+          help="Of each channel. Only for the figures here: the board says its own."
         />
       </Pair>
     </View>

@@ -3,6 +3,7 @@ import { Pressable } from 'react-native';
 import { Text } from '@/client/components/text';
 import { useNow } from '@/client/data/use-now';
 import { exactInstant, shortInstant } from '@/client/screens/shared/when';
+import { size } from '@/client/theme/tokens';
 
 /** A time in the reader's zone; a press shows the exact instant. */
 export function Instant({ at }: { at: string }) {
@@ -14,7 +15,12 @@ export function Instant({ at }: { at: string }) {
       role="button"
       aria-label={`${shown}. ${exact ? 'Show the short time' : 'Show the exact time'}`}
       onPress={() => setExact(!exact)}
-      style={{ minHeight: 24, justifyContent: 'center', alignSelf: 'flex-start' }}
+      style={{
+        minHeight: size.target,
+        minWidth: size.target,
+        justifyContent: 'center',
+        alignSelf: 'flex-start',
+      }}
     >
       <Text size="small" tone="scribeSoft" figures>
         {shown}

@@ -30,7 +30,7 @@ export function FarView({ open, rigName, now, onClose }: FarViewProps) {
     >
       <View style={{ flex: 1, backgroundColor: colours.ground }}>
         <View style={{ flexDirection: 'row', alignItems: 'center', padding: space.s, paddingLeft: space.l }}>
-          <Text tone="scribeSoft" lines={1} style={{ flex: 1 }}>
+          <Text tone="scribeSoft" lines={2} style={{ flex: 1 }}>
             {rigName}
           </Text>
           <IconButton icon="close" label="Close far view" onPress={onClose} />
@@ -57,7 +57,7 @@ export function FarView({ open, rigName, now, onClose }: FarViewProps) {
               tone={saying.loud ? 'fault' : 'scribeSoft'}
               style={[plainFigures, { fontSize: line * 0.55, lineHeight: line * 0.75 }]}
             >
-              {saying.small}
+              {saying.small.startsWith('±') ? `${saying.small} rpm` : saying.small}
             </Text>
           ) : null}
           <Row>

@@ -5,7 +5,8 @@ import { Plate } from '@/client/components/plate';
 import { StatusWord } from '@/client/components/status-word';
 import { Text } from '@/client/components/text';
 import { sinceText } from '@/client/drawings/speed-words';
-import { space } from '@/client/theme/tokens';
+import { size, space } from '@/client/theme/tokens';
+import { useWide } from '@/client/theme/use-theme';
 import type { Finding } from '@/signal/model';
 
 type FindingsListProps = {
@@ -19,10 +20,11 @@ type FindingsListProps = {
 };
 
 export function FindingsList({ findings, isLive, unjudged, streamS, onShow }: FindingsListProps) {
+  const wide = useWide();
   const folded = foldFindings(findings);
   return (
     <View role="region" aria-label="Findings" style={{ gap: space.m }}>
-      <View style={{ flexDirection: 'row', justifyContent: 'space-between', alignItems: 'baseline' }}>
+      <View style={[header, wide ? levelWithTabs : null]}>
         <Text heading={2} weight="medium">
           Findings
         </Text>
@@ -59,3 +61,7 @@ export function FindingsList({ findings, isLive, unjudged, streamS, onShow }: Fi
     </View>
   );
 }
+
+const header = { flexDirection: 'row', justifyContent: 'space-between', alignItems: 'center' } as const;
+/** Its first plate then stands level with the signal. */
+const levelWithTabs = { minHeight: size.button, marginBottom: space.l - space.m };

@@ -55,8 +55,8 @@ describe('sparkPoints', () => {
 
 describe('words', () => {
   it('names teeth and rates', () => {
-    expect(teethWords(24, 'quadrature')).toBe('24 teeth a turn');
-    expect(teethWords(1, 'three-hall')).toBe('1 pole pair a turn');
+    expect(teethWords(24, 'quadrature')).toBe('24\u00a0teeth\u00a0a\u00a0turn');
+    expect(teethWords(1, 'three-hall')).toBe('1\u00a0pole\u00a0pair\u00a0a\u00a0turn');
     expect(rateText(20000)).toBe('20 kS/s');
     expect(rateText(12)).toBe('12 S/s');
     expect(rateText(1_250_000)).toBe('1.25 MS/s');

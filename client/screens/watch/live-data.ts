@@ -1,5 +1,6 @@
 import type { LiveFrame } from '@/server/contract';
 import { clipLevels } from '@/client/drawings/clip-levels';
+import { countText, positionNouns } from '@/client/drawings/count-text';
 import type { RibbonData } from '@/client/drawings/ribbon-types';
 import type { SpeedPoint } from '@/client/drawings/speed-line';
 import type { Channel } from '@/signal/model';
@@ -46,14 +47,9 @@ export function sparkPoints(
     .filter((point) => point.t >= -60);
 }
 
-/** "teeth" for a toothed wheel, "pole pairs" where positions are those. */
+/** "24 teeth a turn", kept in one line. */
 export function teethWords(count: number, sensing: string): string {
-  const pair = sensing === 'three-hall';
-  return count === 1
-    ? pair
-      ? '1 pole pair a turn'
-      : '1 tooth a turn'
-    : `${count} ${pair ? 'pole pairs' : 'teeth'} a turn`;
+  return `${countText(count, ...positionNouns(sensing))} a turn`.replaceAll(' ', '\u00a0');
 }
 
 /** 20000 reads "20 kS/s". */

@@ -10,6 +10,8 @@ export type RibbonControlsProps = {
   onHold: () => void;
   spanLabel: string;
   unit: 'teeth' | 'time';
+  /** What a position of the wheel is called: "teeth". */
+  positions: string;
   onUnit: () => void;
   onShorter: (() => void) | null;
   onLonger: (() => void) | null;
@@ -48,13 +50,21 @@ export function RibbonControls({ held, onHold, spanLabel, onShorter, onLonger }:
 }
 
 /** Teeth or time; on the tooth or free-running; the table. */
-export function RibbonChoices({ spanLabel, unit, onUnit, anchor, onAnchor, data }: RibbonControlsProps) {
+export function RibbonChoices({
+  spanLabel,
+  unit,
+  positions,
+  onUnit,
+  anchor,
+  onAnchor,
+  data,
+}: RibbonControlsProps) {
   const shown = anchor === 'edge' ? 'on the tooth' : 'free-running';
   return (
     <View style={row}>
       <Button
         label={spanLabel}
-        longLabel={`${spanLabel}: change to ${unit === 'teeth' ? 'time' : 'teeth'}`}
+        longLabel={`${spanLabel}: change to ${unit === 'teeth' ? 'time' : positions}`}
         onPress={onUnit}
         style={tight}
       />

@@ -9,6 +9,8 @@ import { useWide } from '@/client/theme/use-theme';
 
 type RibbonPlateProps = {
   data: RibbonData | null;
+  /** What a position of the wheel is called: "teeth". */
+  positions: string;
   anchor: 'edge' | 'now';
   /** "held at 13:52:07", or null while live. */
   heldText: string | null;
@@ -26,6 +28,7 @@ type RibbonPlateProps = {
 /** The live signal. On a phone with more than two channels one lane is in focus and the others are thin. */
 export function RibbonPlate({
   data,
+  positions,
   anchor,
   heldText,
   held,
@@ -52,6 +55,7 @@ export function RibbonPlate({
       {data ? (
         <Ribbon
           data={data}
+          positions={positions}
           height={wide ? 'fill' : height}
           anchorS={data.toS}
           rightWord={anchor === 'edge' ? 'last edge' : 'now'}

@@ -11,7 +11,7 @@ describe('what stands behind the speed', () => {
     const of = (accelerationRpmPerS: number, accelerationErrorRpmPerS: number) =>
       value(shaftFacts({ ...plain, accelerationRpmPerS, accelerationErrorRpmPerS }), 'acceleration');
     expect(of(120.4, 2.2)).toBe('120.4 ± 2.2 rpm/s');
-    expect(of(-3, 2.2)).toBe('steady within 4.4 rpm/s');
+    expect(of(-3, 2.2)).toBe('below 4.4 rpm/s');
   });
 
   it('names why the gap of a wheel was lost, and how an index was met', () => {
@@ -22,13 +22,15 @@ describe('what stands behind the speed', () => {
       falseSteps: { illegal: 0, invalidStates: 0 },
     });
     expect(value(facts, 'wheel gap')).toBe('lost: the gap did not come');
-    expect(value(facts, 'turns against the index')).toBe('10 exact, 2 not');
+    expect(value(facts, 'turns by index')).toBe('2 of 12 wrong');
     expect(value(facts, 'steps that cannot be')).toBeUndefined();
   });
 
   it('tells how far the learning of the teeth has come', () => {
     const pitch = { state: 'learning', turns: 7, turnsNeeded: 20, uneven: null } as const;
     expect(value(shaftFacts({ ...plain, pitch }), 'tooth spacing')).toBe('learning, turn 7 of 20');
+    const over = { ...pitch, turns: 26 };
+    expect(value(shaftFacts({ ...plain, pitch: over }), 'tooth spacing')).toBe('too unsteady to learn');
     const learnt = { ...pitch, state: 'in-use', uneven: 0.0123 } as const;
     expect(value(shaftFacts({ ...plain, pitch: learnt }), 'tooth spacing')).toBe('learnt, 1.2 % rms');
   });

@@ -30,7 +30,7 @@ export function shaftFacts({
     const value =
       Math.abs(acceleration) > 2 * error
         ? `${rounded(acceleration, error)} ± ${rounded(error, error)} rpm/s`
-        : `steady within ${rounded(2 * error, error)} rpm/s`;
+        : `below ${rounded(2 * error, error)} rpm/s`;
     facts.push({ name: 'acceleration', value });
   }
   if (limits.delayS !== null)
@@ -44,7 +44,13 @@ export function shaftFacts({
           : `learnt, ${shortNumber(Number((100 * pitch.uneven).toPrecision(2)))} % rms`,
     });
   else if (pitch.state === 'learning' && pitch.turns > 0)
-    facts.push({ name: 'tooth spacing', value: `learning, turn ${pitch.turns} of ${pitch.turnsNeeded}` });
+    facts.push({
+      name: 'tooth spacing',
+      value:
+        pitch.turns < pitch.turnsNeeded
+          ? `learning, turn ${pitch.turns} of ${pitch.turnsNeeded}`
+          : 'too unsteady to learn',
+    });
   if (sync && sync.state !== 'synced')
     facts.push({
       name: 'wheel gap',
@@ -59,8 +65,8 @@ export function shaftFacts({
   if (index) {
     const wrong = index.lostTurns + index.extraTurns;
     facts.push({
-      name: 'turns against the index',
-      value: wrong === 0 ? `${index.exactTurns} exact` : `${index.exactTurns} exact, ${wrong} not`,
+      name: 'turns by index',
+      value: wrong === 0 ? `${index.exactTurns} exact` : `${wrong} of ${index.exactTurns + wrong} wrong`,
       ...(wrong > 0 ? { tone: 'warn' as const } : {}),
     });
   }

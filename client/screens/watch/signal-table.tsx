@@ -12,6 +12,7 @@ export function SignalTable({ data }: { data: RibbonData }) {
       <Table
         label="Levels of each channel"
         dense
+        titled
         rows={data.lanes}
         keyOf={(l) => l.channel}
         columns={[
@@ -25,6 +26,7 @@ export function SignalTable({ data }: { data: RibbonData }) {
       <Table
         label="Edges in the window"
         dense
+        titled
         rows={data.edges.slice(-200)}
         keyOf={(e, i) => `${e.channel}${e.t}${i}`}
         columns={[

@@ -15,7 +15,7 @@ describe('span', () => {
   it('changes to time at about what is shown', () => {
     const time = switchUnit(firstSpan, 0.0117);
     expect(time).toMatchObject({ unit: 'time', spanS: 0.01 });
-    expect(spanText(time)).toBe('10 ms');
+    expect(spanText(time, 'single')).toBe('10 ms');
     expect(wishOf(stepSpan(time, 1), 900)).toEqual({ spanS: 0.02, columns: 900, anchor: 'edge' });
   });
   it('asks for a stretch around an instant only where one is wanted', () => {

@@ -1,4 +1,4 @@
-import { countText } from '@/client/drawings/count-text';
+import { countText, positionNouns } from '@/client/drawings/count-text';
 import { durationText } from '@/client/drawings/time-axis';
 import type { RibbonWish } from '@/server/contract';
 
@@ -46,6 +46,6 @@ export function wishOf(span: Span, widthPx: number, aroundS: number | null = nul
   return { ...stretch, columns, anchor: span.anchor, ...(aroundS === null ? {} : { atS: aroundS }) };
 }
 
-export function spanText(span: Span): string {
-  return span.unit === 'teeth' ? countText(span.teeth, 'tooth', 'teeth') : durationText(span.spanS);
+export function spanText(span: Span, sensing: string): string {
+  return span.unit === 'teeth' ? countText(span.teeth, ...positionNouns(sensing)) : durationText(span.spanS);
 }

@@ -6,6 +6,7 @@ import { Text } from '@/client/components/text';
 import { useToast } from '@/client/components/toast';
 import type { LiveRigView } from '@/client/data/use-live';
 import type { FindingsList } from '@/client/screens/watch/findings-list';
+import { positionNouns } from '@/client/drawings/count-text';
 import { rateText, ribbonDataOf, sparkPoints, teethWords } from '@/client/screens/watch/live-data';
 import type { RibbonControlsProps } from '@/client/screens/watch/ribbon-controls';
 import type { RibbonPlate } from '@/client/screens/watch/ribbon-plate';
@@ -56,6 +57,7 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
     rate === null ? '' : rateText(rate),
     live ? (live.settingsVersion === 0 ? 'first settings' : `settings ${live.settingsVersion}`) : '',
   ];
+  const [, positions] = positionNouns(rig.sensing);
   const teeth = teethWords(rig.wheel.pulsesPerTurn - rig.wheel.missingPulses, rig.sensing);
   const speed: ComponentProps<typeof SpeedPlate> = {
     now,
@@ -65,6 +67,7 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
   };
   const ribbon: ComponentProps<typeof RibbonPlate> = {
     data,
+    positions,
     anchor: drawn?.ribbon?.anchor ?? 'now',
     heldText: controls.held
       ? `held at ${clockText(instantOf(controls.held))}`
@@ -87,7 +90,8 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
   const buttons: RibbonControlsProps = {
     held: controls.held !== null,
     onHold: () => controls.hold(frame),
-    spanLabel: spanText(controls.span),
+    spanLabel: spanText(controls.span, rig.sensing),
+    positions,
     unit: controls.span.unit,
     onUnit: () => controls.unit(drawn),
     onShorter: controls.step(-1),
@@ -109,9 +113,7 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
   };
   const face = drawn?.wheelFace ?? null;
   const wheel: Omit<ComponentProps<typeof WheelPlate>, 'size'> | null =
-    face && live && face.positions.length > 0
-      ? { face, live: (controls.held ?? frame)!.live, gearRatio: rig.wheel.gearRatio }
-      : null;
+    face && live && face.positions.length > 0 ? { face, live: (controls.held ?? frame)!.live, rig } : null;
   const keepBar: ComponentProps<typeof KeepBar> | null = keeping && {
     lookbackS: live?.lookbackS ?? 0,
     seconds: keepSeconds,

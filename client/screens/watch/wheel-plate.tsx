@@ -5,20 +5,25 @@ import { Plate } from '@/client/components/plate';
 import { Table } from '@/client/components/table';
 import { Text } from '@/client/components/text';
 import { shortNumber } from '@/client/components/finding-words';
+import { positionNouns } from '@/client/drawings/count-text';
 import { TableButton } from '@/client/drawings/figure';
 import { WheelFace } from '@/client/drawings/wheel-face';
 import { wheelDrawing } from '@/client/drawings/wheel-geometry';
-import type { LiveFrame } from '@/server/contract';
+import type { LiveFrame, Rig } from '@/server/contract';
 import { shaftFacts } from '@/client/screens/watch/shaft-facts';
 import { clockText } from '@/client/screens/watch/watch-model';
 import { space } from '@/client/theme/tokens';
 
 type Face = NonNullable<LiveFrame['wheelFace']>;
-type WheelPlateProps = { face: Face; live: LiveFrame['live']; gearRatio: number; size: number };
+type Seen = Pick<Rig, 'sensing' | 'wheel'>;
+type WheelPlateProps = { face: Face; live: LiveFrame['live']; rig: Seen; size: number };
 
-export function WheelPlate({ face, live, gearRatio, size }: WheelPlateProps) {
+export function WheelPlate({ face, live, rig, size }: WheelPlateProps) {
+  const { gearRatio } = rig.wheel;
   const { scale } = wheelDrawing(face, size / 2 - 4);
-  const turns = live.turns === null ? '' : `turn ${String(Math.floor(live.turns)).replace('-', '\u2212')}`;
+  // Behind a gear the wheel makes turns of its own.
+  const turnWord = gearRatio === 1 ? 'turn' : 'shaft turn';
+  const turns = live.turns === null ? '' : `${turnWord} ${whole(live.turns)}`;
   const since = live.turnsSince ? ` since ${clockText(live.turnsSince, 'minute')}` : '';
   return (
     <Plate
@@ -31,6 +36,7 @@ export function WheelPlate({ face, live, gearRatio, size }: WheelPlateProps) {
         rpm={live.speedRpm === null ? null : live.speedRpm * gearRatio}
         direction={live.direction}
         size={size}
+        nouns={positionNouns(rig.sensing)}
       />
       <View style={{ flexDirection: 'row', alignItems: 'center', gap: space.s, marginRight: -space.m }}>
         <View style={{ flex: 1 }}>
@@ -46,7 +52,7 @@ export function WheelPlate({ face, live, gearRatio, size }: WheelPlateProps) {
       </View>
       {face.numbered ? null : (
         <Text size="tiny" tone="scribeSoft">
-          Tooth numbers are not fixed to the wheel: no index, gap or set zero gives them one.
+          {numberless(rig.sensing)}
         </Text>
       )}
     </Plate>
@@ -80,24 +86,25 @@ function WheelTable({ face }: { face: Face }) {
 }
 
 /** The numbers behind the picture; only those that are known. */
-export function NumbersPlate({ live }: { live: LiveFrame['live'] }) {
+export function NumbersPlate({ live, sensing }: { live: LiveFrame['live']; sensing: Rig['sensing'] }) {
+  const [position] = positionNouns(sensing);
   const { margin, rates, phaseDeg, channels, delayS } = live;
   const facts: Fact[] = [];
   if (margin) {
     const volts = shortNumber(Number(margin.volts.toFixed(3)));
     const tone = margin.volts < 0 ? { tone: 'warn' as const } : {};
     facts.push({ name: `smallest margin, ${margin.channel}`, value: `${volts} V`, ...tone });
-    if (margin.sigmas !== null)
-      facts.push({ name: 'in sigmas of noise', value: margin.sigmas.toFixed(1).replace('-', '\u2212') });
+    if (margin.sigmas !== null) facts.push({ name: 'in sigmas of noise', value: signed(margin.sigmas, 1) });
     if (margin.millitesla !== null)
-      facts.push({ name: 'in field', value: `${margin.millitesla.toFixed(2)} mT` });
+      facts.push({ name: 'in field', value: `${signed(margin.millitesla, 2)} mT` });
   }
   if (rates.toothHz !== null)
-    facts.push({ name: 'tooth frequency', value: `${rates.toothHz.toFixed(1)} Hz` });
+    facts.push({ name: `${position} frequency`, value: `${rates.toothHz.toFixed(1)} Hz` });
   if (rates.toothHz && rates.declaredHz)
-    facts.push({ name: 'samples a tooth', value: (rates.declaredHz / rates.toothHz).toFixed(1) });
-  if (phaseDeg !== null)
-    facts.push({ name: 'phase A to B', value: `${phaseDeg.toFixed(1).replace('-', '\u2212')}°` });
+    facts.push({ name: `samples a ${position}`, value: (rates.declaredHz / rates.toothHz).toFixed(1) });
+  if (phaseDeg !== null) facts.push({ name: 'phase A to B', value: `${signed(phaseDeg, 1)}°` });
+  if (sensing === 'three-hall' && live.pulses !== null)
+    facts.push({ name: 'electrical turns', value: whole(live.pulses) });
   const duties = channels.filter((c) => c.duty !== null);
   if (duties.length > 0)
     facts.push({
@@ -113,4 +120,18 @@ export function NumbersPlate({ live }: { live: LiveFrame['live'] }) {
       <Facts facts={facts} />
     </Plate>
   );
+}
+
+function signed(value: number, digits: number): string {
+  return value.toFixed(digits).replace('-', '\u2212');
+}
+
+/** Whole ones that are done. */
+function whole(count: number): string {
+  return String(Math.floor(count)).replace('-', '\u2212');
+}
+
+function numberless(sensing: string): string {
+  const what = sensing === 'three-hall' ? 'Pole pairs have no numbers' : 'Teeth have no numbers';
+  return `${what} of their own: no index, gap or set zero gives them one.`;
 }
