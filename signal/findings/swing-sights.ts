@@ -1,9 +1,10 @@
 /** What can be wrong with a swing, each against another thing: the band, the noise, the supply. */
 import type { ChannelPath } from '@/signal/channel-path';
 import type { TurnMeans } from '@/signal/findings/turn-means';
-import { emptyPlaces, isEven, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
+import { emptyAgain, emptyPlaces, isEven, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
 import type { Evidence } from '@/signal/finding-words/values';
 import type { Finding } from '@/signal/model';
+import { readableFrom } from '@/signal/tooth-log';
 
 export type SwingSight = {
   /** By which one look is worse than another. */
@@ -21,6 +22,8 @@ const marginShare = 0.05;
 const manyEmpty = 0.2;
 /** An interval of so many places may hide a tooth that was not counted. */
 const longPlaces = 1.4;
+/** What comes back by less of the way from the usual level to the band is an edge that bounced, and no tooth. */
+const ownShare = 0.5;
 /** Peak to peak in sigmas at which a fitted band wants more than half of the swing for its hysteresis. */
 const cappedSigmas = 20;
 /** Of what the line is pulled up to. */
@@ -42,29 +45,21 @@ export function againstBand(
 ): SwingSight | null {
   const { log, operateV, releaseV, noiseV } = path;
   const { first, end, swingV, toothHz } = means;
-  let worstV = Infinity;
-  let worst = first;
-  let longestS = 0;
-  for (let n = first; n < end; n++) {
-    const i = n & log.mask;
-    const beyondV = Math.min(log.peakV[i]! - operateV, releaseV - log.troughV[i]!);
-    if (beyondV < worstV) {
-      worstV = beyondV;
-      worst = n;
-    }
-    longestS = Math.max(longestS, log.riseS[(n + 1) & log.mask]! - log.riseS[i]!);
-  }
-  const least = Math.max(marginShare * swingV, noiseV > 0 ? marginSigmas * noiseV : 0);
-  const isNear = worstV < (open ? more : 1) * least;
-  if (!isNear && longestS * toothHz < longPlaces) return null;
-  // Edges that bounce leave teeth that are none.
   const usualS = usualIntervalS(log, first, end);
   const even = isEven(log, first, end, usualS);
+  const { worst, worstV } = worstTooth(path, means);
+  let longestS = 0;
+  for (let n = first; n < end; n++)
+    longestS = Math.max(longestS, log.riseS[(n + 1) & log.mask]! - log.riseS[n & log.mask]!);
+  const least = Math.max(marginShare * swingV, noiseV > 0 ? marginSigmas * noiseV : 0);
+  const isNear = worstV < (open ? more : 1) * least && wasNear(path, means, worst, 2 * least);
+  if (!isNear && longestS * toothHz < longPlaces) return null;
   if (!even && !repeats(log, first, end, means.turn)) return null;
   const ofGaps = Math.ceil(((end - first) * (means.positions - means.turn)) / means.turn);
   const empty = even ? Math.max(0, emptyPlaces(log, first, end, usualS) - ofGaps) : 0;
   const places = end - first + ofGaps + empty;
-  if (empty > 0 && (rejected >= empty || empty > manyEmpty * places)) {
+  const isCertain = rejected >= empty || empty > manyEmpty * places;
+  if (empty > 0 && isCertain && emptyAgain(log, end, usualS, means.positions)) {
     const evidence = {
       against: 'missed',
       ...(path.worstMarginV < 0 && { marginV: path.worstMarginV }),
@@ -86,6 +81,49 @@ export function againstBand(
   };
   const atS = (log.riseS[worst & log.mask]! + log.fallS[worst & log.mask]!) / 2;
   return { size: 1 + (least - worstV) / least, severity: 'warn', atS, evidence };
+}
+
+/**
+ * How far the worst tooth stands beyond the band, V. The output of a switch has but two levels, so that it is the mean tooth's
+ * there: what stands between them is ringing.
+ */
+function worstTooth(path: ChannelPath, means: TurnMeans): { worst: number; worstV: number } {
+  const { log, operateV, releaseV, channel } = path;
+  const { first, end, highV, lowV } = means;
+  const { mask, peakV, troughV } = log;
+  if (channel.sensor.kind !== 'linear')
+    return { worst: first, worstV: Math.min(highV - operateV, releaseV - lowV) };
+  const upV = ownShare * (operateV - lowV);
+  const downV = ownShare * (highV - releaseV);
+  let worst = first;
+  let worstV = Infinity;
+  for (let n = first; n < end; n++) {
+    const peak = peakV[n & mask]!;
+    const trough = troughV[n & mask]!;
+    const isPeak = peak - Math.max(trough, troughV[(n + 1) & mask]!) >= upV;
+    const isTrough = n > first && Math.min(peak, peakV[(n - 1) & mask]!) - trough >= downV;
+    const beyondV = Math.min(isPeak ? peak - operateV : Infinity, isTrough ? releaseV - trough : Infinity);
+    if (beyondV >= worstV) continue;
+    worstV = beyondV;
+    worst = n;
+  }
+  return { worst, worstV };
+}
+
+/** A tooth of the wheel is as near a turn before; a signal that stood for a moment, or a spike, is not. */
+function wasNear(
+  { log, operateV, releaseV }: ChannelPath,
+  { turn }: TurnMeans,
+  n: number,
+  nearV: number,
+): boolean {
+  const { mask, peakV, troughV } = log;
+  const before = n - turn;
+  if (before - 1 < readableFrom(log, 0)) return true;
+  // Teeth that were not counted shift the others.
+  for (let k = before - 1; k <= before + 1; k++)
+    if (Math.min(peakV[k & mask]! - operateV, releaseV - troughV[k & mask]!) < nearV) return true;
+  return false;
 }
 
 /** Noise so large that a fitted band cannot be as wide as it should. */

@@ -79,3 +79,25 @@ export function emptyPlaces(log: ToothLog, first: number, last: number, usualS: 
   }
   return empty;
 }
+
+const mostKept = 16;
+const kept = new Float64Array(mostKept);
+
+/**
+ * Whether places without a tooth, counted back from tooth `last`, are where some were a turn before: those of the wheel are,
+ * those of a signal that stood for a moment are not. @param positions places of a turn.
+ */
+export function emptyAgain(log: ToothLog, last: number, usualS: number, positions: number): boolean {
+  const oldest = readableFrom(log, 0);
+  let place = 0;
+  let count = 0;
+  let again = 0;
+  for (let n = last - 1; n >= oldest && place < 2 * positions; n--) {
+    const places = Math.max(1, Math.round(intervalS(log, n) / usualS));
+    if (places > 1 && place < positions && count < mostKept) kept[count++] = place;
+    if (places > 1 && place >= positions)
+      for (let k = 0; k < count; k++) if (Math.abs(place - positions - kept[k]!) < 1) again++;
+    place += places;
+  }
+  return 2 * again > count;
+}

@@ -151,6 +151,48 @@ describe('weak swing', () => {
     expect(found[0]!.evidence.noiseV).toBeCloseTo(0.15, 1);
   });
 
+  it('bounce, ringing and a signal that stands for a moment are no weak teeth of a fixed band', () => {
+    const noise = normal(seeded(9));
+    const wheel = toothWheel(12, 0, (t) => 5 * t);
+    const from2 = (t: number, then: number, before: number): number => (t > 2 ? then : before);
+    // A band as wide as the noise.
+    const noisy = sampled(8 * rateHz, rateHz, (t) => wheel(t) + from2(t, 0.03, 0.01) * noise());
+    expect(only(watchFindings(testRig('single', 12), rateHz, fixed(1.665, 1.635), noisy))).toEqual([]);
+    // A switch whose edges ring to and fro through the band.
+    const ringing = sampled(6 * rateHz, rateHz, (t) => {
+      const place = (60 * t) % 1;
+      const since = (place % 0.5) / 60;
+      const ring = from2(t, 2.8 * Math.exp(-since / 0.003) * Math.cos(2 * Math.PI * 900 * since), 0);
+      return Math.max(0, Math.min(3.3, (place < 0.5 ? 3.3 - ring : ring) + 0.04 * noise()));
+    });
+    expect(only(watchFindings(rigWith({ kind: 'latch' }), rateHz, fixed(2, 1.3), ringing))).toEqual([]);
+    // Here and there on the wheel, for about half a tooth.
+    for (const [perS, teeth] of [
+      [4.1, 0.8],
+      [4.1, 0.6],
+      [14.888, 0.5],
+    ] as const) {
+      const held = sampled(8 * rateHz, rateHz, (t) => {
+        const beganS = Math.floor(t * perS) / perS;
+        return wheel(from2(t, t - beganS < teeth / 60 ? beganS : t, t)) + 0.01 * noise();
+      });
+      expect(only(watchFindings(testRig('single', 12), rateHz, fixed(2, 1.3), held))).toEqual([]);
+    }
+  });
+
+  it('a swing that was cut off for a while does not make the usual one weak', () => {
+    const rig = testRig('single', 12);
+    rig.channels[0] = { ...rig.channels[0]!, minCode: 0, maxCode: 3300 };
+    const wheel = toothWheel(12, 0, (t) => 5 * t);
+    const noise = normal(seeded(10));
+    const volts = sampled(12 * rateHz, rateHz, (t) => {
+      const v = 1.65 + (t > 4 && t < 8 ? 2 : 0.45) * (wheel(t) - 1.65) + 0.01 * noise();
+      return Math.max(0, Math.min(3.3, v));
+    });
+    const codes = Int16Array.from(volts, (v) => Math.round(1000 * v));
+    expect(only(watchFindings(rig, rateHz, {}, codes))).toEqual([]);
+  });
+
   it('a switching line that is not pulled up is found by its level', () => {
     const line = (highV: number) =>
       sampled(4 * rateHz, rateHz, (t) => ((12 * 5 * t) % 1 < 0.5 ? highV : 0.1));

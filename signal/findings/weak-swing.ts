@@ -19,6 +19,8 @@ const near = 1.5;
 const recoveredShare = 0.6;
 const strangeShare = 0.1;
 const farLarger = 3;
+/** So near to an end, share of the converter's range. */
+const cutOffShare = 0.01;
 const looksForBaseline = 2;
 const looksToOpen = 2;
 /** With fewer samples a tooth, what is taken for noise is signal too. */
@@ -106,11 +108,14 @@ export class WeakSwingRule implements FindingRule {
     const baseline = this.swings[index]!;
     const reference = this.reference(path, index);
     const share = swingV / reference.swingV;
+    // A swing that is cut off, beside one that was not, is no usual one.
+    const strong = share > 1 && isCutOff(path, this.means[index]!);
     // Noise at rest, not teeth, was learnt before.
-    if (share > farLarger) baseline.forget();
+    if (share > farLarger && !strong) baseline.forget();
     // A speed that is new while the swing is on its way down must not take that for usual.
     const strange = !reference.own && Math.abs(share - 1) > strangeShare;
-    if (steady && !strange && !(share < recoveredShare)) baseline.learn(direction, toothHz, swingV);
+    if (steady && !strange && !strong && !(share < recoveredShare))
+      baseline.learn(direction, toothHz, swingV);
     if (!(share < (this.latches[index]!.open ? recoveredShare : reference.limit))) return null;
     const usualV = reference.swingV;
     const evidence = { against: 'before', swingV, usualSwingV: usualV, leftPercent: 100 * share, toothHz };
@@ -145,4 +150,11 @@ export class WeakSwingRule implements FindingRule {
     const gain = this.gainAt(toothHz);
     if (gain < filterBlame) sight.evidence.filterPercent = 100 * gain;
   }
+}
+
+/** The teeth come to an end of what the converter can tell. */
+function isCutOff({ rails }: ChannelPath, { highV, lowV }: TurnMeans): boolean {
+  if (!rails) return false;
+  const within = cutOffShare * (rails.highV - rails.lowV);
+  return highV > rails.highV - within || lowV < rails.lowV + within;
 }

@@ -1,6 +1,7 @@
 /** One line shows high for low. */
 import { runningMotion, timingFor, timingOfStanding, type CaseMaker } from '@/tests/accuracy/findings/case';
-import { benchOf, drawMachine } from '@/tests/accuracy/findings/machine';
+import { benchOf, drawMachine, type Machine } from '@/tests/accuracy/findings/machine';
+import { fitted } from '@/tests/accuracy/findings/settings';
 
 export const invertedChannel: CaseMaker = (draw) => {
   const variant = draw.pick([
@@ -26,6 +27,7 @@ export const invertedChannel: CaseMaker = (draw) => {
       faults: [{ kind: 'inverted-line', channel, beginS, endS }],
       // Of two lines only the expected direction tells that one is inverted.
       setup: threeHall ? {} : { expectedDirection: 'forward' },
+      settings: comesThrough(machine) ? {} : { band: fitted },
     }),
     ...timing,
     // With even halves an inverted line and two that are swapped look the same.
@@ -34,3 +36,11 @@ export const invertedChannel: CaseMaker = (draw) => {
     consequences: ['illegal-state', 'direction-flip', 'duty-shift', 'phase-error', 'offset-drift'],
   };
 };
+
+/** A fixed band that the mirrored swing does not pass makes no edges of that line: it is told as weak, and nothing shows more. */
+function comesThrough({ settings: { band }, sensor }: Machine): boolean {
+  if (band.mode === 'fitted') return true;
+  const { supplyV, lowV, highV } = sensor;
+  const clearV = 0.1 * (highV - lowV);
+  return supplyV - lowV > band.operateV + clearV && supplyV - highV < band.releaseV - clearV;
+}
