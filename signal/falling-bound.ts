@@ -1,24 +1,21 @@
 /** What silence since the last edge proves: the most that the shaft can turn at, and where the wheel can stand by now. */
-import { noGapAhead } from '@/signal/gap-sync';
 import type { Motion } from '@/signal/motion';
 
 /** Standard errors by which an edge is presumed to be off, at most: the bound must hold on noisy signals too. */
 const mostOff = 3;
-/** The widest state that was seen need not be the widest there is. */
+/** The widest that was seen need not be the widest there is, and the way to the switching point is known to a hundredth of a pitch. */
+const widerPitch = 1.02;
 const widerState = 1.1;
 
 /** Largest number of positions that can still be silent after the last edge. */
 function silentPositions({ tracker, train, state: shaft }: Motion): number {
-  const { uneven, edgeError, sync } = train;
+  const { uneven, edgeError } = train;
   const off = mostOff * Math.SQRT2 * edgeError;
-  if (!tracker) return train.silentPlaces * Math.max(1 + off, uneven.widestPitch);
-  const even = 1 / tracker.table.stepsPerCycle;
-  const { widestState } = uneven;
-  const widest = Number.isNaN(widestState) ? 2 * even : Math.max(even, widestState);
-  const state = Math.min(1, widerState * widest + off);
+  // The widest seen holds noise already: the two do not simply add up.
+  if (!tracker) return train.silentPlaces * (1 + Math.hypot(widerPitch * uneven.widestPitch - 1, off));
+  const places = shaft === 'stopped' ? train.silentAtEnd : train.silentPlaces;
   // In a gap of the wheel no line changes.
-  const isGapAhead = shaft === 'stopped' ? train.silentAtEnd > sync.missing : !noGapAhead(sync);
-  return (isGapAhead ? sync.missing : 0) + state;
+  return places - 1 + Math.min(1, widerState * uneven.widestState + off);
 }
 
 /**

@@ -6,9 +6,9 @@
  * follows a shaft that speeds up or slows down by a constant ratio, where one neighbour alone would mislead by half a
  * position at 0.25 to 0.5 of alpha d / w^2. In sync the places decide as well (`gap-readings.ts`).
  */
+import { gapIsDue, noteReading } from '@/signal/gap-proof';
 import { bestReading } from '@/signal/gap-readings';
 import { noteGapRatio } from '@/signal/gap-spacing';
-import { gapIsDue } from '@/signal/gap-sync';
 import type { GapSync } from '@/signal/gap-sync';
 
 /** Half way, in ratio, between one position and two. */
@@ -24,6 +24,7 @@ const nearGap = 1.16;
  */
 export function judgeInterval(sync: GapSync): number {
   const { intervalS, perPositionS: beforeS, missing } = sync;
+  sync.pulses++;
   if (missing === 0 || Number.isNaN(beforeS)) {
     sync.perPositionS = intervalS;
     return 1;
@@ -53,6 +54,7 @@ export function judgeWaiting(sync: GapSync): number {
   const { waitingS, intervalS: nextS, perPositionS: beforeS } = sync;
   sync.waitingS = NaN;
   const spans = sync.state === 'synced' ? bestReading(sync, waitingS) : plainReading(sync, waitingS);
+  noteReading(sync, waitingS, spans);
   if (spans === 0) {
     sync.extraPulses++;
     sync.sinceExtra = 0;

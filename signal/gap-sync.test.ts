@@ -1,17 +1,20 @@
 import { describe, expect, it } from 'vitest';
 import { judgeInterval, judgeWaiting } from '@/signal/gap-judge';
-import { createGapSync, loseSync, moveOn, noGapAhead, resetSync } from '@/signal/gap-sync';
+import { noGapAhead } from '@/signal/gap-proof';
+import { createGapSync, loseSync, moveOn, resetSync } from '@/signal/gap-sync';
 import type { GapSync, SyncLoss, SyncState } from '@/signal/gap-sync';
 import { normal, seeded } from '@/signal/test-signals';
 
 type Pulse = { t: number; place: number; extra: boolean };
 type Step = { pulse: Pulse; state: SyncState; position: number };
-type Driven = { sync: GapSync; steps: Step[]; positions: number };
+/** `nearAfter`: after each pulse but the first, whether no gap can come next. */
+type Driven = { sync: GapSync; steps: Step[]; positions: number; nearAfter: boolean[] };
 
 /** Teeth one after another, in the order in which the tooth train asks. */
 function drive(positions: number, missing: number, pulses: readonly Pulse[]): Driven {
   const sync = createGapSync(positions, missing);
   const steps: Step[] = [];
+  const nearAfter: boolean[] = [];
   let extraPositions = 0;
   let waiting: Pulse | null = null;
   const place = (pulse: Pulse, spans: number): void => {
@@ -29,8 +32,9 @@ function drive(positions: number, missing: number, pulses: readonly Pulse[]): Dr
     const spans = judgeInterval(sync);
     if (spans > 0) place(pulse, spans);
     else waiting = pulse;
+    nearAfter.push(noGapAhead(sync));
   });
-  return { sync, steps, positions: pulses.length - 1 + extraPositions };
+  return { sync, steps, positions: pulses.length - 1 + extraPositions, nearAfter };
 }
 
 type Fault =
@@ -276,5 +280,55 @@ describe('silence', () => {
       ),
     ).toBe(false);
     expect(noGapAhead(createGapSync(12, 0))).toBe(true);
+  });
+
+  /** At one position a second, from `brakeAt` on braked evenly within `brakeS` to a twentieth; teeth are off by 2 %, rms. */
+  const braked = (n: number, missing: number, brakeAt: number, brakeS: number, seed: number): Pulse[] => {
+    const noise = normal(seeded(seed));
+    const slow = 1 / 20;
+    const slope = (1 - slow) / brakeS;
+    const way = brakeS * (1 - (slope * brakeS) / 2);
+    const timeOf = (place: number): number => {
+      const past = place - brakeAt;
+      if (past <= 0) return place;
+      if (past >= way) return brakeAt + brakeS + (past - way) / slow;
+      return brakeAt + (1 - Math.sqrt(1 - 2 * slope * past)) / slope;
+    };
+    return Array.from({ length: 9 * n }, (_, place) => ({ place, extra: false }))
+      .filter(({ place }) => place % n < n - missing)
+      .map(({ place, extra }) => ({ t: timeOf(place + 0.02 * noise()), place, extra }));
+  };
+  const brakes = (n: number, missing: number): { pulses: Pulse[]; nearAfter: boolean[] }[] =>
+    Array.from({ length: 400 }, (_, seed) => {
+      const pulses = braked(n, missing, 2.5 * n + (seed * n) / 400, 8 + (seed % 25), seed);
+      return { pulses, nearAfter: drive(n, missing, pulses).nearAfter };
+    });
+
+  it.each([
+    [36, 1],
+    [60, 2],
+    [12, 1],
+  ])(
+    'on a wheel of %i - %i may hide the gap wherever that could be, once the shaft was braked hard',
+    (n, missing) => {
+      for (const { pulses, nearAfter } of brakes(n, missing)) {
+        nearAfter.slice(0, -1).forEach((isNear, k) => {
+          if (isNear) expect(pulses[k + 2]!.place - pulses[k + 1]!.place).toBe(1);
+        });
+        // Steady before and long after: the place is known but for the last tooth.
+        const share = nearAfter.slice(-n).filter(Boolean).length / n;
+        expect(share).toBeGreaterThan(1 - (missing + 3) / n);
+      }
+    },
+  );
+
+  it('hides no more than one position on a wheel that lost a tooth, once that is known', () => {
+    const pulses = braked(36, 1, 1000, 1, 5).filter(({ place }) => place < 80 || place % 36 !== 12);
+    const { nearAfter } = drive(36, 1, pulses);
+    // From the gap up to the place of the tooth that is not there.
+    for (let turn = 4; turn < 6; turn++) {
+      const begin = pulses.findIndex(({ place }) => place === 36 * turn);
+      expect(nearAfter.slice(begin - 1, begin + 9)).toEqual(new Array(10).fill(true));
+    }
   });
 });

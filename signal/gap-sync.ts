@@ -7,6 +7,7 @@
  * (`gap-judge.ts`), so that one of them does not cost the sync; what cannot be explained loses it, with a reason.
  * Outside sync two gaps a turn cannot be told apart, so that nothing is believed before one turn held exactly one.
  */
+import { beginProof, closeTurn } from '@/signal/gap-proof';
 import { noteSpacing } from '@/signal/gap-spacing';
 
 export type SyncState = 'unsynced' | 'proving' | 'synced';
@@ -63,6 +64,11 @@ export type GapSync = {
   sinceDoubt: number;
   /** Missing positions passed while proving, which count once it is proven. */
   owed: number;
+  /** The position is beyond doubt (see `gap-proof.ts`). */
+  isProven: boolean;
+  /** Pulses since the last gap, that after it left out, and in the turn before. */
+  pulses: number;
+  pulsesBefore: number;
 };
 
 function noLosses(): Record<SyncLoss, number> {
@@ -95,6 +101,9 @@ export function createGapSync(positions: number, missing: number): GapSync {
     sinceGap: -1,
     sinceDoubt: -1,
     owed: 0,
+    isProven: false,
+    pulses: 0,
+    pulsesBefore: 0,
   };
 }
 
@@ -113,20 +122,9 @@ export function loseSync(sync: GapSync, because: SyncLoss): void {
 export function resetSync(sync: GapSync, because: SyncLoss = 'stopped'): void {
   loseSync(sync, because);
   sync.perPositionS = sync.olderS = NaN;
-  sync.waitingS = NaN;
-  sync.gapS = NaN;
+  sync.waitingS = sync.gapS = NaN;
   sync.sinceGap = -1;
   sync.uncountable = null;
-}
-
-export function gapIsDue(sync: GapSync): boolean {
-  return sync.state === 'synced' && sync.position === sync.positions - sync.missing - 1;
-}
-
-/** True where no gap can come next, so that one silent position is all there can be. */
-export function noGapAhead(sync: GapSync): boolean {
-  if (sync.missing === 0) return true;
-  return sync.state === 'synced' && !gapIsDue(sync) && Number.isNaN(sync.waitingS);
 }
 
 /**
@@ -156,6 +154,7 @@ export function moveOn(sync: GapSync, spans: number): number {
     sync.state = 'synced';
     sync.lostBecause = null;
     sync.position = 0;
+    closeTurn(sync);
     return sync.owed + missing;
   } else if (gap) {
     prove(sync, 0);
@@ -172,6 +171,7 @@ function moveInSync(sync: GapSync, spans: number, next: number): number {
   if (next >= positions) {
     sync.position = next - positions;
     sync.sinceDoubt = -1;
+    closeTurn(sync);
     return spans - 1;
   }
   if (next <= last) {
@@ -198,4 +198,5 @@ function prove(sync: GapSync, position: number): void {
   sync.state = 'proving';
   sync.position = position;
   sync.owed = sync.missing;
+  beginProof(sync, position === 0);
 }

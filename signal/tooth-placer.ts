@@ -44,10 +44,15 @@ export class ToothPlacer {
     tracker.take();
   }
 
-  /** The place that comes next stayed empty in the turn before: a weak tooth proves nothing by its silence. */
+  /**
+   * The place that comes next stayed empty in the turn before, or one did and where the wheel stands is in doubt: a weak
+   * tooth proves nothing by its silence.
+   */
   nextIsOftenMissed(): boolean {
     const { face, sync } = this;
-    return face !== null && face.absence.inRow[(this.lastPosition() + 1) % sync.positions]! > 0;
+    if (face === null || face.absence.suspects === 0) return false;
+    const position = sync.missing === 0 || sync.isProven ? this.lastPosition() : -1;
+    return position < 0 || face.absence.inRow[(position + 1) % sync.positions]! > 0;
   }
 
   /** Of the last pulse, counted the way in which the wheel turns, where the wheel is in sync; -1: not known. */

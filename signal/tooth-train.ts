@@ -5,11 +5,13 @@
  * function that is not inlined, they would be boxed.
  */
 import type { EdgeQueue } from '@/signal/columns';
-import { createGapSync, noGapAhead, resetSync } from '@/signal/gap-sync';
+import { noGapAhead } from '@/signal/gap-proof';
+import { createGapSync, resetSync } from '@/signal/gap-sync';
 import type { GapSync, SyncLoss } from '@/signal/gap-sync';
 import type { RigSetup, Settings } from '@/signal/model';
 import type { SpeedColumns } from '@/signal/pipeline-types';
 import type { PitchStatus } from '@/signal/pitch';
+import { stepTable } from '@/signal/step-table';
 import { ToothPlacer } from '@/signal/tooth-placer';
 import { ToothSpeed } from '@/signal/tooth-speed';
 import { Unevenness } from '@/signal/unevenness';
@@ -44,7 +46,7 @@ export class ToothTrain {
     this.sync = createGapSync(pulsesPerTurn, missing);
     this.face = pulsesPerTurn <= mostPositions ? new WheelFaceMeter(pulsesPerTurn, missingPulses) : null;
     this.placer = new ToothPlacer(this.sync, this.face, missingPulses);
-    this.uneven = new Unevenness(pulsesPerTurn);
+    this.uneven = new Unevenness(pulsesPerTurn, stepTable(rig.sensing)?.stepsPerCycle ?? 1);
     this.rpmPerTurns = 60 / gearRatio;
     const { tracker } = this.placer;
     this.speed = new ToothSpeed(rig, settings, this.sync, this.uneven, tracker, this.face, columns);
@@ -83,7 +85,7 @@ export class ToothTrain {
   /** Whole positions that can still be silent after the last tooth. */
   get silentPlaces(): number {
     const places = noGapAhead(this.sync) ? 1 : this.sync.missing + 1;
-    return this.synced && this.placer.nextIsOftenMissed() ? places + 1 : places;
+    return this.placer.nextIsOftenMissed() ? places + 1 : places;
   }
 
   /** Standard error of the last edge in positions, as noise and sample grid tell it; 0 where that is not known. */
