@@ -20,6 +20,7 @@ import type { Levels } from '@/signal/levels';
 import { worstMarginV } from '@/signal/margin-meter';
 import type { Band, Channel, SampleArray } from '@/signal/model';
 import { rawNoiseV } from '@/signal/noise';
+import type { NoiseMeter } from '@/signal/noise';
 import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline-types';
 import type { RailMeter } from '@/signal/rail-meter';
 import { RawWatch } from '@/signal/raw-watch';
@@ -139,6 +140,25 @@ export class ChannelPath {
 
   get rails(): RailMeter | null {
     return this.watch.rails;
+  }
+
+  /** What bursts of neighbouring raw samples say; the last one is whole where `filled` is 0. */
+  get bursts(): NoiseMeter {
+    return this.watch.noise;
+  }
+
+  /** As `slow`, before the filter; null while it is not kept. */
+  get rawSlow(): SlowRing | null {
+    return this.watch.ring;
+  }
+
+  keepRawSlow(on: boolean): void {
+    this.watch.keepRing(on);
+  }
+
+  /** Edges that came within a hold-off and were made at its end. */
+  get lateCount(): number {
+    return this.keeper.detector.lateCount;
   }
 
   /** Least and most raw volts of every thirty-second sample since `restartSpread`. */

@@ -27,6 +27,7 @@ export function runHold(
       if (beyond) {
         const late = !(crosses && at >= d.holdEndAt);
         const rising = !d.high;
+        if (late) d.lateCount++;
         record(d, (rising ? edgeRising : 0) | (late ? edgeLate : 0));
         d.edges.at[d.edges.count - 1] = late ? d.holdEndAt : at;
         settle(d, rising);

@@ -41,6 +41,8 @@ export type Detector = {
   rejectedAt: number;
   holdSamples: number;
   holdEndAt: number;
+  /** Edges made at the end of a hold-off, since they came within it. */
+  lateCount: number;
   /** State during hold-off, and where a band without hold-off would be. */
   high: boolean;
   wouldBeHigh: boolean;
@@ -87,6 +89,7 @@ export function createDetector(holdSamples: number, pauseAtEdges: boolean): Dete
     rejectedAt: NaN,
     holdSamples,
     holdEndAt: NaN,
+    lateCount: 0,
     high: false,
     wouldBeHigh: false,
     pauseAt: Infinity,

@@ -9,6 +9,8 @@ import type { NoiseMeter } from '@/signal/noise';
 import { breakRails, createRailMeter, leaveRails, touchesRails, watchRails } from '@/signal/rail-meter';
 import type { RailMeter } from '@/signal/rail-meter';
 import { holdsCodes, scaleOf } from '@/signal/scale';
+import { createSlowRing } from '@/signal/slow-ring';
+import type { SlowRing } from '@/signal/slow-ring';
 import { samplesPerTick } from '@/signal/ticks';
 
 const burstsOfStart = 12;
@@ -16,6 +18,8 @@ const burstsOfStart = 12;
 export class RawWatch {
   readonly noise: NoiseMeter = createNoiseMeter();
   rails: RailMeter | null = null;
+  /** As the path's own slow ring, before the filter; kept only while it is asked for. */
+  ring: SlowRing | null = null;
   /** Least and most volts of the samples looked at since `restartSpread`. */
   spreadLowV = Infinity;
   spreadHighV = -Infinity;
@@ -48,9 +52,16 @@ export class RawWatch {
     this.spreadHighV = -Infinity;
   }
 
+  /** Raw samples are kept from here on, or no longer. */
+  keepRing(on: boolean): void {
+    if (on === (this.ring !== null)) return;
+    this.ring = on ? createSlowRing(this.rateHz) : null;
+  }
+
   /** Samples were lost. */
   gap(): void {
     breakBurst(this.noise);
+    if (this.ring) this.ring.unbrokenFrom = this.ring.count;
     if (this.rails) breakRails(this.rails);
   }
 
@@ -58,6 +69,7 @@ export class RawWatch {
   take(array: SampleArray, from: number, to: number, at: number): void {
     if (array.constructor !== this.kind) this.learnKind(array);
     this.feedNoise(array, from, to, at);
+    if (this.ring) this.feedRing(this.ring, array, from, to, at);
     const { ends, rails, stride } = this;
     const first = from + ((stride - (at % stride)) % stride);
     if (first >= to) return;
@@ -88,6 +100,15 @@ export class RawWatch {
     if (!codes) return;
     this.noise.quantumV = Math.abs(this.channel.voltsPerCode);
     this.noise.quantumFixed = true;
+  }
+
+  private feedRing(ring: SlowRing, array: SampleArray, from: number, to: number, at: number): void {
+    const { offset, factor } = this.scale;
+    const { stride, mask, v } = ring;
+    let kept = ring.count;
+    for (let i = from + ((stride - (at % stride)) % stride); i < to; i += stride)
+      v[kept++ & mask] = (array[i]! - offset) * factor;
+    ring.count = kept;
   }
 
   private feedNoise(array: SampleArray, from: number, to: number, at: number): void {
