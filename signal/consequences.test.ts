@@ -4,8 +4,11 @@ import { consequencesOf, highestRpmAt } from '@/signal/consequences';
 import { defaultSettings } from '@/signal/model';
 import type { RigSetup, Sensing, WidthClass } from '@/signal/model';
 import { pulsesPerLikePole, pulsesPerPolePair } from '@/signal/sensor-notes';
+import { speedLimits } from '@/signal/speed-limits';
 import { openPaths } from '@/signal/test-paths';
 import { sampled, testChannel, testPipeline, testRig } from '@/signal/test-signals';
+import { turnIssue } from '@/signal/validate-rig';
+import { rateIssue } from '@/signal/validate-timing';
 
 const ladder: WidthClass[] = [
   { widthS: 45e-6, means: 'weak' },
@@ -52,19 +55,19 @@ describe('consequences of a setup', () => {
 
   it('differ by arrangement: 2, 4 or 6 states that a sample must fall into (n = 60 fs / (states N), formula)', () => {
     const { wheel } = testRig('single', 64);
-    const highest = (sensing: Sensing): number => highestRpmAt(sensing, wheel, 10_000);
+    const highest = (sensing: Sensing) => highestRpmAt(sensing, wheel, 10_000);
     // 64 pulses, 10 kS/s, quadrature: 2343.75 rpm; twice as many samples a state: half of that; 70 of 90 degrees: 0.778.
     expect(['single', 'quadrature', 'three-hall'].map((sensing) => highest(sensing as Sensing))).toEqual([
       4687.5, 2343.75, 1562.5,
     ]);
     expect(highestRpmAt('quadrature', wheel, 10_000, 2)).toBe(1171.875);
-    expect(highestRpmAt('quadrature', wheel, 10_000, 1, 70 / 90) / 2343.75).toBeCloseTo(0.778, 3);
+    expect(highestRpmAt('quadrature', wheel, 10_000, 1, 70 / 90)! / 2343.75).toBeCloseTo(0.778, 3);
     expect(highestRpmAt('quadrature', { ...wheel, gearRatio: 3 }, 10_000)).toBe(781.25);
   });
 
   it('are what the signal path can follow: a quadrature pair below the limit, and not above it', () => {
     const rig = testRig('quadrature', 64);
-    const limit = highestRpmAt('quadrature', rig.wheel, 10_000);
+    const limit = highestRpmAt('quadrature', rig.wheel, 10_000)!;
     const band = { mode: 'fixed', operateV: 1.7, releaseV: 1.5 } as const;
     const steps = (rpm: number) => {
       const lines = [0, 0.25].map(
@@ -115,12 +118,12 @@ describe('consequences of a setup', () => {
       const volts = Float64Array.from({ length: 5000 }, (_, i) => (i > 100 && i < 110 ? 2 : 0));
       pipeline.process([volts], volts.length);
       expect(pipeline.status().speedAtMostRpm).toBeCloseTo(
-        consequencesOf(rig, defaultSettings, 1000).lowestRpm,
+        consequencesOf(rig, defaultSettings, 1000).lowestRpm!,
         9,
       );
     }
     // A ring of states shows an edge in every quarter (sixth) of a cycle, wider where the states are not even.
-    const lowest = (sensing: Sensing, share = 1): number =>
+    const lowest = (sensing: Sensing, share = 1) =>
       consequencesOf(testRig(sensing, 6), defaultSettings, null, share).lowestRpm;
     expect(lowest('quadrature')).toBeCloseTo(1.25, 12);
     expect(lowest('three-hall')).toBeCloseTo(5 / 6, 12);
@@ -143,27 +146,98 @@ describe('consequences of a setup', () => {
     expect(kept(2.3 * holdoffHz!)).toBeLessThan(0.7);
   });
 
-  it('are numbers or null for any setup, never NaN', () => {
-    const number = fc.double({ min: 1e-6, max: 1e6, noNaN: true });
+  it('are null where what they rest on is refused, and the rest is told', () => {
+    const at = (wheel: Partial<RigSetup['wheel']>, rateHz: number | null = 20_000, ratedRpm = 3000) => {
+      const rig = testRig('single', 60);
+      return consequencesOf({ ...rig, ratedRpm, wheel: { ...rig.wheel, ...wheel } }, defaultSettings, rateHz);
+    };
+    const wheels = [{ pulsesPerTurn: 0 }, { pulsesPerTurn: NaN }, { pulsesPerTurn: 2.5 }, { gearRatio: 0 }];
+    for (const wheel of [...wheels, { gearRatio: -2 }, { missingPulses: -1 }, { missingPulses: 59 }]) {
+      const { notes, ...numbers } = at(wheel);
+      expect(notes).toEqual([]);
+      expect(Object.values(numbers).filter((value) => value !== null)).toEqual([]);
+      expect(highestRpmAt('single', { ...testRig('single', 60).wheel, ...wheel }, 20_000)).toBeNull();
+    }
+    for (const rateHz of [-1, 0, 0.5, 2e6, NaN, Infinity])
+      expect(at({}, rateHz)).toMatchObject({
+        samplesPerTooth: null,
+        highestRpm: null,
+        toothHz: 3000,
+        lowestRpm: 0.5,
+      });
+    for (const ratedRpm of [0, -100, NaN, Infinity])
+      expect(at({}, 20_000, ratedRpm)).toMatchObject({
+        toothHz: null,
+        neededRateHz: null,
+        highestRpm: 10_000,
+      });
+    const overlapping = consequencesOf(
+      { ...coded(48), ratedRpm: 100, wheel: { ...coded(48).wheel, widthClasses: [ladder[0]!, ladder[0]!] } },
+      { ...defaultSettings, holdoffS: 20e-6 },
+      200_000,
+    );
+    expect(overlapping).toMatchObject({
+      widths: null,
+      highestRpm: null,
+      neededRateHz: null,
+      holdoffHz: null,
+    });
+    expect(overlapping.toothHz).toBeCloseTo(80, 9);
+  });
+
+  it('are finite or null for any setup, sound or not, and null without a wheel that the validator takes', () => {
+    const any = fc.oneof(
+      fc.double(),
+      fc.double({ min: 1e-6, max: 1e6, noNaN: true }),
+      fc.constantFrom(0, -1, 0.5, 1, NaN, Infinity, -Infinity, 5e-324, 1.7e308),
+    );
+    const pulses = fc.oneof(fc.integer({ min: -1, max: 100_000 }), any);
+    const widthClasses = fc.option(
+      fc.array(fc.record({ widthS: any, means: fc.constantFrom('forward', 'reverse', 'weak' as const) }), {
+        maxLength: 4,
+      }),
+    );
+    const speed = fc.record({
+      method: fc.constantFrom('tooth', 'turn', 'window' as const),
+      windowS: any,
+      stoppedAfterS: any,
+    });
+    let sound = 0;
+    let refused = 0;
     fc.assert(
       fc.property(
         fc.constantFrom('single', 'quadrature', 'three-hall', 'width-coded' as const),
-        fc.integer({ min: 3, max: 100_000 }),
-        number,
-        fc.option(number),
-        fc.double({ min: 1, max: 1e6, noNaN: true }),
-        (sensing, pulses, gearRatio, ratedRpm, rateHz) => {
-          const rig = sensing === 'width-coded' ? coded(pulses) : testRig(sensing, pulses);
-          const found = consequencesOf(
-            { ...rig, ratedRpm, wheel: { ...rig.wheel, gearRatio } },
-            { ...defaultSettings, holdoffS: 1e-4 },
-            rateHz,
-          );
-          for (const value of [...Object.values(found), ...Object.values(found.widths ?? {})])
-            if (typeof value === 'number') expect(Number.isFinite(value)).toBe(true);
+        fc.record({
+          pulsesPerTurn: pulses,
+          missingPulses: fc.oneof(fc.constant(0), fc.integer({ min: -1, max: 4 }), any),
+          gearRatio: fc.oneof(fc.constant(1), any),
+          widthClasses,
+        }),
+        fc.option(any),
+        fc.record({ holdoffS: any, speed }),
+        fc.option(any),
+        any,
+        any,
+        (sensing, wheel, ratedRpm, settings, rateHz, stateShare, halfShare) => {
+          const found = consequencesOf({ sensing, wheel, ratedRpm }, settings, rateHz, stateShare, halfShare);
+          const limits = speedLimits({ sensing, wheel }, settings.speed, rateHz, ratedRpm);
+          const highest = highestRpmAt(sensing, wheel, rateHz ?? 1000, 2, stateShare);
+          const { widths, ...rest } = found;
+          const numbers = Object.values(rest).filter((value) => !Array.isArray(value));
+          const ofWheel = [...numbers, widths, highest, ...Object.values(limits)];
+          for (const value of [...ofWheel, ...Object.values(widths ?? {})])
+            if (typeof value === 'number') expect(value >= 0 && value < Infinity).toBe(true);
+          if (turnIssue({ sensing, wheel })) {
+            refused++;
+            expect(ofWheel.filter((value) => value !== null && value !== found.holdoffS)).toEqual([]);
+          } else sound++;
+          if (rateIssue(rateHz))
+            expect([found.highestRpm, found.samplesPerTooth, highest]).toEqual([null, null, null]);
         },
       ),
+      { numRuns: 1000 },
     );
+    expect(Math.min(sound, refused)).toBeGreaterThan(50);
   });
 });
 

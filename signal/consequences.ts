@@ -9,7 +9,10 @@ import type { RigSetup, Sensing, Settings, Wheel } from '@/signal/model';
 import { sensorNotes } from '@/signal/sensor-notes';
 import type { SensorNote } from '@/signal/sensor-notes';
 import { neededRateHz } from '@/signal/statistics/width-code';
+import { turnIssue, widthIssue } from '@/signal/validate-rig';
+import { holdoffIssue, rateIssue, speedIssue } from '@/signal/validate-timing';
 
+/** Every number is finite or null: null where it is not known, and where the validators of the setup refuse what it rests on. */
 export type Consequences = {
   /** Tooth frequency at the rated speed, Hz; null where no rated speed is given. */
   toothHz: number | null;
@@ -22,14 +25,14 @@ export type Consequences = {
   /** Samples a second on each channel that the rated speed takes, each state sampled twice; null where none is given. */
   neededRateHz: number | null;
   /** Slower than this reads stopped, rpm. */
-  lowestRpm: number;
+  lowestRpm: number | null;
   /** The fastest edge that is left: one that comes sooner after the one before on its channel is eaten, s; null without hold-off. */
   holdoffS: number | null;
   /** Teeth faster than this lose edges to the hold-off, Hz. */
   holdoffHz: number | null;
   /** The same as a speed, rpm. */
   holdoffRpm: number | null;
-  /** Pulses whose width carries the direction; null for other arrangements. */
+  /** Pulses whose width carries the direction; null for other arrangements, and while no usable widths are given. */
   widths: WidthConsequences | null;
   /** What the kind of sensor means for count and polarity. */
   notes: SensorNote[];
@@ -59,7 +62,8 @@ export function statesPerCycle(sensing: Sensing): number {
 
 /**
  * The highest speed that an arrangement allows at a sample rate, rpm, with `samplesPerState` samples in its narrowest state.
- * Width-coded with known widths: a pulse and the pause after it; 0 where a pulse can fall between two samples.
+ * Width-coded with known widths: a pulse and the pause after it; 0 where a pulse can fall between two samples. Null for a
+ * wheel or a rate that the validators refuse, and for shares and samples that are none.
  */
 export function highestRpmAt(
   sensing: Sensing,
@@ -67,21 +71,26 @@ export function highestRpmAt(
   rateHz: number,
   samplesPerState = 1,
   narrowestStateShare = 1,
-): number {
+): number | null {
+  if (turnIssue({ sensing, wheel }) || haveBadWidths(sensing, wheel) || rateIssue(rateHz)) return null;
+  if (!(samplesPerState > 0) || !isShare(narrowestStateShare, 1)) return null;
   const rpmPerHz = rpmPerToothHz(wheel);
   if (sensing === 'width-coded' && wheel.widthClasses?.length) {
     const widths = wheel.widthClasses.map(({ widthS }) => widthS);
     const longestStateS = samplesPerState / rateHz;
     if (Math.min(...widths) < longestStateS) return 0;
-    return rpmPerHz / (Math.max(...widths) + longestStateS);
+    return finite(rpmPerHz / (Math.max(...widths) + longestStateS));
   }
-  return (rateHz * narrowestStateShare * rpmPerHz) / (statesPerCycle(sensing) * samplesPerState);
+  return finite((rateHz * narrowestStateShare * rpmPerHz) / (statesPerCycle(sensing) * samplesPerState));
 }
 
 /**
- * @param rig its channels may be left out, and then nothing is said of sensors. @param rateHz samples a second, or null where
- * no board has told it yet. @param narrowestStateShare the narrowest state over an even one, 1 where A and B are 90 degrees
- * apart. @param narrowestHalfShare the shorter of a pulse and the pause after it, over their period.
+ * Never throws, and gives no number for a setup that `validateSetup` refuses: what rests on the part that is wrong is null.
+ * A width-coded wheel whose widths are not given yet is taken as a single channel: its speed comes from leading edges.
+ * @param rig its channels may be left out, and then nothing is said of sensors. A rated speed of 0 or less counts as none.
+ * @param rateHz samples a second, or null where no board has told it yet. @param narrowestStateShare the narrowest state over
+ * an even one, 1 where A and B are 90 degrees apart. @param narrowestHalfShare the shorter of a pulse and the pause after it,
+ * over their period.
  */
 export function consequencesOf(
   rig: Pick<RigSetup, 'sensing' | 'wheel' | 'ratedRpm'> & Partial<Pick<RigSetup, 'channels'>>,
@@ -90,37 +99,86 @@ export function consequencesOf(
   narrowestStateShare = 1,
   narrowestHalfShare = 0.5,
 ): Consequences {
-  const { sensing, wheel, ratedRpm } = rig;
+  const { sensing, wheel } = rig;
+  const notes = sensorNotes(rig.channels ?? []);
+  const badHoldoff = holdoffIssue(settings) !== null || settings.holdoffS === 0;
+  const holdoffS = badHoldoff ? null : settings.holdoffS;
+  if (turnIssue(rig)) return { ...nothingKnown, holdoffS, notes };
   const rpmPerHz = rpmPerToothHz(wheel);
-  const toothHz = ratedRpm === null ? null : ratedRpm / rpmPerHz;
-  const widths = widthsOf(sensing, wheel, rateHz);
+  const rated = rig.ratedRpm !== null && rig.ratedRpm > 0 ? rig.ratedRpm : null;
+  const toothHz = rated === null ? null : finite(rated / rpmPerHz);
+  const knownRateHz = rateIssue(rateHz) ? null : rateHz;
+  const widths = widthsOf(sensing, wheel, knownRateHz);
   const highest = (samplesPerState: number): number | null =>
-    rateHz === null ? null : highestRpmAt(sensing, wheel, rateHz, samplesPerState, narrowestStateShare);
+    knownRateHz === null
+      ? null
+      : highestRpmAt(sensing, wheel, knownRateHz, samplesPerState, narrowestStateShare);
   const twice = highest(2);
   // Each edge, of either polarity, opens a hold-off: it must end within the shorter half of a tooth.
-  const holdoffHz = settings.holdoffS > 0 ? holdoffLimitHz(rig, settings.holdoffS, narrowestHalfShare) : null;
+  const holdoffHz = holdoffS === null ? null : holdoffLimitHz(rig, holdoffS, narrowestHalfShare);
   return {
     toothHz,
-    samplesPerTooth: rateHz === null || toothHz === null || toothHz === 0 ? null : rateHz / toothHz,
+    samplesPerTooth: knownRateHz === null || toothHz === null ? null : finite(knownRateHz / toothHz),
     highestRpm: highest(1),
     recommendedRpm: twice === null || !widths ? twice : Math.min(twice, widths.directionUpToRpm),
     neededRateHz:
-      toothHz === null
+      toothHz === null || haveBadWidths(sensing, wheel) || !isShare(narrowestStateShare, 1)
         ? null
-        : Math.max((2 * statesPerCycle(sensing) * toothHz) / narrowestStateShare, widths?.neededRateHz ?? 0),
-    lowestRpm:
-      (silentPositions(sensing, wheel, narrowestStateShare) * rpmPerHz) / settings.speed.stoppedAfterS,
-    holdoffS: settings.holdoffS > 0 ? settings.holdoffS : null,
+        : finite(
+            Math.max(
+              (2 * statesPerCycle(sensing) * toothHz) / narrowestStateShare,
+              widths?.neededRateHz ?? 0,
+            ),
+          ),
+    lowestRpm: lowestRpmOf(sensing, wheel, settings.speed, narrowestStateShare),
+    holdoffS,
     holdoffHz,
-    holdoffRpm: holdoffHz === null ? null : holdoffHz * rpmPerHz,
+    holdoffRpm: holdoffHz === null ? null : finite(holdoffHz * rpmPerHz),
     widths,
-    notes: sensorNotes(rig.channels ?? []),
+    notes,
   };
+}
+
+const nothingKnown = {
+  toothHz: null,
+  samplesPerTooth: null,
+  highestRpm: null,
+  recommendedRpm: null,
+  neededRateHz: null,
+  lowestRpm: null,
+  holdoffHz: null,
+  holdoffRpm: null,
+  widths: null,
+};
+
+/** What is far beyond any rig overflows: then it is not known either. */
+function finite(value: number): number | null {
+  return Number.isFinite(value) ? value : null;
+}
+
+function isShare(share: number, most: number): boolean {
+  return share > 0 && share <= most;
+}
+
+/** Whether widths are given that cannot be told from each other. */
+function haveBadWidths(sensing: Sensing, wheel: Wheel): boolean {
+  return Boolean(wheel.widthClasses?.length) && widthIssue({ sensing, wheel }) !== null;
 }
 
 /** rpm of the shaft at one position a second. */
 function rpmPerToothHz({ pulsesPerTurn, gearRatio }: Wheel): number {
   return 60 / (pulsesPerTurn * gearRatio);
+}
+
+function lowestRpmOf(
+  sensing: Sensing,
+  wheel: Wheel,
+  speed: Settings['speed'],
+  narrowestStateShare: number,
+): number | null {
+  if (speedIssue({ speed }) || !isShare(narrowestStateShare, 1)) return null;
+  const positions = silentPositions(sensing, wheel, narrowestStateShare);
+  return finite((positions * rpmPerToothHz(wheel)) / speed.stoppedAfterS);
 }
 
 /** Positions without any edge while the shaft turns: its gap, or the widest state of a ring. */
@@ -133,21 +191,24 @@ function holdoffLimitHz(
   { sensing, wheel }: Pick<RigSetup, 'sensing' | 'wheel'>,
   holdoffS: number,
   narrowestHalfShare: number,
-): number {
-  if (sensing !== 'width-coded' || !wheel.widthClasses?.length) return narrowestHalfShare / holdoffS;
+): number | null {
+  if (haveBadWidths(sensing, wheel) || !isShare(narrowestHalfShare, 0.5)) return null;
+  if (sensing !== 'width-coded' || !wheel.widthClasses?.length) return finite(narrowestHalfShare / holdoffS);
   // The end of a pulse is eaten at any speed where the pulse is shorter; else the pause after the widest decides.
   const widths = wheel.widthClasses.map(({ widthS }) => widthS);
-  return Math.min(...widths) <= holdoffS ? 0 : 1 / (Math.max(...widths) + holdoffS);
+  return Math.min(...widths) <= holdoffS ? 0 : finite(1 / (Math.max(...widths) + holdoffS));
 }
 
 function widthsOf(sensing: Sensing, wheel: Wheel, rateHz: number | null): WidthConsequences | null {
-  if (sensing !== 'width-coded' || !wheel.widthClasses) return null;
+  if (sensing !== 'width-coded' || !wheel.widthClasses || haveBadWidths(sensing, wheel)) return null;
   const needed = neededRateHz(wheel.widthClasses);
-  if (!needed.ok) return null;
+  if (!needed.ok || !Number.isFinite(needed.value)) return null;
   const widestS = Math.max(...wheel.widthClasses.map(({ widthS }) => widthS));
+  const directionUpToRpm = finite(rpmPerToothHz(wheel) / (2 * widestS));
+  if (directionUpToRpm === null) return null;
   return {
     neededRateHz: needed.value,
     isRateEnough: rateHz === null ? null : rateHz >= needed.value,
-    directionUpToRpm: rpmPerToothHz(wheel) / (2 * widestS),
+    directionUpToRpm,
   };
 }

@@ -48,7 +48,7 @@ describe('what a way to take the speed can resolve', () => {
     for (const rig of [testRig('quadrature', 64), testRig('three-hall', 4), testRig('single', 36, 1)]) {
       rig.wheel.gearRatio = 2.5;
       expect(speedLimits(rig, defaultSettings.speed, null, null).floorRpm).toBeCloseTo(
-        consequencesOf(rig, defaultSettings, null).lowestRpm,
+        consequencesOf(rig, defaultSettings, null).lowestRpm!,
         12,
       );
     }
@@ -67,6 +67,27 @@ describe('what a way to take the speed can resolve', () => {
       delayS: 0.3,
     });
     expect(speedLimits(wheel60, speed('tooth'), 1000, 30_000).resolutionRpm).toBeNull();
+  });
+
+  it('says nothing of a setup that is refused', () => {
+    const nothing = { resolutionRpm: null, delayS: null, floorRpm: null };
+    for (const wheel of [
+      { pulsesPerTurn: 0 },
+      { pulsesPerTurn: NaN },
+      { gearRatio: 0 },
+      { missingPulses: -1 },
+    ]) {
+      const rig = { ...wheel60, wheel: { ...wheel60.wheel, ...wheel } };
+      expect(speedLimits(rig, speed('turn'), 20_000, 100)).toEqual(nothing);
+    }
+    expect(speedLimits(wheel60, speed('turn', 0.1, 0), 20_000, 100)).toEqual(nothing);
+    expect(speedLimits(wheel60, speed('window', NaN), 20_000, 100)).toEqual(nothing);
+    for (const rateHz of [-1, NaN, Infinity])
+      expect(speedLimits(wheel60, speed('turn'), rateHz, 100)).toEqual({
+        resolutionRpm: null,
+        delayS: 0.3,
+        floorRpm: 1,
+      });
   });
 
   it('a ramp is read as late as that: the speed shown is the one of so long ago', () => {

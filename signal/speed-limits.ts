@@ -15,17 +15,20 @@
 import { consequencesOf } from '@/signal/consequences';
 import type { RigSetup, Settings } from '@/signal/model';
 import { gateResolution, periodResolution } from '@/signal/statistics/speed-resolution';
+import { turnIssue } from '@/signal/validate-rig';
+import { rateIssue, speedIssue } from '@/signal/validate-timing';
 
 export type SpeedLimits = {
   /** Smallest difference that it can show, rpm; null where rate or speed are not known, or teeth are faster than samples. */
   resolutionRpm: number | null;
   /** How far back the instant lies that the speed holds for, s; null where the speed is not known. */
   delayS: number | null;
-  /** Slower than this reads stopped, rpm. */
-  floorRpm: number;
+  /** Slower than this reads stopped, rpm; null where the setup is refused. */
+  floorRpm: number | null;
 };
 
 /**
+ * Every number is finite or null; null throughout for a wheel or a way to take the speed that `validateSetup` refuses.
  * @param speed method, window and time until stopped. @param rateHz samples a second; null: not known.
  * @param rpm present speed of the shaft, of either sign; null or 0: not known.
  */
@@ -35,6 +38,9 @@ export function speedLimits(
   rateHz: number | null,
   rpm: number | null,
 ): SpeedLimits {
+  const unknown = { resolutionRpm: null, delayS: null, floorRpm: null };
+  if (turnIssue({ sensing, wheel }) || speedIssue({ speed: { method, windowS, stoppedAfterS } }))
+    return unknown;
   const positions = wheel.pulsesPerTurn * wheel.gearRatio;
   const { lowestRpm: floorRpm } = consequencesOf(
     { sensing, wheel, ratedRpm: null },
@@ -46,12 +52,14 @@ export function speedLimits(
   const perPositionS = 60 / (positions * speed);
   const intervals = intervalsOf(method, wheel.pulsesPerTurn, windowS / perPositionS);
   const delayS = (intervals * perPositionS) / 2;
-  if (rateHz === null) return { resolutionRpm: null, delayS, floorRpm };
+  if (!(delayS < Infinity)) return { resolutionRpm: null, delayS: null, floorRpm };
+  if (rateHz === null || rateIssue(rateHz)) return { resolutionRpm: null, delayS, floorRpm };
   const found =
     method === 'tooth'
       ? periodResolution(speed, positions, rateHz, stoppedAfterS)
       : gateResolution(speed, positions, rateHz, intervals * perPositionS, stoppedAfterS);
-  return { resolutionRpm: found.ok ? found.value.stepRpm : null, delayS, floorRpm };
+  const stepRpm = found.ok ? found.value.stepRpm : NaN;
+  return { resolutionRpm: Number.isFinite(stepRpm) ? stepRpm : null, delayS, floorRpm };
 }
 
 function intervalsOf(method: Settings['speed']['method'], pulsesPerTurn: number, inWindow: number): number {

@@ -7,8 +7,16 @@ import { neededRateHz } from '@/signal/statistics/width-code';
 const mostPulses = 1_000_000;
 const widestGear = 1e6;
 
-export function wheelIssue(rig: RigSetup): SetupIssue | null {
-  const { pulsesPerTurn, missingPulses, gearRatio } = rig.wheel;
+type WheelSetup = Pick<RigSetup, 'sensing' | 'wheel'>;
+
+/** The first thing about a wheel that the signal path cannot work with, or null: its numbers, then its widths. */
+export function wheelIssue(rig: WheelSetup): SetupIssue | null {
+  return turnIssue(rig) ?? widthIssue(rig);
+}
+
+/** As `wheelIssue`, without the widths: whether its pulses, gap and gear make a turn that speed can be told by. */
+export function turnIssue(rig: WheelSetup): SetupIssue | null {
+  const { pulsesPerTurn, gearRatio } = rig.wheel;
   if (!Number.isInteger(pulsesPerTurn) || pulsesPerTurn < 1) {
     return {
       code: 'no-pulses',
@@ -28,10 +36,10 @@ export function wheelIssue(rig: RigSetup): SetupIssue | null {
   if (!(gearRatio >= 1 / widestGear && gearRatio <= widestGear)) {
     return { code: 'bad-gear', pointer: '/wheel/gearRatio', detail: 'The gear ratio must be above 0.' };
   }
-  return missingPulses >= 0 ? widthIssue(rig) : null;
+  return null;
 }
 
-function gapIssue({ sensing, wheel: { pulsesPerTurn, missingPulses } }: RigSetup): SetupIssue | null {
+function gapIssue({ sensing, wheel: { pulsesPerTurn, missingPulses } }: WheelSetup): SetupIssue | null {
   const pointer = '/wheel/missingPulses';
   if (
     !Number.isInteger(missingPulses) ||
@@ -54,7 +62,8 @@ function gapIssue({ sensing, wheel: { pulsesPerTurn, missingPulses } }: RigSetup
   return null;
 }
 
-function widthIssue({ sensing, wheel: { widthClasses } }: RigSetup): SetupIssue | null {
+/** What is wrong with the widths of a width-coded wheel, or null; null for every other arrangement. */
+export function widthIssue({ sensing, wheel: { widthClasses } }: WheelSetup): SetupIssue | null {
   if (sensing !== 'width-coded') return null;
   const pointer = '/wheel/widthClasses';
   if (!widthClasses || widthClasses.length === 0) {

@@ -7,6 +7,7 @@ import type { SetupIssue } from '@/signal/pipeline-types';
 import { bandIssue } from '@/signal/validate-band';
 import { filterIssues } from '@/signal/validate-filter';
 import { channelIssue, rigNumberIssue, wheelIssue } from '@/signal/validate-rig';
+import { holdoffIssue, rateIssue, speedIssue, startIssue } from '@/signal/validate-timing';
 
 export { neededRoles } from '@/signal/validate-rig';
 
@@ -31,48 +32,7 @@ export function validateSetup(
     channelIssue(rig, channels) ??
     filterIssues(settings, rateHz) ??
     bandIssue(rig, settings, rateHz !== null, channels) ??
-    timingIssue(settings)
+    holdoffIssue(settings) ??
+    speedIssue(settings)
   );
-}
-
-function rateIssue(rateHz: number | null): SetupIssue | null {
-  if (rateHz === null || (rateHz >= 1 && rateHz <= 1_000_000)) return null;
-  return {
-    code: 'bad-rate',
-    pointer: '/rateHz',
-    detail: `A sample rate of ${rateHz} Hz is outside 1 Hz to 1 MHz.`,
-  };
-}
-
-function startIssue(startIndex: number): SetupIssue | null {
-  if (Number.isSafeInteger(startIndex) && startIndex >= 0) return null;
-  return {
-    code: 'bad-start',
-    pointer: '/startIndex',
-    detail: `A stream cannot begin at sample ${startIndex}: whole numbers from 0 on.`,
-  };
-}
-
-/** Longer than any stream lasts, and shorter than any edge is timed: beyond them it is a slip of the pen. */
-const longestS = 1e6;
-const shortestS = 1e-9;
-
-function timingIssue({ holdoffS, speed }: Settings): SetupIssue | null {
-  if (!(holdoffS >= 0 && holdoffS <= longestS)) {
-    return { code: 'bad-holdoff', pointer: '/holdoffS', detail: 'The hold-off must be 0 s or more.' };
-  }
-  if (!['tooth', 'turn', 'window'].includes(speed.method)) {
-    return { code: 'bad-speed', pointer: '/speed/method', detail: 'The method is tooth, turn or window.' };
-  }
-  if (!(speed.windowS >= shortestS && speed.windowS <= longestS)) {
-    return { code: 'bad-speed', pointer: '/speed/windowS', detail: 'The window must be longer than 0 s.' };
-  }
-  if (!(speed.stoppedAfterS >= shortestS && speed.stoppedAfterS <= longestS)) {
-    return {
-      code: 'bad-speed',
-      pointer: '/speed/stoppedAfterS',
-      detail: 'The time until stopped must be longer than 0 s.',
-    };
-  }
-  return null;
 }

@@ -56,7 +56,7 @@ export const live = z
         limits: z.object({
           resolutionRpm: z.number().nullable(),
           delayS: z.number().nullable(),
-          floorRpm: z.number(),
+          floorRpm: z.number().nullable(),
         }),
         pitch: z.object({
           state: z.enum(['none', 'learning', 'in-use']),
