@@ -111,6 +111,15 @@ describe('an extra pulse', () => {
     expect(extra(testRig('single', 24), 8, spike(2 + 9.2 / 240))).toEqual([]);
   });
 
+  it('that came once beside a gap of the wheel proves nothing', () => {
+    const sound = toothWheel(24, 1, turning);
+    const once = (place: number) => (t: number) =>
+      t > 2 + place / 240 && t < 2 + place / 240 + 0.0003 ? 2.6 : sound(t);
+    // Tooth 22 is the last before the gap, and tooth 0 the first after it.
+    for (const place of [22, 24]) expect(extra(testRig('single', 24, 1), 5, once(place))).toEqual([]);
+    expect(extra(testRig('single', 24, 1), 5, once(12))).toHaveLength(1);
+  });
+
   it('now and then anywhere is worth a warning, for as long as it is told', () => {
     // 2.3 turns apart, so that each comes at another place.
     const spikes = (t: number) => t > 2 && t < 6 && (t * 10) % 2.3 < 0.003;

@@ -1,3 +1,4 @@
+import { isBetweenTeeth } from '@/signal/findings/lone-pulse';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule } from '@/signal/findings/rule';
 import type { WheelLanes } from '@/signal/findings/wheel-lanes';
@@ -74,6 +75,10 @@ export class ExtraPulseRule implements FindingRule {
     const teeth = Math.min(count, windowS / pitchS) * (1 - missing / positions);
     if (strays.length === 0 || recent.length > mostStraysShare * teeth || count < turnsForStrays * positions)
       return;
+    // Where the first one proves nothing, beside a gap or while the speed changes, two at two places do.
+    const isOpen = latch.open?.evidence.where === 'anywhere';
+    const scattered = strays.some(({ place }) => !extras.isSame(place, strays[0]!.place));
+    if (!isOpen && !scattered && !strays.some(({ t }) => isBetweenTeeth(lane.path.log, t))) return;
     const evidence = {
       where: 'anywhere',
       pulses: strays.length,

@@ -46,6 +46,18 @@ describe('run-out', () => {
     expect(finding!.remedy).toContain('opposite');
   });
 
+  it('is not said while all teeth shrink or grow at once', () => {
+    const turnsAt = (t: number) => 0.9 * t;
+    for (const after of [0.25, 4]) {
+      // Looks fall on the ends of turns: half of the teeth have changed by then, or others.
+      for (const fromS of [9, 9.25, 9.5, 9.75]) {
+        const strengthOf = (_: number, t: number) => (t > fromS ? after : 1);
+        const volts = wheelVolts({ positions: 60, turnsAt, strengthOf });
+        expect(runOut(testRig('single', 60), 15, volts)).toEqual([]);
+      }
+    }
+  });
+
   it('is not said of one weak tooth, of two waves a turn, nor on fewer than eight teeth', () => {
     const weak = wheelVolts({ positions: 8, strengthOf: (k) => (k === 3 ? 0.55 : 1) });
     expect(runOut(testRig('single', 8), 4, weak)).toEqual([]);

@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
+import { meanOf, ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import { recentWorth } from '@/signal/wheel-spacing';
@@ -24,6 +24,12 @@ const waveShare = 0.5;
 const significant = 4;
 /** So many times what teeth that stand off at random would make. */
 const aboveRoughness = 3.5;
+/**
+ * While all teeth grow or shrink together, those that have passed since stand apart from those that have not, like a wave of
+ * at most twice what the mean has changed by: the wheel is judged by what stands clear of that. Run-out that comes up leaves
+ * the mean as it was.
+ */
+const aboveChange = 2.5;
 
 type Verdict = Pick<Finding, 'severity' | 'outcome' | 'at' | 'evidence'>;
 
@@ -38,6 +44,8 @@ export class RunOutRule implements FindingRule {
   private readonly waves: WheelOrders | null = null;
   private readonly scratch: Float64Array | null = null;
   private verdict: Verdict | null = null;
+  /** Mean swing at the last look, V. */
+  private meanBeforeV = NaN;
 
   constructor(context: RuleContext) {
     this.context = context;
@@ -74,11 +82,15 @@ export class RunOutRule implements FindingRule {
 
   private judge(face: WheelFaceMeter, open: Finding | null): Verdict | null {
     const { waves, scratch } = this;
-    if (!waves || !scratch || face.turns < turnsNeeded) return null;
+    if (!waves || !scratch) return null;
+    const meanV = meanOf(face.swingV);
+    const changeV = Math.abs(meanV - this.meanBeforeV);
+    this.meanBeforeV = meanV;
     const { positions } = face;
-    if (!mayWave(face)) return null;
+    if (face.turns < turnsNeeded || !mayWave(face)) return null;
     waves.fit(ofTeethThere(face.swingV, face, scratch), 2);
     const swing = waveOf(waves, meanOf(face.swingVariance) / recentWorth);
+    swing.isClear &&= swing.amplitude > aboveChange * changeV;
     const strongest = strongestOf(face);
     let spacing = { amplitude: NaN, second: NaN, isClear: false };
     if (face.spacing.turns >= turnsNeeded) {
@@ -135,17 +147,6 @@ function waveOf(
   const isWave = amplitude * amplitude > 2 * waveShare * waves.variance;
   const isClear = waves.count >= fewestTeeth && isWave && amplitude > significant * error;
   return { amplitude, second: waves.amplitude(2), mean: waves.mean, isClear };
-}
-
-function meanOf(values: Float64Array): number {
-  let sum = 0;
-  let count = 0;
-  for (const value of values) {
-    if (Number.isNaN(value)) continue;
-    sum += value;
-    count++;
-  }
-  return sum / count;
 }
 
 function strongestOf({ swingV }: WheelFaceMeter): number {

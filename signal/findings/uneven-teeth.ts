@@ -1,6 +1,6 @@
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { numberingOf, ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
+import { meanOf, numberingOf, ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import { memoryWorth } from '@/signal/wheel-spacing';
@@ -15,6 +15,8 @@ const faultShare = 0.15;
 /** Share of the swing by which a tooth is weaker or stronger than the others. */
 const swingShare = 0.4;
 const steadySwing = 0.1;
+/** While the mean swing changes by more from look to look, teeth that have passed since stand apart from those that have not. */
+const steadyMean = 0.05;
 const stays = 0.8;
 /** On a wheel that is a little rough all round, a tooth must stand out by so many rms; on a very rough one none need. */
 const standsOut = 5.5;
@@ -45,6 +47,8 @@ export class UnevenTeethRule implements FindingRule {
   private readonly apart: Uint8Array | null = null;
   private readonly orders: number;
   private verdict: Verdict | null = null;
+  /** Mean swing at the last look, V. */
+  private meanBeforeV = NaN;
 
   constructor(context: RuleContext) {
     this.context = context;
@@ -166,7 +170,10 @@ export class UnevenTeethRule implements FindingRule {
   private bySwing(face: WheelFaceMeter, swings: WheelOrders, easier: number): Verdict | null {
     const { positions, missing, swingVariance, counts } = face;
     const { least, most } = rangeOf(face.swingV);
-    if (most - least < easier * swingShare * plain * least) return null;
+    const meanV = meanOf(face.swingV);
+    const isSteady = Math.abs(meanV - this.meanBeforeV) < steadyMean * meanV;
+    this.meanBeforeV = meanV;
+    if (!isSteady || most - least < easier * swingShare * plain * least) return null;
     swings.fit(ofTeethThere(face.swingV, face, this.scratch!), positions >= positionsPerOrder ? 1 : 0);
     // A wave over the turn is run-out's; one weak tooth makes hardly any.
     const isWave = swings.leftVariance < 0.5 * swings.variance;

@@ -61,6 +61,18 @@ export function rangeOf(values: Float64Array): { least: number; most: number } {
   return least <= most ? { least, most } : { least: 0, most: 0 };
 }
 
+/** Of the known ones; NaN where there is none. */
+export function meanOf(values: Float64Array): number {
+  let sum = 0;
+  let count = 0;
+  for (const value of values) {
+    if (Number.isNaN(value)) continue;
+    sum += value;
+    count++;
+  }
+  return sum / count;
+}
+
 /** What the numbers of teeth count from. */
 export type Numbering = 'from the gap' | 'from the index' | 'relative';
 
