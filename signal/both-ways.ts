@@ -1,48 +1,59 @@
 /**
  * Forward-backward filtering of a stretch that comes in pieces: what `filterZeroPhase` gives of the whole stretch, to within
  * a hundred-millionth of its swing, with bounded memory. Output lags by twice what the filter remembers.
+ *
+ * Both passes run over pieces that end at fixed places of the stretch, so that how it was pushed changes nothing, bit for bit.
  */
 import { createCascade, flushCascade, runCascade } from '@/signal/biquad';
 import type { Cascade } from '@/signal/biquad';
 import type { Section } from '@/signal/filter-design';
 import { filterZeroPhase } from '@/signal/statistics/zero-phase';
 
-/** Least samples of output at a time. */
-const pieceSamples = 65_536;
+/** Least samples of a piece. */
+const leastPiece = 65_536;
 
 export class BothWays {
   private readonly sections: readonly Section[];
   private readonly pad: number;
+  /** As long as the memory at least: the pass back over what is not out yet then costs no more than some pieces. */
+  private readonly pieceSamples: number;
   private forward: Cascade;
   private started = false;
   /** Samples that are not yet out: as they came, and after the pass forward. */
   private raw = new Float64Array(0);
   private passed = new Float64Array(0);
   private held = 0;
+  /** The last of them, which wait for their piece to be full. */
+  private fresh = 0;
 
   /** @param memorySamples how long the chain remembers, from `memorySamples` of `zero-phase.ts`. */
   constructor(sections: readonly Section[], memorySamples: number) {
     this.sections = sections;
     this.pad = memorySamples;
+    this.pieceSamples = Math.max(leastPiece, memorySamples);
     this.forward = createCascade(sections);
   }
 
   /** Takes `volts`; returns what is ready, in order, the first sample first. It may be nothing. */
   push(volts: Float64Array): Float64Array {
-    const from = this.held;
-    this.append(volts);
-    if (!this.started) {
-      if (this.held <= this.pad) return new Float64Array(0);
-      this.start();
-    } else {
-      this.pass(from);
+    const out: Float64Array[] = [];
+    for (let from = 0; from < volts.length;) {
+      const to = Math.min(volts.length, from + this.pieceSamples - this.fresh);
+      this.append(volts.subarray(from, to));
+      this.fresh += to - from;
+      if (this.fresh === this.pieceSamples) {
+        this.passFresh();
+        const ready = this.held - 2 * this.pad;
+        if (ready >= this.pieceSamples) out.push(this.release(ready, this.passed.slice(0, this.held)));
+      }
+      from = to;
     }
-    const ready = this.held - 2 * this.pad;
-    return ready >= pieceSamples ? this.release(ready, this.passed.slice(0, this.held)) : new Float64Array(0);
+    return joined(out);
   }
 
   /** The stretch is over: the rest of it. A new one may begin. */
   end(): Float64Array {
+    this.passFresh();
     const { raw, held, pad } = this;
     let rest: Float64Array = raw.slice(0, held);
     if (this.started) {
@@ -59,6 +70,12 @@ export class BothWays {
     this.started = false;
     this.forward = createCascade(this.sections);
     return rest;
+  }
+
+  private passFresh(): void {
+    if (this.started) this.pass(this.held - this.fresh);
+    else if (this.held > this.pad) this.start();
+    this.fresh = 0;
   }
 
   private append(volts: Float64Array): void {
@@ -97,6 +114,18 @@ export class BothWays {
     this.held -= count;
     return work.slice(0, count);
   }
+}
+
+function joined(parts: readonly Float64Array[]): Float64Array {
+  const [first] = parts;
+  if (first && parts.length === 1) return first;
+  const all = new Float64Array(parts.reduce((sum, part) => sum + part.length, 0));
+  let at = 0;
+  for (const part of parts) {
+    all.set(part, at);
+    at += part.length;
+  }
+  return all;
 }
 
 function widened(old: Float64Array<ArrayBuffer>, needed: number): Float64Array<ArrayBuffer> {
