@@ -3,6 +3,7 @@ import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import type { Locator, Page } from '@playwright/test';
 import { expect } from '@playwright/test';
+import { flawsInSight } from '@/tests/e2e/flaws-in-sight';
 
 const require = createRequire(import.meta.url);
 const axeSource = readFileSync(require.resolve('axe-core/axe.min.js'), 'utf8');
@@ -43,7 +44,8 @@ const schemes = { light: 'steel', dark: 'dye' } as const;
 
 /**
  * In both schemes: no accessibility violation that axe-core can find, and nothing wider than the page. The schemes
- * differ in colours only, so the second is looked through for contrast.
+ * differ in colours only, so the second is looked through for contrast. On the app's own pages what can be pressed is large
+ * enough, and words and drawings have their room.
  */
 export async function expectSound(page: Page): Promise<void> {
   if (!(await page.evaluate(() => 'axe' in window))) await page.evaluate(axeSource);
@@ -53,6 +55,8 @@ export async function expectSound(page: Page): Promise<void> {
     () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
   );
   expect(overflow, `px that ${page.url()} is too wide`).toBeLessThanOrEqual(0);
+  const marked = await page.evaluate(() => 'scheme' in document.documentElement.dataset);
+  if (marked) expect(await page.evaluate(flawsInSight), `what does not fit on ${page.url()}`).toEqual([]);
 }
 
 async function expectSoundIn(page: Page, colorScheme: keyof typeof schemes, options: object): Promise<void> {

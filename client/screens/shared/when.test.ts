@@ -7,6 +7,7 @@ describe('shortInstant', () => {
 
   it('gives the time today, the day this year, the year before', () => {
     expect(shortInstant(at(2026, 2, 5), noon, 'en-GB')).toBe('09:05');
+    expect(shortInstant(at(2026, 2, 5), noon, 'en-US')).toBe('9:05\u00a0AM');
     expect(shortInstant(at(2026, 0, 31), noon, 'en-GB')).toBe('31 Jan 09:05');
     expect(shortInstant(at(2025, 11, 31), noon, 'en-GB')).toBe('31 Dec 2025');
   });

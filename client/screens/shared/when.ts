@@ -2,7 +2,8 @@
 export function shortInstant(instant: string, nowMs: number, locale?: string): string {
   const then = new Date(instant);
   const now = new Date(nowMs);
-  const time = then.toLocaleTimeString(locale, { timeStyle: 'short' });
+  // "1:47 PM" is one word.
+  const time = then.toLocaleTimeString(locale, { timeStyle: 'short' }).replace(/\s/g, '\u00a0');
   if (then.toDateString() === now.toDateString()) return time;
   const sameYear = then.getFullYear() === now.getFullYear();
   const day = then.toLocaleDateString(locale, {
