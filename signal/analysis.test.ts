@@ -1,10 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { analyse, createAnalyser } from '@/signal/analysis';
 import { defaultSettings } from '@/signal/model';
-import { sampled, testRig } from '@/signal/test-signals';
+import type { Filter } from '@/signal/model';
+import { normal, sampled, seeded, testRig } from '@/signal/test-signals';
 
 const rateHz = 10_000;
 const options = { rig: testRig('quadrature', 20), settings: defaultSettings, rateHz, channels: ['A', 'B'] };
+const lowpass: Filter = { kind: 'lowpass', family: 'butterworth', order: 4, cutoffHz: 800 };
 const volts = (n: number, from = 0): Float64Array[] =>
   [0, 0.25].map((shift) =>
     sampled(n, rateHz, (t) => 1.65 + Math.sin(2 * Math.PI * (200 * (t + from) - shift))),
@@ -56,6 +58,48 @@ describe('analysis of a capture', () => {
       made.value.push(part, part[0]!.length);
     }
     expect({ ok: true, value: made.value.finish() }).toEqual(whole);
+  });
+
+  it.each([
+    { kind: 'lowpass', family: 'butterworth', order: 4, cutoffHz: 800 },
+    { kind: 'highpass', family: 'butterworth', order: 2, cutoffHz: 1 },
+    { kind: 'notch', family: 'butterworth', order: 2, lowHz: 48, highHz: 52 },
+  ] as const)('nor where it is filtered both ways, bit for bit: $kind', (filter) => {
+    const noise = normal(seeded(4));
+    const codes = volts(150_000).map((array) =>
+      Int16Array.from(array, (v) => Math.round(1000 * (v + 0.05 * noise()))),
+    );
+    const pushedBy = (size: number) => {
+      const made = createAnalyser({ ...options, settings: { ...defaultSettings, filter }, zeroPhase: true });
+      if (!made.ok) throw new Error(made.issue.detail);
+      const push = (from: number, end: number): void => {
+        for (let at = from; at < end; at += size) {
+          const part = codes.map((array) => array.subarray(at, Math.min(at + size, end)));
+          made.value.push(part, part[0]!.length);
+        }
+      };
+      push(0, 100_000);
+      made.value.gap(1234, false);
+      push(100_000, 150_000);
+      return made.value.finish();
+    };
+    const whole = pushedBy(150_000);
+    expect(whole.gaps).toMatchObject([{ from: 10, lostSamples: 1234 }]);
+    expect(whole.pulses).toBeGreaterThan(2900);
+    for (const size of [777, 4096, 70_001]) expect(pushedBy(size)).toEqual(whole);
+  });
+
+  it('takes no gap of less than half a sample, nor one of no number', () => {
+    const zeroPhase = { ...options, settings: { ...defaultSettings, filter: lowpass }, zeroPhase: true };
+    for (const own of [options, zeroPhase]) {
+      const whole = analyse(own, [{ arrays: volts(20_000) }]);
+      const chunks = [0.4, NaN, -3, Infinity].map((lostSamples) => ({ lostSamples, estimated: false }));
+      const arrays = volts(20_000);
+      const parts = [0, 7000].map((at) => ({
+        arrays: arrays.map((one) => one.subarray(at, at === 0 ? 7000 : 20_000)),
+      }));
+      expect(analyse(own, [parts[0]!, ...chunks, parts[1]!])).toEqual(whole);
+    }
   });
 
   it('hands on what is wrong with the settings', () => {

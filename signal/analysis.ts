@@ -11,6 +11,7 @@ import { createPipeline } from '@/signal/pipeline';
 import { edgeLate, edgeRising } from '@/signal/pipeline-types';
 import type { DirectionChange, Pipeline, SetupIssue } from '@/signal/pipeline-types';
 import { memorySamples } from '@/signal/statistics/zero-phase';
+import { wholeGap } from '@/signal/ticks';
 
 export type AnalyserOptions = {
   rig: RigSetup;
@@ -26,6 +27,7 @@ export type AnalyserOptions = {
 export interface Analyser {
   /** `arrays[i]` belongs to `channels[i]`; the first `count` samples of each are taken. */
   push(arrays: readonly SampleArray[], count: number): void;
+  /** Samples that were lost; fewer than half of one, or no number of them, is no gap. */
   gap(lostSamples: number, estimated: boolean): void;
   /** Times are seconds from the capture's first sample; findings still open end with the capture. */
   finish(): Analysis;
@@ -131,6 +133,7 @@ class CaptureAnalyser implements Analyser {
   }
 
   gap(lostSamples: number, estimated: boolean): void {
+    if (wholeGap(lostSamples) === 0) return;
     this.feed?.end();
     this.pipeline.skip(lostSamples, estimated);
     this.take();

@@ -191,8 +191,11 @@ export interface Pipeline {
    * @param filtered the same in volts, filtered both ways; given always or never, as `bothWays` says.
    */
   process(arrays: readonly SampleArray[], count: number, filtered?: readonly Float64Array[]): void;
-  /** Samples that were lost: time runs on, filters are primed anew, the band's state is unknown. */
-  skip(lostSamples: number, estimated: boolean): void;
+  /**
+   * Samples that were lost: time runs on, filters are primed anew, the band's state is unknown. False, and nothing happens,
+   * where their number, rounded, is below 1, no number, or leads beyond the samples that can be numbered.
+   */
+  skip(lostSamples: number, estimated: boolean): boolean;
   /** For findings that samples alone cannot show. */
   note(note: BoardNote): void;
   /** The output since the last drain; valid until the next call of `process`, `skip` or `drain`. */

@@ -331,6 +331,18 @@ describe('gaps', () => {
     ]);
   });
 
+  it('of no whole number of samples are none: time stays, and nothing is logged', () => {
+    const pipeline = testPipeline(testRig('single', 24), 1000);
+    feed(pipeline, sampled(1000, 1000, wave(20)));
+    const before = pipeline.status();
+    for (const lost of [0.4, 0, -5, NaN, Infinity, -Infinity, 2 ** 60])
+      expect([lost, pipeline.skip(lost, false)]).toEqual([lost, false]);
+    expect(pipeline.output.gaps).toEqual([]);
+    expect(pipeline.status()).toEqual(before);
+    expect(pipeline.skip(49.6, false)).toBe(true);
+    expect(pipeline.output.gaps).toEqual([{ fromS: 1, toS: 1.05, lostSamples: 50, estimated: false }]);
+  });
+
   it('close the finding once no more follow', () => {
     const pipeline = testPipeline(testRig('single', 24), 1000);
     feed(pipeline, sampled(1000, 1000, wave(20)));

@@ -27,7 +27,7 @@ import { noiseBehind } from '@/signal/response';
 import { memorySamples } from '@/signal/statistics/zero-phase';
 import { statusOf } from '@/signal/status';
 import { shaftStatus } from '@/signal/status-shaft';
-import { samplesPerTick } from '@/signal/ticks';
+import { samplesPerTick, wholeGap } from '@/signal/ticks';
 import { neededRoles, validateSetup } from '@/signal/validate-setup';
 
 /**
@@ -155,18 +155,20 @@ class SignalPipeline implements Pipeline {
     }
   }
 
-  skip(lostSamples: number, estimated: boolean): void {
-    if (!(lostSamples > 0)) return;
+  skip(lostSamples: number, estimated: boolean): boolean {
+    const lost = wholeGap(lostSamples);
+    if (lost === 0 || !Number.isSafeInteger(this.nextAt + lost)) return false;
     const fromS = this.nextAt / this.rateHz;
-    this.nextAt += Math.round(lostSamples);
+    this.nextAt += lost;
     const toS = this.nextAt / this.rateHz;
     for (const path of this.paths) path.skipTo(this.nextAt);
     mergeEdges(this.lanes, this.motion);
     this.motion.gap(fromS, toS, this.nextAt);
-    const gap = { fromS, toS, lostSamples: Math.round(lostSamples), estimated };
+    const gap = { fromS, toS, lostSamples: lost, estimated };
     this.output.gaps.push(gap);
     this.desk.gap(gap);
     this.tap?.gap(this.motionNow());
+    return true;
   }
 
   note(note: BoardNote): void {
