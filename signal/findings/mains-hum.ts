@@ -3,7 +3,8 @@ import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
 import { besideTone, toneNear } from '@/signal/findings/hum-tone';
 import type { Tone } from '@/signal/findings/hum-tone';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { besideTeeth, fills, mirrorOf, mostAt } from '@/signal/findings/slow-lines';
+import { besideHarmonic, besideTeeth, fills, mirrorOf, mostAt } from '@/signal/findings/slow-lines';
+import { sizeAt } from '@/signal/findings/slow-spectrum';
 import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
 import type { SlowWheel } from '@/signal/findings/slow-wheel';
 
@@ -13,13 +14,15 @@ const opens = { found: 0.05, cannotTell: 0.08 };
 const opensSquared = { found: 0.1, cannotTell: 0.1 };
 const stays = { found: 0.03, cannotTell: 0.05 };
 const looksToOpen = 2;
+/** Beside a line of the teeth hum beats with it, and is hidden every now and then. */
+const mostUnseen = 1;
 /** Grids keep their frequency within 0.2 Hz; the rest is for what lies beside the tone and for its harmonics. */
 const reachHz = 0.35;
-const sameHz = 0.25;
+const sameHz = 0.35;
 /** A tone stands so many times above everything beside it. */
 const prominent = 2;
 /** As near as this to a multiple of the shaft's frequency the two cannot be told apart, Hz. */
-const onOrderHz = 0.25;
+const onOrderHz = 0.15;
 
 /** Orders up to this one are what run-out, an ellipse or a motor on the same shaft make; of a squared signal, any. */
 const lowOrders = 4;
@@ -30,6 +33,8 @@ type Judged = {
   latch: SizedLatch;
   /** Looks in a row at which a tone was seen, and its frequency at the last one. */
   seen: number;
+  /** Looks in a row at which it was not. */
+  unseen: number;
   seenHz: number;
   sinceS: number;
 };
@@ -53,6 +58,7 @@ export class MainsHumRule implements FindingRule {
       path: context.paths[index]!,
       latch: new SizedLatch(2),
       seen: 0,
+      unseen: 0,
       seenHz: NaN,
       sinceS: NaN,
     }));
@@ -73,9 +79,10 @@ export class MainsHumRule implements FindingRule {
     const { wheel } = spectrum;
     const sight = this.strongest(judged, spectrum);
     if (!sight) {
-      judged.seen = 0;
+      if (++judged.unseen > mostUnseen) judged.seen = 0;
       return;
     }
+    judged.unseen = 0;
     // Hum keeps its frequency from look to look; a peak of noise does not.
     judged.seen = Math.abs(sight.tone.hz - judged.seenHz) < sameHz ? judged.seen + 1 : 1;
     judged.seenHz = sight.tone.hz;
@@ -118,36 +125,83 @@ export class MainsHumRule implements FindingRule {
       for (let harmonic = 1; harmonic <= mostHarmonic; harmonic++) {
         const hz = harmonic * mainsHz;
         if (hz > spectra.nyquistHz - 4 * spectra.binHz) break;
-        const tone = toneNear(spectrum, spectra.binHz, hz, harmonic * reachHz);
-        if (!tone || !(tone.amplitudeV > stays.found * halfSwingV)) continue;
+        // Beside a stronger line hum need not be a peak of its own.
+        if (!(spectra.sizeNear(spectrum, hz) > stays.found * halfSwingV)) continue;
         spectra.suspected = true;
-        if (best && tone.amplitudeV <= best.tone.amplitudeV) continue;
-        const verdict = wheel.locate() ? this.verdict(judged, spectrum, tone) : 'nothing';
-        const limit = verdict === 'found' ? limits.found : limits.cannotTell;
-        if (verdict !== 'nothing' && tone.amplitudeV > limit * halfSwingV)
-          best = { tone, mainsHz, harmonic, verdict };
+        const sight = this.sightOf(judged, spectrum, mainsHz, harmonic);
+        // What was known to be hum does not become doubtful by a line of the teeth that passes another place.
+        if (latch.open?.outcome === 'found' && sight?.verdict !== 'found') continue;
+        const limit = sight?.verdict === 'found' ? limits.found : limits.cannotTell;
+        if (sight && sight.tone.amplitudeV > Math.max(limit * halfSwingV, best?.tone.amplitudeV ?? 0))
+          best = sight;
       }
     }
     return best;
+  }
+
+  /** Of the last second, or of the last two where one is too short to tell the tone from what the wheel has beside it. */
+  private sightOf(judged: Judged, spectrum: Spectrum, mainsHz: number, harmonic: number): Sight | null {
+    const { spectra } = this;
+    const hz = harmonic * mainsHz;
+    const reach = harmonic * reachHz;
+    const tone = toneNear(spectrum, spectra.binHz, hz, reach);
+    const { wheel } = spectrum;
+    if (!wheel.locate() || this.shakes(judged.path, wheel)) return null;
+    const verdict = tone ? this.verdict(judged, spectrum, tone) : 'nothing';
+    const sight = tone && verdict !== 'nothing' ? { tone, mainsHz, harmonic, verdict } : null;
+    if (wheel.toothHz === 0 || (verdict === 'found' && isFree(wheel, tone!))) return sight;
+    const longer = spectra.longerOf(spectrum);
+    // A wheel that changes its speed smears its lines over more bins there.
+    if (longer?.wheel.locate() && longer.wheel.spreadHz < 2 * longer.wheel.binHz) {
+      const other = toneNear(longer, longer.wheel.binHz, hz, reach);
+      // A hum that has gone stands there for a second more.
+      const hasGone = sight && other && sight.tone.amplitudeV < 0.6 * other.amplitudeV;
+      const closer = other && !hasGone ? this.verdict(judged, longer, other) : 'nothing';
+      if (other && closer !== 'nothing') return { tone: other, mainsHz, harmonic, verdict: closer };
+    }
+    return tone && besideHarmonic(wheel, tone.hz) && verdict === 'found' ? null : sight;
+  }
+
+  /** A shaft that shakes at the band as it stands makes pulses at its own pace, of all frequencies. */
+  private shakes({ channel }: ChannelPath, wheel: SlowWheel): boolean {
+    return channel.sensor.kind !== 'linear' && wheel.teeth > 0 && this.context.motion.state !== 'running';
   }
 
   private verdict(judged: Judged, spectrum: Spectrum, tone: Tone): Verdict {
     const { latch, path } = judged;
     const { wheel } = spectrum;
     const known = latch.open?.outcome === 'found' && Math.abs(judged.seenHz - tone.hz) < sameHz;
-    const beside = besideTone(spectrum, tone.bin, 3, 8, (bin) => fills(wheel, bin));
+    const beside = besideTone(
+      spectrum,
+      tone.bin,
+      3,
+      8,
+      (bin) => fills(wheel, bin) || this.isPaired(spectrum, bin),
+    );
     if (beside * (known ? 0.75 : 1) * prominent > tone.amplitudeV) return 'nothing';
     if (isAnImage(path.noiseV, besideTone(spectrum, tone.bin, 6, 10), tone)) return 'nothing';
     if (mostAt(wheel, tone.hz) > tone.amplitudeV)
       return looksLikeEdges(path, wheel, tone) ? 'edges' : 'nothing';
     if (known) return 'found';
-    if (3 * this.spectra.sizeNear(spectrum, mirrorOf(wheel, tone.hz)) > tone.amplitudeV) return 'nothing';
+    if (this.isSideBand(spectrum, tone)) return 'nothing';
     return this.onOrder(spectrum, tone, path.channel.sensor.kind === 'linear');
+  }
+
+  /** What the teeth have on either side of them is their own. */
+  private isPaired(spectrum: Spectrum, bin: number): boolean {
+    const { wheel } = spectrum;
+    const mirrorHz = mirrorOf(wheel, bin * wheel.binHz, 1);
+    return this.spectra.sizeNear(spectrum, mirrorHz) > 0.6 * sizeAt(spectrum, bin);
+  }
+
+  private isSideBand(spectrum: Spectrum, tone: Tone): boolean {
+    const { wheel } = spectrum;
+    return 3 * this.spectra.sizeNear(spectrum, mirrorOf(wheel, tone.hz)) > tone.amplitudeV;
   }
 
   private onOrder(spectrum: Spectrum, tone: Tone, linear: boolean): Verdict {
     const { wheel } = spectrum;
-    const { binHz } = this.spectra;
+    const { binHz } = wheel;
     // Closer rows of orders would stand beside the tone too.
     if (wheel.turnHz < 2 * binHz) return 'found';
     // What turns before or behind a gear has its own run-out.
@@ -158,14 +212,20 @@ export class MainsHumRule implements FindingRule {
     if (gearRatio !== 1 && isOfShaft && Math.abs(shaftOrder * shaftHz - tone.hz) < onOrderHz) return 'order';
     const order = Math.round(tone.hz / wheel.turnHz);
     const off = Math.abs(order * wheel.turnHz - tone.hz);
-    if (order > 0 && off < onOrderHz + (order * wheel.spreadHz) / wheel.positions) {
+    if (order > 0 && off < onOrderHz + (0.5 * order * wheel.spreadHz) / wheel.positions) {
       // A gap or a weak tooth makes a row of orders, each about as large as the next.
       const row = Math.max(orderSize(spectrum, order - 1, binHz), orderSize(spectrum, order + 1, binHz));
       if (3 * row > tone.amplitudeV) return 'nothing';
-      if (order <= lowOrders || !linear) return 'order';
+      // Where every second tooth is another, half the teeth come alone.
+      if (order <= lowOrders || !linear || (2 * order) % wheel.positions === 0) return 'order';
     }
     return besideTeeth(wheel, tone.hz, onOrderHz) ? 'order' : 'found';
   }
+}
+
+/** No line of the teeth is so near that it may be the tone, or beat with it. */
+function isFree(wheel: SlowWheel, { hz, amplitudeV }: Tone): boolean {
+  return !besideHarmonic(wheel, hz) && 2 * mostAt(wheel, hz) < amplitudeV;
 }
 
 /** Of an order of the wheel; 0 for the mean and for the teeth themselves. */

@@ -5,6 +5,8 @@
 import type { SlowWheel } from '@/signal/findings/slow-wheel';
 
 const harmonics = 60;
+/** Nearer to the teeth than this they themselves fill the place. */
+const mirrorBins = 3.5;
 /** Torque ripples with up to about so many times a turn. */
 const sideOrders = 10;
 
@@ -22,12 +24,13 @@ export function mostAt(wheel: SlowWheel, hz: number): number {
     const on = off < 2 * binHz + smearHz;
     // Beside the first ones stand the orders by which teeth differ; where they can be told apart, see `besideTeeth`.
     if (!on && !(h <= 2 && off < 3 * turnHz && turnHz < 2 * binHz)) continue;
-    const known = wheel.usual[h] ?? NaN;
+    const known = wheel.usualOf(h);
     let share: number;
     if (on && !Number.isNaN(known)) share = 0.03 + 1.5 * known * lobe(Math.max(0, off - smearHz) / binHz);
     // Of a trapezoid: 4 / (pi h) of a square wave, less beyond 1 / (pi flank).
     else share = ((on ? 2 : 0.5) * 1.27 * Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS))) / h;
-    most += (share * halfSwingV) / Math.max(1, smearHz / (2 * binHz));
+    // A line that is swept over so many bins has its power in all of them.
+    most += (share * halfSwingV) / Math.max(1, Math.sqrt(smearHz / (2 * binHz)));
   }
   return most;
 }
@@ -44,16 +47,22 @@ export function besideTeeth(wheel: SlowWheel, hz: number, offHz: number): boolea
   return false;
 }
 
+/** True where one of the first harmonics stands so near that a tone at `hz` cannot be held against its mirror image. */
+export function besideHarmonic({ toothHz, binHz }: SlowWheel, hz: number): boolean {
+  if (toothHz === 0) return false;
+  const harmonic = Math.round(hz / toothHz);
+  return harmonic > 0 && harmonic <= 3 && Math.abs(harmonic * toothHz - hz) < mirrorBins * binHz;
+}
+
 /**
  * Where the other side band of the teeth stands if a tone at `hz` is one, Hz: a speed that ripples with the turn, and teeth
- * that differ, make both alike. NaN where the tone is too far from the teeth for that.
+ * that differ, make both alike. NaN where the tone is too far from the teeth for that, or nearer than `bins`.
  */
-export function mirrorOf(wheel: SlowWheel, hz: number): number {
+export function mirrorOf(wheel: SlowWheel, hz: number, bins = mirrorBins): number {
   const { toothHz, turnHz, binHz } = wheel;
   const harmonic = Math.round(hz / toothHz);
   const off = Math.abs(harmonic * toothHz - hz);
-  // Nearer than this the teeth themselves fill the place.
-  const apart = off > 3.5 * binHz && off < sideOrders * turnHz + 2 * binHz;
+  const apart = off > bins * binHz && off < sideOrders * turnHz + 2 * binHz;
   return harmonic > 0 && harmonic <= 3 && apart ? 2 * harmonic * toothHz - hz : NaN;
 }
 

@@ -4,8 +4,12 @@ import { teethPerTurn } from '@/signal/findings/channel-finding';
 import type { RuleContext } from '@/signal/findings/rule';
 import { folded } from '@/signal/findings/slow-lines';
 import { firstSince, isEven, placesBetween, repeats, usualIntervalS } from '@/signal/findings/tooth-rows';
+import type { ToothLog } from '@/signal/tooth-log';
 
 const knownHarmonics = 12;
+/** Of the window. */
+const leastFilled = 0.8;
+const fewestInRow = 8;
 /** With more teeth than this in the window their harmonics are images, which say nothing of other speeds. */
 const mostTeeth = 600;
 
@@ -26,7 +30,10 @@ export class SlowWheel {
   flankS = 0;
   private isLocated: boolean | null = null;
   /** Usual size of the first harmonics over half the swing; NaN: not seen yet. */
-  readonly usual = new Float64Array(knownHarmonics + 1).fill(NaN);
+  private usual = new Float64Array(knownHarmonics + 1).fill(NaN);
+  /** The signal came to an end of its range in the window, where it may have been cut off: its harmonics are others. */
+  private isCut = false;
+  private readonly context: RuleContext;
   private readonly path: ChannelPath;
   private first = 0;
   private last = -1;
@@ -37,6 +44,7 @@ export class SlowWheel {
   readonly nyquistHz: number;
 
   constructor(context: RuleContext, path: ChannelPath, binHz: number, nyquistHz: number) {
+    this.context = context;
     this.path = path;
     this.turn = teethPerTurn(context, path);
     this.positions = context.rig.wheel.pulsesPerTurn;
@@ -47,14 +55,32 @@ export class SlowWheel {
 
   /** Takes the teeth of the window; their frequency is found when it is asked for. */
   read(fromS: number): void {
+    this.take(fromS);
+    this.learnSwing();
+  }
+
+  /** The same of a longer window; what is usual is known from the shorter ones. */
+  readLonger(fromS: number, { usual, halfSwingV, learnt }: SlowWheel): void {
+    this.take(fromS);
+    this.usual = usual;
+    this.halfSwingV = halfSwingV;
+    this.learnt = learnt;
+  }
+
+  private take(fromS: number): void {
     const { log } = this.path;
     this.last = log.count - 1;
     this.first = firstSince(log, fromS);
     this.toothHz = this.spreadHz = this.turnHz = 0;
     this.swingV = NaN;
     this.isLocated = null;
+    this.isCut = (this.path.rails?.lastAt ?? NaN) > fromS * this.context.rateHz;
     this.readFlanks(Math.max(this.first, this.last - 16), this.last);
-    this.learnSwing();
+  }
+
+  /** What harmonic `h` usually has, over half the swing; NaN where that is not known. */
+  usualOf(h: number): number {
+    return this.isCut ? NaN : (this.usual[h] ?? NaN);
   }
 
   /** Rising edges in the window. */
@@ -86,12 +112,13 @@ export class SlowWheel {
    */
   learnLines(sizeNear: (hz: number) => number): void {
     if (this.path.channel.sensor.kind !== 'linear') return;
-    if (this.teeth < 3 || this.teeth > mostTeeth || !this.locate()) return;
+    if (this.isCut || this.teeth < 3 || this.teeth > mostTeeth || !this.locate() || !this.fillsWindow())
+      return;
     const { usual, toothHz, spreadHz, binHz, nyquistHz, halfSwingV } = this;
     for (let h = 1; h <= knownHarmonics; h++) {
       const hz = folded(this, h * toothHz);
       if (h * spreadHz > binHz) return;
-      if (hz < 3 * binHz || hz > nyquistHz - 3 * binHz) continue;
+      if (hz < 3 * binHz || hz > nyquistHz - 3 * binHz || this.isHidden(h, hz)) continue;
       const share = sizeNear(hz) / halfSwingV;
       const before = usual[h]!;
       if (Number.isNaN(before)) usual[h] = share;
@@ -100,11 +127,30 @@ export class SlowWheel {
     }
   }
 
+  /** A shaft that began or ceased to turn in the window leaves less in it than the teeth have. */
+  private fillsWindow(): boolean {
+    const { first, last, binHz } = this;
+    const { riseS, mask } = this.path.log;
+    return (riseS[last & mask]! - riseS[first & mask]!) * binHz > leastFilled;
+  }
+
+  /** The image of a harmonic that falls upon a lower one says nothing of itself. */
+  private isHidden(h: number, hz: number): boolean {
+    const { toothHz, spreadHz, binHz, nyquistHz } = this;
+    if (h * toothHz < nyquistHz) return false;
+    for (let k = 1; k < h; k++) {
+      if (Math.abs(folded(this, k * toothHz) - hz) < 3 * binHz + h * spreadHz) return true;
+    }
+    return false;
+  }
+
   private place(): boolean {
     const { first, last, positions, turn } = this;
     const { log } = this.path;
     if (last - first < 2) return true;
     const usualS = usualIntervalS(log, first, last);
+    // Pulses that bounce come again each turn as well.
+    if (this.path.channel.sensor.kind !== 'linear' && bounces(log, first, last)) return false;
     const even = isEven(log, first, last, usualS);
     if (!even && !repeats(log, first, last, turn)) return false;
     const middle = (first + last) >> 1;
@@ -129,8 +175,16 @@ export class SlowWheel {
     const leastShare = kind !== 'linear' ? leastOfSupply.switching : isHum ? leastOfSupply.hum : 0;
     const leastV = Math.max(leastShare * (supplyV ?? 0), noiseV > 0 ? leastSigmas * noiseV : 0);
     if (!(this.swingV > leastV) || (this.learnt && isHum && this.swingV < this.halfSwingV)) return;
+    // What shakes at the band while the shaft stands is not the whole of a tooth.
+    if (this.learnt && this.swingV < this.halfSwingV && !this.areTeeth()) return;
     this.halfSwingV = this.swingV / 2;
     this.learnt = true;
+  }
+
+  /** So many in an even row that a wheel has made them. */
+  private areTeeth(): boolean {
+    const turns = this.context.motion.state === 'running';
+    return turns && this.teeth >= fewestInRow && this.fillsWindow() && this.locate();
   }
 
   private readFlanks(first: number, last: number): void {
@@ -145,6 +199,18 @@ export class SlowWheel {
     this.swingV = swing / (last - first);
     this.flankS = (((1.6 * this.swingV) / (operateV - releaseV)) * ways) / (last - first);
   }
+}
+
+/** One interval is so much shorter than the one before it, and a few of all are. */
+const bounce = { ratio: 0.25, share: 0.05 };
+
+function bounces({ riseS, mask }: ToothLog, first: number, last: number): boolean {
+  let short = 0;
+  for (let n = first + 1; n < last; n++) {
+    const beforeS = riseS[n & mask]! - riseS[(n - 1) & mask]!;
+    if (riseS[(n + 1) & mask]! - riseS[n & mask]! < bounce.ratio * beforeS) short++;
+  }
+  return short > bounce.share * (last - first);
 }
 
 /** Less swing than this, of the supply and in sigmas, is not of teeth. */
