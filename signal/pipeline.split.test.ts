@@ -1,7 +1,7 @@
 /** Splitting a stream into blocks anywhere changes no output, bit for bit. */
 import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import type { Filter, RigSetup, SampleArray, Settings } from '@/signal/model';
+import type { ChannelRole, Filter, RigSetup, SampleArray, Settings, WidthClass } from '@/signal/model';
 import { testChannel, testPipeline, testRig, normal, seeded } from '@/signal/test-signals';
 
 type Piece = { arrays: SampleArray[]; gapAfter: number };
@@ -65,11 +65,24 @@ const filters: Filter[] = [
   { kind: 'lowpass', family: 'bessel', order: 2, cutoffHz: 300 },
   { kind: 'highpass', family: 'butterworth', order: 6, cutoffHz: 5 },
   { kind: 'bandpass', family: 'butterworth', order: 6, lowHz: 10, highHz: 900 },
+  { kind: 'notch', family: 'butterworth', order: 2, lowHz: 48, highHz: 52 },
+];
+
+const rateHz = 4000;
+const pulsesPerTurn = 12;
+const ladder: WidthClass[] = [
+  { widthS: 0.001, means: 'weak' },
+  { widthS: 0.002, means: 'forward' },
+  { widthS: 0.004, means: 'reverse' },
 ];
 
 const anything = fc.record({
   seed: fc.nat(),
-  sensing: fc.constantFrom('single', 'quadrature', 'three-hall' as const),
+  sensing: fc.constantFrom('single', 'quadrature', 'three-hall', 'width-coded' as const),
+  gearRatio: fc.constantFrom(1, 1, 2.5, 0.4),
+  /** Channels beside those of the arrangement. */
+  beside: fc.subarray<ChannelRole>(['Z', 'aux']),
+  sensor: fc.constantFrom('linear', 'linear', 'switch', 'latch', 'omnipolar' as const),
   missing: fc.constantFrom(0, 0, 1, 2),
   type: fc.constantFrom('int16', 'float32', 'float64' as const),
   filter: fc.oneof(
@@ -89,36 +102,66 @@ const anything = fc.record({
   stops: fc.boolean(),
 });
 
+type Case = typeof anything extends fc.Arbitrary<infer T> ? T : never;
+
+function rigOf({ sensing, missing, gearRatio, beside, sensor }: Case): RigSetup {
+  const rig = testRig(sensing, pulsesPerTurn, sensing === 'single' ? missing : 0);
+  const roles = [...rig.channels.map(({ role }) => role), ...beside];
+  return {
+    ...rig,
+    wheel: { ...rig.wheel, gearRatio, widthClasses: sensing === 'width-coded' ? ladder : null },
+    channels: roles.map((role) => {
+      const channel = testChannel(role, role, { minCode: 0, maxCode: 2400 });
+      const kind = role === 'aux' ? 'linear' : sensor;
+      return { ...channel, sensor: { ...channel.sensor, kind } };
+    }),
+  };
+}
+
+/** What a channel shows of a shaft that has turned by so many positions and turns at so many a second, V. */
+function lineV(c: Case, role: ChannelRole, lane: number, positions: number, hz: number): number {
+  const inTurn = ((positions % pulsesPerTurn) + pulsesPerTurn) % pulsesPerTurn;
+  if (role === 'aux') return 1.2;
+  if (role === 'Z') return inTurn < 0.4 ? 2.2 : 0.3;
+  if (c.sensing === 'width-coded') {
+    const widthS = ladder[hz < 0 ? 2 : inTurn < 1 ? 0 : 1]!.widthS;
+    return (inTurn % 1) / Math.max(1, Math.abs(hz)) < widthS ? 2.2 : 0.3;
+  }
+  if (c.sensing === 'single' && inTurn >= pulsesPerTurn - c.missing) return 0.4;
+  const shift = c.sensing === 'three-hall' ? lane / 3 : lane / 4;
+  const swing = -Math.cos(2 * Math.PI * (positions - shift));
+  return c.sensor === 'linear' ? 1.6 + 1.2 * swing : swing > 0 ? 2.3 : 0.2;
+}
+
+function piecesOf(c: Case, rig: RigSetup): Piece[] {
+  const noise = normal(seeded(c.seed));
+  const total = c.lengths.reduce((sum, n, k) => sum + n + c.gaps[k]!, 0);
+  let at = 0;
+  return c.lengths.map((n, k): Piece => {
+    const arrays = rig.channels.map(({ role }, lane) => {
+      const volts = Float64Array.from({ length: n }, (_v, i) => {
+        const share = (at + i) / total;
+        const moving = c.stops ? Math.min(share, 0.4) : share;
+        const t = (moving * total) / rateHz;
+        const positions = c.startHz * t + ((c.endHz - c.startHz) * t * moving) / 2;
+        const hz = c.startHz + (c.endHz - c.startHz) * moving;
+        return lineV(c, role, lane, positions, hz) + c.noiseV * noise();
+      });
+      if (c.type === 'float64') return volts;
+      if (c.type === 'float32') return Float32Array.from(volts);
+      return Int16Array.from(volts, (v) => Math.min(2400, Math.max(0, Math.round(v * 1000))));
+    });
+    at += n + c.gaps[k]!;
+    return { arrays, gapAfter: c.gaps[k]! };
+  });
+}
+
 describe('any split gives the same', () => {
   it('edges, speed, direction, band, findings and status', () => {
     fc.assert(
       fc.property(anything, (c) => {
-        const rateHz = 4000;
-        const rig = testRig(c.sensing, 12, c.sensing === 'single' ? c.missing : 0);
-        rig.channels = rig.channels.map(({ name, role }) =>
-          testChannel(name, role, { minCode: 0, maxCode: 2400 }),
-        );
-        const noise = normal(seeded(c.seed));
-        const total = c.lengths.reduce((sum, n, k) => sum + n + c.gaps[k]!, 0);
-        let at = 0;
-        const pieces = c.lengths.map((n, k): Piece => {
-          const arrays = rig.channels.map((_, channel) => {
-            const shift = c.sensing === 'three-hall' ? channel / 3 : channel / 4;
-            const volts = Float64Array.from({ length: n }, (_v, i) => {
-              const share = (at + i) / total;
-              const moving = c.stops ? Math.min(share, 0.4) : share;
-              const t = (moving * total) / rateHz;
-              const cycles = c.startHz * t + ((c.endHz - c.startHz) * t * moving) / 2;
-              const gone = c.sensing === 'single' && ((Math.floor(cycles) % 12) + 12) % 12 >= 12 - c.missing;
-              return (gone ? 0.4 : 1.6 - 1.2 * Math.cos(2 * Math.PI * (cycles - shift))) + c.noiseV * noise();
-            });
-            if (c.type === 'float64') return volts;
-            if (c.type === 'float32') return Float32Array.from(volts);
-            return Int16Array.from(volts, (v) => Math.min(2400, Math.max(0, Math.round(v * 1000))));
-          });
-          at += n + c.gaps[k]!;
-          return { arrays, gapAfter: c.gaps[k]! };
-        });
+        const rig = rigOf(c);
+        const pieces = piecesOf(c, rig);
         const settings: Partial<Settings> = {
           filter: c.filter,
           band: c.fixed
@@ -131,7 +174,32 @@ describe('any split gives the same', () => {
           everything(rig, rateHz, settings, pieces, []),
         );
       }),
-      { numRuns: 150 },
+      { numRuns: 200 },
     );
-  }, 120_000);
+  }, 240_000);
+
+  it('for each of the things that a rig may have', () => {
+    // What the random rigs are made of is really drawn, and a rig of it is one that a pipeline takes and sees edges of.
+    const sample = fc.sample(anything, { numRuns: 200, seed: 1 });
+    const has = (test: (c: Case) => boolean) => sample.filter(test).length;
+    for (const sensing of ['single', 'quadrature', 'three-hall', 'width-coded'])
+      expect(has((c) => c.sensing === sensing)).toBeGreaterThan(20);
+    for (const role of ['Z', 'aux'] as const) expect(has((c) => c.beside.includes(role))).toBeGreaterThan(20);
+    expect(has((c) => c.sensor !== 'linear' && c.sensing === 'single')).toBeGreaterThan(5);
+    const turning = { ...sample.find((c) => c.sensing === 'width-coded')!, startHz: 50, endHz: 60 } as Case;
+    const full = {
+      ...turning,
+      noiseV: 0,
+      stops: false,
+      lengths: [8000],
+      type: 'float64',
+      beside: ['Z', 'aux'],
+    };
+    const rig = rigOf(full as Case);
+    const pipeline = testPipeline(rig, rateHz, {});
+    const [{ arrays }] = piecesOf(full as Case, rig) as [Piece];
+    pipeline.process(arrays, arrays[0]!.length);
+    expect(pipeline.output.edges[0]!.count).toBeGreaterThan(150);
+    expect(pipeline.status()).toMatchObject({ direction: 'forward' });
+  });
 });
