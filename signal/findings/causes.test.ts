@@ -29,6 +29,20 @@ describe('what follows from what', () => {
     expect(causeOf(flip, [finding('clipping')])).toBeNull();
   });
 
+  it('takes the one that was there first where each may follow from the other', () => {
+    const skips = finding('illegal-state', { channel: null });
+    const weak = finding('weak-swing');
+    expect(causeOf(skips, [weak])).toBe('weak-swing');
+    // Said a little later it may have come first; much later it did not.
+    expect(causeOf(skips, [finding('weak-swing', { from: 11.5 })])).toBe('weak-swing');
+    const later = finding('weak-swing', { from: 13 });
+    expect(causeOf(skips, [later])).toBeNull();
+    expect(causeOf(later, [skips])).toBe('illegal-state');
+    const ripple = finding('supply-ripple', { channel: null, from: 11 });
+    for (const code of ['phase-error', 'illegal-state', 'direction-flip'] as const)
+      expect(causeOf(finding(code), [ripple])).toBe('supply-ripple');
+  });
+
   it('leaves channels apart, and takes nothing for a cause that cannot be told', () => {
     const shift = finding('duty-shift');
     expect(causeOf(shift, [finding('offset-drift')])).toBe('offset-drift');

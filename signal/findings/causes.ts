@@ -15,6 +15,7 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
     'near-alias',
     'edge-bounce',
     'standstill-chatter',
+    'supply-ripple',
     'lost-samples',
   ],
   'illegal-state': [
@@ -25,6 +26,7 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
     'phase-error',
     'weak-swing',
     'standstill-chatter',
+    'supply-ripple',
     'lost-samples',
   ],
   'near-alias': ['standstill-chatter', 'dead-channel', 'mains-hum'],
@@ -36,12 +38,21 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
   'slow-edge': ['near-alias', 'weak-swing', 'mains-hum', 'supply-ripple', 'standstill-chatter'],
   'uneven-teeth': ['missing-tooth', 'extra-pulse', 'edge-bounce', 'run-out', 'wrong-count'],
   'run-out': ['missing-tooth', 'extra-pulse', 'supply-ripple', 'wrong-count'],
-  'weak-swing': ['standstill-chatter', 'inverted-channel', 'run-out', 'clipping', 'supply-ripple'],
+  'weak-swing': [
+    'standstill-chatter',
+    'inverted-channel',
+    'run-out',
+    'clipping',
+    'supply-ripple',
+    'illegal-state',
+  ],
   'dead-channel': ['weak-swing'],
   clipping: ['offset-drift', 'supply-ripple'],
-  'phase-error': ['dead-channel', 'inverted-channel', 'duty-shift'],
+  'phase-error': ['dead-channel', 'inverted-channel', 'duty-shift', 'supply-ripple'],
   'standstill-chatter': ['mains-hum', 'supply-ripple'],
   'mains-hum': ['supply-ripple'],
+  // Channels that stand still together now and then move in common.
+  'supply-ripple': ['illegal-state'],
   'offset-drift': ['inverted-channel', 'supply-ripple'],
   'lost-samples': ['board-restart'],
 };
@@ -61,6 +72,8 @@ export function causeOf(finding: Finding, others: readonly Finding[]): FindingCo
     if (other.to !== null && other.to < finding.from - reachS) continue;
     if (other.channel !== null && finding.channel !== null && other.channel !== finding.channel) continue;
     if (other.outcome === 'cannot-tell' || followsFrom(other, finding.code, others)) continue;
+    // Where each may follow from the other, the one that was there first is the cause.
+    if (causesOf[other.code]?.includes(finding.code) && other.from > finding.from + reachS) continue;
     const rank = causes.indexOf(other.code);
     if (rank >= 0 && rank < best) best = rank;
   }

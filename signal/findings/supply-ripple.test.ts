@@ -56,6 +56,21 @@ describe('supply ripple', () => {
     expect(evidence.channels).toBe('A, B');
   });
 
+  it('is found where it is slow beside quick teeth, nearly in step with the turns, and beside teeth near the mains', () => {
+    for (const [hz, share, turnsAt] of [
+      [1.6, 0.08, (t: number) => 18 * t],
+      // The speed falls by a quarter meanwhile.
+      [4.2, 0.12, (t: number) => 9 * t - 0.19 * Math.max(0, t - 2) ** 2],
+      // 51 teeth a second, and so near the mains that their own side bands lie on them.
+      [1.7, 0.12, (t: number) => 2.125 * t],
+      [4, 0.12, (t: number) => 1.92 * t],
+    ] as const) {
+      const found = only(ripples(turnsAt, sine(hz, share, 3.3)));
+      expect(found, `${hz} Hz`).toHaveLength(1);
+      expect(found[0]!.openedS, `${hz} Hz`).toBeLessThan(3.3 + Math.max(2.1, 4 / hz));
+    }
+  });
+
   it('is found at rest', () => {
     const shaft = (t: number): number => Math.min(5 * t, 10.3);
     const found = only(ripples(shaft, sine(100, 0.05, 4)));

@@ -11,6 +11,8 @@ import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
 const opensAt = 0.04;
 const staysAt = 0.025;
 const looksToOpen = 2;
+/** Between two looks, bins. */
+const sameTone = 2;
 /** A line counts from here on, and above so many times the noise of a bin. */
 const leastLine = 0.01;
 const aboveNoise = 5;
@@ -23,7 +25,8 @@ const fewestHalfSwings = 3;
 /** The wheel must keep its speed for the window. */
 const mostSpread = 0.03;
 
-type Ripple = { amplitudeV: number; hz: number; correlation: number };
+/** `isTone`: a line of the spectrum, whose frequency is known well. */
+type Ripple = { amplitudeV: number; hz: number; correlation: number; isTone?: boolean };
 type Line = { bin: number; power: number; correlation: number };
 
 /**
@@ -38,6 +41,8 @@ export class SupplyRippleRule implements FindingRule {
   private readonly pair: readonly Spectrum[];
   private seen = 0;
   private sinceS = NaN;
+  /** Frequency at the look before, where it was a tone; NaN: it was none. */
+  private toneHz = NaN;
   /** When hum was last in the spectrum; the teeth's window is longer than that. */
   private humS = -Infinity;
 
@@ -69,6 +74,9 @@ export class SupplyRippleRule implements FindingRule {
       this.seen = 0;
       return;
     }
+    // What jumps from one tone to another is none of a supply: a line where inputs stick, or a speed that changes.
+    if (ripple.isTone && Math.abs(ripple.hz - this.toneHz) > sameTone * spectra.binHz) this.seen = 0;
+    this.toneHz = ripple.isTone ? ripple.hz : NaN;
     if (++this.seen === 1) this.sinceS = (spectra.fromS + spectra.toS) / 2;
     if (!latch.open && this.seen < looksToOpen) return;
     const { paths } = this.context;
@@ -94,7 +102,7 @@ export class SupplyRippleRule implements FindingRule {
     if (!(amplitudeV > staysAt * halfSwingV)) return null;
     const { bin, correlation } = lines.reduce((best, line) => (line.power > best.power ? line : best));
     const hz = toneNear(a, binHz, bin * binHz, 1.5 * binHz)?.hz ?? bin * binHz;
-    return { amplitudeV, hz, correlation };
+    return { amplitudeV, hz, correlation, isTone: true };
   }
 
   /** Slower than the teeth; a hum that both pick up would be seen there as what it beats with the teeth. */
@@ -112,10 +120,18 @@ export class SupplyRippleRule implements FindingRule {
     return ripple.halfSwings < fewestHalfSwings ? null : ripple;
   }
 
+  /**
+   * Whether mains hum may be what moves the middles. It moves a peak and the trough half a tooth later each its own way, and
+   * the middle by what they have in common: near the frequency of the teeth next to nothing, and there teeth look like hum.
+   */
   private hums(a: Spectrum, rippleV: number): boolean {
+    const { wheel } = a;
+    const { binHz } = this.spectra;
     return [50, 60].some((hz) => {
-      const tone = toneNear(a, this.spectra.binHz, hz, 1);
-      return tone !== null && tone.amplitudeV > rippleV / 2 && !(mostAt(a.wheel, tone.hz) > tone.amplitudeV);
+      if (Math.abs(wheel.toothHz - hz) < 3.5 * binHz + wheel.spreadHz) return false;
+      const tone = toneNear(a, binHz, hz, 1);
+      if (!tone || mostAt(wheel, tone.hz) > tone.amplitudeV) return false;
+      return tone.amplitudeV * Math.abs(Math.cos((Math.PI * hz) / (2 * wheel.toothHz))) > rippleV / 2;
     });
   }
 
