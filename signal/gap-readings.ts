@@ -3,13 +3,18 @@
  * position or several (teeth that did not show, the gap, both), or end at a pulse that is no tooth, or begin at one.
  *
  * The misfit of a reading is in ln of time: against the mean pitch of both neighbours, and, weighing half, against the
- * pitch that the trend before it leads to; each fault that it presumes costs something on top.
+ * pitch that the trend before it leads to; each fault that it presumes costs something on top. A brake makes each pitch longer
+ * by a larger ratio than the one before, up to a stop or to the speed that it leaves: where the pitches before tell of one,
+ * it explains whatever an even deceleration would make, and any pitch between its neighbours.
  */
 import type { GapSync } from '@/signal/gap-sync';
 
 const trendWeight = 0.5;
 /** A shaft does not change its speed by more from one position to the next, in ln. */
 const steepestTrend = 0.3;
+/** A brake begins with so much more time for a position; it may grip by so many times more than it did, teeth being off. */
+const leastBraked = 1.1;
+const harder = 1.75;
 const missedCost = 0.05;
 const extraCost = 0.18;
 const mostMissed = 2;
@@ -36,8 +41,11 @@ export function bestReading(sync: GapSync, waitingS: number): number {
   /** Of `spans` positions where the next interval spans `nextSpans`. */
   const misfit = (spans: number, nextSpans: number): number => {
     const lnPitch = lnWaiting - Math.log(spans);
-    const level = (lnBefore + lnNext - Math.log(nextSpans)) / 2;
-    return Math.abs(lnPitch - level) + trendWeight * offTrend(lnPitch - lnBefore, (trend * (spans + 1)) / 2);
+    const lnAfter = lnNext - Math.log(nextSpans);
+    const braked = lnBraked(sync, spans);
+    const off = Math.abs(lnPitch - (lnBefore + lnAfter) / 2);
+    const level = braked > 0 ? Math.max(0, off - Math.abs(lnAfter - lnBefore) / 2) : off;
+    return level + trendWeight * offTrend(lnPitch - lnBefore, Math.max(braked, (trend * (spans + 1)) / 2));
   };
 
   let best = 1;
@@ -74,6 +82,22 @@ export function bestReading(sync: GapSync, waitingS: number): number {
   }
   sync.uncountable = least <= worstFit ? null : waitingS > beforeS ? 'timeout' : 'extra-tooth';
   return sync.uncountable ? 1 : best;
+}
+
+/**
+ * By how much, in ln, an even deceleration as before would make the mean of the next `spans` pitches longer than the last one;
+ * Infinity where the shaft would stand before they are over; 0: it was not braked.
+ *
+ * With v the speed at the end of the last pitch and a the deceleration, n positions take (v - sqrt(v^2 - 2 a n)) / a.
+ */
+function lnBraked({ perPositionS: beforeS, olderS, lastSpans }: GapSync, spans: number): number {
+  if (!(beforeS > leastBraked * olderS)) return 0;
+  const lastS = beforeS * lastSpans;
+  const lost = (2 * harder * (1 / olderS - 1 / beforeS)) / (olderS + lastS);
+  const speed = 1 / beforeS - (lost * lastS) / 2;
+  const square = speed * speed - 2 * lost * spans;
+  if (speed < 0 || square < 0) return Infinity;
+  return Math.log((speed - Math.sqrt(square)) / (lost * spans * beforeS));
 }
 
 /** How far a change of pitch, in ln, lies outside of what a steady shaft and one that goes on as before would make. */

@@ -1,41 +1,9 @@
 import { describe, expect, it } from 'vitest';
-import { judgeInterval, judgeWaiting } from '@/signal/gap-judge';
-import { noGapAhead } from '@/signal/gap-proof';
-import { createGapSync, loseSync, moveOn, resetSync } from '@/signal/gap-sync';
-import type { GapSync, SyncLoss, SyncState } from '@/signal/gap-sync';
+import { loseSync, resetSync } from '@/signal/gap-sync';
+import type { SyncLoss, SyncState } from '@/signal/gap-sync';
+import { drive, lossesOf, wrongOf } from '@/signal/test-gaps';
+import type { Driven, Pulse } from '@/signal/test-gaps';
 import { normal, seeded } from '@/signal/test-signals';
-
-type Pulse = { t: number; place: number; extra: boolean };
-type Step = { pulse: Pulse; state: SyncState; position: number };
-/** `nearAfter`: after each pulse but the first, whether no gap can come next. */
-type Driven = { sync: GapSync; steps: Step[]; positions: number; nearAfter: boolean[] };
-
-/** Teeth one after another, in the order in which the tooth train asks. */
-function drive(positions: number, missing: number, pulses: readonly Pulse[]): Driven {
-  const sync = createGapSync(positions, missing);
-  const steps: Step[] = [];
-  const nearAfter: boolean[] = [];
-  let extraPositions = 0;
-  let waiting: Pulse | null = null;
-  const place = (pulse: Pulse, spans: number): void => {
-    extraPositions += moveOn(sync, spans);
-    steps.push({ pulse, state: sync.state, position: sync.position });
-  };
-  pulses.slice(1).forEach((pulse, k) => {
-    sync.intervalS = pulse.t - pulses[k]!.t;
-    if (waiting) {
-      const spans = judgeWaiting(sync);
-      if (spans === 0) extraPositions--;
-      else place(waiting, spans);
-      waiting = null;
-    }
-    const spans = judgeInterval(sync);
-    if (spans > 0) place(pulse, spans);
-    else waiting = pulse;
-    nearAfter.push(noGapAhead(sync));
-  });
-  return { sync, steps, positions: pulses.length - 1 + extraPositions, nearAfter };
-}
 
 type Fault =
   | { kind: 'none' }
@@ -80,13 +48,6 @@ const wheels: [number, number][] = [
   [12, 1],
   [4, 1],
 ];
-const lossesOf = ({ sync }: Driven): number => Object.values(sync.losses).reduce((sum, n) => sum + n, 0);
-/** Said to be in sync, but at another position. */
-const wrongOf = ({ steps, sync }: Driven): Step[] =>
-  steps.filter(
-    ({ pulse, state, position }) =>
-      state === 'synced' && !pulse.extra && position !== pulse.place % sync.positions,
-  );
 
 describe.each(wheels)('a wheel of %i - %i', (n, missing) => {
   const many = (count: number, run: (random: () => number, seed: number) => Driven): Driven[] => {
@@ -255,80 +216,5 @@ describe('a wheel set up wrongly', () => {
   it('with two gaps of the same width a turn is not in sync: which one is meant cannot be told', () => {
     const pulses = steady(36, 1, 8).filter(({ place }) => place % 36 !== 20);
     expect(drive(36, 1, pulses).sync.state).not.toBe('synced');
-  });
-});
-
-describe('silence', () => {
-  it('may hide the gap unless sync says that none is due', () => {
-    const { sync } = drive(
-      12,
-      1,
-      [0, 1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 12].map((t) => ({ t, place: t, extra: false })),
-    );
-    expect(noGapAhead(sync)).toBe(false);
-    const synced = Array.from({ length: 30 }, (_, t) => ({ t, place: t, extra: false })).filter(
-      ({ place }) => place % 12 < 11,
-    );
-    expect(noGapAhead(drive(12, 1, synced).sync)).toBe(true);
-    expect(
-      noGapAhead(
-        drive(
-          12,
-          1,
-          synced.filter(({ place }) => place <= 22),
-        ).sync,
-      ),
-    ).toBe(false);
-    expect(noGapAhead(createGapSync(12, 0))).toBe(true);
-  });
-
-  /** At one position a second, from `brakeAt` on braked evenly within `brakeS` to a twentieth; teeth are off by 2 %, rms. */
-  const braked = (n: number, missing: number, brakeAt: number, brakeS: number, seed: number): Pulse[] => {
-    const noise = normal(seeded(seed));
-    const slow = 1 / 20;
-    const slope = (1 - slow) / brakeS;
-    const way = brakeS * (1 - (slope * brakeS) / 2);
-    const timeOf = (place: number): number => {
-      const past = place - brakeAt;
-      if (past <= 0) return place;
-      if (past >= way) return brakeAt + brakeS + (past - way) / slow;
-      return brakeAt + (1 - Math.sqrt(1 - 2 * slope * past)) / slope;
-    };
-    return Array.from({ length: 9 * n }, (_, place) => ({ place, extra: false }))
-      .filter(({ place }) => place % n < n - missing)
-      .map(({ place, extra }) => ({ t: timeOf(place + 0.02 * noise()), place, extra }));
-  };
-  const brakes = (n: number, missing: number): { pulses: Pulse[]; nearAfter: boolean[] }[] =>
-    Array.from({ length: 400 }, (_, seed) => {
-      const pulses = braked(n, missing, 2.5 * n + (seed * n) / 400, 8 + (seed % 25), seed);
-      return { pulses, nearAfter: drive(n, missing, pulses).nearAfter };
-    });
-
-  it.each([
-    [36, 1],
-    [60, 2],
-    [12, 1],
-  ])(
-    'on a wheel of %i - %i may hide the gap wherever that could be, once the shaft was braked hard',
-    (n, missing) => {
-      for (const { pulses, nearAfter } of brakes(n, missing)) {
-        nearAfter.slice(0, -1).forEach((isNear, k) => {
-          if (isNear) expect(pulses[k + 2]!.place - pulses[k + 1]!.place).toBe(1);
-        });
-        // Steady before and long after: the place is known but for the last tooth.
-        const share = nearAfter.slice(-n).filter(Boolean).length / n;
-        expect(share).toBeGreaterThan(1 - (missing + 3) / n);
-      }
-    },
-  );
-
-  it('hides no more than one position on a wheel that lost a tooth, once that is known', () => {
-    const pulses = braked(36, 1, 1000, 1, 5).filter(({ place }) => place < 80 || place % 36 !== 12);
-    const { nearAfter } = drive(36, 1, pulses);
-    // From the gap up to the place of the tooth that is not there.
-    for (let turn = 4; turn < 6; turn++) {
-      const begin = pulses.findIndex(({ place }) => place === 36 * turn);
-      expect(nearAfter.slice(begin - 1, begin + 9)).toEqual(new Array(10).fill(true));
-    }
   });
 });
