@@ -8,7 +8,7 @@ const regularTo = 1.4;
 /** How far from a whole number of pitches one, and a stretch of more, may be. */
 const offSingle = 0.35;
 const offStretch = 0.25;
-const offPerPitch = 0.08;
+const offPerPitch = 0.06;
 const offAtMost = 0.45;
 /** Longer silence is a shaft that paused: more teeth in a row do not go missing. */
 export const mostEmpty = 3;

@@ -46,6 +46,17 @@ export const wheelWords = {
           : 'Look at that tooth or magnet: it stands out, or the others have lost strength.',
       };
     }
+    if (evidence.flank === 'falling') {
+      const off = `${short(Math.abs(Number(evidence.offPercent)))} % of a pitch`;
+      return {
+        message:
+          evidence.pattern === 'every second tooth'
+            ? `Every second tooth has its falling edge off its place by ${off}, so short and long teeth alternate on channel ${channel}.`
+            : `${tooth(evidence)} has its falling edge ${off} off its place on channel ${channel}${others(evidence)}, turn after turn.`,
+        remedy:
+          'Look for teeth or poles of unequal width; the speed comes from rising edges, which stand well, and only what counts both edges sees uneven steps.',
+      };
+    }
     return {
       message:
         evidence.pattern === 'every second tooth'

@@ -47,6 +47,34 @@ describe('uneven teeth', () => {
   });
 
   it.each([
+    [24, 0, 'single teeth', (k: number) => (k === 7 ? 0.13 : 0)],
+    [36, 1, 'single teeth', (k: number) => (k === 7 ? -0.13 : 0)],
+    [24, 0, 'every second tooth', (k: number) => (k % 2 === 0 ? 0.08 : -0.08)],
+  ] as const)(
+    'are found by falling edges alone, %d teeth with %d missing, %s',
+    (positions, missing, pattern, longer) => {
+      const volts = (t: number) => {
+        const place = (10 * t * positions) % positions;
+        const k = Math.floor(place);
+        const isTooth = k < positions - missing && place - k < 0.5 + (t > 2 && t < 5 ? longer(k) : 0);
+        return isTooth ? 3 : 0.3;
+      };
+      const [finding, ...more] = uneven(testRig('single', positions, missing), 10, volts);
+      expect(more).toEqual([]);
+      expect(finding).toMatchObject({ outcome: 'found', evidence: { pattern, flank: 'falling' } });
+      if (pattern === 'single teeth') {
+        expect(Math.abs(Number(finding!.evidence.offPercent))).toBeGreaterThan(9);
+        expect(Math.abs(Number(finding!.evidence.offPercent))).toBeLessThan(14);
+      }
+      if (missing > 0) expect(finding!.evidence.position).toBe(7);
+      expect(finding!.openedS).toBeGreaterThan(2.2);
+      expect(finding!.openedS).toBeLessThan(4.5);
+      expect(finding!.to!).toBeLessThan(8);
+      expect(finding!.message).toContain('falling edge');
+    },
+  );
+
+  it.each([
     [0.5, -50],
     [1.6, 60],
   ])('are found by a swing of their own, %d times the others', (strength, percent) => {

@@ -1,9 +1,11 @@
+import { FallingFlanks } from '@/signal/findings/falling-flanks';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { meanOf, numberingOf, ofTeethThere, rangeOf, WheelLook } from '@/signal/findings/wheel-look';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import { memoryWorth } from '@/signal/wheel-spacing';
+import type { WheelSpacing } from '@/signal/wheel-spacing';
 import type { WheelFaceMeter } from '@/signal/wheel-face-meter';
 import { middleMagnitude, WheelOrders } from '@/signal/wheel-orders';
 import { displaced, patternOf, roughness, slowWave } from '@/signal/wheel-unevenness';
@@ -19,7 +21,7 @@ const steadySwing = 0.1;
 const steadyMean = 0.05;
 const stays = 0.8;
 /** On a wheel that is a little rough all round, a tooth must stand out by so many rms; on a very rough one none need. */
-const standsOut = 5.5;
+const standsOut = 6;
 const roughAllRound = 0.03;
 /** Significance: so many standard errors of the mean over turns. */
 const significant = 5;
@@ -30,16 +32,19 @@ const mostApart = 0.4;
 /** Where all teeth lie within so small a part of a limit, no single one stands out by it. */
 const plain = 0.6;
 
+type Flanks = Pick<WheelSpacing, 'turns' | 'step' | 'stepVariance'>;
 type Verdict = Pick<Finding, 'severity' | 'outcome' | 'at' | 'evidence'>;
 
 /**
  * Certain teeth stand off their places, or show a swing of their own, turn after turn. What the shaft's sway or an
- * eccentric wheel could make too, a slow wave over the turn, is taken out first: that is run-out's.
+ * eccentric wheel could make too, a slow wave over the turn, is taken out first: that is run-out's. Rising flanks are judged,
+ * which the speed comes from, and where those stand well the falling ones.
  */
 export class UnevenTeethRule implements FindingRule {
   readonly latches = [new FindingLatch(2)];
   private readonly context: RuleContext;
   private readonly look: WheelLook;
+  private readonly falls: FallingFlanks | null = null;
   private readonly steps: WheelOrders | null = null;
   private readonly swings: WheelOrders | null = null;
   private readonly scratch: Float64Array | null = null;
@@ -57,6 +62,7 @@ export class UnevenTeethRule implements FindingRule {
     const positions = face?.positions ?? 0;
     this.orders = Math.min(mostOrders, Math.floor(positions / positionsPerOrder));
     if (!face || face.positions < 3) return;
+    this.falls = new FallingFlanks(face, context.paths[context.primary]!.log);
     this.steps = new WheelOrders(face.positions, this.orders);
     this.swings = new WheelOrders(face.positions, 1);
     this.scratch = new Float64Array(face.positions);
@@ -89,38 +95,43 @@ export class UnevenTeethRule implements FindingRule {
   }
 
   private judge(face: WheelFaceMeter, isOpen: boolean): Verdict | null {
-    const { steps, swings } = this;
-    if (!steps || !swings || face.turns < turnsNeeded) return null;
+    const { falls, steps, swings } = this;
+    if (!falls || !steps || !swings) return null;
+    falls.look();
+    if (face.turns < turnsNeeded) return null;
     const easier = isOpen ? stays : 1;
-    const spacing = this.bySpacing(face, steps, easier);
+    const spacing =
+      this.bySpacing(face, face.spacing, steps, easier) ?? this.bySpacing(face, falls, steps, easier);
     const swing = this.bySwing(face, swings, easier);
     // The flanks of a weak tooth cross the band late and early: it seems off its place too.
     const isAside = spacing && swing && !isNear(spacing, swing, face.positions);
     return isAside ? spacing : (swing ?? spacing);
   }
 
-  private bySpacing(face: WheelFaceMeter, steps: WheelOrders, easier: number): Verdict | null {
-    if (face.spacing.turns < turnsNeeded) return null;
+  private bySpacing(face: WheelFaceMeter, by: Flanks, steps: WheelOrders, easier: number): Verdict | null {
+    if (by.turns < turnsNeeded) return null;
     const { positions } = face;
-    const { least, most } = rangeOf(face.spacing.step);
+    const { least, most } = rangeOf(by.step);
     if (most - least < easier * offShare * plain) return null;
-    const values = ofTeethThere(face.spacing.step, face, this.scratch!);
+    const values = ofTeethThere(by.step, face, this.scratch!);
     // The first tooth after the gap comes early or late by what sensor and filter make of the gap.
     if (face.missing > 0) values[1] = NaN;
     steps.fit(values, this.orders);
     const { left } = steps;
     const isRough = Math.sqrt(steps.leftVariance) > roughAllRound;
-    // Teeth that stand out must not bend the wave that is taken out of the others.
+    const roughBefore = roughness(left, this.sorting!);
+    // Teeth that stand out must not bend the wave that is taken out of the others, which then leaves less of those than there is.
     if (this.setApart(left)) steps.fit(values, this.orders, this.apart);
-    const rough = roughness(left, this.sorting!);
+    const rough = Math.max(roughBefore, roughness(left, this.sorting!));
     const limit = easier * (isRough ? offShare : Math.max(offShare, standsOut * rough));
-    const grid = this.gridShare();
+    const isFalling = by !== face.spacing;
+    const grid = isFalling ? this.sampleShare : this.gridShare();
     let worstStep = 0;
     for (let k = 0; k < positions; k++) {
       const off = Math.abs(left[k]!);
       // A step that scatters less than the sample grid makes it has always been sampled alike: it is known to a sample only.
-      if (off < 1.25 * grid && face.spacing.stepVariance[k]! < (grid * grid) / 12) continue;
-      const error = Math.sqrt(face.spacing.stepVariance[k]! / memoryWorth);
+      if (off < 1.25 * grid && by.stepVariance[k]! < (grid * grid) / 12) continue;
+      const error = Math.sqrt(by.stepVariance[k]! / memoryWorth);
       if (off > limit && off > significant * error && off > worstStep) worstStep = off;
     }
     if (worstStep === 0) return null;
@@ -136,9 +147,12 @@ export class UnevenTeethRule implements FindingRule {
       teeth,
       pattern: pattern.name,
       ...(pattern.order > 0 && { order: pattern.order }),
-      turns: face.spacing.turns,
+      turns: by.turns,
+      ...(isFalling && { flank: 'falling' }),
     };
     const isUnsure = pattern.name === 'one order' || (this.orders === 0 && slowWave(steps));
+    // A shaft that sways moves rising flanks too: a wave of falling ones alone is what the swing does to them.
+    if (isUnsure && isFalling) return null;
     return {
       severity: isUnsure ? 'note' : worstStep > faultShare ? 'fault' : 'warn',
       outcome: isUnsure ? 'cannot-tell' : 'found',
@@ -149,10 +163,16 @@ export class UnevenTeethRule implements FindingRule {
 
   /** A sample as a share of the pitch, where flanks are so steep that the instant of an edge is known to a sample only; else 0. */
   private gridShare(): number {
-    const { rateHz, paths, primary, motion } = this.context;
+    const { rateHz, paths, primary } = this.context;
     const { log } = paths[primary]!;
     const sigma = log.sigmaS[(log.count - 1) & log.mask]! * rateHz;
-    return sigma > 0.28 && sigma < 0.45 ? 1 / (rateHz * motion.train.placer.tracker.pitchS) : 0;
+    return sigma > 0.28 && sigma < 0.45 ? this.sampleShare : 0;
+  }
+
+  /** Of the pitch. How steep falling flanks are is not known. */
+  private get sampleShare(): number {
+    const { rateHz, motion } = this.context;
+    return 1 / (rateHz * motion.train.placer.tracker.pitchS);
   }
 
   private setApart(left: Float64Array): boolean {
