@@ -19,14 +19,15 @@ function silentPositions({ tracker, train, state: shaft }: Motion): number {
 }
 
 /**
- * Falling bound, rpm, at `nowS`: 60 p / (N gear elapsed), p the positions that can be silent. NaN before any edge. Once
- * stopped, and just before, it is the slowest speed that can be told from standing: p over the time until stopped.
+ * Falling bound, rpm, at `nowS`: 60 p / (N gear elapsed), p the positions that can be silent. NaN before any edge, and where
+ * the signal has swung since the last one though no edge came of it. Once stopped, and just before, it is the slowest speed
+ * that can be told from standing: p over the time until stopped.
  * @param latencyS how long after its instant an edge is known: silence is proven only up to `nowS` less that.
  */
 export function speedAtMostRpm(motion: Motion, nowS: number, latencyS: number): number {
   const { tracker, train, rig, lastEdgeS, state, stoppedAfterS, widths } = motion;
   // Pulses that fall between samples: silence proves nothing.
-  if (Number.isNaN(lastEdgeS) || widths?.isBlind) return NaN;
+  if (Number.isNaN(lastEdgeS) || lastEdgeS < motion.doubtedS || widths?.isBlind) return NaN;
   const since = tracker ? lastEdgeS : train.lastRiseS;
   const begin = Number.isNaN(since) ? motion.quietSinceS : Math.max(since, 0);
   const { pulsesPerTurn, gearRatio } = rig.wheel;

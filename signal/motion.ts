@@ -32,6 +32,8 @@ export class Motion extends ShaftState {
   // Numbers begin as numbers: a field that was ever undefined holds boxed ones for good.
   countsSinceS = NaN;
   quietSinceS = NaN;
+  /** When last the signal swung though no edge came of it. */
+  doubtedS = NaN;
   private readonly stoppedAfterSamples: number;
   private stopAt = NaN;
   private countsReset = false;
@@ -82,6 +84,23 @@ export class Motion extends ShaftState {
     if (this.state === 'stopped' || at <= this.stopAt) return;
     if (this.widths !== null && this.widths.mayHoldTooth(at, this.stopAt)) return;
     this.stop(this.quietSinceS + this.stoppedAfterS);
+  }
+
+  /**
+   * At sample `at`, stream time `nowS`, the signal swings though no edge comes of it: nothing is known of the shaft, least of
+   * all that it stands. Said again and again it stays so; after the last time stopped is as far away as after an edge.
+   */
+  doubt(at: number, nowS: number): void {
+    this.doubtedS = nowS;
+    this.stopAt = at + this.stoppedAfterSamples;
+    this.quietSinceS = nowS;
+    if (this.state === 'stopped') {
+      this.wake(nowS);
+    } else if (this.state === 'running') {
+      this.forgetTeeth('timeout', nowS);
+      this.turnTo('unknown', nowS);
+      this.openUnknown(nowS);
+    }
   }
 
   /** Samples were lost from `fromS` to `toS`; the next sample is `at`. */

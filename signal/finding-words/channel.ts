@@ -1,15 +1,20 @@
 /** What is wrong with the signal of one channel, and what usually mends it. */
+import { hiddenByNoise, takenByFilter } from '@/signal/finding-words/unseen';
 import { short, time, whole } from '@/signal/finding-words/values';
 import type { Evidence, Wording } from '@/signal/finding-words/values';
 
 export const channelWords = {
-  'weak-swing': (channel, evidence) => ({
-    message: `${swingMessage(channel, evidence)}.`,
-    remedy:
-      evidence.filterPercent === undefined
-        ? swingRemedy(evidence)
-        : `Raise the cutoff of the filter, which leaves ${short(evidence.filterPercent)} % of the teeth at this speed.`,
-  }),
+  'weak-swing': (channel, evidence) => {
+    if (evidence.against === 'hidden') return hiddenByNoise(channel, evidence);
+    if (evidence.against === 'filter') return takenByFilter(channel, evidence);
+    return {
+      message: `${swingMessage(channel, evidence)}.`,
+      remedy:
+        evidence.filterPercent === undefined
+          ? swingRemedy(evidence)
+          : `Raise the cutoff of the filter, which leaves ${short(evidence.filterPercent)} % of the teeth at this speed.`,
+    };
+  },
   clipping: (channel, evidence) => ({
     message: `Channel ${channel} stands at the ${evidence.rail} end of its range (${short(evidence.railV)} V) for ${short(evidence.railPercent)} % of the time, so that it is cut off there.`,
     remedy:

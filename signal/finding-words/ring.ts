@@ -1,4 +1,5 @@
 /** What is wrong between channels, and what usually mends it. */
+import { tooFast } from '@/signal/finding-words/unseen';
 import { short, time, whole } from '@/signal/finding-words/values';
 import type { Evidence, FindingWords, Wording } from '@/signal/finding-words/values';
 
@@ -82,20 +83,22 @@ export const ringWords = {
               message: `Line ${channel} is upside down: its active part is the longer one, and the direction reads wrong by it.`,
               remedy: `Turn line ${channel} round in the board, or correct its polarity where it is set.`,
             },
-  'near-alias': (_channel, evidence) =>
-    evidence.samplesPerPulse !== undefined
-      ? {
-          message: `The narrowest coded pulse of ${time(evidence.narrowestPulseS)} takes ${short(evidence.samplesPerPulse)} samples where 4 are needed, so its width cannot be told and no direction is said.`,
-          remedy: `Sample at ${whole(evidence.neededHz)} a second at least, or let the board measure both edges of each pulse with its own timer.`,
-        }
-      : {
-          message:
-            evidence.ratedRpm === undefined
-              ? `A tooth takes ${short(evidence.samplesPerTooth)} samples and its narrowest state ${short(evidence.samplesOfNarrowestState)}, so edges are missed soon.`
-              : `At the rated ${short(evidence.ratedRpm)} rpm a tooth will take ${short(evidence.samplesPerTooth)} samples and its narrowest state ${short(evidence.samplesOfNarrowestState)}.`,
-          remedy:
-            'Raise the sample rate or take a wheel with fewer teeth; to see whether the speed has already folded down, change the sample rate or turn more slowly: a true speed stays with the shaft, a folded one does not.',
-        },
+  'near-alias': (channel, evidence) =>
+    evidence.apparentHz !== undefined
+      ? tooFast(channel, evidence)
+      : evidence.samplesPerPulse !== undefined
+        ? {
+            message: `The narrowest coded pulse of ${time(evidence.narrowestPulseS)} takes ${short(evidence.samplesPerPulse)} samples where 4 are needed, so its width cannot be told and no direction is said.`,
+            remedy: `Sample at ${whole(evidence.neededHz)} a second at least, or let the board measure both edges of each pulse with its own timer.`,
+          }
+        : {
+            message:
+              evidence.ratedRpm === undefined
+                ? `A tooth takes ${short(evidence.samplesPerTooth)} samples and its narrowest state ${short(evidence.samplesOfNarrowestState)}, so edges are missed soon.`
+                : `At the rated ${short(evidence.ratedRpm)} rpm a tooth will take ${short(evidence.samplesPerTooth)} samples and its narrowest state ${short(evidence.samplesOfNarrowestState)}.`,
+            remedy:
+              'Raise the sample rate or take a wheel with fewer teeth; to see whether the speed has already folded down, change the sample rate or turn more slowly: a true speed stays with the shaft, a folded one does not.',
+          },
   'standstill-chatter': (channel, evidence) =>
     evidence.stepsHz === undefined
       ? {

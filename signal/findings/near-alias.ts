@@ -2,6 +2,7 @@ import { consequencesOf, statesPerCycle } from '@/signal/consequences';
 import { lanePhases, ringWidths } from '@/signal/findings/lane-phases';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import type { UnseenTeeth } from '@/signal/findings/unseen-teeth';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import { stepTable } from '@/signal/step-table';
@@ -18,7 +19,12 @@ const staysBy = 1.1;
 const leastPerPulse = 4;
 const teethNeeded = 16;
 
-type Seen = { severity: Finding['severity']; evidence: Record<string, number | string>; atS: number };
+type Seen = {
+  severity: Finding['severity'];
+  outcome?: Finding['outcome'];
+  evidence: Record<string, number | string>;
+  atS: number;
+};
 
 /**
  * Too few samples a tooth, so that teeth go by between two of them. What is above half the sample rate folds down and
@@ -27,22 +33,24 @@ type Seen = { severity: Finding['severity']; evidence: Record<string, number | s
 export class NearAliasRule implements FindingRule {
   readonly latches = [new FindingLatch(2)];
   private readonly context: RuleContext;
+  private readonly unseen: UnseenTeeth;
   private dueS = -Infinity;
 
-  constructor(context: RuleContext) {
+  constructor(context: RuleContext, unseen: UnseenTeeth) {
     this.context = context;
+    this.unseen = unseen;
   }
 
   tick(nowS: number): void {
     if (nowS >= this.dueS) {
       this.dueS = nowS + everyS;
-      const seen = this.pulses(nowS) ?? this.measured(nowS) ?? this.rated(nowS);
+      const seen = this.pulses(nowS) ?? this.measured(nowS) ?? this.tooFast() ?? this.rated(nowS);
       if (seen) this.raise(seen, nowS);
     }
     this.latches[0]!.rest(nowS);
   }
 
-  private raise({ severity, evidence, atS }: Seen, nowS: number): void {
+  private raise({ severity, outcome = 'found', evidence, atS }: Seen, nowS: number): void {
     const { paths, primary } = this.context;
     const { name } = paths[primary]!.channel;
     this.latches[0]!.raise(
@@ -51,7 +59,7 @@ export class NearAliasRule implements FindingRule {
         channel: name,
         from: atS,
         severity,
-        outcome: 'found',
+        outcome,
         at: atS,
         evidence,
         ...wordsFor('near-alias', name, evidence),
@@ -74,6 +82,21 @@ export class NearAliasRule implements FindingRule {
       evidence: { narrowestPulseS: widthS, samplesPerPulse: perPulse, neededHz: leastPerPulse / widthS },
       atS: nowS,
     };
+  }
+
+  /** So few that no edge comes of them. */
+  private tooFast(): Seen | null {
+    const { unseen, context } = this;
+    const seen = unseen.of(context.primary);
+    if (seen?.why !== 'fast') return null;
+    const { hz, swingV, fromS } = seen;
+    const evidence = {
+      samplesPerTooth: context.rateHz / hz,
+      swingV,
+      apparentHz: hz,
+      neededHz: warnBelow * hz,
+    };
+    return { severity: 'fault', outcome: 'cannot-tell', evidence, atS: fromS };
   }
 
   private measured(nowS: number): Seen | null {

@@ -3,11 +3,14 @@ import { designFilters } from '@/signal/filter-design';
 import type { Section } from '@/signal/filter-design';
 import { Baseline } from '@/signal/findings/baseline';
 import { SizedLatch, findingOf, takesMiddleAway } from '@/signal/findings/channel-finding';
+import { NoisyEdges } from '@/signal/findings/noisy-edges';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import type { SlowSpectra } from '@/signal/findings/slow-spectrum';
 import { ShortSwing } from '@/signal/findings/swing-short';
 import { againstBand, againstNoise, againstSupply } from '@/signal/findings/swing-sights';
 import type { SwingSight } from '@/signal/findings/swing-sights';
+import { unseenSwing } from '@/signal/findings/swing-unseen';
+import type { UnseenTeeth } from '@/signal/findings/unseen-teeth';
 import type { TurnMeans } from '@/signal/findings/turn-means';
 import { responseAt } from '@/signal/response';
 
@@ -42,11 +45,16 @@ export class WeakSwingRule implements FindingRule {
   private readonly rejected: number[];
   private readonly sections: readonly Section[];
   private readonly levelsKnown: boolean;
+  private readonly isFixed: boolean;
+  private readonly unseen: UnseenTeeth;
+  private readonly noisyEdges: NoisyEdges[];
 
-  constructor(context: RuleContext, means: readonly TurnMeans[], spectra: SlowSpectra) {
+  constructor(context: RuleContext, means: readonly TurnMeans[], spectra: SlowSpectra, unseen: UnseenTeeth) {
     const { paths, settings, rateHz } = context;
     this.context = context;
     this.means = means;
+    this.unseen = unseen;
+    this.noisyEdges = paths.map((_, index) => new NoisyEdges(context, index));
     this.latches = paths.map(() => new SizedLatch(2));
     this.swings = paths.map(() => new Baseline(looksForBaseline, true));
     this.short = paths.map((_, index) => new ShortSwing(context, index, spectra));
@@ -54,6 +62,7 @@ export class WeakSwingRule implements FindingRule {
     this.rejected = paths.map(() => 0);
     this.sections = designFilters(settings.filter, rateHz);
     this.levelsKnown = !takesMiddleAway(settings);
+    this.isFixed = settings.band.mode === 'fixed';
   }
 
   tick(nowS: number): void {
@@ -63,6 +72,10 @@ export class WeakSwingRule implements FindingRule {
       if (this.means[index]!.look(nowS)) this.judge(paths[index]!, index, nowS);
       const sight = this.short[index]!.look(nowS);
       if (sight !== undefined) this.count(index, sight, nowS, sight?.sure === false);
+      const noisy = this.isFixed ? null : this.noisyEdges[index]!.look(nowS);
+      if (noisy) this.raise(index, noisy, nowS, false);
+      const unseen = unseenSwing(this.context, this.unseen, index);
+      if (unseen) this.raise(index, unseen, nowS, !unseen.sure);
       latch.rest(nowS, this.means[index]!.looksS);
     }
   }
@@ -72,9 +85,8 @@ export class WeakSwingRule implements FindingRule {
     const open = this.latches[index]!.open !== null;
     const rejected = path.rejectedCount - this.rejected[index]!;
     this.rejected[index] = path.rejectedCount;
-    const fixed = this.context.settings.band.mode === 'fixed';
     const sights = [
-      fixed ? againstBand(path, means, rejected, open) : this.noisy(path, means, open),
+      this.isFixed ? againstBand(path, means, rejected, open) : this.noisy(path, means, open),
       this.fallen(path, index),
       this.levelsKnown ? againstSupply(path, means, open) : null,
     ];
@@ -92,14 +104,22 @@ export class WeakSwingRule implements FindingRule {
 
   /** Opens at the second look in a row. */
   private count(index: number, sight: SwingSight | null, nowS: number, unsure: boolean): void {
-    const latch = this.latches[index]!;
     this.seen[index] = sight ? this.seen[index]! + 1 : 0;
-    if (!sight || (!latch.open && this.seen[index]! < looksToOpen)) return;
-    const { size, severity, atS, evidence } = sight;
+    if (sight && (this.latches[index]!.open || this.seen[index]! >= looksToOpen))
+      this.raise(index, sight, nowS, unsure);
+  }
+
+  private raise(
+    index: number,
+    { size, severity, atS, evidence }: SwingSight,
+    nowS: number,
+    unsure: boolean,
+  ): void {
     const fromS = Math.min(atS, nowS);
     const outcome = unsure ? 'cannot-tell' : 'found';
     const { name } = this.context.paths[index]!.channel;
-    latch.raiseSized(findingOf('weak-swing', name, { fromS, atS, severity, outcome, evidence }), size, nowS);
+    const finding = findingOf('weak-swing', name, { fromS, atS, severity, outcome, evidence });
+    this.latches[index]!.raiseSized(finding, size, nowS);
   }
 
   private fallen(path: ChannelPath, index: number): SwingSight | null {

@@ -1,0 +1,56 @@
+/** What frequency a tone of a slow ring may be: what lies above half its rate has folded down. */
+import type { BurstTone } from '@/signal/findings/burst-tone';
+import { burstLength } from '@/signal/noise';
+
+/** Where a tone of `hz` shows among `rateHz` samples a second. */
+export function foldedHz(hz: number, rateHz: number): number {
+  return Math.abs(hz - rateHz * Math.round(hz / rateHz));
+}
+
+/** True where the mains or one of their first harmonics shows within `offHz` of `hz` among `rateHz` samples a second. */
+export function isMains(hz: number, rateHz: number, offHz: number): boolean {
+  for (const mainsHz of [50, 60])
+    for (let h = 1; h <= 4; h++) if (Math.abs(foldedHz(h * mainsHz, rateHz) - hz) < offHz) return true;
+  return false;
+}
+
+/** Slower than so many cycles a burst shows a part of a cycle only, and proves nothing. */
+const fewestCycles = 1.5;
+/** A burst shows at least this much of what it should. */
+const leastOfExpected = 0.5;
+const clearly = 1.3;
+
+/**
+ * What a tone at `hz` of a ring really is, of all that fold there: bursts of neighbouring samples tell.
+ * @param ringHz samples a second of the ring. @param rateHz and of the stream. @param mostHz no more than this.
+ * @param share of a burst's power that the tone holds.
+ * @returns Hz; NaN where several may be.
+ */
+export function unfoldedHz(
+  hz: number,
+  ringHz: number,
+  rateHz: number,
+  mostHz: number,
+  share: number,
+  bursts: BurstTone,
+): number {
+  let bestHz = NaN;
+  let best = -1;
+  let second = -1;
+  for (let whole = 0; whole - hz <= mostHz; whole += ringHz) {
+    for (const candidateHz of whole === 0 ? [hz] : [whole - hz, whole + hz]) {
+      if (candidateHz > mostHz) continue;
+      const own = bursts.shareAt(candidateHz / rateHz);
+      const shows = candidateHz * burstLength >= fewestCycles * rateHz;
+      if (shows && own < leastOfExpected * share) continue;
+      if (own > best) {
+        second = best;
+        best = own;
+        bestHz = candidateHz;
+      } else if (own > second) {
+        second = own;
+      }
+    }
+  }
+  return second < 0 || best >= clearly * second ? bestHz : NaN;
+}
