@@ -4,6 +4,7 @@ import type { Finding, Margin } from '@/signal/model';
 import { angleDeg, boundErrorRpm, speedAtMostRpm } from '@/signal/falling-bound';
 import type { Motion } from '@/signal/motion';
 import type { ChannelStatus, PipelineStatus, ShaftStatus } from '@/signal/pipeline-types';
+import { fieldScale, milliteslaOfSwing } from '@/signal/statistics/field';
 
 /** @param primary index into `paths` of the channel that speed comes from. */
 export function statusOf(
@@ -71,14 +72,20 @@ function worstMargin(paths: readonly ChannelPath[]): Margin | null {
   }
   if (!worst) return null;
   const volts = worst.worstMarginV;
-  const { kind, sensitivityMvPerMt } = worst.channel.sensor;
+  const { kind, sensitivityMvPerMt, supplyV } = worst.channel.sensor;
+  // In a difference the voltage at rest falls out.
+  const scale = fieldScale({
+    sensitivityMvPerMt: sensitivityMvPerMt ?? NaN,
+    nominalSupplyV: null,
+    supplyV,
+    quiescentV: 0,
+  });
   return {
     channel: worst.channel.name,
     volts,
     // A signal without any noise (computed, or far above its quantum) has no margin in sigmas.
     sigmas: worst.noiseV > 1e-9 * Math.abs(volts) ? volts / worst.noiseV : null,
-    millitesla:
-      kind === 'linear' && sensitivityMvPerMt ? known((1000 * volts) / Math.abs(sensitivityMvPerMt)) : null,
+    millitesla: kind === 'linear' && scale.ok ? known(milliteslaOfSwing(volts, scale.value)) : null,
   };
 }
 

@@ -1,9 +1,10 @@
 /**
- * Angular acceleration from edges and the angles between them.
+ * Angular acceleration from edges and the angles between them, written out: a reference for tests. The product's own, over
+ * whole turns of a running signal, is in `acceleration-fit.ts`.
  *
  * From three edges: w1 = d1 / (t1 - t0), w2 = d2 / (t2 - t1), alpha = (w2 - w1) / ((t2 - t0) / 2), exact for an even
- * acceleration but mostly noise (sigma = sqrt(6) d s / T^3 for edges of the error s): the default is a quadratic
- * through all edges of a turn or more. Source: formula; derived from theta = theta0 + w t + alpha t^2 / 2.
+ * acceleration but mostly noise (sigma = sqrt(6) d s / T^3 for edges of the error s): a quadratic through all edges
+ * of a turn or more is quiet. Source: formula; derived from theta = theta0 + w t + alpha t^2 / 2.
  */
 import { got, notInstants, notPositive, refused, type Outcome } from '@/signal/statistics/issue';
 import { leastSquares } from '@/signal/statistics/least-squares';

@@ -4,7 +4,7 @@
  * there, whatever the supply. 1 T = 10 000 G, so 1 mV/G = 10 mV/mT.
  * Source: notes of Hall sensor makers (brands withheld).
  */
-import { got, notFinite, notPositive, refused, type Outcome } from '@/signal/statistics/issue';
+import { got, notPositive, refused, type Outcome } from '@/signal/statistics/issue';
 
 export type LinearSensor = {
   /** At the nominal supply, mV/mT; negative where the output falls towards a south pole. */
@@ -43,10 +43,7 @@ export function fieldScale({
   return got({ quiescentV: quiescentV ?? supplyV! / 2, voltsPerMt: (sensitivityMvPerMt / 1000) * ratio });
 }
 
-export function milliteslaOf(volts: number, scale: FieldScale): number {
-  return (volts - scale.quiescentV) / scale.voltsPerMt;
-}
-
+/** Output of the sensor in a field of `millitesla`, V; a reference for check values. */
 export function voltsOf(millitesla: number, scale: FieldScale): number {
   return scale.quiescentV + millitesla * scale.voltsPerMt;
 }
@@ -56,29 +53,14 @@ export function milliteslaOfSwing(volts: number, scale: FieldScale): number {
   return volts / Math.abs(scale.voltsPerMt);
 }
 
-/**
- * Fields between which the output is not at a rail, mT, least first: outside them the voltage tells nothing.
- * Issues: not-finite, bad-setting (the rails do not hold the rest voltage).
- */
-export function linearSpanMt(
-  scale: FieldScale,
-  lowRailV: number,
-  highRailV: number,
-): Outcome<{ leastMt: number; mostMt: number }> {
-  const bad = notFinite([lowRailV, highRailV], 'rail');
-  if (bad) return bad;
-  if (!(lowRailV < scale.quiescentV && scale.quiescentV < highRailV))
-    return refused('bad-setting', `rest at ${scale.quiescentV} V, rails at ${lowRailV} and ${highRailV} V`);
-  const ends = [milliteslaOf(lowRailV, scale), milliteslaOf(highRailV, scale)];
-  return got({ leastMt: Math.min(...ends), mostMt: Math.max(...ends) });
-}
-
+/** Sensitivity as sheets in gauss state it, mV/G, in mV/mT; a reference for check values. */
 export function mvPerMtOfMvPerGauss(mvPerGauss: number): number {
   return 10 * mvPerGauss;
 }
 
 /**
- * What is left of a magnet's remanence `aboveK` kelvin above the temperature that it is stated for, as a factor.
+ * What is left of a magnet's remanence `aboveK` kelvin above the temperature that it is stated for, as a factor; a
+ * reference for check values.
  * @param percentPerK its temperature coefficient: about -0.11 for sintered neodymium, -0.04 samarium cobalt, -0.2 ferrite.
  * Issues: undetermined (the straight line has run out: nothing or less would be left).
  */

@@ -1,8 +1,9 @@
 /**
  * Strength of one frequency, by Goertzel's recursion s[k] = x[k] + 2 cos(w) s[k-1] - s[k-2], w = 2 pi f / fs, in
  * the form that Reinsch gave it for low frequencies, d[k] = d[k-1] + x[k] - 4 sin^2(w / 2) s[k-1], s[k] = s[k-1] + d[k]:
- * one multiplication a sample, no table, and no digits lost where a cycle is many samples long. The record's mean is taken out, whatever the number of cycles. Amplitudes of other
- * tones leak in unless the record holds whole cycles of both: 0.1 s and its multiples suit 50 and 60 Hz alike.
+ * one multiplication a sample, no table, and no digits lost where a cycle is many samples long. The record's mean is taken out,
+ * whatever the number of cycles. A reference for tests: the product's rules fit tones beside teeth (`findings/hum-tone.ts`),
+ * this measures one in a record. Amplitudes of other tones leak in unless the record holds whole cycles of both: 0.1 s and its multiples suit 50 and 60 Hz alike.
  * Sources: G. Goertzel, American Mathematical Monthly 65 (1958) 34-35; Reinsch's form by way of J. Stoer and R. Bulirsch,
  * Introduction to Numerical Analysis (from memory).
  */

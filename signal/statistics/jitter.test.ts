@@ -2,7 +2,6 @@ import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import {
   cycleToCycleJitter,
-  jitterOverPeriods,
   jitterShares,
   periodJitter,
   timeIntervalError,
@@ -26,7 +25,6 @@ describe('jitter', () => {
       peakToPeakS: 0,
     });
     expect(valueOf(cycleToCycleJitter(even))).toEqual({ pairs: 48, mostS: 0, rmsS: 0 });
-    expect(valueOf(jitterOverPeriods(even, 7)).rmsS).toBe(0);
     fc.assert(
       fc.property(steps, (periods) => {
         const here = valueOf(periodJitter(summed(periods)));
@@ -40,14 +38,6 @@ describe('jitter', () => {
     const edges = summed([100, 80, 115, 100]);
     expect(valueOf(cycleToCycleJitter(edges)).mostS).toBe(35);
     expect(valueOf(periodJitter(edges)).peakToPeakS).toBe(35);
-  });
-
-  it('over one period is the period jitter, and over n grows as white edge noise must not', () => {
-    const random = normal(seeded(3));
-    const edges = Float64Array.from({ length: 20_000 }, (_, k) => k * 1e-3 + 5e-6 * random());
-    const one = valueOf(jitterOverPeriods(edges, 1)).rmsS;
-    expect(one).toBeCloseTo(valueOf(periodJitter(edges)).rmsS, 12);
-    expect(Math.abs(valueOf(jitterOverPeriods(edges, 50)).rmsS / one - 1)).toBeLessThan(0.03);
   });
 
   it('time-interval error gives line and ramp back exactly', () => {
@@ -87,8 +77,6 @@ describe('jitter', () => {
     expect(issueOf(periodJitter([1]))).toBe('too-few');
     expect(issueOf(periodJitter([1, 1]))).toBe('not-ascending');
     expect(issueOf(cycleToCycleJitter([1, 2]))).toBe('too-few');
-    expect(issueOf(jitterOverPeriods([1, 2, 3], 2))).toBe('too-few');
-    expect(issueOf(jitterOverPeriods([1, 2, 3], 0))).toBe('bad-setting');
     expect(issueOf(timeIntervalError([1, 2, 3], 'drifting'))).toBe('too-few');
     expect(issueOf(withoutTrend([0, 1, NaN, 3]))).toBe('not-finite');
     expect(valueOf(periodJitter([0, 1])).sampleRmsS).toBe(0);

@@ -10,7 +10,7 @@
  * as jitter: take the trend out first (`withoutTrend`). So does the wheel's own pitch: see `pitch-learning.ts`.
  * Source: the ideas of JESD65B and IEEE Std 2414-2020 as makers of clocks repeat them; the trend is ours.
  */
-import { got, notCount, notInstants, refused, type Outcome } from '@/signal/statistics/issue';
+import { got, notInstants, refused, type Outcome } from '@/signal/statistics/issue';
 import { leastSquares } from '@/signal/statistics/least-squares';
 import { spreadOf } from '@/signal/statistics/pulse-statistics';
 
@@ -53,20 +53,6 @@ export function cycleToCycleJitter(
     squares += change * change;
   }
   return got({ pairs: changes.length, mostS, rmsS: Math.sqrt(squares / changes.length) });
-}
-
-/** Rms of the departure of n periods together from n mean periods. Issues: bad-setting, too-few, not-finite, not-ascending. */
-export function jitterOverPeriods(
-  edgesS: ArrayLike<number>,
-  n: number,
-): Outcome<{ spans: number; rmsS: number }> {
-  const bad = notCount(n, 1, 'number of periods') ?? notInstants(edgesS, n + 2, 'edge');
-  if (bad) return bad;
-  const count = edgesS.length - 1;
-  const meanS = (edgesS[count]! - edgesS[0]!) / count;
-  const spans = differences(edgesS, n);
-  const squares = spans.reduce((sum, span) => sum + (span - n * meanS) ** 2, 0);
-  return got({ spans: spans.length, rmsS: Math.sqrt(squares / spans.length) });
 }
 
 export type TimeIntervalError = {

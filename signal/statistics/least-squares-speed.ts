@@ -1,5 +1,6 @@
 /**
- * Speed over a gate that begins and ends on an edge (the M/T method), and the line of best fit through the same edges.
+ * Speed over a gate that begins and ends on an edge (the M/T method), and the line of best fit through the same edges: both
+ * written out, as references for tests. The product's own way through a window is `speed-meter.ts`.
  *
  *     M/T   n = 60 m / (N T), T from the first edge to the first at or after the gate's end
  *     line  slope of place over instant; error of the period s sqrt(12 / (K (K + 1) (K + 2))) for even teeth,

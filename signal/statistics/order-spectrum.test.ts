@@ -1,7 +1,7 @@
 import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { namedOrders, orderSpectrum } from '@/signal/statistics/order-spectrum';
-import { perTurn, speedPerTurn } from '@/signal/statistics/per-turn';
+import { orderSpectrum } from '@/signal/statistics/order-spectrum';
+import { speedPerTurn } from '@/signal/statistics/per-turn';
 import { farthest, issueOf, passes, valueOf } from '@/signal/statistics/test-values';
 
 const column = (n: number, turns: number, value: (k: number) => number) =>
@@ -38,17 +38,11 @@ describe('orders of a turn', () => {
       4,
       (k) => 2 * (1 + 0.15 * Math.cos((2 * Math.PI * k) / 12 + 1) + 0.02 * (-1) ** k),
     );
-    const named = valueOf(namedOrders(valueOf(orderSpectrum(swing, 12)), 12));
-    expect(named.runOut).toBeCloseTo(0.15, 9);
-    expect(named.ellipse).toBeCloseTo(0, 9);
-    expect(named.alternate).toBeCloseTo(0.02, 9);
-    const odd = valueOf(namedOrders(valueOf(orderSpectrum([1, 2, 3], 3)), 3));
-    expect([odd.ellipse, odd.alternate]).toEqual([null, null]);
-    expect(valueOf(namedOrders(valueOf(orderSpectrum([1, 3], 2)), 2))).toEqual({
-      runOut: null,
-      ellipse: null,
-      alternate: 0.5,
-    });
+    const { mean, amplitude } = valueOf(orderSpectrum(swing, 12));
+    expect(mean).toBeCloseTo(2, 9);
+    expect(amplitude[1]! / mean).toBeCloseTo(0.15, 9);
+    expect(amplitude[2]! / mean).toBeCloseTo(0, 9);
+    expect(amplitude[6]! / mean).toBeCloseTo(0.02, 9);
   });
 
   it('averages what does not belong to the wheel away', () => {
@@ -76,20 +70,10 @@ describe('orders of a turn', () => {
     expect(issueOf(orderSpectrum([NaN, NaN], 2))).toBe('too-few');
     expect(issueOf(orderSpectrum([1, Infinity, 2, 3], 4))).toBe('not-finite');
     expect(issueOf(orderSpectrum([1, 2, NaN, 3, 1, 2, 3, 4], 4))).toBe('not-finite');
-    expect(issueOf(namedOrders(valueOf(orderSpectrum([0, 0, 0, 0], 4)), 4))).toBe('no-swing');
   });
 });
 
 describe('columns a turn', () => {
-  it('means, least and most of whole turns', () => {
-    const turns = valueOf(perTurn([1, 2, 3, 5, 5, 8, 9], 3));
-    expect(turns.turns).toBe(2);
-    expect([...turns.mean]).toEqual([2, 6]);
-    expect([...turns.least, ...turns.most]).toEqual([1, 5, 3, 8]);
-    expect(issueOf(perTurn([1, 2], 3))).toBe('too-few');
-    expect(issueOf(perTurn([1, NaN], 2))).toBe('not-finite');
-  });
-
   it('speed of whole turns does not see uneven teeth, and the gear counts', () => {
     const teeth = passes([0.3, 0.2, 0.28, 0.22], 3, 20);
     const speeds = valueOf(speedPerTurn(teeth, 4, 2));

@@ -71,27 +71,6 @@ export function orderSpectrum(values: ArrayLike<number>, positions: number): Out
   });
 }
 
-/**
- * Orders that name a fault, as shares of the mean: run-out (order 1), ellipse (order 2), alternate teeth (order N/2, for an
- * even N). Null where the wheel has no such order.
- * Issues: no-swing (mean 0: nothing to be a share of).
- */
-export function namedOrders(
-  spectrum: OrderSpectrum,
-  positions: number,
-): Outcome<{ runOut: number | null; ellipse: number | null; alternate: number | null }> {
-  const whole = Math.abs(spectrum.mean);
-  if (!(whole > 1e-12 * Math.max(...spectrum.amplitude)))
-    return refused('no-swing', 'the mean is 0, so that shares of it say nothing');
-  const share = (order: number) => spectrum.amplitude[order]! / whole;
-  return got({
-    // The highest order of an even wheel is its alternation, whatever else its number would mean.
-    runOut: positions > 2 ? share(1) : null,
-    ellipse: positions > 4 ? share(2) : null,
-    alternate: positions % 2 === 0 ? share(positions / 2) : null,
-  });
-}
-
 /** Fills NaN runs by straight lines around the ring; returns how many. A ring of NaN only stays as it is. */
 function fillMissing(turn: Float64Array): number {
   const n = turn.length;

@@ -1,4 +1,6 @@
 /**
+ * A reference for tests, in the plainest form; the product learns edge by edge in `pitch-learner.ts`, and is held against it.
+ *
  * The teeth's own spacing, learnt over turns: share of the turn w[k] = mean over turns of the angle from tooth k to the
  * next. Speed from single teeth is then n = 60 w[k] / T[k] instead of 60 / (N T[k]).
  *

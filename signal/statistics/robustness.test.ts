@@ -6,25 +6,23 @@ import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Section } from '@/signal/filter-design';
 import { accelerations, fitAcceleration } from '@/signal/statistics/acceleration';
-import { fieldScale, linearSpanMt, milliteslaOf, remanenceFactor } from '@/signal/statistics/field';
+import { fieldScale, milliteslaOfSwing, remanenceFactor } from '@/signal/statistics/field';
 import { toneOf } from '@/signal/statistics/goertzel';
-import { checkIndex } from '@/signal/statistics/index-check';
 import type { Outcome } from '@/signal/statistics/issue';
 import {
   cycleToCycleJitter,
-  jitterOverPeriods,
   periodJitter,
   timeIntervalError,
   withoutTrend,
 } from '@/signal/statistics/jitter';
 import { leastSquares } from '@/signal/statistics/least-squares';
 import { gateSpeed, lineSpeed } from '@/signal/statistics/least-squares-speed';
-import { namedOrders, orderSpectrum } from '@/signal/statistics/order-spectrum';
+import { orderSpectrum } from '@/signal/statistics/order-spectrum';
 import { matchPattern } from '@/signal/statistics/pattern-match';
-import { perTurn, speedPerTurn } from '@/signal/statistics/per-turn';
+import { speedPerTurn } from '@/signal/statistics/per-turn';
 import { createPitchLearner, idealShares, learnTurn, withoutPitch } from '@/signal/statistics/pitch-learning';
 import { pulseStatistics } from '@/signal/statistics/pulse-statistics';
-import { quadratureLimitRpm, quadraturePhase, stateWidths } from '@/signal/statistics/quadrature-phase';
+import { stateWidths } from '@/signal/statistics/quadrature-phase';
 import { fitSine, fitSineAndFrequency, fitSineInPhase } from '@/signal/statistics/sine-fit';
 import { fitSinePairAndFrequency } from '@/signal/statistics/sine-pair';
 import { countResolution, gateResolution, periodResolution } from '@/signal/statistics/speed-resolution';
@@ -32,7 +30,6 @@ import { stateLevels } from '@/signal/statistics/state-levels';
 import { allFinite, issueOf } from '@/signal/statistics/test-values';
 import { toothPhase } from '@/signal/statistics/tooth-phase';
 import { findTransitions } from '@/signal/statistics/transitions';
-import { resampleTurn } from '@/signal/statistics/turn-average';
 import { classifyWidths } from '@/signal/statistics/width-code';
 import { filterZeroPhase } from '@/signal/statistics/zero-phase';
 
@@ -74,7 +71,6 @@ const calls: Record<string, (args: Args) => Outcome<unknown>> = {
   toothPhase: ({ a, x, y, n }) => toothPhase(a, x, y, n),
   periodJitter: ({ a }) => periodJitter(a),
   cycleToCycleJitter: ({ a }) => cycleToCycleJitter(a),
-  jitterOverPeriods: ({ a, n }) => jitterOverPeriods(a, n),
   timeIntervalError: ({ a, n }) => timeIntervalError(a, n % 2 ? 'even' : 'drifting'),
   withoutTrend: ({ a }) => withoutTrend(a),
   gateSpeed: ({ a, x, y }) => gateSpeed(a, x, y),
@@ -86,15 +82,9 @@ const calls: Record<string, (args: Args) => Outcome<unknown>> = {
   accelerations: ({ a, b, x }) => accelerations(a, b.length ? b : x),
   fitAcceleration: ({ a, b, x }) => fitAcceleration(a, b.length ? b : x),
   fitAccelerationOfTeeth: ({ a }) => fitAcceleration(a, 2),
-  perTurn: ({ a, n }) => perTurn(a, n),
   speedPerTurn: ({ a, n, x }) => speedPerTurn(a, n, x),
   toneOf: ({ a, x, y }) => toneOf(a, x, y),
   orderSpectrum: ({ a, n }) => orderSpectrum(a, n),
-  namedOrders: ({ a, n }) => {
-    const spectrum = orderSpectrum(a, n);
-    return spectrum.ok ? namedOrders(spectrum.value, n) : spectrum;
-  },
-  resampleTurn: ({ a, b, x, y, n }) => resampleTurn({ values: a, startS: x, rateHz: y }, b, n),
   idealShares: ({ x, n }) => idealShares(n, x),
   createPitchLearner: ({ a }) => createPitchLearner(a),
   learnTurn: ({ a, n }) => {
@@ -106,10 +96,7 @@ const calls: Record<string, (args: Args) => Outcome<unknown>> = {
   withoutPitch: ({ a, b, n }) => withoutPitch(a, b, b, n),
   matchPattern: ({ a, b, x }) => matchPattern(a, b, x),
   matchItself: ({ a }) => matchPattern(a, a, 0),
-  quadraturePhase: ({ a, b }) => quadraturePhase(a, b, 'reverse'),
   stateWidths: ({ x, y, z }) => stateWidths(x, y, z),
-  quadratureLimitRpm: ({ x, y, z, n }) => quadratureLimitRpm(x, y, z, n),
-  checkIndex: ({ a, n }) => checkIndex(a, n),
   classifyWidths: ({ a, b, x, y, z }) =>
     classifyWidths(
       a,
@@ -120,10 +107,8 @@ const calls: Record<string, (args: Args) => Outcome<unknown>> = {
       ],
       x,
     ),
-  field: ({ x, y, z, n }) => {
-    const scale = fieldScale({ sensitivityMvPerMt: x, nominalSupplyV: y, supplyV: z, quiescentV: null });
-    return scale.ok ? linearSpanMt(scale.value, 0, n) : scale;
-  },
+  field: ({ x, y, z }) =>
+    fieldScale({ sensitivityMvPerMt: x, nominalSupplyV: y, supplyV: z, quiescentV: null }),
   remanenceFactor: ({ x, y }) => remanenceFactor(x, y),
   filterZeroPhase: ({ a }) => filterZeroPhase(a, [section]),
   filterZeroPhaseOfAny: ({ a, x, y }) => filterZeroPhase(a, [{ ...section, a1: x, a2: y }]),
@@ -156,7 +141,7 @@ describe('any input', () => {
   it('refuses empty columns everywhere, but for a filter, which has nothing to do', () => {
     const empty: Args = { a: [], b: [], x: 1, y: 1, z: 1, n: 4 };
     const withoutColumns =
-      /Resolution|idealShares|stateWidths|quadratureLimit|field|remanence|filterZeroPhase|classifyWidths|findTransitions/;
+      /Resolution|idealShares|stateWidths|field|remanence|filterZeroPhase|classifyWidths|findTransitions/;
     for (const [name, call] of Object.entries(calls)) {
       if (!withoutColumns.test(name)) expect([name, issueOf(call(empty))]).not.toEqual([name, null]);
     }
@@ -166,6 +151,6 @@ describe('any input', () => {
     const sensor = { sensitivityMvPerMt: 0, nominalSupplyV: null, supplyV: 5, quiescentV: null };
     expect(issueOf(fieldScale(sensor))).toBe('bad-setting');
     const scale = fieldScale({ ...sensor, sensitivityMvPerMt: -50 });
-    expect(scale.ok && milliteslaOf(2, scale.value)).toBe(10);
+    expect(scale.ok && milliteslaOfSwing(0.5, scale.value)).toBe(10);
   });
 });

@@ -67,7 +67,8 @@ export function fitSine(volts: ArrayLike<number>, rateHz: number, hz: number): O
 }
 
 /**
- * Four-parameter fit: the frequency too, from a start that must be nearer than half a cycle over the record.
+ * Four-parameter fit: the frequency too. A reference for tests: captures are fitted in the tooth phase, which follows a
+ * changing speed. From a start that must be nearer than half a cycle over the record.
  * Issues: as for three parameters, and not-converged (20 rounds; or it walked further than that from its start).
  */
 export function fitSineAndFrequency(

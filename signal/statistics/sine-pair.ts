@@ -4,13 +4,7 @@
  * One frequency from two fits: their mean, weighted by amplitude squared (equal noise on both channels).
  */
 import { got, type Outcome } from '@/signal/statistics/issue';
-import {
-  fitSine,
-  fitSineAndFrequency,
-  fitSineInPhase,
-  type Sine,
-  type TimedSine,
-} from '@/signal/statistics/sine-fit';
+import { fitSine, fitSineAndFrequency, type Sine, type TimedSine } from '@/signal/statistics/sine-fit';
 
 export type SinePair<S extends Sine = Sine> = {
   a: S;
@@ -36,6 +30,7 @@ export function wrapDeg(deg: number): number {
   return turned === -180 ? 180 : turned;
 }
 
+/** Two fitted sines of one frequency beside each other: volts over volts, degrees; `direction` is what the shaft did meanwhile. */
 export function compareSines<S extends Sine>(a: S, b: S, direction: PairDirection): SinePair<S> {
   const degPerRad = 180 / Math.PI;
   const phaseDeg = wrapDeg((a.phaseRad - b.phaseRad) * degPerRad);
@@ -49,7 +44,7 @@ export function compareSines<S extends Sine>(a: S, b: S, direction: PairDirectio
   };
 }
 
-/** Both channels at the known frequency. `aV` and `bV` begin with the same instant. Issues: as `fitSine`. */
+/** Both channels at the known frequency; a reference for tests, the product fits in the tooth phase. `aV` and `bV` begin with the same instant. Issues: as `fitSine`. */
 export function fitSinePair(
   aV: ArrayLike<number>,
   bV: ArrayLike<number>,
@@ -63,7 +58,7 @@ export function fitSinePair(
   return b.ok ? got(compareSines(a.value, b.value, direction)) : b;
 }
 
-/** Both channels, their common frequency searched from `startHz`. Issues: as `fitSineAndFrequency`. */
+/** Both channels, their common frequency searched from `startHz`; a reference as well. Issues: as `fitSineAndFrequency`. */
 export function fitSinePairAndFrequency(
   aV: ArrayLike<number>,
   bV: ArrayLike<number>,
@@ -79,20 +74,4 @@ export function fitSinePairAndFrequency(
   const weightB = b.value.amplitudeV ** 2;
   const hz = (weightA * a.value.hz + weightB * b.value.hz) / (weightA + weightB);
   return fitSinePair(aV, bV, rateHz, hz, direction);
-}
-
-/**
- * Both channels in the tooth phase of the samples, so that the speed may change. Issues: as `fitSineInPhase`.
- * @param psiRad 0 to 2 pi from tooth to tooth of one channel, rising with time; one a sample, the same for both.
- */
-export function fitSinePairInPhase(
-  aV: ArrayLike<number>,
-  bV: ArrayLike<number>,
-  psiRad: ArrayLike<number>,
-  direction: PairDirection,
-): Outcome<SinePair> {
-  const a = fitSineInPhase(aV, psiRad);
-  if (!a.ok) return a;
-  const b = fitSineInPhase(bV, psiRad);
-  return b.ok ? got(compareSines(a.value, b.value, direction)) : b;
 }

@@ -19,7 +19,7 @@ export type SpeedResolution = {
   floorRpm: number;
 };
 
-/** Edges counted in a gate of fixed length. Issues: bad-setting. */
+/** Edges counted in a gate of fixed length; a reference for check values, no speed of the product is taken so. Issues: bad-setting. */
 export function countResolution(gateS: number, positions: number): Outcome<SpeedResolution> {
   const bad = notPositive(gateS, 'gate') ?? notPositive(positions, 'positions a turn');
   if (bad) return bad;
@@ -27,7 +27,7 @@ export function countResolution(gateS: number, positions: number): Outcome<Speed
   return got({ stepRpm, delayS: gateS / 2, floorRpm: stepRpm });
 }
 
-/** Edges that such a gate holds at `rpm`, the started one left out. Issues: bad-setting. */
+/** Edges that such a gate holds at `rpm`, the started one left out; a reference as well. Issues: bad-setting. */
 export function edgesInGate(rpm: number, gateS: number, positions: number): Outcome<number> {
   const bad =
     notPositive(rpm, 'speed') ?? notPositive(gateS, 'gate') ?? notPositive(positions, 'positions a turn');

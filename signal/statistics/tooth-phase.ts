@@ -42,12 +42,3 @@ export function toothPhase(
   }
   return got({ from, to, psiRad });
 }
-
-/**
- * Instant at which the wheel stood `place` teeth after the first, s; the inverse of the phase.
- * @param place 0 to teeth - 1, not checked: the caller's loop is hot.
- */
-export function instantAt(teethS: ArrayLike<number>, place: number): number {
-  const tooth = Math.min(teethS.length - 2, Math.floor(place));
-  return teethS[tooth]! + (place - tooth) * (teethS[tooth + 1]! - teethS[tooth]!);
-}

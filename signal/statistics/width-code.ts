@@ -33,6 +33,7 @@ export function neededRateHz(classes: readonly WidthClass[]): Outcome<number> {
 }
 
 /**
+ * Pulses of a record, classified: a reference for tests, against which the product's `width-reader.ts` is held pulse by pulse.
  * @param widthsS width of each pulse, s. @param periodsS from its leading edge to the next one's, s; infinite: not known.
  * @param rateHz samples a second of the signal that they were measured on; null: instants from the board's own timer.
  * Issues: bad-setting (no classes, classes that overlap, lengths differ), rate-too-low, not-finite (or not above 0).

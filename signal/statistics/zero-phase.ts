@@ -65,11 +65,6 @@ export function filterZeroPhase(
   return notFinite(out, 'filtered sample') ?? got(out);
 }
 
-/** Gain of the two passes at a frequency whose gain in one pass is `magnitude`. */
-export function zeroPhaseGain(magnitude: number): number {
-  return magnitude * magnitude;
-}
-
 /** `pad` samples turned about the first before it, `pad` turned about the last after it. */
 function oddExtension(volts: ArrayLike<number>, pad: number): Float64Array {
   const n = volts.length;

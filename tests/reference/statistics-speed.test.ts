@@ -3,6 +3,7 @@
  * computed from the formula named and nothing else.
  */
 import { describe, expect, it } from 'vitest';
+import { highestRpmAt } from '@/signal/consequences';
 import {
   accelerationNoise,
   accelerations,
@@ -18,7 +19,7 @@ import {
   learntPitch,
   rpmOfShare,
 } from '@/signal/statistics/pitch-learning';
-import { quadratureLimitRpm, stateWidths } from '@/signal/statistics/quadrature-phase';
+import { stateWidths } from '@/signal/statistics/quadrature-phase';
 import {
   countResolution,
   edgesInGate,
@@ -26,7 +27,7 @@ import {
   periodResolution,
 } from '@/signal/statistics/speed-resolution';
 import { farthest, passes, valueOf } from '@/signal/statistics/test-values';
-import { normal, seeded } from '@/signal/test-signals';
+import { normal, seeded, testRig } from '@/signal/test-signals';
 
 describe('jitter (definitions of JESD65B as repeated by makers of clocks)', () => {
   it('edges 0, 1.00, 2.02, 2.99, 4.01, 5.00, 5.98, 7.01, 8.00 ms: 20.000, 21.381, 60, 50, 38.7298 us (formula)', () => {
@@ -133,9 +134,11 @@ describe('the wheel itself', () => {
   });
 
   it('64 pulses at 10 kS/s: 2343.75 rpm for one sample a state, 1171.9 for two, 0.778 of it 20 degrees off (formula)', () => {
-    expect(valueOf(quadratureLimitRpm(10_000, 64))).toBe(2343.75);
-    expect(valueOf(quadratureLimitRpm(10_000, 64, 90, 2))).toBeCloseTo(1171.9, 1);
+    const { wheel } = testRig('quadrature', 64);
+    expect(highestRpmAt('quadrature', wheel, 10_000)).toBe(2343.75);
+    expect(highestRpmAt('quadrature', wheel, 10_000, 2)).toBeCloseTo(1171.9, 1);
     const { narrowestDeg } = valueOf(stateWidths(110, 0.5, 0.5));
-    expect(valueOf(quadratureLimitRpm(10_000, 64, narrowestDeg)) / 2343.75).toBeCloseTo(0.778, 3);
+    const highest = highestRpmAt('quadrature', wheel, 10_000, 1, narrowestDeg / 90)!;
+    expect(highest / 2343.75).toBeCloseTo(0.778, 3);
   });
 });
