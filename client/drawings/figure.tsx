@@ -29,7 +29,12 @@ export function Drawing({ label, height, children, style }: DrawingProps) {
         style,
       ]}
     >
-      {size && size.width > 0 && size.height > 0 ? children(size) : null}
+      {size && size.width > 0 && size.height > 0 ? (
+        // What fills its place must not hold it open when that gets smaller.
+        <View style={height === 'fill' ? { position: 'absolute', top: 0, left: 0 } : null}>
+          {children(size)}
+        </View>
+      ) : null}
     </View>
   );
 }

@@ -24,6 +24,7 @@ test('an empty lab, and a hub that goes away and comes back', async ({ page }) =
     await hub.stop();
     await expect(banner).toBeVisible();
     await expect(page.getByRole('region', { name: 'Speed' })).toContainText('not live');
+    await expect(page.getByRole('button', { name: 'No link to the hub' })).toBeDisabled();
     await expectSound(page);
 
     await page.getByRole('button', { name: 'Try now' }).click();

@@ -91,3 +91,15 @@ test('every lane names its unit, and one axis has one unit', async ({ page }) =>
   await expectSound(page);
   await call('DELETE', `/captures/${capture.id}`);
 });
+
+test('the picture gives room back when the window gets lower', async ({ page }) => {
+  const rig = await demoRig(await api(), 'Line hauler');
+  await signIn(page);
+  await openWatch(page, rig.id);
+  const keep = page.getByRole('button', { name: /^Keep the last/ });
+  await expect(page.getByRole('img', { name: /^Signal over/ })).toBeVisible();
+  await page.setViewportSize({ width: 1440, height: 900 });
+  await expect(page.getByRole('navigation', { name: 'Main' })).toBeVisible();
+  await page.setViewportSize({ width: 1440, height: 700 });
+  await expect.poll(async () => (await boxOf(keep)).y + (await boxOf(keep)).height).toBeLessThanOrEqual(700);
+});

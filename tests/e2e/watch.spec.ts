@@ -157,6 +157,11 @@ test('a board that stops blanks the speed and says since when', async ({ page },
   await expect(speedOf(page)).toContainText(`no block since ${since}`);
   await expect(speedOf(page)).toContainText('health unknown');
   await expect(pictureOf(page)).toContainText('not live');
+  await expect(page.getByRole('region', { name: 'Numbers' })).toContainText('not live: as last seen');
+  await expect(page.getByRole('img', { name: /^Wheel with/ })).not.toHaveAttribute(
+    'aria-label',
+    /turns a second| at \d/,
+  );
   await expectSound(page);
 });
 

@@ -21,7 +21,7 @@ export function SensorFields({ index }: { index: number }) {
   const sensor = watch(at);
   return (
     <View style={{ gap: space.l }}>
-      <Pair>
+      <Pair least={200}>
         <FormSelect name={`${at}.kind`} label="Sensor" options={kinds} />
         <FormNumber name={`${at}.supplyV`} label="Supply" unit="V" optional />
       </Pair>

@@ -27,6 +27,8 @@ export function SpeedWord({ saying, size }: { saying: SpeedSaying; size: TypeSiz
 
 /** "running, forward", "below 0.6 rpm for 12 s": the state in words, beside what stands big. */
 export function stateWords(saying: SpeedSaying): string {
-  if (saying.big.kind === 'word') return saying.small || saying.big.text;
+  // How long ago the last block came stands beside it in a list.
+  if (saying.big.kind === 'word')
+    return saying.small.replace(/,? (last block|since) .*$/, '') || saying.big.text;
   return saying.directionWord ? `running, ${saying.directionWord}` : 'running';
 }

@@ -113,17 +113,26 @@ export function useWatchParts({ rig, view, now, controls, method, keeping }: Wat
   };
   const face = drawn?.wheelFace ?? null;
   const wheel: Omit<ComponentProps<typeof WheelPlate>, 'size'> | null =
-    face && live && face.positions.length > 0 ? { face, live: (controls.held ?? frame)!.live, rig } : null;
+    face && live && face.positions.length > 0
+      ? { face, live: (controls.held ?? frame)!.live, rig, isPast: !now.isLive && !controls.held }
+      : null;
   const keepBar: ComponentProps<typeof KeepBar> | null = keeping && {
     lookbackS: live?.lookbackS ?? 0,
     seconds: keepSeconds,
     onSeconds: (keepSeconds) => changePreferences({ keepSeconds }),
     onKeep: keeping.keep,
     busy: keeping.busy,
-    blocked: !live ? 'Waiting for the hub' : live.lookbackS <= 0 ? 'Nothing to keep yet' : null,
+    blocked: !live
+      ? 'Waiting for the hub'
+      : view.connection.status === 'waiting'
+        ? 'No link to the hub'
+        : live.lookbackS <= 0
+          ? 'Nothing to keep yet'
+          : null,
   };
   const problem = live?.setupProblem ? <SetupProblem text={live.setupProblem} /> : null;
   return {
+    isLive: now.isLive,
     subtitle: subtitle.filter(Boolean).join(' · '),
     live,
     speed,

@@ -42,7 +42,7 @@ function PhoneWatch(props: WatchViewProps) {
       </View>
       <FindingsList {...parts.findings} />
       {parts.wheel ? <WheelPlate {...parts.wheel} size={280} /> : null}
-      {parts.live ? <NumbersPlate live={parts.live} sensing={rig.sensing} /> : null}
+      {parts.live ? <NumbersPlate live={parts.live} sensing={rig.sensing} isLive={parts.isLive} /> : null}
       <CautionLine />
     </Screen>
   );
@@ -69,7 +69,7 @@ function WideWatch(props: WatchViewProps) {
           <SpeedPlate {...parts.speed} />
           {roomy ? null : <FindingsList {...parts.findings} />}
           {parts.wheel ? <WheelPlate {...parts.wheel} size={236} /> : null}
-          {parts.live ? <NumbersPlate live={parts.live} sensing={rig.sensing} /> : null}
+          {parts.live ? <NumbersPlate live={parts.live} sensing={rig.sensing} isLive={parts.isLive} /> : null}
           {roomy ? null : <CautionLine />}
         </ScrollView>
         <ScrollView

@@ -16,9 +16,9 @@ import { space } from '@/client/theme/tokens';
 
 type Face = NonNullable<LiveFrame['wheelFace']>;
 type Seen = Pick<Rig, 'sensing' | 'wheel'>;
-type WheelPlateProps = { face: Face; live: LiveFrame['live']; rig: Seen; size: number };
+type WheelPlateProps = { face: Face; live: LiveFrame['live']; rig: Seen; isPast: boolean; size: number };
 
-export function WheelPlate({ face, live, rig, size }: WheelPlateProps) {
+export function WheelPlate({ face, live, rig, isPast, size }: WheelPlateProps) {
   const { gearRatio } = rig.wheel;
   const { scale } = wheelDrawing(face, size / 2 - 4);
   // Behind a gear the wheel makes turns of its own.
@@ -32,11 +32,12 @@ export function WheelPlate({ face, live, rig, size }: WheelPlateProps) {
       style={{ gap: 0, paddingTop: space.m, paddingBottom: face.numbered ? space.xs : space.m }}
     >
       <WheelFace
-        face={face}
-        rpm={live.speedRpm === null ? null : live.speedRpm * gearRatio}
+        face={isPast ? { ...face, angleDeg: null } : face}
+        rpm={isPast || live.speedRpm === null ? null : live.speedRpm * gearRatio}
         direction={live.direction}
         size={size}
         nouns={positionNouns(rig.sensing)}
+        past={isPast}
       />
       <View style={{ flexDirection: 'row', alignItems: 'center', gap: space.s, marginRight: -space.m }}>
         <View style={{ flex: 1 }}>
@@ -85,8 +86,10 @@ function WheelTable({ face }: { face: Face }) {
   );
 }
 
+type NumbersPlateProps = { live: LiveFrame['live']; sensing: Rig['sensing']; isLive: boolean };
+
 /** The numbers behind the picture; only those that are known. */
-export function NumbersPlate({ live, sensing }: { live: LiveFrame['live']; sensing: Rig['sensing'] }) {
+export function NumbersPlate({ live, sensing, isLive }: NumbersPlateProps) {
   const [position] = positionNouns(sensing);
   const { margin, rates, phaseDeg, channels, delayS } = live;
   const facts: Fact[] = [];
@@ -116,7 +119,12 @@ export function NumbersPlate({ live, sensing }: { live: LiveFrame['live']; sensi
   if (live.shaft) facts.push(...shaftFacts(live.shaft));
   if (facts.length === 0) return null;
   return (
-    <Plate role="region" label="Numbers">
+    <Plate role="region" label="Numbers" style={{ gap: space.xs }}>
+      {isLive ? null : (
+        <Text size="small" tone="fault">
+          not live: as last seen
+        </Text>
+      )}
       <Facts facts={facts} />
     </Plate>
   );
