@@ -51,18 +51,19 @@ export class NearAliasRule implements FindingRule {
   }
 
   private raise({ severity, outcome = 'found', evidence, atS }: Seen, nowS: number): void {
-    const { paths, primary } = this.context;
-    const { name } = paths[primary]!.channel;
+    const { paths, primary, lanes } = this.context;
+    // The rate is the same for all channels.
+    const channel = lanes.length > 1 ? null : paths[primary]!.channel.name;
     this.latches[0]!.raise(
       {
         code: 'near-alias',
-        channel: name,
+        channel,
         from: atS,
         severity,
         outcome,
         at: atS,
         evidence,
-        ...wordsFor('near-alias', name, evidence),
+        ...wordsFor('near-alias', channel, evidence),
         causedBy: null,
       },
       nowS,

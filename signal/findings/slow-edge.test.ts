@@ -87,6 +87,22 @@ describe('slow edge', () => {
     expect(slow(sine(0.2), 'linear', { filter })).toEqual([]);
   });
 
+  it('a sine that had few samples a tooth is none: what was taken for noise then was signal', () => {
+    // 5 samples a tooth until 3 s, 40 from 3.2 s on.
+    const seconds = 9;
+    const turns = (t: number) => {
+      const into = Math.min(Math.max(t - 3, 0), 0.2);
+      return 4000 * Math.min(t, 3) + 4000 * into - 8750 * into ** 2 + 500 * Math.max(0, t - 3.2);
+    };
+    const noise = normal(seeded(9));
+    const sine = sampled(
+      seconds * rateHz,
+      rateHz,
+      (t) => 1.65 + Math.sin(2 * Math.PI * turns(t)) + 0.03 * noise(),
+    );
+    expect(slow(sine, 'linear')).toEqual([]);
+  });
+
   it('sees the weak pull-up of a simulated latch', () => {
     const run = (spec: typeof poles): string[] => {
       const volts = Float64Array.from(voltsOf(spec, 4)[0]!);

@@ -23,8 +23,9 @@ const scatterShare = 0.02;
 const explained = 0.6;
 /** Peaks stand above the signal by so much of the noise, and troughs below it (by simulation, 50 to 1000 samples a tooth). */
 const noiseInSwing = 4.4;
-/** With fewer samples a tooth, what is taken for noise is signal too. */
+/** With fewer samples a tooth, what is taken for noise is signal too; the noise is a median over so long at most, s. */
 const fewestSamples = 14;
+const noiseLastsS = 4;
 /** Once open, this much less is enough. */
 const staying = 0.7;
 /** A low pass this many times above the tooth frequency leaves the slope of a sine as it is. */
@@ -36,6 +37,8 @@ export class SlowEdgeRule implements FindingRule {
   private readonly context: RuleContext;
   private readonly means: readonly TurnMeans[];
   private readonly filterRiseS: number;
+  /** When the teeth last had too few samples. */
+  private coarseS = -Infinity;
 
   constructor(context: RuleContext, means: readonly TurnMeans[]) {
     this.context = context;
@@ -54,10 +57,12 @@ export class SlowEdgeRule implements FindingRule {
 
   private judge(path: ChannelPath, index: number, nowS: number): void {
     const means = this.means[index]!;
+    if (this.context.rateHz < fewestSamples * means.toothHz) this.coarseS = nowS;
     if (!means.bandStays) return;
     const latch = this.latches[index]!;
     const least = latch.open ? staying : 1;
     const linear = path.channel.sensor.kind === 'linear';
+    if (linear && nowS - this.coarseS < noiseLastsS) return;
     const sight = linear ? this.noiseMoves(path, means, least) : this.lineIsSlow(path, means, least);
     const { fromS } = means;
     if (!sight) return;
@@ -99,7 +104,6 @@ export class SlowEdgeRule implements FindingRule {
    */
   private noiseMoves(path: ChannelPath, { first, end, toothHz, swingV }: TurnMeans, least: number): Sight {
     const { noiseV, log } = path;
-    if (this.context.rateHz < fewestSamples * toothHz) return null;
     const slopeVPerS = Math.PI * toothHz * (swingV - noiseInSwing * noiseV);
     const byNoise = (noiseV / slopeVPerS) * toothHz;
     if (!(byNoise > least * explained * scatterShare)) return null;

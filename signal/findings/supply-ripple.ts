@@ -22,6 +22,8 @@ const mostUnequal = 2.5;
 /** Two swings of a ripple of 1 Hz. */
 const slowWindowS = 2;
 const fewestHalfSwings = 3;
+/** With fewer samples a tooth, where they fall moves the middles of both channels alike. */
+const fewestSamples = 8;
 /** The wheel must keep its speed for the window. */
 const mostSpread = 0.03;
 
@@ -109,7 +111,7 @@ export class SupplyRippleRule implements FindingRule {
   private slowRipple(a: Spectrum, b: Spectrum): Ripple | null {
     const { context, spectra } = this;
     const { paths, rig } = context;
-    if (a.wheel.teeth === 0) return null;
+    if (a.wheel.teeth === 0 || context.rateHz < fewestSamples * a.wheel.toothHz) return null;
     const { pulsesPerTurn } = rig.wheel;
     const ripple = commonMiddles(paths[a.index]!, paths[b.index]!, pulsesPerTurn, spectra.toS - slowWindowS);
     if (!ripple) return null;
