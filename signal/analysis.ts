@@ -38,6 +38,11 @@ type ChannelAnalysis = Analysis['channels'][string];
 /** Samples go in slices of this many, so that output is taken over before it grows large. */
 const sliceSamples = 65_536;
 
+/**
+ * An empty analysis of a capture, to be fed from its first sample on. @returns the first thing that is wrong with rig,
+ * settings, rate or channels as an issue (`validateSetup`), and `bad-filter` for a filter too slow to be run both ways;
+ * never throws for these.
+ */
 export function createAnalyser(options: AnalyserOptions): Result<Analyser, SetupIssue> {
   const { rig, settings, rateHz, channels, zeroPhase = false } = options;
   const window = new WindowKeeper(channels.length);

@@ -18,6 +18,10 @@ export type Cascade = {
   primed: boolean;
 };
 
+/**
+ * A chain at rest: not primed, so that the first sample that it is given sets the state it would have after an endless
+ * input of that. @param sections as `designFilters` gives them; none: what comes in goes out.
+ */
 export function createCascade(sections: readonly Section[]): Cascade {
   const folded = sections.length > 0 && sections.every(({ b0, b1, b2 }) => near(b1, 2 * b0) && near(b2, b0));
   const gain = folded ? sections.reduce((product, { b0 }) => product * b0, 1) : 1;

@@ -9,6 +9,10 @@ export const longestMemorySamples = 4_000_000;
 
 type Take = (arrays: readonly SampleArray[], count: number, filtered: readonly Float64Array[]) => void;
 
+/**
+ * What `take` is given: the samples as they came, how many of each array, and as many filtered volts a channel. It lags
+ * behind what was pushed until `end`.
+ */
 export class BothWaysFeed {
   private readonly channels: readonly Channel[];
   private readonly ways: BothWays[];

@@ -12,6 +12,7 @@ import { filterZeroPhase } from '@/signal/statistics/zero-phase';
 /** Least samples of a piece. */
 const leastPiece = 65_536;
 
+/** One channel, volts in and volts out; one object serves any number of stretches, one after the other. */
 export class BothWays {
   private readonly sections: readonly Section[];
   private readonly pad: number;

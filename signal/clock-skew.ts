@@ -20,6 +20,7 @@ export type Skew = {
   overS: number;
 };
 
+/** Feed it every block as it arrives; five minutes of arrivals are remembered. */
 export class ClockSkew {
   /** Finished bins, oldest first: hub time and offset (hub less stream), s. */
   private atS: number[] = [];

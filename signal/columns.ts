@@ -15,6 +15,7 @@ function grownFlags(old: Uint8Array): Uint8Array {
   return wider;
 }
 
+/** Empty. Instants in s on the stream's axis, flags as `pipeline-types.ts` names them; `count` of each column are valid. */
 export function createEdgeColumns(): EdgeColumns {
   return {
     count: 0,
@@ -38,6 +39,7 @@ function widenEdges(columns: EdgeColumns): void {
   columns.flags = grownFlags(columns.flags);
 }
 
+/** Empty: crossings that the hold-off ate, s on the stream's axis. */
 export function createRejectedColumns(): RejectedColumns {
   return { count: 0, t: new Float64Array(startLength) };
 }
@@ -48,6 +50,7 @@ export function pushRejected(columns: RejectedColumns, t: number): void {
   columns.count++;
 }
 
+/** Empty: speed in rpm, signed, NaN where it is not known, with its standard error, at instants in s. */
 export function createSpeedColumns(): SpeedColumns {
   return {
     count: 0,
@@ -96,6 +99,7 @@ export type EdgeQueue = {
 /** Queue flag: no full period had been seen yet, so that the delay taken off is the one at 0 Hz. */
 export const delayGuessed = 4;
 
+/** Empty. What was taken is not cut off at once: entries from `head` to before `count` still wait. */
 export function createEdgeQueue(): EdgeQueue {
   return {
     head: 0,

@@ -16,6 +16,7 @@ export type PyramidLevel<T extends SampleArray = SampleArray> = { min: T; max: T
 
 export const pyramidFactor = 16;
 
+/** Room for the least and most of `count` columns, in the samples' own unit. */
 export function createColumns(count: number): Columns {
   return { min: new Float64Array(count), max: new Float64Array(count) };
 }

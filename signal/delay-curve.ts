@@ -15,6 +15,7 @@ const highestShare = 0.4999;
 /** By leading zeros of the share of the rate in 32 bits: what brings the share to 1..2. */
 const toUnit = Float64Array.from({ length: 33 }, (_, zeros) => 2 ** (zeros + 1));
 
+/** The curve of one chain at one rate; without sections no delay at any frequency. */
 export function createDelayCurve(sections: readonly Section[], rateHz: number): DelayCurve {
   return {
     sections,

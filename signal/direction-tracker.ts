@@ -35,6 +35,7 @@ export type DirectionTracker = {
   made: number;
 };
 
+/** A ring of states of which nothing is known yet. It is told of edges in order of time, one channel at a time. */
 export function createDirectionTracker(table: StepTable): DirectionTracker {
   return {
     table,
@@ -62,6 +63,7 @@ export function forgetLevels(tracker: DirectionTracker): void {
   forgetSense(tracker);
 }
 
+/** After a stop or a gap two steps the same way must prove the direction anew. */
 export function forgetSense(tracker: DirectionTracker): void {
   tracker.lastStep = 0;
   tracker.sense = 0;

@@ -6,6 +6,10 @@ import type { Motion } from '@/signal/motion';
 /** A channel that has a place in the sensing arrangement, 0 for A or U. */
 export type Lane = { path: ChannelPath; queue: EdgeQueue; role: number };
 
+/**
+ * An edge is handed on only once no channel can still show an earlier one; what is not decided stays in its queue. To be
+ * called after each chunk, when all channels have seen the same samples.
+ */
 export function mergeEdges(lanes: readonly Lane[], motion: Motion): void {
   let decided = Infinity;
   for (let m = 0; m < lanes.length; m++) decided = Math.min(decided, lanes[m]!.path.decidedUpTo);

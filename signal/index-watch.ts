@@ -36,6 +36,7 @@ const sigmas = 3.5;
 /** Index pulses of an unbroken row that are not judged by. */
 const unproven = 1;
 
+/** One index channel beside the channels that count; `tick` is asked at ticks, after the edges up to them are merged. */
 export class IndexWatch {
   /** Counts a turn of the wheel: four (six) a pulse where a ring of states counts, one else. */
   readonly expected: number;

@@ -22,6 +22,7 @@ export function pulsesPerLikePole(kind: SensorKind): number {
 
 type Sensed = Pick<Channel, 'name' | 'role'> & { sensor: Pick<Channel['sensor'], 'kind' | 'activeLow'> };
 
+/** Notes in the order of the channels; none for auxiliary ones, nor where kind and polarity go together as they mostly do. */
 export function sensorNotes(channels: readonly Sensed[]): SensorNote[] {
   return channels.flatMap(({ name, role, sensor }): SensorNote[] => {
     if (role === 'aux') return [];

@@ -19,6 +19,7 @@ export type SlowRing = {
 const wantedHz = 1000;
 const length = 2048;
 
+/** Empty, at the whole part of the rate that comes nearest to a thousand samples a second. */
 export function createSlowRing(rateHz: number): SlowRing {
   const stride = Math.max(1, Math.round(rateHz / wantedHz));
   return {

@@ -5,6 +5,10 @@ import type { Motion } from '@/signal/motion';
 import type { ShaftStatus } from '@/signal/pipeline-types';
 import { speedLimits } from '@/signal/speed-limits';
 
+/**
+ * As of the last edge; null for each number that is not known (yet). @param speed how the speed is taken, for its limits.
+ * @param indexWatch null for a rig without an index channel.
+ */
 export function shaftStatus(
   motion: Motion,
   speed: Settings['speed'],

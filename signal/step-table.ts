@@ -23,6 +23,7 @@ export type StepTable = {
   places: Int8Array;
 };
 
+/** The ring of an arrangement, or null for one whose channels make none (one channel alone). */
 export function stepTable(sensing: Sensing): StepTable | null {
   if (sensing === 'quadrature') return ring([0b00, 0b10, 0b11, 0b01], [2, 1], 4);
   if (sensing === 'three-hall') return ring([1, 3, 2, 6, 4, 5], [1, 2, 4], 8);

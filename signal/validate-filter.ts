@@ -4,6 +4,10 @@ import type { SetupIssue } from '@/signal/pipeline-types';
 
 const mostFilters = 16;
 
+/**
+ * The first thing that is wrong with the filters, or null; `pointer` names the filter where there are several.
+ * @param rateHz samples a second; null: not known, and cutoffs are held against nothing but 0.
+ */
 export function filterIssues(settings: Settings, rateHz: number | null): SetupIssue | null {
   const list = Array.isArray(settings.filter) ? settings.filter : [settings.filter];
   if (list.length > mostFilters) {

@@ -102,6 +102,10 @@ function withoutPattern({ turns, teeth, teethS }: WheelTurns): number[] {
   });
 }
 
+/**
+ * Mean speed of each whole turn, rpm of the shaft, at the turn's end, s. Empty where there is no whole turn.
+ * @param sign -1 where the shaft turned in reverse.
+ */
 export function turnSpeeds(
   turns: WheelTurns | null,
   gearRatio: number,

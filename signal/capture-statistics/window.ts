@@ -18,6 +18,7 @@ export type SampleWindow = {
   volts: readonly Float64Array[];
 };
 
+/** Holds two windows at most, however long the capture; `finish` gives the better one. */
 export class WindowKeeper implements SampleTap {
   private readonly filling: SampleWindow & { volts: Float64Array[] };
   private best: SampleWindow | null = null;

@@ -30,10 +30,12 @@ export type StatisticsIssueCode =
 export type StatisticsIssue = { code: StatisticsIssueCode; detail: string };
 export type Outcome<T> = Result<T, StatisticsIssue>;
 
+/** An answer. */
 export function got<T>(value: T): Ok<T> {
   return { ok: true, value };
 }
 
+/** Why there is none: the code for programs, `detail` in words for people, with the numbers that decided. */
 export function refused(code: StatisticsIssueCode, detail: string): Failed<StatisticsIssue> {
   return { ok: false, issue: { code, detail } };
 }
