@@ -77,6 +77,52 @@ describe('mains hum', () => {
     expect(hums(() => 0.3, tone(60, 0.01))).toEqual([]);
   });
 
+  it.each([45.3, 46.8, 53.4, 55.3])('is found beside the teeth, %d of them a second', (toothHz) => {
+    const found = hums((t) => (toothHz / 24) * t, tone(50, 0.12, 3.3, 8), { seconds: 12 });
+    expect(found).toHaveLength(1);
+    expect(found[0]!.openedS).toBeLessThanOrEqual(5.8);
+    expect(found[0]!.outcome).toBe('found');
+    expect(found[0]!.to).toBeLessThan(9.6);
+  });
+
+  it('side bands of the teeth, by a speed that ripples within the turn, are none', () => {
+    const rig = testRig('single', 68);
+    for (const toothHz of [48.4, 57.8, 62.1]) {
+      const turnHz = toothHz / 68;
+      const ripple = (t: number): number => (0.01 / (6 * Math.PI)) * Math.sin(6 * Math.PI * turnHz * t);
+      const wheel = toothWheel(68, 0, (t) => turnHz * t + ripple(t));
+      const quiet = () => 0;
+      expect(hums(quiet, quiet, { rig, wheel }), `${toothHz} teeth a second`).toEqual([]);
+    }
+  });
+
+  it('harmonics of teeth that are cut off at the ends of the range are none', () => {
+    const quiet = () => 0;
+    const swing = (t: number): number => (t < 4 ? 1 : 3.5);
+    const wheel = (turnHz: number) => (t: number) =>
+      Math.min(4.75, Math.max(0.25, 2.5 + swing(t) * Math.sin(2 * Math.PI * 24 * turnHz * t)));
+    for (const toothHz of [16.66, 20, 33.2])
+      expect(hums(quiet, quiet, { wheel: wheel(toothHz / 24) }), `${toothHz} teeth a second`).toEqual([]);
+  });
+
+  it('teeth of which every second one is another may make the tone', () => {
+    const rig = testRig('single', 24);
+    const turns = (t: number): number => 5 * t;
+    const wheel = (t: number): number =>
+      2.5 + Math.sin(2 * Math.PI * 24 * turns(t)) + 0.25 * Math.sin(2 * Math.PI * 12 * turns(t));
+    const found = hums(turns, () => 0, { rig, wheel });
+    expect(found.map(({ outcome }) => outcome)).toEqual(['cannot-tell']);
+  });
+
+  it('a little of it is not held against what shakes at the band of a shaft that stands', () => {
+    const settings: Partial<Settings> = { band: { mode: 'fixed', operateV: 2.52, releaseV: 2.48 } };
+    const noise = normal(seeded(9));
+    const wheel = (t: number): number =>
+      2.5 + (t < 5 ? Math.sin(2 * Math.PI * 40 * t) : 0) + (t > 6 && t < 11 ? 0.025 * noise() : 0);
+    const found = hums(() => 0, tone(50, 0.02, 0), { seconds: 12, settings, wheel, noiseV: 0.005 });
+    expect(found).toEqual([]);
+  });
+
   it('cannot be told from run-out where the wheel turns 50 times a second, until the speed has changed', () => {
     const shaft = (t: number): number =>
       t < 5 ? 50 * t : 250 + 50 * (t - 5) - 2.5 * Math.min(2, t - 5) ** 2 - 10 * Math.max(0, t - 7);

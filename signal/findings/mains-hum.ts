@@ -148,8 +148,13 @@ export class MainsHumRule implements FindingRule {
     const { wheel } = spectrum;
     if (!wheel.locate() || this.shakes(judged.path, wheel)) return null;
     const verdict = tone ? this.verdict(judged, spectrum, tone) : 'nothing';
-    const sight = tone && verdict !== 'nothing' ? { tone, mainsHz, harmonic, verdict } : null;
-    if (wheel.toothHz === 0 || (verdict === 'found' && isFree(wheel, tone!))) return sight;
+    const isDoubtful = verdict === 'nothing' || (verdict === 'found' && besideHarmonic(wheel, tone!.hz));
+    const sight = tone && !isDoubtful ? { tone, mainsHz, harmonic, verdict } : null;
+    if (wheel.toothHz === 0 || (sight?.verdict === 'found' && isFree(wheel, sight.tone))) return sight;
+    // Less than this opens nothing, and what a line of the teeth covers is not told from it in two seconds either.
+    const least = (judged.latch.open ? stays.found : opens.found) * wheel.halfSwingV;
+    if (!(spectra.sizeNear(spectrum, hz) > least) || besideHarmonic(wheel, hz, 1)) return sight;
+    if (wheel.spreadHz > wheel.binHz) return sight;
     const longer = spectra.longerOf(spectrum);
     // A wheel that changes its speed smears its lines over more bins there.
     if (longer?.wheel.locate() && longer.wheel.spreadHz < 2 * longer.wheel.binHz) {
@@ -159,7 +164,7 @@ export class MainsHumRule implements FindingRule {
       const closer = other && !hasGone ? this.verdict(judged, longer, other) : 'nothing';
       if (other && closer !== 'nothing') return { tone: other, mainsHz, harmonic, verdict: closer };
     }
-    return tone && besideHarmonic(wheel, tone.hz) && verdict === 'found' ? null : sight;
+    return sight;
   }
 
   /** A shaft that shakes at the band as it stands makes pulses at its own pace, of all frequencies. */
@@ -223,9 +228,9 @@ export class MainsHumRule implements FindingRule {
   }
 }
 
-/** No line of the teeth is so near that it may be the tone, or beat with it. */
+/** No line of the teeth is so large there that it may beat with the tone. */
 function isFree(wheel: SlowWheel, { hz, amplitudeV }: Tone): boolean {
-  return !besideHarmonic(wheel, hz) && 2 * mostAt(wheel, hz) < amplitudeV;
+  return 2 * mostAt(wheel, hz) < amplitudeV;
 }
 
 /** Of an order of the wheel; 0 for the mean and for the teeth themselves. */

@@ -48,10 +48,10 @@ export function besideTeeth(wheel: SlowWheel, hz: number, offHz: number): boolea
 }
 
 /** True where one of the first harmonics stands so near that a tone at `hz` cannot be held against its mirror image. */
-export function besideHarmonic({ toothHz, binHz }: SlowWheel, hz: number): boolean {
+export function besideHarmonic({ toothHz, binHz }: SlowWheel, hz: number, bins = mirrorBins): boolean {
   if (toothHz === 0) return false;
   const harmonic = Math.round(hz / toothHz);
-  return harmonic > 0 && harmonic <= 3 && Math.abs(harmonic * toothHz - hz) < mirrorBins * binHz;
+  return harmonic > 0 && harmonic <= 3 && Math.abs(harmonic * toothHz - hz) < bins * binHz;
 }
 
 /**

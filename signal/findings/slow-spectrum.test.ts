@@ -52,6 +52,31 @@ describe('spectra of the slow ring', () => {
     });
   });
 
+  it('of twice the time part two tones that the shorter ones cannot', () => {
+    const spectra = spectraOf((t) => tone(50, 0.3)(t) + tone(51.2, 0.2)(t));
+    const short = spectra.list[0]!;
+    expect(toneNear(short, spectra.binHz, 51.2, 0.3)).toBeNull();
+    const longer = spectra.longerOf(short)!;
+    const { binHz } = longer.wheel;
+    expect(binHz).toBeCloseTo(1000 / 2048, 12);
+    for (const [hz, volts] of [
+      [50, 0.3],
+      [51.2, 0.2],
+    ] as const) {
+      const found = toneNear(longer, binHz, hz, 0.3)!;
+      expect(Math.abs(found.hz - hz)).toBeLessThan(0.1);
+      expect(Math.abs(found.amplitudeV / volts - 1)).toBeLessThan(0.15);
+    }
+    expect(spectra.longerOf(short)).toBe(longer);
+  });
+
+  it('of twice the time are not made before so much has come', () => {
+    const spectra = spectraOf(tone(50, 0.3));
+    const { context } = spectra as unknown as { context: RuleContext };
+    context.paths[0]!.slow.unbrokenFrom = context.paths[0]!.slow.count - 2047;
+    expect(spectra.longerOf(spectra.list[0]!)).toBeNull();
+  });
+
   it('tell the frequency of a tone between two bins to a hundredth of a bin, and its amplitude', () => {
     for (const hz of [49.5, 49.8, 50, 50.17, 50.5]) {
       const { list, binHz } = spectraOf(tone(hz, 0.3), tone(60, 0.1));
