@@ -26,8 +26,6 @@ export type BandOptions<Kind extends Band = Band> = IntakeOptions & {
   holdoffS: number;
   /** Samples of a chunk, at most. */
   chunk: number;
-  /** Edges may be found so long after they passed; 0 where other channels' edges count in order with them. */
-  findLateS: number;
   /** While no levels are known, smaller swings are no teeth, V. */
   leastFirstV: number;
   bands: BandChange[];

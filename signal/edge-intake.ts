@@ -9,7 +9,7 @@ import type { DelayCurve } from '@/signal/delay-curve';
 import type { Detector } from '@/signal/detector-state';
 import type { Section } from '@/signal/filter-design';
 import { lagOf, spreadOf } from '@/signal/flank-error';
-import { followed } from '@/signal/levels';
+import { followed, shareOfWeak } from '@/signal/levels';
 import type { Levels } from '@/signal/levels';
 import { createMarginMeter, endTooth } from '@/signal/margin-meter';
 import type { MarginMeter } from '@/signal/margin-meter';
@@ -28,6 +28,8 @@ export type IntakeOptions = {
   teethPerTurn: number;
   /** Between neighbouring samples of the filtered noise; where not given, as the sections make it of white noise. */
   correlation?: number | undefined;
+  /** Edges may be found so long after they passed; 0 where other channels' edges count in order with them. */
+  findLateS: number;
 };
 
 /**
@@ -72,6 +74,7 @@ export class EdgeIntake {
   private readonly rateHz: number;
   private readonly missing: number;
   private readonly oneTooth: boolean;
+  private readonly weakGain: number;
   private readonly delays: DelayCurve;
   private delayKnown = false;
   /** What a flank takes for one volt at mid, averaged, samples. */
@@ -82,12 +85,13 @@ export class EdgeIntake {
   private readonly oneCrossing: number;
 
   constructor(detector: Detector, levels: Levels, options: IntakeOptions) {
-    const { sections, rateHz, missingPulses, teethPerTurn } = options;
+    const { sections, rateHz, missingPulses, teethPerTurn, findLateS } = options;
     this.detector = detector;
     this.levels = levels;
     this.rateHz = rateHz;
     this.missing = missingPulses;
     this.oneTooth = teethPerTurn === 1;
+    this.weakGain = findLateS > 0 ? shareOfWeak : 0;
     const correlation = options.correlation ?? noiseBehind(sections).correlation;
     this.noiseStep = Math.sqrt(2 * (1 - correlation));
     this.oneCrossing = Math.sqrt((2 + correlation) / 3);
@@ -121,7 +125,7 @@ export class EdgeIntake {
     const { operateV, releaseV } = detector;
     const halfV = operateV - detector.midV;
     const noiseStepV = this.noiseStep * noiseV;
-    const { oneCrossing } = this;
+    const { oneCrossing, weakGain } = this;
     const periodS = 1 / rateHz;
     let { lowV, highV, wobbleV } = levels;
     let { duty, lastExtremeV, riseMidAt, fallMidAt, risePerV, fallPerV, periodSamples, delayS } = this;
@@ -145,8 +149,8 @@ export class EdgeIntake {
       lastExtremeV = extremeV;
       if (!(toothV < swingV / 2)) wobbleV *= 0.97;
       else if (oneTooth && toothV > wobbleV) wobbleV = toothV;
-      if (rising) lowV = followed(lowV, extremeV, swingV, toothV, strongAt);
-      else highV = followed(highV, extremeV, swingV, toothV, strongAt);
+      if (rising) lowV = followed(lowV, extremeV, swingV, toothV, strongAt, weakGain);
+      else highV = followed(highV, extremeV, swingV, toothV, strongAt, weakGain);
 
       const before = rising ? riseMidAt : fallMidAt;
       if (rising) {

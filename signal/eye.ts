@@ -20,6 +20,8 @@ const manyWeak = 8;
 const closedShare = 0.12;
 const fewestTeeth = 8;
 const fewestForDrift = 4;
+/** With drift taken off, it lies no further outside of levels and newest tooth, share of the swing. */
+const outsideShare = 0.2;
 /** A bump is kept clear of where that leaves this share of the eye. */
 const clearShare = 1 / 4;
 /** In the usual interval, share of the swing: what moves faster is the teeth's own doing. */
@@ -123,11 +125,13 @@ export class Eye {
     const teeth = this.spanTeeth;
     // A shaft that dithers cuts peaks and troughs short as it likes, a few of them on a line.
     const leastV = this.isRing ? strongShare * swingV : 0;
-    const driftVPerS = fitDrift(log, readableFrom(log, log.count - this.turn), fewestForDrift, leastV);
+    const fewest = this.isRing ? fewestTeeth : fewestForDrift;
+    const driftVPerS = fitDrift(log, readableFrom(log, log.count - this.turn), fewest, leastV);
     if (driftVPerS !== 0 && Math.abs(driftVPerS) * typicalS <= fastestDrift * swingV) {
       this.span(levels, typicalS, noiseV, driftVPerS);
       const isWider = this.spanHighV - this.spanLowV > widerForDrift * (high - low);
-      if (this.spanTeeth > teeth || (this.spanTeeth === teeth && isWider)) {
+      const isBetter = this.spanTeeth > teeth || (this.spanTeeth === teeth && isWider);
+      if (isBetter && this.isNear(levels, outsideShare * swingV)) {
         low = this.spanLowV;
         high = this.spanHighV;
       }
@@ -176,6 +180,14 @@ export class Eye {
     this.spanLowV = low;
     this.spanHighV = high;
     this.spanTeeth = teeth;
+  }
+
+  private isNear(levels: Levels, nearV: number): boolean {
+    const { log } = this;
+    const last = (log.count - 2) & log.mask;
+    const lowest = Math.min(levels.lowV, log.troughV[last]!);
+    const highest = Math.max(levels.highV, log.peakV[last]!);
+    return this.spanLowV >= lowest - nearV && this.spanHighV <= highest + nearV;
   }
 
   private forgetLobes(): void {

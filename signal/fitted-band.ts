@@ -8,6 +8,7 @@ import { runDetector } from '@/signal/detector';
 import { keepState, resumeAfter } from '@/signal/detector-state';
 import type { DetectorSink } from '@/signal/detector-state';
 import { Eye } from '@/signal/eye';
+import { FormerLevels } from '@/signal/former-levels';
 import { GrownTeeth } from '@/signal/grown-teeth';
 import { fitThresholds } from '@/signal/levels';
 import type { Levels } from '@/signal/levels';
@@ -34,6 +35,7 @@ export class FittedBand extends BandKeeper {
   /** What the band has to fit into: the eye, or the levels of a wheel that has but one tooth to differ from. */
   private readonly room: Eye | Levels;
   private readonly grown = new GrownTeeth();
+  private readonly former = new FormerLevels();
   private readonly history: History;
   private readonly fresh = { operateV: NaN, releaseV: NaN };
   private auditAt = 0;
@@ -139,7 +141,7 @@ export class FittedBand extends BandKeeper {
     const extremeV = detector.edges.extremeV[0]!;
     const otherV = intake.lastExtremeV;
     intake.take(noiseV, 0, this.detector.edges.count);
-    const isBack = this.finder.former.isBack(levels, rising, extremeV);
+    const isBack = this.isRing && this.former.isBack(levels, rising, extremeV, Math.abs(extremeV - otherV));
     if (isBack || (!rising && this.grown.note(levels, extremeV, otherV, intake.log.count))) {
       intake.typicalSamples = NaN;
       eye.open(levels.lowV, levels.highV);

@@ -1,48 +1,58 @@
 /**
- * The levels that were known before a hunt found smaller ones. On a shaft that may turn to and fro the smaller swing may be no
- * more than shaking with a tooth's top before the sensor: once a tooth comes as far as they did, they hold again.
+ * The levels of whole teeth, for a channel of a shaft that may turn to and fro: one that shakes cuts peaks short, a band that
+ * has found nothing else follows them, and is off to one side. Once a peak or trough comes as far as those of whole teeth
+ * did, theirs are the levels again.
  */
 import type { Levels } from '@/signal/levels';
+import { strongShare } from '@/signal/tooth-size';
 
-/** Far smaller than before, share of the swing. */
-const smallShare = 0.6;
-/** As far as before, but for so much of that swing. */
-const reachShare = 0.25;
-/** Edges of the smaller swing, and what was before is gone for good. */
-const patience = 200;
+/** Edges of full swing in a row that are whole teeth; and where they swing less than whole ones did. */
+const fewWhole = 8;
+const manyWhole = 64;
+const asLarge = 0.9;
+/** Far smaller ones never are, share of the swing, */
+const farSmaller = 0.75;
+/** unless nothing else has come for so many edges. */
+const patience = 1000;
+/** As far as whole teeth, but for so much of their swing. */
+const near = 0.25;
 
 export class FormerLevels {
   // Numbers begin as fractions: a field that was ever a whole number changes its layout later.
   private lowV = NaN;
   private highV = NaN;
-  private smallLowV = NaN;
-  private smallHighV = NaN;
-  private left = 0;
+  private row = 0;
+  private idle = 0;
 
-  /** `levels` are about to become `lowV` and `highV`. */
-  keep(levels: Levels, lowV: number, highV: number): void {
-    // What was small itself hides nothing of what was before that.
-    if (this.left === 0) {
-      this.lowV = levels.lowV;
-      this.highV = levels.highV;
+  /**
+   * An edge that `levels` have followed: its trough (`rising`) or peak, and how far that is from the last one, V.
+   * @returns true where `levels` are those of whole teeth again.
+   */
+  isBack(levels: Levels, rising: boolean, extremeV: number, toothV: number): boolean {
+    const wholeV = this.highV - this.lowV;
+    const nearV = near * wholeV;
+    const isBack = rising
+      ? extremeV < this.lowV + nearV && levels.lowV > this.lowV + nearV
+      : extremeV > this.highV - nearV && levels.highV < this.highV - nearV;
+    if (isBack) {
+      levels.lowV = this.lowV;
+      levels.highV = this.highV;
+      this.row = this.idle = 0;
+    } else {
+      this.learn(levels, toothV, wholeV);
     }
-    this.left = highV - lowV < smallShare * (this.highV - this.lowV) ? patience : 0;
-    this.smallLowV = lowV;
-    this.smallHighV = highV;
+    return isBack;
   }
 
-  /** An edge's trough (`rising`) or peak, V. @returns true where `levels` are those of before again. */
-  isBack(levels: Levels, rising: boolean, extremeV: number): boolean {
-    if (this.left === 0) return false;
-    this.left--;
-    const nearV = reachShare * (this.highV - this.lowV);
-    const isBack = rising
-      ? extremeV < this.lowV + nearV && extremeV < this.smallLowV - nearV
-      : extremeV > this.highV - nearV && extremeV > this.smallHighV + nearV;
-    if (!isBack) return false;
-    levels.lowV = this.lowV;
-    levels.highV = this.highV;
-    this.left = 0;
-    return true;
+  private learn(levels: Levels, toothV: number, wholeV: number): void {
+    const swingV = levels.highV - levels.lowV;
+    const isKnown = wholeV > 0 && this.idle < patience;
+    this.idle++;
+    this.row =
+      toothV >= strongShare * swingV && !(isKnown && swingV < farSmaller * wholeV) ? this.row + 1 : 0;
+    if (this.row < (isKnown && swingV < asLarge * wholeV ? manyWhole : fewWhole)) return;
+    this.lowV = levels.lowV;
+    this.highV = levels.highV;
+    this.idle = 0;
   }
 }

@@ -5,7 +5,6 @@
  */
 import { forgetState, keepState, stateOf, zones } from '@/signal/detector-state';
 import type { Detector } from '@/signal/detector-state';
-import { FormerLevels } from '@/signal/former-levels';
 import { createHunter, hunt, startHunt, swingFloorV } from '@/signal/hunter';
 import type { Levels } from '@/signal/levels';
 import type { Past } from '@/signal/past';
@@ -47,8 +46,6 @@ const spare = 8;
 export class LevelFinder {
   /** Edges of what was remembered are being found. */
   replaying = false;
-  /** Where they were found again as smaller ones. */
-  readonly former = new FormerLevels();
   private hunting = false;
   private starting = false;
   private huntAt = Infinity;
@@ -178,7 +175,6 @@ export class LevelFinder {
     }
     this.hunting = this.starting = false;
     this.remembered = null;
-    if (host.isRing) this.former.keep(levels, hunter.foundLowV, hunter.foundHighV);
     levels.lowV = hunter.foundLowV;
     levels.highV = hunter.foundHighV;
     // Nothing is known of the flanks yet: begin wide, and let whole teeth narrow it.

@@ -4,8 +4,9 @@
  *
  * Each accepted tooth moves its level by a quarter of what it differs, and by no more than an eighth of the swing: one
  * wild peak cannot lift the band over the teeth. A tooth less than four fifths as strong as the known swing moves it by
- * less, by a thirty-second only from a half down: a bounce just across the band, or a peak that a reversal cuts short, would
- * else pull both levels towards the band, and so invite the next. Peaks that are not counted move nothing, so levels stay where they are when the shaft stops.
+ * less, from a half down by a thirty-second only: a bounce just across the band would else pull both levels towards it, and
+ * so invite the next. Where the shaft may turn to and fro such a tooth moves nothing: one that shakes cuts as many short as it
+ * likes. Peaks that are not counted move nothing either, so levels stay where they are when the shaft stops.
  */
 import type { Band, BandLevels } from '@/signal/model';
 import { leastSigmas } from '@/signal/tooth-size';
@@ -19,7 +20,7 @@ export type Levels = {
 };
 
 const share = 1 / 4;
-const shareOfWeak = 1 / 32;
+export const shareOfWeak = 1 / 32;
 const mostOfSwing = 1 / 2;
 const weak = 0.5;
 
@@ -33,7 +34,8 @@ export function createLevels(): Levels {
 /**
  * A level after one more tooth.
  * @param value the tooth's peak or trough, V. @param toothV its peak to peak, V; NaN where that was not seen.
- * @param strongAt from this share of the swing on it counts in full; more than a half.
+ * @param strongAt from this share of the swing on it counts in full; more than a half. @param weakGain what half of the swing
+ *   and less moves it by, share of what it differs.
  */
 export function followed(
   level: number,
@@ -41,12 +43,13 @@ export function followed(
   swingV: number,
   toothV: number,
   strongAt: number,
+  weakGain: number,
 ): number {
   if (Number.isNaN(level)) return value;
   if (Number.isNaN(swingV)) return level + share * (value - level);
   const most = mostOfSwing * swingV;
   const strength = (toothV / swingV - weak) / (strongAt - weak);
-  const gain = strength < 1 ? shareOfWeak + (share - shareOfWeak) * Math.max(0, strength) : share;
+  const gain = strength < 1 ? weakGain + (share - weakGain) * Math.max(0, strength) : share;
   return level + gain * Math.min(most, Math.max(-most, value - level));
 }
 
