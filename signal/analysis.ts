@@ -39,9 +39,9 @@ type ChannelAnalysis = Analysis['channels'][string];
 const sliceSamples = 65_536;
 
 /**
- * An empty analysis of a capture, to be fed from its first sample on. @returns the first thing that is wrong with rig,
- * settings, rate or channels as an issue (`validateSetup`), and `bad-filter` for a filter too slow to be run both ways;
- * never throws for these.
+ * An empty analysis of a capture, to be fed from its first sample on.
+ * @returns the first thing that is wrong with rig, settings, rate or channels as an issue (`validateSetup`), and
+ * `bad-filter` for a filter too slow to be run both ways; never throws for these.
  */
 export function createAnalyser(options: AnalyserOptions): Result<Analyser, SetupIssue> {
   const { rig, settings, rateHz, channels, zeroPhase = false } = options;

@@ -20,7 +20,8 @@ export type Cascade = {
 
 /**
  * A chain at rest: not primed, so that the first sample that it is given sets the state it would have after an endless
- * input of that. @param sections as `designFilters` gives them; none: what comes in goes out.
+ * input of that.
+ * @param sections as `designFilters` gives them; none: what comes in goes out.
  */
 export function createCascade(sections: readonly Section[]): Cascade {
   const folded = sections.length > 0 && sections.every(({ b0, b1, b2 }) => near(b1, 2 * b0) && near(b2, b0));

@@ -6,8 +6,8 @@ import type { ShaftStatus } from '@/signal/pipeline-types';
 import { speedLimits } from '@/signal/speed-limits';
 
 /**
- * As of the last edge; null for each number that is not known (yet). @param speed how the speed is taken, for its limits.
- * @param indexWatch null for a rig without an index channel.
+ * As of the last edge; null for each number that is not known (yet).
+ * @param speed how the speed is taken, for its limits. @param indexWatch null for a rig without an index channel.
  */
 export function shaftStatus(
   motion: Motion,

@@ -128,7 +128,8 @@ const mostVoltsPerCode = 1e9;
 
 /**
  * The first thing that is wrong with the channels: a name that the rig does not have, a scale without use, a role that is
- * missing or there twice. @param channels names of those present; null: all of the rig's.
+ * missing or there twice.
+ * @param channels names of those present; null: all of the rig's.
  */
 export function channelIssue(rig: RigSetup, channels: readonly string[] | null): SetupIssue | null {
   const present = channels ?? rig.channels.map(({ name }) => name);

@@ -19,9 +19,9 @@ export type ChannelWindow = { volts: Float64Array; startS: number; rateHz: numbe
 type Edges = Analysis['channels'][string]['edges'];
 
 /**
- * Volts, seconds and shares of 1 of one channel; null for each number that the samples cannot carry. @param edges of the
- * whole capture, s. @param stretch the seconds in which duty is taken. @param window filtered volts; null: none was kept,
- * and only the duty is told.
+ * Volts, seconds and shares of 1 of one channel; null for each number that the samples cannot carry.
+ * @param edges of the whole capture, s. @param stretch the seconds in which duty is taken. @param window filtered volts;
+ * null: none was kept, and only the duty is told.
  */
 export function channelStatistics(
   edges: Edges,

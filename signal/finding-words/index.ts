@@ -12,8 +12,9 @@ const words = { ...hubWords, ...ringWords, ...channelWords, ...teethWords, ...wh
 export type WordedCode = keyof typeof words;
 
 /**
- * Message and remedy of a finding. @param channel null where it concerns the whole rig. @param evidence by the names that
- * its rule gives, units in the names; what is missing reads "undefined".
+ * Message and remedy of a finding.
+ * @param channel null where it concerns the whole rig. @param evidence by the names that its rule gives, units in the
+ * names; what is missing reads "undefined".
  */
 export function wordsFor(code: WordedCode, channel: string | null, evidence: Evidence): FindingWords {
   const wording: Wording = words[code];
