@@ -1,5 +1,6 @@
 import { Encoder } from 'cbor-x';
 import { describe, expect, it } from 'vitest';
+import type { SampleArray } from '@/signal/model';
 import { blockLimits } from '../block';
 import type { IngestIssue } from '../block';
 import { decodeCbor } from './cbor';
@@ -60,6 +61,7 @@ const nastyTexts = [
   ',',
   ':',
   '1e999',
+  '1e30',
   '-',
   'null',
   '\n',
@@ -119,6 +121,12 @@ function issueFault(issue: IngestIssue): string | undefined {
   return issue.slug === 'unreadable' && issue.at === undefined ? 'unreadable without where' : undefined;
 }
 
+/** Volts within their limit; codes are integers by their kind. */
+function areUsable(samples: SampleArray): boolean {
+  const areVolts = samples instanceof Float32Array || samples instanceof Float64Array;
+  return !areVolts || samples.every((volts: number) => Math.abs(volts) <= blockLimits.maxVolts);
+}
+
 function messageFault(result: MessageResult): string | undefined {
   if (!result.ok) return issueFault(result.issue);
   if (result.blocks.length === 0) return 'no block';
@@ -136,8 +144,7 @@ function messageFault(result: MessageResult): string | undefined {
     if (!(length >= 1 && length <= 65_536 && channels.length >= 1 && channels.length <= 8)) return 'size';
     if (new Set(channels.map(({ name }) => name)).size !== channels.length) return 'a channel twice';
     for (const { samples } of channels)
-      if (samples.length !== length || !samples.every((value: number) => Number.isFinite(value)))
-        return 'samples';
+      if (samples.length !== length || !areUsable(samples)) return 'samples';
   }
   return undefined;
 }
@@ -148,11 +155,7 @@ function recordingFault(result: RecordingResult): string | undefined {
   if (!(rateHz >= 1 && rateHz <= 1e6 && Number.isFinite(timeS))) return 'rate or time';
   if (channels.length < 1 || channels.length > 8 || length < 1) return 'size';
   for (const piece of pieces)
-    if (
-      piece.length !== channels.length ||
-      piece.some((samples) => !samples.every((v: number) => Number.isFinite(v)))
-    )
-      return 'samples';
+    if (piece.length !== channels.length || piece.some((samples) => !areUsable(samples))) return 'samples';
   return pieces.reduce((sum, piece) => sum + piece[0]!.length, 0) === length ? undefined : 'length';
 }
 
