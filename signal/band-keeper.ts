@@ -78,6 +78,10 @@ export abstract class BandKeeper implements FinderHost, DetectorSink {
     return this.intake.lastEdgeAt;
   }
 
+  get typicalSamples(): number {
+    return this.intake.typicalSamples;
+  }
+
   /** Sample up to which nothing is left to be found; NaN: all of them. */
   get decidedUpTo(): number {
     return this.finder.decidedUpTo;

@@ -123,3 +123,39 @@ describe('a fitted band', () => {
       expect(counted(sampled(5 * rateHz, rateHz, wave), 20).rises).toEqual([]);
   });
 });
+
+describe('fitted bands of a shaft that shakes between two turns', () => {
+  const shakes = [
+    { at: 0.1, by: 0.06, name: 'beside an edge' },
+    { at: 0.12, by: 0.12, name: 'across both' },
+    { at: 0.38, by: 0.07, name: 'with a top and a bottom before the sensors' },
+    { at: 0.63, by: 0.04, name: 'by little' },
+  ];
+  it.each(shakes)('count every cycle afterwards: $name', ({ at, by }) => {
+    const noise = normal(seeded(21));
+    // 60 cycles in 1 s, two or three hundred swings about one place, 60 cycles more.
+    const place = (t: number): number => {
+      if (t < 1) return 0;
+      if (t < 2) return (60 + at) * (t - 1);
+      if (t < 12)
+        return (
+          60 +
+          at +
+          by * Math.sin(2 * Math.PI * 23 * (t - 2)) * Math.min(1, 5 * (t - 2.2) ** 2 * (t > 2.2 ? 1 : 0))
+        );
+      return 60 + at + 60 * Math.min(1, t - 12);
+    };
+    const line = (phase: number) =>
+      sampled(14 * rateHz, rateHz, (t) => 1.65 + Math.sin(2 * Math.PI * (place(t) - phase)) + 0.03 * noise());
+    const pipeline = testPipeline(testRig('quadrature', 12), rateHz);
+    const lines = [line(0), line(0.25)];
+    let before = NaN;
+    for (let from = 0; from < 14 * rateHz; from += 1000) {
+      const parts = lines.map((volts) => volts.subarray(from, from + 1000));
+      pipeline.process(parts, 1000);
+      pipeline.drain();
+      if (from === 2.1 * rateHz) before = pipeline.status().pulses;
+    }
+    expect(pipeline.status().pulses - before).toBeCloseTo(60, 9);
+  });
+});

@@ -29,6 +29,8 @@ export type Hunter = {
   readonly turns: Float64Array;
   turnCount: number;
   found: boolean;
+  /** What was found lies on one side of the levels known before: see `manyAside`. */
+  aside: boolean;
   foundLowV: number;
   foundHighV: number;
 };
@@ -61,6 +63,7 @@ export function createHunter(): Hunter {
     turns: new Float64Array(most),
     turnCount: 0,
     found: false,
+    aside: false,
     foundLowV: NaN,
     foundHighV: NaN,
   };
@@ -164,7 +167,8 @@ function settled(hunter: Hunter): boolean {
   if (areAlike(coarse, count, fewAlike)) take(hunter, coarse, count, fewAlike);
   else if (areAlike(turns, turnCount, manyAlike)) take(hunter, turns, turnCount, manyAlike);
   else return false;
-  hunter.found = !isAside(hunter) || areAlike(turns, turnCount, hunter.manyAside);
+  hunter.aside = isAside(hunter);
+  hunter.found = !hunter.aside || areAlike(turns, turnCount, hunter.manyAside);
   return hunter.found;
 }
 

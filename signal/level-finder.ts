@@ -24,6 +24,8 @@ export type FinderHost = {
   readonly leastFirstV: number;
   readonly edgeCount: number;
   readonly lastEdgeAt: number;
+  /** The usual interval between teeth; NaN: not known. */
+  readonly typicalSamples: number;
   /** Runs the band over `v[from..to]` and takes what edges it makes. @returns the first index not scanned. */
   scan(v: Float64Array, from: number, to: number, base: number, past: Past | null): number;
   /** New levels were found: thresholds are to be set from them, and from what is remembered, as of sample `at`. */
@@ -40,6 +42,10 @@ const quietS = 1;
 /** Small swings aside of the known ones' middle that are believed; a shaft that may shake takes more. */
 const many = 8;
 const manyOfRing = 24;
+/** So often they are not believed where they come at another pace than the teeth did: the shaft stopped in between. */
+const refusals = 400;
+const leastPace = 0.6;
+const mostPace = 1.5;
 /** Samples by which remembering begins before the last edge is out of reach. */
 const spare = 8;
 
@@ -49,6 +55,7 @@ export class LevelFinder {
   private hunting = false;
   private starting = false;
   private huntAt = Infinity;
+  private refused = 0;
   private readonly hunter = createHunter();
   private readonly detector: Detector;
   private readonly levels: Levels;
@@ -115,6 +122,7 @@ export class LevelFinder {
 
   private startAgain(): void {
     this.hunting = true;
+    this.refused = 0;
     startHunt(this.hunter, this.leastSwingV(), this.levels, this.host.isRing ? manyOfRing : many);
   }
 
@@ -161,9 +169,19 @@ export class LevelFinder {
         return next;
       }
     }
-    if (this.hunting && hunter.found) this.adopt(v, stop, base);
+    if (this.hunting && hunter.found && this.isBelieved(base + stop)) this.adopt(v, stop, base);
     if (!this.isBusy) detector.pauseAt = this.huntAt;
     return stop + 1;
+  }
+
+  /** A swing that lost much of its size at once goes on at the teeth's pace; a shaft that came to rest and shakes has its own. */
+  private isBelieved(at: number): boolean {
+    const { hunter, host } = this;
+    if (!hunter.aside || !host.isRing || this.refused >= refusals) return true;
+    const pace = (at - host.lastEdgeAt) / (hunter.turnCount / 2) / host.typicalSamples;
+    if (pace >= leastPace && pace <= mostPace) return true;
+    this.refused++;
+    return false;
   }
 
   private adopt(v: Float64Array, at: number, base: number): void {
