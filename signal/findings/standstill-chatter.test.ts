@@ -91,6 +91,21 @@ describe('a shaft that really moves', () => {
     }
   });
 
+  it('is not taken for one where hum on a line at rest was taken for teeth before it started', () => {
+    for (const [humV, startS, place] of [
+      [0.02, 3, 0.01],
+      [0.1, 0.8, 0],
+    ] as const) {
+      const hums: Ring = {
+        ...one,
+        turnsAt: (t) => place + speeds([0, 0], [3, 0], [3 + startS, 4], [12, 4])(t),
+        spoil: (volts, _channel, t) => volts + humV * Math.sin(2 * Math.PI * 100 * t),
+        noiseV: 0.001,
+      };
+      expect(found(hums, single)).toEqual([]);
+    }
+  });
+
   it('is not taken for one where a channel is dead, where lines are in phase, or where a tooth bounces', () => {
     const turning = (t: number) => 4 * t;
     const dies: Ring = {

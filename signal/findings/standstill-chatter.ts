@@ -1,7 +1,7 @@
 import { EdgeWalk } from '@/signal/findings/edge-walk';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { unrestOf } from '@/signal/findings/unrest';
+import { grown, unrestOf } from '@/signal/findings/unrest';
 import type { RunReference, Unrest } from '@/signal/findings/unrest';
 import { wordsFor } from '@/signal/finding-words';
 import { stepTable } from '@/signal/step-table';
@@ -93,6 +93,8 @@ export class StandstillChatterRule implements FindingRule {
     if (!hasSlowed && !(log.peakV[last]! - log.troughV[last]! < tiny * swingV)) return null;
     const unrest = unrestOf(log, gapS, 1 / rateHz, rig.wheel.missingPulses);
     if (!unrest?.isIrregular || !isGoingOn(unrest, nowS)) return null;
+    // What was learnt from was no wheel.
+    if (unrest.mostV > grown * swingV) return null;
     const isTiny = unrest.mostV < tiny * swingV;
     const isSlow = hasSlowed && unrest.mostRatio < mostRatio;
     if (!isTiny && !isSlow) return null;

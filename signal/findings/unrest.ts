@@ -63,7 +63,19 @@ export function unrestOf(log: ToothLog, sinceS: number, stepS: number, missing: 
   const meanS = (lastS - fromS) / unrestIntervals;
   const unrest = { isIrregular: false, fromS, lastS, meanS, longestS, mostRatio: 1, mostV, leastV };
   judgeChanges(unrest, stepS);
+  if (missing > 0 && unrest.isIrregular) judgeWithGap(unrest, stepS, missing + 1);
   return unrest;
+}
+
+/** While the speed changes the gap is hardly longer than its neighbours: whichever interval it may be, what is left is judged. */
+function judgeWithGap(unrest: Unrest, stepS: number, whole: number): void {
+  for (let k = 0; k < unrestIntervals && unrest.isIrregular; k++) {
+    const gapS = intervals[k]!;
+    intervals[k] = gapS / whole;
+    judgeChanges(unrest, stepS);
+    intervals[k] = gapS;
+  }
+  if (unrest.isIrregular) judgeChanges(unrest, stepS);
 }
 
 function judgeChanges(unrest: Unrest, stepS: number): void {
@@ -71,6 +83,7 @@ function judgeChanges(unrest: Unrest, stepS: number): void {
   let changes = 0;
   let turns = 0;
   let way = 0;
+  unrest.mostRatio = 1;
   for (let k = 1; k < unrestIntervals; k++) {
     const ratio = intervals[k]! / intervals[k - 1]!;
     unrest.mostRatio = Math.max(unrest.mostRatio, ratio, 1 / ratio);
@@ -108,6 +121,8 @@ const steadyRatio = 1.1;
 const everyS = 0.4;
 /** So many times the shortest tooth is nearly at rest. */
 const atRest = 3;
+/** Teeth so many times larger than those that were learnt from. */
+export const grown = 2.5;
 
 /** What a channel was like when the shaft last turned steadily for a turn and for a dozen teeth. */
 export class RunReference {
@@ -141,6 +156,8 @@ export class RunReference {
     const nearlyRestS = atRest * (rig.wheel.missingPulses + 1) * this.toothS;
     if (motion.state === 'stopped' || longestS > nearlyRestS) this.hasSlowed = true;
     if (motion.state !== 'running' || motion.calm.teeth < needed || unrest.isIrregular) return;
+    // Edges of hum or noise were learnt from on a line at rest: no wheel's teeth grow like that.
+    if (mostV > grown * this.swingV) this.toothS = this.swingV = NaN;
     if (mostRatio > steadyRatio + 2 / (meanS * rateHz)) return;
     // Weak teeth alone are no turning wheel's, unless they stay for turns on end.
     if (mostV < 0.6 * this.swingV && motion.calm.teeth < 3 * needed) return;
