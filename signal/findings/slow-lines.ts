@@ -29,8 +29,9 @@ export function mostAt(wheel: SlowWheel, hz: number): number {
     if (on && !Number.isNaN(known)) share = 0.03 + 1.5 * known * lobe(Math.max(0, off - smearHz) / binHz);
     // Of a trapezoid: 4 / (pi h) of a square wave, less beyond 1 / (pi flank).
     else share = ((on ? 2 : 0.5) * 1.27 * Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS))) / h;
-    // A line that is swept over so many bins has its power in all of them.
-    most += (share * halfSwingV) / Math.max(1, Math.sqrt(smearHz / (2 * binHz)));
+    // A line swept over many bins has its power in all of them; high ones are jittered by every tooth besides.
+    const bins = Math.max(1, smearHz / (2 * binHz));
+    most += (share * halfSwingV) / (h <= 3 ? Math.sqrt(bins) : bins);
   }
   return most;
 }
