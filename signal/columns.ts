@@ -90,6 +90,10 @@ export type EdgeQueue = {
   delayS: Float64Array;
   /** Standard error of the mid crossing, s; NaN where the noise is not known. */
   sigmaS: Float64Array;
+  /** Of that error what the line between two samples makes, rms, s: alike for edges that lie alike between samples; 0: not known. */
+  gridS: Float64Array;
+  /** Samples a second; NaN: not known. */
+  rateHz: number;
   /** The peak before a falling, the trough before a rising edge, V. */
   extremeV: Float64Array;
   /** As in `EdgeColumns`, and `delayGuessed`. */
@@ -100,7 +104,7 @@ export type EdgeQueue = {
 export const delayGuessed = 4;
 
 /** Empty. What was taken is not cut off at once: entries from `head` to before `count` still wait. */
-export function createEdgeQueue(): EdgeQueue {
+export function createEdgeQueue(rateHz = NaN): EdgeQueue {
   return {
     head: 0,
     count: 0,
@@ -108,6 +112,8 @@ export function createEdgeQueue(): EdgeQueue {
     midS: new Float64Array(startLength),
     delayS: new Float64Array(startLength),
     sigmaS: new Float64Array(startLength),
+    gridS: new Float64Array(startLength),
+    rateHz,
     extremeV: new Float64Array(startLength),
     flags: new Uint8Array(startLength),
   };
@@ -125,6 +131,7 @@ function widenQueue(queue: EdgeQueue): void {
   queue.midS = grown(queue.midS);
   queue.delayS = grown(queue.delayS);
   queue.sigmaS = grown(queue.sigmaS);
+  queue.gridS = grown(queue.gridS);
   queue.extremeV = grown(queue.extremeV);
   queue.flags = grownFlags(queue.flags);
 }

@@ -50,7 +50,7 @@ const curved = 0.02;
 
 export class EdgeIntake {
   readonly edges: EdgeColumns = createEdgeColumns();
-  readonly queue: EdgeQueue = createEdgeQueue();
+  readonly queue: EdgeQueue;
   readonly marginMeter: MarginMeter;
   readonly log: ToothLog;
   edgeCount = 0;
@@ -89,6 +89,7 @@ export class EdgeIntake {
     this.detector = detector;
     this.levels = levels;
     this.rateHz = rateHz;
+    this.queue = createEdgeQueue(rateHz);
     this.missing = missingPulses;
     this.oneTooth = teethPerTurn === 1;
     this.weakGain = findLateS > 0 ? shareOfWeak : 0;
@@ -205,6 +206,7 @@ export class EdgeIntake {
       queue.midS[q] = midS;
       queue.delayS[q] = delayS;
       queue.sigmaS[q] = Math.sqrt(noise * noise + grid) * periodS;
+      queue.gridS[q] = off * periodS;
       queue.extremeV[q] = extremeV;
       queue.flags[q] = flags | (this.delayKnown ? 0 : delayGuessed);
       if (rising) {

@@ -29,6 +29,7 @@ const leastTold = 0.64;
 const toldOfTurn = 1.5;
 const inStep = 0.25;
 const toldInStep = 2.7;
+const offOfLine = 1.39 / 1.2;
 /** A change of speed within a window is believed where chance would make it this many standard errors only once in 400 times. */
 const believed = 3;
 /** Ends and line disagree by more than so many standard errors by chance only once in nine times. */
@@ -40,6 +41,9 @@ export class SpeedError {
   readonly scatter: SpeedScatter;
   /** Standard error of the newest tooth as noise and sample grid tell it, s; NaN: not known. */
   sigmaS = NaN;
+  /** Of the newest tooth what the line between two samples makes, rms, s, where there is one, and samples a second. */
+  gridS = 0;
+  rateHz = NaN;
   /** Time for one position, s. */
   perPositionS = NaN;
   /** Unevenness too slow from tooth to tooth to be seen in the scatter: variance of the share by which a pitch is off. */
@@ -85,7 +89,33 @@ export class SpeedError {
     ends.measure(from, this.perPositionS);
     let square = (ends.sum * tooth) / (spans * spans) + this.hidden * part;
     square += this.doubted(from, spans);
+    square += this.ofGrid(ring.times[(ring.next - 1) & mask]! - ring.times[from & mask]!);
     this.share = margin * Math.sqrt(square);
+  }
+
+  /**
+   * What the sample grid adds to the square over a stretch of `seconds`. Edges that lie alike between two samples are off
+   * alike, so that no disagreement shows it: over d samples both ends differ by about 2 sin(pi d) of what one is off, rms.
+   */
+  private ofGrid(seconds: number): number {
+    const { gridS, rateHz } = this;
+    if (!(gridS > 0)) return 0;
+    const off = (2 * gridS * Math.sin(Math.PI * seconds * rateHz)) / seconds;
+    return off * off;
+  }
+
+  /**
+   * The same for the slope of a line over `spans` positions: as they drift through the grid by d samples in all it is
+   * bent by up to twice the most that an edge is off (1.39 of its rms), by less the more often they pass through it.
+   */
+  private ofGridAlong(seconds: number, spans: number): number {
+    const { gridS, rateHz } = this;
+    if (!(gridS > 0)) return 0;
+    const perPosition = (seconds / spans) * rateHz;
+    const drift = spans * Math.abs(perPosition - Math.round(perPosition));
+    const reach = drift < 0.5 ? Math.sin(Math.PI * drift) : Math.min(1, 1 / drift);
+    const off = (offOfLine * reach * gridS) / seconds;
+    return off * off;
   }
 
   /** What a tooth far off its place, or one too many or too few, adds to the square. */
@@ -103,6 +133,7 @@ export class SpeedError {
     let edge = marginOfTurn * marginOfTurn * edges * variance;
     if (told > 0) edge = Math.max(edge, (variance < inStep * told ? toldInStep : toldOfTurn) * told);
     let square = (edge * ends.sum) / (2 * positions * positions);
+    square += this.ofGrid(turns.turnS);
     if (scatter.isSlip) square += this.doubted(from, positions);
     if (this.unproven > 0) square += (this.unproven / positions) ** 2;
     this.share = Math.sqrt(square);
@@ -134,6 +165,7 @@ export class SpeedError {
     const chance = tooth * (2 / (spans * spans) - 1 / spread);
     if (disagreed * disagreed > byChance * byChance * chance) square += disagreed * disagreed - chance;
     square += this.doubted(line.from, spans);
+    square += this.ofGridAlong(line.perPositionS * spans, spans);
     if (this.unproven > 0 && spans >= positions) square += (this.unproven / positions) ** 2;
     this.share = margin * Math.sqrt(square);
   }

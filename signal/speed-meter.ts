@@ -25,6 +25,9 @@ export class SpeedMeter {
   /** Instant of the tooth that `add` is to take, s, its standard error, s, and its learnt offset in positions. */
   t = NaN;
   sigmaS = NaN;
+  /** Of that error the part of the sample grid, s, and samples a second; see `SpeedError`. */
+  gridS = 0;
+  rateHz = NaN;
   offset = 0;
   private readonly method: SpeedMethod;
   private readonly turnPositions: number;
@@ -124,6 +127,8 @@ export class SpeedMeter {
     error.scatter.note();
     if (ring.count < 2) return false;
     error.sigmaS = this.sigmaS;
+    error.gridS = this.gridS;
+    error.rateHz = this.rateHz;
     this.judge(from);
     const { latest } = this;
     // Two teeth at one instant: a filter's delay that changed between them. There is no speed in that.

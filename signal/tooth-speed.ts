@@ -87,6 +87,7 @@ export class ToothSpeed {
       this.pitch.begin();
       meter.t = t;
       meter.sigmaS = queue.sigmaS[i]!;
+      meter.rateHz = queue.rateHz;
       meter.add(this.place);
     } else {
       if (meter.count === 1 && this.firstGuessed && !guessed) {
@@ -100,6 +101,7 @@ export class ToothSpeed {
       if (spans > 0) {
         meter.t = t;
         meter.sigmaS = queue.sigmaS[i]!;
+        meter.gridS = queue.gridS[i]!;
         if (this.advance(spans)) found = true;
       } else {
         this.waitingT = t;

@@ -70,6 +70,8 @@ export class WidthReader {
     lead.midS[0] = queue.midS[i]!;
     lead.delayS[0] = queue.delayS[i]!;
     lead.sigmaS[0] = queue.sigmaS[i]!;
+    lead.gridS[0] = queue.gridS[i]!;
+    lead.rateHz = queue.rateHz;
     lead.extremeV[0] = queue.extremeV[i]!;
     lead.flags[0] = queue.flags[i]!;
   }
