@@ -40,6 +40,24 @@ describe('edge bounce', () => {
     expect(evidence.toothS).toBeCloseTo(0.009, 3);
   });
 
+  it('is found where few teeth come, and not all of them bounce', () => {
+    // 13 teeth a second; the flank of every fifth drops back for 2 ms, at another place of the wheel each turn.
+    const seldom = (every: number) => (t: number) => {
+      const tooth = Math.floor(13 * t);
+      const phase = 13 * t - tooth;
+      const bouncing = t > 3 && t < 7 && tooth % every === 0;
+      return phase < 0.5 && !(bouncing && phase > 0.05 && phase < 0.08) ? 3 : 0.2;
+    };
+    const [finding, ...more] = bounces(sampled(120_000, rateHz, seldom(5)));
+    expect(more).toEqual([]);
+    expect(finding).toMatchObject({ severity: 'warn', outcome: 'found' });
+    expect(finding!.evidence.shortPercent).toBeGreaterThan(5);
+    expect(finding!.evidence.shortPercent).toBeLessThan(20);
+    expect(finding!.to!).toBeGreaterThan(6);
+    expect(finding!.to!).toBeLessThan(9);
+    expect(bounces(sampled(120_000, rateHz, seldom(29)))).toEqual([]);
+  });
+
   it('is not said of a steady wheel, of a start from rest, nor of a sudden stop', () => {
     expect(bounces(sampled(40_000, rateHz, (t) => square(t, false)))).toEqual([]);
     const motion = (t: number) => (t < 1 ? 0 : t < 3 ? 15 * (t - 1) ** 2 : 60 + 60 * (Math.min(t, 5) - 3));

@@ -1,4 +1,5 @@
 import type { ChannelPath } from '@/signal/channel-path';
+import { RecentBounces } from '@/signal/findings/recent-bounces';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { wordsFor } from '@/signal/finding-words';
@@ -14,6 +15,9 @@ const windowS = 0.3;
 const fewestTeeth = 8;
 /** A sudden stop makes one such pair, not several. */
 const fewestShort = 3;
+/** An open finding stays until bounces keep away for so many times their mean distance, but no longer than so many seconds. */
+const timesApart = 2;
+const longestApartS = 1.5;
 /** Crossings that band or hold-off kept back, as share of the edges. */
 const heldOpensAt = 0.05;
 const heldStaysAt = 0.025;
@@ -27,6 +31,7 @@ const sigmasOfBand = 6;
 type Lane = {
   path: ChannelPath;
   meter: IntervalMeter;
+  recent: RecentBounces;
   fromS: number;
   heldFromS: number;
   keptBack: number;
@@ -55,6 +60,7 @@ export class EdgeBounceRule implements FindingRule {
     this.lanes = context.lanes.map((index) => ({
       path: paths[index]!,
       meter: createIntervalMeter(),
+      recent: new RecentBounces(),
       fromS: NaN,
       heldFromS: NaN,
       keptBack: 0,
@@ -79,19 +85,29 @@ export class EdgeBounceRule implements FindingRule {
     for (const lane of this.lanes) {
       lane.fromS = lane.heldFromS = NaN;
       restartIntervals(lane.meter);
+      lane.recent.clear();
     }
   }
 
   private judgeCounted(lane: Lane, latch: FindingLatch, nowS: number): void {
-    const { meter } = lane;
+    const { meter, recent } = lane;
     if (Number.isNaN(lane.fromS)) lane.fromS = nowS;
     if (!(nowS - lane.fromS >= windowS) || meter.counted < fewestTeeth) return;
-    const share = meter.short / meter.counted;
-    const keeps = latch.open && latch.open.severity !== 'note' ? staysAt : opensAt;
-    if (meter.short >= fewestShort && share > keeps && !isAtPlaces(meter, this.teethPerTurn)) {
-      this.raise(latch, lane, nowS, share > faultAt ? 'fault' : 'warn', lane.fromS, meter.lastShortT, {
+    recent.add(lane.fromS, meter.counted, meter.short, meter.shortestS, nowS);
+    const isOpen = latch.open !== null && latch.open.severity !== 'note';
+    // The window alone where it holds enough, so that bounce which sets in is seen at its full share.
+    const { fromS, counted, short, shortestS } =
+      meter.short >= fewestShort
+        ? { fromS: lane.fromS, counted: meter.counted, short: meter.short, shortestS: meter.shortestS }
+        : recent;
+    const share = short / counted;
+    const apartS = (timesApart * (nowS - fromS)) / short;
+    const isThere = !isOpen || nowS - meter.lastShortT < Math.min(apartS, longestApartS);
+    const isMany = short >= fewestShort && share > (isOpen ? staysAt : opensAt);
+    if (isMany && isThere && !isAtPlaces(meter, this.teethPerTurn)) {
+      this.raise(latch, lane, nowS, share > faultAt ? 'fault' : 'warn', fromS, meter.lastShortT, {
         shortPercent: 100 * share,
-        shortestS: meter.shortestS,
+        shortestS,
         toothS: meter.toothS,
       });
     }

@@ -42,7 +42,13 @@ export const edgeBounce: CaseMaker = (draw) => {
               share: draw.uniform(0.9, 1.2),
             },
           ]
-        : [{ kind: 'noise', ...span, rmsV: machine.noiseV * draw.uniform(5, 7) }];
+        : [
+            {
+              kind: 'noise',
+              ...span,
+              rmsV: Math.max(machine.noiseV * draw.uniform(5, 7), leastNoise(machine)),
+            },
+          ];
   const band: Band =
     variant === 'narrow band' ? narrowBand(machine) : variant === 'ringing' ? halfwayBand(machine) : fitted;
   return {
@@ -75,6 +81,11 @@ function ringFor({ toothHz, rateHz }: Machine, share: number): { hz: number; dec
 function narrowBand({ sensor, noiseV }: Machine): Band {
   const middleV = (sensor.lowV + sensor.highV) / 2;
   return { mode: 'fixed', operateV: middleV + 2.8 * noiseV, releaseV: middleV - 2.8 * noiseV };
+}
+
+/** Noise makes a flank bounce where it is larger than what that climbs from one sample to the next: less hardly ever does. */
+function leastNoise({ sensor, toothHz, rateHz }: Machine): number {
+  return (1.25 * Math.PI * sensor.swingV * toothHz) / rateHz;
 }
 
 /** A fitted band would find the ends of the ringing, and stand clear of it. */
