@@ -156,9 +156,9 @@ export class ChannelPath {
     this.watch.keepRing(on);
   }
 
-  /** Edges that came within a hold-off and were made at its end. */
-  get lateCount(): number {
-    return this.keeper.detector.lateCount;
+  /** Crossings of the band within hold-offs that made no edge: of teeth, or of bounce. */
+  get eatenCount(): number {
+    return this.keeper.detector.eatenCount;
   }
 
   /** Least and most raw volts of every thirty-second sample since `restartSpread`. */

@@ -27,13 +27,16 @@ export function runHold(
       if (beyond) {
         const late = !(crosses && at >= d.holdEndAt);
         const rising = !d.high;
-        if (late) d.lateCount++;
+        if (late && !crosses) d.eatenCount--;
         record(d, (rising ? edgeRising : 0) | (late ? edgeLate : 0));
         d.edges.at[d.edges.count - 1] = late ? d.holdEndAt : at;
         settle(d, rising);
         d.extremeV = x;
         return j + 1;
       }
+      if (crosses) d.eatenCount++;
+      // On its way back from the other side: where it comes back to, no edge tells of it either.
+      if ((d.wouldBeHigh !== crosses) !== d.high) d.eatenCount++;
       if (d.high) d.zone = x < d.midV ? zones.highDown : zones.high;
       else d.zone = x > d.midV ? zones.lowUp : zones.low;
       d.reachV = x;
@@ -42,6 +45,7 @@ export function runHold(
     if (crosses) {
       d.wouldBeHigh = !d.wouldBeHigh;
       d.rejectedAt = base + j;
+      d.eatenCount++;
       sink.rejected(at, NaN, d.wouldBeHigh);
     }
     if (d.high ? x > d.extremeV : x < d.extremeV) d.extremeV = x;

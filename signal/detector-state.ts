@@ -41,8 +41,8 @@ export type Detector = {
   rejectedAt: number;
   holdSamples: number;
   holdEndAt: number;
-  /** Edges made at the end of a hold-off, since they came within it. */
-  lateCount: number;
+  /** Crossings of the band within hold-offs that made no edge, not even a late one at their end. */
+  eatenCount: number;
   /** State during hold-off, and where a band without hold-off would be. */
   high: boolean;
   wouldBeHigh: boolean;
@@ -89,7 +89,7 @@ export function createDetector(holdSamples: number, pauseAtEdges: boolean): Dete
     rejectedAt: NaN,
     holdSamples,
     holdEndAt: NaN,
-    lateCount: 0,
+    eatenCount: 0,
     high: false,
     wouldBeHigh: false,
     pauseAt: Infinity,

@@ -1,5 +1,5 @@
-/** What the raw signal shows and the band does not: too quick, hidden by noise, or behind a filter. */
-import { short } from '@/signal/finding-words/values';
+/** What the signal shows and the edges do not: too quick, hidden by noise, behind a filter, or within the hold-off. */
+import { short, time } from '@/signal/finding-words/values';
 import type { Evidence, FindingWords } from '@/signal/finding-words/values';
 
 export function tooFast(channel: string | null, evidence: Evidence): FindingWords {
@@ -32,5 +32,18 @@ export function takenByFilter(channel: string | null, evidence: Evidence): Findi
       evidence.toneHz === undefined
         ? 'Take the filter off and look again: where the shaft turns, its teeth are counted then.'
         : `Let the filter pass ${short(evidence.toneHz)} Hz, or take it off, if that is the shaft; if the shaft stands, look what else swings so.`,
+  };
+}
+
+export function eatenByHoldoff(channel: string | null, evidence: Evidence): FindingWords {
+  const { holdoffS, limitS, limitRpm, speedTimes } = evidence;
+  if (evidence.outcome === 'cannot-tell')
+    return {
+      message: `Channel ${channel} crosses its band every ${time(limitS)} within the hold-off of ${time(holdoffS)}: teeth that it eats, or bounce that lasts as long as it does.`,
+      remedy: 'Set the hold-off to 0 and look again: bounce is found as such then, and teeth are counted.',
+    };
+  return {
+    message: `The hold-off of ${time(holdoffS)} is longer than half a tooth, which takes ${time(evidence.toothS)}, so that it eats edges of channel ${channel} and the speed reads about ${short(speedTimes)} times what it is.`,
+    remedy: `Set a hold-off well below ${time(limitS)}, or none; as it is, teeth are counted right below ${short(limitRpm)} rpm only.`,
   };
 }

@@ -1,4 +1,5 @@
 /** What is wrong with the wheel, and what usually mends it. */
+import { eatenByHoldoff } from '@/signal/finding-words/unseen';
 import { short, time, whole } from '@/signal/finding-words/values';
 import type { Evidence, Wording } from '@/signal/finding-words/values';
 
@@ -80,10 +81,10 @@ export const wheelWords = {
           remedy:
             'Centre the wheel on the shaft and look at bore, bearing and bent shaft; until then keep the band well inside the weakest tooth.',
         },
-  'wrong-count': (channel, evidence) => ({
-    message: countMessage(channel, evidence),
-    remedy: countRemedy(evidence),
-  }),
+  'wrong-count': (channel, evidence) =>
+    evidence.by === 'hold-off'
+      ? eatenByHoldoff(channel, evidence)
+      : { message: countMessage(channel, evidence), remedy: countRemedy(evidence) },
 } satisfies Record<string, Wording>;
 
 function countMessage(channel: string | null, evidence: Evidence): string {

@@ -53,6 +53,31 @@ describe('what follows from what', () => {
     expect(causeOf(bounce, [finding('mains-hum', { outcome: 'cannot-tell' })])).toBeNull();
   });
 
+  it('knows what a hold-off that eats teeth makes of both lines, and folds it under nothing', () => {
+    const eaten = finding('wrong-count', { from: 11, evidence: { by: 'hold-off' } });
+    const skips = finding('illegal-state', { channel: null });
+    expect(causeOf(finding('phase-error', { channel: 'B' }), [eaten, skips])).toBe('wrong-count');
+    expect(causeOf(skips, [eaten])).toBe('wrong-count');
+    expect(causeOf(eaten, [skips])).toBeNull();
+    expect(causeOf(skips, [finding('wrong-count', { evidence: { by: 'index' } })])).toBeNull();
+    expect(causeOf(skips, [{ ...eaten, outcome: 'cannot-tell' }])).toBeNull();
+    expect(causeOf(finding('clipping'), [eaten])).toBeNull();
+  });
+
+  it('does not accuse the wheel of what is noise, or left by a filter that takes its teeth away', () => {
+    for (const against of ['noise', 'filter']) {
+      const drowned = finding('weak-swing', { severity: 'fault', evidence: { against } });
+      const chatter = finding('standstill-chatter');
+      for (const code of ['extra-pulse', 'uneven-teeth', 'wrong-count', 'run-out', 'edge-bounce'] as const)
+        expect(causeOf(finding(code), [drowned])).toBe('weak-swing');
+      expect(causeOf(chatter, [drowned])).toBe('weak-swing');
+      expect(causeOf(drowned, [chatter])).toBeNull();
+      expect(causeOf(finding('extra-pulse', { channel: 'B' }), [drowned])).toBeNull();
+      expect(causeOf(finding('extra-pulse'), [{ ...drowned, severity: 'warn' }])).toBeNull();
+    }
+    expect(causeOf(finding('uneven-teeth'), [finding('near-alias')])).toBe('near-alias');
+  });
+
   it('never folds a finding under one of its own consequences', () => {
     const missing = finding('missing-tooth', { causedBy: 'weak-swing' });
     const runOut = finding('run-out', { causedBy: 'missing-tooth' });

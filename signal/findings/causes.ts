@@ -36,7 +36,7 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
   'edge-bounce': ['slow-edge', 'mains-hum', 'supply-ripple', 'standstill-chatter', 'near-alias'],
   'duty-shift': ['inverted-channel', 'offset-drift', 'clipping', 'slow-edge', 'weak-swing', 'supply-ripple'],
   'slow-edge': ['near-alias', 'weak-swing', 'mains-hum', 'supply-ripple', 'standstill-chatter'],
-  'uneven-teeth': ['missing-tooth', 'extra-pulse', 'edge-bounce', 'run-out', 'wrong-count'],
+  'uneven-teeth': ['missing-tooth', 'extra-pulse', 'edge-bounce', 'run-out', 'wrong-count', 'near-alias'],
   'run-out': ['missing-tooth', 'extra-pulse', 'supply-ripple', 'wrong-count'],
   'weak-swing': [
     'standstill-chatter',
@@ -57,6 +57,27 @@ const causesOf: Partial<Record<FindingCode, readonly FindingCode[]>> = {
   'lost-samples': ['board-restart'],
 };
 
+/** Edges that are not those of the teeth make these of a sound wheel. */
+const ofWrongEdges: readonly FindingCode[] = [
+  'direction-flip',
+  'illegal-state',
+  'missing-tooth',
+  'extra-pulse',
+  'uneven-teeth',
+  'run-out',
+  'duty-shift',
+  'slow-edge',
+];
+/** A hold-off that eats teeth these as well, on any channel. */
+const ofHoldoff: readonly FindingCode[] = [...ofWrongEdges, 'phase-error', 'weak-swing'];
+/** Teeth that drown in noise, or that the filter takes away, these. */
+const ofDrowned: readonly FindingCode[] = [
+  ...ofWrongEdges,
+  'edge-bounce',
+  'wrong-count',
+  'standstill-chatter',
+];
+
 const reachS = 2;
 
 /**
@@ -65,12 +86,19 @@ const reachS = 2;
  * @returns null where none is known.
  */
 export function causeOf(finding: Finding, others: readonly Finding[]): FindingCode | null {
+  if (isHoldoff(finding) || isDrowned(finding)) return null;
+  for (const other of others) {
+    if (!reaches(other, finding) || followsFrom(other, finding.code, others)) continue;
+    if (isHoldoff(other) && ofHoldoff.includes(finding.code)) return 'wrong-count';
+    if (isDrowned(other) && ofDrowned.includes(finding.code) && sharesChannel(other, finding))
+      return 'weak-swing';
+  }
   const causes = causesOf[finding.code];
   if (!causes) return null;
   let best = causes.length;
   for (const other of others) {
-    if (other.to !== null && other.to < finding.from - reachS) continue;
-    if (other.channel !== null && finding.channel !== null && other.channel !== finding.channel) continue;
+    if (!reaches(other, finding)) continue;
+    if (!sharesChannel(other, finding)) continue;
     if (other.outcome === 'cannot-tell' || followsFrom(other, finding.code, others)) continue;
     // Where each may follow from the other, the one that was there first is the cause.
     if (causesOf[other.code]?.includes(finding.code) && other.from > finding.from + reachS) continue;
@@ -78,6 +106,25 @@ export function causeOf(finding: Finding, others: readonly Finding[]): FindingCo
     if (rank >= 0 && rank < best) best = rank;
   }
   return causes[best] ?? null;
+}
+
+function isHoldoff({ code, outcome, evidence }: Finding): boolean {
+  return code === 'wrong-count' && outcome === 'found' && evidence.by === 'hold-off';
+}
+
+/** So far that edges are made of what is no tooth. */
+function isDrowned({ code, outcome, severity, evidence }: Finding): boolean {
+  const { against } = evidence;
+  if (code !== 'weak-swing' || outcome !== 'found' || severity !== 'fault') return false;
+  return against === 'filter' || against === 'noise';
+}
+
+function sharesChannel(one: Finding, other: Finding): boolean {
+  return one.channel === null || other.channel === null || one.channel === other.channel;
+}
+
+function reaches(cause: Finding, { from }: Finding): boolean {
+  return cause.to === null || cause.to >= from - reachS;
 }
 
 function followsFrom(finding: Finding, code: FindingCode, others: readonly Finding[]): boolean {

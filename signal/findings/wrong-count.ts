@@ -1,7 +1,8 @@
 import { ChannelCounts, claimOfGap, claimOfIndex, simpleRatio } from '@/signal/findings/count-claims';
 import type { CountClaim } from '@/signal/findings/count-claims';
+import { heldFinding, HeldTeethWatch } from '@/signal/findings/held-teeth';
 import { FindingLatch } from '@/signal/findings/rule';
-import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import type { FindingRule, RuleContext, RuleGap } from '@/signal/findings/rule';
 import type { WheelLanes } from '@/signal/findings/wheel-lanes';
 import { wordsFor } from '@/signal/finding-words';
 import { fewestPatternPositions, mostPatternPositions, WheelPattern } from '@/signal/wheel-pattern';
@@ -19,6 +20,7 @@ export class WrongCountRule implements FindingRule {
   private readonly wheels: WheelLanes;
   private readonly channels: ChannelCounts;
   private readonly pattern: WheelPattern | null;
+  private readonly held: HeldTeethWatch;
   private lookFromS = 0;
   private disturbances = -1;
 
@@ -27,6 +29,7 @@ export class WrongCountRule implements FindingRule {
     this.context = context;
     this.wheels = wheels;
     this.channels = new ChannelCounts(context);
+    this.held = new HeldTeethWatch(context);
     this.pattern =
       missingPulses === 0 && pulsesPerTurn >= fewestPatternPositions && pulsesPerTurn <= mostPatternPositions
         ? new WheelPattern(pulsesPerTurn, context.paths[context.primary]!.channel.sensor.kind === 'linear')
@@ -41,12 +44,16 @@ export class WrongCountRule implements FindingRule {
       claimOfGap(context, nowS) ??
       this.channels.claim(nowS) ??
       this.claimOfPattern(nowS);
-    if (claim) this.raise(latch, claim, nowS);
+    const held = this.held.look(nowS);
+    if (held) latch.raise(heldFinding(context, held), nowS);
+    // Teeth that were eaten make every other count wrong.
+    else if (claim && latch.open?.evidence.by !== 'hold-off') this.raise(latch, claim, nowS);
     latch.rest(nowS);
   }
 
-  gap(): void {
+  gap({ toS }: RuleGap): void {
     this.channels.restart();
+    this.held.restart(toS);
   }
 
   private claimOfPattern(nowS: number): CountClaim | null {
