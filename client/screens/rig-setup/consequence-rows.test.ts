@@ -68,7 +68,19 @@ describe('what the form says while one types', () => {
     ]);
   });
 
-  it.each(['', '0', '12.5', 'many'])('says nothing of a wheel with %j pulses', (pulses) => {
+  it('does not ask for a rate where the widths are what is wrong', () => {
+    const typed = draft('48', { sensing: 'width-coded' });
+    const widthClasses = [
+      { widthUs: '90', means: 'forward' as const },
+      { widthUs: '91', means: 'reverse' as const },
+    ];
+    const wheel = wheelOf({ ...typed, wheel: { ...typed.wheel, widthClasses } })!;
+    const { facts } = consequenceRows(wheel, 100_000);
+    expect(facts.find((f) => f.name === 'Fastest at all')?.value).toBe('not with this setup');
+    expect(facts.find((f) => f.name === 'Tooth frequency')?.value).toBe('2400 Hz');
+  });
+
+  it.each(['', '0', '12.5', 'many', '2000000'])('says nothing of a wheel with %j pulses', (pulses) => {
     expect(wheelOf(draft(pulses))).toBeNull();
   });
 });

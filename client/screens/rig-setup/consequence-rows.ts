@@ -3,24 +3,22 @@ import { shortNumber } from '@/client/components/finding-words';
 import { consequencesOf } from '@/signal/consequences';
 import { defaultSettings, type RigSetup, type Settings, type WidthClass } from '@/signal/model';
 import { sensorNotes } from '@/signal/sensor-notes';
+import { turnIssue } from '@/signal/validate-rig';
 import { numberOf, type RigDraft } from '@/client/screens/rig-setup/draft';
 
 export type WheelTyped = Pick<RigSetup, 'sensing' | 'wheel' | 'ratedRpm'>;
 
-/** The wheel as far as it is typed; null while its pulses, gap or gear are no numbers. */
+/** The wheel as far as it is typed; null while its pulses, gap or gear are no numbers that a rig can have. */
 export function wheelOf(draft: Pick<RigDraft, 'sensing' | 'wheel' | 'ratedRpm'>): WheelTyped | null {
   const pulsesPerTurn = numberOf(draft.wheel.pulsesPerTurn);
   const missingPulses = numberOf(draft.wheel.missingPulses) ?? 0;
   const gearRatio = numberOf(draft.wheel.gearRatio) ?? 1;
   const rated = numberOf(draft.ratedRpm);
-  const whole = pulsesPerTurn !== null && Number.isInteger(pulsesPerTurn) && Number.isInteger(missingPulses);
-  if (!whole || pulsesPerTurn < 1 || missingPulses < 0 || missingPulses >= pulsesPerTurn || !(gearRatio > 0))
-    return null;
-  return {
-    sensing: draft.sensing,
-    wheel: { pulsesPerTurn, missingPulses, gearRatio, widthClasses: widthsOf(draft) },
-    ratedRpm: rated !== null && rated > 0 ? rated : null,
-  };
+  if (pulsesPerTurn === null) return null;
+  const { sensing } = draft;
+  const wheel = { pulsesPerTurn, missingPulses, gearRatio, widthClasses: widthsOf(draft) };
+  if (turnIssue({ sensing, wheel })) return null;
+  return { sensing, wheel, ratedRpm: rated !== null && rated > 0 ? rated : null };
 }
 
 /** The widths as far as they are typed; null for other arrangements, and while none is a number. */
@@ -72,6 +70,8 @@ export function consequenceRows(
   const tooFew =
     wheel.ratedRpm !== null && found.recommendedRpm !== null && wheel.ratedRpm > found.recommendedRpm;
   const tooth = wheel.sensing === 'three-hall' ? 'Pole-pair' : 'Tooth';
+  // With a rate it can only be the setup itself: widths that are alike, or a rate beyond what is taken.
+  const unknown = rateHz === null ? 'needs sample rate' : 'not with this setup';
   const facts: Fact[] = [
     { name: `${tooth} frequency`, value: unit(found.toothHz, 'Hz', 'needs rated speed') },
     {
@@ -79,8 +79,8 @@ export function consequenceRows(
       value: unit(found.samplesPerTooth, '', rateHz === null ? 'needs sample rate' : 'needs rated speed'),
       ...(tooFew ? { tone: 'warn' as const } : {}),
     },
-    { name: 'Fastest that is safe to follow', value: fastest(found.recommendedRpm) },
-    { name: 'Fastest at all', value: fastest(found.highestRpm) },
+    { name: 'Fastest that is safe to follow', value: fastest(found.recommendedRpm, unknown) },
+    { name: 'Fastest at all', value: fastest(found.highestRpm, unknown) },
     { name: 'Reads stopped below', value: unit(found.lowestRpm, 'rpm', '') },
     { name: 'that is, no edge for', value: unit(stoppedAfterS, 's', '') },
   ];
@@ -110,8 +110,8 @@ export function consequenceRows(
   return { facts, warning: tooFew && found.neededRateHz !== null ? tooFewSamples(found.neededRateHz) : null };
 }
 
-function fastest(rpm: number | null): string {
-  return rpm === 0 ? 'none' : unit(rpm, 'rpm', 'needs sample rate');
+function fastest(rpm: number | null, unknown: string): string {
+  return rpm === 0 ? 'none' : unit(rpm, 'rpm', unknown);
 }
 
 function tooFewSamples(neededHz: number): string {

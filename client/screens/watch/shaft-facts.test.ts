@@ -14,6 +14,16 @@ describe('what stands behind the speed', () => {
     expect(of(-3, 2.2)).toBe('below 4.4 rpm/s');
   });
 
+  it('says how late the speed is and what it resolves, each only where it is known', () => {
+    const of = (resolutionRpm: number | null, delayS: number | null) => {
+      const facts = shaftFacts({ ...plain, limits: { resolutionRpm, delayS, floorRpm: 0.5 } });
+      return [value(facts, 'speed is behind by'), value(facts, 'one sample is worth')];
+    };
+    expect(of(2.2534, 0.02)).toEqual(['20 ms', '2.3 rpm']);
+    expect(of(0.0384, null)).toEqual([undefined, '0.038 rpm']);
+    expect(of(null, 0.5)).toEqual(['500 ms', undefined]);
+  });
+
   it('names why the gap of a wheel was lost, and how an index was met', () => {
     const facts = shaftFacts({
       ...plain,

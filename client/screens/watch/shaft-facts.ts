@@ -35,6 +35,12 @@ export function shaftFacts({
   }
   if (limits.delayS !== null)
     facts.push({ name: 'speed is behind by', value: `${shortNumber(1000 * limits.delayS)} ms` });
+  // Edges of a linear sensor lie between samples: what they resolve stands as the error beside the speed.
+  if (limits.resolutionRpm !== null)
+    facts.push({
+      name: 'one sample is worth',
+      value: `${shortNumber(Number(limits.resolutionRpm.toPrecision(2)))} rpm`,
+    });
   if (pitch.state === 'in-use')
     facts.push({
       name: 'tooth spacing',
