@@ -2,6 +2,7 @@ import { FlipWatch } from '@/signal/findings/flip-watch';
 import { invertedLine } from '@/signal/findings/inverted-channel';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
+import { hasTinyTeeth } from '@/signal/findings/tiny-teeth';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 
@@ -34,7 +35,7 @@ export class DirectionFlipRule implements FindingRule {
 
   tick(nowS: number): void {
     this.watch.tick(nowS);
-    if (this.watch.found.length > 0) this.raiseFlips(nowS);
+    if (this.watch.found.length > 0 && !hasTinyTeeth(this.context)) this.raiseFlips(nowS);
     this.latches[0]!.rest(nowS);
     this.compareExpected(nowS);
     this.latches[1]!.rest(nowS);

@@ -108,6 +108,25 @@ describe('skipped states', () => {
     }
   });
 
+  it('are not made of hum on lines at rest, nor of the first teeth after it', () => {
+    const rig = testRig('quadrature', 12);
+    for (const { sensor } of rig.channels) sensor.supplyV = 5;
+    const hums: Ring = {
+      ...pair,
+      shape: 'sine',
+      placesDeg: [0, 96],
+      // Both lines rest within their hum.
+      turnsAt: speeds([0, 0], [2, 0], [4, 3], [8, 3]),
+      spoil: (volts, channel, t) =>
+        1.65 +
+        (channel === 1 && t < 2 ? 0 : volts - 1.65) +
+        0.03 * Math.sin(2 * Math.PI * (channel ? 60 : 50) * t),
+    };
+    const codes = watchFindings(rig, pair.rateHz, {}, ...ringVolts(hums)).map(({ code }) => code);
+    expect(codes).not.toContain('illegal-state');
+    expect(codes).not.toContain('direction-flip');
+  });
+
   it('are not made of lost samples', () => {
     const arrays = ringVolts(pair);
     const pipeline = testPipeline(testRig('quadrature', 12), pair.rateHz);

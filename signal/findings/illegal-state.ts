@@ -2,6 +2,7 @@ import { stateWord } from '@/signal/findings/edge-walk';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { StateJumps, usualTooth } from '@/signal/findings/state-jumps';
+import { hasTinyTeeth } from '@/signal/findings/tiny-teeth';
 import { wordsFor } from '@/signal/finding-words';
 import { stepTable } from '@/signal/step-table';
 import type { StepTable } from '@/signal/step-table';
@@ -52,7 +53,7 @@ export class IllegalStateRule implements FindingRule {
       this.disturbances = calm.disturbances;
       const fresh = Math.max(counted, this.readJumps(this.jumps) - this.ahead);
       this.ahead = this.jumps.isPending ? Math.max(0, this.ahead + fresh - this.jumps.found.length) : 0;
-      if (fresh > this.forgiven) this.noteSkips(fresh - this.forgiven, nowS);
+      if (fresh > this.forgiven && !hasTinyTeeth(this.context)) this.noteSkips(fresh - this.forgiven, nowS);
       this.forgiven = Math.max(0, this.forgiven - fresh);
     }
     this.latches[0]!.rest(nowS);

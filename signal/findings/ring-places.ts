@@ -19,7 +19,8 @@ const mostOffPair = 30;
 const narrowPair = 45;
 /** Of three: how far one stands from where the other two would have it, and how far a state may differ from 60 degrees. */
 const mostOffTriple = 15;
-const mostSpread = 20;
+/** A band that is fixed a twentieth of the swing beside the middle makes every second state 11 degrees wider, places add 9. */
+const mostSpread = 24;
 const narrowTriple = 30;
 
 /** @param offDeg how far the means may be off. @param open severity of the finding that is open. */
