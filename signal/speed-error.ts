@@ -95,12 +95,15 @@ export class SpeedError {
 
   /**
    * What the sample grid adds to the square over a stretch of `seconds`. Edges that lie alike between two samples are off
-   * alike, so that no disagreement shows it: over d samples both ends differ by about 2 sin(pi d) of what one is off, rms.
+   * alike, so that no disagreement shows it: over d samples both ends differ by about 2 sin(pi d) of what one is off, rms,
+   * which is 8 x (1 - x) for the way x to the next whole number of samples (within 6 %, and quicker).
    */
   private ofGrid(seconds: number): number {
     const { gridS, rateHz } = this;
     if (!(gridS > 0)) return 0;
-    const off = (2 * gridS * Math.sin(Math.PI * seconds * rateHz)) / seconds;
+    const samples = seconds * rateHz;
+    const way = Math.abs(samples - Math.round(samples));
+    const off = (8 * way * (1 - way) * gridS) / seconds;
     return off * off;
   }
 
@@ -113,7 +116,7 @@ export class SpeedError {
     if (!(gridS > 0)) return 0;
     const perPosition = (seconds / spans) * rateHz;
     const drift = spans * Math.abs(perPosition - Math.round(perPosition));
-    const reach = drift < 0.5 ? Math.sin(Math.PI * drift) : Math.min(1, 1 / drift);
+    const reach = drift < 0.5 ? 4 * drift * (1 - drift) : Math.min(1, 1 / drift);
     const off = (offOfLine * reach * gridS) / seconds;
     return off * off;
   }
