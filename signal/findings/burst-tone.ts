@@ -1,7 +1,7 @@
 /**
  * A tone in the raw signal so near the sample rate that only neighbouring samples show it: the share of a burst's power that
  * one sine holds (two parameters of a least-squares fit), averaged over bursts. White noise gives any one sine 2 of 24 parts
- * of it, and on average over eight bursts no sine among all of them a fifth.
+ * of it (2 of 23 without the mean), and on average over eight bursts no sine among all of them a fifth.
  */
 import { burstLength } from '@/signal/noise';
 import type { NoiseMeter } from '@/signal/noise';
@@ -16,13 +16,26 @@ const leastShare = 0.35;
 /** Slower than this a burst holds less than two cycles: a drift looks the same. */
 const slowest = 2 / burstLength;
 
+/** For each place a cosine and a sine without their means, one orthogonal to the other, of length 1. */
 const cosines = new Float64Array((last + 1) * burstLength);
 const sines = new Float64Array((last + 1) * burstLength);
 for (let f = first; f <= last; f++) {
-  for (let i = 0; i < burstLength; i++) {
-    cosines[f * burstLength + i] = Math.cos((2 * Math.PI * f * i) / cycle);
-    sines[f * burstLength + i] = Math.sin((2 * Math.PI * f * i) / cycle);
-  }
+  const of = (wave: (x: number) => number): Float64Array => {
+    const samples = Float64Array.from({ length: burstLength }, (_, i) => wave((2 * Math.PI * f * i) / cycle));
+    const mean = samples.reduce((sum, x) => sum + x, 0) / burstLength;
+    return samples.map((x) => x - mean);
+  };
+  const cosine = unit(of(Math.cos));
+  const sine = of(Math.sin);
+  const common = cosine.reduce((sum, x, i) => sum + x * sine[i]!, 0);
+  cosines.set(cosine, f * burstLength);
+  // At half the sample rate there is no sine.
+  if (f < last) sines.set(unit(sine.map((x, i) => x - common * cosine[i]!)), f * burstLength);
+}
+
+function unit(samples: Float64Array): Float64Array {
+  const size = Math.sqrt(samples.reduce((sum, x) => sum + x * x, 0));
+  return samples.map((x) => x / size);
 }
 
 export class BurstTone {
@@ -63,7 +76,7 @@ export class BurstTone {
         re += x * cosines[at]!;
         im += x * sines[at]!;
       }
-      const share = isFlat ? 0 : Math.min(1, (2 * (re * re + im * im)) / (burstLength * power));
+      const share = isFlat ? 0 : (re * re + im * im) / power;
       shares[f]! += (share - shares[f]!) / this.count;
       if (f >= slowest * cycle && (best < 0 || shares[f]! > shares[best]!)) best = f;
     }

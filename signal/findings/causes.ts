@@ -69,7 +69,7 @@ const ofWrongEdges: readonly FindingCode[] = [
   'slow-edge',
 ];
 /** A hold-off that eats teeth these as well, on any channel. */
-const ofHoldoff: readonly FindingCode[] = [...ofWrongEdges, 'phase-error', 'weak-swing'];
+const ofHoldoff: readonly FindingCode[] = [...ofWrongEdges, 'phase-error', 'inverted-channel', 'weak-swing'];
 /** Teeth that drown in noise, or that the filter takes away, these. */
 const ofDrowned: readonly FindingCode[] = [
   ...ofWrongEdges,
@@ -113,7 +113,7 @@ function isHoldoff({ code, outcome, evidence }: Finding): boolean {
 }
 
 /** So far that edges are made of what is no tooth. */
-function isDrowned({ code, outcome, severity, evidence }: Finding): boolean {
+export function isDrowned({ code, outcome, severity, evidence }: Omit<Finding, 'to'>): boolean {
   const { against } = evidence;
   if (code !== 'weak-swing' || outcome !== 'found' || severity !== 'fault') return false;
   return against === 'filter' || against === 'noise';

@@ -3,6 +3,7 @@ import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
 import { unrestIntervals, unrestOf } from '@/signal/findings/unrest';
 import type { RunReference } from '@/signal/findings/unrest';
+import type { UnseenTeeth } from '@/signal/findings/unseen-teeth';
 import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 import type { ToothLog } from '@/signal/tooth-log';
@@ -43,6 +44,7 @@ type Evidence = Finding['evidence'];
 export class DeadChannelRule implements FindingRule {
   readonly latches: FindingLatch[];
   private readonly context: RuleContext;
+  private readonly unseen: UnseenTeeth;
   private readonly references: RunReference[];
   /** Edges of each channel when the judged one last made one. */
   private readonly marks: number[][];
@@ -53,8 +55,9 @@ export class DeadChannelRule implements FindingRule {
   private readonly humFromS: number[];
 
   /** @param references of the lanes, in their order. */
-  constructor(context: RuleContext, references: RunReference[]) {
+  constructor(context: RuleContext, references: RunReference[], unseen: UnseenTeeth) {
     const { paths } = context;
+    this.unseen = unseen;
     this.context = context;
     this.latches = paths.map(() => new FindingLatch(shortHoldS));
     this.references = references;
@@ -112,7 +115,7 @@ export class DeadChannelRule implements FindingRule {
       most = edges;
       busiest = m;
     }
-    if (most < otherEdgesNeeded || isAlive(paths[k]!)) return null;
+    if (most < otherEdgesNeeded || isAlive(paths[k]!) || this.unseen.of(k)) return null;
     const evidence = {
       otherChannel: paths[busiest]!.channel.name,
       otherEdges: most,

@@ -13,7 +13,7 @@ import type { UnseenTeeth } from '@/signal/findings/unseen-teeth';
 export function ringRules(context: RuleContext, unseen: UnseenTeeth): FindingRule[] {
   const references = context.lanes.map((index) => new RunReference(context, context.paths[index]!));
   return [
-    new DeadChannelRule(context, references),
+    new DeadChannelRule(context, references, unseen),
     new NearAliasRule(context, unseen),
     new InvertedChannelRule(context),
     new PhaseErrorRule(context),

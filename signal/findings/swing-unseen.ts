@@ -7,7 +7,7 @@ import type { Unseen } from '@/signal/findings/unseen-lane';
 import { leastSigmas } from '@/signal/tooth-size';
 
 /** Worse than anything that is said of teeth which are counted. */
-const size = 20;
+const size = 1000;
 /** A low pass that lets the teeth through, over their frequency. */
 const passing = 2;
 /** What of white noise a steep low pass lets through: half the rate would be all of it. */

@@ -18,7 +18,10 @@ export function isMains(hz: number, rateHz: number, offHz: number): boolean {
 const fewestCycles = 1.5;
 /** A burst shows at least this much of what it should. */
 const leastOfExpected = 0.5;
+/** The best one shows so much more than the next, or leaves so much less of the power unexplained. */
 const clearly = 1.3;
+const left = 1.5;
+const leastLeft = 0.02;
 
 /**
  * What a tone at `hz` of a ring really is, of all that fold there: bursts of neighbouring samples tell.
@@ -52,5 +55,6 @@ export function unfoldedHz(
       }
     }
   }
-  return second < 0 || best >= clearly * second ? bestHz : NaN;
+  if (second < 0 || best >= clearly * second) return bestHz;
+  return 1 - second > left * (1 - best) + leastLeft ? bestHz : NaN;
 }

@@ -32,8 +32,9 @@ const quietS = 0.8;
 const everyS = 0.45;
 const leftS = 0.5;
 const looksNeeded = 2;
-/** Five samples a tooth and less: fast. */
+/** Five samples a tooth and less: fast; and where they were, up to ten, until the band is found. */
 const fastCycles = 0.2;
+const staysFast = 0.1;
 /** Less than this share of the supply, or of the levels known, may be anything. */
 const ofSupply = 0.02;
 const ofKnown = 0.3;
@@ -176,7 +177,8 @@ export class UnseenLane {
   private fast(): Sight | null {
     const { burst, rateHz, tone, path } = this;
     const { cyclesPerSample, swingV } = burst;
-    if (!(cyclesPerSample >= fastCycles) || !this.isLarge(swingV)) return null;
+    const least = this.seen > 0 && this.seenWhy === 'fast' ? staysFast : fastCycles;
+    if (!(cyclesPerSample >= least) || !this.isLarge(swingV)) return null;
     const hz = cyclesPerSample * rateHz;
     // A burst cannot tell one from the other; the ring can.
     if (isMains(hz, rateHz, rateHz / burstLength) && !(tone.hz > 0 && !isMains(tone.hz, path.slow.rateHz, 1)))

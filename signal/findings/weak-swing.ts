@@ -2,6 +2,7 @@ import type { ChannelPath } from '@/signal/channel-path';
 import { designFilters } from '@/signal/filter-design';
 import type { Section } from '@/signal/filter-design';
 import { Baseline } from '@/signal/findings/baseline';
+import { isDrowned } from '@/signal/findings/causes';
 import { SizedLatch, findingOf, takesMiddleAway } from '@/signal/findings/channel-finding';
 import { NoisyEdges } from '@/signal/findings/noisy-edges';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
@@ -119,7 +120,10 @@ export class WeakSwingRule implements FindingRule {
     const outcome = unsure ? 'cannot-tell' : 'found';
     const { name } = this.context.paths[index]!.channel;
     const finding = findingOf('weak-swing', name, { fromS, atS, severity, outcome, evidence });
-    this.latches[index]!.raiseSized(finding, size, nowS);
+    const latch = this.latches[index]!;
+    // What it was folded under then follows from it now.
+    if (isDrowned(finding) && latch.open && !isDrowned(latch.open)) latch.open.causedBy = null;
+    latch.raiseSized(finding, size, nowS);
   }
 
   private fallen(path: ChannelPath, index: number): SwingSight | null {

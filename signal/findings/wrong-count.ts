@@ -1,6 +1,7 @@
 import { ChannelCounts, claimOfGap, claimOfIndex, simpleRatio } from '@/signal/findings/count-claims';
 import type { CountClaim } from '@/signal/findings/count-claims';
 import { heldFinding, HeldTeethWatch } from '@/signal/findings/held-teeth';
+import type { HeldTeeth } from '@/signal/findings/held-teeth';
 import { FindingLatch } from '@/signal/findings/rule';
 import type { FindingRule, RuleContext, RuleGap } from '@/signal/findings/rule';
 import type { WheelLanes } from '@/signal/findings/wheel-lanes';
@@ -45,7 +46,7 @@ export class WrongCountRule implements FindingRule {
       this.channels.claim(nowS) ??
       this.claimOfPattern(nowS);
     const held = this.held.look(nowS);
-    if (held) latch.raise(heldFinding(context, held), nowS);
+    if (held) this.raiseHeld(latch, held, nowS);
     // Teeth that were eaten make every other count wrong.
     else if (claim && latch.open?.evidence.by !== 'hold-off') this.raise(latch, claim, nowS);
     latch.rest(nowS);
@@ -54,6 +55,13 @@ export class WrongCountRule implements FindingRule {
   gap({ toS }: RuleGap): void {
     this.channels.restart();
     this.held.restart(toS);
+  }
+
+  /** What has been sure stays so while the speed changes too much to tell. */
+  private raiseHeld(latch: FindingLatch, held: HeldTeeth, nowS: number): void {
+    const { open } = latch;
+    const stays = !held.sure && open?.outcome === 'found' && open.evidence.by === 'hold-off';
+    latch.raise(stays ? open : heldFinding(this.context, held), nowS);
   }
 
   private claimOfPattern(nowS: number): CountClaim | null {

@@ -1,7 +1,11 @@
-/** The shaft runs so fast that few samples are left for a tooth. */
-import { timingFor, type CaseMaker } from '@/tests/accuracy/findings/case';
-import { benchOf, drawMachine } from '@/tests/accuracy/findings/machine';
+/** The shaft runs so fast that few samples are left for a tooth: from some instant on, or as the stream begins. */
+import { timingFor, timingOfStanding, type CaseMaker, type FaultCase } from '@/tests/accuracy/findings/case';
+import { benchOf, drawMachine, type Machine } from '@/tests/accuracy/findings/machine';
+import type { Draw } from '@/tests/accuracy/findings/draw';
 import { drawRipple } from '@/tests/accuracy/findings/motions';
+import { fitted } from '@/tests/accuracy/findings/settings';
+
+const plain = { filter: { kind: 'none' }, holdoffS: 0 } as const;
 
 export const nearAlias: CaseMaker = (draw) => {
   const machine = drawMachine(draw, {
@@ -27,8 +31,9 @@ export const nearAlias: CaseMaker = (draw) => {
     ],
     ripple: drawRipple(draw),
   };
+  if (draw.chance(0.25)) return fromTheStart(draw, machine);
   return {
-    ...benchOf(machine, motion, { settings: { filter: { kind: 'none' }, holdoffS: 0 } }),
+    ...benchOf(machine, motion, { settings: plain }),
     ...timing,
     variant: samples < 5 ? 'under 5 samples' : 'under 10 samples',
     consequences: [
@@ -44,3 +49,42 @@ export const nearAlias: CaseMaker = (draw) => {
     ],
   };
 };
+
+/** So few that no band is found, and nothing but the raw signal tells; then the shaft slows down. */
+function fromTheStart(draw: Draw, machine: Machine): FaultCase {
+  const timing = timingOfStanding(machine.turnsPerS, 0);
+  const { wholeS, appearS } = timing;
+  const changeS = draw.uniform(1, 3);
+  const slowS = wholeS + appearS + draw.uniform(1, 4);
+  const fastRpm = (machine.rpm * machine.rateHz) / (draw.uniform(2.1, 4.2) * machine.toothHz);
+  const endS = slowS + changeS;
+  const goneS = Math.max(6, 6 / machine.turnsPerS);
+  const motion = {
+    startRpm: fastRpm,
+    segments: [
+      { durationS: slowS, toRpm: fastRpm },
+      { durationS: changeS, toRpm: machine.rpm },
+      { durationS: goneS + 1, toRpm: machine.rpm },
+      { durationS: changeS, toRpm: fastRpm },
+    ],
+    ripple: drawRipple(draw),
+  };
+  return {
+    ...benchOf(machine, motion, { settings: { ...plain, band: fitted } }),
+    ...timing,
+    endS,
+    goneS,
+    seconds: endS + goneS + 0.5,
+    variant: 'under 4.3 samples from the start',
+    // What is above half the sample rate looks the same, and so does a tone from elsewhere.
+    mayDoubt: true,
+    consequences: [
+      'illegal-state',
+      'weak-swing',
+      'uneven-teeth',
+      'direction-flip',
+      'phase-error',
+      'duty-shift',
+    ],
+  };
+}

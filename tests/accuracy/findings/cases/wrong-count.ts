@@ -1,7 +1,15 @@
-/** The setup says another wheel than the one that turns. */
+/** The setup says another wheel than the one that turns, or a hold-off eats some of its teeth. */
 import type { RigSetup } from '@/signal/model';
-import { runningMotion, timingOfStanding, type CaseMaker } from '@/tests/accuracy/findings/case';
+import {
+  runningMotion,
+  timingFor,
+  timingOfStanding,
+  type CaseMaker,
+  type FaultCase,
+} from '@/tests/accuracy/findings/case';
+import type { Draw } from '@/tests/accuracy/findings/draw';
 import { benchOf, drawMachine, type Wants } from '@/tests/accuracy/findings/machine';
+import { drawRipple } from '@/tests/accuracy/findings/motions';
 
 type Variant =
   'twice, by the index' | 'half, by the index' | 'gap not told' | 'other gap' | 'gap told, not there';
@@ -32,6 +40,7 @@ export const wrongCount: CaseMaker = (draw) => {
   const timing = timingOfStanding(machine.turnsPerS, variant.includes('index') ? 4 : 6);
   const bench = benchOf(machine, runningMotion(draw, machine, timing.seconds), { spec: { wheel } });
   bench.setup.wheel = { ...bench.setup.wheel, ...told };
+  if (draw.chance(0.2)) return eatenByHoldoff(draw);
   return {
     ...bench,
     ...timing,
@@ -39,3 +48,45 @@ export const wrongCount: CaseMaker = (draw) => {
     consequences: ['missing-tooth', 'uneven-teeth', 'extra-pulse', 'edge-bounce', 'run-out'],
   };
 };
+
+/** A hold-off of a fifth of a tooth, until the shaft turns so fast that it is longer than half of one. */
+function eatenByHoldoff(draw: Draw): FaultCase {
+  const machine = drawMachine(draw, {
+    sensing: ['single', 'quadrature'],
+    sensors: ['linear', 'latch'],
+    wheels: ['toothed', 'pole-ring'],
+    toothHz: [10, 60],
+    turnsPerS: [0.5, 20],
+    samplesPerTooth: [160, 240],
+    snrDb: [30, 45],
+  });
+  const changeS = draw.uniform(1, 3);
+  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, easeS: changeS });
+  const { beginS, wholeS, endS, seconds } = timing;
+  const faster = draw.uniform(4, 12);
+  const fastRpm = machine.rpm * faster;
+  const motion = {
+    startRpm: machine.rpm,
+    segments: [
+      { durationS: beginS, toRpm: machine.rpm },
+      { durationS: changeS, toRpm: fastRpm },
+      { durationS: endS - changeS - wholeS, toRpm: fastRpm },
+      { durationS: changeS, toRpm: machine.rpm },
+      { durationS: seconds, toRpm: machine.rpm },
+    ],
+    ripple: drawRipple(draw),
+  };
+  return {
+    ...benchOf(machine, motion, { settings: { filter: { kind: 'none' }, holdoffS: 0.2 / machine.toothHz } }),
+    ...timing,
+    variant: 'eaten by the hold-off',
+    consequences: [
+      'missing-tooth',
+      'uneven-teeth',
+      'run-out',
+      'direction-flip',
+      'illegal-state',
+      'phase-error',
+    ],
+  };
+}
