@@ -1,7 +1,7 @@
 /**
  * Whether something smaller than the usual teeth is a tooth. It stands where the teeth's rhythm lets one be expected, before
- * and after; and where the shaft may turn to and fro, so that a reversal cuts peaks short at any place, it was there a turn
- * before as well, with usual teeth between: a shaft that just shakes has none.
+ * and after; and where the shaft may turn to and fro, so that a reversal cuts peaks short at any place, it was there in the
+ * turns before as well, with usual teeth between: a shaft that just shakes has none.
  */
 import type { ToothLog } from '@/signal/tooth-log';
 import { strongShare } from '@/signal/tooth-size';
@@ -18,7 +18,10 @@ const weakBefore = 0.9;
 const turnShare = 0.75;
 const leastStrong = 0.5;
 const mostSearched = 64;
-const kept = 4;
+const kept = 16;
+/** So many turns before it was there, and more of turns of few teeth: twice may be by chance. */
+const fewestTurns = 2;
+const teethOfTurns = 16;
 
 export class ToothProof {
   private readonly log: ToothLog;
@@ -26,6 +29,7 @@ export class ToothProof {
   /** Positions from the tooth before the wheel's gap to the one behind it; 1: there is no gap. */
   private readonly gapSpan: number;
   private readonly isRing: boolean;
+  private readonly turns: number;
   /** Teeth counted when some that were not counted were last found, and how often that was. */
   private readonly foundAt = new Float64Array(kept).fill(-Infinity);
   private findings = 0;
@@ -36,6 +40,7 @@ export class ToothProof {
     this.teethPerTurn = teethPerTurn;
     this.gapSpan = missing + 1;
     this.isRing = isRing;
+    this.turns = Math.max(fewestTurns, Math.ceil(teethOfTurns / teethPerTurn));
   }
 
   /**
@@ -50,10 +55,13 @@ export class ToothProof {
     if (!this.isUsual((here - riseS[(n - 1) & mask]!) / typicalS)) return false;
     if (!this.isUsual((riseS[(n + 1) & mask]! - here) / typicalS)) return false;
     if (!this.isRing) return true;
-    const before = n - teethPerTurn;
-    if (before < oldest || !(peakV[before & mask]! - troughV[before & mask]! < weakBefore * swingV))
-      return false;
-    return this.strongBetween(before, n, swingV) > 0;
+    for (let turn = 1; turn <= this.turns; turn++) {
+      const before = n - turn * teethPerTurn;
+      if (before < oldest || !(peakV[before & mask]! - troughV[before & mask]! < weakBefore * swingV))
+        return false;
+      if (this.strongBetween(before, before + teethPerTurn, swingV) === 0) return false;
+    }
+    return true;
   }
 
   /** Teeth that were not counted have been found now. @returns true where that is enough to believe in them. */
@@ -61,15 +69,21 @@ export class ToothProof {
     if (!this.isRing) return true;
     const { foundAt, teethPerTurn } = this;
     const { count } = this.log;
-    let isAgain = false;
-    for (let k = 0; k < kept; k++) {
-      const since = count - foundAt[k]!;
-      if (since > teethPerTurn || since < turnShare * teethPerTurn) continue;
-      const searched = Math.min(since, mostSearched);
-      if (this.strongBetween(count - searched, count, swingV) >= leastStrong * searched) isAgain = true;
-    }
+    let again = 0;
+    for (let turn = 1; turn <= this.turns; turn++) if (this.wasFound(count, turn * teethPerTurn)) again++;
     foundAt[this.findings++ % kept] = count;
-    return isAgain;
+    if (again < this.turns) return false;
+    const searched = Math.min(teethPerTurn, mostSearched);
+    return this.strongBetween(count - searched, count, swingV) >= leastStrong * turnShare * searched;
+  }
+
+  /** So many teeth ago, those left out that were not counted. */
+  private wasFound(count: number, teeth: number): boolean {
+    for (let k = 0; k < kept; k++) {
+      const since = count - this.foundAt[k]!;
+      if (since <= teeth && since >= turnShare * teeth) return true;
+    }
+    return false;
   }
 
   /** Usual teeth among those behind `from` and before `to`; of many only the last ones are looked at. */
