@@ -28,8 +28,6 @@ export class IllegalStateRule implements FindingRule {
   private seen = 0;
   private disturbances = 0;
   private skips = 0;
-  /** The first skip that was read back last, s. */
-  private firstS = NaN;
   private readonly kinds: Uint32Array;
   private teethBefore = 0;
   /** Skips that the motion saw and that the logs are still to show. */
@@ -70,9 +68,10 @@ export class IllegalStateRule implements FindingRule {
     const latch = this.latches[0]!;
     const { log } = context.paths[context.primary]!;
     const { pulsesPerTurn } = context.rig.wheel;
+    const seenS = this.instantOf(nowS);
     for (let k = 0; k < Math.min(fresh, opensAt); k++) {
       lately.copyWithin(0, 1);
-      lately[opensAt - 1] = nowS;
+      lately[opensAt - 1] = seenS;
     }
     const withinS = Math.max(windowS, windowTurns * pulsesPerTurn * usualTooth(log) || 0);
     if (!latch.open && nowS - lately[0]! > withinS) return;
@@ -94,7 +93,7 @@ export class IllegalStateRule implements FindingRule {
         from: lately[0]!,
         severity: evidence.skipsPerTurn >= faultPerTurn ? 'fault' : 'warn',
         outcome: 'found',
-        at: Number.isNaN(this.firstS) ? nowS : this.firstS,
+        at: seenS,
         evidence,
         ...wordsFor('illegal-state', null, evidence),
         causedBy: null,
@@ -103,12 +102,19 @@ export class IllegalStateRule implements FindingRule {
     );
   }
 
+  /** Of the first of the skips at hand, as the logs tell it, or of the last that the motion saw, s. */
+  private instantOf(nowS: number): number {
+    const { tracker } = this.context.motion;
+    const [first] = this.jumps?.found ?? [];
+    const atS = first ? first.atS : (tracker?.lastIllegalS ?? NaN);
+    return Number.isNaN(atS) ? nowS : Math.max(atS, this.lately[opensAt - 1]!);
+  }
+
   /** @returns how many there were; their kinds are kept. */
   private readJumps({ found }: StateJumps): number {
     const { kinds, table } = this;
     if (found.length === 0 || !table) return 0;
     if (!this.latches[0]!.open) kinds.fill(0);
-    this.firstS = found[0]!.atS;
     for (const { from, to } of found) {
       if (from < 0 || to < 0) continue;
       const kind = from * table.states + to;
