@@ -1,7 +1,8 @@
 /** A pulse too many: a burr at one place, chips that wander, spikes on the wire. */
 import type { Fault } from '@/simulator/faults';
 import { runningMotion, timingFor, type CaseMaker } from '@/tests/accuracy/findings/case';
-import { benchOf, drawMachine } from '@/tests/accuracy/findings/machine';
+import type { Draw } from '@/tests/accuracy/findings/draw';
+import { benchOf, drawMachine, type Machine } from '@/tests/accuracy/findings/machine';
 
 export const extraPulse: CaseMaker = (draw) => {
   const variant = draw.pick(['burr', 'burr', 'chips', 'spikes'] as const);
@@ -14,9 +15,9 @@ export const extraPulse: CaseMaker = (draw) => {
     samplesPerTooth: [40, 90],
   });
   const { positions } = machine.wheel.wheel;
-  // A chip is counted where it falls between two teeth, in a third of the turns or so; strays take several to be told from one.
+  // A chip is counted where it falls between two teeth, clear of both: in a fifth of the turns or so.
   const timing = timingFor(draw, machine.turnsPerS, {
-    needsTurns: { burr: 4, chips: 20, spikes: 6 }[variant],
+    needsTurns: { burr: 4, chips: 28, spikes: 6 }[variant],
     needsS: variant === 'burr' ? 2 : 3.5,
   });
   const { beginS, endS } = timing;
@@ -33,7 +34,7 @@ export const extraPulse: CaseMaker = (draw) => {
               kind: 'spikes',
               ...span,
               perS: draw.uniform(2, 6),
-              heightV: draw.sign() * machine.sensor.swingV,
+              heightV: spikeSign(draw, machine) * machine.sensor.swingV,
               widthS: draw.uniform(0.08, 0.15) / machine.toothHz,
             },
           ];
@@ -47,3 +48,12 @@ export const extraPulse: CaseMaker = (draw) => {
     consequences: ['edge-bounce', 'uneven-teeth', 'wrong-count', 'duty-shift'],
   };
 };
+
+/** Of narrow pulses the line rests at one end nearly all the time: a spike beyond that end crosses no band. */
+function spikeSign(draw: Draw, { wheel, sensor, still }: Machine): number {
+  const sign = draw.sign();
+  if (wheel.wheel.kind !== 'magnets') return sign;
+  // A switching sensor pulls its line down where it sees a magnet.
+  const restsHigh = (sensor.sensor.kind !== 'linear') !== (still.channels[0]!.inverted === true);
+  return restsHigh ? -1 : 1;
+}
