@@ -32,9 +32,10 @@ const quietS = 0.8;
 const everyS = 0.45;
 const leftS = 0.5;
 const looksNeeded = 2;
-/** Five samples a tooth and less: fast; and where they were, up to ten, until the band is found. */
+/** Teeth that were too fast passed for noise, and half of its bursts must be newer before a band is found, s. */
+const lingerS = 2.5;
+/** Five samples a tooth and less: fast. */
 const fastCycles = 0.2;
-const staysFast = 0.1;
 /** Less than this share of the supply, or of the levels known, may be anything. */
 const ofSupply = 0.02;
 const ofKnown = 0.3;
@@ -59,9 +60,9 @@ export class UnseenLane {
   private lookedS = -Infinity;
   private seen = 0;
   private seenWhy = '';
+  private sightS = -Infinity;
   private seenFromS = NaN;
   private suspects = false;
-  /** Raw, since the last look. */
   private lowV = Infinity;
   private highV = -Infinity;
 
@@ -115,13 +116,15 @@ export class UnseenLane {
       if (this.seen > 0) this.forget();
       return;
     }
-    const { rawSlow } = path;
-    if (rawSlow && tone.look(rawSlow)) this.count(this.judge(rawSlow, isQuiet, nowS), nowS);
+    const ring = path.rawSlow;
+    if (ring && tone.look(ring)) this.count(this.judge(ring, isQuiet, nowS), nowS);
   }
 
   private count(sight: Sight | null, nowS: number): void {
+    if (!sight && this.seen > 0 && this.seenWhy === 'fast' && nowS - this.sightS < lingerS) return;
     if (!sight || (this.seen > 0 && sight.why !== this.seenWhy)) this.forget();
     if (!sight) return;
+    this.sightS = nowS;
     if (this.seen++ === 0) this.seenFromS = Math.max(0, nowS - quietS);
     this.seenWhy = sight.why;
     this.unseen = this.seen >= looksNeeded ? { ...sight, fromS: this.seenFromS } : null;
@@ -177,8 +180,7 @@ export class UnseenLane {
   private fast(): Sight | null {
     const { burst, rateHz, tone, path } = this;
     const { cyclesPerSample, swingV } = burst;
-    const least = this.seen > 0 && this.seenWhy === 'fast' ? staysFast : fastCycles;
-    if (!(cyclesPerSample >= least) || !this.isLarge(swingV)) return null;
+    if (!(cyclesPerSample >= fastCycles) || !this.isLarge(swingV)) return null;
     const hz = cyclesPerSample * rateHz;
     // A burst cannot tell one from the other; the ring can.
     if (isMains(hz, rateHz, rateHz / burstLength) && !(tone.hz > 0 && !isMains(tone.hz, path.slow.rateHz, 1)))
