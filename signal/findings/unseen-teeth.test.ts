@@ -201,3 +201,41 @@ describe('nothing is said, and a shaft that stands is said to stand', () => {
     expect(found(starts, { seconds: 6, settings: highPass })).toEqual([]);
   });
 });
+
+describe('what is told does not depend on how the stream was cut', () => {
+  it.each([
+    ['too few samples', 3100, 0.01, {}],
+    ['noise', 300, 0.8, {}],
+    ['half noise', 830, 0.35, {}],
+    ['a filter', 300, 0.01, lowPass(80)],
+    [
+      'a band pass',
+      300,
+      0.01,
+      filtered({ kind: 'bandpass', family: 'butterworth', order: 4, lowHz: 5, highHz: 20 }),
+    ],
+    ['a hold-off', 300, 0.01, { holdoffS: 0.002 }],
+  ])('%s', (_name, hz, noiseV, settings: Partial<Settings>) => {
+    const volts = signalOf(at(hz), { noiseV, seconds: 5 });
+    const told = [volts.length, 1000, 777, 61].map((block) => {
+      const pipeline = testPipeline(testRig('single', teeth), rateHz, settings);
+      for (let from = 0; from < volts.length; from += block) {
+        const part = volts.subarray(from, from + block);
+        pipeline.process([part], part.length);
+      }
+      const { state, speedRpm, speedAtMostRpm, findings, pulses } = pipeline.status();
+      const { directions, closedFindings } = pipeline.output;
+      return {
+        state,
+        speedRpm,
+        speedAtMostRpm,
+        findings,
+        pulses,
+        directions: [...directions],
+        closed: [...closedFindings],
+      };
+    });
+    expect(told[0]!.findings.length + told[0]!.closed.length).toBeGreaterThan(0);
+    for (const one of told) expect(one).toEqual(told[0]);
+  });
+});
