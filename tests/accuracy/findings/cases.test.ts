@@ -39,6 +39,20 @@ describe('cases of findings', () => {
       expect({ seed, issue: issueOf(makeClean(seed)) }).toEqual({ seed, issue: null });
   });
 
+  it.each(caseCodes)(
+    '%s: whatever is said begins no later than the place to look at, and ends no sooner',
+    (code) => {
+      for (const seed of [700_100, 700_101]) {
+        const made = makeCase(code, seed);
+        for (const { last, openedS } of drive(made, made.seconds)) {
+          const { from, at, to } = last;
+          const inOrder = from <= at && at <= (to ?? openedS + 1e-9);
+          expect({ seed, said: last.code, from, at, to, inOrder }).toMatchObject({ inOrder: true });
+        }
+      }
+    },
+  );
+
   it('shows when a finding opens and closes', () => {
     const made = makeCase('lost-samples', 3);
     const [lost] = drive(made, made.seconds).filter((sight) => sight.code === 'lost-samples');
