@@ -3,7 +3,10 @@
  * read back only where there is something to read.
  */
 import type { ChannelPath } from '@/signal/channel-path';
+import { readableFrom } from '@/signal/tooth-log';
 import type { ToothLog } from '@/signal/tooth-log';
+
+const nothing = Float64Array.of(Infinity);
 
 export class LaneGaps {
   /** Between two neighbouring edges of different channels since the last scan, s. */
@@ -14,68 +17,93 @@ export class LaneGaps {
   lastS = -Infinity;
   private lastLane = -1;
   private readonly logs: ToothLog[];
-  /** The next edge of each lane, twice the tooth and one more for its fall, and its instant; Infinity: not there yet. */
-  private readonly next: Float64Array;
-  private readonly heads: Float64Array;
+  /** The first tooth of each lane of which not all was seen, and whether its rise was. */
+  private readonly tooth: number[];
+  private readonly risen: boolean[];
+  /** Instants of the new edges of each lane, with Infinity after the last. */
+  private readonly instants: Float64Array[];
 
   constructor({ paths, lanes }: { paths: readonly ChannelPath[]; lanes: readonly number[] }) {
     this.logs = lanes.map((index) => paths[index]!.log);
-    this.next = new Float64Array(lanes.length);
-    this.heads = new Float64Array(lanes.length);
+    this.tooth = lanes.map(() => 0);
+    this.risen = lanes.map(() => false);
+    this.instants = this.logs.map((log) => new Float64Array(2 * log.length + 1));
   }
 
   /** All edges that have come since the last one, in order of time. */
   scan(): void {
-    const { heads } = this;
-    let { lastS, lastLane } = this;
-    let leastS = Infinity;
-    this.hasRepeat = false;
-    for (let lane = 0; lane < heads.length; lane++) this.find(lane);
-    for (;;) {
-      let lane = 0;
-      for (let m = 1; m < heads.length; m++) if (heads[m]! < heads[lane]!) lane = m;
-      const at = heads[lane]!;
-      if (at === Infinity) break;
-      if (lane === lastLane) this.hasRepeat = true;
-      else if (at - lastS < leastS) leastS = at - lastS;
-      lastS = at;
-      lastLane = lane;
-      this.next[lane] = this.next[lane]! + 1;
-      this.find(lane);
-    }
-    this.leastS = leastS;
-    this.lastS = lastS;
-    this.lastLane = lastLane;
+    const { instants } = this;
+    for (let lane = 0; lane < instants.length; lane++) this.collect(lane);
+    this.merge(instants[0] ?? nothing, instants[1] ?? nothing, instants[2] ?? nothing);
   }
 
   /** What came before the lost samples is past. */
   forget(toS: number): void {
-    for (let lane = 0; lane < this.logs.length; lane++) this.next[lane] = 2 * this.logs[lane]!.count;
+    for (let lane = 0; lane < this.logs.length; lane++) {
+      this.tooth[lane] = this.logs[lane]!.count;
+      this.risen[lane] = false;
+    }
     this.lastLane = -1;
     this.lastS = toS;
   }
 
-  private find(lane: number): void {
-    const log = this.logs[lane]!;
-    const tooth = Math.floor(this.next[lane]! / 2);
-    if (tooth >= log.count) {
-      this.heads[lane] = Infinity;
-      return;
+  /** Three lists in order, each with Infinity at its end. */
+  private merge(a: Float64Array, b: Float64Array, c: Float64Array): void {
+    let { lastS, lastLane } = this;
+    let leastS = Infinity;
+    let hasRepeat = false;
+    let i = 0;
+    let j = 0;
+    let k = 0;
+    for (;;) {
+      let at = a[i]!;
+      let lane = 0;
+      if (b[j]! < at) {
+        at = b[j]!;
+        lane = 1;
+      }
+      if (c[k]! < at) {
+        at = c[k]!;
+        lane = 2;
+      }
+      if (at === Infinity) break;
+      if (lane === 0) i++;
+      else if (lane === 1) j++;
+      else k++;
+      if (lane === lastLane) hasRepeat = true;
+      else if (at - lastS < leastS) leastS = at - lastS;
+      lastS = at;
+      lastLane = lane;
     }
-    const i = tooth & log.mask;
-    if (this.next[lane]! % 2 === 0) {
-      this.heads[lane] = log.riseS[i]! + log.riseWayS[i]!;
-      return;
+    this.leastS = leastS;
+    this.hasRepeat = hasRepeat;
+    this.lastS = lastS;
+    this.lastLane = lastLane;
+  }
+
+  private collect(lane: number): void {
+    const { count, mask, riseS, riseWayS, fallS, fallWayS } = this.logs[lane]!;
+    const instants = this.instants[lane]!;
+    let tooth = this.tooth[lane]!;
+    let risen = this.risen[lane]!;
+    const first = readableFrom(this.logs[lane]!, tooth);
+    if (first > tooth) {
+      tooth = first;
+      risen = false;
     }
-    const fallS = log.fallS[i]! + log.fallWayS[i]!;
-    if (fallS === fallS) {
-      this.heads[lane] = fallS;
-    } else if (tooth + 1 < log.count) {
-      // A tooth that lost samples cut short has no fall.
-      this.next[lane] = this.next[lane]! + 1;
-      this.find(lane);
-    } else {
-      this.heads[lane] = Infinity;
+    let n = 0;
+    for (; tooth < count; tooth++) {
+      const at = tooth & mask;
+      if (!risen) instants[n++] = riseS[at]! + riseWayS[at]!;
+      risen = true;
+      const endS = fallS[at]! + fallWayS[at]!;
+      if (endS === endS) instants[n++] = endS;
+      // The tooth at hand; an earlier one without a fall was cut short by lost samples.
+      else if (tooth === count - 1) break;
+      risen = false;
     }
+    instants[n] = Infinity;
+    this.tooth[lane] = tooth;
+    this.risen[lane] = risen;
   }
 }
