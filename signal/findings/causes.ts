@@ -89,7 +89,8 @@ export function causeOf(finding: Finding, others: readonly Finding[]): FindingCo
   if (isHoldoff(finding) || isDrowned(finding)) return null;
   for (const other of others) {
     if (!reaches(other, finding) || followsFrom(other, finding.code, others)) continue;
-    if (isHoldoff(other) && ofHoldoff.includes(finding.code)) return 'wrong-count';
+    if (isHoldoff(other) && other.outcome === 'found' && ofHoldoff.includes(finding.code))
+      return 'wrong-count';
     if (isDrowned(other) && ofDrowned.includes(finding.code) && sharesChannel(other, finding))
       return 'weak-swing';
   }
@@ -108,8 +109,8 @@ export function causeOf(finding: Finding, others: readonly Finding[]): FindingCo
   return causes[best] ?? null;
 }
 
-function isHoldoff({ code, outcome, evidence }: Finding): boolean {
-  return code === 'wrong-count' && outcome === 'found' && evidence.by === 'hold-off';
+function isHoldoff({ code, evidence }: Finding): boolean {
+  return code === 'wrong-count' && evidence.by === 'hold-off';
 }
 
 /** So far that edges are made of what is no tooth. */

@@ -2,6 +2,7 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import { filtersOf } from '@/signal/findings/channel-finding';
 import { foldedHz } from '@/signal/findings/tone-place';
+import { short } from '@/signal/finding-words/values';
 import { designFilters } from '@/signal/filter-design';
 import type { Filter, Settings } from '@/signal/model';
 import { responseAt } from '@/signal/response';
@@ -48,8 +49,8 @@ export function countsTone(
   if (nowS - lastS > 4 / toothHz) return false;
   const is = (found: number, asked: number): boolean =>
     Math.abs(found - asked) < sameBins * tone.binHz + sameShare * found;
-  if (Number.isNaN(hz)) return is(foldedHz(toothHz, rateHz), tone.hz);
-  for (let h = 1; h <= harmonics; h++) if (is(h * toothHz, hz)) return true;
+  if (is(foldedHz(toothHz, rateHz), tone.hz)) return true;
+  for (let h = 2; h <= harmonics; h++) if (is(h * toothHz, hz)) return true;
   return false;
 }
 
@@ -66,12 +67,12 @@ function nameOf(filter: Filter): string {
     case 'none':
       return 'no filter';
     case 'lowpass':
-      return `low pass of ${filter.cutoffHz} Hz`;
+      return `low pass of ${short(filter.cutoffHz)} Hz`;
     case 'highpass':
-      return `high pass of ${filter.cutoffHz} Hz`;
+      return `high pass of ${short(filter.cutoffHz)} Hz`;
     case 'bandpass':
-      return `band pass of ${filter.lowHz} to ${filter.highHz} Hz`;
+      return `band pass of ${short(filter.lowHz)} to ${short(filter.highHz)} Hz`;
     default:
-      return `notch of ${filter.lowHz} to ${filter.highHz} Hz`;
+      return `notch of ${short(filter.lowHz)} to ${short(filter.highHz)} Hz`;
   }
 }

@@ -22,12 +22,14 @@ const leastOfExpected = 0.5;
 const clearly = 1.3;
 const left = 1.5;
 const leastLeft = 0.02;
+/** So near each other it does not matter which. */
+const alike = 0.15;
 
 /**
  * What a tone at `hz` of a ring really is, of all that fold there: bursts of neighbouring samples tell.
  * @param ringHz samples a second of the ring. @param rateHz and of the stream. @param mostHz no more than this.
  * @param share of a burst's power that the tone holds.
- * @returns Hz; NaN where several may be.
+ * @returns Hz; NaN where several may be that are not nearly the same.
  */
 export function unfoldedHz(
   hz: number,
@@ -37,24 +39,19 @@ export function unfoldedHz(
   share: number,
   bursts: BurstTone,
 ): number {
-  let bestHz = NaN;
-  let best = -1;
-  let second = -1;
+  const candidates: { hz: number; own: number }[] = [];
   for (let whole = 0; whole - hz <= mostHz; whole += ringHz) {
-    for (const candidateHz of whole === 0 ? [hz] : [whole - hz, whole + hz]) {
-      if (candidateHz > mostHz) continue;
-      const own = bursts.shareAt(candidateHz / rateHz);
-      const shows = candidateHz * burstLength >= fewestCycles * rateHz;
-      if (shows && own < leastOfExpected * share) continue;
-      if (own > best) {
-        second = best;
-        best = own;
-        bestHz = candidateHz;
-      } else if (own > second) {
-        second = own;
-      }
+    for (const oneHz of whole === 0 ? [hz] : [whole - hz, whole + hz]) {
+      if (oneHz > mostHz) continue;
+      const own = bursts.shareAt(oneHz / rateHz);
+      const shows = oneHz * burstLength >= fewestCycles * rateHz;
+      if (!shows || own >= leastOfExpected * share) candidates.push({ hz: oneHz, own });
     }
   }
-  if (second < 0 || best >= clearly * second) return bestHz;
-  return 1 - second > left * (1 - best) + leastLeft ? bestHz : NaN;
+  if (candidates.length === 0) return NaN;
+  const best = candidates.reduce((most, one) => (one.own > most.own ? one : most));
+  const others = candidates.filter((one) => Math.abs(one.hz / best.hz - 1) > alike);
+  const second = others.reduce((most, { own }) => Math.max(most, own), -1);
+  if (second < 0 || best.own >= clearly * second) return best.hz;
+  return 1 - second > left * (1 - best.own) + leastLeft ? best.hz : NaN;
 }
