@@ -19,6 +19,8 @@ const fewestSwings = 3;
 const humShare = 0.4;
 
 export class ShortSwing {
+  /** It goes up and down now, and never made an edge: nobody knows whether the shaft stands. */
+  isBeside = false;
   private readonly context: RuleContext;
   private readonly path: ChannelPath;
   private readonly index: number;
@@ -43,11 +45,14 @@ export class ShortSwing {
     if (path.edgeCount !== this.edges) {
       this.edges = path.edgeCount;
       this.quietSinceS = nowS;
+      this.isBeside = false;
       return undefined;
     }
     if (nowS - this.quietSinceS < windowS || nowS - this.lookedS < everyS) return undefined;
     this.lookedS = nowS;
-    return this.judge(nowS);
+    const sight = this.judge(nowS);
+    this.isBeside = sight !== null && path.log.count === 0;
+    return sight;
   }
 
   private judge(nowS: number): (SwingSight & { sure: boolean }) | null {

@@ -154,6 +154,19 @@ describe('teeth that the filter takes away', () => {
   });
 });
 
+describe('a swing beside a fixed band', () => {
+  const high: Partial<Settings> = { band: { mode: 'fixed', operateV: 3, releaseV: 1.4 } };
+
+  it('without any edge is no shaft that stands; one that counted before may rock', () => {
+    expect(stateOf(at(70), { settings: high })).toEqual(unknown);
+    expect(found(at(70), { settings: high })).toMatchObject([{ code: 'weak-swing', outcome: 'found' }]);
+    const rocks = (t: number) => (t < 2 ? 60 * t : 120 + 0.04 * Math.sin(40 * t));
+    const inside: Partial<Settings> = { band: { mode: 'fixed', operateV: 2.3, releaseV: 1.5 } };
+    expect(stateOf(rocks, { settings: inside, seconds: 8 }).state).toBe('stopped');
+    expect(stateOf(() => 0, { settings: high }).state).toBe('stopped');
+  });
+});
+
 describe('nothing is said, and a shaft that stands is said to stand', () => {
   const standing = () => 0;
   const highPass = filtered({ kind: 'highpass', family: 'butterworth', order: 2, cutoffHz: 5 });

@@ -67,12 +67,13 @@ export class WeakSwingRule implements FindingRule {
   }
 
   tick(nowS: number): void {
-    const { paths } = this.context;
+    const { paths, lanes, motion, rateHz } = this.context;
     for (let index = 0; index < paths.length; index++) {
       const latch = this.latches[index]!;
       if (this.means[index]!.look(nowS)) this.judge(paths[index]!, index, nowS);
       const sight = this.short[index]!.look(nowS);
       if (sight !== undefined) this.count(index, sight, nowS, sight?.sure === false);
+      if (this.short[index]!.isBeside && lanes.includes(index)) motion.doubt(Math.round(nowS * rateHz), nowS);
       const noisy = this.isFixed ? null : this.noisyEdges[index]!.look(nowS);
       if (noisy) this.raise(index, noisy, nowS, false);
       const unseen = unseenSwing(this.context, this.unseen, index);
