@@ -42,8 +42,10 @@ export abstract class BandKeeper implements FinderHost, DetectorSink {
   keptBackCount = 0;
   /** Rms of the filtered signal's noise, V, as of the last tick; NaN: not known. */
   noiseV = NaN;
+  /** What it may be at most, as far as can be told. */
+  mostNoiseV = NaN;
   // Numbers begin as fractions: a field that was ever a whole number changes its layout later.
-  /** Smallest step between neighbouring values as of the last tick, V. */
+  /** Smallest step between neighbouring values as of the last tick, V; while none has been seen, the largest that it may be. */
   quantumV = NaN;
   protected readonly options: BandOptions;
   protected readonly finder: LevelFinder;
@@ -105,8 +107,9 @@ export abstract class BandKeeper implements FinderHost, DetectorSink {
   }
 
   /** At fixed places of the stream: what was learnt since the last one takes effect. */
-  tick(nextAt: number, noiseV: number, quantumV: number): void {
+  tick(nextAt: number, noiseV: number, mostNoiseV: number, quantumV: number): void {
     this.noiseV = noiseV;
+    this.mostNoiseV = mostNoiseV;
     this.quantumV = quantumV;
     this.finder.forgetQuiet(nextAt);
   }

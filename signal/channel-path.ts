@@ -19,7 +19,7 @@ import { FixedBand } from '@/signal/fixed-band';
 import type { Levels } from '@/signal/levels';
 import { worstMarginV } from '@/signal/margin-meter';
 import type { Band, Channel, SampleArray } from '@/signal/model';
-import { rawNoiseV } from '@/signal/noise';
+import { mostNoiseV, mostQuantumV, rawNoiseV } from '@/signal/noise';
 import type { NoiseMeter } from '@/signal/noise';
 import type { BandChange, EdgeColumns, RejectedColumns } from '@/signal/pipeline-types';
 import type { RailMeter } from '@/signal/rail-meter';
@@ -236,7 +236,8 @@ export class ChannelPath {
     flushCascade(this.cascade);
     // With fewer samples a period the differences hold more signal than noise.
     const known = !(this.keeper.intake.periodSamples < fewestForNoise);
-    this.keeper.tick(this.nextAt, known ? rawNoiseV(noise) * this.gainOfNoise : NaN, noise.quantumV);
+    const gain = known ? this.gainOfNoise : NaN;
+    this.keeper.tick(this.nextAt, gain * rawNoiseV(noise), gain * mostNoiseV(noise), mostQuantumV(noise));
   }
 
   /** A tooth that was due did not come. */

@@ -72,8 +72,8 @@ export class FittedBand extends BandKeeper {
     this.history.from = at;
   }
 
-  override tick(nextAt: number, noiseV: number, quantumV: number): void {
-    super.tick(nextAt, noiseV, quantumV);
+  override tick(nextAt: number, noiseV: number, mostNoiseV: number, quantumV: number): void {
+    super.tick(nextAt, noiseV, mostNoiseV, quantumV);
     if (this.intake.log.count !== this.refreshedAt) this.refreshEye();
   }
 

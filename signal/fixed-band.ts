@@ -67,8 +67,8 @@ export class FixedBand extends BandKeeper {
     this.isWatching = false;
   }
 
-  override tick(nextAt: number, noiseV: number, quantumV: number): void {
-    super.tick(nextAt, noiseV, quantumV);
+  override tick(nextAt: number, noiseV: number, mostNoiseV: number, quantumV: number): void {
+    super.tick(nextAt, noiseV, mostNoiseV, quantumV);
     this.tickAt = nextAt;
     this.lateSamples = longShare * this.intake.typicalSamples;
     if (++this.ticks % ticksBetweenAudits === 0) this.watchTo(this.edgeCount + edgesOfAudit, nextAt);

@@ -86,16 +86,18 @@ export function startHunt(hunter: Hunter, leastV: number, known: Levels, aside: 
   hunter.found = false;
 }
 
-/** Swings below this may be noise, V; infinite while the noise is not known (NaN). */
+/**
+ * Swings below this may be noise, V; infinite while the noise is not known (NaN). What is rounded to quanta swings by one more.
+ */
 export function swingFloorV(hunter: Hunter, noiseV: number, quantumV: number): number {
   return Number.isNaN(noiseV)
     ? Infinity
-    : Math.max(leastSigmas * noiseV, leastQuanta * quantumV, hunter.leastV);
+    : Math.max(leastSigmas * noiseV + quantumV, leastQuanta * quantumV, hunter.leastV);
 }
 
 /**
  * Takes `v[from..to]` (ends included) until levels are found.
- * @param noiseV rms; NaN: not known, then nothing is decided.
+ * @param noiseV rms, what it may be at most; NaN: not known, then nothing is decided.
  * @returns index of the sample at which levels were found (`hunter.found`), else `to`.
  */
 export function hunt(

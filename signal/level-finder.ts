@@ -15,6 +15,8 @@ import { leastToothV } from '@/signal/tooth-size';
 export type FinderHost = {
   /** As of the last tick, V; NaN: not known. */
   readonly noiseV: number;
+  /** What it may be at most, as far as can be told, V; NaN: not known. */
+  readonly mostNoiseV: number;
   readonly quantumV: number;
   /** The band stays where it is. */
   readonly isFixed: boolean;
@@ -138,7 +140,7 @@ export class LevelFinder {
     const { hunter, remembered, host } = this;
     if (!remembered || !this.starting || remembered.count < quietS * this.rateHz || hunter.turnCount > 0)
       return;
-    if (hunter.highV - hunter.lowV <= swingFloorV(hunter, host.noiseV, host.quantumV))
+    if (hunter.highV - hunter.lowV <= swingFloorV(hunter, host.mostNoiseV, host.quantumV))
       remembered.restart(nextAt - 1);
   }
 
@@ -150,7 +152,7 @@ export class LevelFinder {
     const { hunter, detector, host } = this;
     let stop = to;
     if (this.hunting) {
-      stop = hunt(hunter, v, from, to, host.noiseV, host.quantumV);
+      stop = hunt(hunter, v, from, to, host.mostNoiseV, host.quantumV);
     } else {
       stop = Math.min(to, this.huntAt - base - 1);
       if (stop < from) {

@@ -7,6 +7,9 @@
  * only: hum and drift are not in it. Where a switch steps at every few samples, first differences find room between the
  * steps.
  *
+ * What must not be taken for a tooth is held against more than that: a low estimate is made up for by the bursts before
+ * these, and by what so few of them leave open (of eight bursts in a thousand estimates one is 0.6 of the truth).
+ *
  * Nothing below the quantum can be seen: the estimate never falls below quantum / sqrt(12). For codes the quantum is
  * one code, for floats the smallest step seen between neighbours.
  */
@@ -20,8 +23,14 @@ const medianOfUnit = 0.6745 * 1.013;
 const whiteGain = Math.sqrt(924);
 const closeDifferences = burstLength - 2;
 const closeGain = Math.SQRT2;
-/** Steps that fill the differences leave so much less between neighbours; noise alone does not. */
+/** Steps that fill the differences leave so much less between neighbours; noise alone does not, unless it is but a code or two. */
 const farLess = 0.5;
+const fewQuanta = 3;
+/** The estimates before are remembered for so many bursts, and count for so much of the present one at most. */
+const longMemory = 400;
+const mostOfMemory = 1.4;
+/** Of `n` bursts the noise may be 1 + so many / n of the estimate. */
+const doubtBursts = 4;
 /** Of a burst at a rail: samples on it, stretches off it, and how long these are on average at most, samples. */
 const fewestAtRail = 6;
 const fewestRuns = 2;
@@ -37,6 +46,8 @@ export type NoiseMeter = {
   recent: Float64Array;
   sorted: Float64Array;
   seen: number;
+  /** Mean of the estimates of the last minute or so, V. */
+  longV: number;
   /** Step between neighbouring values, V; 0 where none has been seen. */
   quantumV: number;
   /** Known beforehand (codes): not to be narrowed by what is seen. */
@@ -51,6 +62,8 @@ export function createNoiseMeter(): NoiseMeter {
     recent: new Float64Array(kept),
     sorted: new Float64Array(kept),
     seen: 0,
+    // Numbers begin as fractions: a field that was ever a whole number changes its layout later.
+    longV: NaN,
     quantumV: 0,
     quantumFixed: false,
   };
@@ -93,13 +106,16 @@ export function endBurst(meter: NoiseMeter): void {
   // Steps of a switch may be too near each other for the differences to pass between them.
   for (let i = 0; i < closeDifferences; i++) sizes[i] = Math.abs(burst[i + 1]! - burst[i]!);
   const close = medianOf(sizes, closeDifferences) / (medianOfUnit * closeGain);
-  if (close < farLess * sigma) sigma = close;
+  if (close < farLess * sigma && sigma > fewQuanta * meter.quantumV) sigma = close;
   if (atLeast >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, least, meter.quantumV));
   if (atLargest >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, largest, meter.quantumV));
   const at = meter.seen % kept;
   replaceSorted(meter.sorted, Math.min(meter.seen, kept), meter.recent[at]!, sigma);
   meter.recent[at] = sigma;
   meter.seen++;
+  const nowV = middleOf(meter);
+  if (meter.seen <= kept) meter.longV = nowV;
+  else meter.longV += (nowV - meter.longV) / longMemory;
 }
 
 /**
@@ -177,9 +193,22 @@ function sortFew(values: Float64Array, count: number): void {
 
 /** Rms of the raw noise, V, or NaN before the first burst. */
 export function rawNoiseV(meter: NoiseMeter): number {
+  return meter.seen === 0 ? NaN : Math.max(middleOf(meter), meter.quantumV / Math.sqrt(12));
+}
+
+/** The most that the rms of the raw noise may be, V, as far as the bursts tell; NaN before the first one. */
+export function mostNoiseV(meter: NoiseMeter): number {
+  const nowV = rawNoiseV(meter);
   const count = Math.min(meter.seen, kept);
-  if (count === 0) return NaN;
-  const { sorted } = meter;
-  const middle = (sorted[(count - 1) >> 1]! + sorted[count >> 1]!) / 2;
-  return Math.max(middle, meter.quantumV / Math.sqrt(12));
+  return Math.max(nowV, Math.min(meter.longV, mostOfMemory * nowV)) * (1 + doubtBursts / count);
+}
+
+/** The step between neighbouring values, V; before one was seen, the largest that it may be: a code that rarely toggles. */
+export function mostQuantumV({ quantumV, quantumFixed }: NoiseMeter): number {
+  return quantumFixed || quantumV > 0 ? quantumV : coarsestQuantumV;
+}
+
+function middleOf({ sorted, seen }: NoiseMeter): number {
+  const count = Math.min(seen, kept);
+  return (sorted[(count - 1) >> 1]! + sorted[count >> 1]!) / 2;
 }

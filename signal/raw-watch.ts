@@ -13,7 +13,7 @@ import { createSlowRing } from '@/signal/slow-ring';
 import type { SlowRing } from '@/signal/slow-ring';
 import { samplesPerTick } from '@/signal/ticks';
 
-const burstsOfStart = 12;
+const burstsOfStart = 41;
 
 export class RawWatch {
   readonly noise: NoiseMeter = createNoiseMeter();
@@ -40,7 +40,7 @@ export class RawWatch {
     this.rateHz = rateHz;
     this.stride = 2 ** Math.min(5, Math.max(0, Math.floor(Math.log2(rateHz / 250))));
     this.burstEveryLater = powerOfTwo(Math.min(4096, Math.max(32, rateHz / 8)));
-    // Until the first tick there must be enough of them to judge by.
+    // Until the first tick there must be enough of them to judge by, as many as there can be.
     this.burstEvery = Math.min(
       this.burstEveryLater,
       powerOfTwo(Math.max(32, samplesPerTick(rateHz) / burstsOfStart)),
