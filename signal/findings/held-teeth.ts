@@ -19,10 +19,13 @@ export type HeldTeeth = {
   sure: boolean;
 };
 
-/** What is looked at at once: so long, and so many edges. */
+/** What is looked at at once: so long, and so many edges; or fewer among so many crossings. */
 const windowS = 0.5;
 const fewestEdges = 8;
-const looksNeeded = 2;
+const fewAmongMany = 4;
+const manyFlanks = 32;
+/** It is so for so long, s. */
+const provenS = 0.9;
 /** Edges that come further apart than so many hold-offs are none that it let through by chance. */
 const mostHoldoffs = 2;
 const fewestEaten = 2;
@@ -36,13 +39,14 @@ const farShare = 0.35;
 const leastFaster = 1.005;
 
 export class HeldTeethWatch {
+  /** Between the last two looks, s. */
+  looksS = 0;
   private readonly context: RuleContext;
   private readonly path: ChannelPath;
   private readonly tone: RingTone;
   private fromS = NaN;
   private edges = 0;
   private eaten = 0;
-  private seen = 0;
   private seenFromS = NaN;
 
   constructor(context: RuleContext) {
@@ -57,14 +61,17 @@ export class HeldTeethWatch {
     const { holdoffS } = context.settings;
     if (!(holdoffS > 0)) return null;
     const edges = path.edgeCount - this.edges;
+    const eaten = path.eatenCount - this.eaten;
     const spanS = nowS - this.fromS;
-    if (spanS < windowS || (spanS < mostHoldoffs * fewestEdges * holdoffS && edges < fewestEdges))
-      return null;
-    const held = this.judge(edges, path.eatenCount - this.eaten, spanS);
+    const enough = edges >= fewestEdges || (edges >= fewAmongMany && edges + eaten >= manyFlanks);
+    if (spanS < windowS || (!enough && spanS < mostHoldoffs * fewestEdges * holdoffS)) return null;
+    const held = enough ? this.judge(edges, eaten, spanS) : null;
+    const { fromS } = this;
     this.restart(nowS);
-    this.seen = held ? this.seen + 1 : 0;
-    if (this.seen === 1) this.seenFromS = nowS - spanS;
-    return held && this.seen >= looksNeeded ? { ...held, fromS: this.seenFromS } : null;
+    this.looksS = spanS;
+    if (!held) this.seenFromS = NaN;
+    else if (Number.isNaN(this.seenFromS)) this.seenFromS = fromS;
+    return held && nowS - this.seenFromS >= provenS ? { ...held, fromS: this.seenFromS } : null;
   }
 
   /** What came up to now is left out: samples were lost. */
@@ -78,7 +85,7 @@ export class HeldTeethWatch {
   private judge(edges: number, eaten: number, spanS: number): Omit<HeldTeeth, 'fromS'> | null {
     const { holdoffS } = this.context.settings;
     const flanks = edges + eaten;
-    if (edges < fewestEdges || !(spanS / edges < mostHoldoffs * holdoffS)) return null;
+    if (!(spanS / edges < mostHoldoffs * holdoffS)) return null;
     if (!(spanS / flanks < holdoffS) || eaten < fewestEaten) return null;
     const comeHz = flanks / 2 / spanS;
     const countedHz = edges / 2 / spanS;

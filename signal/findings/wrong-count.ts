@@ -49,7 +49,7 @@ export class WrongCountRule implements FindingRule {
     if (held) this.raiseHeld(latch, held, nowS);
     // Teeth that were eaten make every other count wrong.
     else if (claim && latch.open?.evidence.by !== 'hold-off') this.raise(latch, claim, nowS);
-    latch.rest(nowS);
+    latch.rest(nowS, latch.open?.evidence.by === 'hold-off' ? this.held.looksS : 0);
   }
 
   gap({ toS }: RuleGap): void {
