@@ -53,8 +53,11 @@ export class BurstTone {
     this.cyclesPerSample = this.swingV = NaN;
   }
 
-  /** Takes the burst that is whole now, if it is a new one. */
-  take({ burst, filled, seen, quantumV }: NoiseMeter): void {
+  /**
+   * Takes the burst that is whole now, if it is a new one.
+   * @param leastV peak to peak; no tone that is sought is smaller.
+   */
+  take({ burst, filled, seen }: NoiseMeter, leastV: number): void {
     if (filled !== 0 || seen === 0 || seen === this.seen) return;
     this.seen = seen;
     const { shares } = this;
@@ -63,20 +66,22 @@ export class BurstTone {
     const meanV = sum / burstLength;
     let power = 0;
     for (let i = 0; i < burstLength; i++) power += (burst[i]! - meanV) ** 2;
-    // One code that toggles is no tone.
-    const isFlat = !(power > burstLength * quantumV * quantumV);
+    const isFlat = !(power > (burstLength * leastV * leastV) / 8);
     this.count = Math.min(this.count + 1, averaged);
     this.squareV += (power / burstLength - this.squareV) / this.count;
     let best = -1;
     for (let f = first; f <= last; f++) {
-      let re = 0;
-      let im = 0;
-      for (let i = 0, at = f * burstLength; i < burstLength; i++, at++) {
-        const x = burst[i]! - meanV;
-        re += x * cosines[at]!;
-        im += x * sines[at]!;
+      let share = 0;
+      if (!isFlat) {
+        let re = 0;
+        let im = 0;
+        for (let i = 0, at = f * burstLength; i < burstLength; i++, at++) {
+          const x = burst[i]! - meanV;
+          re += x * cosines[at]!;
+          im += x * sines[at]!;
+        }
+        share = (re * re + im * im) / power;
       }
-      const share = isFlat ? 0 : (re * re + im * im) / power;
       shares[f]! += (share - shares[f]!) / this.count;
       if (f >= slowest * cycle && (best < 0 || shares[f]! > shares[best]!)) best = f;
     }

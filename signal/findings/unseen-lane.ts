@@ -93,7 +93,7 @@ export class UnseenLane {
       }
     }
     const quiet = nowS - this.quietFromS;
-    if (quiet > 0 || this.suspects) burst.take(path.bursts);
+    if (quiet > 0 || this.suspects) burst.take(path.bursts, this.leastV());
     if (sections.length > 0) this.gather();
     if (nowS - this.lookedS < everyS) return;
     this.lookedS = nowS;
@@ -103,7 +103,10 @@ export class UnseenLane {
   private look(isQuiet: boolean, nowS: number): void {
     const { path, sections, tone } = this;
     if (sections.length === 0) {
-      if (isQuiet) this.count(tone.look(path.slow) ? this.judge(path.slow, true, nowS) : this.fast(), nowS);
+      if (!isQuiet) return;
+      // No tone is larger than all of it.
+      const isMore = spreadOfRing(path.slow, 1 / tone.binHz) >= this.leastV() && tone.look(path.slow);
+      this.count(isMore ? this.judge(path.slow, true, nowS) : this.fast(), nowS);
       return;
     }
     const rawV = this.highV - this.lowV;
@@ -154,7 +157,7 @@ export class UnseenLane {
     if (fast) return fast;
     const byBurst = burst.cyclesPerSample < fastCycles && !(burst.swingV < tone.swingV);
     const swingV = byBurst ? burst.swingV : tone.swingV;
-    if (!this.isLarge(swingV)) return null;
+    if (!(swingV >= this.leastV())) return null;
     const mains = !byBurst && isMains(tone.hz, ring.rateHz, 1.5 * tone.binHz);
     const { supplyV } = path.channel.sensor;
     if (mains && !(swingV > mostMains * (supplyV ?? Infinity))) return null;
@@ -180,7 +183,7 @@ export class UnseenLane {
   private fast(): Sight | null {
     const { burst, rateHz, tone, path } = this;
     const { cyclesPerSample, swingV } = burst;
-    if (!(cyclesPerSample >= fastCycles) || !this.isLarge(swingV)) return null;
+    if (!(cyclesPerSample >= fastCycles) || !(swingV >= this.leastV())) return null;
     const hz = cyclesPerSample * rateHz;
     // A burst cannot tell one from the other; the ring can.
     if (isMains(hz, rateHz, rateHz / burstLength) && !(tone.hz > 0 && !isMains(tone.hz, path.slow.rateHz, 1)))
@@ -188,13 +191,10 @@ export class UnseenLane {
     return { why: 'fast', swingV, leftV: swingV, noiseV: rawNoiseV(path.bursts), hz, counts: false };
   }
 
-  private isLarge(swingV: number): boolean {
+  private leastV(): number {
     const { levels, channel, bursts } = this.path;
-    const { supplyV } = channel.sensor;
-    return (
-      swingV >= 2 * leastQuanta * bursts.quantumV &&
-      !(supplyV !== null && swingV < ofSupply * supplyV) &&
-      !(swingV < ofKnown * (levels.highV - levels.lowV))
-    );
+    const ofQuanta = 2 * leastQuanta * bursts.quantumV;
+    const ofRange = ofSupply * (channel.sensor.supplyV ?? 0);
+    return Math.max(ofQuanta, ofRange, ofKnown * (levels.highV - levels.lowV) || 0);
   }
 }
