@@ -8,6 +8,7 @@ import { findingOf } from '@/signal/findings/channel-finding';
 import { RingTone } from '@/signal/findings/ring-tone';
 import { foldedHz } from '@/signal/findings/tone-place';
 import type { RuleContext } from '@/signal/findings/rule';
+import { wordsFor } from '@/signal/finding-words';
 import type { Finding } from '@/signal/model';
 
 export type HeldTeeth = {
@@ -142,9 +143,11 @@ export function heldFinding({ rig, paths, primary }: RuleContext, held: HeldTeet
     countedEveryS: countedS,
     speedTimes: toothS / countedS,
     limitRpm: 60 / (2 * holdoffS * pulsesPerTurn * gearRatio),
-    outcome: sure ? 'found' : 'cannot-tell',
-  } as const;
-  const { outcome } = evidence;
+  };
+  const outcome = sure ? 'found' : 'cannot-tell';
   const { name } = paths[primary]!.channel;
-  return findingOf('wrong-count', name, { fromS, atS: fromS, severity: 'fault', outcome, evidence });
+  return {
+    ...findingOf('wrong-count', name, { fromS, atS: fromS, severity: 'fault', outcome, evidence }),
+    ...wordsFor('wrong-count', name, { ...evidence, outcome }),
+  };
 }

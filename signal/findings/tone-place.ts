@@ -52,6 +52,6 @@ export function unfoldedHz(
   const best = candidates.reduce((most, one) => (one.own > most.own ? one : most));
   const others = candidates.filter((one) => Math.abs(one.hz / best.hz - 1) > alike);
   const second = others.reduce((most, { own }) => Math.max(most, own), -1);
-  if (second < 0 || best.own >= clearly * second) return best.hz;
+  if (second < 0 || best.own > clearly * second) return best.hz;
   return 1 - second > left * (1 - best.own) + leastLeft ? best.hz : NaN;
 }
