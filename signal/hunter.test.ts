@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { sampled, testPipeline, testRig } from '@/signal/test-signals';
+import { normal, sampled, seeded, testPipeline, testRig } from '@/signal/test-signals';
 
 describe('finding the levels of a signal of which nothing is known', () => {
   it.each([20, 100, 400])(
@@ -22,6 +22,18 @@ describe('finding the levels of a signal of which nothing is known', () => {
       }
     },
   );
+
+  it('puts the first band about the middle, wherever on a flank the signal was when the levels were found', () => {
+    const rateHz = 10_000;
+    for (let k = 0; k < 40; k++) {
+      const noise = normal(seeded(k));
+      const pipeline = testPipeline(testRig('single', 12), rateHz);
+      const wave = (t: number) => 1.65 + Math.sin(2 * Math.PI * (k / 40 + 53 * t)) + 0.07 * noise();
+      pipeline.process([sampled(2000, rateHz, wave)], 2000);
+      const { operateV, releaseV } = pipeline.output.bands[0]!;
+      expect(Math.abs((operateV + releaseV) / 2 - 1.65), `phase ${k} of 40`).toBeLessThan(0.15);
+    }
+  });
 
   it('makes nothing of a constant', () => {
     const pipeline = testPipeline(testRig('single', 8), 1000);

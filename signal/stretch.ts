@@ -60,10 +60,13 @@ export class Stretch {
     this.returnV *= sign;
   }
 
-  /** Highest of the troughs between bumps found upwards, what comes before the first one left out; V. */
+  /**
+   * Highest of the troughs between bumps found upwards, V. What comes before the first one is left out, and what comes after
+   * the last one too: the signal may still be on its way down.
+   */
   troughV(): number {
     let highest = -Infinity;
-    for (let k = 1; k <= this.count; k++) highest = Math.max(highest, this.sideV[k]!);
+    for (let k = 1; k < this.count; k++) highest = Math.max(highest, this.sideV[k]!);
     return highest;
   }
 
