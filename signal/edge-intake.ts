@@ -41,12 +41,19 @@ const mostShorter = 0.8;
 /** Noise takes no more than the rest of half the band from what the flank has to climb. */
 const leastOfHalf = 0.3;
 /**
- * What a straight line between the samples of a sine misses its middle by, rms, samples times the square of its radians a
- * sample: 1 / (36 sqrt 3) at the most.
+ * A straight line between two samples of a flank of steepness w (2 slopes over the swing: of a sine its radians a sample)
+ * misses the middle by k w^2 f (1 - f) (1 - 2 f), f the place between them: k is 1/6 for a sine (by its series), 1/3 where
+ * flanks are as curved as a hyperbolic tangent. That much is taken off, up to a flank of some three samples.
  */
-const bent = 0.011;
-/** A flank of two or three samples may be curved as well: found with pulses that are so short. */
-const curved = 0.02;
+const flankBend = 1.3 / 6;
+const steepest = 1.7;
+/**
+ * What is left, rms, samples times the square of w: of teeth that are about sines (w a tooth near 2 pi), and of shorter
+ * pulses, whose middle is not where they are straight. Found with sines, sines with harmonics, and Gaussian pulses.
+ */
+const leftOfSine = 0.004;
+const leftOfPulse = 0.02;
+const mostOfSine = 9;
 
 export class EdgeIntake {
   readonly edges: EdgeColumns = createEdgeColumns();
@@ -135,7 +142,7 @@ export class EdgeIntake {
     const strongAt = oneTooth ? 0.51 : strongShare;
     for (let k = first; k < last; k++) {
       const at = raw.at[k]!;
-      const midAt = raw.midAt[k]!;
+      const line = raw.midAt[k]!;
       const extremeV = raw.extremeV[k]!;
       const flags = raw.flags[k]!;
       const rising = (flags & edgeRising) !== 0;
@@ -147,6 +154,12 @@ export class EdgeIntake {
 
       const toothV = Math.abs(extremeV - lastExtremeV);
       const swingV = highV - lowV;
+      let perV = rising ? risePerV : fallPerV;
+      const flankV = perV * swingV;
+      const square = 4 / (flankV * flankV);
+      const share = line - Math.floor(line);
+      const bend = square < steepest ? flankBend * square * share * (1 - share) * (1 - 2 * share) : 0;
+      const midAt = line - bend < at ? line - bend : at;
       lastExtremeV = extremeV;
       if (!(toothV < swingV / 2)) wobbleV *= 0.97;
       else if (oneTooth && toothV > wobbleV) wobbleV = toothV;
@@ -181,7 +194,6 @@ export class EdgeIntake {
 
       // The slope is half the band over the time from mid to the switching point (a step between two samples would hold more
       // noise than slope on a gentle flank); the former comes late, and the latter early, where they are crossed repeatedly.
-      let perV = rising ? risePerV : fallPerV;
       if (at > midAt && !(flags & edgeLate)) {
         const farV = halfV - 2 * noiseV * lagOf(noiseStepV * perV);
         const latest =
@@ -191,9 +203,9 @@ export class EdgeIntake {
       if (rising) risePerV = perV;
       else fallPerV = perV;
       const noise = noiseV * perV * spreadOf(noiseStepV * perV, oneCrossing);
-      // The line between two samples is no sine, and on a flank of one sample it says next to nothing.
+      // On a flank of one sample the line says next to nothing.
       const steep = 2 / (perV * swingV);
-      const off = (steep > 0.55 ? curved : bent) * steep * steep;
+      const off = (steep * periodSamples < mostOfSine ? leftOfSine : leftOfPulse) * steep * steep;
       const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : off * off;
 
       const i = roomForEdge(edges);

@@ -1,6 +1,6 @@
 /**
- * Teeth in step with the sample grid: the straight line between two samples misses the crossing of each by nearly the
- * same, so that teeth and turns hardly disagree and the speed is still off. What is said of its error has to hold it.
+ * Teeth in step with the sample grid: what is left of the straight line's error between two samples is nearly the same
+ * for each, so that teeth and turns hardly disagree and the speed is still off. What is said of its error has to hold it.
  */
 import { describe, expect, it } from 'vitest';
 import { defaultSettings } from '@/signal/model';
@@ -53,8 +53,8 @@ function honestyOf(method: SpeedMethod, samplesPerTooth: number, noiseV: number)
 describe.each([6, 6.05, 7.04, 7.92, 8, 10, 12])('%s samples a tooth', (samplesPerTooth) => {
   it.each([
     ['tooth', 3e-3],
-    ['turn', 1e-4],
-    ['window', 3e-4],
+    ['turn', 4e-5],
+    ['window', 2e-4],
   ] as const)('the error of a speed per %s holds it, and is not wide', (method, mostSaid) => {
     for (const noiseV of [0.0005, 0.002, 0.01]) {
       const { within, said } = honestyOf(method, samplesPerTooth, noiseV);
