@@ -24,11 +24,11 @@ export function createDelayCurve(sections: readonly Section[], rateHz: number): 
   };
 }
 
-/** Phase delay at `hz`, s. */
-export function delayAt(curve: DelayCurve, hz: number): number {
+/** Phase delay at `ofRate` times the rate, s. */
+export function delayAt(curve: DelayCurve, ofRate: number): number {
   const { tableS } = curve;
   if (tableS.length === 0) return 0;
-  const share = Math.min(highestShare, Math.max(lowestShare, hz / curve.rateHz));
+  const share = Math.min(highestShare, Math.max(lowestShare, ofRate));
   const zeros = Math.clz32(share * 4294967296);
   const within = (share * toUnit[zeros]! - 1) * perOctave;
   const below = (octaves - zeros) * perOctave + Math.floor(within);

@@ -46,7 +46,7 @@ const leastOfHalf = 0.3;
  * flanks are as curved as a hyperbolic tangent. That much is taken off, up to a flank of some three samples.
  */
 const flankBend = 1.3 / 6;
-const steepest = 1.7;
+const steepestSquare = 1.7;
 /**
  * What is left, rms, samples times the square of w: of teeth that are about sines (w a tooth near 2 pi), and of shorter
  * pulses, whose middle is not where they are straight. Found with sines, sines with harmonics, and Gaussian pulses.
@@ -155,10 +155,10 @@ export class EdgeIntake {
       const toothV = Math.abs(extremeV - lastExtremeV);
       const swingV = highV - lowV;
       let perV = rising ? risePerV : fallPerV;
-      const flankV = perV * swingV;
-      const square = 4 / (flankV * flankV);
+      const steepBefore = 2 / (perV * swingV);
+      const square = steepBefore * steepBefore;
       const share = line - Math.floor(line);
-      const bend = square < steepest ? flankBend * square * share * (1 - share) * (1 - 2 * share) : 0;
+      const bend = square < steepestSquare ? flankBend * square * share * (1 - share) * (1 - 2 * share) : 0;
       const midAt = line - bend < at ? line - bend : at;
       lastExtremeV = extremeV;
       if (!(toothV < swingV / 2)) wobbleV *= 0.97;
@@ -180,15 +180,14 @@ export class EdgeIntake {
         const period = midAt - before;
         const gap = missing > 0 && spansGap(period / periodSamples, missing + 1);
         periodSamples = gap ? period / (missing + 1) : period;
-        const ratio = periodSamples / typicalSamples;
-        const again = periodSamples / periodBefore;
-        if (again >= mostShorter && again <= mostLonger) typicalSamples = periodSamples;
-        else if (ratio > mostLonger) typicalSamples *= mostLonger;
-        else if (ratio < mostShorter) typicalSamples *= mostShorter;
+        const isAgain =
+          periodSamples >= mostShorter * periodBefore && periodSamples <= mostLonger * periodBefore;
+        if (!isAgain && periodSamples > mostLonger * typicalSamples) typicalSamples *= mostLonger;
+        else if (!isAgain && periodSamples < mostShorter * typicalSamples) typicalSamples *= mostShorter;
         else typicalSamples = periodSamples;
         periodBefore = periodBetween;
         periodBetween = periodSamples;
-        delayS = delayAt(delays, rateHz / periodSamples);
+        delayS = delayAt(delays, 1 / periodSamples);
         this.delayKnown = true;
       }
 
@@ -204,13 +203,13 @@ export class EdgeIntake {
       else fallPerV = perV;
       const noise = noiseV * perV * spreadOf(noiseStepV * perV, oneCrossing);
       // On a flank of one sample the line says next to nothing.
-      const steep = 2 / (perV * swingV);
+      const steep = steepBefore === steepBefore ? steepBefore : 2 / (perV * swingV);
       const off = (steep * periodSamples < mostOfSine ? leftOfSine : leftOfPulse) * steep * steep;
       const grid = raw.midStepV[k]! > swingV / 2 ? 1 / 12 : off * off;
 
       const i = roomForEdge(edges);
-      const midS = midAt / rateHz;
-      edges.t[i] = at / rateHz - delayS;
+      const midS = midAt * periodS;
+      edges.t[i] = at * periodS - delayS;
       edges.midT[i] = midS - delayS;
       edges.flags[i] = flags;
       const q = roomInQueue(queue);

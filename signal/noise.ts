@@ -95,18 +95,20 @@ export function endBurst(meter: NoiseMeter): void {
       if (x === largest) atLargest++;
     }
   }
+  let [a, b, c, d, e, f] = [burst[0]!, burst[1]!, burst[2]!, burst[3]!, burst[4]!, burst[5]!];
   for (let i = 0; i < differences; i++) {
-    const ends = burst[i]! + burst[i + 6]!;
-    const inner = burst[i + 1]! + burst[i + 5]!;
-    const near = burst[i + 2]! + burst[i + 4]!;
-    sizes[i] = Math.abs(ends - 6 * inner + 15 * near - 20 * burst[i + 3]!);
+    const g = burst[i + 6]!;
+    sizes[i] = Math.abs(a + g - 6 * (b + f) + 15 * (c + e) - 20 * d);
+    a = b;
+    b = c;
+    c = d;
+    d = e;
+    e = f;
+    f = g;
   }
   if (!meter.quantumFixed) learnQuantum(meter);
   let sigma = medianOf(sizes, differences) / (medianOfUnit * whiteGain);
-  // Steps of a switch may be too near each other for the differences to pass between them.
-  for (let i = 0; i < closeDifferences; i++) sizes[i] = Math.abs(burst[i + 1]! - burst[i]!);
-  const close = medianOf(sizes, closeDifferences) / (medianOfUnit * closeGain);
-  if (close < farLess * sigma && sigma > fewQuanta * meter.quantumV) sigma = close;
+  if (sigma > fewQuanta * meter.quantumV) sigma = betweenSteps(burst, sizes, sigma);
   if (atLeast >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, least, meter.quantumV));
   if (atLargest >= fewestAtRail) sigma = Math.max(sigma, clippedNoiseV(burst, largest, meter.quantumV));
   const at = meter.seen % kept;
@@ -116,6 +118,25 @@ export function endBurst(meter: NoiseMeter): void {
   const nowV = middleOf(meter);
   if (meter.seen <= kept) meter.longV = nowV;
   else meter.longV += (nowV - meter.longV) / longMemory;
+}
+
+/**
+ * Steps of a switch may be too near each other for the differences to pass between them.
+ * @returns the noise by first differences where it is far less than `sigma`, else `sigma`.
+ */
+function betweenSteps(burst: Float64Array, sizes: Float64Array, sigma: number): number {
+  const gain = medianOfUnit * closeGain;
+  // Their median need not be found where fewer than half are that small.
+  const small = 1.001 * farLess * sigma * gain;
+  let smaller = 0;
+  for (let i = 0; i < closeDifferences; i++) {
+    const size = Math.abs(burst[i + 1]! - burst[i]!);
+    sizes[i] = size;
+    if (size < small) smaller++;
+  }
+  if (smaller < closeDifferences / 2) return sigma;
+  const close = medianOf(sizes, closeDifferences) / gain;
+  return close < farLess * sigma ? close : sigma;
 }
 
 /**
