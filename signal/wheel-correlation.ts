@@ -29,8 +29,10 @@ export class LagCorrelation {
     ring[count & mask] = known;
     this.energy += known * known;
     this.errorEnergy += error * error;
-    for (let i = 0; i < lags.length; i++)
-      if (lags[i]! <= count) sums[i] = sums[i]! + known * ring[(count - lags[i]!) & mask]!;
+    for (let i = 0; i < lags.length; i++) {
+      const lag = lags[i]!;
+      if (lag <= count) sums[i]! += known * ring[(count - lag) & mask]!;
+    }
     this.count = count + 1;
   }
 

@@ -82,6 +82,12 @@ export class WheelPattern {
     this.clear();
   }
 
+  /** Passes over the teeth that have come, where none has been taken since it began anew. */
+  skip(log: ToothLog): void {
+    if (this.teeth > 0 || this.close) this.restart(log);
+    else this.next = log.count;
+  }
+
   /**
    * Takes the teeth that have come.
    * @returns true where the look is over: `verdict` is new.

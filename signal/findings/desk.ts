@@ -1,6 +1,6 @@
 /** All rules of a stream at work: when they are asked, what is open, what has closed, and what follows from what. */
 import { causeOf } from '@/signal/findings/causes';
-import type { FindingRule, RuleContext, RuleGap } from '@/signal/findings/rule';
+import type { FindingLatch, FindingRule, RuleContext, RuleGap } from '@/signal/findings/rule';
 import { createRules } from '@/signal/findings/rules';
 import type { Finding } from '@/signal/model';
 import type { BoardNote } from '@/signal/pipeline-types';
@@ -10,17 +10,21 @@ const rememberedS = 10;
 
 export class FindingsDesk {
   private readonly rules: FindingRule[];
+  /** Those of each rule: looked up among so many kinds of rules they cost more than all that is done with them. */
+  private readonly latches: (readonly FindingLatch[])[];
   private readonly closed: Finding[];
   private recent: Finding[] = [];
 
   /** @param closed where findings go that have ended. */
   constructor(context: RuleContext, closed: Finding[]) {
     this.rules = createRules(context);
+    this.latches = this.rules.map(({ latches }) => latches);
     this.closed = closed;
   }
 
   tick(nowS: number): void {
-    for (const rule of this.rules) rule.tick(nowS);
+    const { rules } = this;
+    for (let r = 0; r < rules.length; r++) rules[r]!.tick(nowS);
     this.settle(nowS);
   }
 
@@ -37,14 +41,15 @@ export class FindingsDesk {
   /** Findings that are open now, in the order of the rules. */
   open(): Finding[] {
     const list: Finding[] = [];
-    for (const rule of this.rules) for (const { open } of rule.latches) if (open) list.push(open);
+    for (const latches of this.latches) for (const { open } of latches) if (open) list.push(open);
     return list;
   }
 
   private settle(nowS: number): void {
     let anyOpen = false;
-    for (let r = 0; r < this.rules.length; r++) {
-      const { latches } = this.rules[r]!;
+    const lists = this.latches;
+    for (let r = 0; r < lists.length; r++) {
+      const latches = lists[r]!;
       for (let k = 0; k < latches.length; k++) {
         const { closed, open } = latches[k]!;
         if (open) anyOpen = true;

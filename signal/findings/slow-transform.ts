@@ -6,29 +6,16 @@
  */
 export class SlowTransform {
   readonly size: number;
-  private readonly window: Float64Array;
+  private readonly tables: Tables;
   private readonly re: Float64Array;
   private readonly im: Float64Array;
-  /** Of -pi i / h, for three quarters of a turn. */
-  private readonly cosines: Float64Array;
-  private readonly sines: Float64Array;
-  private readonly places: Uint16Array;
 
   /** @param size a power of two, 16 or more. */
   constructor(size: number) {
-    const half = size / 2;
     this.size = size;
-    // The mean of the window is a half; twice that of each side band makes an amplitude: 4 / n.
-    this.window = Float64Array.from(
-      { length: size },
-      (_, i) => ((0.5 - 0.5 * Math.cos((2 * Math.PI * i) / size)) * 4) / size,
-    );
-    this.re = new Float64Array(half);
-    this.im = new Float64Array(half);
-    const turn = { length: (3 * half) / 2 };
-    this.cosines = Float64Array.from(turn, (_, i) => Math.cos((Math.PI * i) / half));
-    this.sines = Float64Array.from(turn, (_, i) => -Math.sin((Math.PI * i) / half));
-    this.places = reversed(half);
+    this.tables = tablesOf(size);
+    this.re = new Float64Array(size / 2);
+    this.im = new Float64Array(size / 2);
   }
 
   /**
@@ -36,44 +23,82 @@ export class SlowTransform {
    * @param toRe, toIm of half the size or longer. Same units as the samples.
    */
   read(ring: Float64Array, from: number, toRe: Float64Array, toIm: Float64Array): void {
-    const { window, re, im, places, cosines, sines } = this;
-    const mask = ring.length - 1;
-    const half = re.length;
-    for (let m = 0; m < half; m++) {
-      const to = places[m]!;
-      const at = from + 2 * m;
-      re[to] = ring[at & mask]! * window[2 * m]!;
-      im[to] = ring[(at + 1) & mask]! * window[2 * m + 1]!;
-    }
-    transform(re, im, cosines, sines);
-    for (let k = 1, l = half - 1; k <= l; k++, l--) {
-      const a = (re[k]! + re[l]!) / 2;
-      const b = (im[k]! - im[l]!) / 2;
-      const c = (im[k]! + im[l]!) / 2;
-      const d = (re[l]! - re[k]!) / 2;
-      const u = c * cosines[k]! - d * sines[k]!;
-      const v = c * sines[k]! + d * cosines[k]!;
-      toRe[k] = a + u;
-      toIm[k] = b + v;
-      toRe[l] = a - u;
-      toIm[l] = v - b;
-    }
+    const { re, im } = this;
+    const { window, places, cosines, sines } = this.tables;
+    gather(ring, from, window, places, re, im);
+    const n = re.length;
+    let half = 4;
+    for (; half < n / 2; half *= 4) twoRounds(re, im, cosines, sines, half);
+    if (half < n) lastRound(re, im, cosines, sines);
+    unpack(re, im, cosines, sines, toRe, toIm);
   }
 }
 
-/** Discrete Fourier transform in place, of samples that stand in bit-reversed order; a power of two of them. */
-function transform(re: Float64Array, im: Float64Array, cosines: Float64Array, sines: Float64Array): void {
+type Tables = {
+  readonly window: Float64Array;
+  /** Of -pi i / h, for three quarters of a turn. */
+  readonly cosines: Float64Array;
+  readonly sines: Float64Array;
+  /** Which pair of samples goes to place i. */
+  readonly places: Uint16Array;
+};
+
+/** One set a size does for all channels of all streams. */
+const known = new Map<number, Tables>();
+
+function tablesOf(size: number): Tables {
+  const before = known.get(size);
+  if (before) return before;
+  const half = size / 2;
+  const turn = { length: (3 * half) / 2 };
+  const tables = {
+    // The mean of the window is a half; twice that of each side band makes an amplitude: 4 / n.
+    window: Float64Array.from(
+      { length: size },
+      (_, i) => ((0.5 - 0.5 * Math.cos((2 * Math.PI * i) / size)) * 4) / size,
+    ),
+    cosines: Float64Array.from(turn, (_, i) => Math.cos((Math.PI * i) / half)),
+    sines: Float64Array.from(turn, (_, i) => -Math.sin((Math.PI * i) / half)),
+    places: reversed(half),
+  };
+  known.set(size, tables);
+  return tables;
+}
+
+/** The windowed samples in bit-reversed order, and at once the first two rounds, which turn by quarters only. */
+function gather(
+  ring: Float64Array,
+  from: number,
+  window: Float64Array,
+  places: Uint16Array,
+  re: Float64Array,
+  im: Float64Array,
+): void {
+  const mask = ring.length - 1;
   const n = re.length;
-  // The first two rounds turn by quarters only.
+  const quarter = n >> 1;
+  // Reversed, neighbours stand half the samples apart, and the next two a quarter further on.
   for (let k = 0; k < n; k += 4) {
-    const a = re[k]! + re[k + 1]!;
-    const b = im[k]! + im[k + 1]!;
-    const c = re[k]! - re[k + 1]!;
-    const d = im[k]! - im[k + 1]!;
-    const e = re[k + 2]! + re[k + 3]!;
-    const f = im[k + 2]! + im[k + 3]!;
-    const g = re[k + 2]! - re[k + 3]!;
-    const h = im[k + 2]! - im[k + 3]!;
+    const p = 2 * places[k]!;
+    const q = p + 2 * quarter;
+    const r = p + quarter;
+    const s = q + quarter;
+    const pRe = ring[(from + p) & mask]! * window[p]!;
+    const pIm = ring[(from + p + 1) & mask]! * window[p + 1]!;
+    const qRe = ring[(from + q) & mask]! * window[q]!;
+    const qIm = ring[(from + q + 1) & mask]! * window[q + 1]!;
+    const rRe = ring[(from + r) & mask]! * window[r]!;
+    const rIm = ring[(from + r + 1) & mask]! * window[r + 1]!;
+    const sRe = ring[(from + s) & mask]! * window[s]!;
+    const sIm = ring[(from + s + 1) & mask]! * window[s + 1]!;
+    const a = pRe + qRe;
+    const b = pIm + qIm;
+    const c = pRe - qRe;
+    const d = pIm - qIm;
+    const e = rRe + sRe;
+    const f = rIm + sIm;
+    const g = rRe - sRe;
+    const h = rIm - sIm;
     re[k] = a + e;
     im[k] = b + f;
     re[k + 1] = c + h;
@@ -83,9 +108,6 @@ function transform(re: Float64Array, im: Float64Array, cosines: Float64Array, si
     re[k + 3] = c - h;
     im[k + 3] = d + g;
   }
-  let half = 4;
-  for (; half < n / 2; half *= 4) twoRounds(re, im, cosines, sines, half);
-  if (half < n) lastRound(re, im, cosines, sines);
 }
 
 /** Joins four neighbours of `half` samples each; three turns of four do for two rounds. */
@@ -98,24 +120,31 @@ function twoRounds(
 ): void {
   const n = re.length;
   const step = n / (2 * half);
-  for (let block = 0; block < n; block += 4 * half) {
-    const end = block + half;
-    for (let i = block, at = 0; i < end; i++, at += step) {
+  const four = 4 * half;
+  // One turn after the other, each for all blocks: where they are many its sines are read once.
+  for (let at = 0, top = 0; top < half; top++, at += step) {
+    const c1 = cosines[2 * at]!;
+    const s1 = sines[2 * at]!;
+    const c2 = cosines[at]!;
+    const s2 = sines[at]!;
+    const c3 = cosines[3 * at]!;
+    const s3 = sines[3 * at]!;
+    for (let i = top; i < n; i += four) {
       const k = i + half;
       const l = k + half;
       const m = l + half;
-      const c1 = cosines[2 * at]!;
-      const s1 = sines[2 * at]!;
-      const c2 = cosines[at]!;
-      const s2 = sines[at]!;
-      const c3 = cosines[3 * at]!;
-      const s3 = sines[3 * at]!;
-      const bRe = re[k]! * c1 - im[k]! * s1;
-      const bIm = re[k]! * s1 + im[k]! * c1;
-      const cRe = re[l]! * c2 - im[l]! * s2;
-      const cIm = re[l]! * s2 + im[l]! * c2;
-      const dRe = re[m]! * c3 - im[m]! * s3;
-      const dIm = re[m]! * s3 + im[m]! * c3;
+      const kRe = re[k]!;
+      const kIm = im[k]!;
+      const lRe = re[l]!;
+      const lIm = im[l]!;
+      const mRe = re[m]!;
+      const mIm = im[m]!;
+      const bRe = kRe * c1 - kIm * s1;
+      const bIm = kRe * s1 + kIm * c1;
+      const cRe = lRe * c2 - lIm * s2;
+      const cIm = lRe * s2 + lIm * c2;
+      const dRe = mRe * c3 - mIm * s3;
+      const dIm = mRe * s3 + mIm * c3;
       const p = re[i]! + bRe;
       const q = im[i]! + bIm;
       const r = re[i]! - bRe;
@@ -141,14 +170,47 @@ function lastRound(re: Float64Array, im: Float64Array, cosines: Float64Array, si
   const half = re.length / 2;
   for (let top = 0, at = 0; top < half; top++, at += 2) {
     const low = top + half;
-    const x = re[low]! * cosines[at]! - im[low]! * sines[at]!;
-    const y = re[low]! * sines[at]! + im[low]! * cosines[at]!;
+    const lowRe = re[low]!;
+    const lowIm = im[low]!;
+    const c = cosines[at]!;
+    const s = sines[at]!;
+    const x = lowRe * c - lowIm * s;
+    const y = lowRe * s + lowIm * c;
     const u = re[top]!;
     const v = im[top]!;
     re[low] = u - x;
     im[low] = v - y;
     re[top] = u + x;
     im[top] = v + y;
+  }
+}
+
+/** From the transform of pairs to that of the samples. */
+function unpack(
+  re: Float64Array,
+  im: Float64Array,
+  cosines: Float64Array,
+  sines: Float64Array,
+  toRe: Float64Array,
+  toIm: Float64Array,
+): void {
+  for (let k = 1, l = re.length - 1; k <= l; k++, l--) {
+    const kRe = re[k]!;
+    const kIm = im[k]!;
+    const lRe = re[l]!;
+    const lIm = im[l]!;
+    const a = (kRe + lRe) / 2;
+    const b = (kIm - lIm) / 2;
+    const c = (kIm + lIm) / 2;
+    const d = (lRe - kRe) / 2;
+    const cosine = cosines[k]!;
+    const sine = sines[k]!;
+    const u = c * cosine - d * sine;
+    const v = c * sine + d * cosine;
+    toRe[k] = a + u;
+    toIm[k] = b + v;
+    toRe[l] = a - u;
+    toIm[l] = v - b;
   }
 }
 

@@ -43,17 +43,19 @@ export function againstBand(
   rejected: number,
   open: boolean,
 ): SwingSight | null {
-  const { log, operateV, releaseV, noiseV } = path;
+  const { log, operateV, releaseV, noiseV, channel } = path;
   const { first, end, swingV, toothHz } = means;
+  const least = Math.max(marginShare * swingV, noiseV > 0 ? marginSigmas * noiseV : 0);
+  const nearV = (open ? more : 1) * least;
+  const isLong = !(means.longestS * toothHz < longPlaces);
+  // No tooth can be worse than the lowest peak or the highest trough: mostly that is all there is to see.
+  const plainlyV = Math.min(means.leastPeakV - operateV, releaseV - means.mostTroughV);
+  if (!isLong && channel.sensor.kind === 'linear' && plainlyV >= nearV) return null;
+  const { worst, worstV } = worstTooth(path, means);
+  const isNear = worstV < nearV && wasNear(path, means, worst, 2 * least);
+  if (!isNear && !isLong) return null;
   const usualS = usualIntervalS(log, first, end);
   const even = isEven(log, first, end, usualS);
-  const { worst, worstV } = worstTooth(path, means);
-  let longestS = 0;
-  for (let n = first; n < end; n++)
-    longestS = Math.max(longestS, log.riseS[(n + 1) & log.mask]! - log.riseS[n & log.mask]!);
-  const least = Math.max(marginShare * swingV, noiseV > 0 ? marginSigmas * noiseV : 0);
-  const isNear = worstV < (open ? more : 1) * least && wasNear(path, means, worst, 2 * least);
-  if (!isNear && longestS * toothHz < longPlaces) return null;
   if (!even && !repeats(log, first, end, means.turn)) return null;
   const ofGaps = Math.ceil(((end - first) * (means.positions - means.turn)) / means.turn);
   const empty = even ? Math.max(0, emptyPlaces(log, first, end, usualS) - ofGaps) : 0;

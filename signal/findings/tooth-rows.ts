@@ -18,10 +18,23 @@ function intervalS({ riseS, mask }: ToothLog, n: number): number {
   return riseS[(n + 1) & mask]! - riseS[n & mask]!;
 }
 
+/** Intervals within these shares of the usual one are plainly of one place: most of them, which spares a division. */
+const plainly = { least: 0.76, most: 1.24 };
+
 /** Positions from one tooth to another, where some of them are empty. */
 export function placesBetween(log: ToothLog, first: number, last: number, usualS: number): number {
+  const { riseS, mask } = log;
+  const leastS = plainly.least * usualS;
+  const mostS = plainly.most * usualS;
   let places = 0;
-  for (let n = first; n < last; n++) places += Math.max(1, Math.round(intervalS(log, n) / usualS));
+  let startS = riseS[first & mask]!;
+  for (let n = first; n < last; n++) {
+    const endS = riseS[(n + 1) & mask]!;
+    const lengthS = endS - startS;
+    startS = endS;
+    if (lengthS > leastS && lengthS < mostS) places++;
+    else places += Math.max(1, Math.round(lengthS / usualS));
+  }
   return places;
 }
 
@@ -30,9 +43,17 @@ const oddShare = 0.1;
 
 /** All but a few intervals are whole multiples of the usual one. */
 export function isEven(log: ToothLog, first: number, last: number, usualS: number): boolean {
+  const { riseS, mask } = log;
+  const leastS = plainly.least * usualS;
+  const mostS = plainly.most * usualS;
   let odd = 0;
+  let startS = riseS[first & mask]!;
   for (let n = first; n < last; n++) {
-    const places = intervalS(log, n) / usualS;
+    const endS = riseS[(n + 1) & mask]!;
+    const lengthS = endS - startS;
+    startS = endS;
+    if (lengthS > leastS && lengthS < mostS) continue;
+    const places = lengthS / usualS;
     if (places < 0.5 || Math.abs(places - Math.round(places)) > 0.25) odd++;
   }
   return odd <= oddShare * (last - first);
@@ -41,9 +62,16 @@ export function isEven(log: ToothLog, first: number, last: number, usualS: numbe
 /** All but a few intervals are as they were a turn before. @param turn teeth of one turn. */
 export function repeats(log: ToothLog, first: number, last: number, turn: number): boolean {
   if (first - turn < readableFrom(log, 0)) return false;
+  const { riseS, mask } = log;
   let odd = 0;
+  let startS = riseS[first & mask]!;
+  let beforeS = riseS[(first - turn) & mask]!;
   for (let n = first; n < last; n++) {
-    if (Math.abs(intervalS(log, n) / intervalS(log, n - turn) - 1) > 0.1) odd++;
+    const endS = riseS[(n + 1) & mask]!;
+    const beforeEndS = riseS[(n + 1 - turn) & mask]!;
+    if (Math.abs((endS - startS) / (beforeEndS - beforeS) - 1) > 0.1) odd++;
+    startS = endS;
+    beforeS = beforeEndS;
   }
   return odd <= oddShare * (last - first);
 }

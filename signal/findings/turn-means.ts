@@ -39,6 +39,11 @@ export class TurnMeans {
   lowV = NaN;
   /** The highest peak of all. */
   topV = NaN;
+  /** The lowest peak and the highest trough; infinite where none is known. */
+  leastPeakV = NaN;
+  mostTroughV = NaN;
+  /** The longest interval, s. */
+  longestS = NaN;
   /** High share of the period, of teeth whose neighbour is in its place. */
   duty = NaN;
   /** Standard error of that mean, from how teeth differ. */
@@ -179,19 +184,28 @@ export class TurnMeans {
     let sum = 0;
     let squares = 0;
     let counted = 0;
-    this.largestV = 0;
-    this.topV = -Infinity;
+    let largestV = 0;
+    let topV = -Infinity;
+    let leastPeakV = Infinity;
+    let mostTroughV = -Infinity;
+    let longestS = 0;
+    let riseS = this.fromS;
     for (let n = first; n < end; n++) {
-      const riseS = log.riseS[n & mask]!;
-      const periodS = log.riseS[(n + 1) & mask]! - riseS;
-      const peakV = log.peakV[n & mask]!;
-      const troughV = log.troughV[n & mask]!;
+      const i = n & mask;
+      const startS = riseS;
+      riseS = log.riseS[(n + 1) & mask]!;
+      const periodS = riseS - startS;
+      const peakV = log.peakV[i]!;
+      const troughV = log.troughV[i]!;
       high += peakV;
       low += troughV;
-      this.largestV = Math.max(this.largestV, peakV - troughV);
-      this.topV = Math.max(this.topV, peakV);
+      largestV = Math.max(largestV, peakV - troughV);
+      topV = Math.max(topV, peakV);
+      longestS = Math.max(longestS, periodS);
+      if (peakV < leastPeakV) leastPeakV = peakV;
+      if (troughV > mostTroughV) mostTroughV = troughV;
       if (periodS > 1.5 * pitchS) continue;
-      const toothHighS = log.fallS[n & mask]! - riseS;
+      const toothHighS = log.fallS[i]! - startS;
       const share = toothHighS / periodS;
       highS += toothHighS;
       wholeS += periodS;
@@ -199,6 +213,11 @@ export class TurnMeans {
       squares += share * share;
       counted++;
     }
+    this.largestV = largestV;
+    this.topV = topV;
+    this.leastPeakV = leastPeakV;
+    this.mostTroughV = mostTroughV;
+    this.longestS = longestS;
     this.highV = high / (end - first);
     this.lowV = low / (end - first);
     this.duty = highS / wholeS;

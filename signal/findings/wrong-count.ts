@@ -80,7 +80,7 @@ export class WrongCountRule implements FindingRule {
     if (nowS >= this.lookFromS && pattern.read(log) && !pattern.verdict) {
       this.lookFromS = nowS + restS;
     } else if (nowS < this.lookFromS) {
-      pattern.restart(log);
+      pattern.skip(log);
     }
     const { verdict } = pattern;
     if (!verdict) return null;
