@@ -130,8 +130,11 @@ describe('fitted bands of a shaft that shakes between two turns', () => {
     { at: 0.12, by: 0.12, name: 'across both' },
     { at: 0.38, by: 0.07, name: 'with a top and a bottom before the sensors' },
     { at: 0.63, by: 0.04, name: 'by little' },
+    { at: 0.15, by: 0.15, name: 'beyond the middle on one side' },
+    { at: 0.4, by: 0.06, name: 'on two flanks, in short blocks', block: 20 },
+    { at: 0.6, by: 0.06, name: 'on two flanks, further on, in short blocks', block: 20 },
   ];
-  it.each(shakes)('count every cycle afterwards: $name', ({ at, by }) => {
+  it.each(shakes)('count every cycle afterwards: $name', ({ at, by, block = 1000 }) => {
     const noise = normal(seeded(21));
     // 60 cycles in 1 s, two or three hundred swings about one place, 60 cycles more.
     const place = (t: number): number => {
@@ -150,9 +153,9 @@ describe('fitted bands of a shaft that shakes between two turns', () => {
     const pipeline = testPipeline(testRig('quadrature', 12), rateHz);
     const lines = [line(0), line(0.25)];
     let before = NaN;
-    for (let from = 0; from < 14 * rateHz; from += 1000) {
-      const parts = lines.map((volts) => volts.subarray(from, from + 1000));
-      pipeline.process(parts, 1000);
+    for (let from = 0; from < 14 * rateHz; from += block) {
+      const parts = lines.map((volts) => volts.subarray(from, from + block));
+      pipeline.process(parts, block);
       pipeline.drain();
       if (from === 2.1 * rateHz) before = pipeline.status().pulses;
     }

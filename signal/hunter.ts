@@ -23,13 +23,13 @@ export type Hunter = {
   /** Levels known before, V; NaN at the start. */
   knownLowV: number;
   knownHighV: number;
-  /** Swings of one size that it takes to believe in less than these levels, on one side of their middle. */
-  manyAside: number;
+  /** The shaft may turn to and fro, and so may shake. */
+  isRing: boolean;
   /** Turning points, oldest first. */
   readonly turns: Float64Array;
   turnCount: number;
   found: boolean;
-  /** What was found lies on one side of the levels known before: see `manyAside`. */
+  /** What was found lies on one side of the levels known before: more of it is wanted then. */
   aside: boolean;
   foundLowV: number;
   foundHighV: number;
@@ -45,6 +45,11 @@ const most = 64;
 /** What is less than this share of the levels known before, and no more than that outside of them. */
 const farSmaller = 0.6;
 const little = 0.25;
+/** Swings of one size that it takes to believe in what lies aside; a shaft that may shake takes more. */
+const manyOfRing = 24;
+/** Shaking may cut one side short by little only, so that what is left still reaches beyond the middle. */
+const smaller = 0.8;
+const offMiddle = 0.1;
 
 const coarse = new Float64Array(most + 1);
 const swings = new Float64Array(3);
@@ -59,7 +64,7 @@ export function createHunter(): Hunter {
     leastV: NaN,
     knownLowV: NaN,
     knownHighV: NaN,
-    manyAside: 0,
+    isRing: false,
     turns: new Float64Array(most),
     turnCount: 0,
     found: false,
@@ -71,9 +76,9 @@ export function createHunter(): Hunter {
 
 /**
  * @param leastV swings smaller than this are not taken for teeth.
- * @param known levels known before. @param aside see `manyAside`.
+ * @param known levels known before. @param isRing the shaft may turn to and fro.
  */
-export function startHunt(hunter: Hunter, leastV: number, known: Levels, aside: number): void {
+export function startHunt(hunter: Hunter, leastV: number, known: Levels, isRing: boolean): void {
   hunter.heading = 0;
   hunter.highV = -Infinity;
   hunter.lowV = Infinity;
@@ -81,7 +86,7 @@ export function startHunt(hunter: Hunter, leastV: number, known: Levels, aside: 
   hunter.leastV = leastV;
   hunter.knownLowV = known.lowV;
   hunter.knownHighV = known.highV;
-  hunter.manyAside = aside;
+  hunter.isRing = isRing;
   hunter.turnCount = 0;
   hunter.found = false;
 }
@@ -170,22 +175,23 @@ function settled(hunter: Hunter): boolean {
   else if (areAlike(turns, turnCount, manyAlike)) take(hunter, turns, turnCount, manyAlike);
   else return false;
   hunter.aside = isAside(hunter);
-  hunter.found = !hunter.aside || areAlike(turns, turnCount, hunter.manyAside);
+  hunter.found = !hunter.aside || areAlike(turns, turnCount, hunter.isRing ? manyOfRing : manyAlike);
   return hunter.found;
 }
 
 /**
  * What was found is far smaller than the levels known before, within them, and clear of their middle: a shaft that shakes,
- * with a tooth's top or a gap's bottom before the sensor, does that.
+ * with a tooth's top or a gap's bottom before the sensor, does that. Where it may shake on its way it need not be clear of it.
  */
-function isAside({ foundLowV, foundHighV, knownLowV, knownHighV }: Hunter): boolean {
+function isAside({ foundLowV, foundHighV, knownLowV, knownHighV, isRing }: Hunter): boolean {
   const knownV = knownHighV - knownLowV;
   const middleV = (knownLowV + knownHighV) / 2;
   const outsideV = Math.max(knownLowV - foundLowV, foundHighV - knownHighV);
+  const offV = Math.abs((foundLowV + foundHighV) / 2 - middleV);
   return (
-    foundHighV - foundLowV < farSmaller * knownV &&
+    foundHighV - foundLowV < (isRing ? smaller : farSmaller) * knownV &&
     outsideV < little * knownV &&
-    (foundLowV > middleV || foundHighV < middleV)
+    (isRing ? offV > offMiddle * knownV : foundLowV > middleV || foundHighV < middleV)
   );
 }
 

@@ -41,10 +41,7 @@ export type FinderHost = {
 };
 
 const quietS = 1;
-/** Small swings aside of the known ones' middle that are believed; a shaft that may shake takes more. */
-const many = 8;
-const manyOfRing = 24;
-/** So often they are not believed where they come at another pace than the teeth did: the shaft stopped in between. */
+/** So many turning points that come at another pace than the teeth did are not believed: the shaft stopped in between. */
 const refusals = 400;
 const leastPace = 0.6;
 const mostPace = 1.5;
@@ -86,7 +83,7 @@ export class LevelFinder {
   startFromNothing(at: number): void {
     this.hunting = this.starting = true;
     this.remembered = this.host.isFixed ? null : new Remembered(this.rateHz, at - 1);
-    startHunt(this.hunter, this.leastSwingV(), this.levels, this.host.isRing ? manyOfRing : many);
+    startHunt(this.hunter, this.leastSwingV(), this.levels, this.host.isRing);
   }
 
   /** Samples were lost: `at` is the next one. */
@@ -125,7 +122,7 @@ export class LevelFinder {
   private startAgain(): void {
     this.hunting = true;
     this.refused = 0;
-    startHunt(this.hunter, this.leastSwingV(), this.levels, this.host.isRing ? manyOfRing : many);
+    startHunt(this.hunter, this.leastSwingV(), this.levels, this.host.isRing);
   }
 
   /** What is small beside the teeth, or beside a band as typed, is none. */
@@ -183,6 +180,8 @@ export class LevelFinder {
     const pace = (at - host.lastEdgeAt) / (hunter.turnCount / 2) / host.typicalSamples;
     if (pace >= leastPace && pace <= mostPace) return true;
     this.refused++;
+    // Until the next turning point: how often this is asked depends on how the stream is cut.
+    hunter.found = false;
     return false;
   }
 
@@ -190,7 +189,7 @@ export class LevelFinder {
     const { hunter, detector, levels, host, remembered, starting } = this;
     if (host.isFixed) {
       host.notCounted(hunter.foundLowV, hunter.foundHighV);
-      startHunt(hunter, this.leastSwingV(), levels, many);
+      startHunt(hunter, this.leastSwingV(), levels, false);
       return;
     }
     this.hunting = this.starting = false;
