@@ -164,6 +164,9 @@ export class Eye {
       // NaN where it was not seen, or has not come yet.
       const peak = peakV[i]! + movedV;
       const trough = troughV[i]! + movedV;
+      // The newest one's peak may not have come yet: the one before it tells whether its trough was cut short.
+      const isOpen = Number.isNaN(peak) && n > oldest && this.isRing;
+      if (isOpen && peakV[(n - 1) & mask]! + movedV - trough < strongV) continue;
       if (peak - trough < strongV) {
         if (peak - trough < weakestV || !this.weakAreTeeth) break;
         if (!this.proof.isProven(n, oldest, typicalS, swingV)) continue;

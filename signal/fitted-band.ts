@@ -100,14 +100,10 @@ export class FittedBand extends BandKeeper {
   protected takeEdges(at: number, x: number): void {
     const { detector, fresh, room } = this;
     const isWeak = (this.isLate(0) || this.isAudit()) && this.look(0);
-    if (!Number.isNaN(this.weak.lobeV)) this.noteLobe();
-    if (
-      isWeak &&
-      room === this.eye &&
-      this.proof.isBelieved(this.levels.highV - this.levels.lowV) &&
-      this.closeEye(this.isRising) &&
-      this.mayFindLate(at)
-    ) {
+    const isBelieved =
+      isWeak && room === this.eye && this.proof.isBelieved(this.levels.highV - this.levels.lowV);
+    if (!Number.isNaN(this.weak.lobeV)) this.noteLobe(isBelieved);
+    if (isBelieved && this.closeEye(this.isRising) && this.mayFindLate(at)) {
       this.recount(at);
     } else {
       if (isWeak) this.noteUncounted(0);
@@ -174,8 +170,9 @@ export class FittedBand extends BandKeeper {
     return true;
   }
 
-  private noteLobe(): void {
-    this.eye.noteLobe(this.isRising, this.weak.lobeV);
+  /** Where the shaft may turn to and fro, a reversal makes bumps as well, at any height of a flank. */
+  private noteLobe(isBelieved: boolean): void {
+    if (isBelieved || !this.isRing) this.eye.noteLobe(this.isRising, this.weak.lobeV);
     this.weak.lobeV = NaN;
   }
 

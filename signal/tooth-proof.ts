@@ -12,8 +12,9 @@ const longestInterval = 1.67;
 /** The same across a wheel's gap. */
 const leastGap = 0.75;
 const longestGap = 1.33;
-/** A weak tooth was so weak a turn before, share of the usual swing. */
+/** A weak tooth was so weak a turn before, and about as weak as it is now, share of the usual swing. */
 const weakBefore = 0.9;
+const nearlyAs = 0.2;
 /** What is counted in a turn while some of its teeth are not, share of them. */
 const turnShare = 0.75;
 const leastStrong = 0.5;
@@ -22,6 +23,8 @@ const kept = 16;
 /** So many turns before it was there, and more of turns of few teeth: twice may be by chance. */
 const fewestTurns = 2;
 const teethOfTurns = 16;
+/** One that was counted changes no count, so that more can be waited for. */
+const teethOfCounted = 48;
 
 export class ToothProof {
   private readonly log: ToothLog;
@@ -30,6 +33,7 @@ export class ToothProof {
   private readonly gapSpan: number;
   private readonly isRing: boolean;
   private readonly turns: number;
+  private readonly turnsOfCounted: number;
   /** Teeth counted when some that were not counted were last found, and how often that was. */
   private readonly foundAt = new Float64Array(kept).fill(-Infinity);
   private findings = 0;
@@ -41,6 +45,7 @@ export class ToothProof {
     this.gapSpan = missing + 1;
     this.isRing = isRing;
     this.turns = Math.max(fewestTurns, Math.ceil(teethOfTurns / teethPerTurn));
+    this.turnsOfCounted = Math.max(fewestTurns, Math.ceil(teethOfCounted / teethPerTurn));
   }
 
   /**
@@ -55,10 +60,11 @@ export class ToothProof {
     if (!this.isUsual((here - riseS[(n - 1) & mask]!) / typicalS)) return false;
     if (!this.isUsual((riseS[(n + 1) & mask]! - here) / typicalS)) return false;
     if (!this.isRing) return true;
-    for (let turn = 1; turn <= this.turns; turn++) {
+    const toothV = peakV[n & mask]! - troughV[n & mask]!;
+    const mostV = Math.min(weakBefore * swingV, toothV + nearlyAs * swingV);
+    for (let turn = 1; turn <= this.turnsOfCounted; turn++) {
       const before = n - turn * teethPerTurn;
-      if (before < oldest || !(peakV[before & mask]! - troughV[before & mask]! < weakBefore * swingV))
-        return false;
+      if (before < oldest || !(peakV[before & mask]! - troughV[before & mask]! < mostV)) return false;
       if (this.strongBetween(before, before + teethPerTurn, swingV) === 0) return false;
     }
     return true;

@@ -75,6 +75,25 @@ const scenes: Scene[] = [
     },
   },
   {
+    // Between edges as well as on them, so that what one line sees of it is cut short on either side.
+    name: 'shakes at one place',
+    moves: (draw, perS, steps) => {
+      const shaft = begun(perS, steps);
+      for (let k = 0; k < 4; k += 1) {
+        const place = shaft.at + draw(-9, 9);
+        shaft.to(place);
+        shaft.stand(draw(0, 0.1));
+        const half = draw(0.02, 0.3);
+        const times = Math.floor(draw(10, 90));
+        for (let n = 0; n < times; n += 1) shaft.to(place + (n % 2 === 0 ? half : -half) * draw(0.85, 1.15));
+        shaft.stand(draw(0.01, 0.4));
+      }
+      shaft.to(Math.floor(shaft.at) + 5 + middle(steps));
+      shaft.stand(0.2);
+      return shaft.moves;
+    },
+  },
+  {
     name: 'long ways to and fro',
     moves: (draw, perS, steps) => {
       const shaft = begun(perS, steps);
