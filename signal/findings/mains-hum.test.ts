@@ -137,6 +137,14 @@ describe('mains hum', () => {
     expect(steady[0]!.remedy).toContain('a tenth');
   });
 
+  it('a speed that ripples, whose side band folds to 50 Hz, is no hum', () => {
+    // 24 teeth: 900.3 Hz of them and four orders come to 1050.3 Hz, which a ring of 1000 samples a second holds at 50.3 Hz.
+    const turnHz = 1050.3 / 28;
+    const shaft = (t: number): number => turnHz * t + 0.0008 * Math.sin(2 * Math.PI * 4 * turnHz * t);
+    expect(hums(shaft, () => 0, { seconds: 8, rateHz: 20_000 })).toEqual([]);
+    expect(hums(shaft, tone(50.1, 0.15), { seconds: 8, rateHz: 20_000 })).toHaveLength(1);
+  });
+
   it('an order that moves along with the speed ends there', () => {
     const shaft = (t: number): number =>
       t < 5 ? 50 * t : 250 + 50 * (t - 5) - 2.5 * Math.min(2, t - 5) ** 2 - 10 * Math.max(0, t - 7);

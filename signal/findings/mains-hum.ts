@@ -1,10 +1,19 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import { SizedLatch, findingOf } from '@/signal/findings/channel-finding';
+import {
+  isAnImage,
+  isFree,
+  isPaired,
+  isSideBand,
+  looksLikeEdges,
+  onOrderHz,
+  orderSize,
+  reachHz,
+} from '@/signal/findings/hum-doubts';
 import { besideTone, toneNear } from '@/signal/findings/hum-tone';
 import type { Tone } from '@/signal/findings/hum-tone';
 import type { FindingRule, RuleContext } from '@/signal/findings/rule';
-import { besideHarmonic, besideTeeth, fills, mirrorOf, mostAt } from '@/signal/findings/slow-lines';
-import { sizeAt } from '@/signal/findings/slow-spectrum';
+import { besideHarmonic, besideTeeth, fills, mostAt } from '@/signal/findings/slow-lines';
 import type { SlowSpectra, Spectrum } from '@/signal/findings/slow-spectrum';
 import type { SlowWheel } from '@/signal/findings/slow-wheel';
 
@@ -16,13 +25,9 @@ const stays = { found: 0.03, cannotTell: 0.05 };
 const looksToOpen = 2;
 /** Beside a line of the teeth hum beats with it, and is hidden every now and then. */
 const mostUnseen = 1;
-/** Grids keep their frequency within 0.2 Hz; the rest is for what lies beside the tone and for its harmonics. */
-const reachHz = 0.35;
 const sameHz = 0.35;
 /** A tone stands so many times above everything beside it. */
 const prominent = 2;
-/** As near as this to a multiple of the shaft's frequency the two cannot be told apart, Hz. */
-const onOrderHz = 0.15;
 
 /** Orders up to this one are what run-out, an ellipse or a motor on the same shaft make; of a squared signal, any. */
 const lowOrders = 4;
@@ -181,27 +186,15 @@ export class MainsHumRule implements FindingRule {
       tone.bin,
       3,
       8,
-      (bin) => fills(wheel, bin) || this.isPaired(spectrum, bin),
+      (bin) => fills(wheel, bin) || isPaired(this.spectra, spectrum, bin),
     );
     if (beside * (known ? 0.75 : 1) * prominent > tone.amplitudeV) return 'nothing';
     if (isAnImage(path.noiseV, besideTone(spectrum, tone.bin, 6, 10), tone)) return 'nothing';
     if (mostAt(wheel, tone.hz) > tone.amplitudeV)
       return looksLikeEdges(path, wheel, tone) ? 'edges' : 'nothing';
     if (known) return 'found';
-    if (this.isSideBand(spectrum, tone)) return 'nothing';
+    if (isSideBand(this.spectra, spectrum, tone)) return 'nothing';
     return this.onOrder(spectrum, tone, path.channel.sensor.kind === 'linear');
-  }
-
-  /** What the teeth have on either side of them is their own. */
-  private isPaired(spectrum: Spectrum, bin: number): boolean {
-    const { wheel } = spectrum;
-    const mirrorHz = mirrorOf(wheel, bin * wheel.binHz, 1);
-    return this.spectra.sizeNear(spectrum, mirrorHz) > 0.6 * sizeAt(spectrum, bin);
-  }
-
-  private isSideBand(spectrum: Spectrum, tone: Tone): boolean {
-    const { wheel } = spectrum;
-    return 3 * this.spectra.sizeNear(spectrum, mirrorOf(wheel, tone.hz)) > tone.amplitudeV;
   }
 
   private onOrder(spectrum: Spectrum, tone: Tone, linear: boolean): Verdict {
@@ -226,38 +219,4 @@ export class MainsHumRule implements FindingRule {
     }
     return besideTeeth(wheel, tone.hz, onOrderHz) ? 'order' : 'found';
   }
-}
-
-/** No line of the teeth is so large there that it may beat with the tone. */
-function isFree(wheel: SlowWheel, { hz, amplitudeV }: Tone): boolean {
-  return 2 * mostAt(wheel, hz) < amplitudeV;
-}
-
-/** Of an order of the wheel; 0 for the mean and for the teeth themselves. */
-function orderSize({ re, im, wheel }: Spectrum, order: number, binHz: number): number {
-  if (order % wheel.positions === 0) return 0;
-  const bin = Math.round((order * wheel.turnHz) / binHz);
-  return bin < re.length - 1 ? Math.hypot(re[bin]!, im[bin]!) : 0;
-}
-
-/** Edges at the mains' own pace, from a swing less than half of what the teeth had before: hum may make them itself. */
-function looksLikeEdges(path: ChannelPath, wheel: SlowWheel, tone: Tone): boolean {
-  const { supplyV } = path.channel.sensor;
-  return (
-    wheel.learnt &&
-    supplyV !== null &&
-    supplyV > 0 &&
-    wheel.swingV < wheel.halfSwingV &&
-    Math.abs(wheel.toothHz - tone.hz) < reachHz &&
-    wheel.spreadHz < reachHz
-  );
-}
-
-/**
- * Neighbouring samples differ as if by noise, and yet there is none of it beside the tone: the ring holds the image of
- * something above half its rate, a wheel perhaps that turns too fast for its edges to be found. (Ten bins of white noise
- * reach 0.14 of its rms.)
- */
-function isAnImage(noiseV: number, besideV: number, { amplitudeV }: Tone): boolean {
-  return noiseV > 0.1 * amplitudeV && besideV < 0.03 * noiseV + 0.003 * amplitudeV;
 }

@@ -5,10 +5,11 @@
 import type { SlowWheel } from '@/signal/findings/slow-wheel';
 
 const harmonics = 60;
+const lowHarmonics = 8;
 /** Nearer to the teeth than this they themselves fill the place. */
 const mirrorBins = 3.5;
 /** Torque ripples with up to about so many times a turn. */
-const sideOrders = 10;
+export const sideOrders = 10;
 
 /**
  * A tone at `hz` of no more than this may come from harmonics of the teeth, V: of those seen before half as much again, of
@@ -29,9 +30,9 @@ export function mostAt(wheel: SlowWheel, hz: number): number {
     if (on && !Number.isNaN(known)) share = 0.03 + 1.5 * known * lobe(Math.max(0, off - smearHz) / binHz);
     // Of a trapezoid: 4 / (pi h) of a square wave, less beyond 1 / (pi flank).
     else share = ((on ? 2 : 0.5) * 1.27 * Math.min(1, 1 / (Math.PI * h * toothHz * 1.25 * flankS))) / h;
-    // A line swept over many bins has its power in all of them; high ones are jittered by every tooth besides.
+    // A line swept over many bins has its power in all of them, were it swept evenly; high ones are jittered by every tooth besides.
     const bins = Math.max(1, smearHz / (2 * binHz));
-    most += (share * halfSwingV) / (h <= 3 ? Math.sqrt(bins) : bins);
+    most += (share * halfSwingV) / (h <= lowHarmonics ? Math.sqrt(bins) : bins);
   }
   return most;
 }
@@ -65,6 +66,18 @@ export function mirrorOf(wheel: SlowWheel, hz: number, bins = mirrorBins): numbe
   const off = Math.abs(harmonic * toothHz - hz);
   const apart = off > bins * binHz && off < sideOrders * turnHz + 2 * binHz;
   return harmonic > 0 && harmonic <= 3 && apart ? 2 * harmonic * toothHz - hz : NaN;
+}
+
+/**
+ * The same for teeth that fold, of order `order` beside harmonic `h` of the teeth: where its other side band comes to, Hz.
+ * NaN where the tone is no such order, or no image.
+ */
+export function foldedMirror(wheel: SlowWheel, hz: number, h: number, order: number): number {
+  const { toothHz, turnHz, spreadHz, binHz } = wheel;
+  const sideHz = h * toothHz + order * turnHz;
+  if (order === 0 || sideHz < wheel.nyquistHz) return NaN;
+  const isThere = Math.abs(folded(wheel, sideHz) - hz) < binHz / 2 + h * spreadHz;
+  return isThere ? folded(wheel, h * toothHz - order * turnHz) : NaN;
 }
 
 /**
