@@ -48,28 +48,40 @@ export function noteIntervals(meter: IntervalMeter, log: ToothLog, missing: numb
   const end = log.count - 2;
   const least = stepUp * (missing + 1);
   let k = readableFrom(log, Math.max(meter.next, end - mostPerTick));
+  let counted = 0;
+  let riseA = 0;
+  let fallA = 0;
+  let riseB = riseS[k & mask]!;
+  let fallB = fallS[k & mask]!;
+  let riseC = riseS[(k + 1) & mask]!;
+  let fallC = fallS[(k + 1) & mask]!;
   for (; k < end; k++) {
-    const a = k & mask;
-    const b = (k + 1) & mask;
     const c = (k + 2) & mask;
-    const rises = riseS[b]! - riseS[a]!;
-    const falls = fallS[b]! - fallS[a]!;
+    riseA = riseB;
+    fallA = fallB;
+    riseB = riseC;
+    fallB = fallC;
+    riseC = riseS[c]!;
+    fallC = fallS[c]!;
+    const rises = riseB - riseA;
     // The delay that is taken off may change between two edges, more than bounce lies apart.
     if (!(rises > 0)) continue;
-    meter.counted++;
-    const isRiseShort = riseS[c]! - riseS[b]! >= least * rises;
-    const isFallShort = falls > 0 && fallS[c]! - fallS[b]! >= least * falls;
+    counted++;
+    const falls = fallB - fallA;
+    const isRiseShort = riseC - riseB >= least * rises;
+    const isFallShort = falls > 0 && fallC - fallB >= least * falls;
     if (!isRiseShort && !isFallShort) continue;
     // Narrow pulses: a bounce of one flank makes a long interval short for the other, but not as short.
     const byFall = isFallShort && !(isRiseShort && rises < falls);
     const shortS = byFall ? falls : rises;
     meter.short++;
-    meter.toothS = byFall ? fallS[c]! - fallS[b]! : riseS[c]! - riseS[b]!;
-    meter.lastShortT = byFall ? fallS[b]! : riseS[b]!;
+    meter.toothS = byFall ? fallC - fallB : riseC - riseB;
+    meter.lastShortT = byFall ? fallB : riseB;
     if (shortS < meter.shortestS) meter.shortestS = shortS;
     meter.shortAt.copyWithin(0, 1);
     meter.shortAt[remembered - 1] = k;
   }
+  meter.counted += counted;
   meter.next = Math.max(meter.next, end);
 }
 

@@ -195,14 +195,17 @@ function isAsSet(wide: Record<Signal, LagCorrelation>, positions: number): boole
 function lagOf(correlation: LagCorrelation, by: Signal, positions: number): PatternVerdict | null {
   const { lags } = correlation;
   if (correlation.overError < leastOverError) return null;
-  const ready = (i: number) => correlation.pairs(i) >= Math.max(fewestTeeth, turnsNeeded * lags[i]!);
-  let best = -1;
-  for (let i = 0; i < lags.length; i++)
-    if (ready(i) && (best < 0 || correlation.at(i) > correlation.at(best))) best = i;
   const asSet = lags.indexOf(positions);
-  if (best < 0 || !(correlation.at(best) > repeats) || !ready(asSet)) return null;
+  if (!isReady(correlation, asSet)) return null;
+  let bestAt = -Infinity;
+  for (let i = 0; i < lags.length; i++) {
+    if (!isReady(correlation, i)) continue;
+    const at = correlation.at(i);
+    if (at > bestAt) bestAt = at;
+  }
+  if (!(bestAt > repeats)) return null;
   let i = 0;
-  while (!(ready(i) && correlation.at(i) > correlation.at(best) - nearBest)) i++;
+  while (!(isReady(correlation, i) && correlation.at(i) > bestAt - nearBest)) i++;
   const lag = lags[i]!;
   const here = correlation.at(i);
   const there = correlation.at(asSet);
@@ -214,6 +217,11 @@ function lagOf(correlation: LagCorrelation, by: Signal, positions: number): Patt
     correlationAsSet: there,
     turns: Math.floor(correlation.pairs(i) / lag),
   };
+}
+
+/** Over so many pairs a correlation at the lag with the index `i` is one. */
+function isReady(correlation: LagCorrelation, i: number): boolean {
+  return correlation.pairs(i) >= Math.max(fewestTeeth, turnsNeeded * correlation.lags[i]!);
 }
 
 function isAnother(lag: number, positions: number, here: number, there: number): boolean {

@@ -133,17 +133,10 @@ export class DeadChannelRule implements FindingRule {
 
   /** All that comes on it is the mains, while another channel shows how the shaft turns. */
   private floats(path: ChannelPath, k: number, nowS: number): boolean {
-    const { paths, lanes, rateHz, rig } = this.context;
+    const { lanes, rateHz } = this.context;
     if (lanes.length < 2 || !lanes.includes(k)) return false;
     const own = humOn(path.log, nowS, rateHz);
-    const isAlone =
-      !Number.isNaN(own) &&
-      lanes.some((m) => {
-        const other =
-          m === k ? null : unrestOf(paths[m]!.log, -Infinity, 1 / rateHz, rig.wheel.missingPulses);
-        if (!other || other.isIrregular || nowS - other.lastS > 4 * other.meanS) return false;
-        return Math.abs(other.meanS * own - 1) > 0.1;
-      });
+    const isAlone = !Number.isNaN(own) && this.turnsBeside(k, own, nowS);
     if (!isAlone) {
       this.humFromS[k] = NaN;
       return false;
@@ -152,6 +145,16 @@ export class DeadChannelRule implements FindingRule {
     const fromS = this.humFromS[k]!;
     if (nowS - fromS >= humNeededS) this.raise(path, k, fromS, { humHz: own, humS: nowS - fromS }, nowS);
     return true;
+  }
+
+  /** Another channel than `k` has teeth that come steadily, and not at `humHz`. */
+  private turnsBeside(k: number, humHz: number, nowS: number): boolean {
+    const { paths, lanes, rateHz, rig } = this.context;
+    return lanes.some((m) => {
+      const other = m === k ? null : unrestOf(paths[m]!.log, -Infinity, 1 / rateHz, rig.wheel.missingPulses);
+      if (!other || other.isIrregular || nowS - other.lastS > 4 * other.meanS) return false;
+      return Math.abs(other.meanS * humHz - 1) > 0.1;
+    });
   }
 
   private withoutIndex(nowS: number): Evidence | null {
@@ -231,7 +234,9 @@ function humOn(log: ToothLog, nowS: number, rateHz: number): number {
   const { riseS, mask, count } = log;
   const roughlyS =
     (riseS[(count - 1) & mask]! - riseS[(count - 1 - unrestIntervals) & mask]!) / unrestIntervals;
-  if (!mainsHz.some((hz) => Math.abs(roughlyS * hz - 1) < 0.02)) return NaN;
+  let isNear = false;
+  for (let i = 0; i < mainsHz.length; i++) if (Math.abs(roughlyS * mainsHz[i]! - 1) < 0.02) isNear = true;
+  if (!isNear) return NaN;
   const unrest = unrestOf(log, -Infinity, 1 / rateHz, 0);
   if (!unrest || unrest.isIrregular || nowS - unrest.lastS > 4 * unrest.meanS) return NaN;
   return mainsHz.find((hz) => Math.abs(unrest.meanS * hz - 1) < 0.01) ?? NaN;

@@ -86,7 +86,8 @@ export class FallingFlanks implements TurnListener {
   private note(position: number, n: number): void {
     const { width, widthVariance, face, log } = this;
     const { riseS, fallS, mask } = log;
-    const pitches = 1 + face.spacing.step[(position + 1) % face.positions]!;
+    const next = position + 1 < face.positions ? position + 1 : 0;
+    const pitches = 1 + face.spacing.step[next]!;
     const riseAtS = riseS[n & mask]!;
     const here = (pitches * (fallS[n & mask]! - riseAtS)) / (riseS[(n + 1) & mask]! - riseAtS);
     if (!(here > 0 && here < pitches)) return;

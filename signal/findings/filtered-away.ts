@@ -28,6 +28,20 @@ export function spreadOfRing({ v, mask, count, unbrokenFrom, rateHz }: SlowRing,
   return high > low ? high - low : 0;
 }
 
+/** Whether that is less than `leastV`: where it is not, a few samples tell. */
+export function spreadsLess(ring: SlowRing, seconds: number, leastV: number): boolean {
+  const { v, mask, count, unbrokenFrom, rateHz } = ring;
+  let low = Infinity;
+  let high = -Infinity;
+  for (let n = Math.max(unbrokenFrom, count - Math.round(seconds * rateHz), 0); n < count; n++) {
+    const x = v[n & mask]!;
+    if (x < low) low = x;
+    if (x > high) high = x;
+    if (high - low >= leastV) return false;
+  }
+  return (high > low ? high - low : 0) < leastV;
+}
+
 /**
  * True where the edges that come are those of a tone at `hz`, or where that is not known (NaN), at `ringHz` of a ring of
  * `rateHz` samples a second, over the time that it was seen in.

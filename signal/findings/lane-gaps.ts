@@ -55,21 +55,24 @@ export class LaneGaps {
     let i = 0;
     let j = 0;
     let k = 0;
+    let nextA = a[0]!;
+    let nextB = b[0]!;
+    let nextC = c[0]!;
     for (;;) {
-      let at = a[i]!;
+      let at = nextA;
       let lane = 0;
-      if (b[j]! < at) {
-        at = b[j]!;
+      if (nextB < at) {
+        at = nextB;
         lane = 1;
       }
-      if (c[k]! < at) {
-        at = c[k]!;
+      if (nextC < at) {
+        at = nextC;
         lane = 2;
       }
       if (at === Infinity) break;
-      if (lane === 0) i++;
-      else if (lane === 1) j++;
-      else k++;
+      if (lane === 0) nextA = a[++i]!;
+      else if (lane === 1) nextB = b[++j]!;
+      else nextC = c[++k]!;
       if (lane === lastLane) hasRepeat = true;
       else if (at - lastS < leastS) leastS = at - lastS;
       lastS = at;

@@ -29,8 +29,8 @@ export class SlowTransform {
     const n = re.length;
     let half = 4;
     for (; half < n / 2; half *= 4) twoRounds(re, im, cosines, sines, half);
-    if (half < n) lastRound(re, im, cosines, sines);
-    unpack(re, im, cosines, sines, toRe, toIm);
+    if (half < n) joinAndUnpack(re, im, cosines, sines, toRe, toIm);
+    else unpack(re, im, cosines, sines, toRe, toIm);
   }
 }
 
@@ -165,24 +165,77 @@ function twoRounds(
   }
 }
 
-/** Joins the two halves, where an odd number of rounds is to be made. */
-function lastRound(re: Float64Array, im: Float64Array, cosines: Float64Array, sines: Float64Array): void {
-  const half = re.length / 2;
-  for (let top = 0, at = 0; top < half; top++, at += 2) {
-    const low = top + half;
-    const lowRe = re[low]!;
-    const lowIm = im[low]!;
-    const c = cosines[at]!;
-    const s = sines[at]!;
-    const x = lowRe * c - lowIm * s;
-    const y = lowRe * s + lowIm * c;
-    const u = re[top]!;
-    const v = im[top]!;
-    re[low] = u - x;
-    im[low] = v - y;
-    re[top] = u + x;
-    im[top] = v + y;
+/**
+ * The last round where an odd number of them is to be made, which joins the two halves, and at once what `unpack` does: of
+ * each of two places as far from the ends of a half, it makes the two that belong together.
+ */
+function joinAndUnpack(
+  re: Float64Array,
+  im: Float64Array,
+  cosines: Float64Array,
+  sines: Float64Array,
+  toRe: Float64Array,
+  toIm: Float64Array,
+): void {
+  const n = re.length;
+  const h = n >> 1;
+  for (let t = 1, u = h - 1; t <= u; t++, u--) {
+    let lowRe = re[t + h]!;
+    let lowIm = im[t + h]!;
+    let c = cosines[2 * t]!;
+    let s = sines[2 * t]!;
+    let x = lowRe * c - lowIm * s;
+    let y = lowRe * s + lowIm * c;
+    let topRe = re[t]!;
+    let topIm = im[t]!;
+    const tRe = topRe + x;
+    const tIm = topIm + y;
+    const farTRe = topRe - x;
+    const farTIm = topIm - y;
+    lowRe = re[u + h]!;
+    lowIm = im[u + h]!;
+    c = cosines[2 * u]!;
+    s = sines[2 * u]!;
+    x = lowRe * c - lowIm * s;
+    y = lowRe * s + lowIm * c;
+    topRe = re[u]!;
+    topIm = im[u]!;
+    const uRe = topRe + x;
+    const uIm = topIm + y;
+    const farURe = topRe - x;
+    const farUIm = topIm - y;
+    c = cosines[t]!;
+    s = sines[t]!;
+    let a = (tRe + farURe) / 2;
+    let b = (tIm - farUIm) / 2;
+    let sum = (tIm + farUIm) / 2;
+    let off = (farURe - tRe) / 2;
+    x = sum * c - off * s;
+    y = sum * s + off * c;
+    toRe[t] = a + x;
+    toIm[t] = b + y;
+    toRe[u + h] = a - x;
+    toIm[u + h] = y - b;
+    c = cosines[u]!;
+    s = sines[u]!;
+    a = (uRe + farTRe) / 2;
+    b = (uIm - farTIm) / 2;
+    sum = (uIm + farTIm) / 2;
+    off = (farTRe - uRe) / 2;
+    x = sum * c - off * s;
+    y = sum * s + off * c;
+    toRe[u] = a + x;
+    toIm[u] = b + y;
+    toRe[t + h] = a - x;
+    toIm[t + h] = y - b;
   }
+  // The middle one, which belongs to itself.
+  const c = cosines[0]!;
+  const s = sines[0]!;
+  const middleRe = re[0]! - (re[h]! * c - im[h]! * s);
+  const middleIm = im[0]! - (re[h]! * s + im[h]! * c);
+  toRe[h] = middleRe - middleIm * cosines[h]!;
+  toIm[h] = middleIm * sines[h]!;
 }
 
 /** From the transform of pairs to that of the samples. */

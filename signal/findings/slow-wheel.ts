@@ -31,6 +31,8 @@ export class SlowWheel {
   private isLocated: boolean | null = null;
   /** Usual size of the first harmonics over half the swing; NaN: not seen yet. */
   private usual = new Float64Array(knownHarmonics + 1).fill(NaN);
+  /** Where the harmonics were when they were last learnt, folded. */
+  private readonly linesHz = new Float64Array(knownHarmonics + 1);
   /** The signal came to an end of its range in the window, where it may have been cut off: its harmonics are others. */
   private isCut = false;
   private readonly context: RuleContext;
@@ -114,9 +116,10 @@ export class SlowWheel {
     if (this.path.channel.sensor.kind !== 'linear') return;
     if (this.isCut || this.teeth < 3 || this.teeth > mostTeeth || !this.locate() || !this.fillsWindow())
       return;
-    const { usual, toothHz, spreadHz, binHz, nyquistHz, halfSwingV } = this;
+    const { usual, toothHz, spreadHz, binHz, nyquistHz, halfSwingV, linesHz } = this;
     for (let h = 1; h <= knownHarmonics; h++) {
       const hz = folded(this, h * toothHz);
+      linesHz[h] = hz;
       if (h * spreadHz > binHz) return;
       if (hz < 3 * binHz || hz > nyquistHz - 3 * binHz || this.isHidden(h, hz)) continue;
       const share = sizeNear(hz) / halfSwingV;
@@ -134,13 +137,12 @@ export class SlowWheel {
     return (riseS[last & mask]! - riseS[first & mask]!) * binHz > leastFilled;
   }
 
-  /** The image of a harmonic that falls upon a lower one says nothing of itself. */
+  /** The image of a harmonic that falls upon a lower one, in `linesHz`, says nothing of itself. */
   private isHidden(h: number, hz: number): boolean {
-    const { toothHz, spreadHz, binHz, nyquistHz } = this;
+    const { toothHz, spreadHz, binHz, nyquistHz, linesHz } = this;
     if (h * toothHz < nyquistHz) return false;
-    for (let k = 1; k < h; k++) {
-      if (Math.abs(folded(this, k * toothHz) - hz) < 3 * binHz + h * spreadHz) return true;
-    }
+    const nearHz = 3 * binHz + h * spreadHz;
+    for (let k = 1; k < h; k++) if (Math.abs(linesHz[k]! - hz) < nearHz) return true;
     return false;
   }
 

@@ -1,7 +1,7 @@
 /** One channel of `UnseenTeeth`: when its raw signal is looked at, and what it must show to be taken for teeth. */
 import type { ChannelPath } from '@/signal/channel-path';
 import { BurstTone } from '@/signal/findings/burst-tone';
-import { countsTone, spreadOfRing } from '@/signal/findings/filtered-away';
+import { countsTone, spreadOfRing, spreadsLess } from '@/signal/findings/filtered-away';
 import { RingTone } from '@/signal/findings/ring-tone';
 import { isMains, unfoldedHz } from '@/signal/findings/tone-place';
 import type { Section } from '@/signal/filter-design';
@@ -113,7 +113,7 @@ export class UnseenLane {
     this.lowV = Infinity;
     this.highV = -Infinity;
     this.suspects =
-      rawV >= leastRawSigmas * rawNoiseV(path.bursts) && spreadOfRing(path.slow, leftS) < leastLeft * rawV;
+      rawV >= leastRawSigmas * rawNoiseV(path.bursts) && spreadsLess(path.slow, leftS, leastLeft * rawV);
     path.keepRawSlow(isQuiet || this.suspects || path.edgeCount === 0);
     if (!isQuiet && !this.suspects) {
       if (this.seen > 0) this.forget();
@@ -141,14 +141,19 @@ export class UnseenLane {
   /** Most and least of the raw signal; every thirty-second sample may fall on one and the same place of every tooth. */
   private gather(): void {
     const { spreadLowV, spreadHighV, bursts } = this.path;
-    if (spreadLowV < this.lowV) this.lowV = spreadLowV;
-    if (spreadHighV > this.highV) this.highV = spreadHighV;
-    if (bursts.seen === 0) return;
-    for (let i = 0; i < burstLength; i++) {
-      const x = bursts.burst[i]!;
-      if (x < this.lowV) this.lowV = x;
-      if (x > this.highV) this.highV = x;
+    let { lowV, highV } = this;
+    if (spreadLowV < lowV) lowV = spreadLowV;
+    if (spreadHighV > highV) highV = spreadHighV;
+    if (bursts.seen > 0) {
+      const { burst } = bursts;
+      for (let i = 0; i < burstLength; i++) {
+        const x = burst[i]!;
+        if (x < lowV) lowV = x;
+        if (x > highV) highV = x;
+      }
     }
+    this.lowV = lowV;
+    this.highV = highV;
   }
 
   private judge(ring: SlowRing, isQuiet: boolean, nowS: number): Sight | null {

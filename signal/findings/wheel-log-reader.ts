@@ -2,7 +2,6 @@
 import type { ChannelPath } from '@/signal/channel-path';
 import type { Numbering } from '@/signal/findings/wheel-look';
 import { readableFrom } from '@/signal/tooth-log';
-import type { ToothLog } from '@/signal/tooth-log';
 import { WheelAbsence } from '@/signal/wheel-absence';
 import type { WheelSeat } from '@/signal/wheel-count';
 import { ExtraPulses } from '@/signal/wheel-extras';
@@ -62,7 +61,13 @@ export class WheelLogReader implements WheelLane, WheelSeat {
     if (from !== this.next) tracker.reset();
     // The last tooth may not have ended.
     const to = log.count - 1;
-    for (let n = from; n < to; n++) this.feed(log, n & log.mask);
+    const { riseS, peakV, troughV, mask } = log;
+    for (let n = from; n < to; n++) {
+      const i = n & mask;
+      tracker.t = riseS[i]!;
+      tracker.swingV = peakV[i]! - troughV[i]!;
+      tracker.take();
+    }
     this.next = Math.max(from, to);
   }
 
@@ -87,12 +92,5 @@ export class WheelLogReader implements WheelLane, WheelSeat {
     this.counts[position] = this.counts[position]! + 1;
     this.lastPosition = position;
     this.lastT = this.t;
-  }
-
-  private feed(log: ToothLog, i: number): void {
-    const { tracker } = this;
-    tracker.t = log.riseS[i]!;
-    tracker.swingV = log.peakV[i]! - log.troughV[i]!;
-    tracker.take();
   }
 }
