@@ -13,6 +13,8 @@
  * Nothing below the quantum can be seen: the estimate never falls below quantum / sqrt(12). For codes the quantum is
  * one code, for floats the smallest step seen between neighbours.
  */
+import { medianOf, replaceSorted } from '@/signal/few-sorted';
+
 export const burstLength = 24;
 const differences = burstLength - 6;
 const kept = 41;
@@ -166,20 +168,6 @@ function clippedNoiseV(burst: Float64Array, railV: number, quantumV: number): nu
   return rmsV > mostQuanta * quantumV ? rmsV : 0;
 }
 
-/** Of an even number of values, which come out in another order: only those up to the middle need sorting. */
-function medianOf(values: Float64Array, count: number): number {
-  const middle = count / 2;
-  sortFew(values, middle + 1);
-  for (let i = middle + 1; i < count; i++) {
-    const value = values[i]!;
-    if (value >= values[middle]!) continue;
-    let j = middle - 1;
-    for (; j >= 0 && values[j]! > value; j--) values[j + 1] = values[j]!;
-    values[j + 1] = value;
-  }
-  return (values[middle - 1]! + values[middle]!) / 2;
-}
-
 function learnQuantum(meter: NoiseMeter): void {
   const { burst } = meter;
   for (let i = 1; i < burstLength; i++) {
@@ -187,28 +175,6 @@ function learnQuantum(meter: NoiseMeter): void {
     // Steps this small are rounding of one and the same value, steps this large the two levels of a switch.
     if (step <= 1e-9 * Math.abs(burst[i]!) || step > coarsestQuantumV) continue;
     if (meter.quantumV === 0 || step < meter.quantumV) meter.quantumV = step;
-  }
-}
-
-/** Of `count` sorted numbers `old` goes, where there are as many as can be, and `fresh` takes its place. */
-function replaceSorted(sorted: Float64Array, count: number, old: number, fresh: number): void {
-  let j = count;
-  if (count === kept) {
-    j = 0;
-    while (sorted[j]! < old) j++;
-    for (; j + 1 < kept && sorted[j + 1]! < fresh; j++) sorted[j] = sorted[j + 1]!;
-  }
-  for (; j > 0 && sorted[j - 1]! > fresh; j--) sorted[j] = sorted[j - 1]!;
-  sorted[j] = fresh;
-}
-
-/** Insertion sort: for a couple of dozen numbers ten times faster than the built-in one. */
-function sortFew(values: Float64Array, count: number): void {
-  for (let i = 1; i < count; i++) {
-    const value = values[i]!;
-    let j = i - 1;
-    for (; j >= 0 && values[j]! > value; j--) values[j + 1] = values[j]!;
-    values[j + 1] = value;
   }
 }
 
