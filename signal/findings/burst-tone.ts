@@ -48,6 +48,7 @@ export class BurstTone {
   private seen = -1;
 
   restart(): void {
+    if (this.count === 0) return;
     this.shares.fill(0);
     this.count = this.squareV = 0;
     this.cyclesPerSample = this.swingV = NaN;

@@ -106,7 +106,10 @@ export class SlowSpectra {
   sizeNear(spectrum: Spectrum, hz: number): number {
     const bin = Math.round(hz / spectrum.wheel.binHz);
     if (!(bin > 1 && bin < spectrum.re.length - 2)) return 0;
-    return Math.max(sizeAt(spectrum, bin - 1), sizeAt(spectrum, bin), sizeAt(spectrum, bin + 1));
+    const { re, im } = spectrum;
+    let most = 0;
+    for (let k = bin - 1; k <= bin + 1; k++) most = Math.max(most, re[k]! * re[k]! + im[k]! * im[k]!);
+    return Math.sqrt(most);
   }
 
   private emptyOf(index: number, size: number): Spectrum {

@@ -20,6 +20,7 @@ const mostRange = 3;
 const windowS = 2;
 const bookEveryS = 0.1;
 const bookLength = 24;
+const bookMask = 31;
 
 type Seen = { fromS: number; atS: number; perS: number; evidence: Record<string, number | string> };
 
@@ -35,10 +36,10 @@ export class StandstillChatterRule implements FindingRule {
   private readonly walk: EdgeWalk | null;
   private readonly references: RunReference[];
   private gapS = -Infinity;
-  /** The last seconds of a ring: time, net steps and edges of all lanes; entry `n` is at `n % bookLength`. */
-  private readonly bookS = new Float64Array(bookLength).fill(NaN);
-  private readonly bookNet = new Float64Array(bookLength);
-  private readonly bookEdges = new Float64Array(bookLength);
+  /** The last seconds of a ring: time, net steps and edges of all lanes; entry `n` is at `n & bookMask`. */
+  private readonly bookS = new Float64Array(bookMask + 1).fill(NaN);
+  private readonly bookNet = new Float64Array(bookMask + 1);
+  private readonly bookEdges = new Float64Array(bookMask + 1);
   private entries = 0;
 
   /** @param references of the lanes, in their order. */
@@ -109,15 +110,15 @@ export class StandstillChatterRule implements FindingRule {
     let edges = 0;
     for (let k = 0; k < context.lanes.length; k++) edges += context.paths[context.lanes[k]!]!.edgeCount;
     const net = tracker.netSteps;
-    if (this.entries === 0 || nowS - bookS[(this.entries - 1) % bookLength]! >= bookEveryS) {
-      const n = this.entries++ % bookLength;
+    if (this.entries === 0 || nowS - bookS[(this.entries - 1) & bookMask]! >= bookEveryS) {
+      const n = this.entries++ & bookMask;
       bookS[n] = nowS;
       bookNet[n] = net;
       bookEdges[n] = edges;
     }
     let oldest = Math.max(0, this.entries - bookLength);
-    while (oldest < this.entries - 1 && bookS[oldest % bookLength]! < nowS - windowS) oldest++;
-    const n = oldest % bookLength;
+    while (oldest < this.entries - 1 && bookS[oldest & bookMask]! < nowS - windowS) oldest++;
+    const n = oldest & bookMask;
     // Nothing but subtractions while the shaft turns or rests.
     if (edges - bookEdges[n]! < edgesNeeded || Math.abs(net - bookNet[n]!) > mostRange) return null;
     return this.readBack(walk, bookS[n]!, nowS);

@@ -53,7 +53,8 @@ export class StateJumps {
   /** @param isBroken the motion came upon what cannot be. */
   tick(isBroken: boolean): void {
     const { gaps, found } = this;
-    found.length = 0;
+    // Setting a length takes far longer than asking for it.
+    if (found.length > 0) found.length = 0;
     gaps.scan();
     const { log } = this.context.paths[this.context.primary]!;
     const toothS = usualTooth(log);

@@ -65,7 +65,8 @@ export function rangeOf(values: Float64Array): { least: number; most: number } {
 export function meanOf(values: Float64Array): number {
   let sum = 0;
   let count = 0;
-  for (const value of values) {
+  for (let k = 0; k < values.length; k++) {
+    const value = values[k]!;
     if (Number.isNaN(value)) continue;
     sum += value;
     count++;
