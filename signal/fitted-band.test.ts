@@ -133,12 +133,10 @@ describe('fitted bands of a shaft that shakes between two turns', () => {
     { at: 0.15, by: 0.15, name: 'beyond the middle on one side' },
     { at: 0.4, by: 0.06, name: 'on two flanks, in short blocks', block: 20 },
     { at: 0.6, by: 0.06, name: 'on two flanks, further on, in short blocks', block: 20 },
-    { at: 0.6, by: 0.06, name: 'nearly as often as teeth came', hz: 55 },
-    { at: 0.15, by: 0.06, name: 'nearly as often as teeth came, further back', hz: 55 },
   ];
-  it.each(shakes)('count every cycle afterwards: $name', ({ at, by, block = 1000, hz = 23 }) => {
+  it.each(shakes)('count every cycle afterwards: $name', ({ at, by, block = 1000 }) => {
     const noise = normal(seeded(21));
-    // 60 cycles in 1 s, hundreds of swings about one place, 60 cycles more.
+    // 60 cycles in 1 s, two or three hundred swings about one place, 60 cycles more.
     const place = (t: number): number => {
       if (t < 1) return 0;
       if (t < 2) return (60 + at) * (t - 1);
@@ -146,7 +144,7 @@ describe('fitted bands of a shaft that shakes between two turns', () => {
         return (
           60 +
           at +
-          by * Math.sin(2 * Math.PI * hz * (t - 2)) * Math.min(1, 5 * (t - 2.2) ** 2 * (t > 2.2 ? 1 : 0))
+          by * Math.sin(2 * Math.PI * 23 * (t - 2)) * Math.min(1, 5 * (t - 2.2) ** 2 * (t > 2.2 ? 1 : 0))
         );
       return 60 + at + 60 * Math.min(1, t - 12);
     };

@@ -50,6 +50,8 @@ const manyOfRing = 24;
 /** Shaking may cut one side short by little only, so that what is left still reaches beyond the middle. */
 const smaller = 0.8;
 const offMiddle = 0.1;
+/** Its shorter teeth may have moved a level by then. */
+const littleOfRing = 0.4;
 
 const coarse = new Float64Array(most + 1);
 const swings = new Float64Array(3);
@@ -190,7 +192,7 @@ function isAside({ foundLowV, foundHighV, knownLowV, knownHighV, isRing }: Hunte
   const offV = Math.abs((foundLowV + foundHighV) / 2 - middleV);
   return (
     foundHighV - foundLowV < (isRing ? smaller : farSmaller) * knownV &&
-    outsideV < little * knownV &&
+    outsideV < (isRing ? littleOfRing : little) * knownV &&
     (isRing ? offV > offMiddle * knownV : foundLowV > middleV || foundHighV < middleV)
   );
 }

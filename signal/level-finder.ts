@@ -41,12 +41,8 @@ export type FinderHost = {
 };
 
 const quietS = 1;
-/**
- * So many turning points more are not believed on a ring: the shaft stopped and shakes. Where teeth come less often than
- * anything shakes, those that keep their pace are.
- */
-const refusals = 2000;
-const slowestShakeS = 0.1;
+/** So many turning points that come at another pace than the teeth did are not believed: the shaft stopped in between. */
+const refusals = 400;
 const leastPace = 0.6;
 const mostPace = 1.5;
 /** Samples by which remembering begins before the last edge is out of reach. */
@@ -177,13 +173,12 @@ export class LevelFinder {
     return stop + 1;
   }
 
-  /** A swing that lost much of its size at once goes on at the teeth's pace, whereas a shaft that rests may shake at any. */
+  /** A swing that lost much of its size at once goes on at the teeth's pace; a shaft that came to rest and shakes has its own. */
   private isBelieved(at: number): boolean {
     const { hunter, host } = this;
     if (!hunter.aside || !host.isRing || this.refused >= refusals) return true;
     const pace = (at - host.lastEdgeAt) / (hunter.turnCount / 2) / host.typicalSamples;
-    const isSlow = host.typicalSamples > slowestShakeS * this.rateHz;
-    if (isSlow && pace >= leastPace && pace <= mostPace) return true;
+    if (pace >= leastPace && pace <= mostPace) return true;
     this.refused++;
     // Until the next turning point: how often this is asked depends on how the stream is cut.
     hunter.found = false;
