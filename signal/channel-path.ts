@@ -13,6 +13,7 @@ import {
 } from '@/signal/biquad';
 import type { Cascade } from '@/signal/biquad';
 import type { EdgeQueue } from '@/signal/columns';
+import type { DelayCurve } from '@/signal/delay-curve';
 import type { Section } from '@/signal/filter-design';
 import { FittedBand } from '@/signal/fitted-band';
 import { FixedBand } from '@/signal/fixed-band';
@@ -49,6 +50,8 @@ export type PathOptions = {
   teethPerTurn: number;
   /** Between neighbouring samples of the filtered noise; where not given, as the sections make it of white noise. */
   correlation?: number | undefined;
+  /** Delays of these sections, where another channel has them already. */
+  delays?: DelayCurve | undefined;
   /** Edges may be found so long after they passed; 0, or not given: other channels' edges count in order with them. */
   findLateS?: number;
   bands: BandChange[];

@@ -28,6 +28,8 @@ export type IntakeOptions = {
   teethPerTurn: number;
   /** Between neighbouring samples of the filtered noise; where not given, as the sections make it of white noise. */
   correlation?: number | undefined;
+  /** Delays of these sections, where another channel has them already. */
+  delays?: DelayCurve | undefined;
   /** Edges may be found so long after they passed; 0 where other channels' edges count in order with them. */
   findLateS: number;
 };
@@ -103,7 +105,7 @@ export class EdgeIntake {
     const correlation = options.correlation ?? noiseBehind(sections).correlation;
     this.noiseStep = Math.sqrt(2 * (1 - correlation));
     this.oneCrossing = Math.sqrt((2 + correlation) / 3);
-    this.delays = createDelayCurve(sections, rateHz);
+    this.delays = options.delays ?? createDelayCurve(sections, rateHz);
     this.delayS = dcDelayS(sections, rateHz);
     this.marginMeter = createMarginMeter(teethPerTurn);
     this.log = createToothLog(teethPerTurn, samplesPerTick(rateHz) / 2);

@@ -25,7 +25,7 @@ export class History implements Past {
   constructor(rateHz: number, chunk: number, from: number) {
     const wanted = Math.min(most, Math.max(fewest, lookBackS * rateHz));
     this.reach = 2 ** Math.round(Math.log2(wanted));
-    this.v = new Float64Array(3 * this.reach + chunk + 1);
+    this.v = new Float64Array(2 * this.reach + chunk + 1);
     this.from = from;
   }
 

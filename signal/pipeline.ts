@@ -8,6 +8,7 @@ import { ChannelPath, chunkSamples } from '@/signal/channel-path';
 import { createSpeedColumns } from '@/signal/columns';
 import { mergeEdges } from '@/signal/edge-merge';
 import type { Lane } from '@/signal/edge-merge';
+import { createDelayCurve } from '@/signal/delay-curve';
 import { designFilters } from '@/signal/filter-design';
 import { FindingsDesk } from '@/signal/findings/desk';
 import { IndexWatch } from '@/signal/index-watch';
@@ -63,6 +64,7 @@ class SignalPipeline implements Pipeline {
     const passed = bothWays ? [...designed, ...designed] : designed;
     const { gain: gainOfNoise, correlation } = noiseBehind(passed);
     const memory = memorySamples(sections);
+    const delays = createDelayCurve(sections, rateHz);
     const bands: PipelineOutput['bands'] = [];
     const speed = createSpeedColumns();
     const directions: PipelineOutput['directions'] = [];
@@ -82,6 +84,7 @@ class SignalPipeline implements Pipeline {
         sections,
         gainOfNoise,
         correlation,
+        delays,
         rateHz,
         startIndex,
         holdoffS: settings.holdoffS,
