@@ -7,7 +7,7 @@ import type { SlowWheel } from '@/signal/findings/slow-wheel';
 const harmonics = 60;
 const lowHarmonics = 8;
 /** Nearer to the teeth than this they themselves fill the place. */
-const mirrorBins = 3.5;
+const mirrorBins = 3;
 /** Torque ripples with up to about so many times a turn. */
 export const sideOrders = 10;
 
