@@ -36,6 +36,7 @@ export const chunkSamples = 1024;
 const fewestForNoise = 8;
 /** Of the supply. */
 const switchingShare = 0.2;
+const linearShare = 0.003;
 
 export type PathOptions = {
   channel: Channel;
@@ -250,9 +251,11 @@ export class ChannelPath {
 }
 
 /**
- * The output of a switching sensor is nearly all of its supply: what swings less, at first, is noise that stands at a rail
- * with half of it cut off, which passes for less than it is.
+ * What swings less, at first, is no teeth. The output of a switching sensor is nearly all of its supply: less is noise that
+ * stands at a rail with half of it cut off, which passes for less than it is. That of a linear one may be small, but hum
+ * of a few thousandths of the supply is on many a line before the shaft turns.
  */
 function leastFirstV({ sensor: { kind, supplyV } }: Channel): number {
-  return kind !== 'linear' && supplyV !== null && supplyV > 0 ? switchingShare * supplyV : 0;
+  if (supplyV === null || !(supplyV > 0)) return 0;
+  return (kind === 'linear' ? linearShare : switchingShare) * supplyV;
 }

@@ -405,9 +405,22 @@ describe('the fitted band', () => {
     const noise = normal(seeded(8));
     const pipeline = testPipeline(testRig('single', 1), 1000);
     const pulse = (t: number): number =>
-      0.001 * Math.exp(-0.5 * (((t % 0.8) - 0.4) / 0.008) ** 2) + 0.00002 * noise();
+      0.1 * Math.exp(-0.5 * (((t % 0.8) - 0.4) / 0.008) ** 2) + 0.002 * noise();
     feed(pipeline, sampled(40_000, 1000, pulse));
     expect(pipeline.status().pulses).toBe(50);
+  });
+
+  it('takes hum of a few thousandths of the supply for no teeth, and finds teeth that come later', () => {
+    const noise = normal(seeded(8));
+    const pipeline = testPipeline(testRig('single', 1), 1000);
+    const hum = (t: number): number => 1.65 + 0.003 * Math.sin(2 * Math.PI * 50 * t) + 0.0002 * noise();
+    feed(pipeline, sampled(5000, 1000, hum));
+    expect(pipeline.status().pulses).toBe(0);
+    feed(
+      pipeline,
+      sampled(5000, 1000, (t) => hum(t) + 0.1 * Math.sin(2 * Math.PI * 10 * t)),
+    );
+    expect(Math.abs(pipeline.status().pulses - 50)).toBeLessThanOrEqual(1);
   });
 
   it('leaves a fixed band exactly as typed, for each channel its own', () => {
