@@ -9,7 +9,8 @@ export const signalCase = {
   operateV: 0.2,
   releaseV: -0.2,
   teeth: 60,
-  samples: 2_000_000,
+  /** Five minutes: streams run for hours, and what is made or learnt once at their begin is to weigh little. */
+  samples: 6_000_000,
   block: 512,
 } as const;
 
