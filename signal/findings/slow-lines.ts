@@ -3,6 +3,7 @@
  * shaft, folded at half the ring's rate.
  */
 import type { SlowWheel } from '@/signal/findings/slow-wheel';
+import { foldedHz } from '@/signal/findings/tone-place';
 
 const harmonics = 60;
 const lowHarmonics = 8;
@@ -107,8 +108,7 @@ export function fills(wheel: SlowWheel, bin: number): boolean {
 }
 
 export function folded(wheel: SlowWheel, hz: number): number {
-  const rate = 2 * wheel.nyquistHz;
-  return Math.abs(hz - rate * Math.round(hz / rate));
+  return foldedHz(hz, 2 * wheel.nyquistHz);
 }
 
 /** What a tone leaves `off` bins beside itself behind a Hann window, up to two. */

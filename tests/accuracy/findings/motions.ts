@@ -22,6 +22,27 @@ export function steadyMotion(draw: Draw, rpm: number, seconds: number): MotionSp
   return { startRpm: rpm, segments: [{ durationS: seconds, toRpm: rpm }], ripple: drawRipple(draw) };
 }
 
+/** From one speed to another and back within `timing`, by the same ways up and down. */
+export function passingMotion(
+  draw: Draw,
+  rpm: number,
+  otherRpm: number,
+  { beginS, wholeS, endS, seconds }: { beginS: number; wholeS: number; endS: number; seconds: number },
+): MotionSpec {
+  const changeS = wholeS - beginS;
+  return {
+    startRpm: rpm,
+    segments: [
+      { durationS: beginS, toRpm: rpm },
+      { durationS: changeS, toRpm: otherRpm },
+      { durationS: endS - changeS - wholeS, toRpm: otherRpm },
+      { durationS: changeS, toRpm: rpm },
+      { durationS: seconds, toRpm: rpm },
+    ],
+    ripple: drawRipple(draw),
+  };
+}
+
 /** Slowly up and down between `low` times the speed and the speed. */
 export function swayingMotion(draw: Draw, rpm: number, seconds: number, low = 0.75): MotionSpec {
   const segments: SpeedSegment[] = [];

@@ -2,7 +2,7 @@
 import { timingFor, timingOfStanding, type CaseMaker, type FaultCase } from '@/tests/accuracy/findings/case';
 import { benchOf, drawMachine, type Machine } from '@/tests/accuracy/findings/machine';
 import type { Draw } from '@/tests/accuracy/findings/draw';
-import { drawRipple } from '@/tests/accuracy/findings/motions';
+import { drawRipple, passingMotion } from '@/tests/accuracy/findings/motions';
 import { fitted } from '@/tests/accuracy/findings/settings';
 
 const plain = { filter: { kind: 'none' }, holdoffS: 0 } as const;
@@ -15,22 +15,10 @@ export const nearAlias: CaseMaker = (draw) => {
     turnsPerS: [0.5, 40],
     snrDb: [30, 45],
   });
-  const changeS = draw.uniform(1, 3);
-  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, easeS: changeS });
-  const { beginS, wholeS, endS, seconds } = timing;
+  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, easeS: draw.uniform(1, 3) });
   const samples = draw.uniform(3.3, 8);
   const fastRpm = (machine.rpm * machine.rateHz) / (samples * machine.toothHz);
-  const motion = {
-    startRpm: machine.rpm,
-    segments: [
-      { durationS: beginS, toRpm: machine.rpm },
-      { durationS: wholeS - beginS, toRpm: fastRpm },
-      { durationS: endS - changeS - wholeS, toRpm: fastRpm },
-      { durationS: changeS, toRpm: machine.rpm },
-      { durationS: seconds, toRpm: machine.rpm },
-    ],
-    ripple: drawRipple(draw),
-  };
+  const motion = passingMotion(draw, machine.rpm, fastRpm, timing);
   if (draw.chance(0.25)) return fromTheStart(draw, machine);
   return {
     ...benchOf(machine, motion, { settings: plain }),

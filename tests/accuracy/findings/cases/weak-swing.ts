@@ -13,7 +13,7 @@ import {
 } from '@/tests/accuracy/findings/case';
 import type { Draw } from '@/tests/accuracy/findings/draw';
 import { benchOf, drawMachine, type Machine } from '@/tests/accuracy/findings/machine';
-import { drawRipple, steadyMotion } from '@/tests/accuracy/findings/motions';
+import { passingMotion, steadyMotion } from '@/tests/accuracy/findings/motions';
 import { fitted } from '@/tests/accuracy/findings/settings';
 
 export const weakSwing: CaseMaker = (draw) => {
@@ -105,22 +105,10 @@ function behindFilter(draw: Draw): FaultCase {
     samplesPerTooth: [200, 300],
     snrDb: [30, 45],
   });
-  const changeS = draw.uniform(1, 3);
-  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, easeS: changeS });
-  const { beginS, wholeS, endS, seconds } = timing;
+  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, easeS: draw.uniform(1, 3) });
   const cutoffHz = machine.toothHz * draw.uniform(2, 3);
   const fastRpm = machine.rpm * draw.uniform(9, 14);
-  const motion = {
-    startRpm: machine.rpm,
-    segments: [
-      { durationS: beginS, toRpm: machine.rpm },
-      { durationS: changeS, toRpm: fastRpm },
-      { durationS: endS - changeS - wholeS, toRpm: fastRpm },
-      { durationS: changeS, toRpm: machine.rpm },
-      { durationS: seconds, toRpm: machine.rpm },
-    ],
-    ripple: drawRipple(draw),
-  };
+  const motion = passingMotion(draw, machine.rpm, fastRpm, timing);
   const filter = {
     kind: 'lowpass',
     family: 'butterworth',

@@ -9,7 +9,7 @@ import {
 } from '@/tests/accuracy/findings/case';
 import type { Draw } from '@/tests/accuracy/findings/draw';
 import { benchOf, drawMachine, type Wants } from '@/tests/accuracy/findings/machine';
-import { drawRipple } from '@/tests/accuracy/findings/motions';
+import { passingMotion } from '@/tests/accuracy/findings/motions';
 
 type Variant =
   'twice, by the index' | 'half, by the index' | 'gap not told' | 'other gap' | 'gap told, not there';
@@ -60,22 +60,10 @@ function eatenByHoldoff(draw: Draw): FaultCase {
     samplesPerTooth: [160, 240],
     snrDb: [30, 45],
   });
-  const changeS = draw.uniform(1, 3);
-  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, easeS: changeS });
-  const { beginS, wholeS, endS, seconds } = timing;
+  const timing = timingFor(draw, machine.turnsPerS, { needsTurns: 3, easeS: draw.uniform(1, 3) });
   const faster = draw.uniform(4, 12);
   const fastRpm = machine.rpm * faster;
-  const motion = {
-    startRpm: machine.rpm,
-    segments: [
-      { durationS: beginS, toRpm: machine.rpm },
-      { durationS: changeS, toRpm: fastRpm },
-      { durationS: endS - changeS - wholeS, toRpm: fastRpm },
-      { durationS: changeS, toRpm: machine.rpm },
-      { durationS: seconds, toRpm: machine.rpm },
-    ],
-    ripple: drawRipple(draw),
-  };
+  const motion = passingMotion(draw, machine.rpm, fastRpm, timing);
   return {
     ...benchOf(machine, motion, { settings: { filter: { kind: 'none' }, holdoffS: 0.2 / machine.toothHz } }),
     ...timing,
